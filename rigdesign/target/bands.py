@@ -1,0 +1,95 @@
+"""The accepted error of V and M as numbers along the span.
+
+A band is asked for as a per cent of the peak, of the local value, or as a quantity; here it becomes two widths at
+every station: how far the error may go below zero and above.  Errors are rig − target; "under" means that the rig's
+magnitude is smaller, so the sides change places where the target is negative.  Where |target| is below 5 % of its
+peak the wider side holds for both; no width is below 0.05 % of the peak.  Where nothing is asked the width is infinite.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import Literal
+
+import numpy as np
+
+from rigdesign.brief.model import Acceptance, BandRule, Region
+from rigdesign.target.curve import Floats, Side
+from rigdesign.target.model import Target
+from rigdesign.words import BAND_FLOOR, SMALL_TARGET
+
+Quantity = Literal["shear", "moment"]
+
+
+@dataclass(frozen=True)
+class Band:
+    """Band of one quantity.  `peak` is the largest |target| [N or N·m]; `value(x, side)` gives the target (n,)."""
+
+    quantity: Quantity
+    peak: float
+    acceptance: Acceptance
+    value: Callable[[Floats, Side], Floats]
+
+    @property
+    def is_judged(self) -> bool:
+        """Whether anything at all is asked of this quantity."""
+        rules = [*self.acceptance.rules, *(r for region in self.acceptance.regions for r in region.rules)]
+        return any(rule.quantity == self.quantity for rule in rules)
+
+    @property
+    def edges(self) -> Floats:
+        """Stations (k,) at which the band may jump: the ends of the regions that name this quantity."""
+        ends = [end for region in self.acceptance.regions if self._names(region) for end in (region.start_x, region.end_x)]
+        return np.unique(np.array(ends, dtype=float))
+
+    def _names(self, region: Region) -> bool:
+        return any(rule.quantity == self.quantity for rule in region.rules)
+
+    def widths(self, x: Floats, side: Side) -> tuple[Floats, Floats]:
+        """How far the error may go below and above zero at stations x (n,): two arrays (n,), positive, maybe infinite.
+
+        At the end of a region `side` tells which stretch the station counts to.
+        """
+        target = self.value(x, side)
+        under, over = self.under_over(x, side)
+        negative = target < 0
+        below, above = np.where(negative, over, under), np.where(negative, under, over)
+        small = np.abs(target) < SMALL_TARGET * self.peak
+        wider = np.maximum(below, above)
+        floor = BAND_FLOOR * self.peak
+        return (np.maximum(np.where(small, wider, below), floor), np.maximum(np.where(small, wider, above), floor))
+
+    def under_over(self, x: Floats, side: Side) -> tuple[Floats, Floats]:
+        """The widths asked for, under and over, before the rules on small targets and the floor: (n,) each."""
+        local = np.abs(self.value(x, side))
+        width = {"under": np.full(x.shape, np.inf), "over": np.full(x.shape, np.inf)}
+        for rule in self.acceptance.rules:
+            if rule.quantity == self.quantity:
+                width[rule.side] = self._amount(rule, local)
+        for region in self.acceptance.regions:
+            inside = _inside(region, x, side)
+            for rule in region.rules:
+                if rule.quantity == self.quantity:
+                    width[rule.side] = np.where(inside, self._amount(rule, local), width[rule.side])
+        return width["under"], width["over"]
+
+    def _amount(self, rule: BandRule, local: Floats) -> Floats:
+        if rule.absolute:
+            return np.full(local.shape, rule.amount)
+        return rule.amount * (np.full(local.shape, self.peak) if rule.of == "peak" else local)
+
+
+def _inside(region: Region, x: Floats, side: Side) -> Floats:
+    if side == "inboard":
+        return (x > region.start_x) & (x <= region.end_x)
+    return (x >= region.start_x) & (x < region.end_x)
+
+
+def bands(target: Target) -> dict[Quantity, Band]:
+    """Return the bands of the target's shear and moment."""
+    accept = target.brief.acceptance
+    return {
+        "moment": Band("moment", target.moment_peak, accept, lambda x, side: target.moment(x)),
+        "shear": Band("shear", target.shear_peak, accept, lambda x, side: target.shear(x, side)),
+    }

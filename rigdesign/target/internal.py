@@ -1,0 +1,45 @@
+"""Shear V and bending moment M from loads, reactions of two supports included (conventions: cut square to x).
+
+Everything with x_i > x counts: V = Σ F_i, M = Σ F_i (x_i − x).  A cantilever is held at its inboard end, so nothing
+but the load lies outboard of a cut.  On two supports the reactions follow from the load's sum and first moment.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+
+from rigdesign.brief.model import Specimen
+from rigdesign.target.curve import Curve, Floats, Side
+
+
+def reactions(specimen: Specimen, total: float, first_moment: float) -> tuple[Floats, Floats]:
+    """Return stations (k,) [m] and forces (k,) [N] on the specimen of its simple supports; k = 0 for a cantilever."""
+    if not specimen.supports:
+        return np.empty(0), np.empty(0)
+    a, b = specimen.supports
+    right = -(first_moment - total * a) / (b - a)
+    return np.array([a, b]), np.array([-total - right, right])
+
+
+def points_beyond(x: Floats, at: Floats, force: Floats, side: Side) -> tuple[Floats, Floats]:
+    """Shear (n,) [N] and moment (n,) [N·m] at stations x (n,) of point loads `force` (k,) at `at` (k,)."""
+    order = np.argsort(at, kind="stable")
+    at, force = at[order], force[order]
+    # sums over all loads from index i on, with a zero for "none left"
+    force_left = np.append(np.cumsum(force[::-1])[::-1], 0.0)
+    first_left = np.append(np.cumsum((force * at)[::-1])[::-1], 0.0)
+    first = np.searchsorted(at, x, side="left" if side == "inboard" else "right")
+    shear = force_left[first]
+    return shear, first_left[first] - shear * x
+
+
+def shear(curve: Curve, specimen: Specimen, x: Floats, side: Side) -> Floats:
+    """Shear V [N] at stations x (n,) on one side."""
+    at, force = reactions(specimen, curve.total, curve.first_moment)
+    return curve.force_beyond(x, side) + points_beyond(x, at, force, side)[0]
+
+
+def moment(curve: Curve, specimen: Specimen, x: Floats) -> Floats:
+    """Bending moment M [N·m] at stations x (n,)."""
+    at, force = reactions(specimen, curve.total, curve.first_moment)
+    return curve.moment_beyond(x) + points_beyond(x, at, force, "inboard")[1]

@@ -1,0 +1,21 @@
+"""Constants that lie under everything: physical ones, and the defaults and floors that more than one stage quotes."""
+
+from __future__ import annotations
+
+STANDARD_GRAVITY = 9.80665
+"""Standard acceleration of free fall [m/s²] (exact by definition)."""
+
+LOAD_CELL_FLOOR = 0.0025
+"""What a load cell can see, as a fraction of its reading; common practice, a cell of 0.25 %."""
+
+BAND_FLOOR = 0.0005
+"""No band is narrower than this fraction of the peak of the target's curve."""
+
+SMALL_TARGET = 0.05
+"""Below this fraction of the target's peak the wider side of a band holds for both."""
+
+DEFAULT_MOMENT_BAND = 0.02
+"""Band on the moment where the brief has no [acceptance], as a fraction of the peak; common practice."""
+
+SCHEMA_NUMBER = 1
+"""Number of the rig.json layout that this version writes and reads."""
