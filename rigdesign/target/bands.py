@@ -13,6 +13,7 @@ from dataclasses import dataclass
 from typing import Literal
 
 import numpy as np
+from numpy.typing import NDArray
 
 from rigdesign.brief.model import Acceptance, BandRule, Region
 from rigdesign.target.curve import Floats, Side
@@ -80,7 +81,7 @@ class Band:
         return rule.amount * (np.full(local.shape, self.peak) if rule.of == "peak" else local)
 
 
-def _inside(region: Region, x: Floats, side: Side) -> Floats:
+def _inside(region: Region, x: Floats, side: Side) -> NDArray[np.bool_]:
     if side == "inboard":
         return (x > region.start_x) & (x <= region.end_x)
     return (x >= region.start_x) & (x < region.end_x)
