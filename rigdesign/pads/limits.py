@@ -1,0 +1,68 @@
+"""Limits that a single pad or a pair of neighbours must keep.
+
+Forces here are multiplied by the sign of the target (positive) and are those at the brief's load; the limits of the
+brief hold at the peak of the test, so they are divided by it here.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+
+from rigdesign.brief.model import Brief
+from rigdesign.target.curve import Floats
+
+# Lengths that agree to this part of the span count as equal: a footprint may touch its neighbour.
+TOUCH = 1e-9
+
+
+def force_limits(brief: Brief) -> tuple[float, float]:
+    """Least and largest force of a pad [N] at the brief's load, the pressure limit included."""
+    pads = brief.pads
+    largest = pads.largest_force
+    if np.isfinite(pads.largest_pressure) and pads.width is not None:
+        largest = min(largest, pads.largest_pressure * pads.length * pads.width)
+    return pads.least_force / brief.peak, largest / brief.peak
+
+
+def least_pitch(brief: Brief) -> float:
+    """Least distance [m] between the centres of neighbouring pads."""
+    return brief.pads.length + brief.pads.gap
+
+
+def allowed_stretches(brief: Brief) -> Floats:
+    """Stretches (k, 2) [m] where the centre of a pad may stand: on the specimen and clear of keep-outs."""
+    half = brief.pads.length / 2
+    start, end = brief.specimen.left + half, brief.specimen.right - half
+    stretches = []
+    for a, b in sorted(brief.pads.keep_out):
+        if a - half >= start:
+            stretches.append((start, min(a - half, end)))
+        start = max(start, b + half)
+    stretches.append((start, end))
+    kept = [(a, b) for a, b in stretches if b >= a]
+    return np.array(kept, dtype=float).reshape(-1, 2)
+
+
+def violations(brief: Brief, pad_x: Floats, force: Floats) -> Floats:
+    """How far rigs with pads `pad_x`, `force` (..., n), root to tip, miss the pad limits: (...), 0 where all hold.
+
+    The sum of the relative excesses of forces, and of lengths over the span.
+    """
+    span = brief.specimen.right - brief.specimen.left
+    least, largest = force_limits(brief)
+    scale = np.abs(force).mean(axis=-1)
+    missing = (np.maximum(least - force, 0.0).sum(axis=-1)) / scale
+    if np.isfinite(largest):
+        missing = missing + np.maximum(force - largest * (1 + TOUCH), 0.0).sum(axis=-1) / scale
+    missing = missing + np.maximum(-force, 0.0).sum(axis=-1) / scale
+    pitch = np.diff(pad_x, axis=-1)
+    lengths = np.maximum(least_pitch(brief) - TOUCH * span - pitch, 0.0).sum(axis=-1)
+    return np.asarray(missing + (lengths + _off_stretches(brief, pad_x, TOUCH * span).sum(axis=-1)) / span)
+
+
+def _off_stretches(brief: Brief, pad_x: Floats, slack: float) -> Floats:
+    stretches = allowed_stretches(brief)
+    if not stretches.size:
+        return np.ones(pad_x.shape)
+    away = np.maximum(stretches[:, 0] - pad_x[..., None], pad_x[..., None] - stretches[:, 1]).min(axis=-1)
+    return np.where(away > slack, away, 0.0)

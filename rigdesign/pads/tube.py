@@ -1,0 +1,219 @@
+"""The target as the pads must follow it: a tube around the shear and the moment of the pads alone.
+
+A rig differs from its target by E = rig − target.  Gravity and, as long as the pads keep the target's sum and first
+moment, the reactions drop out of E, so it is enough to compare the pads with the net target, both counted from the
+outboard end alone:
+
+    P(x) = Σ F_i (x_i − x)  over x_i > x        against  G(x) = ∫ (s − x) dF(s)  over s > x.
+
+Where the jack stands off the resultant the first moment differs by D = Σ F_i x_i − G's.  A cantilever then shows D
+in E itself; two supports answer with reactions, and E gains D times the functions `moment_unit` and `shear_unit`.
+
+Everything is multiplied by the sign of the target, so that the pads' forces are positive.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import NamedTuple
+
+import numpy as np
+from numpy.typing import NDArray
+
+from rigdesign.target.bands import bands
+from rigdesign.target.curve import Floats, Side
+from rigdesign.target.internal import points_beyond, reactions
+from rigdesign.target.model import Target
+
+# A width that nothing exceeds, as a multiple of the peak: keeps infinities out of interpolation and programmes.
+UNBOUNDED = 1e9
+# Most numbers in one block of a batched evaluation; keeps a batch below about 100 MB.
+BLOCK = 4_000_000
+
+
+class Widths(NamedTuple):
+    """How far an error may go below and above zero, (m,) each, positive."""
+
+    below: Floats
+    above: Floats
+
+
+@dataclass(frozen=True)
+class Tube:
+    """Net target and bands at stations `x` (m,), sorted; a jump stands twice, inboard (`outboard` False) first.
+
+    `moment` [N·m] and `shear` [N] are G and its slope −G' of the net target; the widths are those of the bands at
+    band use 1.  `total` [N] is the pads' sum (positive), `first_moment` [N·m] the target's own, `jack_x` [m] where
+    the jack stands, so that Σ F_i x_i = total · jack_x.
+    """
+
+    sign: int
+    total: float
+    first_moment: float
+    jack_x: float
+    x: Floats
+    outboard: NDArray[np.bool_]
+    moment: Floats
+    moment_width: Widths
+    moment_unit: Floats
+    shear: Floats
+    shear_width: Widths
+    shear_unit: Floats
+    is_judged: tuple[bool, bool]
+
+    @property
+    def moment_below(self) -> Floats:
+        """Width of the moment band below zero (m,) [N·m]."""
+        return self.moment_width.below
+
+    @property
+    def moment_above(self) -> Floats:
+        """Width of the moment band above zero (m,) [N·m]."""
+        return self.moment_width.above
+
+    @property
+    def shear_below(self) -> Floats:
+        """Width of the shear band below zero (m,) [N]."""
+        return self.shear_width.below
+
+    @property
+    def shear_above(self) -> Floats:
+        """Width of the shear band above zero (m,) [N]."""
+        return self.shear_width.above
+
+    @property
+    def displacement(self) -> float:
+        """First moment that a jack off the resultant adds, D [N·m]."""
+        return self.total * self.jack_x - self.first_moment
+
+    @property
+    def moment_wanted(self) -> Floats:
+        """What P(x) should be (m,): the net target less what reactions answer to the displaced jack."""
+        return self.moment - self.displacement * self.moment_unit
+
+    @property
+    def shear_wanted(self) -> Floats:
+        """What the pads' own shear should be (m,)."""
+        return self.shear - self.displacement * self.shear_unit
+
+    def use(self, pad_x: Floats, force: Floats) -> Floats:
+        """Return the largest error over its band of rigs with pads at `pad_x` (..., n) pulling `force` (..., n) > 0.
+
+        Judged at every station and, both sides, at every pad; the result has the leading shape (...).
+        """
+        lead = pad_x.shape[:-1]
+        flat_x = pad_x.reshape(-1, pad_x.shape[-1])
+        flat_force = np.broadcast_to(force, pad_x.shape).reshape(flat_x.shape)
+        rows = max(1, BLOCK // (flat_x.shape[1] * (self.x.size + flat_x.shape[1])))
+        parts = [
+            self._use_block(flat_x[start : start + rows], flat_force[start : start + rows])
+            for start in range(0, len(flat_x), rows)
+        ]
+        return np.concatenate(parts).reshape(lead) if parts else np.zeros(lead)
+
+    def _use_block(self, pad_x: Floats, force: Floats) -> Floats:
+        moved = (force * pad_x).sum(axis=1) - self.first_moment
+        use = np.zeros(len(pad_x))
+        distance = pad_x[:, None, :] - self.x[None, :, None]
+        own = pad_x[:, None, :] - pad_x[:, :, None]
+        at_pads = self._interpolators(pad_x)
+        if self.is_judged[0]:
+            path = np.einsum("kmn,kn->km", np.maximum(distance, 0.0), force)
+            error = path - self.moment + moved[:, None] * self.moment_unit
+            use = np.maximum(use, _largest(error, *self.moment_width))
+            path = np.einsum("kmn,kn->km", np.maximum(own, 0.0), force)
+            for outboard in (False, True):
+                value, below, above, unit = at_pads("moment", outboard)
+                use = np.maximum(use, _largest(path - value + moved[:, None] * unit, below, above))
+        if self.is_judged[1]:
+            counts = np.where(self.outboard[None, :, None], distance > 0, distance >= 0)
+            error = np.einsum("kmn,kn->km", counts, force) - self.shear + moved[:, None] * self.shear_unit
+            use = np.maximum(use, _largest(error, *self.shear_width))
+            for outboard in (False, True):
+                value, below, above, unit = at_pads("shear", outboard)
+                beyond = np.einsum("kmn,kn->km", own > 0 if outboard else own >= 0, force)
+                use = np.maximum(use, _largest(beyond - value + moved[:, None] * unit, below, above))
+        return use
+
+    def _interpolators(self, pad_x: Floats):  # type: ignore[no-untyped-def]
+        """Return a function that gives target, widths and unit function at the pads, on one side of jumps."""
+
+        def at(values: Floats, outboard: bool) -> Floats:
+            if outboard:
+                return np.interp(pad_x, self.x, values)
+            return np.interp(-pad_x, -self.x[::-1], values[::-1])
+
+        def values(quantity: str, outboard: bool) -> tuple[Floats, Floats, Floats, Floats]:
+            if quantity == "moment":
+                rows = (self.moment, *self.moment_width, self.moment_unit)
+            else:
+                rows = (self.shear, *self.shear_width, self.shear_unit)
+            return at(rows[0], outboard), at(rows[1], outboard), at(rows[2], outboard), at(rows[3], outboard)
+
+        return values
+
+
+def _largest(error: Floats, below: Floats, above: Floats) -> Floats:
+    return np.asarray(np.max(np.where(error < 0, -error / below, error / above), axis=1))
+
+
+def build_tube(target: Target, jack_x: float, count: int, per_pad: int = 40, extra: Floats | None = None) -> Tube:
+    """Return the tube of `target` for `count` pads hung on a jack at `jack_x` [m].
+
+    Stations: `per_pad` a pad, half of them even along the span and half even in ∫√|w| dx, as the pads of a good rig
+    are, with every jump, support, band edge and `extra` station (k,) [m].
+    """
+    specimen = target.brief.specimen
+    sign = 1 if target.resultant >= 0 else -1
+    x, outboard = _stations(target, max(per_pad * count, 600), extra)
+    judged = bands(target)
+    widths = {}
+    for quantity, band in judged.items():
+        inboard_widths, outboard_widths = band.widths(x, "inboard"), band.widths(x, "outboard")
+        below, above = (
+            np.minimum(np.where(outboard, o, i), UNBOUNDED * band.peak)
+            for o, i in zip(outboard_widths, inboard_widths, strict=True)
+        )
+        widths[quantity] = Widths(below, above) if sign > 0 else Widths(above, below)
+    shear = np.where(outboard, target.net.force_beyond(x, "outboard"), target.net.force_beyond(x, "inboard"))
+    shear_unit, moment_unit = np.zeros(x.shape), np.zeros(x.shape)
+    if specimen.supports:
+        at, force = reactions(specimen, 0.0, 1.0)
+        sides: tuple[Side, Side] = ("inboard", "outboard")
+        inboard, outboard_side = (points_beyond(x, at, force, side) for side in sides)
+        shear_unit, moment_unit = np.where(outboard, outboard_side[0], inboard[0]), inboard[1]
+    return Tube(
+        sign=sign,
+        total=sign * target.net.total,
+        first_moment=sign * target.net.first_moment,
+        jack_x=jack_x,
+        x=x,
+        outboard=outboard,
+        moment=sign * target.net.moment_beyond(x),
+        moment_width=widths["moment"],
+        moment_unit=moment_unit,
+        shear=sign * shear,
+        shear_width=widths["shear"],
+        shear_unit=shear_unit,
+        is_judged=(judged["moment"].is_judged, judged["shear"].is_judged),
+    )
+
+
+def _stations(target: Target, count: int, extra: Floats | None) -> tuple[Floats, NDArray[np.bool_]]:
+    specimen = target.brief.specimen
+    left, right = specimen.left, specimen.right
+    even = np.linspace(left, right, count // 2 + 1)
+    fine = np.linspace(left, right, 4 * count + 1)
+    root = np.sqrt(np.abs(target.net.running(fine, "outboard")))
+    grown = np.concatenate([[0.0], np.cumsum((root[1:] + root[:-1]) / 2)])
+    by_load = np.interp(np.linspace(0, grown[-1], count // 2 + 1), grown, fine) if grown[-1] > 0 else even
+    jumps = [target.net.breaks, target.total.breaks, np.array(specimen.supports, dtype=float)]
+    jumps += [band.edges for band in bands(target).values()]
+    jump = np.unique(np.concatenate(jumps))
+    jump = jump[(jump >= left) & (jump <= right)]
+    single = np.concatenate([even, by_load, extra if extra is not None else np.empty(0)])
+    single = np.setdiff1d(single[(single >= left) & (single <= right)], jump)
+    x = np.concatenate([jump, jump, single])
+    outboard = np.concatenate([np.zeros(jump.size, bool), np.ones(jump.size + single.size, bool)])
+    order = np.lexsort((outboard, x))
+    return x[order], outboard[order]
