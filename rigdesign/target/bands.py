@@ -41,7 +41,9 @@ class Band:
     @property
     def edges(self) -> Floats:
         """Stations (k,) at which the band may jump: the ends of the regions that name this quantity."""
-        ends = [end for region in self.acceptance.regions if self._names(region) for end in (region.start_x, region.end_x)]
+        ends = [
+            end for region in self.acceptance.regions if self._names(region) for end in (region.start_x, region.end_x)
+        ]
         return np.unique(np.array(ends, dtype=float))
 
     def _names(self, region: Region) -> bool:

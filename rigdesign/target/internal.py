@@ -22,15 +22,22 @@ def reactions(specimen: Specimen, total: float, first_moment: float) -> tuple[Fl
 
 
 def points_beyond(x: Floats, at: Floats, force: Floats, side: Side) -> tuple[Floats, Floats]:
-    """Shear (n,) [N] and moment (n,) [N·m] at stations x (n,) of point loads `force` (k,) at `at` (k,)."""
+    """Shear (n,) [N] and moment (n,) [N·m] at stations x (n,) of point loads `force` (k,) at `at` (k,).
+
+    The moment is summed from the outermost load inward, so that near it nothing large cancels.
+    """
+    if not at.size:
+        return np.zeros(x.shape), np.zeros(x.shape)
     order = np.argsort(at, kind="stable")
     at, force = at[order], force[order]
-    # sums over all loads from index i on, with a zero for "none left"
-    force_left = np.append(np.cumsum(force[::-1])[::-1], 0.0)
-    first_left = np.append(np.cumsum((force * at)[::-1])[::-1], 0.0)
+    # shear and moment just inboard of each load, with a zero for "none left"
+    shear_at = np.append(np.cumsum(force[::-1])[::-1], 0.0)
+    step = np.diff(at) * shear_at[1:-1]
+    moment_at = np.append(np.cumsum(np.append(step, 0.0)[::-1])[::-1], 0.0)
     first = np.searchsorted(at, x, side="left" if side == "inboard" else "right")
-    shear = force_left[first]
-    return shear, first_left[first] - shear * x
+    distance = np.append(at, 0.0)[first] - x
+    shear = shear_at[first]
+    return shear, moment_at[first] + shear * distance
 
 
 def shear(curve: Curve, specimen: Specimen, x: Floats, side: Side) -> Floats:

@@ -1,0 +1,118 @@
+"""Point loads, and curves as multiples and sums of others."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+
+from rigdesign.target.curve import Curve, Floats, Side
+from rigdesign.target.internal import points_beyond
+
+
+@dataclass(frozen=True)
+class Points:
+    """Point loads: `x` [m] (k,), sorted and distinct, `force` [N] (k,).  See `gathered` for loads in any order."""
+
+    x: Floats
+    force: Floats
+
+    @classmethod
+    def gathered(cls, x: Floats, force: Floats) -> Points:
+        """Return the loads sorted by station, those at one station added up."""
+        stations, place = np.unique(x, return_inverse=True)
+        sums = np.zeros(stations.size)
+        np.add.at(sums, place, force)
+        return cls(stations, sums)
+
+    def running(self, x: Floats, side: Side) -> Floats:
+        """No running load [N/m]."""
+        return np.zeros(x.shape)
+
+    def force_beyond(self, x: Floats, side: Side) -> Floats:
+        """Sum of the loads outboard of x [N]; one at x counts on its inboard side."""
+        return points_beyond(x, self.x, self.force, side)[0]
+
+    def moment_beyond(self, x: Floats) -> Floats:
+        """First moment about x of the loads outboard of x [N·m]."""
+        return points_beyond(x, self.x, self.force, "outboard")[1]
+
+    @property
+    def total(self) -> float:
+        """Sum of the loads [N]."""
+        return float(self.force.sum())
+
+    @property
+    def first_moment(self) -> float:
+        """First moment of the loads about x = 0 [N·m]."""
+        return float((self.force * self.x).sum())
+
+    @property
+    def breaks(self) -> Floats:
+        """Their stations."""
+        return self.x
+
+    @property
+    def points(self) -> tuple[Floats, Floats]:
+        """The loads themselves."""
+        return self.x, self.force
+
+
+@dataclass(frozen=True)
+class Combined:
+    """Σ factor · curve; without parts it is no load at all.
+
+    Examples
+    --------
+    >>> one = Points(np.array([1.5]), np.array([200.0]))
+    >>> both = Combined((one, one), (1.0, -0.25))
+    >>> both.total, both.first_moment
+    (150.0, 225.0)
+    """
+
+    parts: tuple[Curve, ...]
+    factors: tuple[float, ...]
+
+    def running(self, x: Floats, side: Side) -> Floats:
+        """Running load w [N/m]."""
+        return self._sum(x, lambda part: part.running(x, side))
+
+    def force_beyond(self, x: Floats, side: Side) -> Floats:
+        """Sum of the load outboard of x [N]; a point load at x counts on its inboard side."""
+        return self._sum(x, lambda part: part.force_beyond(x, side))
+
+    def moment_beyond(self, x: Floats) -> Floats:
+        """First moment about x of the load outboard of x [N·m]."""
+        return self._sum(x, lambda part: part.moment_beyond(x))
+
+    def _sum(self, x: Floats, of: Callable[[Curve], Floats]) -> Floats:
+        result = np.zeros(x.shape)
+        for part, factor in zip(self.parts, self.factors, strict=True):
+            result += factor * of(part)
+        return result
+
+    @cached_property
+    def total(self) -> float:
+        """Sum of the load [N]."""
+        return float(sum(factor * part.total for part, factor in zip(self.parts, self.factors, strict=True)))
+
+    @cached_property
+    def first_moment(self) -> float:
+        """First moment of the load about x = 0 [N·m]."""
+        return float(sum(factor * part.first_moment for part, factor in zip(self.parts, self.factors, strict=True)))
+
+    @cached_property
+    def breaks(self) -> Floats:
+        """Stations (k,) where w or its slope jumps, of all parts."""
+        return np.unique(np.concatenate([np.empty(0), *(part.breaks for part in self.parts)]))
+
+    @cached_property
+    def points(self) -> tuple[Floats, Floats]:
+        """Point loads of all parts, those at one station added up."""
+        pairs = [(part.points, factor) for part, factor in zip(self.parts, self.factors, strict=True)]
+        x = np.concatenate([np.empty(0), *(at for (at, _), _ in pairs)])
+        force = np.concatenate([np.empty(0), *(factor * own for (_, own), factor in pairs)])
+        gathered = Points.gathered(x, force)
+        return gathered.x, gathered.force
