@@ -1,0 +1,370 @@
+"""Units at the edges: quantities written with their unit become plain SI floats, and SI floats become text for people.
+
+Inside rigdesign everything is a float in N, m, kg, Pa, rad.  A quantity in a brief is a string, "5.4 kN"; a column of
+a table carries its unit in the heading, "x [in]"; a fraction is a percentage, "2 %".  Only the units of the trade are
+known (units.txt).  `lb` is a mass and `lbf` a force, `kg` a mass and `kgf` a force: nothing is guessed between them.
+
+Factors are kept as exact fractions, so "300 mm" and "0.3 m" give the same float, and so do 126 inches written in a
+brief and in a column headed "x [in]".
+
+Depends on: errors, display.
+"""
+
+from __future__ import annotations
+
+import difflib
+import math
+import re
+from collections.abc import Sequence
+from dataclasses import dataclass
+from fractions import Fraction
+from functools import cache
+from importlib import resources
+from typing import TYPE_CHECKING, Any
+
+from rigdesign.display import show as show
+from rigdesign.errors import InputError
+
+if TYPE_CHECKING:
+    import numpy as np
+    from numpy.typing import NDArray
+
+
+@dataclass(frozen=True)
+class Kind:
+    """A kind of quantity: its SI unit as rigdesign writes it, and an example as a brief writes it."""
+
+    name: str
+    unit: str
+    example: str
+
+    @property
+    def article(self) -> str:
+        """The kind with its article, for messages: "a force", "an angle"."""
+        return "a percentage" if self.unit == "%" else ("an " if self.name[0] in "aeiou" else "a ") + self.name
+
+    @property
+    def accepted(self) -> str:
+        """What is accepted, for messages."""
+        if self.unit == "%":
+            return f'a percentage, such as "{self.example}"'
+        return f'a number with a unit of {self.name}, such as "{self.example}"'
+
+
+KINDS = {
+    kind.name: kind
+    for kind in (
+        Kind("length", "m", "1.2 m"),
+        Kind("force", "N", "5.4 kN"),
+        Kind("mass", "kg", "12 kg"),
+        Kind("mass per length", "kg/m", "7.5 kg/m"),
+        Kind("running load", "N/m", "1.8 kN/m"),
+        Kind("moment", "N*m", "50 N*m"),
+        Kind("pressure", "Pa", "60 kPa"),
+        Kind("angle", "rad", "5 deg"),
+        Kind("time", "s", "3 s"),
+        Kind("fraction", "%", "2 %"),
+    )
+}
+"""Every kind of quantity that a brief or a table can hold, by name."""
+
+NUMBER = r"[+\-−]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+\-−]?[0-9]+)?"
+"""A number as a brief may write it: digits, a decimal point, a power of ten; no spaces or commas within."""
+
+_QUANTITY = re.compile(rf"\s*({NUMBER})\s*(.*?)\s*", re.DOTALL)
+_FACTOR = re.compile(r"([A-Za-z]+)(?:(?:\^|\*\*)?([1-9]))?")
+_HEADING = re.compile(r"\s*([^\[\]]*?)\s*(?:\[\s*([^\[\]]*?)\s*\])?\s*")
+_SIGNS = str.maketrans(dict[str, str | int | None]({"·": "*", "⋅": "*", "×": "*", "²": "^2", "³": "^3", "°": "deg"}))
+_GLUED = {"Nm": "N*m", "kNm": "kN*m", "MNm": "MN*m", "Nmm": "N*mm"}
+# full names and shop spellings: not accepted, so that a brief reads the same everywhere, but answered
+_SPELLED_OUT = {
+    **dict.fromkeys(("inch", "inches", "ins", '"', "″"), "in"),
+    **dict.fromkeys(("foot", "feet", "'", "′"), "ft"),
+    **dict.fromkeys(("metre", "metres", "meter", "meters"), "m"),
+    **dict.fromkeys(("millimetre", "millimetres", "millimeter", "millimeters"), "mm"),
+    **dict.fromkeys(("newton", "newtons"), "N"),
+    **dict.fromkeys(("kilonewton", "kilonewtons"), "kN"),
+    **dict.fromkeys(("kips",), "kip"),
+    **dict.fromkeys(("lbs", "pound", "pounds"), "lb (mass) or lbf (force)"),
+    **dict.fromkeys(("kgs", "kilo", "kilos", "kilogram", "kilograms"), "kg (mass) or kgf (force)"),
+    **dict.fromkeys(("plf",), "lbf/ft"),
+    **dict.fromkeys(("pli",), "lbf/in"),
+    **dict.fromkeys(("degree", "degrees"), "deg"),
+}
+_MASS_AND_FORCE = (("lb", "lbf"), ("kg", "kgf"))
+# beyond these the exact product is pointless and its integers would be huge
+_EXACT_FROM, _EXACT_TO = 1e-60, 1e60
+
+Dimensions = tuple[tuple[str, int], ...]
+
+
+@cache
+def _registry() -> Any:
+    """The pint registry of units.txt, loaded when the first unit is met."""
+    import pint
+
+    registry: Any = pint.UnitRegistry(None, non_int_type=Fraction, cache_folder=None)
+    registry.load_definitions(resources.files("rigdesign").joinpath("units.txt").read_text("utf-8").splitlines())
+    return registry
+
+
+@cache
+def unit_names() -> tuple[str, ...]:
+    """Return the name of every known unit, sorted."""
+    # asked once: pint adds plurals to its own list as it meets them
+    return tuple(sorted(_registry()))
+
+
+@cache
+def unit_factor(unit: str) -> tuple[Fraction, Dimensions]:
+    """Return what one `unit` is in SI, exactly, and its dimensions.
+
+    Products are written "N*m", "N·m", "ft-lbf" or "Nm", quotients "lbf/in", powers "m^2", "m²" or "m2".
+
+    Raises
+    ------
+    InputError
+        If it is no known unit; the nearest one is offered.
+
+    Examples
+    --------
+    >>> unit_factor("psi")[0] == Fraction("4.4482216152605") / Fraction("0.0254") ** 2
+    True
+    """
+    canonical, registry = _canonical(unit), _registry()
+    factor, base = registry.get_base_units(registry.parse_units(canonical))
+    dimensions = tuple(sorted((name, int(power)) for name, power in base.dimensionality.items()))
+    return Fraction(factor), dimensions
+
+
+def _canonical(unit: str) -> str:
+    """Return `unit` as pint reads it, each name checked against the list of known ones."""
+    text = unit.translate(_SIGNS).strip()
+    # a hyphen, a full stop or a space between names is a product too: ft-lbf, kN.m, lbf ft
+    text = re.sub(r"(?<=[A-Za-z0-9])\s*[-. ]\s*(?=[A-Za-z])", "*", re.sub(r"\s*([*/^])\s*", r"\1", text))
+    above, slash, below = text.partition("/")
+    names = [name for part in above.replace("**", "^").split("*") for name in _factors(part, unit)]
+    quotient = _factors(below, unit) if slash else []
+    if len(quotient) > 1:
+        raise InputError("a unit has one division and one unit below it", value=f'"{unit}"', limit='such as "N/m"')
+    return "*".join(names) + "".join(f"/({name})" for name in quotient)
+
+
+def _factors(part: str, unit: str) -> list[str]:
+    """Return the factors of one part of a unit, glued ones taken apart; raise InputError on an unknown name."""
+    match = _FACTOR.fullmatch(part)
+    if match is None:
+        hint = _SPELLED_OUT.get(part)
+        remedy = f"write {hint}" if hint else ""
+        raise InputError("this is no unit", value=f'"{unit}"', limit='a unit such as "kN" or "lbf/in"', remedy=remedy)
+    name, power = match.groups()
+    if name in _GLUED and not power:
+        return _GLUED[name].split("*")
+    if name not in unit_names():
+        raise InputError(f'"{name}" is no known unit', value="" if name == unit else f'"{unit}"', remedy=_nearest(name))
+    return [f"{name}**{power}" if power else name]
+
+
+def _nearest(name: str) -> str:
+    """Return the advice that goes with an unknown unit's name."""
+    known = unit_names()
+    if name in _SPELLED_OUT or name.lower() in _SPELLED_OUT:
+        return f"write {_SPELLED_OUT.get(name) or _SPELLED_OUT[name.lower()]}"
+    same = [other for other in known if other.lower() == name.lower()]
+    near = same or difflib.get_close_matches(name, known, n=1, cutoff=0.5)
+    if near:
+        return f"did you mean {' or '.join(near)}?"
+    return f"the known units are {', '.join(sorted(known, key=str.lower))}, and products and quotients of them"
+
+
+def exact_factor(unit: str, kind: str, where: str = "", value: str = "") -> Fraction:
+    """Return what one `unit` is in the SI unit of `kind`, exactly; `where` and `value` are for the message.
+
+    Raises
+    ------
+    InputError
+        If the unit is missing, unknown, or not one of this kind.
+
+    Examples
+    --------
+    >>> float(exact_factor("lbf/in", "running load"))
+    175.1268352464764
+    """
+    wanted = KINDS[kind]
+    if kind == "fraction" and unit == "%":
+        return Fraction(1, 100)
+    try:
+        if kind == "fraction" or unit == "%":
+            raise InputError(f"{wanted.article} is due, and the unit is {unit}", limit=wanted.accepted)
+        factor, dimensions = unit_factor(unit)
+        if dimensions != unit_factor(wanted.unit)[1]:
+            raise _wrong_kind(unit, dimensions, wanted)
+    except InputError as error:
+        limit = error.limit or wanted.accepted
+        raise InputError(
+            error.what, where=where, value=value or error.value, limit=limit, remedy=error.remedy
+        ) from None
+    return factor
+
+
+def _wrong_kind(unit: str, dimensions: Dimensions, wanted: Kind) -> InputError:
+    """Return the error for a unit of another kind; pounds and kilograms of mass and of force get their own advice."""
+    due = unit_factor(wanted.unit)[1]
+    measured = [kind for kind in KINDS.values() if kind.unit != "%" and unit_factor(kind.unit)[1] == dimensions]
+    found = f"a unit of {measured[0].name}" if measured else "another kind of unit"
+    remedy = ""
+    for mass, force in _MASS_AND_FORCE:
+        for written, other, meaning in ((mass, force, "mass"), (force, mass, "force")):
+            replaced = re.sub(rf"\b{written}\b", other, unit)
+            if replaced != unit and unit_factor(replaced)[1] == due:
+                remedy = f"{written} is always a {meaning}; if {other} is meant, write {replaced}"
+    return InputError(f"{wanted.article} is due, and {unit} is {found}", limit=wanted.accepted, remedy=remedy)
+
+
+def quantity(value: object, kind: str, where: str = "") -> float:
+    """Return a quantity written with its unit as an SI float.
+
+    Parameters
+    ----------
+    value
+        What the file holds; a string with one number and one unit, such as "5.4 kN".  A fraction is a percentage.
+    kind
+        A name of `KINDS`.
+    where
+        The place in the file, for the message.
+
+    Raises
+    ------
+    InputError
+        If it is a bare number, empty, not finite, an arithmetic expression, or of another kind.
+
+    Examples
+    --------
+    >>> quantity("5.4 kN", "force"), quantity("12 in", "length"), quantity("2 %", "fraction")
+    (5400.0, 0.3048, 0.02)
+    """
+    number, unit = _number_and_unit(value, KINDS[kind], where)
+    if not unit:
+        raise _bare(number, KINDS[kind], where)
+    return _scale(number, exact_factor(unit, kind, where, f'"{value}"'), str(value), where)
+
+
+def _number_and_unit(value: object, kind: Kind, where: str) -> tuple[str, str]:
+    """Split "5.4 kN" into number and unit, the unit maybe empty; raise InputError where it is no quantity at all."""
+    if isinstance(value, int | float) and not isinstance(value, bool):
+        raise _bare(repr(value), kind, where)
+    limit = kind.accepted
+    if not isinstance(value, str):
+        raise InputError(f"{kind.article} with its unit is due", where=where, value=_shown(value), limit=limit)
+    if not value.strip():
+        raise InputError(f"{kind.article} with its unit is due, and this is empty", where=where, limit=limit)
+    match = _QUANTITY.fullmatch(value)
+    if match is None:
+        raise InputError(f"{kind.article} is one number and its unit", where=where, value=f'"{value}"', limit=limit)
+    number, unit = match.groups()
+    if re.match(r",\s*[0-9]", unit):
+        what = f"{kind.article} is one number and its unit, with a decimal point and no commas"
+        raise InputError(what, where=where, value=f'"{value}"', limit=limit)
+    if unit[:1] in tuple("+-−*/^(=") or re.search(r"(?<![A-Za-z^*])[0-9]|[+()=]", unit):
+        what = f"{kind.article} is one number and one unit; nothing is calculated here"
+        raise InputError(what, where=where, value=f'"{value}"', limit=limit)
+    return number.replace("−", "-"), unit
+
+
+def _bare(number: str, kind: Kind, where: str) -> InputError:
+    """Return the error for a number without its unit."""
+    missing = "per cent sign" if kind.name == "fraction" else "unit"
+    what = f"{kind.article} is due with its {missing}, and this is a bare number"
+    return InputError(what, where=where, value=number, limit=kind.accepted)
+
+
+def _shown(value: object) -> str:
+    """A value of a file for a message, in the file's own words and not too long."""
+    text = {True: "true", False: "false"}.get(value, repr(value)) if isinstance(value, bool) else repr(value)
+    return text if len(text) <= 60 else text[:57] + "..."
+
+
+def _scale(number: str, factor: Fraction, written: str, where: str) -> float:
+    """Return number times factor, rounded once."""
+    plain = float(number)
+    if _EXACT_FROM < abs(plain) < _EXACT_TO:
+        return float(Fraction(number) * factor)
+    result = plain * float(factor)
+    if not math.isfinite(result):
+        raise InputError("the number is not finite", where=where, value=f'"{written}"')
+    return result
+
+
+def quantities(value: object, kind: str, where: str = "") -> NDArray[np.float64]:
+    """Return several quantities as an SI array (n,): a list of strings, or one string such as "0.30, 0.61, 0.95 m".
+
+    In one string, either the last number alone carries the unit, which then holds for all, or each number carries its
+    own.  Raises InputError as `quantity` does, and for an empty list.
+
+    Examples
+    --------
+    >>> quantities("0.30, 0.61, 0.95 m", "length").tolist()
+    [0.3, 0.61, 0.95]
+    >>> quantities(["12 in", "0.5 m"], "length").tolist()
+    [0.3048, 0.5]
+    """
+    import numpy as np
+
+    wanted = KINDS[kind]
+    items: Sequence[object]
+    if isinstance(value, str):
+        items = value.split(",")
+    elif isinstance(value, list | tuple):
+        items = value
+    else:
+        items = [value]  # a bare number: answered as one
+    if not items or items == [""]:
+        raise InputError(f"at least one {kind} is due, and this is empty", where=where)
+    split = [_number_and_unit(item, wanted, where) for item in items]
+    units = [unit for _, unit in split]
+    if isinstance(value, str) and units[-1] and not any(units[:-1]):
+        units = [units[-1]] * len(units)
+    for (number, _), unit in zip(split, units, strict=True):
+        if not unit:
+            raise _bare(number, wanted, where)
+    written = [f"{number} {unit}" for (number, _), unit in zip(split, units, strict=True)]
+    factors = [exact_factor(unit, kind, where, f'"{text}"') for unit, text in zip(units, written, strict=True)]
+    parts = zip(split, factors, written, strict=True)
+    return np.array([_scale(number, factor, text, where) for (number, _), factor, text in parts])
+
+
+def split_heading(heading: str) -> tuple[str, str | None]:
+    """Split a column's heading into name and unit, None where it carries none.
+
+    Examples
+    --------
+    >>> split_heading("moment [in*lbf]"), split_heading("note")
+    (('moment', 'in*lbf'), ('note', None))
+    """
+    match = _HEADING.fullmatch(heading)
+    return (match.group(1), match.group(2) or None) if match else (heading.strip(), None)
+
+
+def column_factor(heading: str, kind: str, where: str = "") -> float:
+    """Return what one in a column headed "x [in]" is in SI; raise InputError without a unit or with another kind's.
+
+    Examples
+    --------
+    >>> column_factor("x [in]", "length")
+    0.0254
+    """
+    return float(column_fraction(heading, kind, where))
+
+
+def column_fraction(heading: str, kind: str, where: str = "") -> Fraction:
+    """Like `column_factor`, exactly; for `scaled`."""
+    name, unit = split_heading(heading)
+    if unit is None:
+        limit = f'a unit of {kind} in brackets, such as "{name} [{KINDS[kind].unit}]"'
+        raise InputError("the heading carries no unit", where=where, value=f'"{heading.strip()}"', limit=limit)
+    return exact_factor(unit, kind, where, f'"{heading.strip()}"')
+
+
+def scaled(values: NDArray[np.float64], factor: Fraction) -> NDArray[np.float64]:
+    """Return a column (n,) in SI; whole numerator and denominator are used so that 700 mm is 0.7 m to the last digit."""
+    return values * float(factor.numerator) / float(factor.denominator)
