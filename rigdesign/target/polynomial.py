@@ -15,6 +15,7 @@ from dataclasses import dataclass
 from functools import cached_property
 
 import numpy as np
+from numpy.typing import NDArray
 
 from rigdesign.target.curve import Floats, Side
 
@@ -65,7 +66,7 @@ class Polynomials:
         own = h * h * (self.a0 / 2 + h * (self.a1 / 6 + h * (self.a2 / 12)))
         return np.append(np.cumsum((own + self._force_at[1:] * h)[::-1])[::-1], 0.0)
 
-    def _piece(self, x: Floats, side: Side) -> tuple[np.ndarray, Floats]:
+    def _piece(self, x: Floats, side: Side) -> tuple[NDArray[np.intp], Floats]:
         """Piece of each station and the distance from its outboard end; stations off the pieces go to the ends."""
         found = np.searchsorted(self.x, x, side="left" if side == "inboard" else "right") - 1
         piece = np.clip(found, 0, self.a0.size - 1)
