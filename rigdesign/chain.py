@@ -1,0 +1,158 @@
+"""From a brief to a checked rig, in one call: the stages in their order, and what connects them.
+
+    design   brief  →  target  →  pads  →  levers  →  check
+    study    the same for several numbers of pads
+    assess   a rig that exists, with other holes or against another target
+
+Depends on: brief, target, pads, levers, checks.  `rigdesign.report` and `rigdesign.command` depend on it.  Like the
+stages it knows no files, pictures or terminal; progress is told to a callback `progress(part, words)`, part in 0..1.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterable
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+from rigdesign.findings import Refusal
+
+if TYPE_CHECKING:
+    from pathlib import Path
+
+    from rigdesign.brief.model import Brief
+    from rigdesign.checks.model import Check
+    from rigdesign.levers.model import Rig
+    from rigdesign.target.model import Target
+
+Progress = Callable[[float, str], None]
+
+MORE_PADS = 4
+"""With `count = "fewest"`, so many more pads are tried at most when what drilling costs breaks a band."""
+
+_PADS_PART = 0.6  # of the whole work, as progress shows it: choosing pads takes longer than levers and check
+
+
+@dataclass(frozen=True)
+class StudyRow:
+    """One number of pads and what came of it: a checked rig, or the refusal that says why there is none."""
+
+    pads: int
+    answer: Check | Refusal
+
+    @property
+    def accepted(self) -> bool:
+        """Whether there is a rig and its check accepts it."""
+        return not isinstance(self.answer, Refusal) and self.answer.accepted
+
+
+@dataclass(frozen=True)
+class Study:
+    """Rigs for several numbers of pads, in their order."""
+
+    brief: Brief
+    rows: tuple[StudyRow, ...]
+
+    @property
+    def fewest(self) -> StudyRow | None:
+        """The accepted row with the fewest pads, None where no row is accepted."""
+        return min((row for row in self.rows if row.accepted), key=lambda row: row.pads, default=None)
+
+
+def design(brief: Brief, progress: Progress | None = None) -> Check | Refusal:
+    """Return the checked rig for a brief, or the refusal that says which limit leaves none.
+
+    With `count = "fewest"` the pads stage says how many the bands need before drilling.  Where the drilled rig then
+    breaks a band, up to `MORE_PADS` more pads are tried, and the best answer is returned.
+
+    Raises
+    ------
+    InputError
+        Where the brief contradicts itself in a way that only its target shows, such as a total of zero.
+    """
+    from rigdesign.target import build_target
+
+    target = build_target(brief)
+    first = _design(target, None, progress)
+    if brief.pads.count != "fewest" or isinstance(first, Refusal) or first.accepted:
+        return first
+    best = first
+    for count in range(first.rig.plan.n_pads + 1, first.rig.plan.n_pads + 1 + MORE_PADS):
+        answer = _design(target, count, progress)
+        if isinstance(answer, Refusal):
+            break
+        if answer.accepted:
+            return answer
+        if answer.band_use < best.band_use:
+            best = answer
+    return best
+
+
+def _design(target: Target, count: int | None, progress: Progress | None) -> Check | Refusal:
+    """One rig for one number of pads, None for what the brief says."""
+    from rigdesign.checks import check
+    from rigdesign.levers import build_rig
+    from rigdesign.pads import plan_pads
+
+    plan = plan_pads(target, count, _share(progress, 0.0, _PADS_PART))
+    if isinstance(plan, Refusal):
+        return plan
+    rig = build_rig(plan, _share(progress, _PADS_PART, 1.0))
+    return rig if isinstance(rig, Refusal) else check(rig)
+
+
+def _share(progress: Progress | None, start: float, end: float) -> Progress | None:
+    """Return a callback that fills the part of the whole work from start to end."""
+    if progress is None:
+        return None
+    return lambda part, words: progress(start + part * (end - start), words)
+
+
+def study(brief: Brief, counts: Iterable[int], progress: Progress | None = None) -> Study:
+    """Return the rigs for each number of pads in `counts`, everything else as the brief says.
+
+    Raises
+    ------
+    ValueError
+        If `counts` is empty or holds a number below 1.
+    """
+    from rigdesign.target import build_target
+
+    wanted = sorted(set(counts))
+    if not wanted or wanted[0] < 1:
+        raise ValueError("numbers of pads must be 1 or more, and at least one must be given")
+    target = build_target(brief)
+    rows = []
+    for done, count in enumerate(wanted):
+        part = _share(progress, done / len(wanted), (done + 1) / len(wanted))
+        named = None if part is None else _named(part, f"{count} pads")
+        rows.append(StudyRow(count, _design(target, count, named)))
+    return Study(brief, tuple(rows))
+
+
+def _named(progress: Progress, name: str) -> Progress:
+    return lambda part, words: progress(part, f"{name}: {words}")
+
+
+def assess(rig: Rig, holes: Path | None = None, brief: Brief | None = None) -> Check:
+    """Return the check of a rig that exists: as it is, with other holes, against another brief's target, or both.
+
+    Parameters
+    ----------
+    rig
+        The rig, as `read_rig` gives it.
+    holes
+        A table of holes (the layout of holes.csv) to take instead of the rig's own.
+    brief
+        A brief to take instead of the rig's own: its target, bands and limits.
+
+    Raises
+    ------
+    TableError
+        Where the table of holes cannot be used.
+    """
+    from rigdesign.checks import check, check_with_holes, recheck
+
+    if brief is not None:
+        checked = recheck(rig, brief)
+        return check_with_holes(checked.rig, holes) if holes is not None else checked
+    return check_with_holes(rig, holes) if holes is not None else check(rig)

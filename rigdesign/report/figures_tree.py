@@ -1,0 +1,162 @@
+"""The tree in elevation: pads at their true stations, levers tier by tier, every number in a mark of its kind."""
+
+from __future__ import annotations
+
+from matplotlib.axes import Axes
+from matplotlib.figure import Figure
+from matplotlib.patches import Rectangle
+
+from rigdesign.checks.model import Check
+from rigdesign.report.figures_parts import MARK, arrow, directions, holes, mark, specimen_strip
+from rigdesign.report.figures_sheet import GREY, INK, new_sheet, paper, spread, styled, text_width
+from rigdesign.report.scales import System, scale
+from rigdesign.report.tree_layout import (
+    FAR_SIDE,
+    FOOT,
+    HEAD,
+    JACK_ARROW,
+    MARGIN,
+    Bar,
+    Label,
+    Layout,
+    plan_sheet,
+)
+
+SPECIMEN_DEPTH = 6.0
+"""Depth of the specimen's strip on the sheet [mm]."""
+
+
+@styled
+def elevation(check: Check, system: System = "SI") -> Figure:
+    """Return the sheet of the tree of a checked rig (one jack): A4 to 12 pads, A3 to 40, longer beyond."""
+    layout = plan_sheet(check, system)
+    plan = check.rig.plan
+    tree = check.rig.trees[0]
+    title = f"{plan.target.brief.title}: the tree"
+    jack = f"{layout.frame.loads.show(tree.force)} {layout.frame.loads.unit}"
+    place = scale("length", 1.0, system)
+    words = (
+        f"{_counted(plan.n_pads, 'pad')}, {_counted(len(tree.pieces), 'lever')}, "
+        f"jack {jack} at x = {place.show(tree.jack.x)} {place.unit}; seen along the y axis, "
+        "stations to scale, heights not"
+    )
+    figure = new_sheet(layout.size, title, words)
+    axes = paper(figure)
+    side = _Side(check, layout)
+    low, high = sorted((side.y(0.0), side.y(-SPECIMEN_DEPTH)))
+    specimen_strip(axes, plan.target.brief, layout.frame.at, low, high)
+    _pads(axes, check, layout, side, system)
+    for bar in layout.bars:
+        _lever(axes, bar, layout, side)
+    _jack(axes, layout, side, f"jack {jack}, {_action(check)}", check)
+    _key(axes, layout, system)
+    directions(axes, layout.size[0] - 28.0, layout.size[1] - 20.0)
+    return figure
+
+
+def _counted(number: int, word: str) -> str:
+    return f"{number} {word}" if number == 1 else f"{number} {word}s"
+
+
+class _Side:
+    """Turns reach into a height on the paper: the tree is above the specimen or below it."""
+
+    def __init__(self, check: Check, layout: Layout) -> None:
+        pull = check.rig.plan.target.brief.pads.action == "pull"
+        self.up = 1.0 if (check.rig.trees[0].force > 0) == pull else -1.0
+        used = FAR_SIDE + layout.jack_reach + JACK_ARROW
+        spare = max(0.0, layout.size[1] - HEAD - FOOT - used) / 2
+        low = FOOT + spare
+        self.face = low + FAR_SIDE if self.up > 0 else low + JACK_ARROW + layout.jack_reach
+
+        self.edge = "top" if self.up > 0 else "bottom"
+
+    def y(self, reach: float) -> float:
+        return self.face + self.up * reach
+
+
+def _pads(axes: Axes, check: Check, layout: Layout, side: _Side, system: System) -> None:
+    rig, frame = check.rig, layout.frame
+    half = rig.plan.target.brief.pads.length / 2 * frame.mm_per_m
+    place = scale("length", 1.0, system)
+    line = frame.line + 0.5
+    written = spread(list(layout.pad_x), line, line / 2 + 1.0, layout.size[0] - line / 2 - 1.0)
+    tops = _hanging_from(layout)
+    forces = [frame.loads.show(float(force)) for force in check.statics.pad_force]
+    near = -SPECIMEN_DEPTH - 3.0
+    far = near - 2.0 - max(text_width(text, frame.font) for text in forces)
+    _row_heads(axes, side, (near, far), (f"F [{frame.loads.unit}]", f"x [{place.unit}]"))
+    for k, x in enumerate(layout.pad_x):
+        low, high = sorted((side.y(0.0), side.y(1.4)))
+        axes.add_patch(Rectangle((x - half, low), 2 * half, high - low, facecolor=INK, edgecolor=INK, linewidth=0.4))
+        height = 3.0 + MARK / 2 + layout.pad_rows[k] * (MARK + 0.8)
+        top = tops.get(f"pad {k + 1}", layout.jack_reach)
+        axes.plot([x, x], [side.y(1.4), side.y(top)], color=INK, linewidth=0.7, zorder=2)
+        mark(axes, "pad", k + 1, x, side.y(height))
+        axes.plot([x, written[k]], [side.y(-SPECIMEN_DEPTH), side.y(near + 0.4)], color=GREY, linewidth=0.4)
+        for text, reach in ((forces[k], near), (place.show(float(rig.pad_x[k])), far)):
+            axes.text(written[k], side.y(reach), text, size=frame.font, rotation=90, ha="center", va=side.edge)
+
+
+def _row_heads(axes: Axes, side: _Side, reaches: tuple[float, float], heads: tuple[str, str]) -> None:
+    """Say at the left margin what the two rows of numbers under the pads are."""
+    for reach, head in zip(reaches, heads, strict=True):
+        axes.text(2.5, side.y(reach), head, size=7, ha="left", va=side.edge, color=INK)
+
+
+def _hanging_from(layout: Layout) -> dict[str, float]:
+    """Reach of the hole that each pad or lever hangs in, by its name."""
+    return {name: bar.reach for bar in layout.bars for name, _ in bar.ends}
+
+
+def _lever(axes: Axes, bar: Bar, layout: Layout, side: _Side) -> None:
+    places = [x for _, x in bar.ends]
+    y = side.y(bar.reach)
+    axes.plot([min(places), max(places)], [y, y], color=INK, linewidth=1.8, solid_capstyle="round", zorder=3)
+    holes(axes, places, y)
+    top = _hanging_from(layout).get(f"lever {bar.number}", layout.jack_reach)
+    axes.plot([bar.pivot_x, bar.pivot_x], [y, side.y(top)], color=INK, linewidth=0.7, zorder=2)
+    mark(axes, "lever", bar.number, bar.pivot_x, y)
+    for label in bar.labels:
+        _text(axes, label, side, layout.frame.font)
+
+
+def _text(axes: Axes, label: Label, side: _Side, font: float) -> None:
+    axes.text(
+        label.x, side.y(label.reach), label.text, size=font, rotation=90 if label.upright else 0,
+        ha="center", va="center", color=INK, zorder=6,
+    )  # fmt: skip
+
+
+def _action(check: Check) -> str:
+    way = "up" if check.rig.trees[0].force > 0 else "down"
+    return f"{check.rig.plan.target.brief.pads.action}ing {way}"
+
+
+def _jack(axes: Axes, layout: Layout, side: _Side, words: str, check: Check) -> None:
+    y = side.y(layout.jack_reach)
+    up = 1.0 if check.rig.trees[0].force > 0 else -1.0
+    tail, head = sorted((y + side.up * MARK, y + side.up * (MARK + 8.0)), reverse=up < 0)
+    arrow(axes, (layout.jack_x, tail), (layout.jack_x, head), 1.2)
+    mark(axes, "jack", 1, layout.jack_x, y)
+    right = layout.jack_x < layout.size[0] * 0.7
+    shift = MARK if right else -MARK
+    axes.text(layout.jack_x + shift, y, words, size=8, weight="bold", ha="left" if right else "right", va="center")
+
+
+def _key(axes: Axes, layout: Layout, system: System) -> None:
+    y = FOOT - 9.5
+    loads, arms, length = layout.frame.loads.unit, layout.frame.arms.unit, scale("length", 1.0, system).unit
+    items = [("pad", "pad"), ("lever", "lever, at its pivot"), ("jack", "jack")]
+    x = MARGIN
+    for kind, words in items:
+        mark(axes, kind, 1, x, y)
+        axes.text(x + 4.0, y, words, size=7, va="center")
+        x += 11.0 + 1.45 * len(words)
+    axes.plot([x - 1.5, x + 3.0], [y, y], color=INK, linewidth=1.8)
+    holes(axes, [x - 1.5, x + 3.0], y)
+    words = (
+        f"at a lever: arms to its end holes A and B [{arms}], then its load [{loads}]    "
+        f"at a pad: its force [{loads}], then its x [{length}]"
+    )
+    axes.text(x + 6.0, y, words, size=7, va="center")
