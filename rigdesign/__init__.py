@@ -1,1 +1,75 @@
-"""rigdesign."""
+"""rigdesign: whiffletrees for structural tests, from one brief to a checked lever tree.
+
+    import rigdesign
+
+    brief = rigdesign.read_brief("brief.toml")
+    answer = rigdesign.design(brief)                  # a Check, or a Refusal that says what leaves no rig
+    rigdesign.write(answer, "brief_rig")
+
+The words are those of the command: `build_target`, `design`, `study`, `assess`, `write`, `read_rig`.  Importing this
+package loads nothing heavy; each name is fetched from its stage when it is first used.
+"""
+
+from __future__ import annotations
+
+from importlib import import_module
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from rigdesign.brief import read_brief
+    from rigdesign.chain import Study, assess, design, study
+    from rigdesign.checks.model import Check
+    from rigdesign.errors import BriefError, InputError, OutputError, RigdesignError, TableError
+    from rigdesign.findings import Finding, Refusal
+    from rigdesign.report.writing import read_rig, write
+    from rigdesign.target import build_target
+
+__version__ = "0.1.0"
+
+__all__ = [
+    "BriefError",
+    "Check",
+    "Finding",
+    "InputError",
+    "OutputError",
+    "Refusal",
+    "RigdesignError",
+    "Study",
+    "TableError",
+    "__version__",
+    "assess",
+    "build_target",
+    "design",
+    "read_brief",
+    "read_rig",
+    "study",
+    "write",
+]
+
+_HOME = {
+    "read_brief": "rigdesign.brief",
+    "build_target": "rigdesign.target",
+    "design": "rigdesign.chain",
+    "study": "rigdesign.chain",
+    "assess": "rigdesign.chain",
+    "Study": "rigdesign.chain",
+    "write": "rigdesign.report.writing",
+    "read_rig": "rigdesign.report.writing",
+    "Check": "rigdesign.checks.model",
+    "Finding": "rigdesign.findings",
+    "Refusal": "rigdesign.findings",
+    **dict.fromkeys(("BriefError", "InputError", "OutputError", "RigdesignError", "TableError"), "rigdesign.errors"),
+}
+
+
+def __getattr__(name: str) -> object:
+    """Fetch a public name from its stage when it is first used."""
+    if name not in _HOME:
+        raise AttributeError(f"module 'rigdesign' has no attribute {name!r}")
+    value: object = getattr(import_module(_HOME[name]), name)
+    globals()[name] = value
+    return value
+
+
+def __dir__() -> list[str]:
+    return sorted(__all__)

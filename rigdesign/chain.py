@@ -71,9 +71,13 @@ def design(brief: Brief, progress: Progress | None = None) -> Check | Refusal:
     """
     from rigdesign.target import build_target
 
-    target = build_target(brief)
+    return design_target(build_target(brief), progress)
+
+
+def design_target(target: Target, progress: Progress | None = None) -> Check | Refusal:
+    """Like `design`, for a target that has been built already."""
     first = _design(target, None, progress)
-    if brief.pads.count != "fewest" or isinstance(first, Refusal) or first.accepted:
+    if target.brief.pads.count != "fewest" or isinstance(first, Refusal) or first.accepted:
         return first
     best = first
     for count in range(first.rig.plan.n_pads + 1, first.rig.plan.n_pads + 1 + MORE_PADS):
@@ -117,16 +121,20 @@ def study(brief: Brief, counts: Iterable[int], progress: Progress | None = None)
     """
     from rigdesign.target import build_target
 
+    return study_target(build_target(brief), counts, progress)
+
+
+def study_target(target: Target, counts: Iterable[int], progress: Progress | None = None) -> Study:
+    """Like `study`, for a target that has been built already."""
     wanted = sorted(set(counts))
     if not wanted or wanted[0] < 1:
         raise ValueError("numbers of pads must be 1 or more, and at least one must be given")
-    target = build_target(brief)
     rows = []
     for done, count in enumerate(wanted):
         part = _share(progress, done / len(wanted), (done + 1) / len(wanted))
         named = None if part is None else _named(part, f"{count} pads")
         rows.append(StudyRow(count, _design(target, count, named)))
-    return Study(brief, tuple(rows))
+    return Study(target.brief, tuple(rows))
 
 
 def _named(progress: Progress, name: str) -> Progress:

@@ -1,1 +1,82 @@
-"""Stage: command."""
+"""Stage: command.  The `rigdesign` command: arguments in, files, words on the terminal and an exit code out.
+
+    design BRIEF    from a brief to a rig folder
+    study BRIEF     the same for several numbers of pads, as a table and a picture
+    assess RIG      a rig that exists, with other holes or against another brief
+    target BRIEF    what the brief asks for, in words and in a picture, before anything is designed
+    schema          the JSON Schema of the brief
+
+In: the command line.  Out: the exit code: 0 accepted, 1 a matter of limits (not accepted, or no rig at all), 2 bad
+input or an output that cannot be written, 130 interrupted.  Depends on every stage, and is the only one that prints,
+draws progress or ends the process.  Heavy libraries are imported inside the commands that need them, so that
+`rigdesign --help` answers at once.
+"""
+
+from __future__ import annotations
+
+import os
+import signal
+import sys
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
+from types import FrameType
+
+ACCEPTED, LIMITS, BAD_INPUT, INTERRUPTED = 0, 1, 2, 130
+
+
+def main() -> None:
+    """Run the command and end the process with its exit code."""
+    sys.exit(run(sys.argv[1:]))
+
+
+def run(arguments: Sequence[str]) -> int:
+    """Run the command with these arguments and return its exit code; one plain message for whatever stops it."""
+    import click
+
+    from rigdesign.command.commands import rigdesign
+    from rigdesign.command.session import Session
+    from rigdesign.errors import RigdesignError
+
+    session = Session()
+    try:
+        with _termination_interrupts():
+            code = rigdesign(args=list(arguments), prog_name="rigdesign", standalone_mode=False, obj=session)
+            sys.stdout.flush()
+        return code if isinstance(code, int) else ACCEPTED
+    except RigdesignError as error:
+        _complain(str(error))
+        return BAD_INPUT
+    except click.ClickException as error:
+        _complain(f"{error.format_message().rstrip('.')}; see rigdesign {session.name_for_help}--help")
+        return BAD_INPUT
+    except (KeyboardInterrupt, click.Abort):
+        written = f"{session.written} had been written" if session.written else "nothing was written"
+        _complain(f"interrupted; {written}")
+        return INTERRUPTED
+    except BrokenPipeError:
+        # whoever read our output has gone (`| head`); Python must not try to flush to him on its way out
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        return ACCEPTED
+
+
+def _complain(message: str) -> None:
+    """One plain message on the standard error, in a single line."""
+    print("rigdesign: " + " ".join(message.split()), file=sys.stderr)
+
+
+@contextmanager
+def _termination_interrupts() -> Iterator[None]:
+    """While inside, being told to terminate is the same as being interrupted: what was begun is undone."""
+
+    def interrupt(_signal: int, _frame: FrameType | None) -> None:
+        raise KeyboardInterrupt
+
+    try:
+        before = signal.signal(signal.SIGTERM, interrupt)
+    except ValueError:  # not in the main thread, where nobody can be told
+        yield
+        return
+    try:
+        yield
+    finally:
+        signal.signal(signal.SIGTERM, before)

@@ -9,8 +9,9 @@ from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
 from rigdesign.checks.model import Check
+from rigdesign.display import System
 from rigdesign.report.figures_sheet import A3, BLUE, GREY, INK, VERMILION, new_sheet, panel, styled
-from rigdesign.report.scales import Scale, System, scale
+from rigdesign.report.scales import Scale, scale
 from rigdesign.target.bands import Quantity
 from rigdesign.target.curve import Floats
 

@@ -10,6 +10,7 @@ from matplotlib.figure import Figure
 from matplotlib.patches import Rectangle
 
 from rigdesign.checks.model import Check
+from rigdesign.display import System
 from rigdesign.report.figures_parts import MARK, arrow, directions, mark, specimen_strip
 from rigdesign.report.figures_sheet import (
     A3,
@@ -25,7 +26,7 @@ from rigdesign.report.figures_sheet import (
     spread,
     styled,
 )
-from rigdesign.report.scales import Scale, System, scale
+from rigdesign.report.scales import Scale, scale
 from rigdesign.target.curve import Curve, Floats
 from rigdesign.target.model import Target
 

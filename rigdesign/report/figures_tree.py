@@ -7,9 +7,10 @@ from matplotlib.figure import Figure
 from matplotlib.patches import Rectangle
 
 from rigdesign.checks.model import Check
+from rigdesign.display import System
 from rigdesign.report.figures_parts import MARK, arrow, directions, holes, mark, specimen_strip
 from rigdesign.report.figures_sheet import GREY, INK, new_sheet, paper, spread, styled, text_width
-from rigdesign.report.scales import System, scale
+from rigdesign.report.scales import scale
 from rigdesign.report.tree_layout import (
     FAR_SIDE,
     FOOT,

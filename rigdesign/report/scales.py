@@ -10,7 +10,8 @@ import math
 from dataclasses import dataclass
 from typing import Literal
 
-System = Literal["SI", "us"]
+from rigdesign.display import System
+
 Kind = Literal["length", "arm", "force", "moment", "running load", "pressure"]
 
 INCH = 0.0254

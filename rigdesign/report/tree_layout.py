@@ -10,10 +10,11 @@ from __future__ import annotations
 from dataclasses import dataclass, replace
 
 from rigdesign.checks.model import Check
+from rigdesign.display import System
 from rigdesign.levers.model import Piece, Rig
 from rigdesign.report.figures_parts import MARK
 from rigdesign.report.figures_sheet import A3, A4, MM_PER_POINT, text_width
-from rigdesign.report.scales import Scale, System, arm_scale, scale
+from rigdesign.report.scales import Scale, arm_scale, scale
 
 MARGIN = 16.0
 """Free margin left and right of the specimen [mm]."""

@@ -1,0 +1,52 @@
+"""The option --pads: numbers of pads as people write them."""
+
+from __future__ import annotations
+
+import re
+
+import click
+
+MOST = 1000
+"""No study goes beyond this many pads."""
+
+
+class Counts(click.ParamType):
+    """Numbers of pads: "4..24", "8", or "4, 6, 8..12"."""
+
+    name = "numbers"
+
+    def convert(self, value: object, param: click.Parameter | None, ctx: click.Context | None) -> tuple[int, ...]:
+        """Return the numbers in order, each once; a mistake is told with what would be accepted."""
+        if isinstance(value, tuple):
+            return value
+        try:
+            return parse_counts(str(value))
+        except ValueError as error:
+            self.fail(str(error), param, ctx)
+
+
+def parse_counts(text: str) -> tuple[int, ...]:
+    """Return the numbers that a text names, sorted, each once.
+
+    Raises
+    ------
+    ValueError
+        With a message for the user, where the text cannot be read or a number is out of range.
+
+    Examples
+    --------
+    >>> parse_counts("4..6"), parse_counts("12, 8, 8..9")
+    ((4, 5, 6), (8, 9, 12))
+    """
+    numbers: set[int] = set()
+    for part in text.split(","):
+        match = re.fullmatch(r"\s*(\d{1,9})\s*(?:\.\.\s*(\d{1,9})\s*)?", part, flags=re.ASCII)
+        if match is None:
+            raise ValueError(f"{part.strip()!r} is not a number of pads; write 8, or 4..24, or 4,6,8")
+        low, high = int(match[1]), int(match[2] or match[1])
+        if low < 1 or high > MOST:
+            raise ValueError(f"{part.strip()!r} is out of range; numbers of pads go from 1 to {MOST}")
+        if low > high:
+            raise ValueError(f"{part.strip()!r} runs backwards; write {high}..{low}")
+        numbers.update(range(low, high + 1))
+    return tuple(sorted(numbers))

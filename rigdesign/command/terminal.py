@@ -1,0 +1,199 @@
+"""What the terminal shows: sentences first, then tables; plain text where the output is not a terminal."""
+
+from __future__ import annotations
+
+import math
+import sys
+from collections.abc import Iterable, Sequence
+from typing import TYPE_CHECKING
+
+from rich.console import Console
+from rich.table import Table
+from rich.text import Text
+
+from rigdesign.chain import Study
+from rigdesign.display import System, show
+from rigdesign.findings import Finding, Refusal
+from rigdesign.report.scales import arm_scale, scale
+from rigdesign.report.sentences import CAUTION, answer, finding_lines, percent, refusal_lines
+
+if TYPE_CHECKING:
+    from rigdesign.checks.model import Check
+
+PLAIN_WIDTH = 100
+"""Columns where the output is a file or a pipe."""
+_COLOURS = {"failure": "bold red", "warning": "yellow", "note": ""}
+
+
+class Terminal:
+    """The place where a command speaks to a person."""
+
+    def __init__(self, system: System = "SI") -> None:
+        """Set the units and find out how wide the output is."""
+        for stream in (sys.stdout, sys.stderr):
+            if hasattr(stream, "reconfigure"):  # a terminal that cannot show "−" or "·" shows "?"
+                stream.reconfigure(errors="replace")
+        is_terminal = sys.stdout.isatty()
+        self.system = system
+        self._console = Console(width=None if is_terminal else PLAIN_WIDTH, highlight=False, emoji=False, markup=False)
+
+    def lines(self, lines: Iterable[str], style: str = "") -> None:
+        """Print sentences, each a paragraph of its own wrapped at the width."""
+        for line in lines:
+            self._console.print(Text(line, style=style), soft_wrap=False)
+
+    def title(self, words: str) -> None:
+        """Print the first line of all."""
+        self._console.print(Text(words, style="bold"))
+
+    def heading(self, words: str) -> None:
+        """Print a heading after a free line."""
+        self._console.print()
+        self._console.print(Text(words, style="bold"))
+
+    def table(self, headings: Sequence[str], rows: Iterable[Sequence[str]]) -> None:
+        """Print a table; the first column and every one of words stand left, numbers right."""
+        rows = [tuple(row) for row in rows]
+        table = Table(box=None, pad_edge=False, padding=(0, 2, 0, 0), header_style="underline")
+        for k, heading in enumerate(headings):
+            numbers = all(_is_number(row[k]) for row in rows)
+            table.add_column(heading, justify="right" if numbers else "left", overflow="fold")
+        for row in rows:
+            table.add_row(*row)
+        self._console.print(table)
+
+    def check(self, check: Check) -> None:
+        """Print everything on a checked rig: sentences, pads, levers, regions, findings, caution."""
+        self.heading("Answer")
+        verdict, *others = answer(check, self.system)
+        self.lines([verdict], style="bold green" if check.accepted else "bold red")
+        self.lines(others)
+        self.heading("Pads")
+        self.table(*_pad_table(check, self.system))
+        if any(tree.pieces for tree in check.rig.trees):
+            self.heading("Levers")
+            self.table(*_lever_table(check, self.system))
+        self.heading("Errors by stretch")
+        self.table(*_region_table(check, self.system))
+        self.findings(check.findings)
+        self.heading("Caution")
+        self.lines([CAUTION])
+
+    def findings(self, findings: tuple[Finding, ...]) -> None:
+        """Print the findings, failures and warnings in colour."""
+        self.heading("Findings")
+        if not findings:
+            self.lines(["None."])
+        for finding, line in zip(findings, finding_lines(findings), strict=True):
+            self.lines([line], style=_COLOURS[finding.severity])
+
+    def refusal(self, refusal: Refusal) -> None:
+        """Print why there is no rig."""
+        self.heading("Answer")
+        first, *others = refusal_lines(refusal)
+        self.lines([first], style="bold red")
+        self.lines(others)
+
+    def study(self, study: Study) -> None:
+        """Print a study: the fewest accepted first, then a row a number of pads."""
+        self.heading("Answer")
+        fewest = study.fewest
+        if fewest is None:
+            self.lines(["None of these numbers of pads gives an accepted rig."], style="bold red")
+        else:
+            self.lines([f"The fewest pads that are accepted: {fewest.pads}."], style="bold green")
+        self.heading("Study")
+        self.table(*_study_table(study))
+        refused = [row for row in study.rows if isinstance(row.answer, Refusal)]
+        for row in refused:
+            self.lines([f"{row.pads} pads: " + " ".join(refusal_lines(row.answer))])  # type: ignore[arg-type]
+        self.lines(["", "Errors are per cent of peak target moment and shear, as drilled.", CAUTION])
+
+
+def _is_number(text: str) -> bool:
+    return not text or text[0].isdigit() or (text[0] in "−-+" and len(text) > 1)
+
+
+def _pad_table(check: Check, system: System) -> tuple[list[str], list[list[str]]]:
+    rig = check.rig
+    force = scale("force", max(abs(float(f)) for f in check.statics.pad_force), system)
+    place = scale("length", 1.0, system)
+    length, width = rig.plan.target.brief.pads.length, rig.plan.target.brief.pads.width
+    hangs = {hole.joins: piece.name for tree in rig.trees for piece in tree.pieces for hole in piece.ends}
+    headings = [
+        "pad",
+        f"x [{place.unit}]",
+        f"force [{force.unit}]",
+        f"wanted [{force.unit}]",
+        "share of jack",
+        "hangs on",
+    ]
+    area = length * width if width and length > 0 else 0.0
+    pressure = scale("pressure", float(abs(check.statics.pad_force).max()) / area, system) if area else None
+    if pressure:
+        headings.insert(5, f"pressure [{pressure.unit}]")
+    rows = []
+    for k, (x, f) in enumerate(zip(rig.pad_x, check.statics.pad_force, strict=True)):
+        row = [str(k + 1), place.show(float(x)), force.show(float(f)), force.show(float(rig.plan.force[k]))]
+        row += [f"{100 * float(check.statics.share[k]):.2f} %"]
+        row += [pressure.show(abs(float(f)) / area)] if pressure else []
+        rows.append([*row, hangs.get(f"pad {k + 1}", "jack 1")])
+    return headings, rows
+
+
+def _lever_table(check: Check, system: System) -> tuple[list[str], list[list[str]]]:
+    brief = check.rig.plan.target.brief
+    arms, place = arm_scale(brief.levers.drill_step, system), scale("length", 1.0, system)
+    loads = scale("force", max(abs(tree.force) for tree in check.rig.trees), system)
+    headings = ["lever", "tier", "hangs on", f"pivot x [{place.unit}]", f"load [{loads.unit}]"]
+    headings += [f"arm A [{arms.unit}]", "holds", f"arm B [{arms.unit}]", "holds", "ratio"]
+    rows = []
+    for piece in (piece for tree in check.rig.trees for piece in tree.pieces):
+        row = [str(piece.number), str(piece.tier), piece.parent, place.show(piece.pivot.x)]
+        row.append(loads.show(check.statics.piece_load[piece.name]))
+        lengths = [math.hypot(hole.u - piece.pivot.u, hole.v - piece.pivot.v) for hole in piece.ends]
+        for hole, length in zip(piece.ends, lengths, strict=True):
+            row += [arms.show(length), hole.joins]
+        rows.append([*row, f"{max(lengths) / min(lengths):.2f}"])
+    return headings, rows
+
+
+def _region_table(check: Check, system: System) -> tuple[list[str], list[list[str]]]:
+    headings = ["stretch", "quantity", "under-test", "over-test", "band under", "band over", "band use", "verdict"]
+    rows = []
+    for region in check.regions:
+        kind = "force" if region.quantity == "shear" else "moment"
+        sizes = [show(size, kind, system) for size in (region.under, region.over)]
+        bands = [
+            "none" if math.isinf(band) else show(band, kind, system) for band in (region.band_under, region.band_over)
+        ]
+        judged = {None: "not judged", True: "accepted", False: "not accepted"}[region.accepted]
+        use = "" if region.use is None else f"{region.use:.3f}"
+        rows.append([region.name, region.quantity, *sizes, *bands, use, judged])
+    return headings, rows
+
+
+def _study_table(study: Study) -> tuple[list[str], list[list[str]]]:
+    headings = [
+        "pads",
+        "moment error",
+        "shear error",
+        "band use",
+        "proven least",
+        "levers",
+        "steel estimate",
+        "verdict",
+    ]
+    rows = []
+    for row in study.rows:
+        if isinstance(row.answer, Refusal):
+            rows.append([str(row.pads), "", "", "", "", "", "", "no rig"])
+            continue
+        check = row.answer
+        mark = "  fewest" if study.fewest is row else ""
+        rows.append([
+            str(row.pads), percent(check.moment_error_peak), percent(check.shear_error_peak), f"{check.band_use:.3f}",
+            f"{check.rig.plan.proof.band_use_least:.3f}", str(sum(len(tree.pieces) for tree in check.rig.trees)),
+            f"{check.steel_estimate:.1f}", ("accepted" if row.accepted else "not accepted") + mark,
+        ])  # fmt: skip
+    return headings, rows

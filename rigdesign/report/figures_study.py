@@ -1,0 +1,86 @@
+"""The study in one picture: errors, band use and effort against the number of pads."""
+
+from __future__ import annotations
+
+from matplotlib.axes import Axes
+from matplotlib.figure import Figure
+from matplotlib.ticker import FuncFormatter, MaxNLocator
+
+from rigdesign.chain import Study
+from rigdesign.checks.model import Check
+from rigdesign.findings import Refusal
+from rigdesign.report.figures_sheet import A4, BLUE, GREEN, GREY, INK, VERMILION, new_sheet, panel, styled
+
+
+@styled
+def study_sheet(study: Study) -> Figure:
+    """Return the sheet of a study: filled marks are accepted rigs, hollow ones are not, crosses have no rig."""
+    fewest = study.fewest
+    words = "no number of pads tried is accepted" if fewest is None else f"fewest pads accepted: {fewest.pads}"
+    figure = new_sheet(A4, f"{study.brief.title}: study of the number of pads", words)
+    width = (A4[0] - 24.0 - 26.0 - 14.0) / 2
+    _errors(panel(figure, 24.0, 24.0, width, 150.0), study)
+    _use(panel(figure, 50.0 + width, 104.0, width, 70.0), study)
+    _steel(panel(figure, 50.0 + width, 24.0, width, 62.0), study)
+    return figure
+
+
+def _checked(study: Study) -> list[tuple[int, Check]]:
+    return [(row.pads, row.answer) for row in study.rows if not isinstance(row.answer, Refusal)]
+
+
+def _frame(axes: Axes, study: Study) -> None:
+    """Whole numbers of pads along x; rows without a rig as crosses on the axis; the fewest accepted as a line."""
+    counts = [row.pads for row in study.rows]
+    axes.set_xlim(min(counts) - 0.6, max(counts) + 0.6)
+    axes.xaxis.set_major_locator(MaxNLocator(integer=True))
+    axes.set_xlabel("pads", size=8, labelpad=1.5)
+    none = [row.pads for row in study.rows if isinstance(row.answer, Refusal)]
+    axes.plot(none, [0.02] * len(none), "x", color=INK, transform=axes.get_xaxis_transform(), clip_on=False)
+    if study.fewest is not None:
+        axes.axvline(study.fewest.pads, color=GREY, linewidth=0.8, linestyle=(0, (6, 3)))
+
+
+def _line(axes: Axes, study: Study, values: list[float], color: str, shape: str, label: str) -> None:
+    """A thin line through all rows, its marks filled where the rig is accepted."""
+    rows = _checked(study)
+    axes.plot([pads for pads, _ in rows], values, color=color, linewidth=1.0, label=label, marker=shape, markersize=4.5)
+    for (pads, check), value in zip(rows, values, strict=True):
+        if not check.accepted:
+            axes.plot([pads], [value], shape, color="white", markeredgecolor=color, markersize=4.5)
+
+
+def _errors(axes: Axes, study: Study) -> None:
+    checks = [check for _, check in _checked(study)]
+    if checks:
+        axes.set_yscale("log")
+        axes.yaxis.set_major_formatter(FuncFormatter(lambda value, _: f"{value:g}"))
+    _line(axes, study, [100 * check.shear_error_peak for check in checks], VERMILION, "s", "shear, drilled")
+    _line(axes, study, [100 * check.moment_error_peak for check in checks], BLUE, "o", "moment, drilled")
+    least = [100 * check.rig.plan.proof.moment_error_least for check in checks]
+    axes.plot([pads for pads, _ in _checked(study)], least, color=BLUE, linestyle=":", label="moment, proven least")
+    hand = [100 * check.hand_moment for check in checks]
+    axes.plot([pads for pads, _ in _checked(study)], hand, color=GREY, linestyle="--", label="moment, strips by hand")
+    _frame(axes, study)
+    axes.set_ylabel("largest error [% of peak target value]", size=8)
+    axes.legend(loc="upper right", fontsize=7, framealpha=0.9, edgecolor="none")
+
+
+def _use(axes: Axes, study: Study) -> None:
+    checks = [check for _, check in _checked(study)]
+    _line(axes, study, [check.band_use for check in checks], INK, "o", "drilled")
+    least = [check.rig.plan.proof.band_use_least for check in checks]
+    axes.plot([pads for pads, _ in _checked(study)], least, color=INK, linestyle=":", label="proven least")
+    axes.axhline(1.0, color=VERMILION, linewidth=0.9)
+    _frame(axes, study)
+    axes.set_ylim(0.0, min(max([1.2, *(1.1 * check.band_use for check in checks)]), 4.0))
+    axes.set_ylabel("band use (1 or less passes)", size=8)
+    axes.legend(loc="upper right", fontsize=7, framealpha=0.9, edgecolor="none")
+
+
+def _steel(axes: Axes, study: Study) -> None:
+    checks = [check for _, check in _checked(study)]
+    _line(axes, study, [check.steel_estimate for check in checks], GREEN, "o", "steel estimate")
+    _frame(axes, study)
+    axes.set_ylim(bottom=0.0)
+    axes.set_ylabel("steel estimate [N$^{2/3}$ m$^{5/3}$]", size=8)

@@ -1,0 +1,82 @@
+"""The files of a study: a row a number of pads as CSV and as JSON, and its picture."""
+
+from __future__ import annotations
+
+import json
+from typing import Any
+
+from rigdesign.chain import Study, StudyRow
+from rigdesign.findings import Refusal
+
+COLUMNS = (
+    "pads", "verdict", "moment_error_peak", "moment_error_least", "shear_error_peak", "band_use", "band_use_least",
+    "levers", "steel_estimate", "fewest_accepted", "what_binds",
+)  # fmt: skip
+
+
+def study_object(study: Study) -> dict[str, Any]:
+    """Return the study as an object for JSON; errors are fractions of the peak target value."""
+    fewest = study.fewest
+    return {
+        "title": study.brief.title,
+        "fewest_accepted": None if fewest is None else fewest.pads,
+        "rows": [_row(study, row) for row in study.rows],
+    }
+
+
+def _row(study: Study, row: StudyRow) -> dict[str, Any]:
+    if isinstance(row.answer, Refusal):
+        binds = f"{row.answer.text} {row.answer.limit}".strip()
+        return {
+            **dict.fromkeys(COLUMNS),
+            "pads": row.pads,
+            "verdict": "no rig",
+            "fewest_accepted": False,
+            "what_binds": binds,
+        }
+    check = row.answer
+    proof = check.rig.plan.proof
+    failures = [finding.name for finding in check.findings if finding.severity == "failure"]
+    return {
+        "pads": row.pads,
+        "verdict": "accepted" if row.accepted else "not accepted",
+        "moment_error_peak": check.moment_error_peak,
+        "moment_error_least": proof.moment_error_least,
+        "shear_error_peak": check.shear_error_peak,
+        "band_use": check.band_use,
+        "band_use_least": proof.band_use_least,
+        "levers": sum(len(tree.pieces) for tree in check.rig.trees),
+        "steel_estimate": check.steel_estimate,
+        "fewest_accepted": study.fewest is row,
+        "what_binds": ", ".join(failures),
+    }
+
+
+def study_csv(study: Study) -> str:
+    """Return the study as a table; what is not known for a row without a rig stays empty."""
+    lines = [",".join(COLUMNS)]
+    for row in study_object(study)["rows"]:
+        lines.append(",".join(_cell(row[column]) for column in COLUMNS))
+    return "\n".join(lines) + "\n"
+
+
+def _cell(value: object) -> str:
+    """A cell: numbers with every digit, text without commas, quotes or line ends, never a formula."""
+    if value is None:
+        return ""
+    if isinstance(value, bool):
+        return "yes" if value else "no"
+    if isinstance(value, int | float):
+        return repr(value)
+    text = " ".join(str(value).replace(",", ";").replace('"', "'").split())
+    return f"'{text}" if text[:1] in ("=", "+", "-", "@") else text
+
+
+def study_files(study: Study, *, png: bool = False) -> dict[str, bytes]:
+    """Return study.csv, study.json and the picture, by file name."""
+    from rigdesign.report.figures_study import study_sheet
+    from rigdesign.report.writing import drawn
+
+    text = json.dumps(study_object(study), indent=2, ensure_ascii=False) + "\n"
+    tables = {"study.csv": study_csv(study).encode(), "study.json": text.encode()}
+    return tables | drawn({"study": study_sheet(study)}, png=png)
