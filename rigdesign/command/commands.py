@@ -29,7 +29,9 @@ _NO_FIGURES = click.option("--no-figures", is_flag=True, help="Write no figures.
 _BRIEF = click.argument("brief", type=click.Path(path_type=Path), metavar="BRIEF")
 
 
-@click.group(context_settings={"help_option_names": ["-h", "--help"], "max_content_width": 100})
+@click.group(
+    invoke_without_command=True, context_settings={"help_option_names": ["-h", "--help"], "max_content_width": 100}
+)
 @click.version_option(__version__, "--version", prog_name="rigdesign", message="%(prog)s %(version)s")
 @click.pass_context
 def rigdesign(context: click.Context) -> None:
@@ -40,6 +42,8 @@ def rigdesign(context: click.Context) -> None:
     """
     context.ensure_object(Session)
     context.obj.command = context.invoked_subcommand or ""
+    if context.invoked_subcommand is None:
+        click.echo(context.get_help())
 
 
 @rigdesign.command()
