@@ -129,7 +129,7 @@ def _pad_table(check: Check, system: System) -> tuple[list[str], list[list[str]]
         "hangs on",
     ]
     area = length * width if width and length > 0 else 0.0
-    pressure = scale("pressure", float(abs(check.statics.pad_force).max()) / area, system) if area else None
+    pressure = scale("pressure", float(abs(check.statics.pad_force).max()) / area, system, 2) if area else None
     if pressure:
         headings.insert(5, f"pressure [{pressure.unit}]")
     rows = []

@@ -1,0 +1,81 @@
+"""Every demo from its brief to its outputs, and the commands of the README."""
+
+from __future__ import annotations
+
+import json
+import re
+import tomllib
+
+import pytest
+from journey import DEMOS, ROOT, files_under
+
+
+@pytest.mark.parametrize("brief", DEMOS, ids=[path.parent.name for path in DEMOS])
+def test_a_demo_ends_accepted_and_reads_back(rigdesign, here, brief):
+    ended = rigdesign("design", brief, "--out", "demo_rig", "--json")
+    assert ended.code == 0, ended.err
+    summary = json.loads(ended.out)
+    assert summary["verdict"] == "accepted"
+    assert summary["band_use_least"] <= summary["band_use"] <= 1
+    assert summary["pads"] == tomllib.loads(brief.read_text())["pads"]["count"]
+    assert json.loads(rigdesign("assess", "demo_rig", "--json").out) == summary
+    assert {"tree.svg", "load_and_pads.svg", "shear_and_moment.svg", "target.svg"} <= set(
+        files_under(here / "demo_rig")
+    )
+
+
+def test_there_are_demos_of_different_kinds():
+    briefs = [tomllib.loads(path.read_text()) for path in DEMOS]
+    assert {brief["pads"]["places"] for brief in briefs} >= {"free", "hard points"}
+    assert {brief["specimen"]["support"] for brief in briefs} == {"cantilever", "two supports"}
+    assert any("weight" in brief["specimen"] for brief in briefs)
+    assert any("internal" in load for brief in briefs for load in brief["load"])
+
+
+def _commands(text: str) -> list[str]:
+    """The indented lines of a page that are commands of a fresh machine."""
+    return [line.strip() for line in text.splitlines() if line.startswith("    python3.11 -m venv")]
+
+
+def test_the_readme_has_two_commands_that_do_everything():
+    commands = _commands((ROOT / "README.md").read_text())
+    assert len(commands) == 2
+    assert all("pip install" in command for command in commands)
+    assert commands[1].endswith("pytest -n 2")
+
+
+def test_the_first_command_of_the_readme_designs_a_demo(rigdesign, here, monkeypatch):
+    command = _commands((ROOT / "README.md").read_text())[0].split("&&")[-1].split()
+    assert command[0] == ".venv/bin/rigdesign"
+    arguments = [str(ROOT / word) if word.startswith("demo_rigs/") else word for word in command[1:]]
+    ended = rigdesign(*arguments)
+    assert ended.code == 0
+    assert (here / "rudder_rig" / "rig.json").is_file()
+
+
+def test_the_python_of_the_readme_runs(here, capsys):
+    text = (ROOT / "README.md").read_text()
+    block = re.search(r"The same in Python:\n\n((?:    .*\n|\n)+)", text)
+    assert block is not None
+    code = "\n".join(line[4:] for line in block[1].splitlines())
+    exec(code.replace("demo_rigs/", f"{ROOT}/demo_rigs/"), {})
+    assert "True" in capsys.readouterr().out
+    assert (here / "rudder_rig" / "tree.svg").is_file()
+
+
+def test_links_in_the_pages_lead_somewhere():
+    pages = [ROOT / "README.md", ROOT / "DEVELOPERS.md", *sorted((ROOT / "docs").glob("*.md"))]
+    for page in pages:
+        for link in re.findall(r"\]\(([^)#]+)\)", page.read_text()):
+            if not link.startswith("http"):
+                assert (page.parent / link).exists(), f"{page.name}: {link}"
+
+
+def test_the_example_of_the_brief_page_is_a_brief(rigdesign, here):
+    text = (ROOT / "docs" / "brief.md").read_text()
+    block = text.split("## An example with everything in it")[1]
+    lines = [line[4:] for line in block.splitlines() if line.startswith("    ") or not line]
+    (here / "jib.toml").write_text("\n".join(lines))
+    (here / "jib_weight.csv").write_text("x [m],mass [kg/m]\n0.4,31\n2.1,24\n5.2,11.5\n")
+    ended = rigdesign("design", "jib.toml", "--no-figures")
+    assert ended.code == 0, ended.out + ended.err
