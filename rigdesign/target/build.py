@@ -1,0 +1,76 @@
+"""From the brief to its target: curves, peaks, and what is worth a remark."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from rigdesign.brief.model import Brief
+from rigdesign.display import show
+from rigdesign.errors import BriefError
+from rigdesign.findings import numbered
+from rigdesign.target import internal
+from rigdesign.target.curve import Curve
+from rigdesign.target.loads import NOTHING, gravity_curve, load_curve
+from rigdesign.target.model import Target
+from rigdesign.target.peaks import peak, stretches
+from rigdesign.target.remarks import remarks
+from rigdesign.target.sums import Combined
+
+# A sum below this part of the largest force beyond any station is the rounding of loads that cancel.
+_CANCELLED = 1e-9
+
+
+def build_target(brief: Brief) -> Target:
+    """Return what the specimen must feel, what gravity brings of it and what the pads bring, with remarks.
+
+    Raises
+    ------
+    BriefError
+        If the loads add up to nothing, or one of them cannot be made into a curve (see `load_curve`).
+
+    Notes
+    -----
+    The curves are exact: closed forms for the shapes, piecewise polynomials for tables.  The peaks are found to
+    rounding, about 1e-12 of their value.
+    """
+    total = Combined(tuple(load_curve(load, brief.specimen) for load in brief.loads), (1.0,) * len(brief.loads))
+    _refuse_nothing(total)
+    gravity = gravity_curve(brief)
+    net = total if gravity is NOTHING else Combined((total, gravity), (1.0, -1.0))
+    (shear_peak, shear_x), (moment_peak, moment_x) = _peaks(brief, total)
+    return Target(
+        brief=brief,
+        total=total,
+        gravity=gravity,
+        net=net,
+        shear_peak=shear_peak,
+        shear_peak_x=shear_x,
+        moment_peak=moment_peak,
+        moment_peak_x=moment_x,
+        findings=numbered(remarks(brief, total, gravity, net)),
+    )
+
+
+def _refuse_nothing(total: Curve) -> None:
+    """Raise BriefError where the loads cancel: there is then no resultant and no place for a jack."""
+    largest = float(np.abs(total.force_beyond(total.breaks, "inboard")).max(initial=0.0))
+    if abs(total.total) > _CANCELLED * largest:
+        return
+    raise BriefError(
+        "the loads add up to nothing, so that no jack can bring them",
+        where="[[load]]",
+        value=show(0.0, "force"),
+        limit="a total other than zero",
+        remedy="check their totals and signs; loads of both signs need a rig for each sign",
+    )
+
+
+def _peaks(brief: Brief, total: Curve) -> tuple[tuple[float, float], tuple[float, float]]:
+    """Largest |V| and |M| of the whole target with their stations."""
+    specimen = brief.specimen
+    edges = stretches(total.breaks, specimen.left, specimen.right, np.array(specimen.supports))
+    return (
+        peak(lambda x, side: internal.shear(total, specimen, x, side), total.running, edges),
+        peak(lambda x, side: internal.moment(total, specimen, x),
+             lambda x, side: internal.shear(total, specimen, x, side), edges),
+    )  # fmt: skip
