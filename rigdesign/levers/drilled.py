@@ -1,0 +1,54 @@
+"""What drilling hands on, and what both ways of drilling share."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from rigdesign.brief.model import LeverRules
+from rigdesign.display import show
+from rigdesign.findings import Refusal
+from rigdesign.levers.grouping import allowed, joined
+from rigdesign.levers.hanging import Hung
+from rigdesign.levers.wiring import Ints, Wiring
+from rigdesign.target.curve import Floats
+
+BROKEN = 1e6
+"""Added to the band use of a rig that misses a pad limit: any rig that keeps them all is better."""
+
+
+@dataclass(frozen=True)
+class Drilled:
+    """A drilled tree: how it hangs (one row), its steps, its band use, and what was searched, in words.
+
+    `steps` (n_levers, 2) are the arms a, b of free pads, (n_levers, 1) the distance from hole A to the pivot where
+    pads stay.
+    """
+
+    hung: Hung
+    steps: Ints
+    use: float
+    words: str
+
+
+def lever_limits(a: Floats, b: Floats, rules: LeverRules) -> np.ndarray:
+    """Whether drilled levers with arms a, b [m], any shape, keep their limits, both arms above zero."""
+    return allowed(a, b, rules)
+
+
+def coarse(wiring: Wiring, a: Floats, b: Floats, step: float) -> Refusal | None:
+    """Refusal where an arm before drilling rounds to no drill step at all."""
+    shorter = np.minimum(a, b)
+    bad = np.flatnonzero(np.rint(shorter / step) < 1)
+    if not bad.size:
+        return None
+    row = int(bad[np.argmin(shorter[bad])])
+    arm = show(float(shorter[row]), "length", unit="mm")
+    return Refusal(
+        "levers",
+        "the drill step is so coarse that an arm would be zero",
+        f"drill_step {show(step, 'length', unit='mm')}",
+        f"lever {row + 1}, which joins {joined(wiring, row)}, needs an arm of {arm}",
+        f"choose a drill_step below {show(2 * float(shorter[row]), 'length', unit='mm')}, or fewer pads",
+    )
