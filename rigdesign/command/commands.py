@@ -20,7 +20,7 @@ if TYPE_CHECKING:
     from rigdesign.findings import Refusal
     from rigdesign.target.model import Target
 
-_OUT = {"type": click.Path(path_type=Path), "metavar": "FOLDER"}
+_OUT: Any = {"type": click.Path(path_type=Path), "metavar": "FOLDER"}
 _JSON = click.option("--json", "as_json", is_flag=True, help="Print one JSON object for scripts, and nothing else.")
 _US = click.option("--us", is_flag=True, help="Show US customary units; files stay in the units of their headings.")
 _REPLACE = click.option("--replace", is_flag=True, help="Replace the rig folder if it exists.")
@@ -249,7 +249,7 @@ def _echoed(target: Target, system: System) -> Terminal:
 
     terminal = Terminal(system)
     terminal.title(target.brief.title)
-    terminal.lines(echo(target))
+    terminal.lines(echo(target, system))
     return terminal
 
 

@@ -3,7 +3,9 @@
 from __future__ import annotations
 
 import math
+import re
 import sys
+import textwrap
 from collections.abc import Iterable, Sequence
 from typing import TYPE_CHECKING
 
@@ -38,9 +40,10 @@ class Terminal:
         self._console = Console(width=None if is_terminal else PLAIN_WIDTH, highlight=False, emoji=False, markup=False)
 
     def lines(self, lines: Iterable[str], style: str = "") -> None:
-        """Print sentences, each a paragraph of its own wrapped at the width."""
+        """Print sentences, each a paragraph of its own, wrapped at the width and never between number and unit."""
         for line in lines:
-            self._console.print(Text(line, style=style), soft_wrap=False)
+            for part in wrapped(line, self._console.width):
+                self._console.print(Text(part, style=style), soft_wrap=True)
 
     def title(self, words: str) -> None:
         """Print the first line of all."""
@@ -108,6 +111,17 @@ class Terminal:
         for row in refused:
             self.lines([f"{row.pads} pads: " + " ".join(refusal_lines(row.answer))])  # type: ignore[arg-type]
         self.lines(["", "Errors are per cent of peak target moment and shear, as drilled.", CAUTION])
+
+
+def wrapped(line: str, width: int) -> list[str]:
+    """Return the lines of a paragraph, the second and further ones indented; a number stays with its unit.
+
+    >>> wrapped("Under-test 0.25 % at x = 1.2 m, as drilled.", 24)
+    ['Under-test 0.25 % at', '  x = 1.2 m, as drilled.']
+    """
+    bound = re.sub(r"(?<=\d) (?=[%A-Za-z])|(?<=\b[xyFN]) (?==)|(?<==) (?=[\d−-])", "\N{NO-BREAK SPACE}", line)
+    parts = textwrap.wrap(bound, width, subsequent_indent="  ", break_long_words=False, break_on_hyphens=False)
+    return [part.replace("\N{NO-BREAK SPACE}", " ") for part in parts] or [""]
 
 
 def _is_number(text: str) -> bool:

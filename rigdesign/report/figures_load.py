@@ -111,6 +111,7 @@ def _running(axes: Axes, target: Target, system: System) -> None:
         axes.plot(x / place.size, net / unit.size, color=GREEN, linestyle="--", label="what the pads bring")
         axes.plot(x / place.size, own / unit.size, color=GREY, linestyle=":", label="what gravity brings")
     axes.axhline(0.0, color=INK, linewidth=0.8)
+    _supports(axes, target, place)
     specimen = target.brief.specimen
     axes.set_xlim(specimen.left / place.size, specimen.right / place.size)
     low, high = axes.get_ylim()
@@ -135,6 +136,12 @@ def _point_loads(axes: Axes, target: Target, place: Scale, system: System) -> No
     axes.plot([], [], color=VERMILION, marker="|", label=f"point loads (largest {unit.show(largest)} {unit.unit})")
 
 
+def _supports(axes: Axes, target: Target, place: Scale) -> None:
+    """Mark the supports on the zero line."""
+    at = [x / place.size for x in target.brief.specimen.supports]
+    axes.plot(at, [0.0] * len(at), "^", color="white", markeredgecolor=INK, markersize=6, zorder=5)
+
+
 def _internal(axes: Axes, target: Target, kind: str, x: Floats, system: System) -> None:
     """Draw V or M of the target with its peak."""
     place = scale("length", 1.0, system)
@@ -146,6 +153,7 @@ def _internal(axes: Axes, target: Target, kind: str, x: Floats, system: System) 
         unit, name = scale("moment", peak, system), "M"
     axes.plot(x / place.size, values / unit.size, color=BLUE, linewidth=1.6)
     axes.axhline(0.0, color=INK, linewidth=0.8)
+    _supports(axes, target, place)
     specimen = target.brief.specimen
     axes.set_xlim(specimen.left / place.size, specimen.right / place.size)
     axes.set_ylabel(f"{name} [{unit.unit}]", size=8)

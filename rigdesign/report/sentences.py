@@ -35,7 +35,7 @@ def answer(check: Check, system: System = "SI") -> list[str]:
     """Return the sentences on a checked rig: verdict, errors, what is proven, jack, and what a load cell sees."""
     lines = [verdict(check)]
     lines += [error_line(check, "moment", system), error_line(check, "shear", system)]
-    lines += [_local_line(check), _proven_line(check), _hand_line(check), _even_line(check)]
+    lines += [_local_line(check), _proven_line(check), _search_line(check), _hand_line(check), _even_line(check)]
     lines += [_jack_line(check, system), _floor_line(check)]
     return [line for line in lines if line]
 
@@ -111,6 +111,11 @@ def _proven_line(check: Check) -> str:
         f"Proven ({proof.method}): {least}; {gap}, and drilling takes it to {drilled:.3f} times the plan's.  "
         f"The moment's error alone cannot go below {percent(proof.moment_error_least)} of peak target moment."
     )
+
+
+def _search_line(check: Check) -> str:
+    words = [check.rig.plan.proof.words, check.rig.words]
+    return "Search: " + "; ".join(word.rstrip(".") for word in words if word) + "."
 
 
 def _hand_line(check: Check) -> str:
