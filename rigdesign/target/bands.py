@@ -10,6 +10,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from functools import cached_property
 from typing import Literal
 
 import numpy as np
@@ -18,6 +19,7 @@ from numpy.typing import NDArray
 from rigdesign.brief.model import Acceptance, BandRule, Region
 from rigdesign.target.curve import Floats, Side
 from rigdesign.target.model import Target
+from rigdesign.target.peaks import crossings, stretches
 from rigdesign.words import BAND_FLOOR, SMALL_TARGET
 
 Quantity = Literal["shear", "moment"]
@@ -25,12 +27,17 @@ Quantity = Literal["shear", "moment"]
 
 @dataclass(frozen=True)
 class Band:
-    """Band of one quantity.  `peak` is the largest |target| [N or N·m]; `value(x, side)` gives the target (n,)."""
+    """Band of one quantity.  `peak` is the largest |target| [N or N·m]; `value(x, side)` gives the target (n,).
+
+    `stretches` (k,) [m] are the ends of the specimen and, between them, the stations where the target's curve jumps or
+    kinks.  A region that reaches an end of the specimen holds on both sides of it.
+    """
 
     quantity: Quantity
     peak: float
     acceptance: Acceptance
     value: Callable[[Floats, Side], Floats]
+    stretches: Floats
 
     @property
     def is_judged(self) -> bool:
@@ -38,13 +45,27 @@ class Band:
         rules = [*self.acceptance.rules, *(r for region in self.acceptance.regions for r in region.rules)]
         return any(rule.quantity == self.quantity for rule in rules)
 
-    @property
+    @cached_property
     def edges(self) -> Floats:
-        """Stations (k,) at which the band may jump: the ends of the regions that name this quantity."""
-        ends = [
-            end for region in self.acceptance.regions if self._names(region) for end in (region.start_x, region.end_x)
-        ]
-        return np.unique(np.array(ends, dtype=float))
+        """Stations (k,) at which the band may jump: the ends of the regions that name this quantity, and, where under
+        and over differ, the places where |target| passes 5 % of its peak.
+        """
+        named = [region for region in self.acceptance.regions if self._names(region)]
+        ends = np.array([end for region in named for end in (region.start_x, region.end_x)], dtype=float)
+        if not self._sides_differ:
+            return np.unique(ends)
+        level = SMALL_TARGET * self.peak
+        above = crossings(lambda x, side: self.value(x, side) - level, self.stretches)
+        below = crossings(lambda x, side: self.value(x, side) + level, self.stretches)
+        return np.unique(np.concatenate([ends, above, below]))
+
+    @property
+    def _sides_differ(self) -> bool:
+        for rules in (self.acceptance.rules, *(region.rules for region in self.acceptance.regions)):
+            asked = [(r.side, r.amount, r.absolute, r.of) for r in rules if r.quantity == self.quantity]
+            if {a[1:] for a in asked if a[0] == "under"} != {a[1:] for a in asked if a[0] == "over"}:
+                return True
+        return False
 
     def _names(self, region: Region) -> bool:
         return any(rule.quantity == self.quantity for rule in region.rules)
@@ -71,7 +92,7 @@ class Band:
             if rule.quantity == self.quantity:
                 width[rule.side] = self._amount(rule, local)
         for region in self.acceptance.regions:
-            inside = _inside(region, x, side)
+            inside = self._inside(region, x, side)
             for rule in region.rules:
                 if rule.quantity == self.quantity:
                     width[rule.side] = np.where(inside, self._amount(rule, local), width[rule.side])
@@ -82,17 +103,19 @@ class Band:
             return np.full(local.shape, rule.amount)
         return rule.amount * (np.full(local.shape, self.peak) if rule.of == "peak" else local)
 
-
-def _inside(region: Region, x: Floats, side: Side) -> NDArray[np.bool_]:
-    if side == "inboard":
-        return (x > region.start_x) & (x <= region.end_x)
-    return (x >= region.start_x) & (x < region.end_x)
+    def _inside(self, region: Region, x: Floats, side: Side) -> NDArray[np.bool_]:
+        start = -np.inf if region.start_x <= self.stretches[0] else region.start_x
+        end = np.inf if region.end_x >= self.stretches[-1] else region.end_x
+        if side == "inboard":
+            return (x > start) & (x <= end)
+        return (x >= start) & (x < end)
 
 
 def bands(target: Target) -> dict[Quantity, Band]:
     """Return the bands of the target's shear and moment."""
-    accept = target.brief.acceptance
+    accept, specimen = target.brief.acceptance, target.brief.specimen
+    ends = stretches(target.total.breaks, specimen.left, specimen.right, np.array(specimen.supports))
     return {
-        "moment": Band("moment", target.moment_peak, accept, lambda x, side: target.moment(x)),
-        "shear": Band("shear", target.shear_peak, accept, lambda x, side: target.shear(x, side)),
+        "moment": Band("moment", target.moment_peak, accept, lambda x, side: target.moment(x), ends),
+        "shear": Band("shear", target.shear_peak, accept, lambda x, side: target.shear(x, side), ends),
     }

@@ -39,6 +39,17 @@ class Target:
         """Station of the resultant [m]."""
         return self.total.first_moment / self.total.total
 
+    @property
+    def about(self) -> float:
+        """Station of the root, or of the first of two supports [m]: where `moment_about` is taken."""
+        specimen = self.brief.specimen
+        return specimen.supports[0] if specimen.supports else specimen.left
+
+    @property
+    def moment_about(self) -> float:
+        """First moment of the target about the root or the first support [N·m], reactions left out."""
+        return self.total.first_moment - self.total.total * self.about
+
     def shear(self, x: Floats, side: Side) -> Floats:
         """Shear V of the whole target [N] at stations x (n,), reactions included."""
         return internal.shear(self.total, self.brief.specimen, x, side)

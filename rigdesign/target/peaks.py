@@ -74,6 +74,11 @@ def peak(value: Function, slope: Function, edges: Floats) -> tuple[float, float]
     return largest, float(stations[sizes >= largest * (1.0 - _TIE)].min())
 
 
+def crossings(function: Function, edges: Floats) -> Floats:
+    """Return the stations (k,) [m], sorted, where a function changes sign inside the stretches between `edges`."""
+    return np.unique(_roots(function, _samples(edges)))
+
+
 def signed_parts(curve: Curve, left: float, right: float) -> Parts:
     """Return the load of a curve between `left` and `right` [m], split where it changes sign."""
     edges = stretches(curve.breaks, left, right, np.empty(0))

@@ -6,6 +6,8 @@ it is of.
 
 from __future__ import annotations
 
+import numpy as np
+
 from rigdesign.brief.model import InertiaLoad, InternalLoad, Load, PointLoads, ShapeLoad, TableLoad
 from rigdesign.display import System, show
 from rigdesign.target.curve import Curve
@@ -47,13 +49,6 @@ def direction(force: float) -> str:
     return "along +z, out of the loaded surface" if force > 0 else "along −z, onto the loaded surface"
 
 
-def reference(target: Target) -> tuple[float, float]:
-    """Return the station of the root or of the first support [m], and the target's moment about it [N·m]."""
-    specimen = target.brief.specimen
-    about = specimen.supports[0] if specimen.supports else specimen.left
-    return about, target.total.first_moment - target.total.total * about
-
-
 def _end(target: Target) -> str:
     return "the left end" if target.brief.specimen.supports else "the root"
 
@@ -69,7 +64,7 @@ def _resultant(target: Target, system: System) -> str:
 
 
 def _moment(target: Target, system: System) -> str:
-    about, moment = reference(target)
+    about, moment = target.about, target.moment_about
     what = "the first support" if target.brief.specimen.supports else "the root"
     return f"Its moment about {what} at {show(about, 'length', system)} is {show(moment, 'moment', system)}."
 
@@ -90,8 +85,10 @@ def _along(force: float) -> str:
 
 
 def _peaks(target: Target, system: System) -> str:
+    at = target.moment_peak_x
+    bending = float(target.moment(np.array([at]))[0])
     shear = f"{show(target.shear_peak, 'force', system)} at {show(target.shear_peak_x, 'length', system)}"
-    moment = f"{show(target.moment_peak, 'moment', system)} at {show(target.moment_peak_x, 'length', system)}"
+    moment = f"{show(bending, 'moment', system)} at {show(at, 'length', system)}"
     return f"The largest shear is {shear}, the largest bending moment {moment}."
 
 
@@ -100,8 +97,8 @@ def _weight(target: Target, system: System) -> list[str]:
         return ["No weight is given: the pads bring the whole target, on top of whatever hangs there."]
     gravity, net = target.gravity, target.net
     mass = show(abs(gravity.total) / STANDARD_GRAVITY, "mass", system)
-    weighs = f"The specimen weighs {mass}; gravity brings {_force_at(gravity, system)} of the target"
-    return [f"{weighs}, and the pads bring {_force_at(net, system)}."]
+    weighs = f"The specimen weighs {mass}, which brings {_force_at(gravity, system)} by itself"
+    return [f"{weighs}; the pads bring {_force_at(net, system)}."]
 
 
 def _force_at(curve: Curve, system: System) -> str:
