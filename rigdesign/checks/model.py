@@ -4,6 +4,9 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+import numpy as np
+from numpy.typing import NDArray
+
 from rigdesign.findings import Finding
 from rigdesign.levers.model import Rig
 from rigdesign.target.bands import Quantity
@@ -33,7 +36,7 @@ class Curves:
     """
 
     x: Floats
-    outboard: Floats
+    outboard: NDArray[np.bool_]
     target: dict[Quantity, Floats]
     rig: dict[Quantity, Floats]
     below: dict[Quantity, Floats]
@@ -46,8 +49,8 @@ class Curves:
     def use(self, quantity: Quantity) -> Floats:
         """Error over its band (n_stations,), zero where nothing is asked."""
         error = self.error(quantity)
-        width = self.above[quantity] * (error >= 0) + self.below[quantity] * (error < 0)
-        return abs(error) / width
+        width = np.where(error < 0, self.below[quantity], self.above[quantity])
+        return np.asarray(np.abs(error) / width)
 
 
 @dataclass(frozen=True)

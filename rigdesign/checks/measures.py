@@ -1,0 +1,145 @@
+"""Single figures out of the curves: peak and local errors, the area between the shear curves, steel, hand method."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from rigdesign.checks.curves import curves
+from rigdesign.checks.model import Curves, Statics
+from rigdesign.levers.model import Piece, Rig
+from rigdesign.target.bands import Quantity
+from rigdesign.target.curve import Curve, Floats
+from rigdesign.target.model import Target
+from rigdesign.words import SMALL_TARGET
+
+
+def peak_error(curves: Curves, quantity: Quantity, peak: float) -> tuple[float, float]:
+    """Return the largest |error| as a fraction of the peak target `peak` [N or N·m], and its station [m]."""
+    error = np.abs(curves.error(quantity))
+    row = int(np.argmax(error))
+    return float(error[row] / peak), float(curves.x[row])
+
+
+def local_error(curves: Curves, quantity: Quantity, peak: float) -> tuple[float, float]:
+    """Return the largest |error| as a fraction of the local target, and its station [m].
+
+    Only stations count at which |target| is at least 5 % of its peak `peak` [N or N·m].
+    """
+    size = np.abs(curves.target[quantity])
+    counts = size >= SMALL_TARGET * peak
+    error = np.abs(curves.error(quantity))[counts] / size[counts]
+    row = int(np.argmax(error))
+    return float(error[row]), float(curves.x[counts][row])
+
+
+def shear_area(curves: Curves) -> float:
+    """Return ∫ |V_rig − V_target| dx over the span [N·m].
+
+    Since dM/dx = −V, and since every zero of the shear error is a station, it is the sum of the moment error's
+    changes from station to station.
+    """
+    return float(np.abs(np.diff(curves.error("moment"))).sum())
+
+
+def hand_pads(curve: Curve, n_strips: int) -> tuple[Floats, Floats]:
+    """Lump strips of equal width at their centroids: places [m] and forces [N] of the strips that carry load.
+
+    The strips divide the loaded span, and a point load between two strips goes to the outer one.
+    """
+    breaks = curve.breaks
+    edges = np.linspace(breaks[0], breaks[-1], n_strips + 1)
+    beyond, moment = curve.force_beyond(edges, "inboard"), curve.moment_beyond(edges)
+    beyond[-1] = 0.0
+    moment[-1] = 0.0
+    force = beyond[:-1] - beyond[1:]
+    width = np.diff(edges)
+    first_moment = moment[:-1] - moment[1:] - width * beyond[1:]
+    carries = np.abs(force) > 1e-12 * np.abs(force).max()
+    return edges[:-1][carries] + first_moment[carries] / force[carries], force[carries]
+
+
+def hand_errors(target: Target, n_pads: int) -> tuple[float, float]:
+    """Return the peak errors of moment and shear, as fractions of the target's peaks, of the usual hand method.
+
+    As many strips of equal width as there are pads, each lumped at its centroid, judged as the rig is.
+    """
+    lumped = curves(target, *hand_pads(target.net, n_pads))
+    moment, _ = peak_error(lumped, "moment", target.moment_peak)
+    shear, _ = peak_error(lumped, "shear", target.shear_peak)
+    return moment, shear
+
+
+def arms(piece: Piece) -> tuple[float, float]:
+    """Return the arms of a lever from its pivot to ends A and B [m], along the line of its end pins.
+
+    >>> from rigdesign.levers.model import Hole
+    >>> pivot = Hole("pivot", "jack 1", 0, 0, 1, 0)
+    >>> ends = Hole("A", "pad 1", -0.3, 0, 0.7, 0), Hole("B", "pad 2", 0.2, 0, 1.2, 0)
+    >>> arms(Piece(1, "lever", 1, "jack 1", (pivot, *ends)))
+    (0.3, 0.2)
+    """
+    pivot, (a, b) = piece.pivot, piece.ends[:2]
+    length = float(np.hypot(b.u - a.u, b.v - a.v))
+    along_u, along_v = (b.u - a.u) / length, (b.v - a.v) / length
+    to_a = (pivot.u - a.u) * along_u + (pivot.v - a.v) * along_v
+    return float(to_a), float((b.u - pivot.u) * along_u + (b.v - pivot.v) * along_v)
+
+
+def length(piece: Piece) -> float:
+    """Return the largest distance between two outer holes of a piece [m]."""
+    ends = piece.ends
+    return max(float(np.hypot(p.u - q.u, p.v - q.v)) for i, p in enumerate(ends) for q in ends[:i])
+
+
+def ratio(piece: Piece) -> float:
+    """Return a lever's longer arm over its shorter one, infinite where its pivot is not between its end pins."""
+    shorter, longer = sorted(arms(piece))
+    return longer / shorter if shorter > 0 else float("inf")
+
+
+def steel_estimate(rig: Rig, statics: Statics) -> float:
+    """Return Σ (P ab/(a+b))^(2/3) (a+b) over levers plus Σ (F r)^(2/3) r over the points of plates.
+
+    P, F are loads [N] at the brief's load, a, b arms, r distances from the pivot [m]; unit N^(2/3) m^(5/3).  A lever
+    that bends under P ab/(a+b) needs a section modulus, and so an area to the power 3/2, in proportion to it.
+    """
+    total = 0.0
+    for tree in rig.trees:
+        for piece in tree.pieces:
+            load = abs(statics.piece_load[piece.name])
+            if piece.kind == "lever":
+                a, b = arms(piece)
+                total += abs(load * a * b / (a + b)) ** (2 / 3) * (a + b)
+            else:
+                total += _plate_steel(piece, statics)
+    return total
+
+
+def _plate_steel(piece: Piece, statics: Statics) -> float:
+    total = 0.0
+    for hole in piece.ends:
+        kind, number = hole.joins.split()
+        force = statics.pad_force[int(number) - 1] if kind == "pad" else statics.piece_load[hole.joins]
+        r = float(np.hypot(hole.u - piece.pivot.u, hole.v - piece.pivot.v))
+        total += abs(force * r) ** (2 / 3) * r
+    return total
+
+
+def jack_offset(rig: Rig) -> float:
+    """Return how far the jacks' resultant stands outboard of the resultant that the pads must bring [m]."""
+    force = rig.jack_forces
+    jack_x = np.array([tree.jack.x for tree in rig.trees])
+    net = rig.plan.target.net
+    return float(force @ jack_x / force.sum() - net.first_moment / net.total)
+
+
+def sum_residuals(rig: Rig, statics: Statics) -> tuple[float, float]:
+    """Return what is left of ΣF [of the jacks' force] and ΣFx [of that force times the span], pads against jacks."""
+    force, pads = rig.jack_forces, statics.pad_force
+    jack_x = np.array([tree.jack.x for tree in rig.trees])
+    specimen = rig.plan.target.brief.specimen
+    span, size = specimen.right - specimen.left, float(np.abs(force).sum())
+    # about the first jack, so that the place of the origin does not cost digits
+    about = jack_x[0]
+    moment = pads @ (rig.pad_x - about) - force @ (jack_x - about)
+    return abs(float(pads.sum() - force.sum())) / size, abs(float(moment)) / (size * span)

@@ -1,0 +1,234 @@
+"""Remarks of the stage "practice": the limits of the brief and what the trade is used to.
+
+Pad forces and pressures are held to their limits at the peak of the test.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+import numpy as np
+
+from rigdesign.checks.measures import arms, length, ratio
+from rigdesign.checks.model import Check
+from rigdesign.checks.text import also, percent
+from rigdesign.display import show
+from rigdesign.findings import Finding
+from rigdesign.levers.model import Piece
+from rigdesign.target.curve import Floats
+
+USUAL_RATIO = 4.0  # common practice: 4 is accepted, above 5 avoided
+IDLE_PAD = 0.05  # of the mean pad force: such a pad is hardware for nothing
+LENGTH_SLACK = 1e-9  # m: a pad at its limit must not fail by rounding
+FORCE_SLACK = 1e-9  # of the limit, for the same reason
+
+
+def practice_remarks(check: Check) -> Iterator[Finding]:
+    """Yield the remarks of this stage, not numbered yet, in a fixed order."""
+    yield from _pad_forces(check)
+    yield from _pad_places(check)
+    yield from _levers(check)
+    yield from _idle_pads(check)
+    yield from _aim(check)
+
+
+def _failure(where: str, text: str, value: str, limit: str, remedy: str) -> Finding:
+    return Finding("practice", "failure", where, text, value, limit, remedy)
+
+
+def _worst_pad(excess: Floats) -> tuple[int, str]:
+    """The pad that breaks a limit most, counted from 0, and the others in words; excess (n_pads,) > 0 breaks."""
+    worst = int(np.argmax(excess))
+    return worst, also(f"pad {i + 1}" for i in np.flatnonzero(excess > 0) if i != worst)
+
+
+def pressures(check: Check) -> Floats | None:
+    """Return the pressure under each pad [Pa] at the brief's load, (n_pads,); None where the pads have no width."""
+    rules = check.rig.plan.target.brief.pads
+    if rules.width is None or rules.length <= 0:
+        return None
+    return np.asarray(np.abs(check.statics.pad_force) / (rules.length * rules.width))
+
+
+def _pad_forces(check: Check) -> Iterator[Finding]:
+    brief = check.rig.plan.target.brief
+    rules = brief.pads
+    peak = f"at {percent(brief.peak)} of the brief's load, the peak of the test"
+    force = np.abs(check.statics.pad_force) * brief.peak
+    if (force > rules.largest_force * (1 + FORCE_SLACK)).any():
+        worst, others = _worst_pad(force - rules.largest_force * (1 + FORCE_SLACK))
+        yield _failure(
+            f"pad {worst + 1}",
+            f"the pad force is above largest_force, {peak}{others}",
+            show(float(force[worst]), "force"),
+            show(rules.largest_force, "force"),
+            "more pads, or pads that bear more",
+        )
+    if (force < rules.least_force * (1 - FORCE_SLACK)).any():
+        worst, others = _worst_pad(rules.least_force * (1 - FORCE_SLACK) - force)
+        yield _failure(
+            f"pad {worst + 1}",
+            f"the pad force is below least_force, {peak}{others}",
+            show(float(force[worst]), "force"),
+            show(rules.least_force, "force"),
+            "fewer pads, or other places for them",
+        )
+    pressure = pressures(check)
+    if pressure is not None and (pressure * brief.peak > rules.largest_pressure * (1 + FORCE_SLACK)).any():
+        worst, others = _worst_pad(pressure * brief.peak - rules.largest_pressure * (1 + FORCE_SLACK))
+        yield _failure(
+            f"pad {worst + 1}",
+            f"the pressure under the pad is above largest_pressure, {peak}{others}",
+            show(float(pressure[worst] * brief.peak), "pressure"),
+            show(rules.largest_pressure, "pressure"),
+            "larger or more pads",
+        )
+
+
+def _pad_places(check: Check) -> Iterator[Finding]:
+    brief = check.rig.plan.target.brief
+    rules, specimen = brief.pads, brief.specimen
+    x = check.rig.pad_x
+    start, end = x - rules.length / 2, x + rules.length / 2
+    off = np.maximum(specimen.left - start, end - specimen.right) - LENGTH_SLACK
+    if (off > 0).any():
+        worst, others = _worst_pad(off)
+        yield _failure(
+            f"pad {worst + 1}",
+            f"the pad's footprint reaches off the specimen{others}",
+            f"{_m(float(start[worst]))} to {_m(float(end[worst]))}",
+            f"{_m(specimen.left)} to {_m(specimen.right)}",
+            "move the pad or make it shorter",
+        )
+    for low, high in rules.keep_out:
+        into = np.minimum(end - low, high - start) - LENGTH_SLACK
+        if (into > 0).any():
+            worst, others = _worst_pad(into)
+            yield _failure(
+                f"pad {worst + 1}",
+                f"the pad's footprint reaches into the keep-out from {_m(low)} to {_m(high)}{others}",
+                f"{_m(float(start[worst]))} to {_m(float(end[worst]))}",
+                "clear of it",
+                "move the pad",
+            )
+    yield from _gaps(check, x)
+
+
+def _gaps(check: Check, x: Floats) -> Iterator[Finding]:
+    rules = check.rig.plan.target.brief.pads
+    order = np.argsort(x, kind="stable")
+    gap = np.diff(x[order]) - rules.length
+    if (gap < rules.gap - LENGTH_SLACK).any():
+        least = int(np.argmin(gap))
+        first, second = order[least] + 1, order[least + 1] + 1
+        others = int((gap < rules.gap - LENGTH_SLACK).sum()) - 1
+        yield _failure(
+            f"pad {first} and pad {second}",
+            "the gap between the pads is too small" + (f"; so too {others} more" if others else ""),
+            show(float(gap[least]), "length"),
+            show(rules.gap, "length"),
+            "move the pads apart, make them shorter or take fewer",
+        )
+
+
+def _levers(check: Check) -> Iterator[Finding]:
+    rules = check.rig.plan.target.brief.levers
+    pieces = [piece for tree in check.rig.trees for piece in tree.pieces]
+    levers = [piece for piece in pieces if piece.kind == "lever"]
+    yield from _ratios(levers, rules.ratio_limit)
+    short = {piece: _shortest(piece) for piece in pieces if _shortest(piece) < rules.shortest_arm - LENGTH_SLACK}
+    if short:
+        worst = min(short, key=lambda piece: short[piece])
+        yield _failure(
+            worst.name,
+            f"the shortest arm is too short{_others(short, worst)}",
+            show(short[worst], "length"),
+            show(rules.shortest_arm, "length"),
+            "join other pads, or move them apart",
+        )
+    long = {piece: length(piece) for piece in pieces if length(piece) > rules.longest + LENGTH_SLACK}
+    if long:
+        worst = max(long, key=lambda piece: long[piece])
+        yield _failure(
+            worst.name,
+            f"the {worst.kind} is too long{_others(long, worst)}",
+            show(long[worst], "length"),
+            show(rules.longest, "length"),
+            "more jacks, or a longer lever allowed",
+        )
+    tiers = max((piece.tier for piece in pieces), default=0)
+    if rules.tiers is not None and tiers > rules.tiers:
+        deepest = next(piece for piece in pieces if piece.tier == tiers)
+        yield _failure(
+            deepest.name, "the tree has too many tiers", str(tiers), str(rules.tiers), "group the pads otherwise"
+        )
+
+
+def _ratios(levers: list[Piece], limit: float) -> Iterator[Finding]:
+    over = {piece: ratio(piece) for piece in levers if ratio(piece) > limit * (1 + FORCE_SLACK)}
+    if over:
+        worst = max(over, key=lambda piece: over[piece])
+        yield _failure(
+            worst.name,
+            f"the lever ratio is above ratio_limit{_others(over, worst)}",
+            f"{over[worst]:.3g}" if np.isfinite(over[worst]) else "the pivot is not between the end pins",
+            f"{limit:.3g}",
+            "group the pads otherwise, or even out their forces",
+        )
+    high = {p: ratio(p) for p in levers if p not in over and ratio(p) > USUAL_RATIO * (1 + FORCE_SLACK)}
+    if high:
+        worst = max(high, key=lambda piece: high[piece])
+        yield Finding(
+            "practice",
+            "note",
+            worst.name,
+            f"the lever ratio is higher than is usual, though within the brief's limit{_others(high, worst)}",
+            f"{high[worst]:.3g}",
+            f"{USUAL_RATIO:.0f} by common practice",
+            "a small error of the pivot's place moves much load on such a lever; drill it with care",
+        )
+
+
+def _shortest(piece: Piece) -> float:
+    if piece.kind == "lever":
+        return min(arms(piece))
+    return min(float(np.hypot(hole.u - piece.pivot.u, hole.v - piece.pivot.v)) for hole in piece.ends)
+
+
+def _others(breakers: dict[Piece, float], worst: Piece) -> str:
+    return also(piece.name for piece in breakers if piece is not worst)
+
+
+def _idle_pads(check: Check) -> Iterator[Finding]:
+    force = np.abs(check.statics.pad_force)
+    share = force / force.mean()
+    if (share < IDLE_PAD).any():
+        worst, others = _worst_pad(IDLE_PAD - share)
+        yield Finding(
+            "practice",
+            "warning",
+            f"pad {worst + 1}",
+            f"the pad carries next to nothing{others}",
+            f"{show(float(force[worst]), 'force')}, {percent(float(share[worst]))} of the mean pad force",
+            f"{percent(IDLE_PAD)} of the mean pad force, by common practice",
+            'leave the pad out, or let the forces be more even: aim = "even", or more ease',
+        )
+
+
+def _aim(check: Check) -> Iterator[Finding]:
+    plan = check.rig.plan
+    rules = plan.target.brief.pads
+    strove = {
+        "closest": f"least band use first, then forces as even as {percent(rules.ease)} more band use allows",
+        "even": "forces as close to each pad's share of the curve as the bands allow",
+    }[rules.aim]
+    if rules.places == "free" and rules.aim == "closest":
+        strove = "least band use; the places of free pads leave no choice of forces beyond that"
+    evenness = f"up to {percent(plan.proof.evenness)} of its share of the curve"
+    yield Finding(
+        "practice", "note", "pads", f'the aim "{rules.aim}" was {strove}', f"a pad's force is off by {evenness}"
+    )
+
+
+def _m(value: float) -> str:
+    return show(value, "length", unit="m")
