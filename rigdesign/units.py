@@ -13,6 +13,7 @@ Depends on: errors, display.
 from __future__ import annotations
 
 import difflib
+import json
 import math
 import re
 from collections.abc import Sequence
@@ -255,7 +256,7 @@ def _number_and_unit(value: object, kind: Kind, where: str) -> tuple[str, str]:
         raise _bare(repr(value), kind, where)
     limit = kind.accepted
     if not isinstance(value, str):
-        raise InputError(f"{kind.article} with its unit is due", where=where, value=_shown(value), limit=limit)
+        raise InputError(f"{kind.article} with its unit is due", where=where, value=in_words(value), limit=limit)
     if not value.strip():
         raise InputError(f"{kind.article} with its unit is due, and this is empty", where=where, limit=limit)
     match = _QUANTITY.fullmatch(value)
@@ -278,9 +279,9 @@ def _bare(number: str, kind: Kind, where: str) -> InputError:
     return InputError(what, where=where, value=number, limit=kind.accepted)
 
 
-def _shown(value: object) -> str:
-    """A value of a file for a message, in the file's own words and not too long."""
-    text = {True: "true", False: "false"}.get(value, repr(value)) if isinstance(value, bool) else repr(value)
+def in_words(value: object) -> str:
+    """Return a value of a file for a message, much as the file writes it and not too long."""
+    text = json.dumps(value, ensure_ascii=False, default=str)
     return text if len(text) <= 60 else text[:57] + "..."
 
 
@@ -366,5 +367,5 @@ def column_fraction(heading: str, kind: str, where: str = "") -> Fraction:
 
 
 def scaled(values: NDArray[np.float64], factor: Fraction) -> NDArray[np.float64]:
-    """Return a column (n,) in SI; whole numerator and denominator are used so that 700 mm is 0.7 m to the last digit."""
+    """Return a column (n,) in SI, by whole numerator and denominator: 700 mm is 0.7 m to the last digit."""
     return values * float(factor.numerator) / float(factor.denominator)

@@ -1,1 +1,77 @@
-"""Stage: brief."""
+"""The brief: what is to be tested and within which limits, as a person writes it.
+
+In goes a TOML file with the CSV tables that it names, or the texts of both as an earlier reading kept them.  Out comes
+a `Brief` (`rigdesign.brief.model`): validated, in SI units, frozen, tables read, every default filled in.
+
+    model      the frozen dataclasses that all later stages read
+    layout     the file as it is laid out: tables, keys, defaults, descriptions; the JSON Schema comes from here
+    fields     how one value is read
+    locate     the line of each key
+    messages   what pydantic finds, in one plain message
+    sources    texts of brief and tables, from the folder or kept
+    tables     CSV with units in its headings
+    loads      [specimen] and [[load]]
+    build      everything else that concerns several keys at once
+    read       all of it in order
+
+What is decided here, where a file could be read in two ways:
+
+- A quantity is one number and one unit in a string; a fraction is a percentage; `lb` and `kg` are masses, `lbf` and
+  `kgf` forces.
+- A load is one of shape, table, internal, forces, point, inertia.  A linear shape has `start` and `end` and no total,
+  every other shape a total that is not zero.
+- A table has exactly its own columns, in any order, and maybe one named "note".  Rows are in order of x.  Two rows at
+  one x are a jump in running loads, masses per length, chords and internal loads; among point loads, point masses,
+  hard points and pads they are an error.
+- Internal tables counted from the tip are turned round; their signs stay.  A torsion column may be there if it holds
+  zeros.
+- A region's percentages are of what [acceptance] says unless it says otherwise itself.
+- Tables lie in the folder of the brief or below it.
+
+Bad input raises `BriefError` or `TableError`, one fault at a time, with file, line, key, value, limit and remedy.
+
+Depends on: units, display, errors, words.
+"""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+if TYPE_CHECKING:
+    from rigdesign.brief.model import Brief, Source
+
+SCHEMA_FILE = "brief.schema.json"
+"""Name of the shipped JSON Schema, beside this file."""
+
+
+# The imports below are late: the model is imported by every stage, while reading needs pydantic and pint.
+
+
+def read_brief(path: str | Path) -> Brief:
+    """Read a brief and the tables it names.
+
+    Raises
+    ------
+    BriefError
+        If the brief cannot be read, contradicts itself, or names what is not there.
+    TableError
+        If one of its tables cannot be used.
+    """
+    from rigdesign.brief.read import read_from_folder
+
+    return read_from_folder(Path(path))
+
+
+def brief_from_source(source: Source) -> Brief:
+    """Read a brief again from the texts that `Brief.source` kept; raises as `read_brief` does."""
+    from rigdesign.brief.read import read_from_source
+
+    return read_from_source(source)
+
+
+def schema() -> dict[str, Any]:
+    """Return the JSON Schema of the brief's file, which is also shipped as brief.schema.json."""
+    from rigdesign.brief.describe import brief_schema
+
+    return brief_schema()

@@ -1,0 +1,92 @@
+"""What every part of the reading needs to know, and checks that several parts share."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+
+from rigdesign.brief.locate import Places
+from rigdesign.brief.model import Floats, Specimen
+from rigdesign.brief.sources import Texts
+from rigdesign.brief.tables import CsvTable, Repeats, read_table
+from rigdesign.display import show
+from rigdesign.errors import BriefError, TableError
+from rigdesign.units import in_words
+
+END_TOLERANCE = 1e-9
+"""Of the span: a station that lies off an end by no more than this is on it (rounding of converted units)."""
+
+
+@dataclass(frozen=True)
+class Context:
+    """The file's content as TOML gives it, the places of its keys, and the texts of its tables."""
+
+    raw: dict[str, Any]
+    places: Places
+    texts: Texts
+
+    def error(
+        self, what: str, *path: str | int, limit: str = "", remedy: str = "", value: str | None = None
+    ) -> BriefError:
+        """Return a BriefError at a key, with the value that stands there unless another is given."""
+        if value is None:
+            value = self._written(path)
+        return BriefError(what, where=self.places.where(*path), value=value, limit=limit, remedy=remedy)
+
+    def _written(self, path: tuple[str | int, ...]) -> str:
+        found: Any = self.raw
+        for part in path:
+            if isinstance(found, dict) and part not in found:
+                return ""
+            found = found[part]
+        return "" if isinstance(found, dict) else in_words(found)
+
+    def table(
+        self, name: str, path: tuple[str | int, ...], kinds: dict[str, str], *, repeats: Repeats = "none",
+        optional: dict[str, str] | None = None,
+    ) -> CsvTable:  # fmt: skip
+        """Read the table that the key at `path` names."""
+        text = self.texts.table(name, self.places.where(*path))
+        return read_table(text, name, kinds, repeats=repeats, optional=optional)
+
+    def station(self, x: float, specimen: Specimen, *path: str | int, what: str = "the station") -> float:
+        """Return a station that lies on the specimen, moved onto its end if only rounding parts them."""
+        slack = END_TOLERANCE * (specimen.right - specimen.left)
+        if not specimen.left - slack <= x <= specimen.right + slack:
+            raise self.error(f"{what} lies off the specimen", *path, limit=extent(specimen))
+        return min(max(x, specimen.left), specimen.right)
+
+
+def extent(specimen: Specimen) -> str:
+    """Return the specimen's extent for a message."""
+    return between(specimen.left, specimen.right)
+
+
+def between(start: float, end: float) -> str:
+    """Return two stations for a message: "0.200 m to 3.400 m"."""
+    return f"{show(start, 'length', unit='m')} to {show(end, 'length', unit='m')}"
+
+
+def table_stations(table: CsvTable, specimen: Specimen, x: Floats | None = None) -> Floats:
+    """Return the stations of a table (n,) [m], all on the specimen; raise TableError naming the first row that is not.
+
+    `x` gives the stations where they are not the column x itself.
+    """
+    x = table["x"] if x is None else x
+    slack = END_TOLERANCE * (specimen.right - specimen.left)
+    off = np.flatnonzero((x < specimen.left - slack) | (x > specimen.right + slack))
+    if off.size:
+        row = int(off[0])
+        station = show(float(x[row]), "length", unit="m")
+        raise TableError("the row lies off the specimen", where=table.where(row),
+                         value=f"{table.cell('x', row)} ({station} from x = 0)", limit=extent(specimen),
+                         remedy="check the unit in the heading and the origin of x")  # fmt: skip
+    return frozen(np.clip(x, specimen.left, specimen.right))
+
+
+def frozen(values: Floats) -> Floats:
+    """Return the array, now read-only."""
+    values.setflags(write=False)
+    return values

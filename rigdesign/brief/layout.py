@@ -1,0 +1,240 @@
+"""The brief's file as it is laid out: every table and key with its default and description.
+
+The JSON Schema is generated from these models.  They check the structure and each value by itself; what concerns
+several keys at once, and the tables, is checked in `rigdesign.brief.build`.  Values are in SI once read.
+"""
+
+from __future__ import annotations
+
+from typing import Annotated, Any
+
+from pydantic import BaseModel, ConfigDict, Discriminator, Field, Tag
+
+from rigdesign.brief import fields as f
+
+
+def _key(description: str, default: Any = None, **more: Any) -> Any:
+    """A key that may be left out; a default is written as in a brief and read like any other value."""
+    return Field(default, description=description, validate_default=default is not None, **more)
+
+
+def _needed(description: str, **more: Any) -> Any:
+    """A key that must be there."""
+    return Field(description=description, **more)
+
+
+class Table(BaseModel):
+    """Base of every table: unknown keys are errors."""
+
+    model_config = ConfigDict(extra="forbid", frozen=True, arbitrary_types_allowed=True, use_attribute_docstrings=False)
+
+
+class SpecimenTable(Table):
+    """The thing under test."""
+
+    support: f.SupportWord = _needed("How the specimen is held.")
+    root: f.Length | None = _key("Cantilever: station at which it is held.")
+    tip: f.Length | None = _key("Cantilever: station of its free end, outboard of the root.")
+    ends: f.TwoLengths | None = _key("Two supports: stations of the two ends of the specimen.")
+    supports: f.TwoLengths | None = _key("Two supports: stations of the supports.")
+    weight: f.Text | None = _key(
+        "Table of the specimen's mass: x [m], mass [kg/m]. The target then includes its weight."
+    )
+    point_masses: f.Text | None = _key("Table of point masses: x [m], mass [kg].")
+    gravity: f.GravityWord = _key("Gravity acts against z (along −z) or with it (along +z).", "against")
+
+
+class LoadEntry(Table):
+    """What every load has."""
+
+    times: f.Factor = _key("Factor on this load.", 1.0)
+
+
+class Stretch(LoadEntry):
+    """A load over a stretch of the span."""
+
+    from_: f.Length | None = _key("Inboard end of the load; default: that of the specimen.", alias="from")
+    to: f.Length | None = _key("Outboard end of the load; default: that of the specimen.")
+
+
+class ShapeEntry(Stretch):
+    """A running load of a named shape."""
+
+    shape: f.ShapeWord = _needed("Name of the shape.")
+    total: f.Force | None = _key("Sum of the load along z; every shape but linear needs it.")
+    start: f.RunningLoad | None = _key("Linear: running load at the inboard end.")
+    end: f.RunningLoad | None = _key("Linear: running load at the outboard end.")
+    greatest: f.EndWord | None = _key('Triangular: the end with the greatest load; default "root".')
+    exponent: f.PositiveNumber | None = _key("Power: exponent of (1 − ξ).")
+    chord: f.Text | None = _key("Schrenk: table of the chord: x [m], chord [m].")
+
+
+class TableEntry(LoadEntry):
+    """A running load as a table."""
+
+    table: f.Text = _needed("Table of the running load: x [m], load [N/m].")
+
+
+class InternalEntry(LoadEntry):
+    """A table of shear and moment, cantilevers only."""
+
+    internal: f.Text = _needed("Table of shear and moment: x [m], shear [N], moment [N*m].")
+    reverse: f.Columns = _key("Columns whose sign is opposite to the conventions.", [])
+    stations_from: f.OriginWord | None = _key(
+        '"tip" if stations count from the tip inboard; default: the specimen\'s x.'
+    )
+
+
+class ForcesEntry(LoadEntry):
+    """A table of point loads."""
+
+    forces: f.Text = _needed("Table of point loads: x [m], force [N].")
+
+
+class PointEntry(LoadEntry):
+    """One point load."""
+
+    point: f.Force = _needed("A point load along z.")
+    at: f.Length = _needed("Station of the point load.")
+
+
+class InertiaEntry(LoadEntry):
+    """Inertia of the specimen's weight table."""
+
+    inertia: f.Factor = _needed("Load factor: so many g times the weight table, along +z when positive.")
+
+
+LOAD_ENTRIES: dict[str, type[LoadEntry]] = {
+    "shape": ShapeEntry,
+    "table": TableEntry,
+    "internal": InternalEntry,
+    "forces": ForcesEntry,
+    "point": PointEntry,
+    "inertia": InertiaEntry,
+}
+"""The kinds of [[load]], by the key that tells them apart."""
+
+
+def load_kind(value: object) -> str | None:
+    """Return the one key that tells what kind of load this is; None where there is none, or more than one."""
+    kinds = [kind for kind in LOAD_ENTRIES if isinstance(value, dict) and kind in value]
+    return kinds[0] if len(kinds) == 1 else None
+
+
+LoadUnion = Annotated[
+    Annotated[ShapeEntry, Tag("shape")]
+    | Annotated[TableEntry, Tag("table")]
+    | Annotated[InternalEntry, Tag("internal")]
+    | Annotated[ForcesEntry, Tag("forces")]
+    | Annotated[PointEntry, Tag("point")]
+    | Annotated[InertiaEntry, Tag("inertia")],
+    Discriminator(load_kind),
+]
+
+
+class TestTable(Table):
+    """How the test is run."""
+
+    __test__ = False  # not a test, whatever its name says to pytest
+    peak: f.Percentage = _key("Highest load of the test, of the brief's load; limits are held at it.", "100 %")
+
+
+class PadsTable(Table):
+    """The pads."""
+
+    count: f.Count | None = _key('Number of pads, or "fewest". Fixed places: default all stations.')
+    places: f.PlacesWord = _key("Where pads may sit.", "free")
+    stations: f.Lengths | None = _key("Stations of fixed pads or hard points, in order.")
+    table: f.Text | None = _key("Table of the stations instead: x [m].")
+    length: f.PositiveLength | None = _key("Footprint along x; default: a point.")
+    width: f.PositiveLength | None = _key("Footprint across.")
+    gap: f.LengthOrZero = _key("Least clear distance between two footprints.", "0 m")
+    largest_force: f.PositiveForce | None = _key("Most that a pad may carry at the peak of the test.")
+    least_force: f.ForceOrZero = _key("Least that a pad must carry at the peak of the test.", "0 N")
+    largest_pressure: f.PositivePressure | None = _key("Most pressure under a footprint at the peak of the test.")
+    keep_out: f.Pairs = _key("Stretches where no pad may sit: a list of pairs of stations.", [])
+    action: f.ActionWord = _key("pull: links in tension; push: in compression.", "pull")
+    aim: f.AimWord = _key("closest: least band use, then even forces within `ease`; even: as even as the bands allow.",
+                          "closest")  # fmt: skip
+    ease: f.PercentageOrZero = _key("How much band use may be given up for even forces, of the least.", "2 %")
+
+
+class LeversTable(Table):
+    """The levers."""
+
+    drill_step: f.PositiveLength = _key("Arms are whole multiples of it.", "1 mm")
+    ratio_limit: f.Ratio = _key("Greatest ratio of longer to shorter arm.", 5.0)
+    shortest_arm: f.LengthOrZero = _key("Shortest arm; default: none.", "0 m")
+    longest: f.PositiveLength | None = _key("Greatest distance between outer holes; default: none.")
+    tiers: f.Whole | None = _key("Most levers between jack and pad; default: none.")
+    grouping: f.Groups | None = _key("Who hangs with whom, nested pairs of pad numbers; otherwise it is found.")
+
+
+class JackTable(Table):
+    """Where the jack can stand; default: at the resultant."""
+
+    at: f.Length | None = _key("Its station.")
+    step: f.PositiveLength | None = _key("It can stand at multiples of this, counted from x = 0.")
+
+
+class Bands(Table):
+    """Accepted errors."""
+
+    moment: f.MomentBand | None = _key("Band on the moment, both sides.")
+    moment_under: f.MomentBand | None = _key("Band on under-test of the moment; overrides `moment`.")
+    moment_over: f.MomentBand | None = _key("Band on over-test of the moment; overrides `moment`.")
+    shear: f.ShearBand | None = _key("Band on the shear, both sides.")
+    shear_under: f.ShearBand | None = _key("Band on under-test of the shear; overrides `shear`.")
+    shear_over: f.ShearBand | None = _key("Band on over-test of the shear; overrides `shear`.")
+    of: f.OfWord | None = _key("What percentages are of: the peak of the target's curve (default) or its local value.")
+
+
+class RegionTable(Bands):
+    """Accepted errors between two stations; what is not named here holds as for the whole span."""
+
+    from_: f.Length = _needed("Inboard end of the region.", alias="from")
+    to: f.Length = _needed("Outboard end of the region.")
+
+
+class AcceptanceTable(Bands):
+    """Accepted errors; default: moment 2 % of the peak of the target's curve."""
+
+    region: list[RegionTable] = _key("Regions with bands of their own.", [])
+
+
+class BriefFile(Table):
+    """What is to be tested and within which limits."""
+
+    title: f.Text | None = _key("Title of the test; default: the name of the file.")
+    specimen: SpecimenTable = _needed("The thing under test.")
+    load: list[LoadUnion] = _needed("The loads; several add up to the target.", min_length=1)
+    test: TestTable = _key("How the test is run.", {})
+    pads: PadsTable = _needed("The pads.")
+    levers: LeversTable = _key("The levers.", {})
+    jack: JackTable = _key("Where the jack can stand.", {})
+    acceptance: AcceptanceTable | None = _key("Accepted errors.")
+
+
+TABLES: dict[str, type[Table]] = {
+    "specimen": SpecimenTable,
+    "test": TestTable,
+    "pads": PadsTable,
+    "levers": LeversTable,
+    "jack": JackTable,
+    "acceptance": AcceptanceTable,
+}
+"""The single tables of a brief by name."""
+
+PLAN_KEYS = {
+    "specimen": {"outline", "axis", "cut", "weight_line"},
+    "load": {"line", "pressure", "torque", "couple"},
+    "pads": {"spars", "ribs", "rows", "edge", "keep_out_areas"},
+    "levers": {"plates", "pair", "clearance"},
+    "acceptance": {"torsion", "torsion_under", "torsion_over", "across", "across_under", "across_over"},
+}
+"""Keys that belong to plan rigs, by table."""
+
+
+def keys_of(table: type[Table]) -> list[str]:
+    """Return the keys of a table as they are written in the file."""
+    return [info.alias or name for name, info in table.model_fields.items()]

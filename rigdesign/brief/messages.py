@@ -1,0 +1,137 @@
+"""What pydantic finds wrong with a brief, said in one plain message.
+
+A file can have several faults; the one reported is an unknown key if there is one, because a misspelt key makes others
+seem missing, and otherwise the first in the file.
+"""
+
+from __future__ import annotations
+
+import difflib
+from typing import Any
+
+from pydantic import ValidationError
+
+from rigdesign.brief.layout import LOAD_ENTRIES, PLAN_KEYS, TABLES, BriefFile, RegionTable, Table, keys_of, load_kind
+from rigdesign.brief.locate import Path, Places
+from rigdesign.errors import BriefError, InputError
+from rigdesign.units import in_words
+
+PLAN_RIG = "belongs to plan rigs, which this version does not design yet"
+_AT_END = 10**9
+
+
+def brief_error(error: ValidationError, raw: dict[str, Any], places: Places) -> BriefError:
+    """Return the one message for what pydantic found in the file's content `raw`."""
+    faults = [(_path(fault["loc"]), fault) for fault in error.errors(include_url=False)]
+
+    def rank(item: tuple[Path, Any]) -> tuple[bool, int]:
+        path, fault = item
+        return fault["type"] != "extra_forbidden", places.lines.get(path, _AT_END)
+
+    path, fault = min(faults, key=rank)
+    kind = fault["type"]
+    if kind == "extra_forbidden":
+        return _unknown_key(path, raw, places)
+    if kind == "missing":
+        return _missing(path, places)
+    if kind == "union_tag_not_found":
+        return _what_load(path, fault["input"], places)
+    inner = fault.get("ctx", {}).get("error")
+    if isinstance(inner, InputError):
+        return placed(inner, places.where(*path), plan=_is_plan_place(path, fault["input"]))
+    return _structure(path, fault, places)
+
+
+def placed(error: InputError, where: str, *, plan: bool = False) -> BriefError:
+    """Return a BriefError with the place added."""
+    if plan:
+        return BriefError(f"a place given by x and y {PLAN_RIG}", where=where, remedy="give x alone")
+    return BriefError(error.what, where=where, value=error.value, limit=error.limit, remedy=error.remedy)
+
+
+def _is_plan_place(path: Path, value: object) -> bool:
+    """Whether a point load's place is a pair, as on plan rigs."""
+    return path[0] == "load" and path[-1] == "at" and isinstance(value, list) and len(value) == 2
+
+
+def _path(loc: tuple[int | str, ...]) -> Path:
+    """Return the path in the file: without the kind of load that pydantic puts behind its number, or list positions."""
+    if loc[0] == "load" and len(loc) > 2:
+        return (*loc[:2], *loc[3:4])
+    return loc[:4] if loc[:2] == ("acceptance", "region") else loc[:2]
+
+
+def _table_at(path: Path, raw: dict[str, Any]) -> type[Table]:
+    """Return the model of the table that holds the key at `path`."""
+    if len(path) == 1:
+        return BriefFile
+    if path[0] == "load":
+        return LOAD_ENTRIES[load_kind(raw["load"][path[1]]) or "shape"]
+    return RegionTable if len(path) == 4 else TABLES[str(path[0])]
+
+
+def _unknown_key(path: Path, raw: dict[str, Any], places: Places) -> BriefError:
+    """Return the message for a key that this table does not have."""
+    key, home = str(path[-1]), str(path[0])
+    where = places.where(*path)
+    if key in PLAN_KEYS.get(home, ()):
+        return BriefError(f'"{key}" {PLAN_RIG}', where=where, remedy="delete it to design a line rig")
+    known = keys_of(_table_at(path, raw))
+    table = "a brief" if len(path) == 1 else _called(path, raw)
+    what = f'"{key}" is no key of {table}'
+    near = difflib.get_close_matches(key.lower(), known, n=1, cutoff=0.6)
+    if near:
+        return BriefError(what, where=where, remedy=f'did you mean "{near[0]}"?')
+    others = [f"[{name}]" for name, model in TABLES.items() if key in keys_of(model)]
+    others += [f'[[load]] with "{kind}"' for kind, model in LOAD_ENTRIES.items() if key in keys_of(model)]
+    if others:
+        return BriefError(what, where=where, remedy=f"it belongs to {' or '.join(others)}")
+    return BriefError(what, where=where, limit=", ".join(known))
+
+
+def _called(path: Path, raw: dict[str, Any]) -> str:
+    if path[0] == "load":
+        return f'a [[load]] with "{load_kind(raw["load"][path[1]])}"'
+    return "[[acceptance.region]]" if len(path) == 4 else f"[{path[0]}]"
+
+
+def _missing(path: Path, places: Places) -> BriefError:
+    """Return the message for a key or table that must be there."""
+    key = str(path[-1])
+    if len(path) > 1:
+        return BriefError(f'the key "{key}" is missing', where=places.where(*path[:-1]))
+    form = "[[load]]" if key == "load" else f"[{key}]"
+    return BriefError(f"the table {form} is missing", where=places.name, remedy=f"add {form}")
+
+
+def _what_load(path: Path, value: object, places: Places) -> BriefError:
+    """Return the message for a load that says not what it is, or says two things."""
+    where, kinds = places.where(*path), ", ".join(LOAD_ENTRIES)
+    if not isinstance(value, dict):
+        return BriefError(
+            "a load is a table", where=where, value=in_words(value), remedy="write [[load]] above its keys"
+        )
+    given = [kind for kind in LOAD_ENTRIES if kind in value]
+    if given:
+        what = f"a load is one thing, and this one names {len(given)}"
+        return BriefError(what, where=where, value=", ".join(given), remedy="write a [[load]] for each; they are added")
+    plan = [key for key in value if key in PLAN_KEYS["load"]]
+    if plan:
+        return BriefError(f'"{plan[0]}" {PLAN_RIG}', where=places.where(*path, plan[0]), remedy="delete this load")
+    near = [match for key in value for match in difflib.get_close_matches(str(key).lower(), list(LOAD_ENTRIES), n=1)]
+    remedy = f'did you mean "{near[0]}"?' if near else ""
+    return BriefError("the load does not say what it is", where=where, limit=f"exactly one of {kinds}", remedy=remedy)
+
+
+def _structure(path: Path, fault: Any, places: Places) -> BriefError:
+    """Return the message for a table where there is none, and the like."""
+    where = places.where(*path)
+    if path == ("load",) or path[:2] == ("acceptance", "region"):
+        form = "[[load]]" if path == ("load",) else "[[acceptance.region]]"
+        if fault["type"] == "too_short":
+            return BriefError("there is no load", where=where, remedy="add a [[load]]")
+        return BriefError(f"{form} has double brackets", where=where, remedy=f"write {form} above each")
+    form = f"[{path[0]}]"
+    return BriefError(
+        f"{form} is a table", where=where, value=in_words(fault["input"]), remedy=f"write {form} above its keys"
+    )
