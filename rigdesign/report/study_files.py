@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-import json
 from typing import Any
 
 from rigdesign.chain import Study, StudyRow
 from rigdesign.findings import Refusal
+from rigdesign.report.tables import Cell, csv_bytes, json_bytes
 
 COLUMNS = (
     "pads", "verdict", "moment_error_peak", "moment_error_least", "shear_error_peak", "band_use", "band_use_least",
@@ -52,24 +52,14 @@ def _row(study: Study, row: StudyRow) -> dict[str, Any]:
     }
 
 
-def study_csv(study: Study) -> str:
+def study_csv(study: Study) -> bytes:
     """Return the study as a table; what is not known for a row without a rig stays empty."""
-    lines = [",".join(COLUMNS)]
-    for row in study_object(study)["rows"]:
-        lines.append(",".join(_cell(row[column]) for column in COLUMNS))
-    return "\n".join(lines) + "\n"
+    rows = [[_cell(row[column]) for column in COLUMNS] for row in study_object(study)["rows"]]
+    return csv_bytes(COLUMNS, rows)
 
 
-def _cell(value: object) -> str:
-    """A cell: numbers with every digit, text without commas, quotes or line ends, never a formula."""
-    if value is None:
-        return ""
-    if isinstance(value, bool):
-        return "yes" if value else "no"
-    if isinstance(value, int | float):
-        return repr(value)
-    text = " ".join(str(value).replace(",", ";").replace('"', "'").split())
-    return f"'{text}" if text[:1] in ("=", "+", "-", "@") else text
+def _cell(value: Cell) -> Cell:
+    return ("yes" if value else "no") if isinstance(value, bool) else value
 
 
 def study_files(study: Study, *, png: bool = False) -> dict[str, bytes]:
@@ -77,6 +67,5 @@ def study_files(study: Study, *, png: bool = False) -> dict[str, bytes]:
     from rigdesign.report.figures_study import study_sheet
     from rigdesign.report.writing import drawn
 
-    text = json.dumps(study_object(study), indent=2, ensure_ascii=False) + "\n"
-    tables = {"study.csv": study_csv(study).encode(), "study.json": text.encode()}
+    tables = {"study.csv": study_csv(study), "study.json": json_bytes(study_object(study))}
     return tables | drawn({"study": study_sheet(study)}, png=png)
