@@ -41,10 +41,13 @@ def sides(curves: Curves, quantity: Quantity) -> Sides:
 
 
 def inside(curves: Curves, start_x: float, end_x: float) -> NDArray[np.bool_]:
-    """Return which rows lie in the stretch: its ends with their inner sides only, (n_stations,)."""
+    """Return which rows lie in the stretch: its ends with their inner sides, (n_stations,).
+
+    A stretch that reaches an end of the span has both sides of that end, as its band does.
+    """
     x, outboard = curves.x, curves.outboard
-    after_start = (x > start_x) | ((x == start_x) & outboard)
-    before_end = (x < end_x) | ((x == end_x) & ~outboard)
+    after_start = (x > start_x) | ((x == start_x) & outboard) | (start_x <= x[0])
+    before_end = (x < end_x) | ((x == end_x) & ~outboard) | (end_x >= x[-1])
     return np.asarray(after_start & before_end)
 
 

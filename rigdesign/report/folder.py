@@ -1,0 +1,148 @@
+"""Writing a folder whole or not at all.
+
+The files go into a new folder beside the wanted one, which takes its name when it is complete.  An older folder that is
+to be replaced steps aside first and comes back if anything goes wrong; it is deleted when the new one stands.
+
+Depends on: errors.
+"""
+
+from __future__ import annotations
+
+import os
+import shutil
+import tempfile
+from collections.abc import Mapping
+from pathlib import Path, PurePosixPath
+
+from rigdesign.errors import OutputError
+
+MARKS = (frozenset({"rig.json", "summary.json"}), frozenset({"study.csv", "study.json"}))
+"""Files that tell a folder written here from any other: all of one set are in it."""
+
+TABLES = frozenset({"rig.json", "summary.json", "pads.csv", "levers.csv", "holes.csv", "jacks.csv", "stations.csv",
+                    "regions.csv", "study.csv", "study.json"})  # fmt: skip
+FIGURES = frozenset({"target", "load_and_pads", "shear_and_moment", "tree", "study"})
+FIGURE_ENDINGS = frozenset({".svg", ".png"})
+
+
+def require_free(folder: Path, replace: bool) -> None:
+    """Raise unless the folder can be written: before a long calculation, so that it is not done for nothing.
+
+    Raises
+    ------
+    OutputError
+        Where something is in the way and may not be replaced, or the folder above is missing or cannot be written.
+    """
+    where = str(folder)
+    parent = _parent(folder)
+    if not parent.exists():
+        raise OutputError(f"{where}: the folder above it does not exist: {parent}; make it first")
+    if not parent.is_dir():
+        raise OutputError(f"{where}: what stands above it is not a folder: {parent}")
+    if not os.access(parent, os.W_OK | os.X_OK):
+        raise OutputError(
+            f"{where}: the folder above it cannot be written: {parent}; choose another or change its rights"
+        )
+    if folder.is_symlink():
+        raise OutputError(f"{where}: this is a link; name the folder itself, or another one")
+    if not folder.exists():
+        return
+    if not folder.is_dir():
+        raise OutputError(f"{where}: a file of this name is in the way; move it, or name another folder")
+    if not replace:
+        raise OutputError(f"{where}: this folder exists and is left alone; use --replace, or name another with --out")
+    _require_ours(folder)
+
+
+def _parent(folder: Path) -> Path:
+    return folder.absolute().parent
+
+
+def _require_ours(folder: Path) -> None:
+    """Only a folder that was written here is replaced, and only if nothing else was put into it."""
+    try:
+        names = {path.name for path in folder.iterdir()}
+    except OSError as error:
+        raise OutputError(f"{folder}: this folder cannot be read: {error.strerror}") from error
+    if not any(marks <= names for marks in MARKS):
+        raise OutputError(
+            f"{folder}: this is not a folder that rigdesign wrote (it holds no rig.json with its summary.json), so it "
+            "is not replaced; name another"
+        )
+    strangers = sorted(name for name in names if not _is_ours(name))
+    if strangers:
+        more = f" and {len(strangers) - 1} more" if len(strangers) > 1 else ""
+        raise OutputError(
+            f"{folder}: this folder holds what rigdesign did not write: {strangers[0]}{more}; replacing would lose it, "
+            "so move it elsewhere first, or name another folder"
+        )
+
+
+def _is_ours(name: str) -> bool:
+    path = PurePosixPath(name)
+    return name in TABLES or (path.stem in FIGURES and path.suffix in FIGURE_ENDINGS)
+
+
+def write_folder(files: Mapping[str, bytes], folder: Path, replace: bool = False) -> None:
+    """Write the files into a new folder, whole or not at all.
+
+    Parameters
+    ----------
+    files
+        Contents by file name.
+    folder
+        The folder to write; the one above it must exist.
+    replace
+        Whether an older folder that was written here may be replaced.
+
+    Raises
+    ------
+    OutputError
+        Where the folder may not or cannot be written; what was there before is still there, and nothing else.
+    """
+    require_free(folder, replace)
+    parent = _parent(folder)
+    try:
+        fresh = Path(tempfile.mkdtemp(prefix=f".{folder.name}.", suffix=".new", dir=parent))
+    except OSError as error:
+        raise OutputError(f"{folder}: cannot be written: {error.strerror}") from error
+    try:
+        _fill(fresh, files)
+        _put_in_place(fresh, folder)
+    except OSError as error:
+        raise OutputError(f"{folder}: cannot be written: {error.strerror or error}; nothing was changed") from error
+    finally:
+        # gone by now if all went well; an interruption of the user passes through here too
+        shutil.rmtree(fresh, ignore_errors=True)
+
+
+def _fill(fresh: Path, files: Mapping[str, bytes]) -> None:
+    for name, content in files.items():
+        with open(fresh / name, "xb") as file:
+            file.write(content)
+    # a temporary folder is closed to others; what stands in the end has the rights that any new folder gets
+    os.chmod(fresh, 0o777 & ~_umask())
+
+
+def _umask() -> int:
+    """The mask of rights that this process gives to new files; it can only be read by setting it."""
+    mask = os.umask(0o077)
+    os.umask(mask)
+    return mask
+
+
+def _put_in_place(fresh: Path, folder: Path) -> None:
+    """Give the new folder its name; an older one steps aside, and back if that fails."""
+    if not folder.exists():
+        os.rename(fresh, folder)
+        return
+    aside = Path(tempfile.mkdtemp(prefix=f".{folder.name}.", suffix=".old", dir=folder.absolute().parent))
+    old = aside / folder.name
+    try:
+        os.rename(folder, old)
+        os.rename(fresh, folder)
+    finally:
+        # after a failure, or an interruption, at any point: the old one comes back unless the new one stands
+        if old.exists() and not folder.exists():
+            os.rename(old, folder)
+        shutil.rmtree(aside, ignore_errors=True)

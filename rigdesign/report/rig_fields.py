@@ -1,0 +1,109 @@
+"""Reading objects of JSON with messages that say where: every value is asked for by key and kind."""
+
+from __future__ import annotations
+
+import json
+import math
+from dataclasses import dataclass
+from typing import Any, NoReturn
+
+from rigdesign.errors import InputError
+
+
+@dataclass(frozen=True)
+class Fields:
+    """An object of JSON and the path to it, such as "trees[0].levers[2]" (counted from 0, as programs do)."""
+
+    values: dict[str, Any]
+    path: str
+
+    def _get(self, key: str) -> Any:
+        if key not in self.values:
+            raise InputError("this is not a whole rig: something is missing", where=self._at(key))
+        return self.values[key]
+
+    def _at(self, key: str) -> str:
+        return f"{self.path}.{key}" if self.path else key
+
+    def _wrong(self, key: str, limit: str) -> NoReturn:
+        value = json.dumps(self.values[key], ensure_ascii=False)
+        shown = value if len(value) <= 60 else value[:57] + "…"
+        raise InputError(
+            "this is not a rig: a value is of the wrong kind", where=self._at(key), value=shown, limit=limit
+        )
+
+    def text(self, key: str) -> str:
+        """A text."""
+        value = self._get(key)
+        return value if isinstance(value, str) else self._wrong(key, "a text")
+
+    def one_of(self, key: str, accepted: tuple[str, ...]) -> str:
+        """One of several texts."""
+        value = self.text(key)
+        return value if value in accepted else self._wrong(key, ", ".join(accepted))
+
+    def flag(self, key: str) -> bool:
+        """True or false."""
+        value = self._get(key)
+        return value if isinstance(value, bool) else self._wrong(key, "true or false")
+
+    def whole(self, key: str) -> int:
+        """A whole number."""
+        value = self._get(key)
+        return value if isinstance(value, int) and not isinstance(value, bool) else self._wrong(key, "a whole number")
+
+    def number(self, key: str) -> float:
+        """A finite number."""
+        value = self._get(key)
+        if isinstance(value, bool) or not isinstance(value, (int, float)) or not math.isfinite(value):
+            self._wrong(key, "a finite number")
+        return float(value)
+
+    def numbers(self, *keys: str) -> list[float]:
+        """Finite numbers under several keys."""
+        return [self.number(key) for key in keys]
+
+    def object(self, key: str) -> Fields:
+        """An object."""
+        value = self._get(key)
+        return Fields(value, self._at(key)) if isinstance(value, dict) else self._wrong(key, "an object")
+
+    def objects(self, key: str) -> list[Fields]:
+        """A list of objects."""
+        value = self._get(key)
+        if not isinstance(value, list) or not all(isinstance(item, dict) for item in value):
+            self._wrong(key, "a list of objects")
+        return [Fields(item, f"{self._at(key)}[{i}]") for i, item in enumerate(value)]
+
+    def texts(self, key: str) -> dict[str, str]:
+        """An object of texts."""
+        values = self.object(key).values
+        return values if all(isinstance(item, str) for item in values.values()) else self._wrong(key, "texts by name")
+
+
+def read_object(text: str) -> Fields:
+    """Return the outermost object of a JSON text.
+
+    Raises
+    ------
+    InputError
+        Where the text is not JSON, holds no object, or a key twice.
+    """
+    try:
+        value = json.loads(text, object_pairs_hook=_once)
+    except json.JSONDecodeError as error:
+        raise InputError(f"this is not a rig: it is not JSON ({error.msg})", where=f"line {error.lineno}") from error
+    except RecursionError as error:
+        raise InputError("this is not a rig: it is nested too deep") from error
+    if not isinstance(value, dict):
+        raise InputError("this is not a rig: it is JSON, but not an object")
+    return Fields(value, "")
+
+
+def _once(pairs: list[tuple[str, Any]]) -> dict[str, Any]:
+    """Objects as they are; a key that comes twice is an error rather than a choice in silence."""
+    result = dict(pairs)
+    if len(result) != len(pairs):
+        keys = [key for key, _ in pairs]
+        raise InputError("a key comes twice", value=next(key for key in keys if keys.count(key) > 1))
+    return result

@@ -1,0 +1,214 @@
+"""rig.json: the whole rig as one text, and back.
+
+Layout number 1.  Every number is written so that the same float is read again; keys come in the order given here.
+
+    schema_number   1
+    title           the brief's
+    brief           name, texts: the brief and its tables as they were read, by file name
+    pads            a list, root to tip: pad, x_m, y_m, wanted_x_m, wanted_N, share_of_curve_N, and force_N as checked
+    plan            jack_x_m, may_move, proof (band_use, band_use_least, moment_error_least, method, words, evenness,
+                    evenness_before; "infinite" where one is), findings
+    trees           a list, a jack each: jack, x_m, y_m, force_N, carries, and levers, a list: lever, kind, tier,
+                    parent, load_N as checked, and holes, a list: hole, joins, u_m, v_m, x_m, y_m
+    words           what the search for grouping and holes did
+    findings        of the levers stage
+    check           verdict, moment_error_peak, shear_error_peak, band_use: for readers; never read back
+
+force_N of a pad, load_N of a lever and `check` are results of the check.  Whoever reads a rig recomputes them.
+
+Depends on: brief, target, pads, levers, checks.
+"""
+
+from __future__ import annotations
+
+import json
+import math
+from typing import Any, get_args
+
+import numpy as np
+
+from rigdesign.brief.model import Source
+from rigdesign.checks.model import Check
+from rigdesign.errors import InputError
+from rigdesign.findings import Finding, Severity, Stage
+from rigdesign.levers.model import Hole, HoleName, Jack, Piece, Rig, Tree
+from rigdesign.pads.model import PadPlan, Proof
+from rigdesign.report.rig_fields import Fields, read_object
+from rigdesign.report.tables import finding_object, json_bytes
+from rigdesign.words import SCHEMA_NUMBER
+
+INFINITE = "infinite"
+_PROOF_NUMBERS = ("band_use", "band_use_least", "moment_error_least", "evenness", "evenness_before")
+
+
+def rig_to_json(check: Check) -> str:
+    """Return the checked rig as the text of rig.json."""
+    rig, plan = check.rig, check.rig.plan
+    source = plan.target.brief.source
+    return json_bytes(
+        {
+            "schema_number": SCHEMA_NUMBER,
+            "title": plan.target.brief.title,
+            "brief": {"name": source.brief_name, "texts": dict(sorted(source.texts.items()))},
+            "pads": _pad_objects(check),
+            "plan": {
+                "jack_x_m": plan.jack_x,
+                "may_move": plan.may_move,
+                "proof": _proof_object(plan.proof),
+                "findings": [finding_object(finding) for finding in plan.findings],
+            },
+            "trees": [_tree_object(tree, check) for tree in rig.trees],
+            "words": rig.words,
+            "findings": [finding_object(finding) for finding in rig.findings],
+            "check": {
+                "verdict": "accepted" if check.accepted else "not accepted",
+                "moment_error_peak": check.moment_error_peak,
+                "shear_error_peak": check.shear_error_peak,
+                "band_use": _number(check.band_use),
+            },
+        }
+    ).decode()
+
+
+def _pad_objects(check: Check) -> list[dict[str, Any]]:
+    rig, plan = check.rig, check.rig.plan
+    columns = (rig.pad_x, rig.pad_y, plan.x, plan.force, plan.share, check.statics.pad_force)
+    names = ("x_m", "y_m", "wanted_x_m", "wanted_N", "share_of_curve_N", "force_N")
+    rows = zip(*(column.tolist() for column in columns), strict=True)
+    return [{"pad": i + 1, **dict(zip(names, row, strict=True))} for i, row in enumerate(rows)]
+
+
+def _proof_object(proof: Proof) -> dict[str, Any]:
+    numbers = {name: _number(getattr(proof, name)) for name in _PROOF_NUMBERS}
+    return {**numbers, "method": proof.method, "words": proof.words}
+
+
+def _number(value: float) -> float | str:
+    return INFINITE if value == math.inf else float(value)
+
+
+def _tree_object(tree: Tree, check: Check) -> dict[str, Any]:
+    jack = tree.jack
+    return {
+        "jack": jack.number,
+        "x_m": float(jack.x),
+        "y_m": float(jack.y),
+        "force_N": float(tree.force),
+        "carries": jack.carries,
+        "levers": [_piece_object(piece, check) for piece in tree.pieces],
+    }
+
+
+def _piece_object(piece: Piece, check: Check) -> dict[str, Any]:
+    holes = [
+        {
+            "hole": hole.name,
+            "joins": hole.joins,
+            "u_m": float(hole.u),
+            "v_m": float(hole.v),
+            "x_m": float(hole.x),
+            "y_m": float(hole.y),
+        }
+        for hole in piece.holes
+    ]
+    return {
+        "lever": piece.number,
+        "kind": piece.kind,
+        "tier": piece.tier,
+        "parent": piece.parent,
+        "load_N": check.statics.piece_load[piece.name],
+        "holes": holes,
+    }
+
+
+def rig_from_json(text: str) -> Rig:
+    """Return the rig of a rig.json, its brief and target rebuilt from the texts inside.
+
+    Raises
+    ------
+    InputError
+        Where the text is not a rig, has another layout number than this version reads, or lacks something.
+    BriefError, TableError
+        Where a text of the brief inside was changed into something that cannot be used.
+    """
+    from rigdesign.brief import brief_from_source
+    from rigdesign.target import build_target
+
+    fields = _entered(text)
+    brief = fields.object("brief")
+    source = Source(brief_name=brief.text("name"), texts=brief.texts("texts"))
+    target = build_target(brief_from_source(source))
+    pads = [pad.numbers("x_m", "y_m", "wanted_x_m", "wanted_N", "share_of_curve_N") for pad in fields.objects("pads")]
+    if not pads:
+        raise InputError("the rig has no pads", where="pads")
+    x, y, wanted_x, wanted, share = np.array(pads).T.copy()
+    plan_fields = fields.object("plan")
+    plan = PadPlan(
+        target=target,
+        x=wanted_x,
+        force=wanted,
+        share=share,
+        jack_x=plan_fields.number("jack_x_m"),
+        may_move=plan_fields.flag("may_move"),
+        proof=_proof(plan_fields.object("proof")),
+        findings=_findings(plan_fields),
+    )
+    trees = tuple(_tree(tree) for tree in fields.objects("trees"))
+    if not trees:
+        raise InputError("the rig has no jack", where="trees")
+    return Rig(plan, x, y, trees, fields.text("words"), _findings(fields))
+
+
+def _entered(text: str) -> Fields:
+    """The outermost object, when it is a rig in the layout that this version reads."""
+    fields = read_object(text)
+    if "schema_number" not in fields.values:
+        raise InputError("this is not a rig: it has no schema_number", remedy="name the rig.json of a rig folder")
+    number = fields.values["schema_number"]
+    if number != SCHEMA_NUMBER or isinstance(number, bool):
+        raise InputError(
+            "this rig has a layout that this version does not read",
+            where="schema_number",
+            value=json.dumps(number),
+            limit=str(SCHEMA_NUMBER),
+            remedy="design the rig again from its brief, or use the version that wrote it",
+        )
+    return fields
+
+
+def _proof(fields: Fields) -> Proof:
+    numbers = {
+        name: math.inf if fields.values.get(name) == INFINITE else fields.number(name) for name in _PROOF_NUMBERS
+    }
+    return Proof(**numbers, method=fields.text("method"), words=fields.text("words"))
+
+
+def _tree(fields: Fields) -> Tree:
+    jack = Jack(fields.whole("jack"), fields.number("x_m"), fields.number("y_m"), fields.text("carries"))
+    return Tree(jack, fields.number("force_N"), tuple(_piece(piece) for piece in fields.objects("levers")))
+
+
+def _piece(fields: Fields) -> Piece:
+    return Piece(
+        number=fields.whole("lever"),
+        kind="plate" if fields.one_of("kind", ("lever", "plate")) == "plate" else "lever",
+        tier=fields.whole("tier"),
+        parent=fields.text("parent"),
+        holes=tuple(_hole(hole) for hole in fields.objects("holes")),
+    )
+
+
+def _hole(fields: Fields) -> Hole:
+    name: HoleName = fields.one_of("hole", get_args(HoleName))  # type: ignore[assignment]
+    return Hole(name, fields.text("joins"), *fields.numbers("u_m", "v_m", "x_m", "y_m"))
+
+
+def _findings(fields: Fields) -> tuple[Finding, ...]:
+    return tuple(_finding(finding) for finding in fields.objects("findings"))
+
+
+def _finding(fields: Fields) -> Finding:
+    stage: Stage = fields.one_of("stage", get_args(Stage))  # type: ignore[assignment]
+    severity: Severity = fields.one_of("severity", get_args(Severity))  # type: ignore[assignment]
+    texts = {key: fields.text(key) for key in ("object", "text", "value", "limit", "remedy")}
+    return Finding(stage, severity, **texts, number=fields.whole("number"))

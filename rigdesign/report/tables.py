@@ -1,0 +1,279 @@
+"""The tables of the rig folder and summary.json, as bytes.
+
+CSV is UTF-8 with commas, a full stop as decimal sign and one heading line.  Numbers have twelve significant digits:
+more than any instrument, and few enough that 0.1 + 0.2 reads 0.3.  What is not limited, not judged or not known is an
+empty cell.  No text cell can act as a formula in a spreadsheet.
+
+Depends on: checks, and the models below it.
+"""
+
+from __future__ import annotations
+
+import csv
+import io
+import json
+import math
+from collections.abc import Iterable, Sequence
+from typing import Any
+
+import numpy as np
+
+from rigdesign.checks.measures import length, ratio
+from rigdesign.checks.model import Check
+from rigdesign.checks.remarks_practice import pressures
+from rigdesign.findings import Finding
+from rigdesign.levers.model import Piece
+
+Cell = str | int | float | None
+FORMULA_STARTS = ("=", "+", "-", "−", "@", "\t", "\r", "\n")
+DIGITS = 12
+
+
+def table_files(check: Check) -> dict[str, bytes]:
+    """Return summary.json and every CSV of a checked rig by file name."""
+    return {
+        "summary.json": json_bytes(summary(check)),
+        "pads.csv": pads_csv(check),
+        "levers.csv": levers_csv(check),
+        "holes.csv": holes_csv(check),
+        "jacks.csv": jacks_csv(check),
+        "stations.csv": stations_csv(check),
+        "regions.csv": regions_csv(check),
+    }
+
+
+def csv_bytes(head: Sequence[str], rows: Iterable[Sequence[Cell]]) -> bytes:
+    r"""Return a table as CSV.
+
+    >>> csv_bytes(["pad", "x_m", "note"], [[1, 0.1 + 0.2, "=1+1"], [2, -0.0, None]])
+    b"pad,x_m,note\n1,0.3,'=1+1\n2,0,\n"
+    """
+    out = io.StringIO(newline="")
+    writer = csv.writer(out, lineterminator="\n")
+    writer.writerow(head)
+    writer.writerows([cell(value) for value in row] for row in rows)
+    return out.getvalue().encode()
+
+
+def cell(value: Cell) -> str:
+    """Return a cell as text: a number with its digits, a text that no spreadsheet takes for a formula.
+
+    >>> cell(1e-20), cell(float("inf")), cell("@pad"), cell(12), cell(-2.5)
+    ('1e-20', '', "'@pad", '12', '-2.5')
+    """
+    if value is None:
+        return ""
+    if isinstance(value, str):
+        return f"'{value}" if value.startswith(FORMULA_STARTS) else value
+    if isinstance(value, int):
+        return str(value)
+    # + 0.0 turns a negative zero into zero
+    return f"{float(value) + 0.0:.{DIGITS}g}" if math.isfinite(value) else ""
+
+
+def json_bytes(value: Any) -> bytes:
+    """Return JSON for people and programs: indented, keys in their own order, letters as they are."""
+    return (json.dumps(value, indent=2, ensure_ascii=False, allow_nan=False) + "\n").encode()
+
+
+def pads_csv(check: Check) -> bytes:
+    """A row a pad: place, force as drilled and as wanted, share of its jack, pressure, and the lever it hangs on."""
+    rig, solved = check.rig, check.statics
+    hangs = {hole.joins: piece.number for piece in _pieces(check) for hole in piece.ends}
+    pressure = pressures(check)
+    rows = [
+        [
+            i + 1,
+            float(rig.pad_x[i]),
+            float(rig.pad_y[i]),
+            float(solved.pad_force[i]),
+            float(rig.plan.force[i]),
+            float(solved.share[i]),
+            None if pressure is None else float(pressure[i]),
+            hangs.get(f"pad {i + 1}"),
+            float(rig.plan.share[i]),
+        ]
+        for i in range(rig.pad_x.size)
+    ]
+    head = ["pad", "x_m", "y_m", "force_N", "wanted_N", "share", "pressure_Pa", "lever", "share_of_curve_N"]
+    return csv_bytes(head, rows)
+
+
+def levers_csv(check: Check) -> bytes:
+    """A row a lever or plate: where it hangs, its pivot, its load and its size."""
+    rows = [
+        [
+            piece.number,
+            piece.tier,
+            piece.parent,
+            piece.kind,
+            piece.pivot.x,
+            piece.pivot.y,
+            check.statics.piece_load[piece.name],
+            length(piece),
+            ratio(piece) if piece.kind == "lever" else None,
+        ]
+        for piece in _pieces(check)
+    ]
+    head = ["lever", "tier", "parent", "kind", "x_m", "y_m", "load_N", "length_m", "ratio"]
+    return csv_bytes(head, rows)
+
+
+def holes_csv(check: Check) -> bytes:
+    """A row a hole: what it joins, its place in the piece's own frame and in plan."""
+    rows = [
+        [piece.number, hole.name, hole.joins, hole.u, hole.v, hole.x, hole.y]
+        for piece in _pieces(check)
+        for hole in piece.holes
+    ]
+    return csv_bytes(["lever", "hole", "joins", "u_m", "v_m", "x_m", "y_m"], rows)
+
+
+def jacks_csv(check: Check) -> bytes:
+    """A row a jack: place and force at the brief's load."""
+    rows = [[tree.jack.number, tree.jack.x, tree.jack.y, tree.force] for tree in check.rig.trees]
+    return csv_bytes(["jack", "x_m", "y_m", "force_N"], rows)
+
+
+def stations_csv(check: Check) -> bytes:
+    """V and M of target and rig by station, and how far the error may go below and above zero."""
+    curves = check.curves
+    columns = [
+        curves.x,
+        curves.target["shear"],
+        curves.rig["shear"],
+        curves.target["moment"],
+        curves.rig["moment"],
+        curves.below["shear"],
+        curves.above["shear"],
+        curves.below["moment"],
+        curves.above["moment"],
+    ]
+    rows = zip(*(column.tolist() for column in columns), strict=True)
+    named = (
+        (x, "outboard" if out else "inboard", *rest) for (x, *rest), out in zip(rows, curves.outboard, strict=True)
+    )
+    head = ["x_m", "side", "shear_target_N", "shear_rig_N", "moment_target_Nm", "moment_rig_Nm"]
+    head += ["shear_band_below_N", "shear_band_above_N", "moment_band_below_Nm", "moment_band_above_Nm"]
+    return csv_bytes(head, named)
+
+
+def regions_csv(check: Check) -> bytes:
+    """A row a stretch and quantity: largest under- and over-test as magnitudes, where, bands, band use, verdict."""
+    units = {"shear": "N", "moment": "N*m"}
+    words = {None: "not judged", True: "accepted", False: "not accepted"}
+    rows = [
+        [
+            row.start_x,
+            row.end_x,
+            row.name,
+            row.quantity,
+            units[row.quantity],
+            row.under,
+            row.over,
+            row.band_under,
+            row.band_over,
+            row.under_x,
+            row.over_x,
+            row.use,
+            words[row.accepted],
+        ]
+        for row in check.regions
+    ]
+    head = ["from_m", "to_m", "region", "quantity", "unit", "under", "over", "band_under", "band_over"]
+    return csv_bytes([*head, "under_at_m", "over_at_m", "use", "verdict"], rows)
+
+
+def summary(check: Check) -> dict[str, Any]:
+    """Return the answer at one glance: what summary.json holds.
+
+    Errors, uses and shares are fractions, forces at the brief's load; null says "not limited" or "not known".
+    """
+    return {key: _plain(value) for key, value in (_target_part(check) | _rig_part(check)).items()}
+
+
+def _target_part(check: Check) -> dict[str, Any]:
+    target = check.rig.plan.target
+    specimen = target.brief.specimen
+    about = specimen.supports[0] if specimen.supports else specimen.left
+    return {
+        "title": target.brief.title,
+        "verdict": "accepted" if check.accepted else "not accepted",
+        "resultant_N": target.resultant,
+        "centroid_x_m": target.centroid,
+        "root_moment_Nm": target.total.first_moment - about * target.total.total,
+        "moment_about_m": about,
+        "shear_peak_N": target.shear_peak,
+        "shear_peak_x_m": target.shear_peak_x,
+        "moment_peak_Nm": target.moment_peak,
+        "moment_peak_x_m": target.moment_peak_x,
+        "test_peak": target.brief.peak,
+    }
+
+
+def _rig_part(check: Check) -> dict[str, Any]:
+    rig, proof = check.rig, check.rig.plan.proof
+    force = check.statics.pad_force
+    return {
+        "pads": int(rig.pad_x.size),
+        "levers": sum(len(tree.pieces) for tree in rig.trees),
+        "tiers": max((piece.tier for piece in _pieces(check)), default=0),
+        "pads_resultant_N": float(force.sum()),
+        "pads_centroid_x_m": float(force @ rig.pad_x / force.sum()),
+        "jack_x_m": [tree.jack.x for tree in rig.trees],
+        "jack_force_N": [tree.force for tree in rig.trees],
+        "jack_force_at_test_peak_N": [tree.force * rig.plan.target.brief.peak for tree in rig.trees],
+        "jack_offset_m": check.jack_offset,
+        "moment_error_peak": check.moment_error_peak,
+        "moment_error_x_m": check.moment_error_x,
+        "moment_error_least": proof.moment_error_least,
+        "moment_error_local": check.moment_error_local,
+        "moment_error_local_x_m": check.moment_error_local_x,
+        "moment_error_by_hand": check.hand_moment,
+        "shear_error_peak": check.shear_error_peak,
+        "shear_error_x_m": check.shear_error_x,
+        "shear_error_local": check.shear_error_local,
+        "shear_error_local_x_m": check.shear_error_local_x,
+        "shear_error_by_hand": check.hand_shear,
+        "shear_area_Nm": check.shear_area,
+        "band_use": check.band_use,
+        "band_use_planned": proof.band_use,
+        "band_use_least": proof.band_use_least,
+        "band_use_gap": proof.gap,
+        "proof": proof.method,
+        "evenness": proof.evenness,
+        "evenness_before": proof.evenness_before,
+        "steel_estimate": check.steel_estimate,
+        "force_residual": check.statics.force_residual,
+        "moment_residual": check.statics.moment_residual,
+        "sum_residual": check.sum_residual,
+        "moment_sum_residual": check.moment_sum_residual,
+        "findings": [finding_object(finding) for finding in check.findings],
+    }
+
+
+def finding_object(finding: Finding) -> dict[str, Any]:
+    """Return a finding as an object for JSON."""
+    return {
+        "stage": finding.stage,
+        "number": finding.number,
+        "severity": finding.severity,
+        "object": finding.object,
+        "text": finding.text,
+        "value": finding.value,
+        "limit": finding.limit,
+        "remedy": finding.remedy,
+    }
+
+
+def _pieces(check: Check) -> Iterable[Piece]:
+    return (piece for tree in check.rig.trees for piece in tree.pieces)
+
+
+def _plain(value: Any) -> Any:
+    """A number of Python's own; null for what is infinite."""
+    if isinstance(value, (float, np.floating)):
+        return float(value) + 0.0 if math.isfinite(value) else None
+    if isinstance(value, list):
+        return [_plain(item) for item in value]
+    return value
