@@ -7,24 +7,22 @@ known (units.txt).  `lb` is a mass and `lbf` a force, `kg` a mass and `kgf` a fo
 Factors are kept as exact fractions, so "300 mm" and "0.3 m" give the same float, and so do 126 inches written in a
 brief and in a column headed "x [in]".
 
-Depends on: errors, display.
+Depends on: errors, unit_factors, display.
 """
 
 from __future__ import annotations
 
-import difflib
 import json
 import math
 import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 from fractions import Fraction
-from functools import cache
-from importlib import resources
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING
 
 from rigdesign.display import show as show
 from rigdesign.errors import InputError
+from rigdesign.unit_factors import Dimensions, unit_factor
 
 if TYPE_CHECKING:
     import numpy as np
@@ -73,109 +71,10 @@ NUMBER = r"[+\-−]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+\-−]?[0-9]+)?"
 """A number as a brief may write it: digits, a decimal point, a power of ten; no spaces or commas within."""
 
 _QUANTITY = re.compile(rf"\s*({NUMBER})\s*(.*?)\s*", re.DOTALL)
-_FACTOR = re.compile(r"([A-Za-z]+)(?:(?:\^|\*\*)?([1-9]))?")
 _HEADING = re.compile(r"\s*([^\[\]]*?)\s*(?:\[\s*([^\[\]]*?)\s*\])?\s*")
-_SIGNS = str.maketrans(dict[str, str | int | None]({"·": "*", "⋅": "*", "×": "*", "²": "^2", "³": "^3", "°": "deg"}))
-_GLUED = {"Nm": "N*m", "kNm": "kN*m", "MNm": "MN*m", "Nmm": "N*mm"}
-# full names and shop spellings: not accepted, so that a brief reads the same everywhere, but answered
-_SPELLED_OUT = {
-    **dict.fromkeys(("inch", "inches", "ins", '"', "″"), "in"),
-    **dict.fromkeys(("foot", "feet", "'", "′"), "ft"),
-    **dict.fromkeys(("metre", "metres", "meter", "meters"), "m"),
-    **dict.fromkeys(("millimetre", "millimetres", "millimeter", "millimeters"), "mm"),
-    **dict.fromkeys(("newton", "newtons"), "N"),
-    **dict.fromkeys(("kilonewton", "kilonewtons"), "kN"),
-    **dict.fromkeys(("kips",), "kip"),
-    **dict.fromkeys(("lbs", "pound", "pounds"), "lb (mass) or lbf (force)"),
-    **dict.fromkeys(("kgs", "kilo", "kilos", "kilogram", "kilograms"), "kg (mass) or kgf (force)"),
-    **dict.fromkeys(("plf",), "lbf/ft"),
-    **dict.fromkeys(("pli",), "lbf/in"),
-    **dict.fromkeys(("degree", "degrees"), "deg"),
-}
 _MASS_AND_FORCE = (("lb", "lbf"), ("kg", "kgf"))
 # beyond these the exact product is pointless and its integers would be huge
 _EXACT_FROM, _EXACT_TO = 1e-60, 1e60
-
-Dimensions = tuple[tuple[str, int], ...]
-
-
-@cache
-def _registry() -> Any:
-    """The pint registry of units.txt, loaded when the first unit is met."""
-    import pint
-
-    registry: Any = pint.UnitRegistry(None, non_int_type=Fraction, cache_folder=None)
-    registry.load_definitions(resources.files("rigdesign").joinpath("units.txt").read_text("utf-8").splitlines())
-    return registry
-
-
-@cache
-def unit_names() -> tuple[str, ...]:
-    """Return the name of every known unit, sorted."""
-    # asked once: pint adds plurals to its own list as it meets them
-    return tuple(sorted(_registry()))
-
-
-@cache
-def unit_factor(unit: str) -> tuple[Fraction, Dimensions]:
-    """Return what one `unit` is in SI, exactly, and its dimensions.
-
-    Products are written "N*m", "N·m", "ft-lbf" or "Nm", quotients "lbf/in", powers "m^2", "m²" or "m2".
-
-    Raises
-    ------
-    InputError
-        If it is no known unit; the nearest one is offered.
-
-    Examples
-    --------
-    >>> unit_factor("psi")[0] == Fraction("4.4482216152605") / Fraction("0.0254") ** 2
-    True
-    """
-    canonical, registry = _canonical(unit), _registry()
-    factor, base = registry.get_base_units(registry.parse_units(canonical))
-    dimensions = tuple(sorted((name, int(power)) for name, power in base.dimensionality.items()))
-    return Fraction(factor), dimensions
-
-
-def _canonical(unit: str) -> str:
-    """Return `unit` as pint reads it, each name checked against the list of known ones."""
-    text = unit.translate(_SIGNS).strip()
-    # a hyphen, a full stop or a space between names is a product too: ft-lbf, kN.m, lbf ft
-    text = re.sub(r"(?<=[A-Za-z0-9])\s*[-. ]\s*(?=[A-Za-z])", "*", re.sub(r"\s*([*/^])\s*", r"\1", text))
-    above, slash, below = text.partition("/")
-    names = [name for part in above.replace("**", "^").split("*") for name in _factors(part, unit)]
-    quotient = _factors(below, unit) if slash else []
-    if len(quotient) > 1:
-        raise InputError("a unit has one division and one unit below it", value=f'"{unit}"', limit='such as "N/m"')
-    return "*".join(names) + "".join(f"/({name})" for name in quotient)
-
-
-def _factors(part: str, unit: str) -> list[str]:
-    """Return the factors of one part of a unit, glued ones taken apart; raise InputError on an unknown name."""
-    match = _FACTOR.fullmatch(part)
-    if match is None:
-        hint = _SPELLED_OUT.get(part)
-        remedy = f"write {hint}" if hint else ""
-        raise InputError("this is no unit", value=f'"{unit}"', limit='a unit such as "kN" or "lbf/in"', remedy=remedy)
-    name, power = match.groups()
-    if name in _GLUED and not power:
-        return _GLUED[name].split("*")
-    if name not in unit_names():
-        raise InputError(f'"{name}" is no known unit', value="" if name == unit else f'"{unit}"', remedy=_nearest(name))
-    return [f"{name}**{power}" if power else name]
-
-
-def _nearest(name: str) -> str:
-    """Return the advice that goes with an unknown unit's name."""
-    known = unit_names()
-    if name in _SPELLED_OUT or name.lower() in _SPELLED_OUT:
-        return f"write {_SPELLED_OUT.get(name) or _SPELLED_OUT[name.lower()]}"
-    same = [other for other in known if other.lower() == name.lower()]
-    near = same or difflib.get_close_matches(name, known, n=1, cutoff=0.5)
-    if near:
-        return f"did you mean {' or '.join(near)}?"
-    return f"the known units are {', '.join(sorted(known, key=str.lower))}, and products and quotients of them"
 
 
 def exact_factor(unit: str, kind: str, where: str = "", value: str = "") -> Fraction:

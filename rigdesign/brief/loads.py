@@ -238,7 +238,7 @@ def _internal(entry: InternalEntry, number: int, piece: Specimen, context: Conte
     if not x[0] < x[-1]:
         raise TableError("the table needs rows at two different x", where=rows.name)
     return InternalLoad(
-        frozen(x), frozen(shear), frozen(moment), rows.columns["shear"].digit, rows.columns["moment"].digit,
+        frozen(x), frozen(shear), frozen(moment), rows.digit("shear"), rows.digit("moment"),
         entry.times, f"{context.places.where('load', number)}, {entry.internal}",
     )  # fmt: skip
 

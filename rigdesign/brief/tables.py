@@ -12,9 +12,10 @@ import difflib
 import io
 import math
 import re
+from collections.abc import Sequence
 from dataclasses import dataclass
 from fractions import Fraction
-from itertools import repeat
+from functools import cached_property
 from typing import Literal
 
 import numpy as np
@@ -31,39 +32,46 @@ NOTE = "note"
 
 
 @dataclass(frozen=True)
-class Column:
-    """One column as read: values in SI (n,), the cells as printed, and what one in the heading's unit is in SI."""
+class Heading:
+    """The first line of a table: the columns' names in the file's order, units, and exact factors of those read."""
 
-    values: Floats
-    cells: tuple[str, ...]
-    factor: float
-    unit: str
-
-    @property
-    def digit(self) -> float:
-        """The smallest decimal place that any cell of the column shows, in SI: the rounding unit of the column."""
-        return min(map(_place, self.cells)) * self.factor
+    names: tuple[str, ...]
+    units: dict[str, str]
+    factors: dict[str, Fraction]
 
 
 @dataclass(frozen=True)
 class CsvTable:
-    """A table as read: its file name, columns by name, and the line of each row (n,)."""
+    """A table as read: its file name, text and heading, and the columns by name in SI, (n,) each."""
 
     name: str
-    columns: dict[str, Column]
-    lines: tuple[int, ...]
+    text: str
+    heading: Heading
+    columns: dict[str, Floats]
 
     def __getitem__(self, column: str) -> Floats:
         """The values of a column in SI, (n,)."""
-        return self.columns[column].values
+        return self.columns[column]
+
+    @cached_property
+    def _printed(self) -> tuple[list[list[str]], list[int]]:
+        """The rows as printed and their lines; read again only where a message or a rounding needs them."""
+        rows, lines = _rows(self.text, self.name)
+        return rows[1:], lines[1:]
 
     def where(self, row: int) -> str:
         """The place of a row for a message."""
-        return f"{self.name}, line {self.lines[row]}"
+        return f"{self.name}, line {self._printed[1][row]}"
 
     def cell(self, column: str, row: int) -> str:
         """A cell for a message, "x = 12.5 in"."""
-        return f"{column} = {self.columns[column].cells[row].strip()} {self.columns[column].unit}"
+        printed = self._printed[0][row][self.heading.names.index(column)].strip()
+        return f"{column} = {printed} {self.heading.units[column]}"
+
+    def digit(self, column: str) -> float:
+        """The smallest decimal place that any cell of the column shows, in SI: the rounding unit of the column."""
+        place = self.heading.names.index(column)
+        return min(_place(row[place]) for row in self._printed[0]) * float(self.heading.factors[column])
 
 
 def read_table(
@@ -87,24 +95,50 @@ def read_table(
     TableError
         With the line, the column, the value and what to do.
     """
-    rows, lines = _rows(text, name)
-    names, factors, units = _heading(rows[0], f"{name}, line {lines[0]}", kinds, optional or {})
-    body, lines = rows[1:], lines[1:]
-    if not body:
-        raise TableError("the table has a heading and no rows", where=name, remedy="add at least one row")
-    if set(map(len, body)) != {len(names)}:
-        row = next(row for row, cells in enumerate(body) if len(cells) != len(names))
-        raise TableError(f"the row has {_cells(len(body[row]))} and the heading {len(names)}",
-                         where=f"{name}, line {lines[row]}", value=_short(",".join(body[row])))  # fmt: skip
+    values, heading = _quickly(text, name, kinds, optional or {}) or _row_by_row(text, name, kinds, optional or {})
     columns = {}
-    for column, cells in zip(names, zip(*body, strict=True), strict=True):
-        if column != NOTE:
-            values = scaled(_numbers(column, cells, name, lines), factors[column])
-            values.setflags(write=False)
-            columns[column] = Column(values, cells, float(factors[column]), units[column])
-    table = CsvTable(name, columns, tuple(lines))
+    for column, factor in heading.factors.items():
+        columns[column] = scaled(values[heading.names.index(column)], factor)
+        columns[column].setflags(write=False)
+    table = CsvTable(name, text, heading, columns)
     _check_order(table, repeats)
     return table
+
+
+def _quickly(
+    text: str, name: str, kinds: dict[str, str], optional: dict[str, str]
+) -> tuple[Sequence[Floats], Heading] | None:
+    """Return the columns as printed, and the heading; None where the table is not a plain block of finite numbers."""
+    first, _, body = text.partition("\n")
+    if '"' in text or "_" in body or not first.strip() or not body.strip():
+        return None
+    heading = _heading(first.strip("\r").split(","), f"{name}, line 1", kinds, optional)
+    try:
+        values = np.loadtxt(io.StringIO(body), delimiter=",", comments=None, ndmin=2)
+    except ValueError:
+        return None
+    if values.shape[1] != len(heading.names) or not np.isfinite(values).all():
+        return None
+    return list(np.ascontiguousarray(values.T)), heading
+
+
+def _row_by_row(
+    text: str, name: str, kinds: dict[str, str], optional: dict[str, str]
+) -> tuple[Sequence[Floats], Heading]:
+    """Return the columns as printed, and the heading; raise TableError naming the first row that cannot be used."""
+    rows, lines = _rows(text, name)
+    heading = _heading(rows[0], f"{name}, line {lines[0]}", kinds, optional)
+    width, body, lines = len(heading.names), rows[1:], lines[1:]
+    if not body:
+        raise TableError("the table has a heading and no rows", where=name, remedy="add at least one row")
+    for cells, line in zip(body, lines, strict=True):
+        if len(cells) != width:
+            what = f"the row has {_cells(len(cells))} and the heading {width}"
+            raise TableError(what, where=f"{name}, line {line}", value=_short(",".join(cells)))
+    columns = []
+    for column, printed in zip(heading.names, zip(*body, strict=True), strict=True):
+        columns.append(np.zeros(len(body)) if column == NOTE else _numbers(column, printed, name, lines))
+    return columns, heading
 
 
 def _rows(text: str, name: str) -> tuple[list[list[str]], list[int]]:
@@ -125,18 +159,16 @@ def _rows(text: str, name: str) -> tuple[list[list[str]], list[int]]:
     return rows, lines
 
 
-def _heading(
-    heading: list[str], where: str, kinds: dict[str, str], optional: dict[str, str]
-) -> tuple[list[str], dict[str, Fraction], dict[str, str]]:
-    """Return the names of the columns in the file's order, and the exact factor and unit of each that is read."""
+def _heading(cells: list[str], where: str, kinds: dict[str, str], optional: dict[str, str]) -> Heading:
+    """Return the heading; raise TableError where a column is unknown, missing, twice there or without its unit."""
     known = {**kinds, **optional}
     wanted = ", ".join(f"{column} [unit of {kind}]" for column, kind in kinds.items())
-    if len(heading) == 1 and re.search(r"[;\t]", heading[0]):
-        raise TableError("columns are separated by commas", where=where, value=_short(heading[0]), limit=wanted)
+    if len(cells) == 1 and re.search(r"[;\t]", cells[0]):
+        raise TableError("columns are separated by commas", where=where, value=_short(cells[0]), limit=wanted)
     names: list[str] = []
     factors: dict[str, Fraction] = {}
     units: dict[str, str] = {}
-    for text in heading:
+    for text in cells:
         name, unit = split_heading(text)
         units[name] = unit or ""
         if name != NOTE and name not in known:
@@ -153,7 +185,7 @@ def _heading(
     missing = [column for column in kinds if column not in names]
     if missing:
         raise TableError(f'the column "{missing[0]}" is missing', where=where, limit=wanted)
-    return names, factors, units
+    return Heading(tuple(names), units, factors)
 
 
 def _unknown_column(name: str, text: str, where: str, wanted: str, known: dict[str, str]) -> TableError:
@@ -171,13 +203,6 @@ def _unknown_column(name: str, text: str, where: str, wanted: str, known: dict[s
 
 def _numbers(column: str, cells: tuple[str, ...], name: str, lines: list[int]) -> Floats:
     """Return the cells as floats (n,); raise TableError at the first that is not a finite number."""
-    try:
-        values = np.fromiter(map(float, cells), dtype=float, count=len(cells))
-        # float() also takes "1_000", "nan" and "infinity"
-        if np.isfinite(values).all() and not any(map(str.__contains__, cells, repeat("_"))):
-            return values
-    except ValueError:
-        pass
     for cell, line in zip(cells, lines, strict=True):
         if not _PLAIN.fullmatch(cell) or not math.isfinite(float(cell.replace("−", "-"))):
             where = f"{name}, line {line}, column {column}"
