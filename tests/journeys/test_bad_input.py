@@ -159,28 +159,29 @@ def test_a_file_in_the_way_and_a_folder_that_cannot_be_made(rigdesign, here):
         assert "taken" in refused(rigdesign, here, "design", "fin.toml", "--out", out, "--replace") or "nowhere" in out
 
 
-def test_an_interruption_while_writing_leaves_nothing(rigdesign, here, monkeypatch):
+@pytest.mark.parametrize("call", ["chmod", "rename"])
+@pytest.mark.parametrize("more", [["--replace"], ["--out", "other_rig"]], ids=["replacing", "new"])
+def test_an_interruption_while_writing_leaves_nothing(rigdesign, here, monkeypatch, call, more):
     (here / "fin.toml").write_text(SMALL)
     assert rigdesign("design", "fin.toml", "--no-figures").code == 0
     before = files_under(here)
-    written = []
-    plain = Path.write_bytes
+    half_written = []
 
-    def interrupted(self, data):
-        written.append(self.name)
-        if len(written) == 3:
-            raise KeyboardInterrupt
-        return plain(self, data)
+    def interrupted(*_, **__):
+        half_written.extend(here.glob(".*/rig.json"))
+        monkeypatch.undo()
+        raise KeyboardInterrupt
 
-    monkeypatch.setattr(Path, "write_bytes", interrupted)
-    for more in (["--replace"], ["--out", "other_rig"]):
-        written.clear()
-        ended = rigdesign("design", "fin.toml", "--no-figures", *more)
-        assert len(written) == 3
-        assert ended.code == 130
-        assert ended.err == "rigdesign: interrupted; nothing was written\n"
-        assert files_under(here) == before
-        assert sorted(path.name for path in here.iterdir()) == ["fin.toml", "fin_rig"]
+    # the files are written and then given their rights and their name: both are in the middle of it
+    monkeypatch.setattr(os, call, interrupted)
+    ended = rigdesign(
+        "design", here / "fin.toml", "--no-figures", *[here / word if "_" in word else word for word in more]
+    )
+    assert half_written
+    assert ended.code == 130
+    assert ended.err.strip() == "rigdesign: interrupted; nothing was written"
+    assert files_under(here) == before
+    assert sorted(path.name for path in here.iterdir()) == ["fin.toml", "fin_rig"]
 
 
 def test_a_rig_that_is_none(rigdesign, here):
