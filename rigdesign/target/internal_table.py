@@ -99,12 +99,26 @@ def internal_curve(load: InternalLoad) -> Curve:
         If the table has no two stations.
     """
     steps = steps_of(load)
-    mean, swing = steps.load / steps.width, 6.0 * steps.defect / steps.width**2
+    return _with_points(load, steps, 6.0 * steps.defect / steps.width**2)
+
+
+def stepped_curve(load: InternalLoad) -> Curve:
+    """Return the load that has the table's shear at its rows, spread evenly between them.
+
+    It misses the table's moments by little and shows what the table's own rows say of the load's sign, free of the
+    swings that rounding makes within a step.  Raises BriefError as `internal_curve` does.
+    """
+    steps = steps_of(load)
+    return _with_points(load, steps, np.zeros(steps.start.size))
+
+
+def _with_points(load: InternalLoad, steps: Steps, swing: Floats) -> Curve:
+    """The running load P/h ∓ swing from row to row, and the point loads of the table."""
     running = Polynomials(
         x=np.append(steps.start, steps.end[-1]),
-        a0=mean + swing,
+        a0=steps.load / steps.width + swing,
         a1=-2.0 * swing / steps.width,
-        a2=np.zeros(mean.size),
+        a2=np.zeros(swing.size),
     )
     x, shear, _ = jumps_of(load)
     real = shear != 0

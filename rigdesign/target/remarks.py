@@ -14,9 +14,12 @@ from rigdesign.display import show
 from rigdesign.findings import Finding, Severity
 from rigdesign.target.curve import Curve
 from rigdesign.target.internal import reactions
+from rigdesign.target.internal_table import stepped_curve
 from rigdesign.target.loads import load_curve
 from rigdesign.target.peaks import Parts, signed_parts
+from rigdesign.target.sums import Combined
 from rigdesign.target.table_remarks import table_remarks
+from rigdesign.words import STANDARD_GRAVITY
 
 # Load of the other sign: below the first part of the whole it is not worth a word, below the second a note.
 _OTHER_SIGN_LEAST, _OTHER_SIGN_SMALL = 0.001, 0.01
@@ -41,7 +44,7 @@ def remarks(brief: Brief, total: Curve, gravity: Curve, net: Curve) -> Iterator[
     for number, load in enumerate(brief.loads, 1):
         if isinstance(load, InternalLoad):
             yield from table_remarks(load, f"load {number}", brief.specimen.right)
-    yield from _other_sign(brief, net)
+    yield from _other_sign(brief, gravity)
     yield from _centroid(brief, total, net)
     yield from _supports(brief, total, gravity)
     yield from _against_the_rest(brief.loads, curves)
@@ -72,8 +75,14 @@ def _net_against_total(total: Curve, gravity: Curve, net: Curve) -> Iterator[Fin
     yield _remark("warning", "weight", text, show(net.total, "force"), f"pads that act {along(total.total)}", remedy)
 
 
-def _other_sign(brief: Brief, net: Curve) -> Iterator[Finding]:
-    """Stretches where what the pads bring acts against its own sum."""
+def _other_sign(brief: Brief, gravity: Curve) -> Iterator[Finding]:
+    """Stretches where what the pads bring acts against its own sum, a table of V and M judged by its rows alone."""
+    curves = [
+        Combined((stepped_curve(load),), (load.times,)) if isinstance(load, InternalLoad)
+        else load_curve(load, brief.specimen)
+        for load in brief.loads
+    ]  # fmt: skip
+    net = Combined((*curves, gravity), (*(1.0 for _ in curves), -1.0))
     parts = signed_parts(net, brief.specimen.left, brief.specimen.right)
     if not parts.force.size or net.total == 0:
         return
@@ -89,7 +98,8 @@ def _other_sign(brief: Brief, net: Curve) -> Iterator[Finding]:
             "the pads of one tree all act one way and cannot follow it there")  # fmt: skip
     value = f"{show(amount / parts.gross, 'fraction')} of the load taken without its signs"
     remedy = (
-        "give each sign a rig and a jack of its own, hang the opposite loads as dead weights, or accept the error there"
+        "if it is not meant, check the signs and the tables there; if it is, give each sign a rig and a jack of its "
+        "own, hang the opposite loads as dead weights, or accept the error there"
     )
     yield _remark(severity, "target", text, value, "a load of one sign", remedy)
 
@@ -217,7 +227,7 @@ def _sizes(brief: Brief, total: Curve, gravity: Curve) -> Iterator[Finding]:
         yield from _outside(mean, _RUNNING, "running load", "target", "its mean running load", "the units of the loads")
     if specimen.weight is not None:
         heavy = abs(gravity.total)
-        mass = heavy / 9.80665 / span
+        mass = heavy / STANDARD_GRAVITY / span
         yield from _outside(
             mass, _MASSES, "mass per length", "weight", "the mean mass per length", "the weight's units"
         )

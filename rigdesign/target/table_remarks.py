@@ -22,6 +22,8 @@ from rigdesign.target.internal_table import Steps, jumps_of, steps_of
 _SLIP_REST = 0.05
 # Below this part of the greatest moment a sum of disagreements is not worth a word about envelopes.
 _ENVELOPE_LEAST = 0.005
+# Steps in a row that must disagree the same way: a single wrong row makes two.
+_ENVELOPE_RUN = 3
 # Up to this part of the greatest moment a couple left out is a warning, above it a failure.
 _COUPLE_SMALL = 0.005
 # A running load of the other sign counts once it exceeds this part of the table's greatest.
@@ -143,8 +145,10 @@ def _couples(view: _View, right: float) -> list[Finding]:
 
 def _end_remedy(at: float, force: float, moment: float, right: float) -> str:
     if force and 0 < moment / force <= right - at + 1e-9 * abs(right):
-        return (f"let the table run to the tip, or give the load beyond its last row as a point load of "
-                f"{show(force, 'force')} at {show(at + moment / force, 'length')} instead")  # fmt: skip
+        return (
+            f"let the table run to the tip, or add a row at {show(at + moment / force, 'length')}, where the load "
+            "beyond the last row must act, with the same shear and no moment"
+        )
     return "let the table run on until the moment is zero, and check its last row"
 
 
@@ -163,21 +167,18 @@ def _left_shear(view: _View, right: float) -> list[Finding]:
 
 def _envelope(view: _View) -> list[Finding]:
     """Shear that is too large for the moment, row after row: values of several cases in one table."""
-    steps = view.steps
-    bend = view.curvature
+    steps, bend = view.steps, view.curvature
     missing = (steps.straight + bend - steps.drop) * np.sign(steps.straight)
     doubtful = np.abs(missing) > steps.allowed + np.abs(bend)
-    count = int(doubtful.sum())
-    if count < max(4, 0.3 * doubtful.size) or (missing[doubtful] > 0).sum() < 0.9 * count:
+    same_way = doubtful & (missing > 0)
+    total, other_way = float(missing[same_way].sum()), float(-missing[doubtful & ~same_way].sum())
+    if _longest_run(same_way) < _ENVELOPE_RUN or total < _ENVELOPE_LEAST * view.peak or other_way > 0.1 * total:
         return []
-    total = float(missing[doubtful].sum())
-    strong = int((doubtful & (view.impossible | view.turning)).sum())
-    if total < _ENVELOPE_LEAST * view.peak or strong < 0.5 * count:
-        return []
-    worst = int(np.argmax(np.where(doubtful, missing, 0.0)))
-    text = (f"the shear is too large for the moment over {count} of {doubtful.size} steps between rows, "
-            f"most between {_stretch(steps, worst)}: the sign of an envelope of several cases, "
-            "which no single load can follow")  # fmt: skip
+    if not np.any(same_way & (view.impossible | view.turning)):
+        return []  # a load of one sign explains every step: strips lumped off their middles
+    worst = int(np.argmax(np.where(same_way, missing, 0.0)))
+    text = (f"the shear is too large for the moment{_count(same_way)} between {_stretch(steps, worst)}: the sign "
+            "of an envelope of several cases, which no single load can follow")  # fmt: skip
     value = f"{show(total, 'moment')} too much, {show(total / view.peak, 'fraction')} of the greatest moment"
     remedy = "ask for the shear and the moment of one case at a time, and give each case its own brief"
     return [_finding(view, "warning", text, value, "the integral of the shear is the change of the moment", remedy)]
@@ -204,7 +205,9 @@ def _disagreements(view: _View) -> list[Finding]:
 
 def _turns(view: _View) -> list[Finding]:
     """Steps within which the curve's running load turns over though the rows around do not."""
-    turning = view.turning & ~view.impossible
+    wrong = view.impossible
+    near = wrong | np.append(wrong[1:], False) | np.append(False, wrong[:-1])
+    turning = view.turning & ~near  # a wrong row swings its neighbours too, and has been named
     if not turning.any():
         return []
     steps = view.steps
@@ -217,7 +220,7 @@ def _turns(view: _View) -> list[Finding]:
     value = show(-float(np.sign(mean[worst]) * excess[worst]), "running load")
     limit = f"{show(float(mean[worst]), 'running load')} on average there"
     remedy = "the table's rounding explains it: ask for more digits" if rounded else (
-        "ask for more rows there, and for two rows at the station of a point load")  # fmt: skip
+        "check both rows, ask for more between them, and for two rows at the station of a point load")  # fmt: skip
     return [_finding(view, "note", text, value, limit, remedy)]
 
 
@@ -229,3 +232,8 @@ def _count(which: NDArray[np.bool_]) -> str:
     """Nothing for a single step; else how many, leading on to the worst one."""
     count = int(which.sum())
     return "" if count == 1 else f" over {count} of {which.size} steps between rows, most"
+
+
+def _longest_run(which: NDArray[np.bool_]) -> int:
+    ends = np.flatnonzero(np.concatenate([[True], ~which, [True]]))
+    return int(np.diff(ends).max()) - 1
