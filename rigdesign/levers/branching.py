@@ -16,16 +16,19 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from functools import cached_property
 from typing import NamedTuple
 
 import numpy as np
+from numpy.typing import NDArray
 
+from rigdesign.levers.hanging import metres
 from rigdesign.levers.judging import Judge, Lines
 from rigdesign.levers.wiring import Ints, Wiring
 from rigdesign.target.curve import Floats
 
-PadsKept = Callable[[Floats, Floats], np.ndarray]
-ArmsKept = Callable[[Floats, Floats, np.ndarray], np.ndarray]
+Rows = NDArray[np.intp]
+Kept = Callable[[Floats, Floats], NDArray[np.bool_]]
 
 
 class Pins(NamedTuple):
@@ -35,13 +38,13 @@ class Pins(NamedTuple):
     place: Floats
     right: Lines
 
-    def taken(self, rows: np.ndarray) -> Pins:
+    def taken(self, rows: Rows) -> Pins:
         """Some of the pins."""
         return Pins(self.load[rows], self.place[rows], Lines(self.right.load[rows], self.right.first[rows]))
 
 
 class Branch(NamedTuple):
-    """Best of each pin (k,): band use (infinite where all are cut off) and the steps of the levers below (k, levers, 2)."""
+    """Best of each pin (k,): band use, infinite where all are cut off, and steps of the levers below (k, levers, 2)."""
 
     use: Floats
     steps: Ints
@@ -60,7 +63,7 @@ class Search:
     """A search over the arms of one tree.
 
     `planned` are the lines between neighbouring pads as planned, (n_pads + 1,), the first through the jack and the
-    last zero; `planned_x` (n_pads,) [m] the pads.  `pads_kept(x, force)` and `arms_kept(a, b, row)` tell whether pads
+    last zero; `planned_x` (n_pads,) [m] the pads.  `pads_kept(x, force)` and `arms_kept(a, b)` tell whether pads
     and levers keep their limits.
     """
 
@@ -70,60 +73,66 @@ class Search:
     planned: Lines
     planned_x: Floats
     displacement: float
-    pads_kept: PadsKept
-    arms_kept: ArmsKept
+    pads_kept: Kept
+    arms_kept: Kept
 
-    def best(self, jack: Pins, bound: float, window: int, most: int) -> tuple[float, Ints, Count]:
-        """Best band use up to `bound` and its steps (2 · n_levers,), with arms up to `window` steps to either side.
+    @cached_property
+    def stretches(self) -> Ints:
+        """First and last pad under each lever, (n_levers, 2)."""
+        return self.wiring.stretches()
 
-        At most about `most` choices are followed at each lever.
+    def best(self, row: int, pin: Pins, bound: float, window: int, most: int) -> tuple[float, Ints, Count]:
+        """Best arms of a lever and of all below it, hung from one pin.
+
+        Gives the band use, infinite where none is up to `bound`, the steps (levers, 2) in the order of `rows_under`,
+        and the work done.  Arms are looked for up to `window` steps to either side of the planned line, and at most
+        about `most` choices are followed at each lever.
         """
         count = Count()
-        stretches = self.wiring.stretches()
-        branch = self._lever(0, jack, _Task(bound, window, most, stretches, count))
-        return float(branch.use[0]), branch.steps[0].reshape(-1), count
+        branch = self._lever(row, pin, _Task(bound, window, most, count))
+        return float(branch.use[0]), branch.steps[0], count
 
     def _lever(self, row: int, pins: Pins, task: _Task) -> Branch:
         """Best arms of a lever and of all below it, for each pin."""
-        rows = _rows_under(self.wiring, row)
+        rows = rows_under(self.wiring, row)
         owner, arms, use = self._choices(row, pins, task)
         steps = np.zeros((owner.size, len(rows), 2), dtype=np.int64)
         steps[:, 0] = arms
-        below = self._halves(pins.taken(owner), arms)
+        below = self.halves(pins.taken(owner), arms)
         alive = np.arange(owner.size)
         # the smaller half first: it cuts choices off for less work
-        order = sorted((0, 1), key=lambda side: len(_rows_under(self.wiring, int(self.wiring.ends[row, side]))))
+        order = sorted((0, 1), key=lambda side: len(rows_under(self.wiring, int(self.wiring.ends[row, side]))))
         for side in order:
             end = int(self.wiring.ends[row, side])
             if end >= 0 and alive.size:
                 branch = self._lever(end, below[side].taken(alive), task)
-                column = [rows.index(under) for under in _rows_under(self.wiring, end)]
+                column = [rows.index(under) for under in rows_under(self.wiring, end)]
                 steps[alive[:, None], column] = branch.steps
                 use[alive] = np.maximum(use[alive], branch.use)
                 alive = alive[use[alive] <= task.bound]
         return _best_of_each(pins.load.size, owner[alive], use[alive], steps[alive])
 
-    def _choices(self, row: int, pins: Pins, task: _Task) -> tuple[np.ndarray, Ints, Floats]:
+    def _choices(self, row: int, pins: Pins, task: _Task) -> tuple[Rows, Ints, Floats]:
         """Choices of arms that the bound leaves: the pin of each (k,), a, b in steps (k, 2), band use so far (k,)."""
         grid, line = self._window(row, pins, task)
         owner = np.repeat(np.arange(pins.load.size), grid.shape[1])
         arms = grid.reshape(-1, 2)
         task.count.nodes += owner.size
-        a, b = arms[:, 0] * self.step, arms[:, 1] * self.step
-        kept = np.flatnonzero((arms.min(axis=1) > 0) & self.arms_kept(a, b, np.array(row)))
+        a, b = metres(arms[:, 0], self.step), metres(arms[:, 1], self.step)
+        kept = np.flatnonzero((arms.min(axis=1) > 0) & self.arms_kept(a, b))
         owner, arms = owner[kept], arms[kept]
-        halves = self._halves(pins.taken(owner), arms)
+        halves = self.halves(pins.taken(owner), arms)
         middle = halves[0].right
         use = self.judge.line_use(middle, self.displacement)
         use, kept = self._with_pads(row, halves, use, task.bound)
-        far = self._distance(Lines(middle.load[kept], middle.first[kept]), line, task.stretches[row])
+        far = self._distance(Lines(middle.load[kept], middle.first[kept]), line)
         chosen = self._likeliest(owner[kept], far, pins.load.size, task)
         kept = kept[chosen]
         return owner[kept], arms[kept], use[kept]
 
     def _window(self, row: int, pins: Pins, task: _Task) -> tuple[Ints, int]:
         """Arms around those that give back the planned line (k, choices, 2), and which line that is."""
-        line = self._line_of(row, task.stretches)
+        line = self._line_of(row)
         load, first = self.planned.load[line], self.planned.first[line]
         left = Lines(pins.right.load + pins.load, pins.right.first + pins.load * pins.place)
         with np.errstate(divide="ignore", invalid="ignore"):
@@ -134,12 +143,12 @@ class Search:
         offsets = np.stack(np.meshgrid(reach, reach, indexing="ij"), axis=-1).reshape(1, -1, 2)
         return base[:, None] + offsets, line
 
-    def _line_of(self, row: int, stretches: Ints) -> int:
+    def _line_of(self, row: int) -> int:
         """Index of the line between the two halves of a lever."""
         end = int(self.wiring.ends[row, 1])
-        return -1 - end if end < 0 else int(stretches[end, 0])
+        return -1 - end if end < 0 else int(self.stretches[end, 0])
 
-    def _halves(self, pins: Pins, arms: Ints) -> tuple[Pins, Pins]:
+    def halves(self, pins: Pins, arms: Ints) -> tuple[Pins, Pins]:
         """Pins of both halves of levers with `arms` (k, 2)."""
         a, b = arms[:, 0], arms[:, 1]
         outer = pins.load * a / (a + b)
@@ -147,7 +156,7 @@ class Search:
         middle = Lines(pins.right.load + outer, pins.right.first + outer * place)
         return Pins(pins.load - outer, pins.place - a * self.step, middle), Pins(outer, place, pins.right)
 
-    def _with_pads(self, row: int, halves: tuple[Pins, Pins], use: Floats, bound: float) -> tuple[Floats, np.ndarray]:
+    def _with_pads(self, row: int, halves: tuple[Pins, Pins], use: Floats, bound: float) -> tuple[Floats, Rows]:
         """Band use with the pads that hang from the lever itself, and which choices the bound and the limits leave."""
         kept = np.flatnonzero(use <= bound)
         for side, pins in enumerate(halves):
@@ -157,8 +166,8 @@ class Search:
                 kept = kept[(use[kept] <= bound) & self.pads_kept(place, load)]
         return use, kept
 
-    def _distance(self, line: Lines, planned: int, stretch: Ints) -> Floats:
-        """How far lines lie from the planned one at the two planned pads beside it, in widths of the band."""
+    def _distance(self, line: Lines, planned: int) -> Floats:
+        """How far lines lie from the planned one at the two planned pads beside it [N·m]."""
         beside = self.planned_x[planned - 1 : planned + 1]
         far = np.zeros(line.load.size)
         for x in beside:
@@ -167,7 +176,7 @@ class Search:
             )
         return far
 
-    def _likeliest(self, owner: np.ndarray, far: Floats, pins: int, task: _Task) -> np.ndarray:
+    def _likeliest(self, owner: Rows, far: Floats, pins: int, task: _Task) -> Rows:
         """Choices to follow: all, or the nearest to the plan for each pin where there are too many."""
         if owner.size <= task.most:
             return np.arange(owner.size)
@@ -187,11 +196,10 @@ class _Task:
     bound: float
     window: int
     most: int
-    stretches: Ints
     count: Count
 
 
-def _rows_under(wiring: Wiring, row: int) -> list[int]:
+def rows_under(wiring: Wiring, row: int) -> list[int]:
     """Rows of a lever and of all levers below it, the lever first; none for a pad."""
     found, waiting = [], [row] if row >= 0 else []
     while waiting:
@@ -200,7 +208,7 @@ def _rows_under(wiring: Wiring, row: int) -> list[int]:
     return [*found[:1], *sorted(found[1:])]
 
 
-def _best_of_each(pins: int, owner: np.ndarray, use: Floats, steps: Ints) -> Branch:
+def _best_of_each(pins: int, owner: Rows, use: Floats, steps: Ints) -> Branch:
     """Least use of each pin, the first of equals."""
     best = np.full(pins, np.inf)
     chosen = np.zeros((pins, *steps.shape[1:]), dtype=np.int64)

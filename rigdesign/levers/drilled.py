@@ -6,10 +6,9 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from rigdesign.brief.model import LeverRules
 from rigdesign.display import show
 from rigdesign.findings import Refusal
-from rigdesign.levers.grouping import allowed, joined
+from rigdesign.levers.grouping import joined
 from rigdesign.levers.hanging import Hung
 from rigdesign.levers.wiring import Ints, Wiring
 from rigdesign.target.curve import Floats
@@ -30,11 +29,6 @@ class Drilled:
     steps: Ints
     use: float
     words: str
-
-
-def lever_limits(a: Floats, b: Floats, rules: LeverRules) -> np.ndarray:
-    """Whether drilled levers with arms a, b [m], any shape, keep their limits, both arms above zero."""
-    return allowed(a, b, rules)
 
 
 def coarse(wiring: Wiring, a: Floats, b: Floats, step: float) -> Refusal | None:

@@ -8,14 +8,16 @@ where the jack should stand, and keeps each of them by moving pivots of that cha
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator
+from itertools import pairwise
 
 import numpy as np
 
-from rigdesign.brief.model import Brief
+from rigdesign.brief.model import Brief, LeverRules
 from rigdesign.display import show
 from rigdesign.findings import Refusal
 from rigdesign.levers.descent import Descended, all_pairs, descend, moves_of, near_pairs
-from rigdesign.levers.drilled import BROKEN, Drilled, coarse, lever_limits
+from rigdesign.levers.drilled import BROKEN, Drilled, coarse
+from rigdesign.levers.grouping import allowed
 from rigdesign.levers.hanging import hang_fixed
 from rigdesign.levers.judging import Judge, build_judge
 from rigdesign.levers.wiring import Ints, Wiring, ideal_levers
@@ -33,7 +35,7 @@ NEAR_EQUAL = 0.01
 PLACES = (0, -1, 1, -2, 2)
 """Places of the jack that are tried, in drill steps from the one nearest to where it should stand."""
 
-JUDGED = 20_000_000
+JUDGED = 4_000_000
 """Rigs times pads that the descent from one place of the jack may judge."""
 
 ALL_PAIRS = 32
@@ -91,7 +93,7 @@ def _moves(wiring: Wiring, chain: Ints) -> Ints:
     pairs = all_pairs(size) if size <= ALL_PAIRS else near_pairs(wiring, 1)
     moves = moves_of(size, pairs)
     swaps = np.zeros((4 * max(0, chain.size - 1), size), dtype=np.int64)
-    for index, (upper, lower) in enumerate(zip(chain[:-1], chain[1:], strict=True)):
+    for index, (upper, lower) in enumerate(pairwise(chain)):
         for turn, reach in enumerate((1, -1, 2, -2)):
             swaps[4 * index + turn, [upper, lower]] = reach, -reach
     still = moves[moves[:, chain].sum(axis=1) == 0]
@@ -116,7 +118,7 @@ def _value(brief: Brief, wiring: Wiring, tube: Tube, judge: Judge, x: Floats) ->
         result = np.full(len(rows), np.inf)
         hung = hang_fixed(wiring, np.maximum(rows, 1), step, x, tube.total)
         kept = (rows > 0).all(axis=1) & (hung.b > 0).all(axis=1)
-        kept &= lever_limits(hung.a, hung.b, brief.levers).all(axis=1)
+        kept &= allowed(hung.a, hung.b, brief.levers).all(axis=1)
         if kept.any():
             pad_x, force = hung.pad_x[kept], hung.pad_force[kept]
             missed = violations(brief, pad_x, force)
@@ -145,14 +147,11 @@ def _starts(plan: PadPlan, wiring: Wiring, chain: Ints, step: float) -> Iterator
         yield moved
 
 
-def _allowed_step(exact: float, length: float, step: float, rules: object) -> int:
+def _allowed_step(exact: float, length: float, step: float, rules: LeverRules) -> int:
     """Whole step nearest to `exact` that keeps the limits of a lever of `length` steps; the nearest if none does."""
-    from rigdesign.brief.model import LeverRules
-
-    assert isinstance(rules, LeverRules)
     tried = np.rint(exact) + np.array([0, 1, -1, 2, -2, 3, -3])
     tried = tried[np.argsort(np.abs(tried - exact), kind="stable")]
-    kept = tried[lever_limits(tried * step, (length - tried) * step, rules)]
+    kept = tried[allowed(tried * step, (length - tried) * step, rules)]
     return int(kept[0]) if kept.size else max(1, int(tried[0]))
 
 

@@ -10,14 +10,17 @@ from __future__ import annotations
 from collections.abc import Callable
 
 import numpy as np
+from numpy.typing import NDArray
 
 from rigdesign.brief.model import Brief
 from rigdesign.display import show
 from rigdesign.findings import Refusal
-from rigdesign.levers.branching import Count, Pins, Search
+from rigdesign.levers.arms import Arms, search_arms
+from rigdesign.levers.branching import Pins, Search
 from rigdesign.levers.descent import Descended, all_pairs, descend, moves_of, near_pairs
-from rigdesign.levers.drilled import BROKEN, Drilled, coarse, lever_limits
-from rigdesign.levers.hanging import Hung, hang_free
+from rigdesign.levers.drilled import BROKEN, Drilled, coarse
+from rigdesign.levers.grouping import allowed
+from rigdesign.levers.hanging import Hung, hang_free, metres
 from rigdesign.levers.judging import Judge, Lines, build_judge
 from rigdesign.levers.wiring import Ints, Wiring, ideal_levers
 from rigdesign.pads.limits import violations
@@ -27,19 +30,7 @@ from rigdesign.target.curve import Floats
 
 Progress = Callable[[float, str], None]
 
-WINDOW = 2
-"""Steps to either side of the planned arms within which the branch and bound looks."""
-
-FOLLOWED = 120_000
-"""Choices that the branch and bound may follow at all levers together, in one pass."""
-
-PASSES = 7
-"""Passes of the branch and bound at most; each allows twice the loss of band use of the one before."""
-
-FIRST_LOSS = 0.01
-"""Loss of band use against the plan, as a fraction of it, that the first pass allows."""
-
-JUDGED = 40_000_000
+JUDGED = 8_000_000
 """Rigs times pads that a descent may judge."""
 
 ALL_PAIRS = 32
@@ -57,7 +48,7 @@ def drill_free(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | N
     judge = build_judge(tube)
     value = _value(brief, wiring, tube, judge, step)
     found = _searched(plan, wiring, tube, judge, progress) if wiring.is_neighbourly else None
-    start = found[0] if found is not None else _rounded(brief, levers.a, levers.b, step)
+    start = found.steps.reshape(-1) if found is not None else _rounded(brief, levers.a, levers.b, step)
     if start is None:
         return _no_side(step)
     pairs = all_pairs(start.size) if start.size <= ALL_PAIRS else near_pairs(wiring, 2)
@@ -65,7 +56,7 @@ def drill_free(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | N
     descended = descend(start, moves, value, max(1, JUDGED // (plan.n_pads * len(moves))) * len(moves))
     hung = hang_free(wiring, descended.steps[None], step, tube.jack_x, tube.total)
     use = float(tube.use(hung.pad_x, hung.pad_force)[0])
-    return Drilled(hung, descended.steps.reshape(-1, 2), use, _words(found, descended, wiring))
+    return Drilled(hung, descended.steps.reshape(-1, 2), use, _words(found, descended))
 
 
 def _value(brief: Brief, wiring: Wiring, tube: Tube, judge: Judge, step: float) -> Callable[[Ints], Floats]:
@@ -73,7 +64,9 @@ def _value(brief: Brief, wiring: Wiring, tube: Tube, judge: Judge, step: float) 
 
     def value(rows: Ints) -> Floats:
         result = np.full(len(rows), np.inf)
-        kept = np.flatnonzero(lever_limits(rows[:, 0::2] * step, rows[:, 1::2] * step, brief.levers).all(axis=1))
+        kept = np.flatnonzero(
+            allowed(metres(rows[:, 0::2], step), metres(rows[:, 1::2], step), brief.levers).all(axis=1)
+        )
         if kept.size:
             hung = hang_free(wiring, rows[kept], step, tube.jack_x, tube.total)
             result[kept] = judged(brief, judge, hung)
@@ -88,50 +81,22 @@ def judged(brief: Brief, judge: Judge, hung: Hung) -> Floats:
     return judge.use(hung.pad_x, hung.pad_force) + np.where(missed > 0, BROKEN * (1.0 + missed), 0.0)
 
 
-def _searched(
-    plan: PadPlan, wiring: Wiring, tube: Tube, judge: Judge, progress: Progress | None
-) -> tuple[Ints, Count, float, float] | None:
-    """Branch and bound: steps, work, the band use found, and the loss up to which everything was followed.
-
-    The bound on the band use starts close to the plan's own, where little is left to follow, and is let out until
-    arms are found; None where there are none at all.
-    """
-    search = _search(plan, wiring, tube, judge)
-    jack = Pins(np.array([tube.total]), np.array([tube.jack_x]), Lines(np.zeros(1), np.zeros(1)))
-    planned = float(judge.use(plan.x[None], np.abs(plan.force)[None])[0])
-    most = max(16, FOLLOWED // wiring.n_levers)
-    work = Count()
-    for turn in range(PASSES):
-        bound = planned * (1.0 + FIRST_LOSS * 2.0**turn)
-        use, steps, count = search.best(jack, bound, WINDOW, most)
-        work.nodes += count.nodes
-        if progress is not None:
-            progress((turn + 1) / (PASSES + 1), "drilling")
-        if np.isfinite(use):
-            work.is_complete = count.is_complete
-            return steps, work, use, bound
-        if not count.is_complete:
-            break
-    use, steps, count = search.best(jack, np.inf, WINDOW, most)
-    work.nodes += count.nodes
-    work.is_complete = count.is_complete
-    return (steps, work, use, np.inf) if np.isfinite(use) else None
-
-
-def _search(plan: PadPlan, wiring: Wiring, tube: Tube, judge: Judge) -> Search:
+def _searched(plan: PadPlan, wiring: Wiring, tube: Tube, judge: Judge, progress: Progress | None) -> Arms | None:
+    """Arms by branch and bound."""
     brief, force = plan.target.brief, np.abs(plan.force)
     load = np.append(np.cumsum(force[::-1])[::-1], 0.0)
     first = np.append(np.cumsum((force * plan.x)[::-1])[::-1], 0.0)
 
-    def pads_kept(x: Floats, pull: Floats) -> np.ndarray:
+    def pads_kept(x: Floats, pull: Floats) -> NDArray[np.bool_]:
         return np.asarray(violations(brief, x[:, None], pull[:, None]) == 0)
 
-    def arms_kept(a: Floats, b: Floats, row: np.ndarray) -> np.ndarray:
-        return lever_limits(a, b, brief.levers)
+    def arms_kept(a: Floats, b: Floats) -> NDArray[np.bool_]:
+        return allowed(a, b, brief.levers)
 
-    return Search(
-        wiring, judge, brief.levers.drill_step, Lines(load, first), plan.x, tube.displacement, pads_kept, arms_kept
-    )
+    lines, step = Lines(load, first), brief.levers.drill_step
+    search = Search(wiring, judge, step, lines, plan.x, tube.displacement, pads_kept, arms_kept)
+    jack = Pins(np.array([tube.total]), np.array([tube.jack_x]), Lines(np.zeros(1), np.zeros(1)))
+    return search_arms(search, jack, float(judge.use(plan.x[None], force[None])[0]), progress)
 
 
 def _rounded(brief: Brief, a: Floats, b: Floats, step: float) -> Ints | None:
@@ -142,7 +107,7 @@ def _rounded(brief: Brief, a: Floats, b: Floats, step: float) -> Ints | None:
     for row in range(a.size):
         exact = np.array([a[row], b[row]]) / step
         tried = np.rint(exact).astype(np.int64) + offsets
-        kept = tried[lever_limits(tried[:, 0] * step, tried[:, 1] * step, brief.levers)]
+        kept = tried[allowed(metres(tried[:, 0], step), metres(tried[:, 1], step), brief.levers)]
         if not len(kept):
             return None
         steps[row] = kept[np.argmin(np.abs(kept - exact).sum(axis=1))]
@@ -159,18 +124,20 @@ def _no_side(step: float) -> Refusal:
     )
 
 
-def _words(found: tuple[Ints, Count, float, float] | None, descended: Descended, wiring: Wiring) -> str:
+def _words(found: Arms | None, descended: Descended) -> str:
     if found is None:
-        head = "drilling: arms rounded"
+        head = "drilling: arms rounded, then moved"
+    elif found.window:
+        head = (
+            f"drilling: {found.nodes} choices of arms looked at; proven: no arms up to {steps_of(found.window)} either "
+            f"side of those that give back the planned pads have a band use below {found.least:.4g}"
+        )
     else:
-        _, work, use, _ = found
-        head = f"drilling: {work.nodes} choices of arms looked at"
-        if work.is_complete:
-            gain = (
-                f"the best within {WINDOW} steps of the plan is proven to be band use {use:.4g} before the last descent"
-            )
-        else:
-            gain = f"only the likeliest were followed, so the best within {WINDOW} steps of the plan is not proven"
-        head += f"; {gain}"
-    tail = "no single step and no pair of steps improves it" if descended.is_settled else "stopped by its work limit"
-    return f"{head}; descent over {descended.judged} rigs, {tail}"
+        head = f"drilling: {found.nodes} choices of arms looked at, too few to prove which are best"
+    end = "no single step and no pair of steps improves it" if descended.is_settled else "stopped by its work limit"
+    return f"{head}; then a descent over {descended.judged} rigs: {end}"
+
+
+def steps_of(count: int) -> str:
+    """A number of drill steps in words."""
+    return "1 drill step" if count == 1 else f"{count} drill steps"

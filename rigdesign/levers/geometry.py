@@ -7,7 +7,7 @@ from rigdesign.levers.model import Hole, HoleName, Jack, Piece, Tree
 from rigdesign.levers.wiring import Wiring
 
 DUST = 12
-"""Decimals of a metre to which whole steps are rounded: enough for 1/128 in, and 0.30000000000000004 m becomes 0.3 m."""
+"""Decimals of a metre to which whole steps are rounded: enough for 1/128 in; 0.30000000000000004 m becomes 0.3 m."""
 
 
 def build_tree(wiring: Wiring, drilled: Drilled, step: float, force: float) -> Tree:

@@ -12,7 +12,7 @@ from rigdesign.display import show
 from rigdesign.errors import BriefError
 from rigdesign.findings import Refusal
 from rigdesign.levers.neighbours import Best, Join, Stretches, added, best_tree, stacked, worst
-from rigdesign.levers.wiring import Levers, Wiring, from_grouping, ideal_levers
+from rigdesign.levers.wiring import Levers, Wiring, from_grouping, ideal_levers, quotient
 from rigdesign.pads.model import PadPlan
 from rigdesign.target.curve import Floats
 
@@ -84,8 +84,7 @@ class Limit:
 
 
 def _ratio(a: Floats, b: Floats) -> Floats:
-    shorter = np.minimum(a, b)
-    return np.divide(np.maximum(a, b), shorter, out=np.full(np.shape(a), np.inf), where=shorter > 0)
+    return quotient(np.maximum(a, b), np.minimum(a, b))
 
 
 def _metres(value: float) -> str:
@@ -160,10 +159,10 @@ def why_none(pads: Stretches, rules: LeverRules) -> Refusal:
             "levers",
             f"{text}, and lifting one of them alone does not help",
             " with ".join(limits) if limits else "arms above zero",
-            "none: with any one limit lifted there is still no tree",
+            _each_alone(pads, rules, given),
             "ease two of these limits at once, change the number of pads, or ask for more even pad forces",
         )
-    best = "; ".join(
+    needed = "; ".join(
         f"with the other limits kept, {limit.key} would have to be {limit.shown(best.value)}{_where(pads, limit, best)}"
         for limit, best in helps
     )
@@ -172,9 +171,24 @@ def why_none(pads: Stretches, rules: LeverRules) -> Refusal:
         "levers",
         text,
         " or ".join(f"{limit.key} {limit.shown(limit.value(rules))}" for limit, _ in helps),
-        best,
+        needed,
         ", or ".join(ways) + ", or change the number of pads",
     )
+
+
+def _each_alone(pads: Stretches, rules: LeverRules, given: list[Limit]) -> str:
+    """What each limit would have to be if there were no other; only those that even then are broken."""
+    broken = []
+    for limit in given:
+        free = rules
+        for other in LIMITS:
+            free = other.lifted(free)
+        best = least_of(pads, free, limit)
+        if best.wiring is not None and best.value > limit.value(rules) * (1 + LIMIT_SLACK):
+            broken.append(f"{limit.key} would have to be {limit.shown(best.value)}{_where(pads, limit, best)}")
+    if not broken:
+        return "each of these limits can be kept by itself, but not all together"
+    return "even without any other limit " + ", and ".join(broken)
 
 
 def _eased(limit: Limit, value: float) -> float:

@@ -17,8 +17,7 @@ from rigdesign.target.curve import Floats
 
 @dataclass(frozen=True)
 class Hung:
-    """Hung trees, one a row: pads (k, n_pads), levers (k, n_levers), `jack_x` (k,); metres and newtons, all positive
-    forces."""
+    """Hung trees, one a row: pads (k, n_pads), levers (k, n_levers), `jack_x` (k,); in m and N, forces positive."""
 
     pad_x: Floats
     pad_force: Floats
@@ -34,7 +33,7 @@ def hang_free(wiring: Wiring, steps: Ints, step: float, jack_x: float, total: fl
     `steps` (k, 2 · n_levers) are the arms a, b of each lever in drill steps of `step` [m].
     """
     rows = len(steps)
-    a, b = steps[:, 0::2].T * step, steps[:, 1::2].T * step
+    a, b = metres(steps[:, 0::2].T, step), metres(steps[:, 1::2].T, step)
     pivot, load = np.full((wiring.n_levers, rows), jack_x), np.full((wiring.n_levers, rows), total)
     pad_x, pad_force = np.full((wiring.n_pads, rows), jack_x), np.full((wiring.n_pads, rows), total)
     for row, inboard, outboard in wiring.downward():
@@ -52,7 +51,7 @@ def hang_fixed(wiring: Wiring, steps: Ints, step: float, x: Floats, total: float
     `steps` (k, n_levers) are the distances from hole A to the pivot in drill steps of `step` [m].
     """
     rows = len(steps)
-    a, b = steps.T * step, np.zeros((wiring.n_levers, rows))
+    a, b = metres(steps.T, step), np.zeros((wiring.n_levers, rows))
     pivot, load = np.zeros((wiring.n_levers, rows)), np.full((wiring.n_levers, rows), total)
     pad_x = np.repeat(x[:, None], rows, axis=1)
     pad_force = np.full((wiring.n_pads, rows), total)
@@ -66,6 +65,11 @@ def hang_fixed(wiring: Wiring, steps: Ints, step: float, x: Floats, total: float
             (pad_force if end < 0 else load)[_row(end)] = force
     jack_x = pivot[0] if wiring.n_levers else pad_x[0]
     return Hung(pad_x.T, pad_force.T, pivot.T, a.T, b.T, jack_x)
+
+
+def metres(steps: Ints, step: float) -> Floats:
+    """Lengths [m] of whole numbers of drill steps, any shape."""
+    return np.asarray(steps * step, dtype=np.float64)
 
 
 def _row(end: int) -> int:

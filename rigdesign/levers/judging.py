@@ -58,8 +58,8 @@ class Judge:
     has_reactions: bool
 
     def tangent(self, load: Floats) -> Floats:
-        """Station at which the target's shear falls to `load`, where the line of that load errs most to the over side."""
-        return np.interp(load, self.tangent_load, self.tangent_x)
+        """Station at which the target's shear falls to `load`: there its line errs most to the over side."""
+        return np.asarray(np.interp(load, self.tangent_load, self.tangent_x))
 
     def moment_use(self, x: Floats, y: Floats, moved: Floats | float, side: Side = "right") -> Floats:
         """Error over its band of a path that has the moment y [N·m] at x, any shape.
@@ -80,7 +80,7 @@ class Judge:
         `outboard` is the load beyond each pad and `force` its own [N].
         """
         inner = self._shear_use(x, outboard + force, "left", moved)
-        return np.maximum(inner, self._shear_use(x, outboard, "right", moved))
+        return np.asarray(np.maximum(inner, self._shear_use(x, outboard, "right", moved)))
 
     def _shear_use(self, x: Floats, shear: Floats, side: Side, moved: Floats | float) -> Floats:
         row, t = self._row(x, side)
@@ -121,7 +121,7 @@ class Judge:
         first_beyond = np.cumsum(first[:, ::-1], axis=1)[:, ::-1]
         use = self.pad_use(pad_x, force, Lines(load_beyond - force, first_beyond - first), moved).max(axis=1)
         if not self.is_judged[0]:
-            return use
+            return np.asarray(use)
         inner = Lines(load_beyond[:, 1:], first_beyond[:, 1:])
         tangent = np.clip(self.tangent(inner.load), pad_x[:, :-1], pad_x[:, 1:])
         use = np.maximum(use, self.moment_use(tangent, inner.value(tangent), moved).max(axis=1, initial=0.0))
@@ -129,7 +129,7 @@ class Judge:
         for fraction in FRACTIONS:
             x = pad_x[:, :-1] + fraction * span
             use = np.maximum(use, self.moment_use(x, inner.value(x), moved).max(axis=1, initial=0.0))
-        return np.maximum(use, self._use_at_jumps(pad_x, force, moved))
+        return np.asarray(np.maximum(use, self._use_at_jumps(pad_x, force, moved)))
 
     def _use_at_jumps(self, pad_x: Floats, force: Floats, moved: Floats | float) -> Floats:
         """Errors at jumps of target or band and at both ends of the specimen, both sides of each."""

@@ -22,7 +22,7 @@ HoleName = Literal["pivot", "A", "B", "C"]
 
 @dataclass(frozen=True)
 class Hole:
-    """A hole of a piece: what it joins ("pad 3", "lever 5", "jack 1"), u, v [m] in the piece's frame, x, y [m] in plan."""
+    """A hole of a piece: what it joins ("pad 3", "lever 5", "jack 1"), u, v [m] in its frame, x, y [m] in plan."""
 
     name: HoleName
     joins: str

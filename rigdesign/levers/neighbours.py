@@ -125,8 +125,8 @@ def best_tree(
 
     `own(length)` gives the value of the lever over every split of every stretch of that length, (length − 1,
     n_pads − length + 1), infinite where the lever is not allowed; `join` makes the value of a tree from those of its
-    halves and of its lever, and `alone` is the value of a single pad.  Among equals the lower tree is taken, then the more balanced, then the one whose inboard
-    part has fewer pads.
+    halves and of its lever, and `alone` is the value of a single pad.  Among equals the lower tree is taken, then the
+    more balanced, then the one whose inboard part has fewer pads.
     """
     layers = 1 if tiers is None else min(tiers, n_pads - 1) + 1
     value = [Table.filled(n_pads, np.inf) for _ in range(layers)]
@@ -153,7 +153,7 @@ def best_tree(
 
 def _choose(total: Floats, tall: Floats) -> NDArray[np.int64]:
     """Row of the best split in each column, ties settled by height and balance."""
-    pick = total.argmin(axis=0)
+    pick: NDArray[np.int64] = total.argmin(axis=0)
     least = total[pick, np.arange(pick.size)]
     near = total <= least + TIE * np.abs(least)
     tied = np.flatnonzero((np.count_nonzero(near, axis=0) > 1) & np.isfinite(least))

@@ -85,6 +85,13 @@ class Wiring:
             yield row, int(self.ends[row, 0]), int(self.ends[row, 1])
 
 
+def quotient(upper: Floats, lower: Floats) -> Floats:
+    """upper / lower, infinite where lower is not above zero."""
+    result = np.full(np.shape(lower), np.inf)
+    np.divide(upper, lower, out=result, where=np.asarray(lower) > 0)
+    return result
+
+
 @dataclass(frozen=True)
 class Levers:
     """Loads, places and arms of the levers of a wiring, all (n_levers,): `load` [N], `pivot` [m], `a`, `b` [m].
@@ -106,7 +113,7 @@ class Levers:
     def ratio(self) -> Floats:
         """Longer arm over shorter arm; infinite where an arm is zero."""
         shorter = np.minimum(self.a, self.b)
-        return np.divide(np.maximum(self.a, self.b), shorter, out=np.full(shorter.shape, np.inf), where=shorter > 0)
+        return quotient(np.maximum(self.a, self.b), shorter)
 
     @property
     def steel_estimate(self) -> float:
