@@ -17,7 +17,7 @@ from rigdesign.chain import Study
 from rigdesign.display import System, show
 from rigdesign.findings import Finding, Refusal
 from rigdesign.report.scales import arm_scale, scale
-from rigdesign.report.sentences import CAUTION, answer, finding_lines, percent, refusal_lines
+from rigdesign.report.sentences import CAUTION, answer, counted, finding_lines, percent, refusal_lines, verdict
 
 if TYPE_CHECKING:
     from rigdesign.checks.model import Check
@@ -107,9 +107,11 @@ class Terminal:
             self.lines([f"The fewest pads that are accepted: {fewest.pads}."], style="bold green")
         self.heading("Study")
         self.table(*_study_table(study))
-        refused = [row for row in study.rows if isinstance(row.answer, Refusal)]
-        for row in refused:
-            self.lines([f"{row.pads} pads: " + " ".join(refusal_lines(row.answer))])  # type: ignore[arg-type]
+        for row in study.rows:
+            if isinstance(row.answer, Refusal):
+                self.lines([f"{counted(row.pads, 'pad')}: " + " ".join(refusal_lines(row.answer))])
+            elif not row.accepted:
+                self.lines([verdict(row.answer)])
         self.lines(["", "Errors are per cent of peak target moment and shear, as drilled.", CAUTION])
 
 

@@ -17,11 +17,12 @@ def study_sheet(study: Study) -> Figure:
     """Return the sheet of a study: filled marks are accepted rigs, hollow ones are not, crosses have no rig."""
     fewest = study.fewest
     words = "no number of pads tried is accepted" if fewest is None else f"fewest pads accepted: {fewest.pads}"
+    words += "; filled marks: accepted, hollow marks: not accepted, crosses: no rig"
     figure = new_sheet(A4, f"{study.brief.title}: study of the number of pads", words)
     width = (A4[0] - 24.0 - 26.0 - 14.0) / 2
-    _errors(panel(figure, 24.0, 24.0, width, 150.0), study)
-    _use(panel(figure, 50.0 + width, 104.0, width, 70.0), study)
-    _steel(panel(figure, 50.0 + width, 24.0, width, 62.0), study)
+    _errors(panel(figure, 24.0, 24.0, width, 160.0), study)
+    _use(panel(figure, 50.0 + width, 109.0, width, 75.0), study)
+    _steel(panel(figure, 50.0 + width, 24.0, width, 67.0), study)
     return figure
 
 
@@ -82,5 +83,5 @@ def _steel(axes: Axes, study: Study) -> None:
     checks = [check for _, check in _checked(study)]
     _line(axes, study, [check.steel_estimate for check in checks], GREEN, "o", "steel estimate")
     _frame(axes, study)
-    axes.set_ylim(bottom=0.0)
+    axes.set_ylim(0.0, 1.1 * max([0.1, *(check.steel_estimate for check in checks)]))
     axes.set_ylabel("steel estimate [N$^{2/3}$ m$^{5/3}$]", size=8)
