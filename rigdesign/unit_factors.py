@@ -17,7 +17,7 @@ from rigdesign.errors import InputError
 Dimensions = tuple[tuple[str, int], ...]
 """Base dimensions with their powers, in order of their names."""
 
-_FACTOR = re.compile(r"([A-Za-z]+)(?:(?:\^|\*\*)?([1-9]))?")
+_FACTOR = re.compile(r"([A-Za-z]+)(?:\^?([1-9]))?")
 _SIGNS = str.maketrans(dict[str, str | int | None]({"·": "*", "⋅": "*", "×": "*", "²": "^2", "³": "^3", "°": "deg"}))
 _GLUED = {"Nm": "N*m", "kNm": "kN*m", "MNm": "MN*m", "Nmm": "N*mm"}
 # full names and shop spellings: not accepted, so that a brief reads the same everywhere, but answered
@@ -81,12 +81,11 @@ def _canonical(unit: str) -> str:
     text = unit.translate(_SIGNS).strip()
     # a hyphen, a full stop or a space between names is a product too: ft-lbf, kN.m, lbf ft
     text = re.sub(r"(?<=[A-Za-z0-9])\s*[-. ]\s*(?=[A-Za-z])", "*", re.sub(r"\s*([*/^])\s*", r"\1", text))
-    above, slash, below = text.partition("/")
-    names = [name for part in above.replace("**", "^").split("*") for name in _factors(part, unit)]
-    quotient = _factors(below, unit) if slash else []
-    if len(quotient) > 1:
+    above, slash, below = text.replace("**", "^").partition("/")
+    if "/" in below or "*" in below:
         raise InputError("a unit has one division and one unit below it", value=f'"{unit}"', limit='such as "N/m"')
-    return "*".join(names) + "".join(f"/({name})" for name in quotient)
+    names = [name for part in above.split("*") for name in _factors(part, unit)]
+    return "*".join(names) + (f"/({'*'.join(_factors(below, unit))})" if slash else "")
 
 
 def _factors(part: str, unit: str) -> list[str]:

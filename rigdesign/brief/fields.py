@@ -6,6 +6,7 @@ The functions raise InputError without a place; `rigdesign.brief.messages` adds 
 
 from __future__ import annotations
 
+import difflib
 import math
 from collections.abc import Callable
 from typing import Annotated, Any, Literal, NamedTuple
@@ -75,7 +76,9 @@ def _choice(*words: str) -> Any:
     def read(value: object) -> str:
         if value in words:
             return str(value)
-        raise InputError("this is none of the words due", value=in_words(value), limit=_either(words))
+        near = difflib.get_close_matches(value.lower(), words, n=1) if isinstance(value, str) else []
+        remedy = f'did you mean "{near[0]}"?' if near else ""
+        raise InputError("this is none of the words due", value=in_words(value), limit=_either(words), remedy=remedy)
 
     return PlainValidator(read), WithJsonSchema({"type": "string", "enum": list(words)})
 

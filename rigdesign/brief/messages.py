@@ -74,6 +74,8 @@ def _unknown_key(path: Path, raw: dict[str, Any], places: Places) -> BriefError:
     """Return the message for a key that this table does not have."""
     key, home = str(path[-1]), str(path[0])
     where = places.where(*path)
+    if len(path) == 1 and isinstance(raw[key], dict):
+        where = where.removesuffix(key) + f"[{key}]"
     if key in PLAN_KEYS.get(home, ()):
         return BriefError(f'"{key}" {PLAN_RIG}', where=where, remedy="delete it to design a line rig")
     known = keys_of(_table_at(path, raw))
@@ -82,8 +84,9 @@ def _unknown_key(path: Path, raw: dict[str, Any], places: Places) -> BriefError:
     near = difflib.get_close_matches(key.lower(), known, n=1, cutoff=0.6)
     if near:
         return BriefError(what, where=where, remedy=f'did you mean "{near[0]}"?')
-    others = [f"[{name}]" for name, model in TABLES.items() if key in keys_of(model)]
-    others += [f'[[load]] with "{kind}"' for kind, model in LOAD_ENTRIES.items() if key in keys_of(model)]
+    others = [f'[[load]] with "{kind}"' for kind, model in LOAD_ENTRIES.items() if key in keys_of(model)]
+    if not (others and home == "load"):
+        others = [f"[{name}]" for name, model in TABLES.items() if key in keys_of(model)] + others
     if others:
         return BriefError(what, where=where, remedy=f"it belongs to {' or '.join(others)}")
     return BriefError(what, where=where, limit=", ".join(known))
@@ -118,7 +121,11 @@ def _what_load(path: Path, value: object, places: Places) -> BriefError:
     plan = [key for key in value if key in PLAN_KEYS["load"]]
     if plan:
         return BriefError(f'"{plan[0]}" {PLAN_RIG}', where=places.where(*path, plan[0]), remedy="delete this load")
-    near = [match for key in value for match in difflib.get_close_matches(str(key).lower(), list(LOAD_ENTRIES), n=1)]
+    near = [
+        match
+        for key in value
+        for match in difflib.get_close_matches(str(key).lower(), list(LOAD_ENTRIES), n=1, cutoff=0.7)
+    ]
     remedy = f'did you mean "{near[0]}"?' if near else ""
     return BriefError("the load does not say what it is", where=where, limit=f"exactly one of {kinds}", remedy=remedy)
 
