@@ -66,3 +66,43 @@ def _off_stretches(brief: Brief, pad_x: Floats, slack: float) -> Floats:
         return np.ones(pad_x.shape)
     away = np.maximum(stretches[:, 0] - pad_x[..., None], pad_x[..., None] - stretches[:, 1]).min(axis=-1)
     return np.where(away > slack, away, 0.0)
+
+
+def most_that_fit(brief: Brief) -> int | None:
+    """How many pads the allowed stretches hold; None if there is no least pitch."""
+    pitch = least_pitch(brief)
+    if pitch <= 0:
+        return None if allowed_stretches(brief).size else 0
+    span = brief.specimen.right - brief.specimen.left
+    count, free_from = 0, -np.inf
+    for a, b in allowed_stretches(brief):
+        first = max(float(a), free_from)
+        if first <= b + TOUCH * span:
+            more = int(np.floor((b - first) / pitch + TOUCH * span / pitch)) + 1
+            count, free_from = count + more, first + more * pitch
+    return count
+
+
+def fitted(wish: Floats, grid: Floats, pitch: float) -> Floats | None:
+    """Places of the grid (g,) nearest to the wishes (n,), all [m] and sorted, at least `pitch` apart; None if none fit.
+
+    Least sum of distances, exact by dynamic programming.
+    """
+    before = np.zeros(grid.size)
+    reach = np.searchsorted(grid, grid - pitch * (1 - TOUCH), side="right" if pitch > 0 else "left") - 1
+    choices = []
+    for k, place in enumerate(wish):
+        cost = before + np.abs(grid - place)
+        lowest = np.minimum.accumulate(cost)
+        which = np.maximum.accumulate(np.where(cost <= lowest, np.arange(grid.size), 0))
+        choices.append(which)
+        if k + 1 < wish.size:
+            before = np.where(reach >= 0, lowest[np.maximum(reach, 0)], np.inf)
+    if not np.isfinite(lowest[-1]):
+        return None
+    places, last = [], int(which[-1])
+    for k in range(wish.size - 1, -1, -1):
+        places.append(last)
+        if k:
+            last = int(choices[k - 1][reach[last]])
+    return grid[places[::-1]]

@@ -14,7 +14,7 @@ Everything is multiplied by the sign of the target, so that the pads' forces are
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import NamedTuple
 
 import numpy as np
@@ -95,6 +95,25 @@ class Tube:
     def shear_wanted(self) -> Floats:
         """What the pads' own shear should be (m,)."""
         return self.shear - self.displacement * self.shear_unit
+
+    def with_stations(self, x: Floats) -> Tube:
+        """The tube with stations x (k,) [m] more, interpolated; they must not be stations already."""
+        order = np.argsort(np.concatenate([self.x, x]), kind="stable")
+
+        def grown(values: Floats) -> Floats:
+            return np.concatenate([values, np.interp(x, self.x, values)])[order]
+
+        return replace(
+            self,
+            x=np.concatenate([self.x, x])[order],
+            outboard=np.concatenate([self.outboard, np.ones(x.size, bool)])[order],
+            moment=grown(self.moment),
+            moment_width=Widths(*map(grown, self.moment_width)),
+            moment_unit=grown(self.moment_unit),
+            shear=grown(self.shear),
+            shear_width=Widths(*map(grown, self.shear_width)),
+            shear_unit=grown(self.shear_unit),
+        )
 
     def use(self, pad_x: Floats, force: Floats) -> Floats:
         """Return the largest error over its band of rigs with pads at `pad_x` (..., n) pulling `force` (..., n) > 0.

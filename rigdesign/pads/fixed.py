@@ -1,0 +1,39 @@
+"""Pads at fixed places: only the forces are open, and a linear programme finds the best ones."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from rigdesign.pads.forces import ForceProgramme, shares
+from rigdesign.pads.limits import force_limits, least_pitch
+from rigdesign.pads.outcome import Outcome, moment_alone, plain_amount
+from rigdesign.pads.tube import build_tube
+from rigdesign.target.model import Target
+
+STATIONS_A_PAD = 60
+METHOD = "linear programme over the forces at the fixed places"
+
+
+def choose_fixed(target: Target, jack_x: float) -> Outcome | None:
+    """Forces of least band use at the brief's stations, then more even ones; None if none within the limits balance."""
+    brief = target.brief
+    x = brief.pads.stations
+    if x.size > 1 and np.diff(x).min() < least_pitch(brief) * (1 - 1e-9):
+        return None
+    tube = build_tube(target, jack_x, x.size, STATIONS_A_PAD, extra=x)
+    least, largest = force_limits(brief)
+    programme = ForceProgramme(tube, x, least, largest, shares(tube, x))
+    best = programme.least_use()
+    if best is None:
+        return None
+    limit = 1.0 if brief.pads.aim == "even" and best.use <= 1 else best.use * (1 + brief.pads.ease)
+    ratio = brief.levers.ratio_limit
+    even = programme.most_even(limit, ratio) or programme.most_even(limit) or best
+    amount = plain_amount(tube, target.moment_peak)
+    if amount is not None:
+        moment_least = best.use * amount
+    else:
+        plain = moment_alone(tube, target.moment_peak)
+        alone = ForceProgramme(plain, x, least, largest, programme.share).least_use()
+        moment_least = alone.use if alone is not None else 0.0
+    return Outcome(x, even.force, best.use, moment_least, best.evenness, METHOD, f"{x.size} fixed places")

@@ -1,0 +1,159 @@
+"""Pads at free places.
+
+With one curve to follow, the moment, the exact optimum comes from the path of fewest links (see `path`).  It stands
+also under pad limits and a shear band where it happens to keep them.  Otherwise the places are searched (see
+`search`) from several starts, against a lower bound: the larger of the path's and the stair's least band use, and,
+where those leave a gap, what sets of lines over a grid of cells prove (see `lines`).
+"""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+import numpy as np
+
+from rigdesign.pads.forces import shares
+from rigdesign.pads.limits import allowed_stretches, fitted, force_limits, least_pitch, violations
+from rigdesign.pads.lines import LineSets, Places
+from rigdesign.pads.outcome import Outcome, Progress, moment_alone, plain_amount
+from rigdesign.pads.path import COARSE, FINE, MANY, Path, least_use_path
+from rigdesign.pads.search import Arrangement, Limits, Search
+from rigdesign.pads.stair import least_use_stair
+from rigdesign.pads.tube import Tube, build_tube
+from rigdesign.target.curve import Floats
+from rigdesign.target.model import Target
+
+# A gap of more than this is worth the work of the cells' bound, for up to so many pads.
+GAP_WORTH, CELL_PADS = 0.02, 24
+CELLS_A_PAD, CELL_STEPS = 8, 6
+# Grid on which starts are fitted into the allowed stretches, points a span.
+START_GRID = 4000
+SEARCH_STATIONS, SEARCH_STATIONS_MANY = 40, 16
+PATH_METHOD = "exact optimum: path of fewest links in the tube around the moment, bisected on its width"
+
+
+class FreePlaces:
+    """The choice of `count` pads at free places for one target and jack."""
+
+    def __init__(self, target: Target, jack_x: float, count: int, progress: Progress | None) -> None:
+        """Prepare fine and coarse tubes."""
+        brief = target.brief
+        self.target, self.brief, self.count, self.progress = target, brief, count, progress
+        self.fine = build_tube(target, jack_x, count, FINE if count <= MANY else COARSE)
+        least, largest = force_limits(brief)
+        self.limits = Limits(least, largest, least_pitch(brief), allowed_stretches(brief))
+        self.start, self.end = float(self.limits.stretches[0, 0]), float(self.limits.stretches[-1, 1])
+
+    def choose(self) -> Outcome | None:
+        """Pads of least band use, or None if no search found forces within the limits."""
+        path, path_least = least_use_path(self.fine, self.count, self.start, self.end)
+        least = max(path_least if self.fine.is_judged[0] else 0.0, least_use_stair(self.fine, self.count))
+        moment_least = self._moment_least(path_least)
+        if path is not None and path.x.size == self.count and self._path_is_best(path, least):
+            even = _evenness(self.fine, path.x, path.force)
+            method = PATH_METHOD
+            return Outcome(
+                path.x, path.force, least, moment_least, even, method, f"{self.count} pads, no search needed"
+            )
+        return self._search(path, least, moment_least)
+
+    def _moment_least(self, path_least: float) -> float:
+        amount = plain_amount(self.fine, self.target.moment_peak)
+        if amount is not None:
+            return path_least * amount
+        plain = moment_alone(self.fine, self.target.moment_peak)
+        return least_use_path(plain, self.count, self.start, self.end)[1]
+
+    def _path_is_best(self, path: Path, least: float) -> bool:
+        if violations(self.brief, path.x, path.force) > 0:
+            return False
+        if not self.fine.is_judged[1]:
+            return True
+        return float(self.fine.use(path.x, path.force)) <= least * (1 + 1e-6) and self.brief.pads.aim == "closest"
+
+    # -- under limits or several bands ---------------------------------------------------------------------------------
+
+    def _search(self, path: Path | None, least: float, moment_least: float) -> Outcome | None:
+        per_pad = SEARCH_STATIONS if self.count <= MANY else SEARCH_STATIONS_MANY
+        tube = build_tube(self.target, self.fine.jack_x, self.count, per_pad)
+        search = Search(tube, self.limits)
+        found = self._best_of(search, self._starts(path))
+        if found is None:
+            return None
+        use = float(self.fine.use(found.x, found.forces.force))
+        method = "lower bound: path of fewest links for the moment, stair of fewest steps for the shear"
+        if use > least * (1 + GAP_WORTH) and self.count <= CELL_PADS:
+            cells = self._cell_bound(least, use)
+            if cells > least:
+                least, method = cells, "lower bound: sets of lines over a grid of cells, all bands and limits together"
+        even = self._more_even(tube, found, use)
+        stretches = self.limits.stretches.shape[0]
+        words = f"places searched step by step over {stretches} allowed stretch{'es' if stretches > 1 else ''}"
+        return Outcome(even.x, even.forces.force, least, moment_least, found.forces.evenness, method, words)
+
+    def _starts(self, path: Path | None) -> list[Floats]:
+        """Places to start from: the path's, places of equal load, and half-way, fitted into the allowed stretches."""
+        tube, n = self.fine, self.count
+        falling = np.minimum.accumulate(np.clip(tube.shear_wanted, 0, tube.total))
+        levels = tube.total * (1 - (np.arange(n) + 0.5) / n)
+        wishes = [np.interp(-levels, -falling, tube.x)]
+        if path is not None:
+            places = (
+                np.interp(np.linspace(0, 1, n), np.linspace(0, 1, path.x.size), path.x)
+                if path.x.size > 1
+                else wishes[0]
+            )
+            wishes += [places, (wishes[0] + places) / 2]
+        ends = self.limits.stretches
+        pieces = [np.linspace(a, b, max(2, int(START_GRID * (b - a) / (tube.x[-1] - tube.x[0])))) for a, b in ends]
+        grid = np.unique(np.concatenate(pieces))
+        pitch = max(self.limits.pitch, 1e-3 * (tube.x[-1] - tube.x[0]) / n)
+        fits = [fitted(np.sort(wish), grid, pitch) for wish in wishes]
+        return [fit for fit in fits if fit is not None]
+
+    def _best_of(self, search: Search, starts: list[Floats]) -> Arrangement | None:
+        """Refine the most promising start, and the next one, and keep the better."""
+        ranked = sorted(starts, key=lambda x: search.value(x)[0])
+        found = []
+        for k, start in enumerate(ranked[:2]):
+            self._report(0.1 + 0.4 * k, "searching places")
+            found.append(search.refine(start))
+        kept = [arrangement for arrangement in found if arrangement is not None]
+        return min(kept, key=lambda arrangement: arrangement.forces.use) if kept else None
+
+    def _cell_bound(self, least: float, use: float) -> float:
+        """Lower bound on the band use between `least` and `use`, by sets of lines over cells of the stretches."""
+        size = (self.fine.x[-1] - self.fine.x[0]) / (CELLS_A_PAD * self.count)
+        edges = [np.linspace(a, b, max(2, int(np.ceil((b - a) / size)) + 1)) for a, b in self.limits.stretches]
+        x, depth = np.concatenate([e[:-1] for e in edges]), np.concatenate([np.diff(e) for e in edges])
+        tube = build_tube(self.target, self.fine.jack_x, x.size, 8, extra=np.concatenate(edges))
+        sets = LineSets(tube, Places(x, depth, self.limits.least, self.limits.largest, self.limits.pitch), self.count)
+        low, high = least, use
+        for k in range(CELL_STEPS):
+            self._report(0.6 + 0.05 * k, "proving the bound")
+            middle = (low + high) / 2
+            if sets.reach(middle, self.count) is None:
+                low = middle
+            else:
+                high = middle
+        return low
+
+    def _more_even(self, tube: Tube, found: Arrangement, use: float) -> Arrangement:
+        """Second stage: forces as close to the pads' shares as the band use given up for it allows."""
+        pads = self.brief.pads
+        limit = max(1.0, use) if pads.aim == "even" else found.forces.use * (1 + pads.ease)
+        if pads.aim == "even" and use > 1:
+            limit = found.forces.use * (1 + pads.ease)
+        search = Search(tube, self.limits, use_limit=limit, ratio=self.brief.levers.ratio_limit)
+        self._report(0.9, "evening out the forces")
+        even = search.refine(found.x) or replace(search, ratio=None).refine(found.x)
+        return found if even is None else even
+
+    def _report(self, fraction: float, words: str) -> None:
+        if self.progress:
+            self.progress(fraction, words)
+
+
+def _evenness(tube: Tube, x: Floats, force: Floats) -> float:
+    share = shares(tube, x)
+    return float(np.max(np.abs(force - share) / np.maximum(share, 0.1 * tube.total / x.size)))

@@ -1,0 +1,177 @@
+"""Pads on hard points: which of the places to take, proven.
+
+A lower bound on the band use is raised, and a design lowered, until they meet: sets of lines prove that no choice of
+N places keeps the bands at some band use (see `lines`), or give places whose best forces a linear programme finds
+(see `forces`).  Afterwards places are exchanged with their neighbours for more even forces within `ease`.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from rigdesign.pads.forces import ForceProgramme, Forces, shares
+from rigdesign.pads.limits import allowed_stretches, fitted, force_limits, least_pitch
+from rigdesign.pads.lines import LineSets, Places
+from rigdesign.pads.outcome import Outcome, Progress, moment_alone, plain_amount
+from rigdesign.pads.path import least_use_path
+from rigdesign.pads.stair import least_use_stair
+from rigdesign.pads.tube import Tube, build_tube
+from rigdesign.target.curve import Floats
+from rigdesign.target.model import Target
+
+# Bound and design meet when they differ by less than this fraction, or after so many questions to the sets.
+MEET, MOST_QUESTIONS = 1e-3, 40
+STATIONS_A_GAP = 12
+# Sweeps of the exchange for even forces, each over every pad's two neighbouring places.
+MOST_SWEEPS = 12
+FAR = 1e6
+
+
+@dataclass(frozen=True)
+class _Choice:
+    """Places taken, as indices of the hard points, and their forces."""
+
+    pads: tuple[int, ...]
+    forces: Forces
+
+
+class HardPoints:
+    """The choice of `count` of the places `x` (n,) [m] for one target and jack."""
+
+    def __init__(self, target: Target, jack_x: float, x: Floats, count: int, progress: Progress | None) -> None:
+        """Prepare the tube over the places."""
+        self.target, self.brief, self.x, self.count, self.progress = target, target.brief, x, count, progress
+        self.least, self.largest = force_limits(target.brief)
+        self.pitch = least_pitch(target.brief)
+        self.tube = build_tube(target, jack_x, x.size, STATIONS_A_GAP, extra=x)
+
+    def choose(self) -> Outcome | None:
+        """Pads of least band use, then more even ones; None if no choice within the limits balances the target."""
+        found, least = self._least(self.tube)
+        if found is None:
+            return None
+        moment_least = self._moment_least(found, least)
+        even, sweeps = self._more_even(found)
+        method = "sets of lines over the hard points (dynamic programming), confirmed by a linear programme"
+        words = f"{self.count} of {self.x.size} hard points; {sweeps} sweeps of exchanges for even forces"
+        x = self.x[list(even.pads)]
+        return Outcome(x, even.forces.force, least, moment_least, found.forces.evenness, method, words)
+
+    def _programme(self, tube: Tube, pads: tuple[int, ...]) -> ForceProgramme:
+        x = self.x[list(pads)]
+        return ForceProgramme(tube, x, self.least, self.largest, shares(tube, x))
+
+    # -- least band use ---------------------------------------------------------------------------------------
+
+    def _least(self, tube: Tube, known: _Choice | None = None, meet: float = MEET) -> tuple[_Choice | None, float]:
+        """Best choice found and proven lower bound on the band use in a tube."""
+        start, end = float(self.x[0]), float(self.x[-1])
+        low = max(least_use_path(tube, self.count, start, end)[1] if tube.is_judged[0] else 0.0, 0.0)
+        low = max(low * (1 - 1e-6), least_use_stair(tube, self.count))
+        if not np.isfinite(low):
+            return None, low
+        sets = LineSets(tube, Places(self.x, np.zeros(self.x.size), self.least, self.largest, self.pitch), self.count)
+        best = known or self._nearest(tube)
+        high = best.forces.use if best else np.inf
+        step = 1.05
+        for question in range(MOST_QUESTIONS):
+            if high <= low * (1 + meet) + 1e-12 or low > FAR:
+                break
+            self._report(min(0.8, 0.02 + 0.04 * question), "proving the best choice of hard points")
+            if np.isfinite(high):
+                middle = np.sqrt(max(low, 1e-6 * high) * high)
+                middle = min(middle, low * 1.1) if low > 1e-6 * high else middle
+            else:
+                middle, step = max(low, 1e-3) * step, step**1.6
+            pads = sets.reach(float(middle), self.count)
+            if pads is None:
+                low = float(middle)
+                continue
+            forces = self._programme(tube, pads).least_use()
+            if forces is not None and (best is None or forces.use < best.forces.use):
+                best, high = _Choice(pads, forces), forces.use
+            elif middle < high:
+                # the sets let lines in that no pads can follow: the design stays, the gap is reported
+                return best, low
+        return best, low
+
+    def _nearest(self, tube: Tube) -> _Choice | None:
+        """Hard points nearest to the best free places, as a start."""
+        path, _ = least_use_path(tube, self.count, float(self.x[0]), float(self.x[-1]))
+        levels = tube.total * (1 - (np.arange(self.count) + 0.5) / self.count)
+        falling = np.minimum.accumulate(np.clip(tube.shear_wanted, 0, tube.total))
+        wishes = [np.interp(-levels, -falling, tube.x)]
+        if path is not None and path.x.size == self.count and tube.is_judged[0]:
+            wishes.append(path.x)
+        choices = []
+        for wish in wishes:
+            places = fitted(wish, self.x, max(self.pitch, 1e-12))
+            if places is not None:
+                pads = tuple(int(i) for i in np.searchsorted(self.x, places))
+                forces = self._programme(tube, pads).least_use()
+                if forces is not None:
+                    choices.append(_Choice(pads, forces))
+        return min(choices, key=lambda choice: choice.forces.use) if choices else None
+
+    def _moment_least(self, found: _Choice, least: float) -> float:
+        amount = plain_amount(self.tube, self.target.moment_peak)
+        if amount is not None:
+            return least * amount
+        plain = moment_alone(self.tube, self.target.moment_peak)
+        return self._least(plain, meet=0.02)[1]
+
+    # -- even forces ------------------------------------------------------------------------------------------
+
+    def _more_even(self, found: _Choice) -> tuple[_Choice, int]:
+        """Exchange places with their neighbours while the forces become more even within the band use given up."""
+        pads = self.brief.pads
+        use = found.forces.use
+        limit = 1.0 if pads.aim == "even" and use <= 1 else use * (1 + pads.ease)
+        ratio: float | None = self.brief.levers.ratio_limit
+        best = self._even(found.pads, limit, ratio)
+        if best is None:
+            best, ratio = self._even(found.pads, limit, None), None
+        if best is None:
+            return found, 0
+        for sweep in range(MOST_SWEEPS):
+            self._report(0.8 + 0.2 * sweep / MOST_SWEEPS, "evening out the forces")
+            better = best
+            for pads_tried in self._exchanges(best.pads):
+                tried = self._even(pads_tried, limit, ratio)
+                if tried is not None and tried.forces.evenness < better.forces.evenness * (1 - 1e-6):
+                    better = tried
+            if better is best:
+                return best, sweep
+            best = better
+        return best, MOST_SWEEPS
+
+    def _even(self, pads: tuple[int, ...], limit: float, ratio: float | None) -> _Choice | None:
+        forces = self._programme(self.tube, pads).most_even(limit, ratio)
+        return None if forces is None else _Choice(pads, forces)
+
+    def _exchanges(self, pads: tuple[int, ...]) -> list[tuple[int, ...]]:
+        """All choices with one pad moved to a neighbouring place, least pitch kept."""
+        result = []
+        for k in range(len(pads)):
+            for move in (-1, 1):
+                tried = (*pads[:k], pads[k] + move, *pads[k + 1 :])
+                if 0 <= tried[k] < self.x.size and len(set(tried)) == len(tried):
+                    x = self.x[list(tried)]
+                    if np.all(np.diff(x) >= self.pitch * (1 - 1e-9)):
+                        result.append(tried)
+        return result
+
+    def _report(self, fraction: float, words: str) -> None:
+        if self.progress:
+            self.progress(fraction, words)
+
+
+def usable_points(target: Target) -> Floats:
+    """Hard points (k,) [m] whose footprint lies on the specimen and clear of keep-outs."""
+    x = target.brief.pads.stations
+    stretches = allowed_stretches(target.brief)
+    slack = 1e-9 * (target.brief.specimen.right - target.brief.specimen.left)
+    inside = (x[:, None] >= stretches[:, 0] - slack) & (x[:, None] <= stretches[:, 1] + slack)
+    return x[inside.any(axis=1)]

@@ -1,0 +1,297 @@
+"""Given places (hard points, or the cells of a grid): which band uses N pads can reach, proven over sets of lines.
+
+Between two neighbouring pads the path P is a line, and a line is a point in a plane: its ordinate and its slope.  The
+tube's edges over a stretch are half planes there, so the lines that keep the tube between pads i and j form a convex
+polygon T_ij.  A pad at j turns the line by a slope change equal to its force, which moves the point straight along the
+slope axis by any force between the least and the largest.  So the lines that can leave place j after k pads are
+
+    S_k(j) = ∪_i [ S_{k−1}(i) ∩ T_ij ]  +  {(0, F): F_least ≤ F ≤ F_largest},
+
+and N pads can keep the tube exactly if some line of S_{N−1} reaches a last pad that turns it into zero.  This is
+dynamic programming over polygons.  The union is replaced by its convex hull, which can only let more lines in: "not
+reachable" is a proof, "reachable" is confirmed by a linear programme over the places found.
+
+A cell instead of a point, [x, x + h], lets the pad stand anywhere inside: the turned line then moves by (−F ξ, F),
+0 ≤ ξ ≤ h, and the tube inside the cell is not asked for.  That proves bounds for free places.
+
+Coordinates: η = (line at the place − wanted path) / `rise`, σ = (slope − wanted slope) / `turn`, so that polygons are
+round.  The tube is widened by SLACK, far below any tolerance that is reported, against round-off.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from itertools import pairwise
+
+import numpy as np
+import shapely
+from numpy.typing import NDArray
+
+from rigdesign.pads.convex import HalfPlanes, Indices, cut_all, half_planes, hulls, joined
+from rigdesign.pads.tube import Tube
+from rigdesign.target.curve import Floats
+
+# The tube is widened by this fraction of the scale of its coordinates.
+SLACK = 1e-8
+
+
+@dataclass(frozen=True)
+class Places:
+    """Where pads may stand: `x` (n,) [m] sorted, `depth` (n,) [m] of each cell (zeros for points).
+
+    `least`, `largest` are the forces of a pad [N], `pitch` the least distance of two pads [m].
+    """
+
+    x: Floats
+    depth: Floats
+    least: float
+    largest: float
+    pitch: float
+
+    @property
+    def are_cells(self) -> bool:
+        """Whether a pad may stand anywhere in a cell."""
+        return bool(np.any(self.depth > 0))
+
+
+@dataclass(frozen=True)
+class _Arcs:
+    """Pairs of places `start`, `end` (k,), and a polygon of lines for each: a stack (k, v, 2)."""
+
+    start: Indices
+    end: Indices
+    stack: Floats
+
+
+@dataclass(frozen=True)
+class _Sets:
+    """A polygon of lines at each of the places `at` (k,), rising: a stack (k, v, 2)."""
+
+    at: Indices
+    stack: Floats
+
+
+class LineSets:
+    """Sets of lines over given places for one tube; `reach` answers for one band use."""
+
+    def __init__(self, tube: Tube, places: Places, count: int) -> None:
+        """Prepare the gaps between `places`; `count` pads set the scale of the coordinates."""
+        self.tube, self.places, self.n = tube, places, places.x.size
+        span = tube.x[-1] - tube.x[0]
+        self.rise = tube.total * span / (16 * count**2)
+        self.turn = tube.total / count
+        self.wanted = np.interp(places.x, tube.x, tube.moment_wanted)
+        self.wanted_slope = -np.interp(places.x, tube.x, tube.shear_wanted)
+        self.largest = min(places.largest, tube.total)
+        self.rows = self._gap_rows()
+
+    def _gap_rows(self) -> Indices:
+        """Rows of the tube in each gap between neighbouring places (n − 1, r), filled up by repeating the last."""
+        at, rows = self.tube.x, []
+        for a, b in pairwise(self.places.x):
+            first, last = np.searchsorted(at, a, side="left"), np.searchsorted(at, b, side="right")
+            # of a jump at an end the side inside the gap counts
+            first += int(first + 1 < at.size and at[first + 1] == a)
+            last -= int(last - 2 >= first and at[last - 2] == b)
+            rows.append(np.arange(first, last))
+        most = max((row.size for row in rows), default=1)
+        filled = [np.append(row, np.full(most - row.size, row[-1])) for row in rows]
+        return np.array(filled, dtype=int).reshape(len(rows), most)
+
+    # -- lines that keep the tube over a stretch --------------------------------------------------------------
+
+    def _slopes(self, use: float) -> tuple[Floats, Floats]:
+        """Least and largest slope in each gap (n − 1,): falling, never steeper than −R, the shear band kept."""
+        tube, low, high = self.tube, np.full(len(self.rows), -self.tube.total), np.zeros(len(self.rows))
+        if tube.is_judged[1]:
+            low = np.maximum(low, (-tube.shear_wanted - use * tube.shear_above)[self.rows].max(axis=1))
+            high = np.minimum(high, (-tube.shear_wanted + use * tube.shear_below)[self.rows].min(axis=1))
+        return low - SLACK * self.turn, high + SLACK * self.turn
+
+    def _planes(self, use: float, at: Indices, gap: Indices) -> HalfPlanes:
+        """Half planes, seen from places `at` (k,), of the lines that keep the tube in `gap` (k,)."""
+        tube, rows = self.tube, self.rows[gap]
+        distance = tube.x[rows] - self.places.x[at][:, None]
+        level = self.wanted[at][:, None] + self.wanted_slope[at][:, None] * distance
+        slack = SLACK * self.rise
+        high = (tube.moment_wanted + use * tube.moment_above)[rows] + slack - level
+        low = (tube.moment_wanted - use * tube.moment_below)[rows] - slack - level
+        tilt = self.turn * distance / self.rise
+        norm = np.hypot(1.0, tilt)
+        up = np.stack([1 / norm, tilt / norm], axis=-1)
+        along = np.stack([np.zeros(at.size), np.ones(at.size)], axis=-1)[:, None]
+        low_s, high_s = self._slopes(use)
+        low_s, high_s = (
+            (low_s[gap] - self.wanted_slope[at]) / self.turn,
+            (high_s[gap] - self.wanted_slope[at]) / self.turn,
+        )
+        normal = np.concatenate([along, -along, up, -up], axis=1)
+        offset = np.concatenate(
+            [high_s[:, None], -low_s[:, None], high / (self.rise * norm), -low / (self.rise * norm)], axis=1
+        )
+        return HalfPlanes(normal, offset)
+
+    def _arcs(self, use: float) -> _Arcs:
+        """Pairs of places that neighbouring pads can take, and the lines that keep the tube between them."""
+        x, depth, cells = self.places.x, self.places.depth, self.places.are_cells
+        huge = 64.0 * self.n * self.n
+        everything = np.array([[-huge, -huge], [huge, -huge], [huge, huge], [-huge, huge]])
+        start = np.arange(self.n - 1)
+        stack = np.repeat(everything[None], start.size, axis=0)
+        parts = []
+        if cells:
+            every = np.arange(self.n)
+            parts.append(_Arcs(every, every, np.repeat(everything[None], self.n, axis=0)))
+        for offset in range(1, self.n):
+            if not cells or offset > 1:
+                inside = start + offset < self.n
+                start, stack = start[inside], stack[inside]
+                stack, left = cut_all(stack, self._planes(use, start, start + offset - 1))
+                start = start[left]
+            if not start.size:
+                break
+            parts.append(_Arcs(start, start + offset, stack))
+        start, end = np.concatenate([p.start for p in parts]), np.concatenate([p.end for p in parts])
+        far = x[end] + depth[end] - x[start] >= self.places.pitch * (1 - 1e-12)
+        return _Arcs(start[far], end[far], joined([p.stack for p in parts])[far])
+
+    def _moved(self, stack: Floats, start: Indices, end: Indices) -> Floats:
+        """The same lines seen from other places: from `start` (k,) to `end` (k,)."""
+        x = self.places.x
+        slope = self.wanted_slope[start][:, None] + self.turn * stack[..., 1]
+        y = self.wanted[start][:, None] + self.rise * stack[..., 0] + slope * (x[end] - x[start])[:, None]
+        eta = (y - self.wanted[end][:, None]) / self.rise
+        return np.stack([eta, (slope - self.wanted_slope[end][:, None]) / self.turn], axis=-1)
+
+    # -- first and last pad -----------------------------------------------------------------------------------
+
+    def _kept(self, moment: Floats, shear: float, use: float) -> NDArray[np.bool_]:
+        """Where (m,) one given line keeps the tube."""
+        tube, slack = self.tube, SLACK * self.rise
+        error = moment - tube.moment_wanted
+        kept = (error >= -use * tube.moment_below - slack) & (error <= use * tube.moment_above + slack)
+        if tube.is_judged[1]:
+            error, slack = shear - tube.shear_wanted, SLACK * self.turn
+            kept &= (error >= -use * tube.shear_below - slack) & (error <= use * tube.shear_above + slack)
+        return np.asarray(kept)
+
+    def _first(self, use: float) -> _Sets:
+        """Places that the first pad can take while the first line keeps the tube up to it, and that line there."""
+        tube, x = self.tube, self.places.x
+        kept = self._kept(tube.total * (tube.jack_x - tube.x), tube.total, use)
+        reach = np.inf if kept.all() else tube.x[np.argmin(kept)]
+        at = np.flatnonzero(x <= reach)
+        eta = (tube.total * (tube.jack_x - x[at]) - self.wanted[at]) / self.rise
+        sigma = (-tube.total - self.wanted_slope[at]) / self.turn
+        return _Sets(at, np.stack([eta, sigma], axis=-1)[:, None])
+
+    def _last(self, use: float) -> _Sets:
+        """Places that the last pad can take while zero keeps the tube beyond it, and the lines that it can end."""
+        tube, x, depth = self.tube, self.places.x, self.places.depth
+        kept = self._kept(np.zeros(tube.x.size), 0.0, use)
+        foot = -np.inf if kept.all() else tube.x[tube.x.size - 1 - np.argmin(kept[::-1])]
+        at = np.flatnonzero(x + depth >= foot)
+        corner = []
+        for force, inside in ((self.places.least, 0), (self.places.least, 1), (self.largest, 1), (self.largest, 0)):
+            # a pad at distance ξ inside its cell ends a line that stands F ξ above zero at the cell's left
+            eta = (inside * force * depth[at] - self.wanted[at]) / self.rise
+            corner.append(np.stack([eta, (-force - self.wanted_slope[at]) / self.turn], axis=-1))
+        return _Sets(at, np.stack(corner, axis=1))
+
+    # -- dynamic programming over the number of pads ----------------------------------------------------------
+
+    def reach(self, use: float, most: int, exact: bool = True) -> tuple[int, ...] | None:
+        """Places (indices) of `most` pads, or of the fewest up to `most` unless `exact`, that the sets reach; or None.
+
+        None proves that no such pads keep the tube at this band use.
+        """
+        first, last = self._first(use), self._last(use)
+        if not first.at.size or not last.at.size:
+            return None
+        arcs = self._arcs(use)
+        layers = [_Arcs(first.at, first.at, first.stack)]
+        for k in range(1, most + 1):
+            if k == most or not exact:
+                hit = self._ended(layers[-1], last)
+                if hit is not None:
+                    return self._retrace(layers, *hit)
+            if k < most:
+                layers.append(self._step(layers[-1], arcs))
+                if not layers[-1].end.size:
+                    return None
+        return None
+
+    def _turned(self, came: _Arcs) -> _Sets:
+        """Lines that leave each place after a pad there turned what came by any allowed force, anywhere in its cell."""
+        depth = self.places.depth[came.end][:, None]
+        copies = []
+        for force in (self.places.least, self.largest):
+            for inside in (0.0, 1.0) if self.places.are_cells else (0.0,):
+                fall = -force * inside * depth / self.rise + np.zeros(came.stack.shape[:2])
+                copies.append(came.stack + np.stack([fall, np.full(fall.shape, force / self.turn)], axis=-1))
+        points = np.concatenate(copies, axis=1)
+        owner = np.repeat(came.end, points.shape[1])
+        stack, at = hulls(points.reshape(-1, 2), owner)
+        return _Sets(at, stack)
+
+    def _step(self, came: _Arcs, arcs: _Arcs) -> _Arcs:
+        """Lines that arrive, arc by arc and seen from its end, after one more pad."""
+        leaving = self._turned(came)
+        row = np.full(self.n, -1)
+        row[leaving.at] = np.arange(leaving.at.size)
+        used = np.flatnonzero(row[arcs.start] >= 0)
+        start, end = arcs.start[used], arcs.end[used]
+        stack, left = cut_all(leaving.stack[row[start]], half_planes(arcs.stack[used]))
+        start, end = start[left], end[left]
+        return _Arcs(start, end, self._moved(stack, start, end))
+
+    def _ended(self, came: _Arcs, last: _Sets) -> tuple[int, Floats] | None:
+        """Last place and last line, of those that came, that a last pad can end: the widest choice; None if none."""
+        stack, at = hulls(came.stack.reshape(-1, 2), np.repeat(came.end, came.stack.shape[1]))
+        common, mine, theirs = np.intersect1d(at, last.at, return_indices=True)
+        if not common.size:
+            return None
+        planes = half_planes(stack[mine])
+        # a set of one line has no edges: it must then lie in the last pad's own set
+        if stack.shape[1] == 1:
+            stack, left = cut_all(stack[mine], half_planes(last.stack[theirs]))
+        else:
+            stack, left = cut_all(last.stack[theirs], planes)
+        if not left.size:
+            return None
+        best = int(np.argmax(np.ptp(stack[..., 1], axis=1)))
+        return int(common[left[best]]), stack[best].mean(axis=0)
+
+    # -- the way back -----------------------------------------------------------------------------------------
+
+    def _retrace(self, layers: list[_Arcs], place: int, line: Floats) -> tuple[int, ...]:
+        """Places of the pads on one way back from a last line (η, σ) at its last place."""
+        pads = [place]
+        for k in range(len(layers) - 1, 0, -1):
+            into = np.flatnonzero(layers[k].end == pads[-1])
+            sets = _shapes(layers[k].stack[into])
+            apart = np.round(shapely.distance(sets, shapely.Point(line)), 9)
+            best = np.lexsort((-shapely.area(sets), apart))[0]
+            start = int(layers[k].start[into[best]])
+            near = shapely.get_coordinates(shapely.shortest_line(sets[best], shapely.Point(line)))[0]
+            line = self._line_before(near, start, pads[-1], layers[k - 1])
+            pads.append(start)
+        return tuple(reversed(pads))
+
+    def _line_before(self, line: Floats, start: int, end: int, came: _Arcs) -> Floats:
+        """A line that a pad at `start` can turn into `line` (seen from `end`), as near as those that came have one."""
+        eta, sigma = self._moved(line[None, None], np.array([end]), np.array([start]))[0, 0]
+        least, largest = self.places.least / self.turn, self.largest / self.turn
+        before = shapely.LineString([(eta, sigma - least), (eta, sigma - largest - SLACK)])
+        into = shapely.convex_hull(shapely.MultiPoint(came.stack[came.end == start].reshape(-1, 2)))
+        common = shapely.intersection(before, into)
+        if common.is_empty:
+            return np.asarray(shapely.get_coordinates(shapely.shortest_line(into, before))[0])
+        return np.asarray(shapely.get_coordinates(shapely.centroid(common))[0])
+
+
+def _shapes(stack: Floats) -> NDArray[np.object_]:
+    k, v = stack.shape[:2]
+    return np.asarray(
+        shapely.convex_hull(shapely.multipoints(stack.reshape(-1, 2), indices=np.repeat(np.arange(k), v)))
+    )

@@ -1,0 +1,45 @@
+"""What each way of choosing pads hands to the plan."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from rigdesign.pads.tube import Tube, Widths
+from rigdesign.target.curve import Floats
+
+Progress = Callable[[float, str], None]
+
+
+@dataclass(frozen=True)
+class Outcome:
+    """Pads `x` [m] and `force` [N] (n,), both root to tip and forces positive, and what is proven about them.
+
+    `use_least` and `moment_least` are lower bounds that no arrangement of as many pads can go below: the band use, and
+    the largest moment error as a fraction of the peak.  `evenness_before` is that of the forces of least band use.
+    """
+
+    x: Floats
+    force: Floats
+    use_least: float
+    moment_least: float
+    evenness_before: float
+    method: str
+    words: str
+
+
+def moment_alone(tube: Tube, peak: float) -> Tube:
+    """The tube whose moment band is the whole peak on both sides, so that band use is the error over the peak."""
+    width = np.full(tube.x.shape, peak)
+    return replace(tube, moment_width=Widths(width, width), is_judged=(True, False))
+
+
+def plain_amount(tube: Tube, peak: float) -> float | None:
+    """The band as a fraction of the peak, if it is the same everywhere and on both sides and is all that is judged."""
+    if tube.is_judged != (True, False):
+        return None
+    low, high = (np.array([width.min(), width.max()]) for width in tube.moment_width)
+    widths = np.concatenate([low, high])
+    return float(widths[0] / peak) if np.ptp(widths) <= 1e-12 * widths[0] else None
