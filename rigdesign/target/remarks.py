@@ -31,6 +31,8 @@ _TOTALS = (1.0, 100e6)
 _RUNNING = (0.1, 10e6)
 _MASSES = (0.001, 20e3)
 _LARGEST_FACTOR = 15.0
+# Up to this many g along gravity, inertia is the specimen's dead load with its factor.
+_DEAD_LOAD = 1.5
 # One load this many times smaller than the largest is more often a slip of unit than a load.
 _DWARFED = 2000.0
 # More stretches than these are counted, not listed.
@@ -47,7 +49,7 @@ def remarks(brief: Brief, total: Curve, gravity: Curve, net: Curve) -> Iterator[
     yield from _other_sign(brief, gravity)
     yield from _centroid(brief, total, net)
     yield from _supports(brief, total, gravity)
-    yield from _against_the_rest(brief.loads, curves)
+    yield from _against_the_rest(brief.loads, curves, brief.specimen.gravity)
     yield from _sizes(brief, total, gravity)
     yield from _dwarfed(curves)
 
@@ -192,13 +194,13 @@ def _held_down(brief: Brief, at: np.ndarray, force: np.ndarray, gravity: Curve) 
     return _remark("note", "supports", text, "", "", remedy)
 
 
-def _against_the_rest(loads: tuple[Load, ...], curves: list[Curve]) -> Iterator[Finding]:
+def _against_the_rest(loads: tuple[Load, ...], curves: list[Curve], gravity: int) -> Iterator[Finding]:
     """One load against all others, and inertia that adds to the load instead of relieving it."""
     totals = np.array([curve.total for curve in curves])
     for number, (load, own) in enumerate(zip(loads, totals, strict=True), 1):
         rest = float(totals.sum() - own)
         if isinstance(load, InertiaLoad):
-            if own * rest > 0:
+            if own * rest > 0 and not 0 < load.factor * load.times * gravity <= _DEAD_LOAD:
                 text = (f"the inertia acts {along(own)}, the same way as the other loads, and adds to them; "
                         "inertia mostly relieves")  # fmt: skip
                 remedy = "if relief is meant, turn the sign of the load factor"
