@@ -52,7 +52,8 @@ class InputError(RigdesignError, ValueError):
             text += f" (accepted: {self.limit})"
         if self.remedy:
             text += f"; {self.remedy}"
-        return text
+        # a value from a file may hold line ends or terminal codes; the message stays one line of plain text
+        return "".join(char if char.isprintable() else repr(char)[1:-1] for char in text)
 
 
 class BriefError(InputError):

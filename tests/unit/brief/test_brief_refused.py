@@ -271,3 +271,10 @@ def test_of_two_faults_the_unknown_key_is_reported(refusal) -> None:
 def test_of_two_wrong_values_the_first_in_the_file_is_reported(refusal) -> None:
     message = refusal(('"5.4 kN"', '"5.4 m"'), ("count = 6", "count = 0"))
     assert "line 10, [[load]] 1, total" in message
+
+
+def test_a_message_is_one_line_whatever_the_file_holds(refusal) -> None:
+    message = refusal(('"5.4 kN"', '"5.4\\n\\u001b[31mkN"'))
+    assert message.isprintable()
+    assert r"5.4\n\x1b[31mkN" in message
+    assert refusal(("count = 6", '"co\\nunt" = 6')).isprintable()
