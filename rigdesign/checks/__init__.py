@@ -5,7 +5,7 @@ every number that anybody is shown: pad forces and lever loads from statics, V a
 under- and over-test by region with band use and verdict, residuals, single figures and findings.
 
 The builder chooses pivots from wanted pad forces.  The check never looks at those.  It starts from hole positions and
-jack forces, cuts every piece free, and closes ΣF and ΣM at every pivot (`statics`).  The curves follow from the pad
+jack forces, cuts every piece free, and closes ΣF and ΣM at every pivot (`solve_statics`).  The curves follow from the pad
 forces, from the supports' answer to them, and from gravity (`curves`).
 
     check(rig)                   the rig as it is
@@ -19,7 +19,7 @@ Depends on: brief, target, pads and levers (their models), display, findings, er
 
 from rigdesign.checks.again import check_with_holes, check_with_table, recheck
 from rigdesign.checks.model import Check, Curves, RegionVerdict, Statics
-from rigdesign.checks.statics import share_matrix, statics
+from rigdesign.checks.statics import share_matrix, solve_statics
 from rigdesign.checks.whole import check
 
 __all__ = [
@@ -32,5 +32,5 @@ __all__ = [
     "check_with_table",
     "recheck",
     "share_matrix",
-    "statics",
+    "solve_statics",
 ]

@@ -13,7 +13,7 @@ from rigdesign.checks.curves import curves
 from rigdesign.checks.holes_table import HolesTable, read_holes, with_holes
 from rigdesign.checks.measures import length
 from rigdesign.checks.model import Check
-from rigdesign.checks.statics import statics
+from rigdesign.checks.statics import solve_statics
 from rigdesign.checks.text import percent
 from rigdesign.checks.whole import check
 from rigdesign.display import show
@@ -61,7 +61,7 @@ def _hole_remarks(rig: Rig, built: Rig, table: HolesTable) -> Iterator[Finding]:
         yield Finding("statics", "note", "holes", f"{given}{rest}; none is elsewhere in its lever than in the rig")
     else:
         size, piece, hole = max(moved, key=lambda entry: float(entry[0]))
-        before, after = statics(rig).pad_force, statics(built).pad_force
+        before, after = solve_statics(rig).pad_force, solve_statics(built).pad_force
         change = after / before - 1.0
         worst = int(np.argmax(np.abs(change)))
         yield Finding(

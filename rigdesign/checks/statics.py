@@ -123,7 +123,7 @@ def share_matrix(rig: Rig) -> Floats:
     return node_shares(tree, link_fractions(tree))[: tree.n_pads]
 
 
-def statics(rig: Rig) -> Statics:
+def solve_statics(rig: Rig) -> Statics:
     """Solve the statics down every tree of the rig from holes and jack forces, and close them at every pivot.
 
     Raises

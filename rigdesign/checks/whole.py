@@ -12,7 +12,7 @@ from rigdesign.checks.model import Check
 from rigdesign.checks.regions import verdicts
 from rigdesign.checks.remarks_practice import practice_remarks
 from rigdesign.checks.remarks_statics import statics_remarks
-from rigdesign.checks.statics import statics
+from rigdesign.checks.statics import solve_statics
 from rigdesign.checks.thin import thinned
 from rigdesign.findings import Finding, numbered
 from rigdesign.levers.model import Rig
@@ -40,7 +40,7 @@ def check(rig: Rig, extra: tuple[Finding, ...] = ()) -> Check:
     InputError
         Where the rig's trees are no trees from jack to pads, or a piece of them cannot stand.
     """
-    solved = statics(rig)
+    solved = solve_statics(rig)
     target = rig.plan.target
     full = curves(target, rig.pad_x, solved.pad_force)
     rows = verdicts(target, full)

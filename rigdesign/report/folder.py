@@ -55,7 +55,7 @@ def require_free(folder: Path, replace: bool) -> None:
 
 
 def _parent(folder: Path) -> Path:
-    return folder.absolute().parent
+    return Path(os.path.abspath(folder)).parent
 
 
 def _require_ours(folder: Path) -> None:
@@ -101,7 +101,8 @@ def write_folder(files: Mapping[str, bytes], folder: Path, replace: bool = False
         Where the folder may not or cannot be written; what was there before is still there, and nothing else.
     """
     require_free(folder, replace)
-    parent = _parent(folder)
+    folder = Path(os.path.abspath(folder))
+    parent = folder.parent
     try:
         fresh = Path(tempfile.mkdtemp(prefix=f".{folder.name}.", suffix=".new", dir=parent))
     except OSError as error:
@@ -136,7 +137,7 @@ def _put_in_place(fresh: Path, folder: Path) -> None:
     if not folder.exists():
         os.rename(fresh, folder)
         return
-    aside = Path(tempfile.mkdtemp(prefix=f".{folder.name}.", suffix=".old", dir=folder.absolute().parent))
+    aside = Path(tempfile.mkdtemp(prefix=f".{folder.name}.", suffix=".old", dir=folder.parent))
     old = aside / folder.name
     try:
         os.rename(folder, old)
