@@ -10,9 +10,12 @@ a `Brief` (`rigdesign.brief.model`): validated, in SI units, frozen, tables read
     messages   what pydantic finds, in one plain message
     sources    texts of brief and tables, from the folder or kept
     tables     CSV with units in its headings
-    loads      [specimen] and [[load]]
+    context    checks that several parts share
+    specimen   [specimen], with its weight
+    loads      [[load]]
     build      everything else that concerns several keys at once
     read       all of it in order
+    describe   the JSON Schema
 
 What is decided here, where a file could be read in two ways:
 
@@ -23,14 +26,15 @@ What is decided here, where a file could be read in two ways:
 - A table has exactly its own columns, in any order, and maybe one named "note".  Rows are in order of x.  Two rows at
   one x are a jump in running loads, masses per length, chords and internal loads; among point loads, point masses,
   hard points and pads they are an error.
-- Internal tables counted from the tip are turned round; their signs stay.  A torsion column may be there if it holds
-  zeros.
+- Internal tables counted from the tip are in order of that count and are turned round: of the two rows of a jump the
+  outboard one, met first from the tip, stands first in the file.  Signs stay as given.  A torsion column may be there
+  if it holds zeros.
 - A region's percentages are of what [acceptance] says unless it says otherwise itself.
 - Tables lie in the folder of the brief or below it.
 
 Bad input raises `BriefError` or `TableError`, one fault at a time, with file, line, key, value, limit and remedy.
 
-Depends on: units, display, errors, words.
+Depends on: units, unit_factors, display, errors, words.
 """
 
 from __future__ import annotations

@@ -10,7 +10,7 @@ import numpy as np
 
 from rigdesign.brief.context import Context, frozen, table_stations
 from rigdesign.brief.layout import AcceptanceTable, Bands, BriefFile, JackTable, LeversTable, PadsTable
-from rigdesign.brief.loads import load, specimen, stretch
+from rigdesign.brief.loads import load, stretch
 from rigdesign.brief.model import (
     Acceptance,
     BandRule,
@@ -24,6 +24,7 @@ from rigdesign.brief.model import (
     Source,
     Specimen,
 )
+from rigdesign.brief.specimen import specimen
 from rigdesign.display import show
 from rigdesign.words import DEFAULT_MOMENT_BAND
 
@@ -55,11 +56,19 @@ def _pads(table: PadsTable, piece: Specimen, context: Context) -> PadRules:
     stations = _stations(table, piece, context)
     largest = math.inf if table.largest_force is None else table.largest_force
     if not largest > table.least_force:
-        raise context.error("the largest force must be more than the least force", "pads", "largest_force",
-                            limit=f"more than {show(table.least_force, 'force')}, least_force")  # fmt: skip
+        raise context.error(
+            "the largest force must be more than the least force",
+            "pads",
+            "largest_force",
+            limit=f"more than {show(table.least_force, 'force')}, least_force",
+        )
     if table.largest_pressure is not None and (table.length is None or table.width is None):
-        raise context.error("a largest pressure needs the footprint", "pads", "largest_pressure",
-                            remedy="give length and width of the pads")  # fmt: skip
+        raise context.error(
+            "a largest pressure needs the footprint",
+            "pads",
+            "largest_pressure",
+            remedy="give length and width of the pads",
+        )
     return PadRules(
         count=_count(table, stations, context),
         places=table.places,
@@ -82,8 +91,12 @@ def _stations(table: PadsTable, piece: Specimen, context: Context) -> Floats:
     given = [key for key in ("stations", "table") if getattr(table, key) is not None]
     if table.places == "free":
         if given:
-            raise context.error(f'places = "free" goes without "{given[0]}"', "pads", given[0],
-                                remedy='write places = "fixed" or "hard points", or delete it')  # fmt: skip
+            raise context.error(
+                f'places = "free" goes without "{given[0]}"',
+                "pads",
+                given[0],
+                remedy='write places = "fixed" or "hard points", or delete it',
+            )
         return frozen(np.empty(0))
     if len(given) != 1:
         what = f'places = "{table.places}" needs the stations once'
@@ -128,8 +141,12 @@ def _levers(table: LeversTable, pads: PadRules, context: Context) -> LeverRules:
     """Return what [levers] asks for."""
     longest = math.inf if table.longest is None else table.longest
     if longest < 2 * table.shortest_arm:
-        raise context.error("the longest lever must hold two of the shortest arms", "levers", "longest",
-                            limit=f"{show(2 * table.shortest_arm, 'length')} or more")  # fmt: skip
+        raise context.error(
+            "the longest lever must hold two of the shortest arms",
+            "levers",
+            "longest",
+            limit=f"{show(2 * table.shortest_arm, 'length')} or more",
+        )
     if table.grouping is not None:
         _check_grouping(table.grouping, pads, context)
     return LeverRules(table.drill_step, table.ratio_limit, table.shortest_arm, longest, table.tiers, table.grouping)

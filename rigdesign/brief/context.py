@@ -44,9 +44,14 @@ class Context:
         return "" if isinstance(found, dict) else in_words(found)
 
     def table(
-        self, name: str, path: tuple[str | int, ...], kinds: dict[str, str], *, repeats: Repeats = "none",
+        self,
+        name: str,
+        path: tuple[str | int, ...],
+        kinds: dict[str, str],
+        *,
+        repeats: Repeats = "none",
         optional: dict[str, str] | None = None,
-    ) -> CsvTable:  # fmt: skip
+    ) -> CsvTable:
         """Read the table that the key at `path` names."""
         text = self.texts.table(name, self.places.where(*path))
         return read_table(text, name, kinds, repeats=repeats, optional=optional)
@@ -80,10 +85,41 @@ def table_stations(table: CsvTable, specimen: Specimen, x: Floats | None = None)
     if off.size:
         row = int(off[0])
         station = show(float(x[row]), "length", unit="m")
-        raise TableError("the row lies off the specimen", where=table.where(row),
-                         value=f"{table.cell('x', row)} ({station} from x = 0)", limit=extent(specimen),
-                         remedy="check the unit in the heading and the origin of x")  # fmt: skip
+        raise TableError(
+            "the row lies off the specimen",
+            where=table.where(row),
+            value=f"{table.cell('x', row)} ({station} from x = 0)",
+            limit=extent(specimen),
+            remedy="check the unit in the heading and the origin of x",
+        )
     return frozen(np.clip(x, specimen.left, specimen.right))
+
+
+def running(rows: CsvTable, column: str, piece: Specimen) -> Floats:
+    """Return the stations of a column that runs straight between its rows; raise TableError where it has no extent."""
+    x = table_stations(rows, piece)
+    if not x[0] < x[-1]:
+        raise TableError("the table needs rows at two different x", where=rows.name)
+    not_all_zero(rows, column)
+    return x
+
+
+def not_negative(rows: CsvTable, column: str) -> None:
+    """Raise TableError at the first row where the column is negative."""
+    negative = np.flatnonzero(rows[column] < 0)
+    if negative.size:
+        row = int(negative[0])
+        raise TableError(
+            f"the {column} is negative", where=rows.where(row), value=rows.cell(column, row), limit="0 or more"
+        )
+
+
+def not_all_zero(rows: CsvTable, *columns: str) -> None:
+    """Raise TableError if the columns hold nothing but zeros."""
+    if not any(rows[column].any() for column in columns):
+        raise TableError(
+            f"the {' and '.join(columns)} of every row is zero", where=rows.name, remedy="delete the table or fill it"
+        )
 
 
 def frozen(values: Floats) -> Floats:

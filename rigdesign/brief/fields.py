@@ -117,8 +117,11 @@ def _several(count: int | None = None) -> Callable[[object], Floats]:
     def read(value: object) -> Floats:
         result = quantities(value, "length")
         if count is not None and result.size != count:
-            raise InputError(f"{count} lengths are due, and this holds {result.size}", value=in_words(value),
-                             limit='such as ["0.4 m", "5.6 m"]')  # fmt: skip
+            raise InputError(
+                f"{count} lengths are due, and this holds {result.size}",
+                value=in_words(value),
+                limit='such as ["0.4 m", "5.6 m"]',
+            )
         result.setflags(write=False)
         return result
 
@@ -129,8 +132,11 @@ def _pairs(value: object) -> tuple[tuple[float, float], ...]:
     if not isinstance(value, list):
         raise InputError("a list of pairs is due", value=in_words(value), limit='such as [["1.40 m", "1.52 m"]]')
     if value and all(isinstance(item, str) for item in value):
-        raise InputError("a list of pairs is due, each in its own brackets", value=in_words(value),
-                         limit='such as [["1.40 m", "1.52 m"]]')  # fmt: skip
+        raise InputError(
+            "a list of pairs is due, each in its own brackets",
+            value=in_words(value),
+            limit='such as [["1.40 m", "1.52 m"]]',
+        )
     pairs = [_several(2)(item) for item in value]
     return tuple((float(start), float(end)) for start, end in pairs)
 
@@ -139,8 +145,11 @@ def _reversed_columns(value: object) -> tuple[str, ...]:
     names = value if isinstance(value, list) else [value]
     for name in names:
         if name not in ("shear", "moment", "torsion"):
-            raise InputError("this is no column whose sign can be reversed", value=in_words(name),
-                             limit='a list of "shear" and "moment"')  # fmt: skip
+            raise InputError(
+                "this is no column whose sign can be reversed",
+                value=in_words(name),
+                limit='a list of "shear" and "moment"',
+            )
     return tuple(dict.fromkeys(names))
 
 
@@ -156,8 +165,11 @@ def _grouping(value: object) -> Grouping:
 def _group(value: object, seen: set[int]) -> int | Grouping:
     if isinstance(value, list):
         if len(value) != 2:
-            raise InputError(f"every lever joins two, and this group holds {len(value)}", value=in_words(value),
-                             limit="such as [[1, 2], [3, [4, 5]]]")  # fmt: skip
+            raise InputError(
+                f"every lever joins two, and this group holds {len(value)}",
+                value=in_words(value),
+                limit="such as [[1, 2], [3, [4, 5]]]",
+            )
         return tuple(_group(item, seen) for item in value)
     if isinstance(value, bool) or not isinstance(value, int) or value < 1:
         raise InputError("a group holds pad numbers and groups", value=in_words(value), limit="pad numbers from 1")

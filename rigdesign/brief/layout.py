@@ -80,9 +80,7 @@ class InternalEntry(LoadEntry):
 
     internal: f.Text = _needed("Table of shear and moment: x [m], shear [N], moment [N*m].")
     reverse: f.Columns = _key("Columns whose sign is opposite to the conventions.", [])
-    stations_from: f.OriginWord | None = _key(
-        '"tip" if stations count from the tip inboard; default: the specimen\'s x.'
-    )
+    stations_from: f.OriginWord | None = _key('"tip" if x counts from the tip inboard, rows in that order.')
 
 
 class ForcesEntry(LoadEntry):
@@ -154,8 +152,9 @@ class PadsTable(Table):
     largest_pressure: f.PositivePressure | None = _key("Most pressure under a footprint at the peak of the test.")
     keep_out: f.Pairs = _key("Stretches where no pad may sit: a list of pairs of stations.", [])
     action: f.ActionWord = _key("pull: links in tension; push: in compression.", "pull")
-    aim: f.AimWord = _key("closest: least band use, then even forces within `ease`; even: as even as the bands allow.",
-                          "closest")  # fmt: skip
+    aim: f.AimWord = _key(
+        "closest: least band use, then even forces within `ease`; even: as even as the bands allow.", "closest"
+    )
     ease: f.PercentageOrZero = _key("How much band use may be given up for even forces, of the least.", "2 %")
 
 

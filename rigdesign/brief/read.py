@@ -52,8 +52,11 @@ def _parsed(text: str, name: str) -> dict[str, Any]:
         match = _AT.fullmatch(str(error))
         reason, line, column = match.groups() if match else (str(error), None, None)
         where = f"{name}, line {line}, column {column}" if line else f"{name}, at its end" if match else name
-        raise BriefError(f"the brief is not TOML: {reason[:1].lower()}{reason[1:]}", where=where,
-                         remedy=_quotes(text, int(line)) if line else "") from None  # fmt: skip
+        raise BriefError(
+            f"the brief is not TOML: {reason[:1].lower()}{reason[1:]}",
+            where=where,
+            remedy=_quotes(text, int(line)) if line else "",
+        ) from None
     except RecursionError:
         raise BriefError("the brief nests its brackets too deeply", where=name) from None
 

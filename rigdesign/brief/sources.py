@@ -45,8 +45,12 @@ class FolderTexts:
         home = os.path.abspath(self.folder)
         path = os.path.normpath(os.path.join(home, name))
         if "\0" in name or os.path.commonpath([home, path]) != home:
-            raise BriefError("the table lies outside the folder of the brief", where=where, value=f'"{name}"',
-                             remedy="copy it beside the brief, so that the folder holds all of it")  # fmt: skip
+            raise BriefError(
+                "the table lies outside the folder of the brief",
+                where=where,
+                value=f'"{name}"',
+                remedy="copy it beside the brief, so that the folder holds all of it",
+            )
         return Path(path)
 
 

@@ -180,8 +180,13 @@ def _heading(cells: list[str], where: str, kinds: dict[str, str], optional: dict
             try:
                 factors[name] = column_fraction(text, known[name])
             except InputError as error:
-                raise TableError(error.what, where=f"{where}, column {name}", value=error.value, limit=error.limit,
-                                 remedy=error.remedy) from None  # fmt: skip
+                raise TableError(
+                    error.what,
+                    where=f"{where}, column {name}",
+                    value=error.value,
+                    limit=error.limit,
+                    remedy=error.remedy,
+                ) from None
     missing = [column for column in kinds if column not in names]
     if missing:
         raise TableError(f'the column "{missing[0]}" is missing', where=where, limit=wanted)
@@ -197,8 +202,13 @@ def _unknown_column(name: str, text: str, where: str, wanted: str, known: dict[s
         return TableError(f'the column "{name}" {PLAN_RIG}', where=where, remedy="delete the column")
     near = difflib.get_close_matches(name.lower(), known, n=1)
     remedy = f'did you mean "{near[0]}"? ' if near else ""
-    return TableError("this table has no such column", where=where, value=f'"{text.strip()}"', limit=wanted,
-                      remedy=remedy + 'a column for remarks is headed "note"')  # fmt: skip
+    return TableError(
+        "this table has no such column",
+        where=where,
+        value=f'"{text.strip()}"',
+        limit=wanted,
+        remedy=remedy + 'a column for remarks is headed "note"',
+    )
 
 
 def _numbers(column: str, cells: tuple[str, ...], name: str, lines: list[int]) -> Floats:
@@ -208,8 +218,12 @@ def _numbers(column: str, cells: tuple[str, ...], name: str, lines: list[int]) -
             where = f"{name}, line {line}, column {column}"
             if not cell.strip():
                 raise TableError("the cell is empty", where=where, remedy="write the number, 0 if it is zero")
-            raise TableError("this is not a number", where=where, value=f'"{_short(cell.strip())}"',
-                             limit="a finite number with a decimal point")  # fmt: skip
+            raise TableError(
+                "this is not a number",
+                where=where,
+                value=f'"{_short(cell.strip())}"',
+                limit="a finite number with a decimal point",
+            )
     return np.fromiter((float(cell.replace("−", "-")) for cell in cells), dtype=float, count=len(cells))
 
 
@@ -225,12 +239,20 @@ def _check_order(table: CsvTable, repeats: Repeats) -> None:
         thrice = np.flatnonzero(same[1:] & same[:-1])
         if thrice.size:
             row = int(thrice[0]) + 2
-            raise TableError("three rows stand at one x", where=table.where(row), value=table.cell("x", row),
-                             limit="two rows at one x, a jump, the inboard one first")  # fmt: skip
+            raise TableError(
+                "three rows stand at one x",
+                where=table.where(row),
+                value=table.cell("x", row),
+                limit="two rows at one x, a jump, the inboard one first",
+            )
     elif same.any():
         row = int(np.flatnonzero(same)[0]) + 1
-        raise TableError("two rows stand at one x", where=table.where(row), value=table.cell("x", row),
-                         remedy="write them as one row")  # fmt: skip
+        raise TableError(
+            "two rows stand at one x",
+            where=table.where(row),
+            value=table.cell("x", row),
+            remedy="write them as one row",
+        )
 
 
 def _place(cell: str) -> float:
