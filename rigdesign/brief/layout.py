@@ -26,7 +26,7 @@ def _needed(description: str, **more: Any) -> Any:
 class Table(BaseModel):
     """Base of every table: unknown keys are errors."""
 
-    model_config = ConfigDict(extra="forbid", frozen=True, arbitrary_types_allowed=True, use_attribute_docstrings=False)
+    model_config = ConfigDict(extra="forbid", frozen=True, arbitrary_types_allowed=True)
 
 
 class SpecimenTable(Table):
