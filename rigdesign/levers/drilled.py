@@ -6,15 +6,20 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from rigdesign.display import show
+from rigdesign.brief.model import Brief
 from rigdesign.findings import Refusal
-from rigdesign.levers.grouping import joined
+from rigdesign.levers.grouping import joined, millimetres
 from rigdesign.levers.hanging import Hung
+from rigdesign.levers.judging import Judge
 from rigdesign.levers.wiring import Ints, Wiring
+from rigdesign.pads.limits import violations
 from rigdesign.target.curve import Floats
 
 BROKEN = 1e6
 """Added to the band use of a rig that misses a pad limit: any rig that keeps them all is better."""
+
+REACH = 4
+"""Steps that a descent may move an arm or a pivot: places and forces stay what the plan chose them for."""
 
 
 @dataclass(frozen=True)
@@ -31,6 +36,12 @@ class Drilled:
     words: str
 
 
+def judged(brief: Brief, judge: Judge, pad_x: Floats, force: Floats) -> Floats:
+    """Band use of rigs with pads at `pad_x` (k, n_pads), far larger where pad limits are missed; (k,)."""
+    missed = violations(brief, pad_x, force)
+    return judge.use(pad_x, force) + np.where(missed > 0, BROKEN * (1.0 + missed), 0.0)
+
+
 def coarse(wiring: Wiring, a: Floats, b: Floats, step: float) -> Refusal | None:
     """Refusal where an arm before drilling rounds to no drill step at all."""
     shorter = np.minimum(a, b)
@@ -38,11 +49,11 @@ def coarse(wiring: Wiring, a: Floats, b: Floats, step: float) -> Refusal | None:
     if not bad.size:
         return None
     row = int(bad[np.argmin(shorter[bad])])
-    arm = show(float(shorter[row]), "length", unit="mm")
+    arm = millimetres(float(shorter[row]))
     return Refusal(
         "levers",
         "the drill step is so coarse that an arm would be zero",
-        f"drill_step {show(step, 'length', unit='mm')}",
+        f"drill_step {millimetres(step)}",
         f"lever {row + 1}, which joins {joined(wiring, row)}, needs an arm of {arm}",
-        f"choose a drill_step below {show(2 * float(shorter[row]), 'length', unit='mm')}, or fewer pads",
+        f"choose a drill_step below {millimetres(2 * float(shorter[row]))}, or fewer pads",
     )

@@ -12,16 +12,14 @@ from itertools import pairwise
 
 import numpy as np
 
-from rigdesign.brief.model import Brief, LeverRules
-from rigdesign.display import show
+from rigdesign.brief.model import LeverRules
 from rigdesign.findings import Refusal
 from rigdesign.levers.descent import Descended, all_pairs, descend, moves_of, near_pairs
-from rigdesign.levers.drilled import BROKEN, Drilled, coarse
-from rigdesign.levers.grouping import allowed
+from rigdesign.levers.drilled import REACH, Drilled, coarse, judged
+from rigdesign.levers.grouping import allowed, millimetres
 from rigdesign.levers.hanging import hang_fixed
 from rigdesign.levers.judging import Judge, build_judge
 from rigdesign.levers.wiring import Ints, Wiring, ideal_levers
-from rigdesign.pads.limits import violations
 from rigdesign.pads.model import PadPlan
 from rigdesign.pads.tube import Tube
 from rigdesign.target.curve import Floats
@@ -44,7 +42,7 @@ ALL_PAIRS = 32
 
 def drill_fixed(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | None = None) -> Drilled | Refusal:
     """Drill the levers of pads that stay; Refusal where no pivots on the step keep the limits of the levers."""
-    brief, step = plan.target.brief, plan.target.brief.levers.drill_step
+    step = plan.target.brief.levers.drill_step
     levers = ideal_levers(wiring, plan.x, np.abs(plan.force))
     refusal = coarse(wiring, levers.a, levers.b, step)
     if refusal is not None:
@@ -52,12 +50,11 @@ def drill_fixed(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | 
     judge = build_judge(tube)
     chain = _chain(wiring)
     moves = _moves(wiring, chain)
-    value = _value(brief, wiring, tube, judge, plan.x)
     most = max(1, JUDGED // (plan.n_pads * max(1, len(moves)))) * max(1, len(moves))
     found: list[tuple[float, float, Descended]] = []
     judged = 0
     for turn, start in enumerate(_starts(plan, wiring, chain, step)):
-        descended = descend(start, moves, value, most)
+        descended = descend(start, moves, _value(plan, wiring, tube, judge, start), most)
         judged += descended.judged
         if np.isfinite(descended.value):
             away = abs(
@@ -68,7 +65,7 @@ def drill_fixed(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | 
             progress((turn + 1) / len(PLACES), "drilling")
     if not found:
         return _no_pivots(step)
-    least = min(value for value, _, _ in found)
+    least = min(use for use, _, _ in found)
     _, away, best = min((item for item in found if item[0] <= least * (1 + NEAR_EQUAL)), key=lambda item: item[1])
     hung = hang_fixed(wiring, best.steps[None], step, plan.x, tube.total)
     use = float(tube.use(hung.pad_x, hung.pad_force)[0])
@@ -110,19 +107,17 @@ def _singles(size: int, chain: Ints) -> Iterator[Ints]:
             yield single
 
 
-def _value(brief: Brief, wiring: Wiring, tube: Tube, judge: Judge, x: Floats) -> Value:
+def _value(plan: PadPlan, wiring: Wiring, tube: Tube, judge: Judge, start: Ints) -> Value:
     """Band use of rows of steps; far larger where pad limits are missed, infinite where a lever breaks a limit."""
-    step = brief.levers.drill_step
+    brief, step = plan.target.brief, plan.target.brief.levers.drill_step
 
     def value(rows: Ints) -> Floats:
         result = np.full(len(rows), np.inf)
-        hung = hang_fixed(wiring, np.maximum(rows, 1), step, x, tube.total)
-        kept = (rows > 0).all(axis=1) & (hung.b > 0).all(axis=1)
+        hung = hang_fixed(wiring, np.maximum(rows, 1), step, plan.x, tube.total)
+        kept = (rows > 0).all(axis=1) & (hung.b > 0).all(axis=1) & (np.abs(rows - start) <= REACH).all(axis=1)
         kept &= allowed(hung.a, hung.b, brief.levers).all(axis=1)
         if kept.any():
-            pad_x, force = hung.pad_x[kept], hung.pad_force[kept]
-            missed = violations(brief, pad_x, force)
-            result[kept] = judge.use(pad_x, force) + np.where(missed > 0, BROKEN * (1.0 + missed), 0.0)
+            result[kept] = judged(brief, judge, hung.pad_x[kept], hung.pad_force[kept])
         return result
 
     return value
@@ -159,7 +154,7 @@ def _no_pivots(step: float) -> Refusal:
     return Refusal(
         "levers",
         "with pivots in whole drill steps no lever tree keeps the limits of the levers",
-        f"drill_step {show(step, 'length', unit='mm')}",
+        f"drill_step {millimetres(step)}",
         "the pivots before drilling keep the limits, none of those tried near them does",
         "choose a finer drill_step or ease the limits of the levers",
     )
@@ -169,5 +164,5 @@ def _words(starts: int, judged: int, best: Descended, away: float) -> str:
     end = "no single step and no pair of steps improves it" if best.is_settled else "stopped by its work limit"
     return (
         f"drilling: {starts} places of the jack tried, {judged} rigs judged; from the chosen place {end}; "
-        f"the jack stands {show(away, 'length', unit='mm')} from where it was planned"
+        f"the jack stands {millimetres(away)} from where it was planned"
     )

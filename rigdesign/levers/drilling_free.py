@@ -13,14 +13,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rigdesign.brief.model import Brief
-from rigdesign.display import show
 from rigdesign.findings import Refusal
 from rigdesign.levers.arms import Arms, search_arms
 from rigdesign.levers.branching import Pins, Search
 from rigdesign.levers.descent import Descended, all_pairs, descend, moves_of, near_pairs
-from rigdesign.levers.drilled import BROKEN, Drilled, coarse
-from rigdesign.levers.grouping import allowed
-from rigdesign.levers.hanging import Hung, hang_free, metres
+from rigdesign.levers.drilled import REACH, Drilled, coarse, judged
+from rigdesign.levers.grouping import allowed, millimetres
+from rigdesign.levers.hanging import hang_free, metres
 from rigdesign.levers.judging import Judge, Lines, build_judge
 from rigdesign.levers.wiring import Ints, Wiring, ideal_levers
 from rigdesign.pads.limits import violations
@@ -46,11 +45,11 @@ def drill_free(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | N
     if refusal is not None:
         return refusal
     judge = build_judge(tube)
-    value = _value(brief, wiring, tube, judge, step)
     found = _searched(plan, wiring, tube, judge, progress) if wiring.is_neighbourly else None
     start = found.steps.reshape(-1) if found is not None else _rounded(brief, levers.a, levers.b, step)
     if start is None:
         return _no_side(step)
+    value = _value(brief, wiring, tube, judge, start)
     pairs = all_pairs(start.size) if start.size <= ALL_PAIRS else near_pairs(wiring, 2)
     moves = moves_of(start.size, pairs)
     descended = descend(start, moves, value, max(1, JUDGED // (plan.n_pads * len(moves))) * len(moves))
@@ -59,26 +58,21 @@ def drill_free(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | N
     return Drilled(hung, descended.steps.reshape(-1, 2), use, _words(found, descended))
 
 
-def _value(brief: Brief, wiring: Wiring, tube: Tube, judge: Judge, step: float) -> Callable[[Ints], Floats]:
+def _value(brief: Brief, wiring: Wiring, tube: Tube, judge: Judge, start: Ints) -> Callable[[Ints], Floats]:
     """Band use of rows of steps; far larger where pad limits are missed, infinite where a lever breaks a limit."""
+    step = brief.levers.drill_step
 
     def value(rows: Ints) -> Floats:
         result = np.full(len(rows), np.inf)
-        kept = np.flatnonzero(
-            allowed(metres(rows[:, 0::2], step), metres(rows[:, 1::2], step), brief.levers).all(axis=1)
-        )
+        a, b = metres(rows[:, 0::2], step), metres(rows[:, 1::2], step)
+        near = (np.abs(rows - start) <= REACH).all(axis=1)
+        kept = np.flatnonzero(near & allowed(a, b, brief.levers).all(axis=1))
         if kept.size:
             hung = hang_free(wiring, rows[kept], step, tube.jack_x, tube.total)
-            result[kept] = judged(brief, judge, hung)
+            result[kept] = judged(brief, judge, hung.pad_x, hung.pad_force)
         return result
 
     return value
-
-
-def judged(brief: Brief, judge: Judge, hung: Hung) -> Floats:
-    """Band use of hung trees (k,), far larger where pad limits are missed."""
-    missed = violations(brief, hung.pad_x, hung.pad_force)
-    return judge.use(hung.pad_x, hung.pad_force) + np.where(missed > 0, BROKEN * (1.0 + missed), 0.0)
 
 
 def _searched(plan: PadPlan, wiring: Wiring, tube: Tube, judge: Judge, progress: Progress | None) -> Arms | None:
@@ -118,7 +112,7 @@ def _no_side(step: float) -> Refusal:
     return Refusal(
         "levers",
         "with arms in whole drill steps no lever tree keeps the limits of the levers",
-        f"drill_step {show(step, 'length', unit='mm')}",
+        f"drill_step {millimetres(step)}",
         "the arms before drilling keep the limits, none within two steps of them does",
         "choose a finer drill_step or ease the limits of the levers",
     )

@@ -8,7 +8,6 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from rigdesign.brief.model import LeverRules
-from rigdesign.display import show
 from rigdesign.errors import BriefError
 from rigdesign.findings import Refusal
 from rigdesign.levers.neighbours import Best, Join, Stretches, added, best_tree, stacked, worst
@@ -87,8 +86,9 @@ def _ratio(a: Floats, b: Floats) -> Floats:
     return quotient(np.maximum(a, b), np.minimum(a, b))
 
 
-def _metres(value: float) -> str:
-    return show(value, "length", unit="mm")
+def millimetres(length: float) -> str:
+    """A length of a lever in words [given in m]: "60 mm"."""
+    return f"{1000 * length:.4g} mm"
 
 
 LIMITS = (
@@ -109,7 +109,7 @@ LIMITS = (
         lambda a, b: -np.minimum(a, b),
         worst,
         lambda rules: -rules.shortest_arm,
-        lambda value: _metres(-value),
+        lambda value: millimetres(-value),
         "lower",
     ),
     Limit(
@@ -119,7 +119,7 @@ LIMITS = (
         lambda a, b: a + b,
         worst,
         lambda rules: rules.longest,
-        _metres,
+        millimetres,
         "raise",
     ),
     Limit(

@@ -204,8 +204,8 @@ def from_grouping(grouping: Grouping | int, x: Floats, force: Floats) -> Wiring:
     twice = sorted({pad for pad in seen if seen.count(pad) > 1})
     missing = sorted(set(range(1, x.size + 1)) - set(seen))
     if twice or missing:
-        named = "twice: pad " + _list(twice) if twice else "not at all: pad " + _list(missing)
-        raise ValueError(f"every pad must be named once, and named {named}")
+        what = f"named twice: pad {_list(twice)}" if twice else f"not named: pad {_list(missing)}"
+        raise ValueError(f"every pad must be named once, but {what}")
     return in_order(from_pairs(x.size, grouping, halves), x, force)
 
 
