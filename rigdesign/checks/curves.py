@@ -57,7 +57,7 @@ class RigLoads:
 
 def rig_loads(target: Target, pad_x: Floats, pad_force: Floats) -> RigLoads:
     """Return what pads of `pad_force` (n_pads,) [N] at `pad_x` (n_pads,) [m] do to the target's specimen."""
-    total, first_moment = float(pad_force.sum()), float(pad_force @ pad_x)
+    total, first_moment = float(pad_force.sum()), float((pad_force * pad_x).sum())
     support_x, support_force = internal.reactions(target.brief.specimen, total, first_moment)
     return RigLoads(target, np.concatenate([pad_x, support_x]), np.concatenate([pad_force, support_force]))
 

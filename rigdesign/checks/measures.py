@@ -125,12 +125,23 @@ def _plate_steel(piece: Piece, statics: Statics) -> float:
     return total
 
 
+def dot(a: Floats, b: Floats) -> float:
+    """Return Σ a b of two arrays (n,), the same to the last bit in every process.
+
+    A BLAS product is not: how it sums depends on where in memory its arrays happen to lie.
+
+    >>> dot(np.array([1.0, 2.0]), np.array([3.0, 4.0]))
+    11.0
+    """
+    return float((a * b).sum())
+
+
 def jack_offset(rig: Rig) -> float:
     """Return how far the jacks' resultant stands outboard of the resultant that the pads must bring [m]."""
     force = rig.jack_forces
     jack_x = np.array([tree.jack.x for tree in rig.trees])
     net = rig.plan.target.net
-    return float(force @ jack_x / force.sum() - net.first_moment / net.total)
+    return dot(force, jack_x) / float(force.sum()) - net.first_moment / net.total
 
 
 def sum_residuals(rig: Rig, statics: Statics) -> tuple[float, float]:
@@ -141,5 +152,5 @@ def sum_residuals(rig: Rig, statics: Statics) -> tuple[float, float]:
     span, size = specimen.right - specimen.left, float(np.abs(force).sum())
     # about the first jack, so that the place of the origin does not cost digits
     about = jack_x[0]
-    moment = pads @ (rig.pad_x - about) - force @ (jack_x - about)
-    return abs(float(pads.sum() - force.sum())) / size, abs(float(moment)) / (size * span)
+    moment = dot(pads, rig.pad_x - about) - dot(force, jack_x - about)
+    return abs(float(pads.sum() - force.sum())) / size, abs(moment) / (size * span)

@@ -18,7 +18,7 @@ from typing import Any
 
 import numpy as np
 
-from rigdesign.checks.measures import length, ratio
+from rigdesign.checks.measures import dot, length, ratio
 from rigdesign.checks.model import Check
 from rigdesign.checks.remarks_practice import pressures
 from rigdesign.findings import Finding
@@ -219,7 +219,7 @@ def _rig_part(check: Check) -> dict[str, Any]:
         "levers": sum(len(tree.pieces) for tree in rig.trees),
         "tiers": max((piece.tier for piece in _pieces(check)), default=0),
         "pads_resultant_N": float(force.sum()),
-        "pads_centroid_x_m": float(force @ rig.pad_x / force.sum()),
+        "pads_centroid_x_m": dot(force, rig.pad_x) / float(force.sum()),
         "jack_x_m": [tree.jack.x for tree in rig.trees],
         "jack_force_N": [tree.force for tree in rig.trees],
         "jack_force_at_test_peak_N": [tree.force * rig.plan.target.brief.peak for tree in rig.trees],
