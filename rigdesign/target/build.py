@@ -18,6 +18,8 @@ from rigdesign.target.sums import Combined
 
 # A sum below this part of the largest force beyond any station is the rounding of loads that cancel.
 _CANCELLED = 1e-9
+# Stations over the loaded span at which that largest force is looked for, besides the breaks.
+_LOOKED_AT = 65
 
 
 def build_target(brief: Brief) -> Target:
@@ -53,7 +55,9 @@ def build_target(brief: Brief) -> Target:
 
 def _refuse_nothing(total: Curve) -> None:
     """Raise BriefError where the loads cancel: there is then no resultant and no place for a jack."""
-    largest = float(np.abs(total.force_beyond(total.breaks, "inboard")).max(initial=0.0))
+    # between the breaks as well: a load that changes sign in a stretch may cancel itself there
+    x = np.union1d(total.breaks, np.linspace(total.breaks[0], total.breaks[-1], _LOOKED_AT))
+    largest = float(np.abs(total.force_beyond(x, "inboard")).max(initial=0.0))
     if abs(total.total) > _CANCELLED * largest:
         return
     raise BriefError(
