@@ -103,6 +103,8 @@ def half_planes(stack: Floats) -> HalfPlanes:
 
 def hulls(points: Floats, owner: Indices) -> tuple[Floats, Indices]:
     """Convex hull of the points (m, 2) of each owner (m,): a stack, and the owners (k,) in rising order."""
+    fresh = np.append(True, (owner[1:] != owner[:-1]) | ~_same(points[1:], points[:-1]))
+    points, owner = points[fresh], owner[fresh]
     order = np.argsort(owner, kind="stable")
     owners, index = np.unique(owner[order], return_inverse=True)
     found = shapely.convex_hull(shapely.multipoints(points[order], indices=index))

@@ -38,7 +38,7 @@ class Forces:
 
 
 class ErrorRows(NamedTuple):
-    """Errors as linear functions, matrix · unknowns + error (k,), with their band's widths (k,) and a unit to scale by."""
+    """Errors as linear functions, matrix · unknowns + error (k,), with band widths (k,) and a unit to scale by."""
 
     matrix: sp.csr_array
     error: Floats
@@ -221,11 +221,7 @@ class ForceProgramme:
         if use is None:
             rows, constants, width = self._use_rows
             use = float(np.max((rows @ q + constants) / width))
-        return Forces(force, use, self.evenness(force))
-
-    def evenness(self, force: Floats) -> float:
-        """Largest deviation of a force from its pad's share of the curve, over that share."""
-        return float(np.max(np.abs(force - self.share) / self._share_scale))
+        return Forces(force, use, evenness(self.tube, self.x, force))
 
     def _determinate(self) -> Forces | None:
         """One or two pads: sum and first moment leave no choice."""
@@ -240,7 +236,7 @@ class ForceProgramme:
         slack = 1e-9 * tube.total
         if force.min() < self.least - slack or force.max() > self.largest + slack:
             return None
-        return Forces(force, float(tube.use(x, force)), self.evenness(force))
+        return Forces(force, float(tube.use(x, force)), evenness(tube, x, force))
 
 
 def shares(tube: Tube, x: Floats) -> Floats:
@@ -248,3 +244,9 @@ def shares(tube: Tube, x: Floats) -> Floats:
     middle = (x[1:] + x[:-1]) / 2
     beyond = np.interp(middle, tube.x, tube.shear)
     return -np.diff(np.concatenate([[tube.total], beyond, [0.0]]))
+
+
+def evenness(tube: Tube, x: Floats, force: Floats) -> float:
+    """Largest deviation of a force (n,) from its pad's share of the curve, over that share."""
+    share = shares(tube, x)
+    return float(np.max(np.abs(force - share) / np.maximum(share, LEAST_SHARE * tube.total / x.size)))

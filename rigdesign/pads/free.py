@@ -2,8 +2,7 @@
 
 With one curve to follow, the moment, the exact optimum comes from the path of fewest links (see `path`).  It stands
 also under pad limits and a shear band where it happens to keep them.  Otherwise the places are searched (see
-`search`) from several starts, against a lower bound: the larger of the path's and the stair's least band use, and,
-where those leave a gap, what sets of lines over a grid of cells prove (see `lines`).
+`search`) from several starts, against a proven lower bound: the larger of the path's and the stair's least band use.
 """
 
 from __future__ import annotations
@@ -12,9 +11,8 @@ from dataclasses import replace
 
 import numpy as np
 
-from rigdesign.pads.forces import shares
+from rigdesign.pads.forces import evenness
 from rigdesign.pads.limits import allowed_stretches, fitted, force_limits, least_pitch, violations
-from rigdesign.pads.lines import LineSets, Places
 from rigdesign.pads.outcome import Outcome, Progress, moment_alone, plain_amount
 from rigdesign.pads.path import COARSE, FINE, MANY, Path, least_use_path
 from rigdesign.pads.search import Arrangement, Limits, Search
@@ -23,9 +21,6 @@ from rigdesign.pads.tube import Tube, build_tube
 from rigdesign.target.curve import Floats
 from rigdesign.target.model import Target
 
-# A gap of more than this is worth the work of the cells' bound, for up to so many pads.
-GAP_WORTH, CELL_PADS = 0.02, 24
-CELLS_A_PAD, CELL_STEPS = 8, 6
 # Grid on which starts are fitted into the allowed stretches, points a span.
 START_GRID = 4000
 SEARCH_STATIONS, SEARCH_STATIONS_MANY = 40, 16
@@ -47,10 +42,12 @@ class FreePlaces:
     def choose(self) -> Outcome | None:
         """Pads of least band use, or None if no search found forces within the limits."""
         path, path_least = least_use_path(self.fine, self.count, self.start, self.end)
-        least = max(path_least if self.fine.is_judged[0] else 0.0, least_use_stair(self.fine, self.count))
+        least = max(
+            path_least if self.fine.is_judged[0] else 0.0, least_use_stair(self.fine, self.limits.stretches, self.count)
+        )
         moment_least = self._moment_least(path_least)
         if path is not None and path.x.size == self.count and self._path_is_best(path, least):
-            even = _evenness(self.fine, path.x, path.force)
+            even = evenness(self.fine, path.x, path.force)
             method = PATH_METHOD
             return Outcome(
                 path.x, path.force, least, moment_least, even, method, f"{self.count} pads, no search needed"
@@ -82,10 +79,6 @@ class FreePlaces:
             return None
         use = float(self.fine.use(found.x, found.forces.force))
         method = "lower bound: path of fewest links for the moment, stair of fewest steps for the shear"
-        if use > least * (1 + GAP_WORTH) and self.count <= CELL_PADS:
-            cells = self._cell_bound(least, use)
-            if cells > least:
-                least, method = cells, "lower bound: sets of lines over a grid of cells, all bands and limits together"
         even = self._more_even(tube, found, use)
         stretches = self.limits.stretches.shape[0]
         words = f"places searched step by step over {stretches} allowed stretch{'es' if stretches > 1 else ''}"
@@ -113,30 +106,13 @@ class FreePlaces:
 
     def _best_of(self, search: Search, starts: list[Floats]) -> Arrangement | None:
         """Refine the most promising start, and the next one, and keep the better."""
-        ranked = sorted(starts, key=lambda x: search.value(x)[0])
+        ranked = sorted(starts, key=lambda x: _use(search, x))
         found = []
         for k, start in enumerate(ranked[:2]):
             self._report(0.1 + 0.4 * k, "searching places")
             found.append(search.refine(start))
         kept = [arrangement for arrangement in found if arrangement is not None]
         return min(kept, key=lambda arrangement: arrangement.forces.use) if kept else None
-
-    def _cell_bound(self, least: float, use: float) -> float:
-        """Lower bound on the band use between `least` and `use`, by sets of lines over cells of the stretches."""
-        size = (self.fine.x[-1] - self.fine.x[0]) / (CELLS_A_PAD * self.count)
-        edges = [np.linspace(a, b, max(2, int(np.ceil((b - a) / size)) + 1)) for a, b in self.limits.stretches]
-        x, depth = np.concatenate([e[:-1] for e in edges]), np.concatenate([np.diff(e) for e in edges])
-        tube = build_tube(self.target, self.fine.jack_x, x.size, 8, extra=np.concatenate(edges))
-        sets = LineSets(tube, Places(x, depth, self.limits.least, self.limits.largest, self.limits.pitch), self.count)
-        low, high = least, use
-        for k in range(CELL_STEPS):
-            self._report(0.6 + 0.05 * k, "proving the bound")
-            middle = (low + high) / 2
-            if sets.reach(middle, self.count) is None:
-                low = middle
-            else:
-                high = middle
-        return low
 
     def _more_even(self, tube: Tube, found: Arrangement, use: float) -> Arrangement:
         """Second stage: forces as close to the pads' shares as the band use given up for it allows."""
@@ -154,6 +130,6 @@ class FreePlaces:
             self.progress(fraction, words)
 
 
-def _evenness(tube: Tube, x: Floats, force: Floats) -> float:
-    share = shares(tube, x)
-    return float(np.max(np.abs(force - share) / np.maximum(share, 0.1 * tube.total / x.size)))
+def _use(search: Search, x: Floats) -> float:
+    forces = search.forces(x)
+    return np.inf if forces is None else forces.use

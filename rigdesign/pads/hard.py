@@ -69,10 +69,10 @@ class HardPoints:
         """Best choice found and proven lower bound on the band use in a tube."""
         start, end = float(self.x[0]), float(self.x[-1])
         low = max(least_use_path(tube, self.count, start, end)[1] if tube.is_judged[0] else 0.0, 0.0)
-        low = max(low * (1 - 1e-6), least_use_stair(tube, self.count))
+        low = max(low * (1 - 1e-6), least_use_stair(tube, np.stack([self.x, self.x], axis=1), self.count))
         if not np.isfinite(low):
             return None, low
-        sets = LineSets(tube, Places(self.x, np.zeros(self.x.size), self.least, self.largest, self.pitch), self.count)
+        sets = LineSets(tube, Places(self.x, self.least, self.largest, self.pitch), self.count)
         best = known or self._nearest(tube)
         high = best.forces.use if best else np.inf
         step = 1.05

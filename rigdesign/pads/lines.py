@@ -1,4 +1,4 @@
-"""Given places (hard points, or the cells of a grid): which band uses N pads can reach, proven over sets of lines.
+"""Given hard points: which band uses N of them can reach, proven over sets of lines.
 
 Between two neighbouring pads the path P is a line, and a line is a point in a plane: its ordinate and its slope.  The
 tube's edges over a stretch are half planes there, so the lines that keep the tube between pads i and j form a convex
@@ -10,9 +10,6 @@ slope axis by any force between the least and the largest.  So the lines that ca
 and N pads can keep the tube exactly if some line of S_{N−1} reaches a last pad that turns it into zero.  This is
 dynamic programming over polygons.  The union is replaced by its convex hull, which can only let more lines in: "not
 reachable" is a proof, "reachable" is confirmed by a linear programme over the places found.
-
-A cell instead of a point, [x, x + h], lets the pad stand anywhere inside: the turned line then moves by (−F ξ, F),
-0 ≤ ξ ≤ h, and the tube inside the cell is not asked for.  That proves bounds for free places.
 
 Coordinates: η = (line at the place − wanted path) / `rise`, σ = (slope − wanted slope) / `turn`, so that polygons are
 round.  The tube is widened by SLACK, far below any tolerance that is reported, against round-off.
@@ -37,21 +34,12 @@ SLACK = 1e-8
 
 @dataclass(frozen=True)
 class Places:
-    """Where pads may stand: `x` (n,) [m] sorted, `depth` (n,) [m] of each cell (zeros for points).
-
-    `least`, `largest` are the forces of a pad [N], `pitch` the least distance of two pads [m].
-    """
+    """Where pads may stand: `x` (n,) [m] sorted; `least`, `largest` force of a pad [N], least `pitch` of two [m]."""
 
     x: Floats
-    depth: Floats
     least: float
     largest: float
     pitch: float
-
-    @property
-    def are_cells(self) -> bool:
-        """Whether a pad may stand anywhere in a cell."""
-        return bool(np.any(self.depth > 0))
 
 
 @dataclass(frozen=True)
@@ -133,26 +121,20 @@ class LineSets:
 
     def _arcs(self, use: float) -> _Arcs:
         """Pairs of places that neighbouring pads can take, and the lines that keep the tube between them."""
-        x, depth, cells = self.places.x, self.places.depth, self.places.are_cells
-        huge = 64.0 * self.n * self.n
+        x, huge = self.places.x, 64.0 * self.n * self.n
         everything = np.array([[-huge, -huge], [huge, -huge], [huge, huge], [-huge, huge]])
         start = np.arange(self.n - 1)
-        stack = np.repeat(everything[None], start.size, axis=0)
-        parts = []
-        if cells:
-            every = np.arange(self.n)
-            parts.append(_Arcs(every, every, np.repeat(everything[None], self.n, axis=0)))
+        stack, parts = np.repeat(everything[None], start.size, axis=0), []
         for offset in range(1, self.n):
-            if not cells or offset > 1:
-                inside = start + offset < self.n
-                start, stack = start[inside], stack[inside]
-                stack, left = cut_all(stack, self._planes(use, start, start + offset - 1))
-                start = start[left]
+            inside = start + offset < self.n
+            start, stack = start[inside], stack[inside]
+            stack, left = cut_all(stack, self._planes(use, start, start + offset - 1))
+            start = start[left]
+            parts.append(_Arcs(start, start + offset, stack))
             if not start.size:
                 break
-            parts.append(_Arcs(start, start + offset, stack))
         start, end = np.concatenate([p.start for p in parts]), np.concatenate([p.end for p in parts])
-        far = x[end] + depth[end] - x[start] >= self.places.pitch * (1 - 1e-12)
+        far = x[end] - x[start] >= self.places.pitch * (1 - 1e-12)
         return _Arcs(start[far], end[far], joined([p.stack for p in parts])[far])
 
     def _moved(self, stack: Floats, start: Indices, end: Indices) -> Floats:
@@ -187,16 +169,16 @@ class LineSets:
 
     def _last(self, use: float) -> _Sets:
         """Places that the last pad can take while zero keeps the tube beyond it, and the lines that it can end."""
-        tube, x, depth = self.tube, self.places.x, self.places.depth
+        tube, x = self.tube, self.places.x
         kept = self._kept(np.zeros(tube.x.size), 0.0, use)
         foot = -np.inf if kept.all() else tube.x[tube.x.size - 1 - np.argmin(kept[::-1])]
-        at = np.flatnonzero(x + depth >= foot)
-        corner = []
-        for force, inside in ((self.places.least, 0), (self.places.least, 1), (self.largest, 1), (self.largest, 0)):
-            # a pad at distance ξ inside its cell ends a line that stands F ξ above zero at the cell's left
-            eta = (inside * force * depth[at] - self.wanted[at]) / self.rise
-            corner.append(np.stack([eta, (-force - self.wanted_slope[at]) / self.turn], axis=-1))
-        return _Sets(at, np.stack(corner, axis=1))
+        at = np.flatnonzero(x >= foot)
+        eta = -self.wanted[at] / self.rise
+        ends = [
+            np.stack([eta, (-f - self.wanted_slope[at]) / self.turn], axis=-1)
+            for f in (self.places.least, self.largest)
+        ]
+        return _Sets(at, np.stack(ends, axis=1))
 
     # -- dynamic programming over the number of pads ----------------------------------------------------------
 
@@ -222,16 +204,10 @@ class LineSets:
         return None
 
     def _turned(self, came: _Arcs) -> _Sets:
-        """Lines that leave each place after a pad there turned what came by any allowed force, anywhere in its cell."""
-        depth = self.places.depth[came.end][:, None]
-        copies = []
-        for force in (self.places.least, self.largest):
-            for inside in (0.0, 1.0) if self.places.are_cells else (0.0,):
-                fall = -force * inside * depth / self.rise + np.zeros(came.stack.shape[:2])
-                copies.append(came.stack + np.stack([fall, np.full(fall.shape, force / self.turn)], axis=-1))
-        points = np.concatenate(copies, axis=1)
-        owner = np.repeat(came.end, points.shape[1])
-        stack, at = hulls(points.reshape(-1, 2), owner)
+        """Lines that leave each place after a pad there turned what came by any allowed force."""
+        turns = [np.array([0.0, force / self.turn]) for force in (self.places.least, self.largest)]
+        points = np.concatenate([came.stack + turn for turn in turns], axis=1)
+        stack, at = hulls(points.reshape(-1, 2), np.repeat(came.end, points.shape[1]))
         return _Sets(at, stack)
 
     def _step(self, came: _Arcs, arcs: _Arcs) -> _Arcs:

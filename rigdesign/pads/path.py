@@ -21,6 +21,7 @@ from dataclasses import dataclass
 from itertools import pairwise
 
 import numpy as np
+import shapely
 
 from rigdesign.pads.tube import Tube
 from rigdesign.target.curve import Floats
@@ -153,15 +154,11 @@ def lower_hull(x: Floats, y: Floats) -> tuple[Floats, Floats]:
     """Lower convex hull of points (m,) with distinct, sorted x, as its vertices."""
     if np.all(np.diff(np.diff(y) / np.diff(x)) >= 0):
         return x, y
-    kept: list[int] = []
-    for i in range(x.size):
-        while len(kept) > 1:
-            a, b = kept[-2], kept[-1]
-            if (y[b] - y[a]) * (x[i] - x[a]) < (y[i] - y[a]) * (x[b] - x[a]):
-                break
-            kept.pop()
-        kept.append(i)
-    return x[kept], y[kept]
+    ring = shapely.get_coordinates(shapely.convex_hull(shapely.MultiPoint(np.stack([x, y], axis=1))))
+    chord = y[0] + (y[-1] - y[0]) * (ring[:, 0] - x[0]) / (x[-1] - x[0])
+    lower = np.unique(ring[(ring[:, 1] < chord) | (ring[:, 0] == x[0]) | (ring[:, 0] == x[-1])], axis=0)
+    first = np.append(True, np.diff(lower[:, 0]) > 0)
+    return lower[first, 0], lower[first, 1]
 
 
 def _hull_through(x: Floats, y: Floats, at_x: float, at_y: float) -> tuple[Floats, Floats]:

@@ -7,6 +7,7 @@ import numpy as np
 from rigdesign.brief.model import Brief
 from rigdesign.findings import Finding, Refusal, numbered
 from rigdesign.pads.fixed import choose_fixed
+from rigdesign.pads.forces import evenness, shares
 from rigdesign.pads.free import FreePlaces
 from rigdesign.pads.hard import HardPoints, usable_points
 from rigdesign.pads.limits import allowed_stretches, force_limits, least_pitch, most_that_fit
@@ -122,7 +123,7 @@ def _fewest_possible(target: Target, jack_x: float, most: int) -> int:
     if tube.is_judged[0]:
         counts.append(fewest_pads(tube, float(stretches[0, 0]), float(stretches[-1, 1]), most) or most)
     if tube.is_judged[1]:
-        counts.append(fewest_steps(tube, 1.0, most) or most)
+        counts.append(fewest_steps(tube, 1.0, stretches, most) or most)
     _, largest = force_limits(brief)
     if np.isfinite(largest):
         counts.append(int(np.ceil(abs(target.net.total) / largest * (1 - 1e-9))))
@@ -132,8 +133,6 @@ def _fewest_possible(target: Target, jack_x: float, most: int) -> int:
 def _plan(target: Target, jack_x: float, outcome: Outcome) -> PadPlan:
     """The plan with signs put back, judged on a fine tube, with remarks."""
     fine = build_tube(target, jack_x, outcome.x.size, COARSE, extra=outcome.x)
-    share = -np.diff(np.concatenate([[fine.total], _beyond_middles(fine, outcome), [0.0]]))
-    deviation = np.abs(outcome.force - share) / np.maximum(share, 0.1 * fine.total / outcome.x.size)
     use = float(fine.use(outcome.x, outcome.force))
     proof = Proof(
         band_use=use,
@@ -141,24 +140,19 @@ def _plan(target: Target, jack_x: float, outcome: Outcome) -> PadPlan:
         moment_error_least=outcome.moment_least,
         method=outcome.method,
         words=outcome.words,
-        evenness=float(deviation.max()),
+        evenness=evenness(fine, outcome.x, outcome.force),
         evenness_before=outcome.evenness_before,
     )
     return PadPlan(
         target=target,
         x=outcome.x,
         force=fine.sign * outcome.force,
-        share=fine.sign * share,
+        share=fine.sign * shares(fine, outcome.x),
         jack_x=jack_x,
         may_move=target.brief.pads.places == "free",
         proof=proof,
         findings=numbered(_remarks(fine, outcome, proof)),
     )
-
-
-def _beyond_middles(tube: Tube, outcome: Outcome) -> np.ndarray:
-    middle = (outcome.x[1:] + outcome.x[:-1]) / 2
-    return np.interp(middle, tube.x, tube.shear)
 
 
 def _remarks(tube: Tube, outcome: Outcome, proof: Proof) -> list[Finding]:
