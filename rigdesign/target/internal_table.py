@@ -28,7 +28,6 @@ from rigdesign.target.sums import Combined, Points
 class Steps:
     """The steps between rows at different stations, all (n,): `start`, `end` [m], the shear just outboard of `start`
     and just inboard of `end` [N], the change of M [N·m] and `allowed`, how much of it rounding explains [N·m].
-    `follows` tells whether a step begins where the one before it ended without a jump between.
     """
 
     start: Floats
@@ -37,7 +36,6 @@ class Steps:
     shear_out: Floats
     drop: Floats
     allowed: Floats
-    follows: np.ndarray
 
     @property
     def width(self) -> Floats:
@@ -77,7 +75,6 @@ def steps_of(load: InternalLoad) -> Steps:
         shear_out=load.shear[rows + 1],
         drop=load.moment[rows] - load.moment[rows + 1],
         allowed=allowed,
-        follows=np.append(False, np.diff(rows) == 1),
     )
 
 

@@ -85,6 +85,26 @@ def test_peak_where_the_shear_passes_zero():
     assert target.moment_peak_x == pytest.approx(3 / np.sqrt(3), rel=1e-8)
 
 
+def test_peak_of_the_shear_where_the_load_passes_zero_twice():
+    """3 kN of sine less 2 kN of uniform load: w is negative at both ends and positive between."""
+    target = build_target(make_brief(loads=(shape_load("sine", 3000.0), shape_load("uniform", -2000.0))))
+    xi = np.arcsin(4 / (3 * np.pi)) / np.pi
+    assert target.shear_peak == pytest.approx(1500 * (1 + np.cos(np.pi * xi)) - 2000 * (1 - xi), rel=1e-13)
+    assert target.shear_peak_x == pytest.approx(LEFT + 3.2 * xi, rel=1e-8)
+
+
+def test_a_point_load_at_the_root_counts():
+    target = build_target(make_brief(loads=(shape_load("uniform", 1000.0), point_loads(LEFT, 300.0))))
+    assert (target.shear_peak, target.shear_peak_x) == (pytest.approx(1300.0), LEFT)
+
+
+@pytest.mark.parametrize("overhang", [0.3, 0.7, 1.1])
+def test_of_equal_peaks_the_most_inboard_is_named(overhang):
+    specimen = two_supports(0.1, 0.1 + overhang, 7.3 - overhang, 7.3)
+    target = build_target(make_brief(specimen=specimen, loads=(shape_load("uniform", -777.7, start_x=0.1, end_x=7.3),)))
+    assert target.shear_peak_x == pytest.approx(0.1 + overhang)
+
+
 def test_moment_is_positive_for_a_positive_load_and_negative_between_supports():
     load = shape_load("uniform", 1000.0)
     middle = np.array([1.8])
@@ -176,6 +196,13 @@ def test_load_split_by_its_sign():
     assert parts.force == pytest.approx([(1000 + w) / 2 * 0.8, -30.0, w * 1.2 / 2, -600 * 1.2 / 2], rel=1e-12)
     assert parts.gross == pytest.approx(np.abs(parts.force).sum())
     assert parts.of_sign(-1.0).start == pytest.approx([1.0, 2.2])
+
+
+def test_a_load_of_one_sign_is_one_part():
+    target = build_target(make_brief(loads=(table_load([LEFT, 1.0, 2.0, RIGHT], [1.0, 900.0, 40.0, 70.0]),)))
+    parts = signed_parts(target.total, LEFT, RIGHT)
+    assert (parts.start.tolist(), parts.end.tolist()) == ([LEFT], [RIGHT])
+    assert parts.force[0] == pytest.approx(target.resultant)
 
 
 def test_same_brief_same_target():

@@ -109,9 +109,9 @@ def test_relative_accuracy_near_the_tip(form, distance):
         first = mpmath.quad(shape, nodes)
         second = mpmath.quad(lambda u: shape(u) * (s - u), nodes)
     at = np.array([distance])
-    assert form.value(at)[0] == pytest.approx(float(shape(s)), rel=1e-13)
-    assert form.first(at)[0] == pytest.approx(float(first), rel=1e-13)
-    assert form.second(at)[0] == pytest.approx(float(second), rel=1e-13)
+    assert form.value(at)[0] == pytest.approx(float(shape(s)), rel=1e-13, abs=0)
+    assert form.first(at)[0] == pytest.approx(float(first), rel=1e-13, abs=0)
+    assert form.second(at)[0] == pytest.approx(float(second), rel=1e-13, abs=0)
 
 
 def test_series_and_closed_form_meet():
@@ -128,8 +128,8 @@ def test_table_near_its_tip():
     curve = Polynomials.from_table(np.array([0.0, 5.0, 6.0]), np.array([1e6, 1e6, 0.0]))
     t = 2.0**-10  # 6 − t and its difference from 6 are exact
     at = np.array([6.0 - t])
-    assert curve.force_beyond(at, "inboard")[0] == pytest.approx(1e6 * t**2 / 2, rel=1e-15)
-    assert curve.moment_beyond(at)[0] == pytest.approx(1e6 * t**3 / 6, rel=1e-15)
+    assert curve.force_beyond(at, "inboard")[0] == pytest.approx(1e6 * t**2 / 2, rel=1e-15, abs=0)
+    assert curve.moment_beyond(at)[0] == pytest.approx(1e6 * t**3 / 6, rel=1e-15, abs=0)
 
 
 def test_sides_of_a_jump_in_a_table():
@@ -210,6 +210,12 @@ def test_loads_that_make_no_curve(load, words):
     with pytest.raises(BriefError, match=words) as caught:
         load_curve(load, make_specimen())
     assert caught.value.where == load.where
+
+
+def test_a_sine_is_zero_at_both_ends():
+    curve = load_curve(shape_load("sine", 500.0, start_x=A, end_x=B), make_specimen())
+    assert curve.running(np.array([A]), "outboard")[0] == 0.0
+    assert curve.running(np.array([B]), "inboard")[0] == 0.0
 
 
 def test_closed_form_scales_to_its_total():
