@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import replace
+from itertools import pairwise
 from typing import Any
 
 import numpy as np
@@ -59,7 +60,7 @@ def make_tree(x: ArrayLike, force: ArrayLike, group: Group | None = None, jack: 
 def make_plan(target: Target, x: ArrayLike, force: ArrayLike) -> PadPlan:
     """A plan that wants these forces; its proof is made up."""
     x, force = np.asarray(x, dtype=float), np.asarray(force, dtype=float)
-    proof = Proof(0.61, 0.52, 0.0031, "a made-up proof", "no search", 0.12, 0.34)
+    proof = Proof(0.61, 0.52, 0.0031, "a made-up proof", "no search", 0.12, 0.34, 0.6)
     return PadPlan(target, x, force, 1.01 * force, float(x @ force / force.sum()), True, proof, ())
 
 
@@ -95,7 +96,7 @@ def lumped(target: Target, edges: Sequence[float]) -> tuple[np.ndarray, np.ndarr
     Written apart from the package's own hand method; good to about 1e-7 for smooth loads.
     """
     places, forces = [], []
-    for low, high in zip(edges[:-1], edges[1:], strict=True):
+    for low, high in pairwise(edges):
         grid = np.linspace(low, high, 20001)
         middle, width = 0.5 * (grid[1:] + grid[:-1]), np.diff(grid)
         load = target.net.running(middle, "outboard") * width

@@ -5,8 +5,8 @@ every number that anybody is shown: pad forces and lever loads from statics, V a
 under- and over-test by region with band use and verdict, residuals, single figures and findings.
 
 The builder chooses pivots from wanted pad forces.  The check never looks at those.  It starts from hole positions and
-jack forces, cuts every piece free, and closes ΣF and ΣM at every pivot (`solve_statics`).  The curves follow from the pad
-forces, from the supports' answer to them, and from gravity (`curves`).
+jack forces, cuts every piece free, and closes ΣF and ΣM at every pivot (`solve_statics`).  The curves follow from the
+pad forces, from the supports' answer to them, and from gravity (`curves`).
 
     check(rig)                   the rig as it is
     check_with_holes(rig, file)  with holes as built, from a table in the layout of holes.csv

@@ -134,6 +134,7 @@ def _rescaled(plan: PadPlan, target: Target, scale: float) -> PadPlan:
         words="no search: the pads are those of a rig that exists",
         evenness=float(uneven.max()),
         evenness_before=float(uneven.max()),
+        band_use_found=use,
     )
     return replace(plan, target=target, force=force, share=share, proof=proof, findings=())
 

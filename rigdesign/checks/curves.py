@@ -4,8 +4,8 @@
 
 Stations are both sides of every jump (pads, point loads, supports, ends of regions), a few in between, and what is
 then looked for: places where the shear error passes through zero (there the moment error peaks), where the target
-passes through zero or through 5 % of its peak (there the band changes sides or jumps), and where an error over its
-band, or over the local target, has a peak between stations.
+passes through zero (there under and over change places), and where an error over its band, or over the local target,
+has a peak between stations.
 """
 
 from __future__ import annotations
@@ -193,25 +193,23 @@ def _inserted(x: Floats, outboard: NDArray[np.bool_], more: Floats) -> tuple[Flo
 
 
 def _with_crossings(sample: Sampler, x: Floats, outboard: NDArray[np.bool_]) -> tuple[Floats, NDArray[np.bool_]]:
-    """Add the zeros of the shear error, and both sides of where a target passes zero or 5 % of its peak."""
-    more = [_crossings(lambda s, o: sample.error("shear", s, o), 0.0, x, outboard)[0]]
+    """Add the zeros of the shear error, and both sides of where a target passes zero."""
+    more = [_crossings(lambda s, o: sample.error("shear", s, o), x, outboard)[0]]
     for quantity in QUANTITIES:
         value: Curve = lambda s, o, q=quantity: sample.target_value(q, s, o)  # type: ignore[misc]  # noqa: E731
-        small = SMALL_TARGET * sample.bands[quantity].peak
-        for level in (-small, 0.0, small):
-            more.extend(_crossings(value, level, x, outboard))
+        more.extend(_crossings(value, x, outboard))
     return _inserted(x, outboard, np.concatenate(more))
 
 
-def _crossings(function: Curve, level: float, x: Floats, outboard: NDArray[np.bool_]) -> tuple[Floats, Floats]:
-    """Where the function passes the level inside a stretch: the last stations found before and after it, (k,) each."""
-    value = function(x, outboard) - level
+def _crossings(function: Curve, x: Floats, outboard: NDArray[np.bool_]) -> tuple[Floats, Floats]:
+    """Where the function passes zero inside a stretch: the last stations found before and after it, (k,) each."""
+    value = function(x, outboard)
     start = np.flatnonzero((x[:-1] < x[1:]) & (value[:-1] * value[1:] < 0))
     low, high, sign = x[start], x[start + 1], np.sign(value[start])
     inside = np.ones(start.size, bool)
     for _ in range(BISECTIONS if start.size else 0):
         middle = 0.5 * (low + high)
-        before = sign * (function(middle, inside) - level) > 0
+        before = sign * function(middle, inside) > 0
         low, high = np.where(before, middle, low), np.where(before, high, middle)
     return low, high
 

@@ -9,6 +9,7 @@ from collections.abc import Iterator
 
 import numpy as np
 
+from rigdesign.brief.model import LeverRules
 from rigdesign.checks.measures import arms, length, ratio
 from rigdesign.checks.model import Check
 from rigdesign.checks.text import also, percent
@@ -134,8 +135,17 @@ def _gaps(check: Check, x: Floats) -> Iterator[Finding]:
 def _levers(check: Check) -> Iterator[Finding]:
     rules = check.rig.plan.target.brief.levers
     pieces = [piece for tree in check.rig.trees for piece in tree.pieces]
-    levers = [piece for piece in pieces if piece.kind == "lever"]
-    yield from _ratios(levers, rules.ratio_limit)
+    yield from _ratios([piece for piece in pieces if piece.kind == "lever"], rules.ratio_limit)
+    yield from _sizes(pieces, rules)
+    tiers = max((piece.tier for piece in pieces), default=0)
+    if rules.tiers is not None and tiers > rules.tiers:
+        deepest = next(piece for piece in pieces if piece.tier == tiers)
+        yield _failure(
+            deepest.name, "the tree has too many tiers", str(tiers), str(rules.tiers), "group the pads otherwise"
+        )
+
+
+def _sizes(pieces: list[Piece], rules: LeverRules) -> Iterator[Finding]:
     short = {piece: _shortest(piece) for piece in pieces if _shortest(piece) < rules.shortest_arm - LENGTH_SLACK}
     if short:
         worst = min(short, key=lambda piece: short[piece])
@@ -155,12 +165,6 @@ def _levers(check: Check) -> Iterator[Finding]:
             show(long[worst], "length"),
             show(rules.longest, "length"),
             "more jacks, or a longer lever allowed",
-        )
-    tiers = max((piece.tier for piece in pieces), default=0)
-    if rules.tiers is not None and tiers > rules.tiers:
-        deepest = next(piece for piece in pieces if piece.tier == tiers)
-        yield _failure(
-            deepest.name, "the tree has too many tiers", str(tiers), str(rules.tiers), "group the pads otherwise"
         )
 
 
@@ -222,8 +226,8 @@ def _aim(check: Check) -> Iterator[Finding]:
         "closest": f"least band use first, then forces as even as {percent(rules.ease)} more band use allows",
         "even": "forces as close to each pad's share of the curve as the bands allow",
     }[rules.aim]
-    if rules.places == "free" and rules.aim == "closest":
-        strove = "least band use; the places of free pads leave no choice of forces beyond that"
+    if rules.places == "free" and rules.aim == "closest" and plan.proof.band_use_found >= plan.proof.band_use:
+        strove = "least band use; free places that follow one curve leave no choice of forces beyond that"
     evenness = f"up to {percent(plan.proof.evenness)} of its share of the curve"
     yield Finding(
         "practice", "note", "pads", f'the aim "{rules.aim}" was {strove}', f"a pad's force is off by {evenness}"

@@ -62,6 +62,12 @@ def test_a_hole_as_built_moves_load_and_is_said():
     assert (found.rig.pad_x == X).all()
 
 
+def test_v_counts_as_well():
+    found = built("lever,hole,u_m,v_m\n2,pivot,0,0.004\n")
+    assert found.rig.trees[0].pieces[1].pivot.v == 0.004
+    assert any("off the line of the end pins" in f.text for f in found.findings)
+
+
 def test_places_in_plan_are_reported_and_do_not_count():
     known = rig()
     a = known.trees[0].pieces[1].ends[0]

@@ -122,6 +122,21 @@ def test_gravity_is_part_of_both():
     assert pads.size == 40
 
 
+def test_local_errors_are_judged_down_to_five_per_cent_of_the_peak():
+    found = check(make_rig(X, FORCE))
+    sample = sampler(found.rig.plan.target, X, FORCE)
+    x = np.linspace(0.2, 3.4, 200_001)
+    outboard = np.ones(x.size, bool)
+    for quantity, error, at in (
+        ("moment", found.moment_error_local, found.moment_error_local_x),
+        ("shear", found.shear_error_local, found.shear_error_local_x),
+    ):
+        dense = sample.local(quantity, x, outboard)
+        # outboard sides alone, 16 µm apart
+        assert error == pytest.approx(dense.max(), rel=1e-3)
+        assert at == pytest.approx(x[np.argmax(dense)], abs=2e-5)
+
+
 def test_area_between_the_shear_curves():
     found = check(make_rig(X, FORCE))
     target = found.rig.plan.target
@@ -252,8 +267,21 @@ def test_thousands_of_point_loads_are_thinned_and_every_peak_stays():
     few = verdicts(target, found.curves)
     assert few == found.regions
     assert peak_error(found.curves, "shear", target.shear_peak)[0] == found.shear_error_peak
-    for pad in X:
-        assert (found.curves.x == pad).sum() == 2
+    for jump in (*X, 0.8, 2.1, 3.0):
+        assert list(found.curves.outboard[found.curves.x == jump]) == [False, True]
+
+
+def test_thinning_keeps_both_signs_where_nothing_is_judged():
+    rng = np.random.default_rng(12)
+    x = np.sort(rng.uniform(0.2, 3.4, 5000))
+    brief = make_brief(loads=(point_loads(x, rng.uniform(0.05, 0.5, x.size)),), acceptance=make_acceptance(None, None))
+    target = build_target(brief)
+    full = curves(target, X, FORCE * target.net.total / FORCE.sum())
+    few = thinned(full, X)
+    assert few.x.size < MOST_ROWS < full.x.size
+    for quantity in ("shear", "moment"):
+        assert few.error(quantity).max() == full.error(quantity).max()
+        assert few.error(quantity).min() == full.error(quantity).min()
 
 
 def test_few_rows_are_left_alone():

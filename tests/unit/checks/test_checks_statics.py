@@ -11,7 +11,9 @@ from hand_rigs import make_rig, make_tree, with_hole
 
 from rigdesign.checks import share_matrix, solve_statics
 from rigdesign.checks.entry import layout
-from rigdesign.checks.statics import along_lever, lever_fractions, link_fractions, off_line
+from rigdesign.checks.geometry import leans
+from rigdesign.checks.measures import steel_estimate, sum_residuals
+from rigdesign.checks.statics import _residuals, along_lever, lever_fractions, link_fractions, node_shares, off_line
 from rigdesign.errors import InputError
 from rigdesign.levers.model import Hole, Jack, Piece, Rig, Tree
 
@@ -178,6 +180,59 @@ def test_residuals_see_a_wrong_solution(monkeypatch):
     solved = module.solve_statics(rig())
     assert solved.force_residual > 1e-3
     assert solved.moment_residual > 1e-3
+
+
+@pytest.mark.parametrize("axis", [0, 1])
+def test_residuals_of_a_plate_are_seen_about_both_axes(axis):
+    tree = layout(plate_rig())
+    load = node_shares(tree, link_fractions(tree))[:, 0] * 3000.0
+    assert np.abs(_residuals(tree, load)[1]).max() < 1e-13
+    # shift load between the plate's points so that ΣF and one of the moments stay closed
+    corners = np.stack([np.ones(3), tree.u[:3], tree.v[:3]])
+    shift = np.linalg.solve(corners, np.eye(3)[1 + axis])
+    off = load.copy()
+    off[tree.lower[:3]] += 30.0 * shift
+    force, moment = _residuals(tree, off)
+    assert force[0] == pytest.approx(0.0, abs=1e-9)
+    size = np.hypot(tree.u[:3], tree.v[:3]).max()
+    assert abs(moment[axis, 0]) == pytest.approx(30.0 / (3000.0 * size))
+    assert abs(moment[1 - axis, 0]) < 1e-13
+
+
+def test_pads_moment_against_the_jack():
+    known = rig()
+    solved = solve_statics(known)
+    assert max(sum_residuals(known, solved)) < 1e-15
+    moved = replace(known, pad_x=known.pad_x + np.array([0, 0, 0.02, 0, 0]))
+    force, moment = sum_residuals(moved, solved)
+    assert force < 1e-15
+    # of the jack's force times the span of 3.2 m
+    assert moment == pytest.approx(1700.0 * 0.02 / (5100.0 * 3.2))
+
+
+def test_links_of_turned_pieces_hang_plumb():
+    known = plate_rig()
+    assert max(lean.size for lean in leans(known)) < 1e-15
+    plate, lever = known.trees[0].pieces
+    # the plate's frame turned by 30° against the plan: same places in plan, other u and v
+    cos, sin = np.cos(np.pi / 6), np.sin(np.pi / 6)
+    holes = tuple(replace(h, u=cos * h.u + sin * h.v, v=-sin * h.u + cos * h.v) for h in plate.holes)
+    turned = replace(known, trees=(replace(known.trees[0], pieces=(replace(plate, holes=holes), lever)),))
+    assert max(lean.size for lean in leans(turned)) < 1e-15
+    assert solve_statics(turned).pad_force == pytest.approx(solve_statics(known).pad_force)
+    off = replace(known, trees=(replace(known.trees[0], jack=Jack(1, 1.23, 0.0, "lever 1")),))
+    worst = max(leans(off), key=lambda lean: lean.size)
+    assert (worst.where, worst.dx) == ("the link from jack 1 to lever 1", pytest.approx(-0.03))
+
+
+def test_steel_of_a_plate():
+    known = plate_rig()
+    solved = solve_statics(known)
+    forces = [solved.pad_force[0], solved.pad_force[1], solved.piece_load["lever 2"]]
+    radii = [np.hypot(0.3, 0.1), np.hypot(0.5, 0.2), np.hypot(0.1, 0.4)]
+    expected = sum((f * r) ** (2 / 3) * r for f, r in zip(forces, radii, strict=True))
+    expected += (forces[2] * 0.2 * 0.3 / 0.5) ** (2 / 3) * 0.5
+    assert steel_estimate(known, solved) == pytest.approx(expected)
 
 
 def test_arms_may_be_arrays():

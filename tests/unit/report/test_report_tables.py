@@ -124,7 +124,7 @@ def test_summary_has_the_keys_and_their_values(found):
     assert result["levers"] == 4
     assert result["moment_error_peak"] == found.moment_error_peak
     assert result["moment_error_least"] == 0.0031
-    assert (result["band_use"], result["band_use_least"]) == (found.band_use, 0.52)
+    assert (result["band_use"], result["band_use_planned"], result["band_use_least"]) == (found.band_use, 0.61, 0.52)
     assert result["shear_error_peak"] == found.shear_error_peak
     assert result["steel_estimate"] == found.steel_estimate
     assert result["verdict"] == "accepted"
