@@ -41,6 +41,7 @@ class InputError(RigdesignError, ValueError):
     """
 
     def __init__(self, what: str, *, where: str = "", value: str = "", limit: str = "", remedy: str = "") -> None:
+        """Keep the parts and compose the message."""
         self.what, self.where, self.value, self.limit, self.remedy = what, where, value, limit, remedy
         super().__init__(self._message())
 

@@ -36,4 +36,4 @@ def choose_fixed(target: Target, jack_x: float) -> Outcome | None:
         plain = moment_alone(tube, target.moment_peak)
         alone = ForceProgramme(plain, x, least, largest, programme.share).least_use()
         moment_least = alone.use if alone is not None else 0.0
-    return Outcome(x, even.force, best.use, moment_least, best.evenness, METHOD, f"{x.size} fixed places")
+    return Outcome(x, even.force, best.use, best.use, moment_least, best.evenness, METHOD, f"{x.size} fixed places")

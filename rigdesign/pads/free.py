@@ -23,6 +23,8 @@ from rigdesign.target.model import Target
 
 # Grid on which starts are fitted into the allowed stretches, points a span.
 START_GRID = 4000
+# Up to so many pads every start is refined.
+MANY_STARTS = 40
 SEARCH_STATIONS, SEARCH_STATIONS_MANY = 40, 16
 PATH_METHOD = "exact optimum: path of fewest links in the tube around the moment, bisected on its width"
 
@@ -47,11 +49,9 @@ class FreePlaces:
         )
         moment_least = self._moment_least(path_least)
         if path is not None and path.x.size == self.count and self._path_is_best(path, least):
-            even = evenness(self.fine, path.x, path.force)
-            method = PATH_METHOD
-            return Outcome(
-                path.x, path.force, least, moment_least, even, method, f"{self.count} pads, no search needed"
-            )
+            use, even = float(self.fine.use(path.x, path.force)), evenness(self.fine, path.x, path.force)
+            words = f"{self.count} pads, no search needed"
+            return Outcome(path.x, path.force, least, use, moment_least, even, PATH_METHOD, words)
         return self._search(path, least, moment_least)
 
     def _moment_least(self, path_least: float) -> float:
@@ -62,11 +62,13 @@ class FreePlaces:
         return least_use_path(plain, self.count, self.start, self.end)[1]
 
     def _path_is_best(self, path: Path, least: float) -> bool:
-        if violations(self.brief, path.x, path.force) > 0:
+        """Whether the path keeps the limits, its forces can be joined by levers, and no band but the moment's binds."""
+        if self.brief.pads.aim != "closest" or violations(self.brief, path.x, path.force) > 0:
             return False
-        if not self.fine.is_judged[1]:
-            return True
-        return float(self.fine.use(path.x, path.force)) <= least * (1 + 1e-6) and self.brief.pads.aim == "closest"
+        step = path.force[1:] / path.force[:-1]
+        if np.any(np.maximum(step, 1 / step) > self.brief.levers.ratio_limit):
+            return False
+        return not self.fine.is_judged[1] or float(self.fine.use(path.x, path.force)) <= least * (1 + 1e-6)
 
     # -- under limits or several bands ---------------------------------------------------------------------------------
 
@@ -82,7 +84,7 @@ class FreePlaces:
         even = self._more_even(tube, found, use)
         stretches = self.limits.stretches.shape[0]
         words = f"places searched step by step over {stretches} allowed stretch{'es' if stretches > 1 else ''}"
-        return Outcome(even.x, even.forces.force, least, moment_least, found.forces.evenness, method, words)
+        return Outcome(even.x, even.forces.force, least, use, moment_least, found.forces.evenness, method, words)
 
     def _starts(self, path: Path | None) -> list[Floats]:
         """Places to start from: the path's, places of equal load, and half-way, fitted into the allowed stretches."""
@@ -105,11 +107,11 @@ class FreePlaces:
         return [fit for fit in fits if fit is not None]
 
     def _best_of(self, search: Search, starts: list[Floats]) -> Arrangement | None:
-        """Refine the most promising start, and the next one, and keep the better."""
+        """Refine the starts, the most promising first (only two of them for many pads), and keep the best."""
         ranked = sorted(starts, key=lambda x: _use(search, x))
         found = []
-        for k, start in enumerate(ranked[:2]):
-            self._report(0.1 + 0.4 * k, "searching places")
+        for k, start in enumerate(ranked if self.count <= MANY_STARTS else ranked[:2]):
+            self._report(0.1 + 0.25 * k, "searching places")
             found.append(search.refine(start))
         kept = [arrangement for arrangement in found if arrangement is not None]
         return min(kept, key=lambda arrangement: arrangement.forces.use) if kept else None

@@ -57,7 +57,9 @@ class HardPoints:
         method = "sets of lines over the hard points (dynamic programming), confirmed by a linear programme"
         words = f"{self.count} of {self.x.size} hard points; {sweeps} sweeps of exchanges for even forces"
         x = self.x[list(even.pads)]
-        return Outcome(x, even.forces.force, least, moment_least, found.forces.evenness, method, words)
+        return Outcome(
+            x, even.forces.force, least, found.forces.use, moment_least, found.forces.evenness, method, words
+        )
 
     def _programme(self, tube: Tube, pads: tuple[int, ...]) -> ForceProgramme:
         x = self.x[list(pads)]

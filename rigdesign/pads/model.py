@@ -17,6 +17,7 @@ class Proof:
     arrangement of this many pads under these rules can go below, `moment_error_least` the same for the largest moment
     error alone, as a fraction of the peak target moment.  `method` says in words how the bounds were proven, `words`
     what the search did (bounded by counted work, or stopped early).
+    `band_use_found` is the least band use found before anything was given up for even forces.
     `evenness` is the largest |force − share of the curve| over that share among the pads; `evenness_before` what it
     was at the least band use.
     """
@@ -28,13 +29,14 @@ class Proof:
     words: str
     evenness: float
     evenness_before: float
+    band_use_found: float
 
     @property
     def gap(self) -> float:
-        """Band use above the proven least, as a fraction of it; 0 when both are zero."""
-        if self.band_use <= self.band_use_least:
+        """Least band use found above the proven least, as a fraction of it; 0 when both are zero."""
+        if self.band_use_found <= self.band_use_least:
             return 0.0
-        return self.band_use / self.band_use_least - 1.0 if self.band_use_least > 0 else float("inf")
+        return self.band_use_found / self.band_use_least - 1.0 if self.band_use_least > 0 else float("inf")
 
 
 @dataclass(frozen=True)

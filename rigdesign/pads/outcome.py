@@ -18,12 +18,14 @@ class Outcome:
     """Pads `x` [m] and `force` [N] (n,), both root to tip and forces positive, and what is proven about them.
 
     `use_least` and `moment_least` are lower bounds that no arrangement of as many pads can go below: the band use, and
-    the largest moment error as a fraction of the peak.  `evenness_before` is that of the forces of least band use.
+    the largest moment error as a fraction of the peak.  `use_found` is the least band use found,
+    before forces were made even.  `evenness_before` is that of the forces of least band use.
     """
 
     x: Floats
     force: Floats
     use_least: float
+    use_found: float
     moment_least: float
     evenness_before: float
     method: str

@@ -15,14 +15,14 @@ from rigdesign.pads.model import PadPlan, Proof
 from rigdesign.pads.outcome import Outcome, Progress
 from rigdesign.pads.path import COARSE, fewest_pads
 from rigdesign.pads.stair import fewest_steps
-from rigdesign.pads.tube import Tube, build_tube
+from rigdesign.pads.tube import build_tube
 from rigdesign.target.model import Target
 from rigdesign.units import show
 
 # "fewest" tries no more pads than this.
 MOST_PADS = 200
-# Forces below this part of the mean are remarked on: the pad is hardly worth its lever.
-IDLE = 0.02
+# A gap between what was found and what is proven is remarked on above this.
+GAP_REMARK = 0.005
 
 
 def plan_pads(target: Target, count: int | None = None, progress: Progress | None = None) -> PadPlan | Refusal:
@@ -136,12 +136,13 @@ def _plan(target: Target, jack_x: float, outcome: Outcome) -> PadPlan:
     use = float(fine.use(outcome.x, outcome.force))
     proof = Proof(
         band_use=use,
-        band_use_least=min(outcome.use_least, use),
-        moment_error_least=outcome.moment_least,
+        band_use_least=float(min(outcome.use_least, use)),
+        moment_error_least=float(outcome.moment_least),
         method=outcome.method,
         words=outcome.words,
         evenness=evenness(fine, outcome.x, outcome.force),
-        evenness_before=outcome.evenness_before,
+        evenness_before=float(outcome.evenness_before),
+        band_use_found=float(max(min(outcome.use_found, use), min(outcome.use_least, use))),
     )
     return PadPlan(
         target=target,
@@ -151,25 +152,12 @@ def _plan(target: Target, jack_x: float, outcome: Outcome) -> PadPlan:
         jack_x=jack_x,
         may_move=target.brief.pads.places == "free",
         proof=proof,
-        findings=numbered(_remarks(fine, outcome, proof)),
+        findings=numbered(_remarks(proof)),
     )
 
 
-def _remarks(tube: Tube, outcome: Outcome, proof: Proof) -> list[Finding]:
+def _remarks(proof: Proof) -> list[Finding]:
     findings = []
-    mean = tube.total / outcome.x.size
-    for k in np.flatnonzero(outcome.force < IDLE * mean):
-        findings.append(
-            Finding(
-                "pads",
-                "warning",
-                f"pad {k + 1}",
-                "carries next to nothing",
-                value=show(float(outcome.force[k]), "force"),
-                limit=f"{IDLE:.0%} of the mean pad force, {show(IDLE * mean, 'force')}",
-                remedy="use fewer pads, set least_force, or allow more ease",
-            )
-        )
     if proof.gap > GAP_REMARK:
         findings.append(
             Finding(
@@ -177,16 +165,12 @@ def _remarks(tube: Tube, outcome: Outcome, proof: Proof) -> list[Finding]:
                 "note",
                 "pads",
                 f"the band use found is {proof.gap:.1%} above the proven least",
-                value=f"{proof.band_use:.4g}",
+                value=f"{proof.band_use_found:.4g}",
                 limit=f"{proof.band_use_least:.4g}",
                 remedy="a better arrangement may exist, by at most this much",
             )
         )
     return findings
-
-
-# A gap between what was found and what is proven is remarked on above this.
-GAP_REMARK = 0.005
 
 
 # -- matters of limits -------------------------------------------------------------------------------------------------

@@ -38,7 +38,7 @@ from rigdesign.report.tables import finding_object, json_bytes
 from rigdesign.words import SCHEMA_NUMBER
 
 INFINITE = "infinite"
-_PROOF_NUMBERS = ("band_use", "band_use_least", "moment_error_least", "evenness", "evenness_before")
+_PROOF_NUMBERS = ("band_use", "band_use_least", "moment_error_least", "evenness", "evenness_before", "band_use_found")
 
 
 def rig_to_json(check: Check) -> str:

@@ -100,11 +100,9 @@ def _local_line(check: Check) -> str:
 
 def _proven_line(check: Check) -> str:
     proof = check.rig.plan.proof
-    gap = (
-        f"the plan before drilling is {percent(proof.gap)} above that"
-        if proof.gap > 5e-4
-        else "the plan before drilling reaches that"
-    )
+    gap = f"the best found is {percent(proof.gap)} above that" if proof.gap > 5e-4 else "the best found reaches that"
+    if proof.band_use > proof.band_use_found * (1 + 5e-4):
+        gap += f", {percent(proof.band_use / proof.band_use_found - 1)} more is given up for even forces"
     drilled = check.band_use / proof.band_use if proof.band_use > 0 else 1.0
     least = f"no arrangement of so many pads under these rules can go below a band use of {proof.band_use_least:.3f}"
     return (

@@ -81,7 +81,7 @@ def big_rig(n_pads: int):
     edges = np.linspace(0.2, 3.4, n_pads + 1)
     x = (edges[1:] + edges[:-1]) / 2
     force = np.full(n_pads, 5400.0 / n_pads)
-    proof = Proof(1.0, 0.0, 0.0, "nothing", "nothing", 0.0, 0.0)
+    proof = Proof(1.0, 0.0, 0.0, "nothing", "nothing", 0.0, 0.0, 1.0)
     plan = PadPlan(target, x, force, force, 1.8, True, proof, ())
     pieces, level, tier = [], [(0, n_pads, "jack 1")], 1
     while level:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import fields
 from typing import Any
 
 import numpy as np
@@ -28,12 +29,18 @@ def brief_of(count: int, shape: str = "elliptical", shear: float | None = None, 
     )
 
 
+def proof(use: float, least: float) -> Proof:
+    """A proof of which only the band use and its proven least matter here."""
+    values: dict[str, Any] = {field.name: "" if field.type == "str" else 0.0 for field in fields(Proof)}
+    return Proof(**{**values, "band_use": use, "band_use_least": least})
+
+
 def plan_by_hand(brief: Brief, x: ArrayLike, force: ArrayLike, may_move: bool = True) -> PadPlan:
     """A plan with given pads; the jack stands at their force centroid."""
     x, force = np.array(x, dtype=float), np.array(force, dtype=float)
     target = build_target(brief)
     jack_x = float((x * force).sum() / force.sum())
-    return PadPlan(target, x, force, force, jack_x, may_move, Proof(1.0, 0.0, 0.0, "", "", 0.0, 0.0), ())
+    return PadPlan(target, x, force, force, jack_x, may_move, Proof(1.0, 0.0, 0.0, "", "", 0.0, 0.0, 0.0), ())
 
 
 def uniform_plan(brief: Brief, count: int) -> PadPlan:
@@ -56,7 +63,7 @@ def uniform_plan(brief: Brief, count: int) -> PadPlan:
         plan.share,
         LEFT + SPAN / 2,
         True,
-        Proof(least, least, 0.0, "", "", 0.0, 0.0),
+        Proof(least, least, 0.0, "", "", 0.0, 0.0, 0.0),
         (),
     )
 
@@ -75,7 +82,7 @@ def best_plan(brief: Brief, count: int, may_move: bool = True) -> PadPlan:
         sign * path.force,
         tube.jack_x,
         may_move,
-        Proof(path.use, least, 0.0, "", "", 0.0, 0.0),
+        Proof(path.use, least, 0.0, "", "", 0.0, 0.0, 0.0),
         (),
     )
 
