@@ -98,12 +98,12 @@ def _other_sign(brief: Brief, gravity: Curve) -> Iterator[Finding]:
     text = (f"{brought} changes sign along the span: {show(amount, 'force')} of it acts {along(-sign)}, "
             f"{_places(other)}, against {show(parts.of_sign(sign).gross, 'force')} {along(sign)}; "
             "the pads of one tree all act one way and cannot follow it there")  # fmt: skip
-    value = f"{show(amount / parts.gross, 'fraction')} of the load taken without its signs"
+    value = f"{show(amount / parts.gross, 'fraction')} of the load, both signs added up"
     remedy = (
         "if it is not meant, check the signs and the tables there; if it is, give each sign a rig and a jack of its "
         "own, hang the opposite loads as dead weights, or accept the error there"
     )
-    yield _remark(severity, "target", text, value, "a load of one sign", remedy)
+    yield _remark(severity, "target", text, value, "one sign all along", remedy)
 
 
 def _places(parts: Parts) -> str:

@@ -56,11 +56,10 @@ def _end(target: Target) -> str:
 def _resultant(target: Target, system: System) -> str:
     total, left = target.resultant, target.brief.specimen.left
     away = target.centroid - left
-    text = f"The target is {show(abs(total), 'force', system)} {direction(total)}. It acts at "
-    place = show(target.centroid, "length", system)
-    if away < 0:
-        return f"{text}{place}, {show(-away, 'length', system)} inboard of {_end(target)}."
-    return f"{text}{place}, {show(away, 'length', system)} from {_end(target)}."
+    place = "" if left == 0 else f"at {show(target.centroid, 'length', system)}, "
+    side = "inboard of" if away < 0 else "from"
+    where = f"{place}{show(abs(away), 'length', system)} {side} {_end(target)}"
+    return f"The target is {show(abs(total), 'force', system)} {direction(total)}. It acts {where}."
 
 
 def _moment(target: Target, system: System) -> str:

@@ -86,6 +86,12 @@ def test_every_load_in_one_line():
     ]
 
 
+def test_stations_from_the_root_itself_are_said_once():
+    ground = make_specimen(left=0.0, right=3.0)
+    lines = said(specimen=ground, loads=(shape_load("uniform", 60.0, start_x=0.0, end_x=3.0),))
+    assert lines[0].endswith("It acts 1.500 m from the root.")
+
+
 def test_us_customary():
     lines = said("us")
     assert lines[0].startswith("The target is 1214 lbf along +z")
