@@ -12,7 +12,7 @@ WITH_WEIGHT = SMALL.replace('tip     = "1.7 m"', 'tip     = "1.7 m"\nweight = "w
 HARD_POINTS = changed(SMALL, places='places = "hard points"\nstations = "0.3, 0.8, 1.3 m"')
 
 NO_RIG = {
-    "pads that cannot fit": (SMALL.replace(PADS, '[pads]\nlength = "400 mm"\n'), ["400 mm", "5 pads"]),
+    "pads that cannot fit": (SMALL.replace(PADS, '[pads]\nlength = "400 mm"\n'), ["0.400 m", "5 pads", "4 pads fit"]),
     "more pads than hard points": (HARD_POINTS, ["5", "3", "hard points"]),
     "pads too weak for the total": (SMALL.replace(PADS, '[pads]\nlargest_force = "300 N"\n'), ["300 N", "1.90 kN"]),
     "a net target the other way": (WITH_WEIGHT, ["gravity"]),

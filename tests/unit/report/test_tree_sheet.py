@@ -20,7 +20,7 @@ CLEAR = 0.15
 
 
 def checked(n_pads: int, **changes):
-    answer = design(make_brief(pads=make_pads(count=n_pads), **changes))
+    answer = design(make_brief(pads=make_pads(count=n_pads, length=0.01, gap=0.005), **changes))
     assert not isinstance(answer, Refusal)
     return answer
 
