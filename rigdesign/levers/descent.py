@@ -1,4 +1,7 @@
-"""Steepest descent over whole numbers: the best of many small moves is made until none helps or the work is done."""
+"""Steepest descent over whole numbers: the best of many small moves is made until none helps or the work is done.
+
+Where no move helps, the most promising ones are tried two at a time before the descent counts as settled.
+"""
 
 from __future__ import annotations
 
@@ -12,6 +15,17 @@ from rigdesign.target.curve import Floats
 
 GAIN = 1e-9
 """A move must gain this fraction, so that round-off does not keep a descent alive."""
+
+
+COMBINED = 40
+"""So many of the moves that lost least are tried two at a time."""
+
+
+KICKS, KICK = 40, 5
+"""A descent is repeated at most so many times, each time from so many moves away."""
+
+STRIDES = (7919, 104729)
+"""Primes that pick the moves which lead away: large and unlike, so that no two turns lead the same way."""
 
 
 @dataclass(frozen=True)
@@ -31,15 +45,45 @@ def descend(steps: Ints, moves: Ints, value: Callable[[Ints], Floats], most: int
     """
     best = float(value(steps[None])[0])
     judged = 1
+    tried, combined = moves, False
     while judged < most and len(moves):
-        rows = steps + moves
+        rows = steps + tried
         values = value(rows)
         judged += len(rows)
         row = int(np.argmin(values))
-        if not values[row] < best * (1.0 - GAIN):
+        if values[row] < best * (1.0 - GAIN):
+            steps, best = rows[row], float(values[row])
+            tried, combined = moves, False
+        elif combined:
             return Descended(steps, best, judged, True)
-        steps, best = rows[row], float(values[row])
+        else:
+            tried, combined = _two_at_a_time(moves, values), True
     return Descended(steps, best, judged, not len(moves))
+
+
+def descend_again(found: Descended, moves: Ints, value: Callable[[Ints], Floats], most: int) -> Descended:
+    """Descend again and again from places a few moves away from the best one so far, and return the best of all.
+
+    Up to `KICKS` times, as long as fewer than `most` rows are judged.  Which moves lead away follows from a fixed
+    rule, so that the outcome is always the same.
+    """
+    best, judged = found, found.judged
+    for turn in range(KICKS if len(moves) else 0):
+        if judged >= found.judged + most:
+            break
+        away = moves[(turn * STRIDES[0] + np.arange(KICK) * STRIDES[1]) % len(moves)].sum(axis=0)
+        again = descend(best.steps + away, moves, value, found.judged + most - judged)
+        judged += again.judged
+        if again.value < best.value * (1.0 - GAIN):
+            best = again
+    return Descended(best.steps, best.value, judged, best.is_settled)
+
+
+def _two_at_a_time(moves: Ints, values: Floats) -> Ints:
+    """Sums of two of the moves that lost least."""
+    likely = moves[np.argsort(values, kind="stable")[:COMBINED]]
+    first, second = np.triu_indices(len(likely))
+    return likely[first] + likely[second]
 
 
 def moves_of(size: int, pairs: Ints, far: int = 2) -> Ints:

@@ -14,7 +14,7 @@ import numpy as np
 
 from rigdesign.brief.model import LeverRules
 from rigdesign.findings import Refusal
-from rigdesign.levers.descent import Descended, all_pairs, descend, moves_of, near_pairs
+from rigdesign.levers.descent import Descended, all_pairs, descend, descend_again, moves_of, near_pairs
 from rigdesign.levers.drilled import REACH, Drilled, coarse, judged
 from rigdesign.levers.grouping import allowed, millimetres
 from rigdesign.levers.hanging import hang_fixed
@@ -30,11 +30,14 @@ Value = Callable[[Ints], Floats]
 NEAR_EQUAL = 0.01
 """Band uses within this fraction of the least count as equal: then the jack's distance decides."""
 
-PLACES = (0, -1, 1, -2, 2)
+PLACES = (0, -1, 1)
 """Places of the jack that are tried, in drill steps from the one nearest to where it should stand."""
 
 JUDGED = 4_000_000
 """Rigs times pads that the descent from one place of the jack may judge."""
+
+JUDGED_AGAIN = 250_000
+"""Rigs times pads that the repeated descents from the chosen place may judge."""
 
 ALL_PAIRS = 32
 """Up to so many levers the descent tries every pair of them; beyond, pairs of levers that are kin."""
@@ -67,6 +70,9 @@ def drill_fixed(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | 
         return _no_pivots(step)
     least = min(use for use, _, _ in found)
     _, away, best = min((item for item in found if item[0] <= least * (1 + NEAR_EQUAL)), key=lambda item: item[1])
+    again = max(1, JUDGED_AGAIN // plan.n_pads)
+    best = descend_again(best, moves, _value(plan, wiring, tube, judge, best.steps), again)
+    judged += best.judged
     hung = hang_fixed(wiring, best.steps[None], step, plan.x, tube.total)
     use = float(tube.use(hung.pad_x, hung.pad_force)[0])
     return Drilled(hung, best.steps[:, None], use, _words(len(found), judged, best, away))
@@ -161,8 +167,8 @@ def _no_pivots(step: float) -> Refusal:
 
 
 def _words(starts: int, judged: int, best: Descended, away: float) -> str:
-    end = "no single step and no pair of steps improves it" if best.is_settled else "stopped by its work limit"
+    end = "no small move improves it" if best.is_settled else "stopped by its work limit"
     return (
-        f"drilling: {starts} places of the jack tried, {judged} rigs judged; from the chosen place {end}; "
+        f"drilling: {starts} places of the jack tried, {judged} rigs judged; from the chosen one {end}; "
         f"the jack stands {millimetres(away)} from where it was planned"
     )

@@ -128,7 +128,7 @@ def _words(found: Arms | None, descended: Descended) -> str:
         )
     else:
         head = f"drilling: {found.nodes} choices of arms looked at, too few to prove which are best"
-    end = "no single step and no pair of steps improves it" if descended.is_settled else "stopped by its work limit"
+    end = "no small move improves it" if descended.is_settled else "stopped by its work limit"
     return f"{head}; then a descent over {descended.judged} rigs: {end}"
 
 

@@ -15,13 +15,13 @@ from typing import Literal, NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
-from rigdesign.pads.tube import Tube
+from rigdesign.pads.tube import Tube, Widths
 from rigdesign.target.curve import Floats
 
 Side = Literal["left", "right"]
 
 FRACTIONS = np.array([0.2, 0.4, 0.6, 0.8])
-"""Where between two pads the path is looked at beside the tangent: bands that vary move the worst place a little."""
+"""Where between two pads the path is looked at beside the tangent if the band varies: it moves the worst place."""
 
 
 class Lines(NamedTuple):
@@ -39,15 +39,17 @@ class Lines(NamedTuple):
 class Judge:
     """Target and bands as polynomials between stations `x` (m,).
 
-    `moment` (m − 1, 4) holds the coefficients of a cubic in the distance from the station inboard, `widths`
-    (m − 1, 8) those of the straight lines of the moment's and shear's widths below and above, `units` (m − 1, 4) those
-    of what reactions answer to a unit of first moment.  `tangent_load`, `tangent_x` give the station at which the
-    target's shear falls to a load.  `jumps` (j,) are the stations at which target or band jumps.
+    `moment` (4, m − 1) holds the coefficients of a cubic in the distance from the station inboard, `moment_widths` and
+    `shear_widths` (4, m − 1) those of the straight lines of the widths below and above, (4, 1) where they never vary,
+    and `units` (3, m − 1) those of what reactions answer to a unit of first moment.  `tangent_load`, `tangent_x` give
+    the station at which the target's shear falls to a load, `fractions` the further places between two pads that are
+    looked at, and `jumps` (j,) the stations at which target or band jumps.
     """
 
     x: Floats
     moment: Floats
-    widths: Floats
+    moment_widths: Floats
+    shear_widths: Floats
     units: Floats
     tangent_load: Floats
     tangent_x: Floats
@@ -56,6 +58,7 @@ class Judge:
     ends: tuple[float, float]
     is_judged: tuple[bool, bool]
     has_reactions: bool
+    fractions: Floats
 
     def tangent(self, load: Floats) -> Floats:
         """Station at which the target's shear falls to `load`: there its line errs most to the over side."""
@@ -67,12 +70,11 @@ class Judge:
         `moved` is the first moment that the rig has beyond the target's [N·m]; `side` tells which side of a jump.
         """
         row, t = self._row(x, side)
-        c, w = self.moment[row], self.widths[row]
-        error = y - (c[..., 0] + t * (c[..., 1] + t * (c[..., 2] + t * c[..., 3])))
+        c0, c1, c2, c3 = (part[row] for part in self.moment)
+        error = y - (c0 + t * (c1 + t * (c2 + t * c3)))
         if self.has_reactions:
-            unit = self.units[row]
-            error = error + moved * (unit[..., 0] + t * unit[..., 1])
-        return _use(error, w[..., 0] + t * w[..., 1], w[..., 2] + t * w[..., 3])
+            error = error + moved * (self.units[0][row] + t * self.units[1][row])
+        return _use(error, *_widths(self.moment_widths, row, t))
 
     def shear_use(self, x: Floats, outboard: Floats, force: Floats, moved: Floats | float) -> Floats:
         """Error over its band of the shear at pads at x, the larger of both sides.
@@ -84,11 +86,11 @@ class Judge:
 
     def _shear_use(self, x: Floats, shear: Floats, side: Side, moved: Floats | float) -> Floats:
         row, t = self._row(x, side)
-        c, w = self.moment[row], self.widths[row]
-        error = shear + c[..., 1] + t * (2 * c[..., 2] + t * 3 * c[..., 3])
+        c1, c2, c3 = (part[row] for part in self.moment[1:])
+        error = shear + c1 + t * (2 * c2 + t * 3 * c3)
         if self.has_reactions:
-            error = error + moved * self.units[row][..., 2]
-        return _use(error, w[..., 4] + t * w[..., 5], w[..., 6] + t * w[..., 7])
+            error = error + moved * self.units[2][row]
+        return _use(error, *_widths(self.shear_widths, row, t))
 
     def _row(self, x: Floats, side: Side) -> tuple[np.ndarray, Floats]:
         row = np.clip(np.searchsorted(self.x, x, side=side) - 1, 0, self.x.size - 2)
@@ -126,7 +128,7 @@ class Judge:
         tangent = np.clip(self.tangent(inner.load), pad_x[:, :-1], pad_x[:, 1:])
         use = np.maximum(use, self.moment_use(tangent, inner.value(tangent), moved).max(axis=1, initial=0.0))
         span = np.diff(pad_x, axis=1)
-        for fraction in FRACTIONS:
+        for fraction in self.fractions:
             x = pad_x[:, :-1] + fraction * span
             use = np.maximum(use, self.moment_use(x, inner.value(x), moved).max(axis=1, initial=0.0))
         return np.asarray(np.maximum(use, self._use_at_jumps(pad_x, force, moved)))
@@ -147,8 +149,23 @@ class Judge:
         return use
 
 
+def _widths(edges: Floats, row: NDArray[np.intp], t: Floats) -> tuple[Floats, Floats]:
+    """Widths below and above at a distance t from the stations of `row`; (1,) where they never vary."""
+    below, below_rise, above, above_rise = edges
+    if edges.shape[1] == 1:
+        return below, above
+    return below[row] + t * below_rise[row], above[row] + t * above_rise[row]
+
+
 def _use(error: Floats, below: Floats, above: Floats) -> Floats:
     return np.asarray(np.maximum(error / above, -error / below))
+
+
+def _lines(pair: Widths, inner: NDArray[np.intp], h: Floats) -> Floats:
+    """Straight lines of the widths below and above between stations, (4, stretches); (4, 1) where they never vary."""
+    if all(np.ptp(edge) == 0 for edge in pair):
+        return np.array([[pair.below[0]], [0.0], [pair.above[0]], [0.0]])
+    return np.stack([part for edge in pair for part in (edge[inner], (edge[inner + 1] - edge[inner]) / h)])
 
 
 def build_judge(tube: Tube) -> Judge:
@@ -159,13 +176,11 @@ def build_judge(tube: Tube) -> Judge:
     h = tube.x[outer] - tube.x[inner]
     rise, s0, s1 = tube.moment[outer] - tube.moment[inner], -tube.shear[inner], -tube.shear[outer]
     # cubic through both moments with both slopes
-    cubic = np.stack(
-        [tube.moment[inner], s0, (3 * rise / h - 2 * s0 - s1) / h, (s0 + s1 - 2 * rise / h) / h**2], axis=1
-    )
+    cubic = np.stack([tube.moment[inner], s0, (3 * rise / h - 2 * s0 - s1) / h, (s0 + s1 - 2 * rise / h) / h**2])
     edges = (*tube.moment_width, *tube.shear_width)
-    widths = np.stack([part for edge in edges for part in (edge[inner], (edge[outer] - edge[inner]) / h)], axis=1)
+    widths = [_lines(pair, inner, h) for pair in (tube.moment_width, tube.shear_width)]
     unit = tube.moment_unit
-    units = np.stack([unit[inner], (unit[outer] - unit[inner]) / h, tube.shear_unit[inner]], axis=1)
+    units = np.stack([unit[inner], (unit[outer] - unit[inner]) / h, tube.shear_unit[inner]])
     falling = np.minimum.accumulate(tube.shear)[::-1]
     double = np.flatnonzero(np.diff(tube.x) == 0)
     jump = np.zeros(double.size, dtype=bool)
@@ -174,7 +189,8 @@ def build_judge(tube: Tube) -> Judge:
     return Judge(
         x=np.append(tube.x[inner], tube.x[-1]),
         moment=cubic,
-        widths=widths,
+        moment_widths=widths[0],
+        shear_widths=widths[1],
         units=units,
         tangent_load=falling,
         tangent_x=tube.x[::-1],
@@ -183,4 +199,5 @@ def build_judge(tube: Tube) -> Judge:
         ends=(float(tube.x[0]), float(tube.x[-1])),
         is_judged=tube.is_judged,
         has_reactions=bool(np.any(tube.moment_unit)),
+        fractions=FRACTIONS if widths[0].shape[1] > 1 else np.empty(0),
     )

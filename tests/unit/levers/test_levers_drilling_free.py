@@ -122,11 +122,11 @@ def brute_window(search, pin, row, window):
         outer, inner = load * a / (a + b), load * b / (a + b)
         at, to = x - a * search.step, x + b * search.step
         middle = (s + outer, k + outer * to)
-        use = float(search.judge.line_use(Lines(*map(np.array, middle)), 0.0))
+        use = search.judge.line_use(Lines(*map(np.array, middle)), 0.0).item()
         for end, half in ((ends[0], (inner, at, middle)), (ends[1], (outer, to, (s, k)))):
             if end < 0:
                 right = Lines(np.array(half[2][0]), np.array(half[2][1]))
-                use = max(use, float(search.judge.pad_use(np.array(half[1]), np.array(half[0]), right, 0.0)))
+                use = max(use, search.judge.pad_use(np.array(half[1]), np.array(half[0]), right, 0.0).item())
             elif use < best:
                 use = max(use, brute_window(search, half, int(end), window))
         best = min(best, use)
