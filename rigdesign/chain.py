@@ -11,10 +11,10 @@ stages it knows no files, pictures or terminal; progress is told to a callback `
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
-from rigdesign.findings import Refusal
+from rigdesign.findings import Finding, Refusal, numbered
 
 if TYPE_CHECKING:
     from pathlib import Path
@@ -79,9 +79,9 @@ def design_target(target: Target, progress: Progress | None = None) -> Check | R
     first = _design(target, None, progress)
     if target.brief.pads.count != "fewest" or isinstance(first, Refusal) or first.accepted:
         return first
-    best = first
-    for count in range(first.rig.plan.n_pads + 1, first.rig.plan.n_pads + 1 + MORE_PADS):
-        answer = _design(target, count, progress)
+    best, planned = first, first.rig.plan.n_pads
+    for count in range(planned + 1, planned + 1 + MORE_PADS):
+        answer = _design(target, count, progress, (_more_than_planned(planned, count),))
         if isinstance(answer, Refusal):
             break
         if answer.accepted:
@@ -91,8 +91,22 @@ def design_target(target: Target, progress: Progress | None = None) -> Check | R
     return best
 
 
-def _design(target: Target, count: int | None, progress: Progress | None) -> Check | Refusal:
-    """One rig for one number of pads, None for what the brief says."""
+def _more_than_planned(planned: int, count: int) -> Finding:
+    return Finding(
+        "pads",
+        "note",
+        "pads",
+        f"before drilling {planned} pads keep the bands, as drilled they do not; up to {MORE_PADS} more were tried",
+        f"{count} pads",
+        f"fewest before drilling: {planned}",
+        "a smaller drill step may save pads",
+    )
+
+
+def _design(
+    target: Target, count: int | None, progress: Progress | None, remarks: tuple[Finding, ...] = ()
+) -> Check | Refusal:
+    """One rig for one number of pads, None for what the brief says; remarks join those of the plan."""
     from rigdesign.checks import check
     from rigdesign.levers import build_rig
     from rigdesign.pads import plan_pads
@@ -100,6 +114,7 @@ def _design(target: Target, count: int | None, progress: Progress | None) -> Che
     plan = plan_pads(target, count, _share(progress, 0.0, _PADS_PART))
     if isinstance(plan, Refusal):
         return plan
+    plan = replace(plan, findings=numbered((*plan.findings, *remarks)))
     rig = build_rig(plan, _share(progress, _PADS_PART, 1.0))
     return rig if isinstance(rig, Refusal) else check(rig)
 

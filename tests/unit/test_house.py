@@ -1,0 +1,62 @@
+"""The house rules that a reader of DEVELOPERS.md relies on: who imports whom, and what the package exports."""
+
+from __future__ import annotations
+
+import ast
+from pathlib import Path
+
+import pytest
+
+import rigdesign
+
+PACKAGE = Path(rigdesign.__file__).parent
+UNDER_ALL = {"units", "display", "errors", "findings", "words"}
+STAGES = ["brief", "target", "pads", "levers", "checks", "chain", "report", "command"]
+SHOWN_ONLY = {"matplotlib", "rich", "click"}
+MODULES = sorted(path for path in PACKAGE.rglob("*.py") if path.parent != PACKAGE or path.stem == "chain")
+
+
+def stage_of(path: Path) -> str:
+    return path.relative_to(PACKAGE).parts[0].removesuffix(".py")
+
+
+def imports_of(path: Path) -> set[str]:
+    """Every module that a file imports, wherever the import stands."""
+    names = set()
+    for node in ast.walk(ast.parse(path.read_text(encoding="utf-8"))):
+        if isinstance(node, ast.Import):
+            names |= {alias.name for alias in node.names}
+        elif isinstance(node, ast.ImportFrom) and node.module:
+            names |= {f"{node.module}.{alias.name}" for alias in node.names}
+    return names
+
+
+@pytest.mark.parametrize("path", MODULES, ids=[str(path.relative_to(PACKAGE)) for path in MODULES])
+def test_a_stage_imports_none_that_comes_after_it(path):
+    own = STAGES.index(stage_of(path))
+    for name in imports_of(path):
+        parts = name.split(".")
+        if parts[0] == "rigdesign" and len(parts) > 1 and parts[1] in STAGES:
+            assert STAGES.index(parts[1]) <= own, f"{path.name} imports {name}"
+        if parts[0] in SHOWN_ONLY:
+            assert stage_of(path) in ("report", "command"), f"{path.name} imports {name}"
+
+
+@pytest.mark.parametrize("name", sorted(UNDER_ALL))
+def test_what_lies_under_all_imports_no_stage(name):
+    for imported in imports_of(PACKAGE / f"{name}.py"):
+        parts = imported.split(".")
+        assert not (parts[0] == "rigdesign" and len(parts) > 1 and parts[1] in STAGES)
+
+
+def test_every_exported_name_is_there_and_no_other_is_promised():
+    for name in rigdesign.__all__:
+        assert getattr(rigdesign, name) is not None
+    assert dir(rigdesign) == sorted(rigdesign.__all__)
+    with pytest.raises(AttributeError, match="no attribute 'desing'"):
+        _ = rigdesign.desing
+
+
+def test_nothing_that_a_user_gets_is_without_its_words():
+    for name in set(rigdesign.__all__) - {"__version__"}:
+        assert getattr(rigdesign, name).__doc__
