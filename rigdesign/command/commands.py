@@ -10,7 +10,7 @@ import click
 
 from rigdesign import __version__
 from rigdesign.command import ACCEPTED, LIMITS
-from rigdesign.command.counts import Counts
+from rigdesign.command.counts import read_counts
 from rigdesign.command.session import Session
 
 if TYPE_CHECKING:
@@ -118,7 +118,14 @@ def _finish(session: Session, answer: Check | Refusal, terminal: Terminal | None
 
 @rigdesign.command()
 @_BRIEF
-@click.option("--pads", "counts", type=Counts(), required=True, help="Numbers of pads to try: 4..24, or 6,8,12.")
+@click.option(
+    "--pads",
+    "counts",
+    callback=read_counts,
+    required=True,
+    metavar="NUMBERS",
+    help="Numbers of pads to try: 4..24, or 6,8,12.",
+)
 @click.option("--out", help="Write study.csv, study.json and study.svg to a new folder.", **_OUT)
 @_REPLACE
 @_PNG

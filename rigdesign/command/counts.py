@@ -10,19 +10,12 @@ MOST = 1000
 """No study goes beyond this many pads."""
 
 
-class Counts(click.ParamType):
-    """Numbers of pads: "4..24", "8", or "4, 6, 8..12"."""
-
-    name = "numbers"
-
-    def convert(self, value: object, param: click.Parameter | None, ctx: click.Context | None) -> tuple[int, ...]:
-        """Return the numbers in order, each once; a mistake is told with what would be accepted."""
-        if isinstance(value, tuple):
-            return value
-        try:
-            return parse_counts(str(value))
-        except ValueError as error:
-            self.fail(str(error), param, ctx)
+def read_counts(_context: click.Context, _option: click.Parameter, value: str) -> tuple[int, ...]:
+    """Return the numbers that the option's text names; a mistake is told with what would be accepted."""
+    try:
+        return parse_counts(value)
+    except ValueError as error:
+        raise click.BadParameter(str(error)) from error
 
 
 def parse_counts(text: str) -> tuple[int, ...]:

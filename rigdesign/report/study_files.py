@@ -36,7 +36,7 @@ def _row(study: Study, row: StudyRow) -> dict[str, Any]:
         }
     check = row.answer
     proof = check.rig.plan.proof
-    binds = [f"{finding.object}: {finding.text}" for finding in check.findings if finding.severity == "failure"]
+    failures = [f"{finding.object}: {finding.text}" for finding in check.findings if finding.severity == "failure"]
     return {
         "pads": row.pads,
         "verdict": "accepted" if row.accepted else "not accepted",
@@ -48,7 +48,7 @@ def _row(study: Study, row: StudyRow) -> dict[str, Any]:
         "levers": sum(len(tree.pieces) for tree in check.rig.trees),
         "steel_estimate": check.steel_estimate,
         "fewest_accepted": study.fewest is row,
-        "what_binds": "; ".join(binds),
+        "what_binds": "; ".join(failures),
     }
 
 
