@@ -9,6 +9,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from rigdesign.levers.wiring import Ints, Wiring
 from rigdesign.target.curve import Floats
@@ -17,6 +18,11 @@ GAIN = 1e-9
 """A move must gain this fraction, so that round-off does not keep a descent alive."""
 
 
+Moves = NDArray[np.int8]
+
+BLOCK = 2_000_000
+"""Most numbers in one block of rows that are judged together: keeps the memory of large trees small."""
+
 COMBINED = 40
 """So many of the moves that lost least are tried two at a time."""
 
@@ -24,8 +30,9 @@ COMBINED = 40
 KICKS, KICK = 40, 5
 """A descent is repeated at most so many times, each time from so many moves away."""
 
-STRIDES = (7919, 104729)
-"""Primes that pick the moves which lead away: large and unlike, so that no two turns lead the same way."""
+MULTIPLIER, MODULUS = 48271, 2**31 - 1
+"""The multiplicative congruential sequence that picks those moves: Park and Miller, Communications of the ACM 36
+(1993) 105-110, from memory."""
 
 
 @dataclass(frozen=True)
@@ -38,7 +45,7 @@ class Descended:
     is_settled: bool
 
 
-def descend(steps: Ints, moves: Ints, value: Callable[[Ints], Floats], most: int) -> Descended:
+def descend(steps: Ints, moves: Moves, value: Callable[[Ints], Floats], most: int) -> Descended:
     """Descend from `steps` (q,) by `moves` (k, q) with the values (k,) that `value` gives rows of steps.
 
     At most `most` rows are judged, the last sweep completed.
@@ -47,12 +54,11 @@ def descend(steps: Ints, moves: Ints, value: Callable[[Ints], Floats], most: int
     judged = 1
     tried, combined = moves, False
     while judged < most and len(moves):
-        rows = steps + tried
-        values = value(rows)
-        judged += len(rows)
+        values = _values(steps, tried, value)
+        judged += len(tried)
         row = int(np.argmin(values))
         if values[row] < best * (1.0 - GAIN):
-            steps, best = rows[row], float(values[row])
+            steps, best = steps + tried[row], float(values[row])
             tried, combined = moves, False
         elif combined:
             return Descended(steps, best, judged, True)
@@ -61,17 +67,26 @@ def descend(steps: Ints, moves: Ints, value: Callable[[Ints], Floats], most: int
     return Descended(steps, best, judged, not len(moves))
 
 
-def descend_again(found: Descended, moves: Ints, value: Callable[[Ints], Floats], most: int) -> Descended:
+def _values(steps: Ints, moves: Moves, value: Callable[[Ints], Floats]) -> Floats:
+    """Values (k,) of the rows that `moves` (k, q) lead to, a block at a time."""
+    block = max(1, BLOCK // steps.size)
+    return np.concatenate([value(steps + moves[start : start + block]) for start in range(0, len(moves), block)])
+
+
+def descend_again(found: Descended, moves: Moves, value: Callable[[Ints], Floats], most: int) -> Descended:
     """Descend again and again from places a few moves away from the best one so far, and return the best of all.
 
     Up to `KICKS` times, as long as fewer than `most` rows are judged.  Which moves lead away follows from a fixed
     rule, so that the outcome is always the same.
     """
-    best, judged = found, found.judged
-    for turn in range(KICKS if len(moves) else 0):
+    best, judged, number = found, found.judged, 1
+    for _ in range(KICKS if len(moves) else 0):
         if judged >= found.judged + most:
             break
-        away = moves[(turn * STRIDES[0] + np.arange(KICK) * STRIDES[1]) % len(moves)].sum(axis=0)
+        away = np.zeros_like(best.steps)
+        for _ in range(KICK):
+            number = number * MULTIPLIER % MODULUS
+            away = away + moves[number % len(moves)]
         again = descend(best.steps + away, moves, value, found.judged + most - judged)
         judged += again.judged
         if again.value < best.value * (1.0 - GAIN):
@@ -79,20 +94,20 @@ def descend_again(found: Descended, moves: Ints, value: Callable[[Ints], Floats]
     return Descended(best.steps, best.value, judged, best.is_settled)
 
 
-def _two_at_a_time(moves: Ints, values: Floats) -> Ints:
+def _two_at_a_time(moves: Moves, values: Floats) -> Moves:
     """Sums of two of the moves that lost least."""
     likely = moves[np.argsort(values, kind="stable")[:COMBINED]]
     first, second = np.triu_indices(len(likely))
     return likely[first] + likely[second]
 
 
-def moves_of(size: int, pairs: Ints, far: int = 2) -> Ints:
+def moves_of(size: int, pairs: Ints, far: int = 2) -> Moves:
     """Moves of one number by up to `far` steps either way, and of the given pairs (k, 2) of numbers by one each."""
-    single = [np.eye(size, dtype=np.int64) * reach for reach in (*range(1, far + 1), *range(-far, 0))]
+    single = [np.eye(size, dtype=np.int8) * np.int8(reach) for reach in (*range(1, far + 1), *range(-far, 0))]
     double = []
     for first in (1, -1):
         for second in (1, -1):
-            rows = np.zeros((len(pairs), size), dtype=np.int64)
+            rows = np.zeros((len(pairs), size), dtype=np.int8)
             rows[np.arange(len(pairs)), pairs[:, 0]] = first
             rows[np.arange(len(pairs)), pairs[:, 1]] = second
             double.append(rows)

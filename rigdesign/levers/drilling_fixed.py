@@ -14,7 +14,7 @@ import numpy as np
 
 from rigdesign.brief.model import LeverRules
 from rigdesign.findings import Refusal
-from rigdesign.levers.descent import Descended, all_pairs, descend, descend_again, moves_of, near_pairs
+from rigdesign.levers.descent import Descended, Moves, all_pairs, descend, descend_again, moves_of, near_pairs
 from rigdesign.levers.drilled import REACH, Drilled, coarse, judged
 from rigdesign.levers.grouping import allowed, millimetres
 from rigdesign.levers.hanging import hang_fixed
@@ -87,7 +87,7 @@ def _chain(wiring: Wiring) -> Ints:
     return np.array(rows, dtype=np.int64)
 
 
-def _moves(wiring: Wiring, chain: Ints) -> Ints:
+def _moves(wiring: Wiring, chain: Ints) -> Moves:
     """Moves that leave the top pivot where it is.
 
     A lever in the chain moves only together with the one above or below it, the other way round.
@@ -95,20 +95,20 @@ def _moves(wiring: Wiring, chain: Ints) -> Ints:
     size = wiring.n_levers
     pairs = all_pairs(size) if size <= ALL_PAIRS else near_pairs(wiring, 1)
     moves = moves_of(size, pairs)
-    swaps = np.zeros((4 * max(0, chain.size - 1), size), dtype=np.int64)
+    swaps = np.zeros((4 * max(0, chain.size - 1), size), dtype=np.int8)
     for index, (upper, lower) in enumerate(pairwise(chain)):
         for turn, reach in enumerate((1, -1, 2, -2)):
             swaps[4 * index + turn, [upper, lower]] = reach, -reach
     still = moves[moves[:, chain].sum(axis=1) == 0]
     triples = [swap + single for swap in swaps for single in _singles(size, chain)] if size <= ALL_PAIRS else []
-    return np.unique(np.concatenate([still, swaps, np.array(triples, dtype=np.int64).reshape(-1, size)]), axis=0)
+    return np.unique(np.concatenate([still, swaps, np.array(triples, dtype=np.int8).reshape(-1, size)]), axis=0)
 
 
-def _singles(size: int, chain: Ints) -> Iterator[Ints]:
+def _singles(size: int, chain: Ints) -> Iterator[Moves]:
     """One step either way of each lever outside the chain."""
     for row in np.setdiff1d(np.arange(size), chain):
         for reach in (1, -1):
-            single = np.zeros(size, dtype=np.int64)
+            single = np.zeros(size, dtype=np.int8)
             single[row] = reach
             yield single
 

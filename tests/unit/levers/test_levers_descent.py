@@ -36,7 +36,7 @@ def holes(rows):
 
 
 def test_descends_again_from_elsewhere():
-    moves = moves_of(2, all_pairs(2), far=3)
+    moves = moves_of(2, all_pairs(2), far=2)
     first = descend(np.array([-2, 1]), moves, holes, 10_000)
     assert first.value == 5.0
     again = descend_again(first, moves, holes, 10_000)
