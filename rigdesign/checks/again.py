@@ -14,7 +14,7 @@ from rigdesign.checks.holes_table import HolesTable, read_holes, with_holes
 from rigdesign.checks.measures import length
 from rigdesign.checks.model import Check
 from rigdesign.checks.statics import solve_statics
-from rigdesign.checks.text import percent
+from rigdesign.checks.text import NOT_PROVEN, percent
 from rigdesign.checks.whole import check
 from rigdesign.display import show
 from rigdesign.errors import InputError
@@ -45,6 +45,9 @@ def check_with_table(rig: Rig, table: HolesTable) -> Check:
         Where the table names what the rig does not have.
     """
     built = with_holes(rig, table)
+    if built.trees != rig.trees:
+        # nor is what the search for holes did true of other holes
+        built = replace(built, words="the holes are as built, from a table")
     return check(built, tuple(_hole_remarks(rig, built, table)))
 
 
@@ -116,22 +119,26 @@ def recheck(rig: Rig, brief: Brief) -> Check:
     scale = target.net.total / total
     trees = tuple(replace(tree, force=tree.force * scale) for tree in rig.trees)
     plan = _rescaled(rig.plan, target, scale)
-    moved = replace(rig, plan=plan, trees=trees, findings=())
+    # what the searches did and remarked was about the old target
+    moved = replace(rig, plan=plan, trees=trees, words="the levers are those of a rig that exists", findings=())
     return check(moved, tuple(_target_remarks(rig, moved, scale)))
 
 
 def _rescaled(plan: PadPlan, target: Target, scale: float) -> PadPlan:
+    from rigdesign.pads.forces import LEAST_SHARE  # late: it brings the solvers
+
     force = plan.force * scale
     share = shares_of_curve(target.net, plan.x)
     found = curves(target, plan.x, force)
     use = max(float(found.use("moment").max()), float(found.use("shear").max()))
-    uneven = np.abs(force - share) / np.where(share == 0, np.inf, np.abs(share))
+    least_share = LEAST_SHARE * abs(target.net.total) / plan.n_pads
+    uneven = np.abs(force - share) / np.maximum(np.abs(share), least_share)
     proof = Proof(
         band_use=use,
         band_use_least=0.0,
         moment_error_least=0.0,
-        method="nothing is proven for a target that the rig was not designed for; 0 is the trivial bound",
-        words="no search: the pads are those of a rig that exists",
+        method=NOT_PROVEN,
+        words="the pads are those of a rig that exists",
         evenness=float(uneven.max()),
         evenness_before=float(uneven.max()),
         band_use_found=use,
@@ -155,14 +162,15 @@ def _target_remarks(rig: Rig, moved: Rig, scale: float) -> Iterator[Finding]:
         "statics",
         "warning" if scale < 0 else "note",
         "jack 1" if len(rig.trees) == 1 else "jacks",
-        "the rig was designed for another target; its jack force is scaled to this one"
-        + (", and acts the other way" if scale < 0 else ""),
+        f"the rig was designed for another target, with {show(float(rig.jack_forces.sum()), 'force')} on the jack; "
+        "that is scaled to this target" + (", and acts the other way" if scale < 0 else ""),
         show(float(moved.jack_forces.sum()), "force"),
-        f"{show(float(rig.jack_forces.sum()), 'force')} as designed",
     )
     wanted, has = brief.pads.count, moved.plan.n_pads
     if wanted not in ("fewest", has):
-        yield Finding("practice", "note", "pads", "the brief asks for another number of pads", str(has), str(wanted))
+        yield Finding(
+            "practice", "note", "pads", f"the brief asks for {wanted} pads, the rig has another number", str(has)
+        )
     longest = max((length(piece) for tree in moved.trees for piece in tree.pieces), default=0.0)
     span = brief.specimen.right - brief.specimen.left
     if longest > span:

@@ -12,7 +12,7 @@ import numpy as np
 from rigdesign.brief.model import LeverRules
 from rigdesign.checks.measures import arms, length, ratio
 from rigdesign.checks.model import Check
-from rigdesign.checks.text import also, percent
+from rigdesign.checks.text import NOT_PROVEN, also, percent
 from rigdesign.display import show
 from rigdesign.findings import Finding
 from rigdesign.levers.model import Piece
@@ -221,6 +221,8 @@ def _idle_pads(check: Check) -> Iterator[Finding]:
 
 def _aim(check: Check) -> Iterator[Finding]:
     plan = check.rig.plan
+    if plan.proof.method == NOT_PROVEN:
+        return  # these pads strove for another target
     rules = plan.target.brief.pads
     strove = {
         "closest": f"least band use first, then forces as even as {percent(rules.ease)} more band use allows",

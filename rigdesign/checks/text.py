@@ -9,6 +9,8 @@ from rigdesign.target.bands import Quantity
 
 UNIT_KIND: dict[Quantity, str] = {"shear": "force", "moment": "moment"}
 MOST_NAMES = 8
+NOT_PROVEN = "nothing is proven for a target that the rig was not designed for; 0 is the trivial bound"
+"""The proof's method where a rig is checked against another target than its own."""
 
 
 def percent(fraction: float) -> str:

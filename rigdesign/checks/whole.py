@@ -74,8 +74,10 @@ def check(rig: Rig, extra: tuple[Finding, ...] = ()) -> Check:
         findings=(),
     )
     earlier = target.findings + rig.plan.findings + rig.findings
-    own = [*statics_remarks(result), *practice_remarks(result)]
-    return replace(result, findings=numbered([*earlier, *extra, *own]))
+    own = [*extra, *statics_remarks(result), *practice_remarks(result)]
+    # the caller's remarks first, inside their stage
+    own.sort(key=lambda finding: finding.stage != "statics")
+    return replace(result, findings=numbered([*earlier, *own]))
 
 
 def _kept(rig: Rig, pad_force: Floats) -> Floats:

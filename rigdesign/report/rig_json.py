@@ -6,8 +6,8 @@ Layout number 1.  Every number is written so that the same float is read again; 
     title           the brief's
     brief           name, texts: the brief and its tables as they were read, by file name
     pads            a list, root to tip: pad, x_m, y_m, wanted_x_m, wanted_N, share_of_curve_N, and force_N as checked
-    plan            jack_x_m, may_move, proof (band_use, band_use_least, moment_error_least, method, words, evenness,
-                    evenness_before; "infinite" where one is), findings
+    plan            jack_x_m, may_move, proof (band_use, band_use_least, moment_error_least, evenness, evenness_before,
+                    band_use_found, method, words; "infinite" where a number is), findings
     trees           a list, a jack each: jack, x_m, y_m, force_N, carries, and levers, a list: lever, kind, tier,
                     parent, load_N as checked, and holes, a list: hole, joins, u_m, v_m, x_m, y_m
     words           what the search for grouping and holes did

@@ -6,6 +6,7 @@ Every number comes from the check or, where it is said to be proven, from the pa
 from __future__ import annotations
 
 from rigdesign.checks.model import Check, RegionVerdict
+from rigdesign.checks.text import NOT_PROVEN
 from rigdesign.display import System, show
 from rigdesign.findings import Finding, Refusal
 from rigdesign.target.bands import Quantity
@@ -100,6 +101,8 @@ def _local_line(check: Check) -> str:
 
 def _proven_line(check: Check) -> str:
     proof = check.rig.plan.proof
+    if proof.method == NOT_PROVEN:
+        return "Nothing is proven here: the rig was designed for another target."
     gap = f"the best found is {percent(proof.gap)} above that" if proof.gap > 5e-4 else "the best found reaches that"
     if proof.band_use > proof.band_use_found * (1 + 5e-4):
         gap += f", {percent(proof.band_use / proof.band_use_found - 1)} more is given up for even forces"

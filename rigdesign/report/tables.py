@@ -238,6 +238,7 @@ def _rig_part(check: Check) -> dict[str, Any]:
         "shear_area_Nm": check.shear_area,
         "band_use": check.band_use,
         "band_use_planned": proof.band_use,
+        "band_use_found": proof.band_use_found,
         "band_use_least": proof.band_use_least,
         "band_use_gap": proof.gap,
         "proof": proof.method,

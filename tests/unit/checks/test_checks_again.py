@@ -58,6 +58,7 @@ def test_a_hole_as_built_moves_load_and_is_said():
     assert note.text.startswith("1 of the rig's 12 holes are in the table; the others are taken as drilled; 1 are")
     assert f"at pad {int(np.argmax(change)) + 1}" in note.text
     assert f"{100 * change.max():.2f} % of their own" in note.text
+    assert found.rig.words == "the holes are as built, from a table"
     # the pads stay where they are on the specimen
     assert (found.rig.pad_x == X).all()
 
@@ -124,8 +125,11 @@ def test_another_target_scales_the_jack_and_judges_anew():
     # the triangle's resultant stands further in than the ellipse's: the jack does not move
     assert found.jack_offset == pytest.approx(X @ FORCE / FORCE.sum() - target.net.first_moment / target.net.total)
     texts = [f.text for f in found.findings]
-    assert any("jack force is scaled to this one" in text for text in texts)
-    assert any("another number of pads" in text for text in texts)
+    assert any("with 5.40 kN on the jack; that is scaled to this target" in text for text in texts)
+    assert any("asks for 7 pads, the rig has another number" in text for text in texts)
+    # the stage's remarks stay together, and nothing is said of an aim that was another's
+    assert [f.stage for f in found.findings] == sorted((f.stage for f in found.findings), reverse=True)
+    assert not any("the aim" in text for text in texts)
 
 
 def test_another_target_has_no_proof():
