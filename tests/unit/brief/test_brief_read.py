@@ -262,3 +262,24 @@ def test_a_long_table_is_read_like_a_short_one(read, tmp_path: Path) -> None:
 def test_a_path_may_be_a_string(read, tmp_path: Path) -> None:
     read()
     assert read_brief(str(tmp_path / "foil.toml")).title == "Test foil"
+
+
+def test_what_lies_right_on_a_limit_is_accepted(read) -> None:
+    brief = read(
+        (CANTILEVER, CANTILEVER + '\nweight = "mass.csv"'),
+        ("", '[levers]\nshortest_arm = "75 mm"\nlongest = "150 mm"\nratio_limit = 1'),
+        mass="x [m],mass [kg/m]\n0.2,12\n3.4,0\n",
+    )
+    assert brief.specimen.weight is not None
+    assert brief.specimen.weight.mass.tolist() == [12.0, 0.0]
+    assert (brief.levers.longest, brief.levers.ratio_limit) == (0.15, 1.0)
+
+
+def test_bands_may_be_given_for_the_whole_span_or_for_a_region_alone(read) -> None:
+    whole = read(("", '[acceptance]\nshear = "5 %"')).acceptance
+    assert [rule.quantity for rule in whole.rules] == ["shear", "shear"]
+    assert whole.regions == ()
+    stretch = read(("", '[[acceptance.region]]\nfrom = "1 m"\nto = "3 m"\nmoment_over = "5 %"')).acceptance
+    assert stretch.rules == ()
+    assert stretch.regions == (Region("region 1", 1.0, 3.0, (BandRule("moment", "over", 0.05, False, "peak"),)),)
+    assert not stretch.defaulted

@@ -278,3 +278,16 @@ def test_a_message_is_one_line_whatever_the_file_holds(refusal) -> None:
     assert message.isprintable()
     assert r"5.4\n\x1b[31mkN" in message
     assert refusal(("count = 6", '"co\\nunt" = 6')).isprintable()
+
+
+@pytest.mark.parametrize(
+    ("edits", "part"),
+    [
+        ([('"3.4 m"', '"0.2 m"')], "the tip must lie outboard of the root"),
+        ([(CANTILEVER, ON_TWO.replace('"6 m"', '"0 m"'))], "the two ends must be in order"),
+        ([(ELLIPTICAL, ELLIPTICAL + '\nfrom = "1 m"\nto = "1 m"')], '"from" must lie inboard of "to"'),
+        ([("count = 6", 'count = 6\nkeep_out = [["1.4 m", "1.4 m"]]')], "keep-out 1 must be in order of x"),
+    ],
+)
+def test_stretches_without_length(refusal, edits, part) -> None:
+    refused_in(refusal, edits, [part])
