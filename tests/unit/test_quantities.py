@@ -144,3 +144,15 @@ def test_a_heading_without_unit_is_refused() -> None:
         column_fraction("x", "length")
     with pytest.raises(InputError, match=r'a length is due, and N is a unit of force: "x \[N\]"'):
         column_fraction("x [N]", "length")
+
+
+def test_advice_on_pounds_is_given_only_where_it_helps() -> None:
+    with pytest.raises(InputError) as caught:
+        quantity("3 lb", "length")
+    assert str(caught.value).endswith('a length is due, and lb is a unit of mass: "3 lb" (accepted: a number with a unit '
+                                      'of length, such as "1.2 m")')  # fmt: skip
+
+
+def test_an_unknown_unit_is_answered_with_the_kind_that_is_due() -> None:
+    with pytest.raises(InputError, match=r'"KN" is no known unit: "3 KN" \(accepted: a number with a unit of force'):
+        quantity("3 KN", "force")
