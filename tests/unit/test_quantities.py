@@ -149,8 +149,8 @@ def test_a_heading_without_unit_is_refused() -> None:
 def test_advice_on_pounds_is_given_only_where_it_helps() -> None:
     with pytest.raises(InputError) as caught:
         quantity("3 lb", "length")
-    assert str(caught.value).endswith('a length is due, and lb is a unit of mass: "3 lb" (accepted: a number with a unit '
-                                      'of length, such as "1.2 m")')  # fmt: skip
+    assert "lb is a unit of mass" in str(caught.value)
+    assert str(caught.value).endswith('(accepted: a number with a unit of length, such as "1.2 m")')
 
 
 def test_an_unknown_unit_is_answered_with_the_kind_that_is_due() -> None:
