@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 
-from rigdesign.pads.forces import ForceProgramme, shares
+from rigdesign.pads.forces import ForceProgramme, shares, wishes
 from rigdesign.pads.limits import force_limits, least_pitch
 from rigdesign.pads.outcome import Outcome, moment_alone, plain_amount
 from rigdesign.pads.tube import build_tube
@@ -27,8 +29,12 @@ def choose_fixed(target: Target, jack_x: float) -> Outcome | None:
     if best is None:
         return None
     limit = 1.0 if brief.pads.aim == "even" and best.use <= 1 else best.use * (1 + brief.pads.ease)
-    ratio = brief.levers.ratio_limit
-    even = programme.most_even(limit, ratio) or programme.most_even(limit) or best
+    even = best
+    for wish in wishes(brief.levers.ratio_limit, least, tube.total / x.size):
+        tried = replace(programme, least=wish.least).most_even(limit, wish.ratio)
+        if tried is not None:
+            even = tried
+            break
     amount = plain_amount(tube, target.moment_peak)
     if amount is not None:
         moment_least = best.use * amount

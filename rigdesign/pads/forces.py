@@ -24,6 +24,8 @@ Indices = NDArray[np.int_]
 
 # A pad's share of the curve counts as at least this part of the mean force when deviations are compared.
 LEAST_SHARE = 0.1
+# Even forces are first sought with every pad carrying at least this part of the mean force: no pads that carry nothing.
+WORTH_A_PAD = 0.05
 # The solver's own feasibility tolerance, in units of `rise` and band use.
 SOLVER_TOLERANCE = 1e-9
 
@@ -237,6 +239,19 @@ class ForceProgramme:
         if force.min() < self.least - slack or force.max() > self.largest + slack:
             return None
         return Forces(force, float(tube.use(x, force)), evenness(tube, x, force))
+
+
+class Wish(NamedTuple):
+    """What even forces are first sought with: a bound on the ratio of neighbours (or none), and a least force [N]."""
+
+    ratio: float | None
+    least: float
+
+
+def wishes(ratio: float, least: float, mean: float) -> tuple[Wish, ...]:
+    """Wishes in the order in which they are given up where they cannot be had."""
+    worth = max(least, WORTH_A_PAD * mean)
+    return Wish(ratio, worth), Wish(None, worth), Wish(None, least)
 
 
 def shares(tube: Tube, x: Floats) -> Floats:

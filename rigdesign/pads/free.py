@@ -11,7 +11,7 @@ from dataclasses import replace
 
 import numpy as np
 
-from rigdesign.pads.forces import evenness
+from rigdesign.pads.forces import evenness, wishes
 from rigdesign.pads.limits import allowed_stretches, fitted, force_limits, least_pitch, violations
 from rigdesign.pads.outcome import Outcome, Progress, moment_alone, plain_amount
 from rigdesign.pads.path import COARSE, FINE, MANY, Path, least_use_path
@@ -122,10 +122,13 @@ class FreePlaces:
         limit = max(1.0, use) if pads.aim == "even" else found.forces.use * (1 + pads.ease)
         if pads.aim == "even" and use > 1:
             limit = found.forces.use * (1 + pads.ease)
-        search = Search(tube, self.limits, use_limit=limit, ratio=self.brief.levers.ratio_limit)
         self._report(0.9, "evening out the forces")
-        even = search.refine(found.x) or replace(search, ratio=None).refine(found.x)
-        return found if even is None else even
+        for wish in wishes(self.brief.levers.ratio_limit, self.limits.least, tube.total / self.count):
+            search = Search(tube, replace(self.limits, least=wish.least), use_limit=limit, ratio=wish.ratio)
+            even = search.refine(found.x)
+            if even is not None:
+                return even
+        return found
 
     def _report(self, fraction: float, words: str) -> None:
         if self.progress:

@@ -7,13 +7,13 @@ N places keeps the bands at some band use (see `lines`), or give places whose be
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
-from rigdesign.pads.forces import ForceProgramme, Forces, shares
+from rigdesign.pads.forces import ForceProgramme, Forces, Wish, shares, wishes
 from rigdesign.pads.limits import allowed_stretches, fitted, force_limits, least_pitch
-from rigdesign.pads.lines import LineSets, Places
+from rigdesign.pads.lines import LineSets, Places, TooManySetsError
 from rigdesign.pads.outcome import Outcome, Progress, moment_alone, plain_amount
 from rigdesign.pads.path import least_use_path
 from rigdesign.pads.stair import least_use_stair
@@ -24,6 +24,8 @@ from rigdesign.target.model import Target
 # Bound and design meet when they differ by less than this fraction, or after so many questions to the sets.
 MEET, MOST_QUESTIONS = 1e-3, 40
 STATIONS_A_GAP = 12
+# Sets of lines are told apart by at most so many places before.
+MOST_MEMORY = 4
 # Sweeps of the exchange for even forces, each over every pad's two neighbouring places.
 MOST_SWEEPS = 12
 FAR = 1e6
@@ -77,7 +79,7 @@ class HardPoints:
         sets = LineSets(tube, Places(self.x, self.least, self.largest, self.pitch), self.count)
         best = known or self._nearest(tube)
         high = best.forces.use if best else np.inf
-        step = 1.05
+        step, memory = 1.05, 1
         for question in range(MOST_QUESTIONS):
             if high <= low * (1 + meet) + 1e-12 or low > FAR:
                 break
@@ -87,7 +89,10 @@ class HardPoints:
                 middle = min(middle, low * 1.1) if low > 1e-6 * high else middle
             else:
                 middle, step = max(low, 1e-3) * step, step**1.6
-            pads = sets.reach(float(middle), self.count)
+            try:
+                pads = sets.reach(float(middle), self.count, memory=memory)
+            except TooManySetsError:
+                break
             if pads is None:
                 low = float(middle)
                 continue
@@ -95,8 +100,10 @@ class HardPoints:
             if forces is not None and (best is None or forces.use < best.forces.use):
                 best, high = _Choice(pads, forces), forces.use
             elif middle < high:
-                # the sets let lines in that no pads can follow: the design stays, the gap is reported
-                return best, low
+                # the sets let lines in that no pads can follow: merge fewer of them, or report the gap
+                memory += 1
+                if memory > MOST_MEMORY:
+                    break
         return best, low
 
     def _nearest(self, tube: Tube) -> _Choice | None:
@@ -131,17 +138,18 @@ class HardPoints:
         pads = self.brief.pads
         use = found.forces.use
         limit = 1.0 if pads.aim == "even" and use <= 1 else use * (1 + pads.ease)
-        ratio: float | None = self.brief.levers.ratio_limit
-        best = self._even(found.pads, limit, ratio)
-        if best is None:
-            best, ratio = self._even(found.pads, limit, None), None
+        best = None
+        for wish in wishes(self.brief.levers.ratio_limit, self.least, self.tube.total / self.count):
+            best = self._even(found.pads, limit, wish)
+            if best is not None:
+                break
         if best is None:
             return found, 0
         for sweep in range(MOST_SWEEPS):
             self._report(0.8 + 0.2 * sweep / MOST_SWEEPS, "evening out the forces")
             better = best
             for pads_tried in self._exchanges(best.pads):
-                tried = self._even(pads_tried, limit, ratio)
+                tried = self._even(pads_tried, limit, wish)
                 if tried is not None and tried.forces.evenness < better.forces.evenness * (1 - 1e-6):
                     better = tried
             if better is best:
@@ -149,8 +157,9 @@ class HardPoints:
             best = better
         return best, MOST_SWEEPS
 
-    def _even(self, pads: tuple[int, ...], limit: float, ratio: float | None) -> _Choice | None:
-        forces = self._programme(self.tube, pads).most_even(limit, ratio)
+    def _even(self, pads: tuple[int, ...], limit: float, wish: Wish) -> _Choice | None:
+        programme = replace(self._programme(self.tube, pads), least=wish.least)
+        forces = programme.most_even(limit, wish.ratio)
         return None if forces is None else _Choice(pads, forces)
 
     def _exchanges(self, pads: tuple[int, ...]) -> list[tuple[int, ...]]:

@@ -8,8 +8,9 @@ slope axis by any force between the least and the largest.  So the lines that ca
     S_k(j) = ∪_i [ S_{k−1}(i) ∩ T_ij ]  +  {(0, F): F_least ≤ F ≤ F_largest},
 
 and N pads can keep the tube exactly if some line of S_{N−1} reaches a last pad that turns it into zero.  This is
-dynamic programming over polygons.  The union is replaced by its convex hull, which can only let more lines in: "not
-reachable" is a proof, "reachable" is confirmed by a linear programme over the places found.
+dynamic programming over polygons.  The union is replaced by convex hulls, which can only let more lines in: "not
+reachable" is a proof, "reachable" is confirmed by a linear programme over the places found.  Where that fails, the
+hulls are taken over fewer sets: those only that came by the same last two, three, … places.
 
 Coordinates: η = (line at the place − wanted path) / `rise`, σ = (slope − wanted slope) / `turn`, so that polygons are
 round.  The tube is widened by SLACK, far below any tolerance that is reported, against round-off.
@@ -30,6 +31,12 @@ from rigdesign.target.curve import Floats
 
 # The tube is widened by this fraction of the scale of its coordinates.
 SLACK = 1e-8
+# More sets of lines than this in one step are not followed.
+MOST_SETS = 20_000
+
+
+class TooManySetsError(Exception):
+    """The sets of lines, told apart by as many places as asked for, are too many to follow."""
 
 
 @dataclass(frozen=True)
@@ -44,11 +51,15 @@ class Places:
 
 @dataclass(frozen=True)
 class _Arcs:
-    """Pairs of places `start`, `end` (k,), and a polygon of lines for each: a stack (k, v, 2)."""
+    """Pairs of places `start`, `end` (k,), and a polygon of lines for each: a stack (k, v, 2).
+
+    `key` (k,) tells sets apart that came by different places before.
+    """
 
     start: Indices
     end: Indices
     stack: Floats
+    key: Indices
 
 
 @dataclass(frozen=True)
@@ -130,12 +141,14 @@ class LineSets:
             start, stack = start[inside], stack[inside]
             stack, left = cut_all(stack, self._planes(use, start, start + offset - 1))
             start = start[left]
-            parts.append(_Arcs(start, start + offset, stack))
+            parts.append(_Arcs(start, start + offset, stack, np.zeros(start.size, dtype=int)))
             if not start.size:
                 break
         start, end = np.concatenate([p.start for p in parts]), np.concatenate([p.end for p in parts])
         far = x[end] - x[start] >= self.places.pitch * (1 - 1e-12)
-        return _Arcs(start[far], end[far], joined([p.stack for p in parts])[far])
+        start, end, stack = start[far], end[far], joined([p.stack for p in parts])[far]
+        order = np.argsort(start, kind="stable")
+        return _Arcs(start[order], end[order], stack[order], np.zeros(start.size, dtype=int))
 
     def _moved(self, stack: Floats, start: Indices, end: Indices) -> Floats:
         """The same lines seen from other places: from `start` (k,) to `end` (k,)."""
@@ -161,7 +174,8 @@ class LineSets:
         """Places that the first pad can take while the first line keeps the tube up to it, and that line there."""
         tube, x = self.tube, self.places.x
         kept = self._kept(tube.total * (tube.jack_x - tube.x), tube.total, use)
-        reach = np.inf if kept.all() else tube.x[np.argmin(kept)]
+        out = tube.x.size if kept.all() else int(np.argmin(kept))
+        reach = tube.x[out - 1] if out else -np.inf
         at = np.flatnonzero(x <= reach)
         eta = (tube.total * (tube.jack_x - x[at]) - self.wanted[at]) / self.rise
         sigma = (-tube.total - self.wanted_slope[at]) / self.turn
@@ -171,7 +185,8 @@ class LineSets:
         """Places that the last pad can take while zero keeps the tube beyond it, and the lines that it can end."""
         tube, x = self.tube, self.places.x
         kept = self._kept(np.zeros(tube.x.size), 0.0, use)
-        foot = -np.inf if kept.all() else tube.x[tube.x.size - 1 - np.argmin(kept[::-1])]
+        into = 0 if kept.all() else tube.x.size - int(np.argmin(kept[::-1]))
+        foot = tube.x[into] if into < tube.x.size else np.inf
         at = np.flatnonzero(x >= foot)
         eta = -self.wanted[at] / self.rise
         ends = [
@@ -182,61 +197,65 @@ class LineSets:
 
     # -- dynamic programming over the number of pads ----------------------------------------------------------
 
-    def reach(self, use: float, most: int, exact: bool = True) -> tuple[int, ...] | None:
+    def reach(self, use: float, most: int, exact: bool = True, memory: int = 1) -> tuple[int, ...] | None:
         """Places (indices) of `most` pads, or of the fewest up to `most` unless `exact`, that the sets reach; or None.
 
-        None proves that no such pads keep the tube at this band use.
+        None proves that no such pads keep the tube at this band use.  Sets of lines that came by the same last
+        `memory` places are merged into their hull.  Raises `TooManySetsError` if there are more than `MOST_SETS`.
         """
         first, last = self._first(use), self._last(use)
         if not first.at.size or not last.at.size:
             return None
         arcs = self._arcs(use)
-        layers = [_Arcs(first.at, first.at, first.stack)]
+        layers = [_Arcs(first.at, first.at, first.stack, np.zeros(first.at.size, dtype=int))]
         for k in range(1, most + 1):
             if k == most or not exact:
                 hit = self._ended(layers[-1], last)
                 if hit is not None:
                     return self._retrace(layers, *hit)
             if k < most:
-                layers.append(self._step(layers[-1], arcs))
+                layers.append(self._step(layers[-1], arcs, memory))
                 if not layers[-1].end.size:
                     return None
         return None
 
-    def _turned(self, came: _Arcs) -> _Sets:
-        """Lines that leave each place after a pad there turned what came by any allowed force."""
+    def _turned(self, came: _Arcs, memory: int) -> _Arcs:
+        """Lines that leave each place after a pad there turned what came by any allowed force; `end` is the place."""
         turns = [np.array([0.0, force / self.turn]) for force in (self.places.least, self.largest)]
         points = np.concatenate([came.stack + turn for turn in turns], axis=1)
-        stack, at = hulls(points.reshape(-1, 2), np.repeat(came.end, points.shape[1]))
-        return _Sets(at, stack)
+        width = self.n ** (memory - 1)
+        group = came.end * width + came.key
+        stack, groups = hulls(points.reshape(-1, 2), np.repeat(group, points.shape[1]))
+        return _Arcs(groups // width, groups // width, stack, groups % width)
 
-    def _step(self, came: _Arcs, arcs: _Arcs) -> _Arcs:
+    def _step(self, came: _Arcs, arcs: _Arcs, memory: int) -> _Arcs:
         """Lines that arrive, arc by arc and seen from its end, after one more pad."""
-        leaving = self._turned(came)
-        row = np.full(self.n, -1)
-        row[leaving.at] = np.arange(leaving.at.size)
-        used = np.flatnonzero(row[arcs.start] >= 0)
-        start, end = arcs.start[used], arcs.end[used]
-        stack, left = cut_all(leaving.stack[row[start]], half_planes(arcs.stack[used]))
-        start, end = start[left], end[left]
-        return _Arcs(start, end, self._moved(stack, start, end))
+        leaving = self._turned(came, memory)
+        first, after = np.searchsorted(arcs.start, leaving.end), np.searchsorted(arcs.start, leaving.end, side="right")
+        count = after - first
+        if count.sum() > MOST_SETS:
+            raise TooManySetsError
+        row = np.repeat(np.arange(count.size), count)
+        arc = np.arange(row.size) - np.repeat(np.cumsum(count) - count, count) + first[row]
+        stack, left = cut_all(leaving.stack[row], half_planes(arcs.stack[arc]))
+        row, start, end = row[left], arcs.start[arc[left]], arcs.end[arc[left]]
+        key = (leaving.key[row] * self.n + start) % self.n ** (memory - 1)
+        return _Arcs(start, end, self._moved(stack, start, end), key)
 
     def _ended(self, came: _Arcs, last: _Sets) -> tuple[int, Floats] | None:
         """Last place and last line, of those that came, that a last pad can end: the widest choice; None if none."""
-        stack, at = hulls(came.stack.reshape(-1, 2), np.repeat(came.end, came.stack.shape[1]))
-        common, mine, theirs = np.intersect1d(at, last.at, return_indices=True)
-        if not common.size:
-            return None
-        planes = half_planes(stack[mine])
-        # a set of one line has no edges: it must then lie in the last pad's own set
-        if stack.shape[1] == 1:
-            stack, left = cut_all(stack[mine], half_planes(last.stack[theirs]))
-        else:
-            stack, left = cut_all(last.stack[theirs], planes)
+        row = np.searchsorted(last.at, came.end)
+        can_end = np.flatnonzero(np.isin(came.end, last.at))
+        ends = last.stack[row[can_end]]
+        eta, sigma = ends[:, 0, 0], ends[..., 1]
+        across, along = np.array([1.0, 0.0]), np.array([0.0, 1.0])
+        normal = np.broadcast_to(np.stack([across, -across, along, -along]), (can_end.size, 4, 2))
+        offset = np.stack([eta, -eta, sigma.max(axis=1), -sigma.min(axis=1)], axis=1) + SLACK
+        stack, left = cut_all(came.stack[can_end], HalfPlanes(normal, offset))
         if not left.size:
             return None
         best = int(np.argmax(np.ptp(stack[..., 1], axis=1)))
-        return int(common[left[best]]), stack[best].mean(axis=0)
+        return int(came.end[can_end[left[best]]]), stack[best].mean(axis=0)
 
     # -- the way back -----------------------------------------------------------------------------------------
 

@@ -1,0 +1,276 @@
+"""Free places: bounds, limits, several bands, the jack off the resultant, weight."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+import numpy as np
+import pytest
+from factories import (
+    inertia_load,
+    make_acceptance,
+    make_brief,
+    make_pads,
+    make_specimen,
+    make_weight,
+    point_loads,
+    shape_load,
+    table_load,
+    two_supports,
+)
+
+from rigdesign.brief.model import Brief, JackRules, Region
+from rigdesign.findings import Refusal
+from rigdesign.pads import PadPlan, plan_pads
+from rigdesign.pads.limits import allowed_stretches, fitted, most_that_fit, violations
+from rigdesign.pads.stair import fewest_steps
+from rigdesign.pads.tube import build_tube
+from rigdesign.target import build_target
+
+
+def planned(brief: Brief) -> PadPlan:
+    plan = plan_pads(build_target(brief))
+    assert isinstance(plan, PadPlan), plan
+    assert plan.force.sum() == pytest.approx(plan.target.net.total, rel=1e-12)
+    assert plan.force @ plan.x == pytest.approx(plan.target.net.total * plan.jack_x, rel=1e-11)
+    assert (np.diff(plan.x) > 0).all()
+    sign = np.sign(plan.target.resultant)
+    assert violations(brief, plan.x, sign * plan.force) == pytest.approx(0.0, abs=1e-6)
+    assert plan.proof.band_use_least <= plan.proof.band_use_found <= plan.proof.band_use * (1 + 1e-12)
+    return plan
+
+
+def refused(brief: Brief, count: int | None = None) -> Refusal:
+    refusal = plan_pads(build_target(brief), count)
+    assert isinstance(refusal, Refusal), refusal
+    return refusal
+
+
+def test_two_bands_stay_near_the_bound() -> None:
+    plan = planned(make_brief(pads=make_pads(count=8)))
+    assert plan.proof.gap < 0.02
+    assert plan.proof.evenness < plan.proof.evenness_before
+
+
+def test_largest_force_binds_and_is_kept() -> None:
+    free = planned(make_brief(acceptance=make_acceptance(shear=None)))
+    largest = float(np.sort(free.force)[-1]) * 0.97
+    brief = make_brief(pads=make_pads(largest_force=largest), acceptance=make_acceptance(shear=None))
+    plan = planned(brief)
+    assert plan.force.max() <= largest * (1 + 1e-9)
+    assert plan.proof.band_use > free.proof.band_use
+
+
+def test_limits_hold_at_the_peak_of_the_test() -> None:
+    free = planned(make_brief(acceptance=make_acceptance(shear=None)))
+    largest = float(free.force.max()) * 0.97 * 1.5
+    brief = make_brief(peak=1.5, pads=make_pads(largest_force=largest), acceptance=make_acceptance(shear=None))
+    assert planned(brief).force.max() * 1.5 <= largest * (1 + 1e-9)
+
+
+def test_pressure_limit_is_a_force_limit() -> None:
+    brief = make_brief(pads=make_pads(width=0.2, largest_pressure=38e3), acceptance=make_acceptance(shear=None))
+    assert planned(brief).force.max() <= 38e3 * 0.12 * 0.2 * (1 + 1e-9)
+
+
+def test_keep_out_moves_pads_off_it() -> None:
+    free = planned(make_brief(acceptance=make_acceptance(shear=None)))
+    hole = (float(free.x[2]) - 0.05, float(free.x[2]) + 0.07)
+    plan = planned(make_brief(pads=make_pads(keep_out=(hole,)), acceptance=make_acceptance(shear=None)))
+    assert (np.abs(plan.x - np.mean(hole)) >= (hole[1] - hole[0]) / 2 + 0.06 - 1e-9).all()
+    assert plan.proof.band_use > free.proof.band_use
+
+
+def test_gap_between_footprints_is_kept_at_a_narrow_load() -> None:
+    narrow = shape_load("uniform", 5400.0, start_x=1.4, end_x=2.0)
+    plan = planned(make_brief(loads=(narrow,), acceptance=make_acceptance(moment=0.05, shear=None)))
+    assert np.diff(plan.x).min() >= 0.16 - 1e-9
+
+
+def test_fewest_comes_out_of_the_same_path() -> None:
+    brief = make_brief(pads=make_pads(count="fewest"), acceptance=make_acceptance(moment=0.004, shear=None))
+    plan = planned(brief)
+    assert plan.proof.band_use <= 1
+    one_less = plan_pads(plan.target, plan.n_pads - 1)
+    assert isinstance(one_less, PadPlan)
+    assert one_less.proof.band_use_least > 1
+
+
+def test_under_test_forbidden_in_a_region() -> None:
+    rules = make_acceptance(0.02, None).rules
+    strict = (replace(rules[0], amount=0.0), replace(rules[1], amount=0.03))
+    accept = make_acceptance(0.02, None, regions=(Region("region 1", 0.3, 1.6, strict),))
+    plan = planned(make_brief(pads=make_pads(count=9), acceptance=accept))
+    tube = build_tube(plan.target, plan.jack_x, 9, 200)
+    inside = (tube.x > 0.31) & (tube.x < 1.59)
+    path = np.maximum(plan.x[None] - tube.x[:, None], 0) @ plan.force
+    least = (path - tube.moment)[inside].min() / plan.target.moment_peak
+    # no band is narrower than 0.05 % of the peak
+    assert least >= -0.0005 * plan.proof.band_use * (1 + 1e-3)
+
+
+def test_even_aim_keeps_the_bands_and_evens_out_the_forces() -> None:
+    closest = planned(make_brief(pads=make_pads(count=8)))
+    even = planned(make_brief(pads=make_pads(count=8, aim="even")))
+    assert even.proof.band_use <= 1
+    assert even.proof.evenness <= closest.proof.evenness
+
+
+def test_jack_off_the_resultant_costs_moment_at_the_root() -> None:
+    brief = make_brief(jack=JackRules(at=1.6, step=None), acceptance=make_acceptance(shear=None))
+    plan = planned(brief)
+    moved = abs(plan.target.net.total) * (1.6 - plan.target.net.first_moment / plan.target.net.total)
+    assert plan.jack_x == 1.6
+    assert plan.proof.band_use >= abs(moved) / (0.02 * plan.target.moment_peak) * (1 - 1e-9)
+
+
+def test_jack_step_takes_the_nearest_place() -> None:
+    plan = planned(make_brief(jack=JackRules(at=None, step=0.05), acceptance=make_acceptance(shear=None)))
+    resultant = plan.target.net.first_moment / plan.target.net.total
+    assert plan.jack_x == pytest.approx(round(resultant / 0.05) * 0.05)
+    assert abs(plan.jack_x - resultant) <= 0.025
+
+
+def test_displaced_jack_on_two_supports_is_judged_with_its_reactions() -> None:
+    brief = make_brief(
+        specimen=two_supports(0.0, 0.8, 5.1, 6.0),
+        loads=(shape_load("uniform", -9000.0, start_x=0.0, end_x=6.0),),
+        pads=make_pads(count=5),
+        jack=JackRules(at=2.95, step=None),
+        acceptance=make_acceptance(moment=0.08, shear=None),
+    )
+    plan = planned(brief)
+    # by hand: the pads and the reactions that answer them, against the target, at one station between the supports
+    x = 2.2
+    moment_of_pads = float(np.maximum(plan.x - x, 0) @ plan.force)
+    right = -float((plan.x - 0.8) @ plan.force) / (5.1 - 0.8)
+    rig = moment_of_pads + right * (5.1 - x)
+    error = rig - float(plan.target.moment(np.array([x]))[0])
+    tube = build_tube(plan.target, plan.jack_x, 5, 40, extra=np.array([x]))
+    k = int(np.searchsorted(tube.x, x))
+    moved = float(-plan.force @ plan.x) - tube.first_moment
+    path = -moment_of_pads - tube.moment[k] + moved * tube.moment_unit[k]
+    assert -path == pytest.approx(error, abs=1e-9 * plan.target.moment_peak)
+
+
+def test_weight_is_brought_by_gravity_not_by_the_pads() -> None:
+    specimen = make_specimen(weight=make_weight([0.2, 3.4], [40.0, 20.0]), gravity=-1)
+    plan = planned(make_brief(specimen=specimen, acceptance=make_acceptance(shear=None)))
+    assert plan.force.sum() == pytest.approx(5400.0 + 96.0 * 9.80665)
+
+
+def test_a_target_that_changes_sign_is_followed_by_pads_of_one_sign() -> None:
+    brief = make_brief(
+        loads=(shape_load(), point_loads(1.9, -700.0)), acceptance=make_acceptance(moment=0.05, shear=None)
+    )
+    plan = planned(brief)
+    assert (plan.force > 0).all()
+
+
+def test_more_pads_than_corners() -> None:
+    """Two point loads are matched by two pads; asked for four, the plan still has four that carry something."""
+    brief = make_brief(loads=(point_loads([0.9, 2.3], [3000.0, 1000.0]),), pads=make_pads(count=4))
+    plan = planned(brief)
+    assert plan.n_pads == 4
+    assert plan.force.min() > 0
+
+
+def test_single_pad_sits_under_the_jack() -> None:
+    plan = planned(make_brief(pads=make_pads(count=1), acceptance=make_acceptance(shear=None)))
+    assert plan.x[0] == pytest.approx(plan.target.centroid)
+
+
+# -- matters of limits -------------------------------------------------------------------------------------------------
+
+
+def test_refuses_pads_that_do_not_fit() -> None:
+    refusal = refused(make_brief(pads=make_pads(count=40)))
+    assert "do not fit" in refusal.text
+    assert refusal.best == "20 pads fit"
+
+
+def test_refuses_pads_too_weak() -> None:
+    refusal = refused(make_brief(pads=make_pads(largest_force=500.0)))
+    assert "too weak" in refusal.text
+    assert "at least 11 pads" in refusal.remedy
+
+
+def test_refuses_least_force_for_too_many_pads() -> None:
+    refusal = refused(make_brief(pads=make_pads(least_force=1000.0)))
+    assert "least force" in refusal.text
+    assert "at most 5 pads" in refusal.remedy
+
+
+def test_refuses_when_gravity_brings_more_than_the_target() -> None:
+    specimen = make_specimen(weight=make_weight([0.2, 3.4], [400.0, 200.0]), gravity=1)
+    refusal = refused(make_brief(specimen=specimen))
+    assert "other way" in refusal.text
+
+
+def test_refuses_a_jack_off_the_pads() -> None:
+    assert "jack" in refused(make_brief(jack=JackRules(at=0.21, step=None))).text
+
+
+def test_refuses_more_pads_than_hard_points() -> None:
+    brief = make_brief(pads=make_pads(count=6, places="hard points", stations=np.array([0.5, 1.2, 2.0, 2.9])))
+    assert "4 usable hard points" in refused(brief).text
+
+
+def test_refuses_keep_outs_that_leave_nothing() -> None:
+    assert "no pad fits" in refused(make_brief(pads=make_pads(keep_out=((0.2, 3.4),)))).text
+
+
+def test_refuses_hard_points_on_one_side_of_the_resultant() -> None:
+    brief = make_brief(pads=make_pads(count=2, places="hard points", stations=np.array([2.0, 2.5, 3.0])))
+    assert "jack stands off" in refused(brief).text
+
+
+# -- parts ------------------------------------------------------------------------------------------------------------
+
+
+def test_allowed_stretches_keep_half_a_footprint_away() -> None:
+    brief = make_brief(pads=make_pads(keep_out=((1.0, 1.2), (1.1, 1.4))))
+    np.testing.assert_allclose(allowed_stretches(brief), [[0.26, 0.94], [1.46, 3.34]])
+
+
+def test_most_that_fit_counts_over_stretches() -> None:
+    brief = make_brief(pads=make_pads(length=0.3, gap=0.1, keep_out=((1.0, 1.9),)))
+    # centres 0.35 to 0.85: two; 2.05 to 3.25: four
+    assert most_that_fit(brief) == 6
+
+
+def test_fitted_places_are_nearest_and_apart() -> None:
+    grid = np.array([0.0, 1.0, 2.0, 2.5, 4.0])
+    np.testing.assert_allclose(fitted(np.array([1.9, 2.1, 2.2]), grid, 1.0), [1.0, 2.0, 4.0])
+    assert fitted(np.array([1.0, 2.0, 3.0]), grid, 2.5) is None
+
+
+def test_violations_name_each_limit() -> None:
+    brief = make_brief(pads=make_pads(largest_force=1000.0, least_force=100.0, keep_out=((1.0, 1.2),)))
+    x, force = np.array([0.4, 0.8, 2.0]), np.array([500.0, 500.0, 500.0])
+    assert violations(brief, x, force) == 0
+    for bad_x, bad_force in (
+        ([0.4, 0.55, 2.0], force),
+        ([0.4, 1.1, 2.0], force),
+        ([0.2, 0.8, 2.0], force),
+        (x, [50.0, 500.0, 500.0]),
+        (x, [500.0, 1100.0, 500.0]),
+    ):
+        assert violations(brief, np.array(bad_x), np.array(bad_force)) > 1e-4
+
+
+def test_stair_with_keep_outs_needs_more() -> None:
+    brief = make_brief(loads=(table_load([0.2, 3.4], [1000.0, 1000.0]),), acceptance=make_acceptance(None, 0.1))
+    tube = build_tube(build_target(brief), 1.8, 5, 200)
+    # five equal steps of 20 % of the peak have errors of 10 %
+    assert fewest_steps(tube, 1.001, np.array([[0.2, 3.4]]), 9) == 5
+    assert fewest_steps(tube, 1.001, np.array([[0.2, 0.45], [0.6, 3.4]]), 9) == 6
+
+
+def test_inertia_relief_lowers_the_pads() -> None:
+    specimen = make_specimen(weight=make_weight([0.2, 3.4], [40.0, 20.0]), gravity=-1)
+    brief = make_brief(
+        specimen=specimen, loads=(shape_load(), inertia_load(-3.8)), acceptance=make_acceptance(shear=None)
+    )
+    # the target is 5400 N − 3.8 m g, and the pads lift m g besides
+    assert planned(brief).force.sum() == pytest.approx(5400.0 - 2.8 * 96.0 * 9.80665)
