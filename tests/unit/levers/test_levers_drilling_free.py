@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import itertools
+from dataclasses import replace
 
 import numpy as np
 import pytest
@@ -11,7 +12,7 @@ from lever_plans import arms, best_plan, brief_of, plan_by_hand, uniform_plan
 
 from rigdesign.findings import Refusal
 from rigdesign.levers import Rig, build_rig
-from rigdesign.levers.arms import search_arms
+from rigdesign.levers.arms import Arms, mended, search_arms
 from rigdesign.levers.branching import Pins, Search
 from rigdesign.levers.drilled import REACH
 from rigdesign.levers.drilling_free import drill_free
@@ -21,6 +22,7 @@ from rigdesign.levers.judging import Lines, build_judge
 from rigdesign.levers.wiring import ideal_levers
 from rigdesign.pads.limits import violations
 from rigdesign.pads.tube import build_tube
+from rigdesign.target import build_target
 
 
 def drilled_use(plan):
@@ -156,6 +158,34 @@ def test_what_is_proven_is_never_above_what_is_found():
         assert found.window >= 1
         assert found.least >= plan.proof.band_use_least * (1 - 1e-3)
         assert found.use <= found.least * (1 + 1e-9)
+        search, jack = search_of(plan)
+        use, _, work = search.best(0, jack, np.inf, found.window, 10**7)
+        assert work.is_complete
+        assert found.least == pytest.approx(use, rel=1e-9)
+
+
+def test_pads_that_miss_a_limit_are_cut_off():
+    """No pad may stand within 30 mm of where pad 2 was planned."""
+    plan = best_plan(brief_of(5, levers={"drill_step": 0.02}), 5)
+    search, jack = search_of(plan)
+    kept = replace(search, pads_kept=lambda x, force: np.abs(x - plan.x[1]) > 0.03)
+    for one in (search, kept):
+        _, steps, _ = one.best(0, jack, np.inf, 2, 10**6)
+        hung = hang_free(one.wiring, steps.reshape(1, -1), 0.02, float(jack.place[0]), float(jack.load[0]))
+        assert (np.abs(hung.pad_x[0] - plan.x[1]).min() > 0.03) == (one is kept)
+
+
+def test_mending_goes_on_from_a_poor_start():
+    """From one choice a lever: better arms are found below single levers, and their band use is what it says."""
+    plan = best_plan(brief_of(20, levers={"drill_step": 0.004}), 20)
+    search, jack = search_of(plan)
+    use, steps, work = search.best(0, jack, np.inf, 1, 1)
+    poor = Arms(steps, use, work.nodes, 0, np.inf)
+    better = mended(search, jack, poor)
+    assert better.use < 0.9 * poor.use
+    assert better.nodes > poor.nodes
+    hung = hang_free(search.wiring, better.steps.reshape(1, -1), 0.004, float(jack.place[0]), float(jack.load[0]))
+    assert search.judge.use(hung.pad_x, hung.pad_force)[0] == pytest.approx(better.use, rel=1e-9)
 
 
 def test_too_many_choices_are_said_to_be_unproven():
@@ -191,6 +221,22 @@ def test_lever_limits_hold_after_drilling():
     a, b = arms(rig)
     assert b[0] / a[0] <= 3.0
     assert a[0] >= 0.15
+
+
+def test_the_descent_keeps_the_lever_limits():
+    """Even forces on a load that wants them 1.4 to 1: the descent goes there, but no further than the limit."""
+
+    def ratio(limit):
+        brief = brief_of(2, "parabolic", levers={"drill_step": 0.01, "ratio_limit": limit})
+        target = build_target(brief)
+        middle = target.net.first_moment / target.net.total
+        rig = build_rig(plan_by_hand(brief, [middle - 0.65, middle + 0.65], [2700.0, 2700.0]))
+        assert isinstance(rig, Rig)
+        a, b = arms(rig)
+        return max(a[0], b[0]) / min(a[0], b[0])
+
+    assert ratio(5.0) > 1.05
+    assert 1.0 < ratio(1.05) <= 1.05
 
 
 def test_pad_limits_hold_after_drilling():

@@ -281,3 +281,12 @@ def test_a_pad_that_carries_nothing_is_refused():
     refusal = group_pads(plan_by_hand(brief_of(3), [0.5, 1.0, 2.0], [2000.0, 0.0, 3400.0]))
     assert isinstance(refusal, Refusal)
     assert "pad 2 carries nothing" in refusal.text
+
+
+def test_prescribed_levers_of_one_tier_are_numbered_inboard_to_outboard():
+    """The lever of pads 6 and 7 hangs from an inboard lever, that of pads 2 and 3 from an outboard one."""
+    x = (0.3, 0.6, 0.8, 1.5, 2.0, 2.2, 2.4)
+    wiring = grouped(((1, (5, 6)), ((2, 3), (4, 7))), x=x, force=(900.0, 100.0, 100.0, 300.0, 200.0, 100.0, 400.0))
+    assert isinstance(wiring, Wiring)
+    third = [joined(wiring, row) for row in np.flatnonzero(wiring.tier == 3)]
+    assert third == ["pad 2 and pad 3", "pad 4 and pad 7", "pad 5 and pad 6"]
