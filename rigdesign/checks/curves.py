@@ -1,7 +1,5 @@
 """V and M of target and rig along the span, at stations among which every peak is found.
 
-    rig = what the pads bring + the supports' answer to the pads + what gravity brings
-
 Stations are both sides of every jump (pads, point loads, supports, ends of regions), a few in between, and what is
 then looked for: places where the shear error passes through zero (there the moment error peaks), where the target
 passes through zero (there under and over change places), and where an error over its band, or over the local target,
@@ -11,115 +9,23 @@ has a peak between stations.
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable
-from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
 from rigdesign.checks.model import Curves
-from rigdesign.target import internal
-from rigdesign.target.bands import Band, Quantity, bands
-from rigdesign.target.curve import Floats, Side
+from rigdesign.checks.sampling import QUANTITIES, Sampler, local_errors, sampler
+from rigdesign.target.bands import Band, Quantity
+from rigdesign.target.curve import Floats
 from rigdesign.target.model import Target
-from rigdesign.words import SMALL_TARGET
 
-QUANTITIES: tuple[Quantity, ...] = ("shear", "moment")
 EVEN_STATIONS = 401  # over the span, besides the jumps
 INNER_STATIONS = 3  # at least so many inside each stretch between jumps, so that each peak has neighbours
 CLOSE = 1e-12  # of the span: nearer stations than this are one
 BISECTIONS = 40  # leave 1e-12 of a stretch
 ZOOMS, ZOOM_POINTS, ZOOM_PEAKS = 8, 9, 40  # each zoom narrows a peak's place to a quarter; flat peaks need no more
 
-Curve = Callable[[Floats, NDArray[np.bool_]], Floats]
-
-
-@dataclass(frozen=True)
-class RigLoads:
-    """Everything that acts on the specimen: pads and the supports' answer to them as point loads, and gravity.
-
-    `at` [m], `force` [N] are (n_points,), pads first.
-    """
-
-    target: Target
-    at: Floats
-    force: Floats
-
-    def shear(self, x: Floats, side: Side) -> Floats:
-        """Shear of the rig [N] at stations x (n,)."""
-        gravity = internal.shear(self.target.gravity, self.target.brief.specimen, x, side)
-        return internal.points_beyond(x, self.at, self.force, side)[0] + gravity
-
-    def moment(self, x: Floats) -> Floats:
-        """Bending moment of the rig [N·m] at stations x (n,)."""
-        gravity = internal.moment(self.target.gravity, self.target.brief.specimen, x)
-        return internal.points_beyond(x, self.at, self.force, "inboard")[1] + gravity
-
-
-def rig_loads(target: Target, pad_x: Floats, pad_force: Floats) -> RigLoads:
-    """Return what pads of `pad_force` (n_pads,) [N] at `pad_x` (n_pads,) [m] do to the target's specimen."""
-    total, first_moment = float(pad_force.sum()), float((pad_force * pad_x).sum())
-    support_x, support_force = internal.reactions(target.brief.specimen, total, first_moment)
-    return RigLoads(target, np.concatenate([pad_x, support_x]), np.concatenate([pad_force, support_force]))
-
-
-@dataclass(frozen=True)
-class Sampler:
-    """Target, rig and bands at any stations x (n,) and sides `outboard` (n,)."""
-
-    target: Target
-    rig: RigLoads
-    bands: dict[Quantity, Band]
-
-    def target_value(self, quantity: Quantity, x: Floats, outboard: NDArray[np.bool_]) -> Floats:
-        """Shear [N] or moment [N·m] of the target (n,)."""
-        if quantity == "moment":
-            return self.target.moment(x)
-        return by_side(self.target.shear, x, outboard)
-
-    def error(self, quantity: Quantity, x: Floats, outboard: NDArray[np.bool_]) -> Floats:
-        """Rig minus target (n,)."""
-        if quantity == "moment":
-            return self.rig.moment(x) - self.target.moment(x)
-        return by_side(self.rig.shear, x, outboard) - by_side(self.target.shear, x, outboard)
-
-    def use(self, quantity: Quantity, x: Floats, outboard: NDArray[np.bool_]) -> Floats:
-        """Error over its band (n,), zero where nothing is asked."""
-        error = self.error(quantity, x, outboard)
-        below, above = self.widths(quantity, x, outboard)
-        return np.abs(error) / np.where(error < 0, below, above)
-
-    def local(self, quantity: Quantity, x: Floats, outboard: NDArray[np.bool_]) -> Floats:
-        """Error over the local target (n,), zero where the target is below 5 % of its peak."""
-        value = np.abs(self.target_value(quantity, x, outboard))
-        counts = value >= SMALL_TARGET * self.bands[quantity].peak
-        error = np.abs(self.error(quantity, x, outboard))
-        return np.where(counts, error / np.where(counts, value, 1.0), 0.0)
-
-    def widths(self, quantity: Quantity, x: Floats, outboard: NDArray[np.bool_]) -> tuple[Floats, Floats]:
-        """The band's widths below and above zero error (n,) each."""
-        below, above = np.empty(x.shape), np.empty(x.shape)
-        for mask, side in _sides(outboard):
-            if mask.any():
-                below[mask], above[mask] = self.bands[quantity].widths(x[mask], side)
-        return below, above
-
-
-def sampler(target: Target, pad_x: Floats, pad_force: Floats) -> Sampler:
-    """Return a sampler of the target and of pads (n_pads,) [m], [N] on its specimen."""
-    return Sampler(target, rig_loads(target, pad_x, pad_force), bands(target))
-
-
-def by_side(function: Callable[[Floats, Side], Floats], x: Floats, outboard: NDArray[np.bool_]) -> Floats:
-    """Return the function at stations x (n,), each on its own side."""
-    result = np.empty(x.shape)
-    for mask, side in _sides(outboard):
-        if mask.any():
-            result[mask] = function(x[mask], side)
-    return result
-
-
-def _sides(outboard: NDArray[np.bool_]) -> tuple[tuple[NDArray[np.bool_], Side], tuple[NDArray[np.bool_], Side]]:
-    return (~outboard, "inboard"), (outboard, "outboard")
+Measure = Callable[[Curves], Floats]
 
 
 def curves(target: Target, pad_x: Floats, pad_force: Floats) -> Curves:
@@ -133,19 +39,9 @@ def curves(target: Target, pad_x: Floats, pad_force: Floats) -> Curves:
         Places [m] and forces [N] of the pads, (n_pads,).
     """
     sample = sampler(target, pad_x, pad_force)
-    x, outboard = _grid(target, sample.rig.at, sample.bands.values())
-    x, outboard = _with_crossings(sample, x, outboard)
-    x, outboard = _with_peaks(sample, x, outboard)
-    values = {q: sample.target_value(q, x, outboard) for q in QUANTITIES}
-    widths = {q: sample.widths(q, x, outboard) for q in QUANTITIES}
-    return Curves(
-        x=x,
-        outboard=outboard,
-        target=values,
-        rig={"shear": by_side(sample.rig.shear, x, outboard), "moment": sample.rig.moment(x)},
-        below={q: widths[q][0] for q in QUANTITIES},
-        above={q: widths[q][1] for q in QUANTITIES},
-    )
+    rows = sample.rows(*_grid(target, sample.rig.at, sample.bands.values()))
+    rows = _with_stations(sample, rows, _all_crossings(sample, rows))
+    return _with_stations(sample, rows, _all_peaks(sample, rows))
 
 
 def jumps(target: Target, at: Floats, judged: Iterable[Band]) -> Floats:
@@ -162,8 +58,10 @@ def jumps(target: Target, at: Floats, judged: Iterable[Band]) -> Floats:
 def _grid(target: Target, at: Floats, judged: Iterable[Band]) -> tuple[Floats, NDArray[np.bool_]]:
     """Both sides of every jump, even stations, breaks of the curves and a few inside each stretch, in order."""
     jump = jumps(target, at, judged)
-    inner = np.linspace(jump[:-1], jump[1:], INNER_STATIONS + 2)[1:-1].ravel()
     even = np.linspace(jump[0], jump[-1], EVEN_STATIONS)
+    # stretches far narrower than the even pitch hold no peak of their own worth looking for
+    wide = np.flatnonzero(np.diff(jump) > 0.01 * (even[1] - even[0]))
+    inner = np.linspace(jump[wide], jump[wide + 1], INNER_STATIONS + 2)[1:-1].ravel()
     smooth = np.unique(np.concatenate([inner, even, target.total.breaks, target.gravity.breaks]))
     return _ordered(jump, smooth[(smooth > jump[0]) & (smooth < jump[-1])])
 
@@ -184,52 +82,64 @@ def _ordered(jump: Floats, smooth: Floats) -> tuple[Floats, NDArray[np.bool_]]:
     return x[order], outboard[order]
 
 
-def _inserted(x: Floats, outboard: NDArray[np.bool_], more: Floats) -> tuple[Floats, NDArray[np.bool_]]:
-    """The rows with smooth stations `more` (k,) added, none of them at a row's own x."""
+def _with_stations(sample: Sampler, rows: Curves, more: Floats) -> Curves:
+    """The rows with those at smooth stations `more` (k,) added, none of them at a row's own x."""
     more = np.unique(more)
-    more = more[~np.isin(more, x)]
-    at = np.searchsorted(x, more)
-    return np.insert(x, at, more), np.insert(outboard, at, True)
+    at = np.searchsorted(rows.x, more)
+    is_new = rows.x[np.minimum(at, rows.x.size - 1)] != more
+    more, at = more[is_new], at[is_new]
+    added = sample.rows(more, np.ones(more.size, bool))
+
+    def merged(old: dict[Quantity, Floats], new: dict[Quantity, Floats]) -> dict[Quantity, Floats]:
+        return {q: np.insert(old[q], at, new[q]) for q in QUANTITIES}
+
+    return Curves(
+        x=np.insert(rows.x, at, more),
+        outboard=np.insert(rows.outboard, at, True),
+        target=merged(rows.target, added.target),
+        rig=merged(rows.rig, added.rig),
+        below=merged(rows.below, added.below),
+        above=merged(rows.above, added.above),
+    )
 
 
-def _with_crossings(sample: Sampler, x: Floats, outboard: NDArray[np.bool_]) -> tuple[Floats, NDArray[np.bool_]]:
-    """Add the zeros of the shear error, and both sides of where a target passes zero."""
-    more = [_crossings(lambda s, o: sample.error("shear", s, o), x, outboard)[0]]
+def _all_crossings(sample: Sampler, rows: Curves) -> Floats:
+    """Zeros of the shear error, and both sides of where a target passes zero, (k,)."""
+    more = [_crossings(sample, rows, lambda at: at.error("shear"))[0]]
     for quantity in QUANTITIES:
-        value: Curve = lambda s, o, q=quantity: sample.target_value(q, s, o)  # type: ignore[misc]  # noqa: E731
-        more.extend(_crossings(value, x, outboard))
-    return _inserted(x, outboard, np.concatenate(more))
+        value: Measure = lambda at, q=quantity: at.target[q]  # type: ignore[misc]  # noqa: E731
+        more.extend(_crossings(sample, rows, value))
+    return np.concatenate(more)
 
 
-def _crossings(function: Curve, x: Floats, outboard: NDArray[np.bool_]) -> tuple[Floats, Floats]:
-    """Where the function passes zero inside a stretch: the last stations found before and after it, (k,) each."""
-    value = function(x, outboard)
-    start = np.flatnonzero((x[:-1] < x[1:]) & (value[:-1] * value[1:] < 0))
-    low, high, sign = x[start], x[start + 1], np.sign(value[start])
+def _crossings(sample: Sampler, rows: Curves, measure: Measure) -> tuple[Floats, Floats]:
+    """Where the measure passes zero inside a stretch: the last stations found before and after it, (k,) each."""
+    value = measure(rows)
+    start = np.flatnonzero((rows.x[:-1] < rows.x[1:]) & (value[:-1] * value[1:] < 0))
+    low, high, sign = rows.x[start], rows.x[start + 1], np.sign(value[start])
     inside = np.ones(start.size, bool)
     for _ in range(BISECTIONS if start.size else 0):
         middle = 0.5 * (low + high)
-        before = sign * function(middle, inside) > 0
+        before = sign * measure(sample.rows(middle, inside)) > 0
         low, high = np.where(before, middle, low), np.where(before, high, middle)
     return low, high
 
 
-def _with_peaks(sample: Sampler, x: Floats, outboard: NDArray[np.bool_]) -> tuple[Floats, NDArray[np.bool_]]:
-    """Add the peaks, between stations, of band use, of the local error and of the shear error."""
-    more: list[Floats] = []
+def _all_peaks(sample: Sampler, rows: Curves) -> Floats:
+    """Where band use, local error or shear error peak between stations, (k,)."""
+    more = [_peaks(sample, rows, lambda at: np.abs(at.error("shear")))]
     for quantity in QUANTITIES:
-        measures: list[Curve] = [lambda s, o, q=quantity: sample.local(q, s, o)]  # type: ignore[misc]
-        if sample.bands[quantity].is_judged:
-            measures.append(lambda s, o, q=quantity: sample.use(q, s, o))  # type: ignore[misc]
-        if quantity == "shear":
-            measures.append(lambda s, o: np.abs(sample.error("shear", s, o)))
-        more.extend(_zoomed(measure, x, outboard) for measure in measures)
-    return _inserted(x, outboard, np.concatenate(more))
+        band = sample.bands[quantity]
+        measures: list[Measure] = [lambda at, q=quantity, peak=band.peak: local_errors(at, q, peak)]  # type: ignore[misc]
+        if band.is_judged:
+            measures.append(lambda at, q=quantity: at.use(q))  # type: ignore[misc]
+        more.extend(_peaks(sample, rows, measure) for measure in measures)
+    return np.concatenate(more)
 
 
-def _zoomed(measure: Curve, x: Floats, outboard: NDArray[np.bool_]) -> Floats:
+def _peaks(sample: Sampler, rows: Curves, measure: Measure) -> Floats:
     """Where the measure peaks between stations, (k,): the highest few, each found by sampling ever closer."""
-    value = measure(x, outboard)
+    x, value = rows.x, measure(rows)
     single = np.diff(x) > 0
     peak = 1 + np.flatnonzero(
         single[:-1] & single[1:] & (value[1:-1] >= value[:-2]) & (value[1:-1] >= value[2:]) & (value[1:-1] > 0)
@@ -243,7 +153,7 @@ def _zoomed(measure: Curve, x: Floats, outboard: NDArray[np.bool_]) -> Floats:
     best = np.asarray(x[peak])
     for _ in range(ZOOMS if peak.size else 0):
         points = np.linspace(low, high, ZOOM_POINTS)
-        value = measure(points.ravel(), np.ones(points.size, bool)).reshape(points.shape)
+        value = measure(sample.rows(points.ravel(), np.ones(points.size, bool))).reshape(points.shape)
         top = np.clip(np.argmax(value, axis=0), 1, ZOOM_POINTS - 2)
         columns = np.arange(peak.size)
         low, best, high = points[top - 1, columns], points[top, columns], points[top + 1, columns]

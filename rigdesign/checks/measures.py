@@ -6,11 +6,11 @@ import numpy as np
 
 from rigdesign.checks.curves import curves
 from rigdesign.checks.model import Curves, Statics
+from rigdesign.checks.sampling import local_errors
 from rigdesign.levers.model import Piece, Rig
 from rigdesign.target.bands import Quantity
 from rigdesign.target.curve import Curve, Floats
 from rigdesign.target.model import Target
-from rigdesign.words import SMALL_TARGET
 
 
 def peak_error(curves: Curves, quantity: Quantity, peak: float) -> tuple[float, float]:
@@ -25,11 +25,9 @@ def local_error(curves: Curves, quantity: Quantity, peak: float) -> tuple[float,
 
     Only stations count at which |target| is at least 5 % of its peak `peak` [N or N·m].
     """
-    size = np.abs(curves.target[quantity])
-    counts = size >= SMALL_TARGET * peak
-    error = np.abs(curves.error(quantity))[counts] / size[counts]
+    error = local_errors(curves, quantity, peak)
     row = int(np.argmax(error))
-    return float(error[row]), float(curves.x[counts][row])
+    return float(error[row]), float(curves.x[row])
 
 
 def shear_area(curves: Curves) -> float:

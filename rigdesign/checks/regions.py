@@ -7,8 +7,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from rigdesign.checks.curves import QUANTITIES
 from rigdesign.checks.model import Curves, RegionVerdict
+from rigdesign.checks.sampling import QUANTITIES
 from rigdesign.target.bands import Quantity
 from rigdesign.target.curve import Floats
 from rigdesign.target.model import Target

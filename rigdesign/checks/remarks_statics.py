@@ -7,12 +7,12 @@ from functools import partial
 
 import numpy as np
 
-from rigdesign.checks.curves import by_side
 from rigdesign.checks.entry import layout
 from rigdesign.checks.geometry import leans
 from rigdesign.checks.measures import length
 from rigdesign.checks.model import Check, RegionVerdict
 from rigdesign.checks.regions import WHOLE_SPAN, inside, sides
+from rigdesign.checks.sampling import by_side
 from rigdesign.checks.statics import off_line
 from rigdesign.checks.text import also, of_quantity, percent
 from rigdesign.display import show

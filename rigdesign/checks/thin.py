@@ -6,8 +6,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rigdesign.checks.model import Curves
+from rigdesign.checks.sampling import local_errors
 from rigdesign.target.curve import Floats
-from rigdesign.words import SMALL_TARGET
 
 MOST_ROWS = 4000
 BUCKETS = 200
@@ -36,9 +36,7 @@ def thinned(curves: Curves, keep: Floats) -> Curves:
 def _measures(curves: Curves) -> list[Floats]:
     measures: list[Floats] = []
     for quantity, target in curves.target.items():
-        size = np.abs(target)
-        counts = size >= SMALL_TARGET * size.max()
-        local = np.where(counts, np.abs(curves.error(quantity)) / np.where(counts, size, 1.0), 0.0)
+        local = local_errors(curves, quantity, float(np.abs(target).max()))
         measures += [curves.error(quantity), curves.use(quantity), local, target]
     return measures
 

@@ -7,11 +7,12 @@ from dataclasses import replace
 import numpy as np
 
 from rigdesign.checks import measures
-from rigdesign.checks.curves import curves, jumps, rig_loads
+from rigdesign.checks.curves import curves, jumps
 from rigdesign.checks.model import Check
 from rigdesign.checks.regions import verdicts
 from rigdesign.checks.remarks_practice import practice_remarks
 from rigdesign.checks.remarks_statics import statics_remarks
+from rigdesign.checks.sampling import rig_loads
 from rigdesign.checks.statics import solve_statics
 from rigdesign.checks.thin import thinned
 from rigdesign.findings import Finding, numbered

@@ -19,9 +19,10 @@ from hand_rigs import lumped, make_rig
 
 from rigdesign.brief.model import Acceptance, Region
 from rigdesign.checks import check
-from rigdesign.checks.curves import curves, sampler
+from rigdesign.checks.curves import curves
 from rigdesign.checks.measures import hand_errors, hand_pads, peak_error
 from rigdesign.checks.regions import inside, sides, verdicts
+from rigdesign.checks.sampling import local_errors, sampler
 from rigdesign.checks.thin import MOST_ROWS, thinned
 from rigdesign.target import build_target
 
@@ -62,16 +63,16 @@ def test_no_dense_sampling_finds_a_higher_peak(known):
     target, force, found = known
     sample = sampler(target, X, force)
     x = np.linspace(0.2, 3.4, 200_001)
-    outboard = np.ones(x.size, bool)
+    rows = sample.rows(x, np.ones(x.size, bool))
     for quantity in ("shear", "moment"):
         peak = target.moment_peak if quantity == "moment" else target.shear_peak
         size = np.abs(found.target[quantity])
         counts = size >= 0.05 * peak
         local = (np.abs(found.error(quantity))[counts] / size[counts]).max()
         for name, dense, best in (
-            ("error", np.abs(sample.error(quantity, x, outboard)), np.abs(found.error(quantity)).max()),
-            ("use", sample.use(quantity, x, outboard), found.use(quantity).max()),
-            ("local", sample.local(quantity, x, outboard), local),
+            ("error", np.abs(rows.error(quantity)), np.abs(found.error(quantity)).max()),
+            ("use", rows.use(quantity), found.use(quantity).max()),
+            ("local", local_errors(rows, quantity, peak), local),
         ):
             # what 200 000 samples miss between them is of the order of the rounding of these values
             assert dense.max() <= best * (1 + 1e-9), (quantity, name)
@@ -126,12 +127,14 @@ def test_local_errors_are_judged_down_to_five_per_cent_of_the_peak():
     found = check(make_rig(X, FORCE))
     sample = sampler(found.rig.plan.target, X, FORCE)
     x = np.linspace(0.2, 3.4, 200_001)
-    outboard = np.ones(x.size, bool)
+    rows = sample.rows(x, np.ones(x.size, bool))
     for quantity, error, at in (
         ("moment", found.moment_error_local, found.moment_error_local_x),
         ("shear", found.shear_error_local, found.shear_error_local_x),
     ):
-        dense = sample.local(quantity, x, outboard)
+        size = np.abs(rows.target[quantity])
+        counts = size >= 0.05 * size.max()
+        dense = np.where(counts, np.abs(rows.error(quantity)) / size.clip(1e-9), 0.0)
         # outboard sides alone, 16 µm apart
         assert error == pytest.approx(dense.max(), rel=1e-3)
         assert at == pytest.approx(x[np.argmax(dense)], abs=2e-5)
@@ -143,7 +146,7 @@ def test_area_between_the_shear_curves():
     sample = sampler(target, X, FORCE)
     edges = np.linspace(0.2, 3.4, 400_001)
     middle = 0.5 * (edges[1:] + edges[:-1])
-    area = np.abs(sample.error("shear", middle, np.ones(middle.size, bool))).sum() * (edges[1] - edges[0])
+    area = np.abs(sample.rows(middle, np.ones(middle.size, bool)).error("shear")).sum() * (edges[1] - edges[0])
     # midpoint sum: its error is below one cell at each of some ten zeros and jumps
     assert found.shear_area == pytest.approx(area, rel=1e-5)
 
