@@ -27,10 +27,10 @@ FIRST_LOSS, PASSES = 0.01, 20
 LEAST_PLANNED = 1e-6
 """A planned band use below this counts as this: bounds grow from it by factors."""
 
-FOLLOWED = 250_000
+FOLLOWED = 60_000
 """Choices that a pass may follow at all levers together."""
 
-MENDED_PER_PAD = 20_000
+MENDED_PER_PAD = 5_000
 """Choices that mending may look at, for each pad."""
 
 MENDING_GAIN = 1e-4
@@ -114,7 +114,7 @@ def mended(search: Search, jack: Pins, arms: Arms, progress: Progress | None = N
         better = None
         while row >= 0 and better is None and nodes - arms.nodes < most:
             under = rows_under(search.wiring, row)
-            follow = max(16, FOLLOWED // 4 // len(under))
+            follow = max(16, FOLLOWED // len(under))
             pin = pins.taken(np.array([row]))
             found, below, count = search.best(row, pin, use * (1 - MENDING_GAIN), MENDING, follow)
             nodes += count.nodes

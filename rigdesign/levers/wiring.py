@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
@@ -171,42 +172,42 @@ def from_grouping(grouping: Grouping | int, x: Floats, force: Floats) -> Wiring:
 
     Raises ValueError where a pair is no pair, or where the numbers are not those of the pads, each once.
     """
-    place: dict[int, tuple[float, float]] = {}
-    seen: list[int] = []
+    _refuse_wrong_pads(grouping, x.size)
 
-    def centroid(group: Grouping | int) -> tuple[float, float]:
-        """Load and first moment; kept by identity so that each group is summed once."""
-        if isinstance(group, int):
-            if not 1 <= group <= x.size:
-                raise ValueError(f"pad {group} is named, the pads are 1 to {x.size}")
-            seen.append(group)
-            return abs(float(force[group - 1])), abs(float(force[group - 1])) * float(x[group - 1])
-        if len(group) != 2:
-            raise ValueError(f"a lever joins two things, and {_words(group)} names {len(group)}")
-        (p, m), (q, k) = centroid(group[0]), centroid(group[1])
-        place[id(group)] = (p + q, m + k)
-        return p + q, m + k
-
-    def station(group: Grouping | int) -> float:
-        if isinstance(group, int):
-            return float(x[group - 1])
-        load, first = place[id(group)]
-        return first / load
+    def centroid(group: Grouping | int) -> float:
+        under = np.array(_named(group)) - 1
+        return float((np.abs(force[under]) * x[under]).sum() / np.abs(force[under]).sum())
 
     def halves(group: object) -> tuple[object, object] | int:
         if isinstance(group, int):
             return group - 1
         assert isinstance(group, tuple)
         one, other = group
-        return (one, other) if station(one) <= station(other) else (other, one)
+        return (one, other) if centroid(one) <= centroid(other) else (other, one)
 
-    centroid(grouping)
-    twice = sorted({pad for pad in seen if seen.count(pad) > 1})
-    missing = sorted(set(range(1, x.size + 1)) - set(seen))
+    return in_order(from_pairs(x.size, grouping, halves), x, force)
+
+
+def _refuse_wrong_pads(grouping: Grouping | int, count: int) -> None:
+    """Raise ValueError unless the groups are pairs and every pad is named once."""
+    named = sorted(_named(grouping))
+    unknown = [pad for pad in named if not 1 <= pad <= count]
+    if unknown:
+        raise ValueError(f"pad {unknown[0]} is named, the pads are 1 to {count}")
+    twice = sorted({one for one, other in pairwise(named) if one == other})
+    missing = sorted(set(range(1, count + 1)) - set(named))
     if twice or missing:
         what = f"named twice: pad {_list(twice)}" if twice else f"not named: pad {_list(missing)}"
         raise ValueError(f"every pad must be named once, but {what}")
-    return in_order(from_pairs(x.size, grouping, halves), x, force)
+
+
+def _named(grouping: Grouping | int) -> list[int]:
+    """Pads that a group names, in its order."""
+    if isinstance(grouping, int):
+        return [grouping]
+    if len(grouping) != 2:
+        raise ValueError(f"a lever joins two things, and {_words(grouping)} names {len(grouping)}")
+    return [*_named(grouping[0]), *_named(grouping[1])]
 
 
 def in_order(wiring: Wiring, x: Floats, force: Floats) -> Wiring:
