@@ -9,7 +9,7 @@ stations, apart from interpolation between them, and on smooth targets equals it
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Literal, NamedTuple
 
 import numpy as np
@@ -17,6 +17,7 @@ from numpy.typing import NDArray
 
 from rigdesign.pads.tube import Tube, Widths
 from rigdesign.target.curve import Floats
+from rigdesign.words import DEFAULT_MOMENT_BAND
 
 Side = Literal["left", "right"]
 
@@ -169,7 +170,14 @@ def _lines(pair: Widths, inner: NDArray[np.intp], h: Floats) -> Floats:
 
 
 def build_judge(tube: Tube) -> Judge:
-    """Make the quick judge of a tube."""
+    """Make the quick judge of a tube.
+
+    Where the brief asks for no band at all, the moment is judged in equal measure everywhere: the rig is then the one
+    of least moment error.
+    """
+    if not any(tube.is_judged):
+        flat = np.full(tube.x.shape, DEFAULT_MOMENT_BAND * np.abs(tube.moment).max())
+        tube = replace(tube, is_judged=(True, False), moment_width=Widths(flat, flat))
     keep = np.append(np.diff(tube.x) > 0, False)
     inner = np.flatnonzero(keep)
     outer = inner + 1

@@ -312,3 +312,12 @@ def test_same_plan_same_rig():
     assert isinstance(other, Rig)
     assert one.trees == other.trees
     assert one.words == other.words
+
+
+def test_without_any_band_the_moment_error_counts():
+    """Nothing is judged: the arms are those that a moment band would give."""
+    rigs = []
+    for band in (0.02, None):
+        brief = brief_of(6, levers={"drill_step": 0.02}, acceptance=make_acceptance(band, None))
+        rigs.append(build_rig(replace(best_plan(brief_of(6), 6), target=build_target(brief))))
+    assert rigs[0].trees == rigs[1].trees
