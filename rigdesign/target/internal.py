@@ -29,15 +29,25 @@ def points_beyond(x: Floats, at: Floats, force: Floats, side: Side) -> tuple[Flo
     if not at.size:
         return np.zeros(x.shape), np.zeros(x.shape)
     order = np.argsort(at, kind="stable")
-    at, force = at[order], force[order]
-    # shear and moment just inboard of each load, with a zero for "none left"
-    shear_at = np.append(np.cumsum(force[::-1])[::-1], 0.0)
-    step = np.diff(at) * shear_at[1:-1]
-    moment_at = np.append(np.cumsum(np.append(step, 0.0)[::-1])[::-1], 0.0)
+    return sums_beyond(x, at[order], sums_at(at[order], force[order]), side)
+
+
+def sums_at(at: Floats, force: Floats) -> tuple[Floats, Floats]:
+    """Shear and moment just inboard of each of the point loads `force` (k,) at `at` (k,), in order; (k + 1,) each.
+
+    The last is zero, for "none left".  There must be a load.
+    """
+    shear = np.append(np.cumsum(force[::-1])[::-1], 0.0)
+    step = np.diff(at) * shear[1:-1]
+    return shear, np.append(np.cumsum(np.append(step, 0.0)[::-1])[::-1], 0.0)
+
+
+def sums_beyond(x: Floats, at: Floats, sums: tuple[Floats, Floats], side: Side) -> tuple[Floats, Floats]:
+    """`points_beyond` of loads at `at` (k,), in order, whose `sums_at` are known."""
     first = np.searchsorted(at, x, side="left" if side == "inboard" else "right")
-    distance = np.append(at, 0.0)[first] - x
-    shear = shear_at[first]
-    return shear, moment_at[first] + shear * distance
+    distance = at[np.minimum(first, at.size - 1)] - x
+    shear = sums[0][first]
+    return shear, sums[1][first] + shear * distance
 
 
 def shear(curve: Curve, specimen: Specimen, x: Floats, side: Side) -> Floats:

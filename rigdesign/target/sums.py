@@ -9,7 +9,7 @@ from functools import cached_property
 import numpy as np
 
 from rigdesign.target.curve import Curve, Floats, Side
-from rigdesign.target.internal import points_beyond
+from rigdesign.target.internal import sums_at, sums_beyond
 
 
 @dataclass(frozen=True)
@@ -33,11 +33,21 @@ class Points:
 
     def force_beyond(self, x: Floats, side: Side) -> Floats:
         """Sum of the loads outboard of x [N]; one at x counts on its inboard side."""
-        return points_beyond(x, self.x, self.force, side)[0]
+        return self._beyond(x, side)[0]
 
     def moment_beyond(self, x: Floats) -> Floats:
         """First moment about x of the loads outboard of x [N·m]."""
-        return points_beyond(x, self.x, self.force, "outboard")[1]
+        return self._beyond(x, "outboard")[1]
+
+    def _beyond(self, x: Floats, side: Side) -> tuple[Floats, Floats]:
+        if not self.x.size:
+            return np.zeros(x.shape), np.zeros(x.shape)
+        return sums_beyond(x, self.x, self._sums, side)
+
+    @cached_property
+    def _sums(self) -> tuple[Floats, Floats]:
+        # taken once: a table of a million loads is asked hundreds of times
+        return sums_at(self.x, self.force)
 
     @property
     def total(self) -> float:
