@@ -22,7 +22,9 @@ if TYPE_CHECKING:
 
 _OUT: Any = {"type": click.Path(path_type=Path), "metavar": "FOLDER"}
 _JSON = click.option("--json", "as_json", is_flag=True, help="Print one JSON object for scripts, and nothing else.")
-_US = click.option("--us", is_flag=True, help="Show US customary units; files stay in the units of their headings.")
+_US = click.option(
+    "--us", is_flag=True, help="US customary units on the terminal and in figures; tables keep those of their headings."
+)
 _REPLACE = click.option("--replace", is_flag=True, help="Replace the rig folder if it exists.")
 _PNG = click.option("--png", is_flag=True, help="Write the figures as PNG as well.")
 _NO_FIGURES = click.option("--no-figures", is_flag=True, help="Write no figures.")

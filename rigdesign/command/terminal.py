@@ -14,10 +14,11 @@ from rich.table import Table
 from rich.text import Text
 
 from rigdesign.chain import Study
+from rigdesign.checks.text import percent
 from rigdesign.display import System, show
 from rigdesign.findings import Finding, Refusal
 from rigdesign.report.scales import arm_scale, scale
-from rigdesign.report.sentences import CAUTION, answer, counted, finding_lines, percent, refusal_lines, verdict
+from rigdesign.report.sentences import CAUTION, answer, counted, finding_lines, refusal_lines, verdict
 
 if TYPE_CHECKING:
     from rigdesign.checks.model import Check
@@ -127,7 +128,7 @@ def wrapped(line: str, width: int) -> list[str]:
 
 
 def _is_number(text: str) -> bool:
-    return not text or text[0].isdigit() or (text[0] in "−-+" and len(text) > 1)
+    return text in ("", "none") or text[0].isdigit() or (text[0] in "−-+" and len(text) > 1)
 
 
 def _pad_table(check: Check, system: System) -> tuple[list[str], list[list[str]]]:
@@ -176,10 +177,13 @@ def _lever_table(check: Check, system: System) -> tuple[list[str], list[list[str
 
 def _region_table(check: Check, system: System) -> tuple[list[str], list[list[str]]]:
     headings = ["stretch", "quantity", "under-test", "over-test", "band under", "band over", "band use", "verdict"]
+    target = check.rig.plan.target
     rows = []
     for region in check.regions:
         kind = "force" if region.quantity == "shear" else "moment"
-        sizes = [show(size, kind, system) for size in (region.under, region.over)]
+        peak = target.shear_peak if region.quantity == "shear" else target.moment_peak
+        # what is left of exact zeros after rounding is zero
+        sizes = [show(size if size > 1e-9 * peak else 0.0, kind, system) for size in (region.under, region.over)]
         bands = [
             "none" if math.isinf(band) else show(band, kind, system) for band in (region.band_under, region.band_over)
         ]

@@ -6,7 +6,7 @@ Every number comes from the check or, where it is said to be proven, from the pa
 from __future__ import annotations
 
 from rigdesign.checks.model import Check, RegionVerdict
-from rigdesign.checks.text import NOT_PROVEN
+from rigdesign.checks.text import NOT_PROVEN, percent
 from rigdesign.display import System, show
 from rigdesign.findings import Finding, Refusal
 from rigdesign.target.bands import Quantity
@@ -19,17 +19,6 @@ CAUTION = (
 )
 
 _AT_ONE_PLACE = 1e-6  # [m]: far below what a drawing or a survey can tell
-
-
-def percent(fraction: float) -> str:
-    """A fraction as a percentage, never more exact than a thousandth of a per cent.
-
-    >>> percent(0.01234), percent(2e-7), percent(0.0)
-    ('1.23 %', 'below 0.001 %', '0 %')
-    """
-    if 0 < abs(fraction) < 1e-5:
-        return "below 0.001 %"
-    return show(fraction, "fraction")
 
 
 def answer(check: Check, system: System = "SI") -> list[str]:
@@ -123,7 +112,7 @@ def _hand_line(check: Check) -> str:
     if check.hand_moment <= 0:
         return ""
     return (
-        f"By hand, {check.rig.plan.n_pads} strips of equal width lumped at their centroids would give "
+        f"By hand, {counted(check.rig.plan.n_pads, 'strip')} of equal width lumped at the centroid would give "
         f"{percent(check.hand_moment)} for the moment and {percent(check.hand_shear)} for the shear; "
         f"this rig gives {percent(check.moment_error_peak)} and {percent(check.shear_error_peak)}."
     )
