@@ -79,3 +79,33 @@ def test_the_example_of_the_brief_page_is_a_brief(rigdesign, here):
     (here / "jib_weight.csv").write_text("x [m],mass [kg/m]\n0.4,31\n2.1,24\n5.2,11.5\n")
     ended = rigdesign("design", "jib.toml", "--no-figures")
     assert ended.code == 0, ended.out + ended.err
+
+
+def test_the_page_of_outputs_names_every_column_and_key(rigdesign, here):
+    page = (ROOT / "docs" / "outputs.md").read_text()
+    rigdesign("design", DEMOS[0], "--out", "demo_rig", "--no-figures")
+    rigdesign("study", DEMOS[0], "--pads", "8", "--out", "demo_study")
+    names = set(json.loads((here / "demo_rig" / "summary.json").read_text()))
+    for table in here.glob("demo_*/*.csv"):
+        names |= set(table.read_text().splitlines()[0].split(","))
+    assert len(names) > 60
+    for name in sorted(names):
+        assert re.search(rf"\b{name}\b", page), name
+
+
+def test_the_page_of_the_brief_names_every_key(rigdesign):
+    page = (ROOT / "docs" / "brief.md").read_text()
+
+    def keys(part):
+        for key, value in part.items() if isinstance(part, dict) else ():
+            if key == "properties":
+                yield from value
+            yield from keys(value)
+        for item in part if isinstance(part, list) else ():
+            yield from keys(item)
+
+    schema = json.loads(rigdesign("schema").out)
+    names = set(keys(schema))
+    assert {"drill_step", "ease", "moment_under", "reverse"} <= names
+    for name in sorted(names):
+        assert re.search(rf"\b{name}\b", page), name
