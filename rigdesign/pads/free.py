@@ -25,6 +25,8 @@ from rigdesign.target.model import Target
 START_GRID = 4000
 # Up to so many pads every start is refined.
 MANY_STARTS = 40
+# Where nothing is asked, searched pads keep apart by this part of their mean pitch: two at one place are one.
+APART = 1e-3
 SEARCH_STATIONS, SEARCH_STATIONS_MANY = 40, 16
 PATH_METHOD = "exact optimum: path of fewest links in the tube around the moment, bisected on its width"
 
@@ -38,7 +40,8 @@ class FreePlaces:
         self.target, self.brief, self.count, self.progress = target, brief, count, progress
         self.fine = build_tube(target, jack_x, count, FINE if count <= MANY else COARSE)
         least, largest = force_limits(brief)
-        self.limits = Limits(least, largest, least_pitch(brief), allowed_stretches(brief))
+        apart = APART * (brief.specimen.right - brief.specimen.left) / count
+        self.limits = Limits(least, largest, max(least_pitch(brief), apart), allowed_stretches(brief))
         self.start, self.end = float(self.limits.stretches[0, 0]), float(self.limits.stretches[-1, 1])
 
     def choose(self) -> Outcome | None:
@@ -102,8 +105,7 @@ class FreePlaces:
         ends = self.limits.stretches
         pieces = [np.linspace(a, b, max(2, int(START_GRID * (b - a) / (tube.x[-1] - tube.x[0])))) for a, b in ends]
         grid = np.unique(np.concatenate(pieces))
-        pitch = max(self.limits.pitch, 1e-3 * (tube.x[-1] - tube.x[0]) / n)
-        fits = [fitted(np.sort(wish), grid, pitch) for wish in wishes]
+        fits = [fitted(np.sort(wish), grid, self.limits.pitch) for wish in wishes]
         return [fit for fit in fits if fit is not None]
 
     def _best_of(self, search: Search, starts: list[Floats]) -> Arrangement | None:
