@@ -14,7 +14,6 @@ draws progress or ends the process.  Heavy libraries are imported inside the com
 
 from __future__ import annotations
 
-import os
 import signal
 import sys
 from collections.abc import Iterator, Sequence
@@ -41,7 +40,6 @@ def run(arguments: Sequence[str]) -> int:
     try:
         with _termination_interrupts():
             code = rigdesign(args=list(arguments), prog_name="rigdesign", standalone_mode=False, obj=session)
-            sys.stdout.flush()
         return code if isinstance(code, int) else ACCEPTED
     except RigdesignError as error:
         _complain(str(error))
@@ -53,10 +51,6 @@ def run(arguments: Sequence[str]) -> int:
         written = f"{session.written} had been written" if session.written else "nothing was written"
         _complain(f"interrupted; {written}")
         return INTERRUPTED
-    except BrokenPipeError:
-        # whoever read our output has gone (`| head`); Python must not try to flush to him on its way out
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
-        return ACCEPTED
 
 
 def _complain(message: str) -> None:

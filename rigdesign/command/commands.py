@@ -11,6 +11,7 @@ import click
 from rigdesign import __version__
 from rigdesign.command import ACCEPTED, LIMITS
 from rigdesign.command.counts import read_counts
+from rigdesign.command.pipe import reader_may_leave
 from rigdesign.command.session import Session
 
 if TYPE_CHECKING:
@@ -274,4 +275,5 @@ def _refusal_object(refusal: Refusal) -> dict[str, Any]:
 
 
 def _print_json(value: object) -> None:
-    click.echo(json.dumps(value, indent=2, ensure_ascii=False))
+    with reader_may_leave():
+        click.echo(json.dumps(value, indent=2, ensure_ascii=False))

@@ -9,12 +9,13 @@ import textwrap
 from collections.abc import Iterable, Sequence
 from typing import TYPE_CHECKING
 
-from rich.console import Console
+from rich.console import Console, RenderableType
 from rich.table import Table
 from rich.text import Text
 
 from rigdesign.chain import Study
 from rigdesign.checks.text import percent
+from rigdesign.command.pipe import reader_may_leave
 from rigdesign.display import System, show
 from rigdesign.findings import Finding, Refusal
 from rigdesign.report.scales import arm_scale, scale
@@ -28,6 +29,13 @@ PLAIN_WIDTH = 100
 _COLOURS = {"failure": "bold red", "warning": "yellow", "note": ""}
 
 
+class _Console(Console):
+    """A console that says so when its reader has gone, instead of ending the process."""
+
+    def on_broken_pipe(self) -> None:
+        raise BrokenPipeError
+
+
 class Terminal:
     """The place where a command speaks to a person."""
 
@@ -38,22 +46,22 @@ class Terminal:
                 stream.reconfigure(errors="replace")
         is_terminal = sys.stdout.isatty()
         self.system = system
-        self._console = Console(width=None if is_terminal else PLAIN_WIDTH, highlight=False, emoji=False, markup=False)
+        self._console = _Console(width=None if is_terminal else PLAIN_WIDTH, highlight=False, emoji=False, markup=False)
 
     def lines(self, lines: Iterable[str], style: str = "") -> None:
         """Print sentences, each a paragraph of its own, wrapped at the width and never between number and unit."""
         for line in lines:
             for part in wrapped(line, self._console.width):
-                self._console.print(Text(part, style=style), soft_wrap=True)
+                self._print(Text(part, style=style))
 
     def title(self, words: str) -> None:
         """Print the first line of all."""
-        self._console.print(Text(words, style="bold"))
+        self._print(Text(words, style="bold"))
 
     def heading(self, words: str) -> None:
         """Print a heading after a free line."""
-        self._console.print()
-        self._console.print(Text(words, style="bold"))
+        self._print("")
+        self._print(Text(words, style="bold"))
 
     def table(self, headings: Sequence[str], rows: Iterable[Sequence[str]]) -> None:
         """Print a table; the first column and every one of words stand left, numbers right."""
@@ -61,10 +69,19 @@ class Terminal:
         table = Table(box=None, pad_edge=False, padding=(0, 2, 0, 0), header_style="underline")
         for k, heading in enumerate(headings):
             numbers = all(_is_number(row[k]) for row in rows)
-            table.add_column(heading, justify="right" if numbers else "left", overflow="fold")
+            # the unit under its name keeps columns narrow; cells are never broken, a table may be wider than the output
+            table.add_column(heading.replace(" [", "\n["), justify="right" if numbers else "left", no_wrap=True)
         for row in rows:
             table.add_row(*row)
-        self._console.print(table)
+        width = self._console.width
+        needed = self._console.measure(table, options=self._console.options.update(width=100 * PLAIN_WIDTH)).maximum
+        self._console.width = max(needed, width)
+        self._print(table)
+        self._console.width = width
+
+    def _print(self, what: RenderableType) -> None:
+        with reader_may_leave():
+            self._console.print(what, soft_wrap=isinstance(what, Text))
 
     def check(self, check: Check) -> None:
         """Print everything on a checked rig: sentences, pads, levers, regions, findings, caution."""

@@ -189,3 +189,24 @@ def test_the_package_loads_nothing_heavy(here):
     )
     ended = subprocess.run([sys.executable, "-c", code], capture_output=True, text=True)
     assert (ended.returncode, ended.stderr) == (0, "")
+
+
+def test_a_reader_that_leaves_stops_nothing(brief, here):
+    command = [sys.executable, "-c", "from rigdesign.command import main; main()", "design", "fin.toml", "--no-figures"]
+    with subprocess.Popen(command, stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=True) as process:
+        assert process.stdout.readline() == "Small fin, gust from the side\n"
+        process.stdout.close()
+        errors = process.stderr.read()
+    assert (process.returncode, errors) == (0, "")
+    assert (here / "fin_rig" / "rig.json").is_file()
+
+
+def test_a_narrow_terminal_breaks_no_word_of_a_table(rigdesign, brief, monkeypatch):
+    from rigdesign.command import terminal
+
+    monkeypatch.setattr(terminal, "PLAIN_WIDTH", 40)
+    text = rigdesign("design", "fin.toml", "--no-figures").out
+    lines = text[text.index("\nLevers") :].splitlines()
+    assert any("lever 2" in line and "pad 1" not in line for line in lines)
+    sentences = text[: text.index("\nPads")].splitlines()
+    assert max(len(line) for line in sentences) <= 40
