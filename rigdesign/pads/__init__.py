@@ -17,7 +17,8 @@ because the path of the pads' moment starts on a fixed line and ends on zero.
     forces    given places: forces by linear programmes
     search    free places under limits or several bands
     free, hard, fixed   the three kinds of places, each an `Outcome`
-    plan      from the target to the plan, refusals included
+    refusals  which limit leaves no pads at all
+    plan      from the target to the plan
 
 Depends on: brief, target, units, findings, words.  Knows no files, no printing, no figures.
 """

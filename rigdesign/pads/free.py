@@ -127,7 +127,9 @@ class FreePlaces:
         self._report(0.9, "evening out the forces")
         for wish in wishes(self.brief.levers.ratio_limit, self.limits.least, tube.total / self.count):
             search = Search(tube, replace(self.limits, least=wish.least), use_limit=limit, ratio=wish.ratio)
-            even = search.refine(found.x)
+            # where the wish cannot be had at these places, places of least band use under its least force may allow it
+            near = None if search.forces(found.x) is not None else replace(search, use_limit=None).refine(found.x)
+            even = search.refine(found.x if near is None else near.x)
             if even is not None:
                 return even
         return found

@@ -12,7 +12,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from rigdesign.pads.forces import ForceProgramme, Forces, Wish, shares, wishes
-from rigdesign.pads.limits import allowed_stretches, fitted, force_limits, least_pitch
+from rigdesign.pads.limits import fitted, force_limits, least_pitch
 from rigdesign.pads.lines import LineSets, Places, TooManySetsError
 from rigdesign.pads.outcome import Outcome, Progress, moment_alone, plain_amount
 from rigdesign.pads.path import least_use_path
@@ -177,12 +177,3 @@ class HardPoints:
     def _report(self, fraction: float, words: str) -> None:
         if self.progress:
             self.progress(fraction, words)
-
-
-def usable_points(target: Target) -> Floats:
-    """Hard points (k,) [m] whose footprint lies on the specimen and clear of keep-outs."""
-    x = target.brief.pads.stations
-    stretches = allowed_stretches(target.brief)
-    slack = 1e-9 * (target.brief.specimen.right - target.brief.specimen.left)
-    inside = (x[:, None] >= stretches[:, 0] - slack) & (x[:, None] <= stretches[:, 1] + slack)
-    return x[inside.any(axis=1)]

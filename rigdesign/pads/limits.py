@@ -43,6 +43,14 @@ def allowed_stretches(brief: Brief) -> Floats:
     return np.array(kept, dtype=float).reshape(-1, 2)
 
 
+def usable_points(brief: Brief) -> Floats:
+    """Hard points (k,) [m] whose footprint lies on the specimen and clear of keep-outs."""
+    x, stretches = brief.pads.stations, allowed_stretches(brief)
+    slack = TOUCH * (brief.specimen.right - brief.specimen.left)
+    inside = (x[:, None] >= stretches[:, 0] - slack) & (x[:, None] <= stretches[:, 1] + slack)
+    return x[inside.any(axis=1)]
+
+
 def violations(brief: Brief, pad_x: Floats, force: Floats) -> Floats:
     """How far rigs with pads `pad_x`, `force` (..., n), root to tip, miss the pad limits: (...), 0 where all hold.
 

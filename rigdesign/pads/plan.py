@@ -4,20 +4,19 @@ from __future__ import annotations
 
 import numpy as np
 
-from rigdesign.brief.model import Brief
 from rigdesign.findings import Finding, Refusal, numbered
 from rigdesign.pads.fixed import choose_fixed
 from rigdesign.pads.forces import evenness, shares
 from rigdesign.pads.free import FreePlaces
-from rigdesign.pads.hard import HardPoints, usable_points
-from rigdesign.pads.limits import allowed_stretches, force_limits, least_pitch, most_that_fit
+from rigdesign.pads.hard import HardPoints
+from rigdesign.pads.limits import allowed_stretches, force_limits, most_that_fit, usable_points
 from rigdesign.pads.model import PadPlan, Proof
 from rigdesign.pads.outcome import Outcome, Progress
 from rigdesign.pads.path import COARSE, fewest_pads
+from rigdesign.pads.refusals import for_the_count, unbalanced, whatever_the_count
 from rigdesign.pads.stair import fewest_steps
 from rigdesign.pads.tube import build_tube
 from rigdesign.target.model import Target
-from rigdesign.units import show
 
 # "fewest" tries no more pads than this.
 MOST_PADS = 200
@@ -45,7 +44,7 @@ def plan_pads(target: Target, count: int | None = None, progress: Progress | Non
     brief = target.brief
     wanted = brief.pads.count if count is None else count
     jack_x = jack_place(target)
-    refusal = _no_place(target, jack_x)
+    refusal = whatever_the_count(target, jack_x)
     if refusal is not None:
         return refusal
     if wanted == "fewest":
@@ -65,12 +64,12 @@ def jack_place(target: Target) -> float:
 
 
 def _planned(target: Target, jack_x: float, count: int, progress: Progress | None) -> PadPlan | Refusal:
-    refusal = _too_many_or_weak(target, count)
+    refusal = for_the_count(target, count)
     if refusal is not None:
         return refusal
     outcome = _choose(target, jack_x, count, progress)
     if outcome is None:
-        return _unbalanced(target, jack_x, count)
+        return unbalanced(target, jack_x, count)
     return _plan(target, jack_x, outcome)
 
 
@@ -79,7 +78,7 @@ def _choose(target: Target, jack_x: float, count: int, progress: Progress | None
     if places == "fixed":
         return choose_fixed(target, jack_x)
     if places == "hard points":
-        return HardPoints(target, jack_x, usable_points(target), count, progress).choose()
+        return HardPoints(target, jack_x, usable_points(target.brief), count, progress).choose()
     return FreePlaces(target, jack_x, count, progress).choose()
 
 
@@ -109,7 +108,7 @@ def _most_pads(target: Target) -> int:
     fit = most_that_fit(target.brief)
     most = MOST_PADS if fit is None else min(fit, MOST_PADS)
     if target.brief.pads.places == "hard points":
-        most = min(most, usable_points(target).size)
+        most = min(most, usable_points(target.brief).size)
     least, _ = force_limits(target.brief)
     return min(most, int(abs(target.net.total) / least * (1 + 1e-9))) if least > 0 else most
 
@@ -171,108 +170,3 @@ def _remarks(proof: Proof) -> list[Finding]:
             )
         )
     return findings
-
-
-# -- matters of limits -------------------------------------------------------------------------------------------------
-
-
-def _no_place(target: Target, jack_x: float) -> Refusal | None:
-    """Refusals that no number of pads can cure."""
-    brief = target.brief
-    if target.net.total * target.resultant <= 0:
-        pulls = show(target.net.total, "force")
-        return Refusal(
-            "pads",
-            "gravity already brings more than the target asks for, so the pads would have to act the other way",
-            limit=f"target {show(target.resultant, 'force')}, gravity brings {show(target.gravity.total, 'force')}",
-            best=f"the pads would have to bring {pulls}",
-            remedy="turn the specimen over (gravity), raise the target, or take weight off with counterweights",
-        )
-    stretches = allowed_stretches(brief)
-    if not stretches.size or (brief.pads.places == "hard points" and not usable_points(target).size):
-        return Refusal(
-            "pads",
-            "no pad fits on the specimen clear of the keep-outs",
-            limit=f"footprint {show(brief.pads.length, 'length')} long",
-            best="0 pads fit",
-            remedy="shorten the footprint or the keep-outs",
-        )
-    x = usable_points(target) if brief.pads.places == "hard points" else brief.pads.stations
-    start, end = (float(x[0]), float(x[-1])) if x.size else (float(stretches[0, 0]), float(stretches[-1, 1]))
-    if not start <= jack_x <= end:
-        return Refusal(
-            "pads",
-            "the jack stands off the stretch where pads can sit, so pads of one sign cannot balance it",
-            limit=f"pads from {show(start, 'length')} to {show(end, 'length')}",
-            best=f"jack at {show(jack_x, 'length')}",
-            remedy="move the jack, or let pads sit on both sides of it",
-        )
-    return None
-
-
-def _too_many_or_weak(target: Target, count: int) -> Refusal | None:
-    """Refusals that depend on the number of pads."""
-    brief, total = target.brief, abs(target.net.total)
-    places = usable_points(target).size if brief.pads.places == "hard points" else brief.pads.stations.size
-    if brief.pads.places != "free" and (count > places or (brief.pads.places == "fixed" and count != places)):
-        return Refusal(
-            "pads",
-            f"{count} pads are asked for, but there are {places} usable {_kind(brief)}",
-            limit=f"{places} {_kind(brief)}, keep-outs and the footprint considered",
-            best=f"{places} pads",
-            remedy=f"ask for {places} pads{'' if brief.pads.places == 'fixed' else ' or fewer'}, or add places",
-        )
-    fit = most_that_fit(brief)
-    if brief.pads.places == "free" and fit is not None and count > fit:
-        return Refusal(
-            "pads",
-            f"{count} pads do not fit side by side",
-            limit=f"footprint and gap take {show(least_pitch(brief), 'length')} a pad",
-            best=f"{fit} pads fit",
-            remedy="use fewer pads, a shorter footprint or a smaller gap",
-        )
-    least, largest = force_limits(brief)
-    if count * largest < total * (1 - 1e-9):
-        return Refusal(
-            "pads",
-            f"{count} pads are too weak for the total",
-            limit=f"largest pad force {show(largest * brief.peak, 'force')} at the peak of the test",
-            best=f"{show(count * largest, 'force')} of {show(total, 'force')} at the brief's load",
-            remedy=f"use at least {int(np.ceil(total / largest * (1 - 1e-9)))} pads, or larger ones",
-        )
-    if count * least > total * (1 + 1e-9):
-        return Refusal(
-            "pads",
-            f"{count} pads cannot all carry the least force",
-            limit=f"least pad force {show(least * brief.peak, 'force')} at the peak of the test",
-            best=f"{show(total, 'force')} to share among {count} pads",
-            remedy=f"use at most {int(total / least * (1 + 1e-9))} pads, or lower least_force",
-        )
-    return None
-
-
-def _kind(brief: Brief) -> str:
-    return "fixed places" if brief.pads.places == "fixed" else "hard points"
-
-
-def _unbalanced(target: Target, jack_x: float, count: int) -> Refusal:
-    """No forces within the limits balance the target: say which of the pad limits would have to give way."""
-    brief = target.brief
-    least, largest = force_limits(brief)
-    asked = []
-    if np.isfinite(largest):
-        asked.append(f"largest pad force {show(largest * brief.peak, 'force')}")
-    if least > 0:
-        asked.append(f"least pad force {show(least * brief.peak, 'force')}")
-    if least_pitch(brief) > 0:
-        asked.append(f"footprint and gap {show(least_pitch(brief), 'length')}")
-    if brief.pads.keep_out:
-        asked.append("keep-outs")
-    limits = ", ".join(asked) or "pads of one sign at these places"
-    return Refusal(
-        "pads",
-        f"no forces of {count} pads within the limits have the target's sum and centre",
-        limit=limits,
-        best=f"{show(target.net.total, 'force')} at {show(jack_x, 'length')} from {count} pads of one sign",
-        remedy="widen the limits one at a time, change the number of pads, or move places towards the resultant",
-    )
