@@ -18,6 +18,10 @@ from rigdesign.units import in_words
 END_TOLERANCE = 1e-9
 """Of the span: a station that lies off an end by no more than this is on it (rounding of converted units)."""
 
+PRINTED_TOLERANCE = 5e-4
+"""Of the span: a table's row may lie off an end by the rounding of its printed x, but never by more than this, which
+moves no moment by more than the narrowest band."""
+
 
 @dataclass(frozen=True)
 class Context:
@@ -77,18 +81,23 @@ def between(start: float, end: float) -> str:
 def table_stations(table: CsvTable, specimen: Specimen, x: Floats | None = None) -> Floats:
     """Return the stations of a table (n,) [m], all on the specimen; raise TableError naming the first row that is not.
 
-    `x` gives the stations where they are not the column x itself.
+    `x` gives the stations where they are not the column x itself.  A row that lies off an end by no more than the
+    rounding of its printed x stands on that end: 188.98 in for 4.8 m.
     """
     x = table["x"] if x is None else x
-    slack = END_TOLERANCE * (specimen.right - specimen.left)
-    off = np.flatnonzero((x < specimen.left - slack) | (x > specimen.right + slack))
+    span = specimen.right - specimen.left
+    beyond = np.maximum(specimen.left - x, x - specimen.right)
+    slack = END_TOLERANCE * span
+    if (beyond > slack).any():  # only then are the cells looked at: a table may have a million rows
+        slack = max(slack, min(0.5 * (1 + END_TOLERANCE) * table.digit("x"), PRINTED_TOLERANCE * span))
+    off = np.flatnonzero(beyond > slack)
     if off.size:
         row = int(off[0])
-        station = show(float(x[row]), "length", unit="m")
+        station, distance = show(float(x[row]), "length", unit="m"), show(float(beyond[row]), "length")
         raise TableError(
             "the row lies off the specimen",
             where=table.where(row),
-            value=f"{table.cell('x', row)} ({station} from x = 0)",
+            value=f"{table.cell('x', row)} ({station} from x = 0, {distance} off the end)",
             limit=extent(specimen),
             remedy="check the unit in the heading and the origin of x",
         )

@@ -112,5 +112,9 @@ def _grouping_words(plan: PadPlan, wiring: Wiring) -> str:
 
 
 def show_steel(value: float) -> str:
-    """A steel estimate in words."""
-    return f"{value:.4g} N^(2/3)·m^(5/3)"
+    """A steel estimate in words: four digits, more where more stand before the decimal point.
+
+    >>> show_steel(28.7061), show_steel(59869.6)
+    ('28.71 N^(2/3)·m^(5/3)', '59870 N^(2/3)·m^(5/3)')
+    """
+    return f"{value:.4g} N^(2/3)·m^(5/3)" if abs(value) < 1e4 else f"{value:.0f} N^(2/3)·m^(5/3)"

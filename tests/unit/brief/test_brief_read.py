@@ -185,6 +185,13 @@ def test_stations_on_the_end_are_on_the_specimen_in_any_unit(read) -> None:
     assert brief.loads[0].x[-1] == brief.specimen.right
 
 
+def test_a_station_off_the_end_by_its_printed_rounding_alone_is_on_the_end(read) -> None:
+    # 3.2 m are 125.984 in: 125.98 in and 126.0 in are that, printed with two decimals and with one
+    office = "x [in],shear [lbf],moment [in*lbf]\n0,0,0\n40,100,1200\n126.0,300,9000\n"
+    load = read((ELLIPTICAL, 'internal = "office.csv"\nstations_from = "tip"'), office=office).loads[0]
+    assert load.x[0] == 0.2
+
+
 def test_fixed_pads_count_their_stations(read) -> None:
     pads = read(("count = 6", 'places = "fixed"\nstations = "0.30, 0.61, 0.95 m"')).pads
     assert pads.count == 3

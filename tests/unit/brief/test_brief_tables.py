@@ -95,7 +95,7 @@ def test_a_running_load_table_is_refused(refusal, text, parts) -> None:
         (
             [(ELLIPTICAL, 'internal = "t.csv"\nstations_from = "tip"')],
             "x [m],shear [N],moment [N*m]\n0,0,0\n3.3,2,3\n",
-            ["line 3", "x = 3.3 m (0.100 m from x = 0)", "off the specimen"],
+            ["line 3", "x = 3.3 m (0.100 m from x = 0, 0.100 m off the end)", "off the specimen"],
         ),
         (
             [(ELLIPTICAL, 'shape = "schrenk"\ntotal = "1 N"\nchord = "t.csv"')],
@@ -169,3 +169,15 @@ def test_line_endings_of_every_system(ending: str) -> None:
 def test_typographic_minus_signs_are_numbers() -> None:
     table = read_table("x [m],force [N]\n1,−2.5\n2,3\n", "t.csv", {"x": "length", "force": "force"}, repeats="none")
     assert table["force"].tolist() == [-2.5, 3.0]
+
+
+@pytest.mark.parametrize(
+    ("table", "part"),
+    [
+        ("x [in],load [N/m]\n8,0\n133.92,5\n", "x = 133.92 in (3.402 m from x = 0, 1.57 mm off the end)"),
+        # half of the last digit is 15 mm here, and no row may be off by more than 1.6 mm
+        ("x [ft],load [N/m]\n1,0\n11.2,5\n", "x = 11.2 ft (3.414 m from x = 0, 13.8 mm off the end)"),
+    ],
+)
+def test_a_row_off_by_more_than_its_printed_rounding_is_refused_with_the_distance(refusal, table, part) -> None:
+    assert part in refusal((ELLIPTICAL, 'table = "load.csv"'), load=table)
