@@ -7,13 +7,12 @@ known (units.txt).  `lb` is a mass and `lbf` a force, `kg` a mass and `kgf` a fo
 Factors are kept as exact fractions, so "300 mm" and "0.3 m" give the same float, and so do 126 inches written in a
 brief and in a column headed "x [in]".
 
-Depends on: errors, unit_factors, display.
+Depends on: errors, unit_factors, display, words.
 """
 
 from __future__ import annotations
 
 import json
-import math
 import re
 from collections.abc import Sequence
 from dataclasses import dataclass
@@ -23,6 +22,7 @@ from typing import TYPE_CHECKING
 from rigdesign.display import show as show
 from rigdesign.errors import InputError
 from rigdesign.unit_factors import Dimensions, unit_factor
+from rigdesign.words import LARGEST_NUMBER
 
 if TYPE_CHECKING:
     import numpy as np
@@ -187,11 +187,11 @@ def in_words(value: object) -> str:
 def _scale(number: str, factor: Fraction, written: str, where: str) -> float:
     """Return number times factor, rounded once."""
     plain = float(number)
-    if _EXACT_FROM < abs(plain) < _EXACT_TO:
-        return float(Fraction(number) * factor)
-    result = plain * float(factor)
-    if not math.isfinite(result):
-        raise InputError("the number is not finite", where=where, value=f'"{written}"')
+    is_exact = _EXACT_FROM < abs(plain) < _EXACT_TO
+    result = float(Fraction(number) * factor) if is_exact else plain * float(factor)
+    if not abs(result) <= LARGEST_NUMBER:
+        limit = f"up to {LARGEST_NUMBER:g} in SI units"
+        raise InputError("the number is too large", where=where, value=f'"{written}"', limit=limit)
     return result
 
 

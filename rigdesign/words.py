@@ -17,5 +17,14 @@ SMALL_TARGET = 0.05
 DEFAULT_MOMENT_BAND = 0.02
 """Band on the moment where the brief has no [acceptance], as a fraction of the peak; common practice."""
 
+MOST_PADS = 1000
+"""No rig and no study goes beyond this many pads; a search for more would take hours."""
+
+LARGEST_NUMBER = 1e15
+"""Nothing in a brief is larger than this in its SI unit; products of such numbers can still be worked with."""
+
+SMALLEST_TOTAL = 1e-12
+"""A target's total below this [N] is taken for a slip of the pen: no pad and no load cell could bring it."""
+
 SCHEMA_NUMBER = 1
 """Number of the rig.json layout that this version writes and reads."""

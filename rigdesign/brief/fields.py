@@ -16,9 +16,11 @@ from pydantic import PlainValidator, WithJsonSchema
 from rigdesign.brief.model import Floats, Grouping
 from rigdesign.errors import InputError
 from rigdesign.units import KINDS, in_words, quantities, quantity
+from rigdesign.words import LARGEST_NUMBER, MOST_PADS
 
 _NUMBER = r"[+-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?"
 _LENGTH, _FORCE, _TIMES = "(mm|cm|m|km|in|ft)", "(mN|N|kN|MN|kgf|lbf|kip)", "[*·. -]?"
+LONGEST_TITLE = 200
 _UNITS = {
     "length": _LENGTH,
     "force": _FORCE,
@@ -62,6 +64,8 @@ def _number(*, above: float | None = None, least: float | None = None, nonzero: 
             raise InputError("a plain number is due", value=in_words(value), limit="such as 1.5", remedy=remedy)
         if not math.isfinite(value):
             raise InputError("a finite number is due", value=in_words(value))
+        if abs(value) > LARGEST_NUMBER:
+            raise InputError("the number is too large", value=in_words(value), limit=f"up to {LARGEST_NUMBER:g}")
         if nonzero and value == 0:
             raise InputError("the number must not be zero: it would leave no load", value=in_words(value))
         shown = f"{above if above is not None else least if least is not None else 0:g}"
@@ -94,6 +98,15 @@ def _text(value: object) -> str:
     return value
 
 
+def _title(value: object) -> str:
+    """Read a title: one line, since it stands on a terminal, in figures and in tables."""
+    text = _text(value)
+    if not text.isprintable() or len(text) > LONGEST_TITLE:
+        what = "a title is one line of plain text" if not text.isprintable() else "the title is too long"
+        raise InputError(what, value=in_words(text), limit=f"up to {LONGEST_TITLE} characters, without line ends")
+    return text
+
+
 def _whole(value: object) -> int:
     if isinstance(value, bool) or not isinstance(value, int):
         raise InputError("a whole number is due", value=in_words(value), limit="1 or more")
@@ -105,10 +118,14 @@ def _whole(value: object) -> int:
 def _count(value: object) -> int | Literal["fewest"]:
     if value == "fewest":
         return "fewest"
+    limit = f'a whole number from 1 to {MOST_PADS}, or "fewest"'
     try:
-        return _whole(value)
+        count = _whole(value)
     except InputError as error:
-        raise InputError(error.what, value=error.value, limit='a whole number from 1, or "fewest"') from None
+        raise InputError(error.what, value=error.value, limit=limit) from None
+    if count > MOST_PADS:
+        raise InputError("these are more pads than a rig can have here", value=in_words(count), limit=limit)
+    return count
 
 
 def _several(count: int | None = None) -> Callable[[object], Floats]:
@@ -206,6 +223,9 @@ _pair_schema = {"type": "array", "items": _pattern("length"), "minItems": 2, "ma
 _group_schema = {"type": "array", "minItems": 2, "maxItems": 2, "items": {"type": ["integer", "array"]}}
 
 Text = Annotated[str, PlainValidator(_text), WithJsonSchema({"type": "string", "minLength": 1})]
+Title = Annotated[
+    str, PlainValidator(_title), WithJsonSchema({"type": "string", "minLength": 1, "maxLength": LONGEST_TITLE})
+]
 Length = Annotated[float, *_quantity("length")]
 PositiveLength = Annotated[float, *_quantity("length", above=0.0)]
 LengthOrZero = Annotated[float, *_quantity("length", least=0.0)]
@@ -223,7 +243,7 @@ Whole = Annotated[int, PlainValidator(_whole), WithJsonSchema({"type": "integer"
 Count = Annotated[
     int | Literal["fewest"],
     PlainValidator(_count),
-    WithJsonSchema({"anyOf": [{"type": "integer", "minimum": 1}, {"const": "fewest"}]}),
+    WithJsonSchema({"anyOf": [{"type": "integer", "minimum": 1, "maximum": MOST_PADS}, {"const": "fewest"}]}),
 ]
 Lengths = Annotated[Any, PlainValidator(_several()), WithJsonSchema(_lengths_schema)]
 TwoLengths = Annotated[Any, PlainValidator(_several(2)), WithJsonSchema({"anyOf": [{"type": "string"}, _pair_schema]})]

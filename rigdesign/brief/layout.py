@@ -204,7 +204,7 @@ class AcceptanceTable(Bands):
 class BriefFile(Table):
     """What is to be tested and within which limits."""
 
-    title: f.Text | None = _key("Title of the test; default: the name of the file.")
+    title: f.Title | None = _key("Title of the test; default: the name of the file.")
     specimen: SpecimenTable = _needed("The thing under test.")
     load: list[LoadUnion] = _needed("The loads; several add up to the target.", min_length=1)
     test: TestTable = _key("How the test is run.", {})

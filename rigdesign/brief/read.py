@@ -57,6 +57,8 @@ def _parsed(text: str, name: str) -> dict[str, Any]:
             where=where,
             remedy=_quotes(text, int(line)) if line else "",
         ) from None
+    except ValueError:  # tomllib reads no whole number of more than 4300 digits and says so in its own way
+        raise BriefError("the brief holds a whole number of thousands of digits", where=name) from None
     except RecursionError:
         raise BriefError("the brief nests its brackets too deeply", where=name) from None
 

@@ -28,7 +28,8 @@ class FolderTexts:
     def __init__(self, brief: Path) -> None:
         """Read the brief itself; raise BriefError if it cannot be read."""
         self.folder = brief.parent
-        self._texts = {brief.name: _read(brief, brief.name, BriefError, "", what="the brief")}
+        # a path such as "." has no name of its own and is called what it was called
+        self._texts = {brief.name: _read(brief, brief.name or str(brief), BriefError, "", what="the brief")}
 
     def table(self, name: str, where: str) -> str:
         """Return the text of a table; raise BriefError if it lies outside, TableError if it cannot be read."""

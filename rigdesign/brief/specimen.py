@@ -14,6 +14,9 @@ from rigdesign.display import show
 
 T = TypeVar("T")
 
+LEAST_SPAN = 1e-8
+"""Of the distance from x = 0: a shorter specimen has stations that floats hold to less than 1e-8 of its span."""
+
 _NOTHING = frozen(np.empty(0))
 
 
@@ -30,6 +33,11 @@ def specimen(table: SpecimenTable, context: Context) -> Specimen:
         left, right = map(float, _given(table.ends))
         if not left < right:
             raise context.error("the two ends must be in order of x", "specimen", "ends")
+    if not right - left > LEAST_SPAN * max(abs(left), abs(right)):
+        key = "tip" if table.support == "cantilever" else "ends"
+        limit = f"a span of more than {LEAST_SPAN:g} of its distance from x = 0"
+        what = "the specimen is too short for where it stands, so that stations on it could not be told apart"
+        raise context.error(what, "specimen", key, limit=limit, remedy="count x from nearer by")
     bare = Specimen(table.support, left, right, (), None, 1 if table.gravity == "with" else -1)
     return replace(bare, supports=_supports(table, bare, context), weight=_weight(table, bare, context))
 

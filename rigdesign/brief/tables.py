@@ -24,6 +24,7 @@ from rigdesign.brief.messages import PLAN_RIG
 from rigdesign.brief.model import Floats
 from rigdesign.errors import InputError, TableError
 from rigdesign.units import NUMBER, column_fraction, scaled, split_heading
+from rigdesign.words import LARGEST_NUMBER
 
 Repeats = Literal["jump", "none"]
 _PLAIN = re.compile(rf"\s*{NUMBER}\s*")
@@ -101,6 +102,7 @@ def read_table(
         columns[column] = scaled(values[heading.names.index(column)], factor)
         columns[column].setflags(write=False)
     table = CsvTable(name, text, heading, columns)
+    _check_size(table)
     _check_order(table, repeats)
     return table
 
@@ -225,6 +227,17 @@ def _numbers(column: str, cells: tuple[str, ...], name: str, lines: list[int]) -
                 limit="a finite number with a decimal point",
             )
     return np.fromiter((float(cell.replace("−", "-")) for cell in cells), dtype=float, count=len(cells))
+
+
+def _check_size(table: CsvTable) -> None:
+    """Raise TableError at the first cell that is too large to be worked with."""
+    for column, values in table.columns.items():
+        if (large := np.flatnonzero(np.abs(values) > LARGEST_NUMBER)).size:
+            row = int(large[0])
+            limit = f"up to {LARGEST_NUMBER:g} in SI units"
+            raise TableError(
+                "the number is too large", where=table.where(row), value=table.cell(column, row), limit=limit
+            )
 
 
 def _check_order(table: CsvTable, repeats: Repeats) -> None:

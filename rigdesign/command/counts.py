@@ -6,8 +6,7 @@ import re
 
 import click
 
-MOST = 1000
-"""No study goes beyond this many pads."""
+from rigdesign.words import MOST_PADS
 
 
 def read_counts(_context: click.Context, _option: click.Parameter, value: str) -> tuple[int, ...]:
@@ -37,8 +36,8 @@ def parse_counts(text: str) -> tuple[int, ...]:
         if match is None:
             raise ValueError(f"{part.strip()!r} is not a number of pads; write 8, or 4..24, or 4,6,8")
         low, high = int(match[1]), int(match[2] or match[1])
-        if low < 1 or high > MOST:
-            raise ValueError(f"{part.strip()!r} is out of range; numbers of pads go from 1 to {MOST}")
+        if low < 1 or high > MOST_PADS:
+            raise ValueError(f"{part.strip()!r} is out of range; numbers of pads go from 1 to {MOST_PADS}")
         if low > high:
             raise ValueError(f"{part.strip()!r} runs backwards; write {high}..{low}")
         numbers.update(range(low, high + 1))

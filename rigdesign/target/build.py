@@ -15,6 +15,7 @@ from rigdesign.target.model import Target
 from rigdesign.target.peaks import peak, stretches
 from rigdesign.target.remarks import remarks
 from rigdesign.target.sums import Combined
+from rigdesign.words import LARGEST_NUMBER, SMALLEST_TOTAL
 
 # A sum below this part of the largest force beyond any station is the rounding of loads that cancel.
 _CANCELLED = 1e-9
@@ -28,7 +29,7 @@ def build_target(brief: Brief) -> Target:
     Raises
     ------
     BriefError
-        If the loads add up to nothing, or one of them cannot be made into a curve (see `load_curve`).
+        If the loads add up to nothing or bend nothing, or one of them cannot be made into a curve (see `load_curve`).
 
     Notes
     -----
@@ -40,6 +41,7 @@ def build_target(brief: Brief) -> Target:
     gravity = gravity_curve(brief)
     net = total if gravity is NOTHING else Combined((total, gravity), (1.0, -1.0))
     (shear_peak, shear_x), (moment_peak, moment_x) = _peaks(brief, total)
+    _refuse_unbent(brief, total, moment_peak)
     return Target(
         brief=brief,
         total=total,
@@ -54,18 +56,39 @@ def build_target(brief: Brief) -> Target:
 
 
 def _refuse_nothing(total: Curve) -> None:
-    """Raise BriefError where the loads cancel: there is then no resultant and no place for a jack."""
+    """Raise BriefError where the loads cancel, or come to a size beyond all reason: there is no place for a jack."""
     # between the breaks as well: a load that changes sign in a stretch may cancel itself there
     x = np.union1d(total.breaks, np.linspace(total.breaks[0], total.breaks[-1], _LOOKED_AT))
     largest = float(np.abs(total.force_beyond(x, "inboard")).max(initial=0.0))
-    if abs(total.total) > _CANCELLED * largest:
+    if abs(total.total) <= _CANCELLED * largest:
+        raise BriefError(
+            "the loads add up to nothing, so that no jack can bring them",
+            where="[[load]]",
+            value=show(0.0, "force"),
+            limit="a total other than zero",
+            remedy="check their totals and signs; loads of both signs need a rig for each sign",
+        )
+    if not SMALLEST_TOTAL <= largest <= LARGEST_NUMBER:
+        raise BriefError(
+            "the loads are of a size that no rig can bring",
+            where="[[load]]",
+            value=f"{largest:.3g} N",
+            limit=f"{SMALLEST_TOTAL:g} N to {LARGEST_NUMBER:g} N",
+            remedy="check their units and times",
+        )
+
+
+def _refuse_unbent(brief: Brief, total: Curve, moment_peak: float) -> None:
+    """Raise BriefError where the loads go straight into the supports: no error of the moment could be judged."""
+    if moment_peak > _CANCELLED * abs(total.total) * (brief.specimen.right - brief.specimen.left):
         return
+    held = "root" if brief.specimen.support == "cantilever" else "supports"
     raise BriefError(
-        "the loads add up to nothing, so that no jack can bring them",
+        f"the loads act at the {held} alone, so that they bend the specimen nowhere",
         where="[[load]]",
-        value=show(0.0, "force"),
-        limit="a total other than zero",
-        remedy="check their totals and signs; loads of both signs need a rig for each sign",
+        value=f"largest moment {show(0.0, 'moment')}",
+        limit="a moment other than zero",
+        remedy="check their stations",
     )
 
 

@@ -111,6 +111,7 @@ def test_a_brief_that_is_a_folder_or_is_not_there(rigdesign, here):
     )
     message = refused(rigdesign, here, "design", "fun.toml")
     assert "fun.toml" in message
+    assert refused(rigdesign, here, "design", ".") == 'rigdesign: .: the brief is a folder, not a file: "."\n'
 
 
 def test_a_brief_that_cannot_be_read(rigdesign, here, monkeypatch):

@@ -184,7 +184,7 @@ def test_specimen_and_test(refusal, edit, parts) -> None:
 @pytest.mark.parametrize(
     ("keys", "parts"),
     [
-        ("count = 0", ["line 13, [pads] count", "too small: 0", 'a whole number from 1, or "fewest"']),
+        ("count = 0", ["line 13, [pads] count", "too small: 0", 'a whole number from 1 to 1000, or "fewest"']),
         ("count = 2.5", ["a whole number is due: 2.5"]),
         ("count = true", ["a whole number is due: true"]),
         ('count = "few"', ['a whole number is due: "few"', '"fewest"']),

@@ -4,7 +4,8 @@ import re
 
 import pytest
 
-from rigdesign.command.counts import MOST, parse_counts
+from rigdesign.command.counts import parse_counts
+from rigdesign.words import MOST_PADS
 
 
 @pytest.mark.parametrize(
@@ -25,7 +26,7 @@ def test_numbers_come_in_order_and_once(text, numbers):
         ("3.5", "not a number"),
         ("٣", "not a number"),
         ("0", "go from 1 to"),
-        (f"4..{MOST + 1}", f"go from 1 to {MOST}"),
+        (f"4..{MOST_PADS + 1}", f"go from 1 to {MOST_PADS}"),
         ("9..3", "runs backwards; write 3..9"),
         ("4,,6", "not a number"),
     ],

@@ -169,6 +169,24 @@ def test_loads_that_add_up_to_nothing(loads):
     assert caught.value.where == "[[load]]"
 
 
+@pytest.mark.parametrize("force", [4e-13, 3e15])
+def test_loads_beyond_all_reason(force):
+    with pytest.raises(BriefError, match="of a size that no rig can bring") as caught:
+        build_target(make_brief(loads=(shape_load("sine", force / 8, times=8.0),)))
+    assert caught.value.value == f"{force:.3g} N"
+    assert build_target(make_brief(loads=(shape_load("sine", 2e-12),))).total.total == pytest.approx(2e-12, rel=1e-9)
+
+
+@pytest.mark.parametrize(
+    ("specimen", "x", "held"),
+    [(make_specimen(), LEFT, "root"), (two_supports(LEFT, 0.8, 2.9, RIGHT), [0.8, 2.9], "supports")],
+)
+def test_loads_that_go_straight_into_the_supports(specimen, x, held):
+    forces = [700.0, 300.0] if held == "supports" else 700.0
+    with pytest.raises(BriefError, match=f"act at the {held} alone, so that they bend the specimen nowhere"):
+        build_target(make_brief(specimen=specimen, loads=(point_loads(x, forces),)))
+
+
 def test_inertia_needs_a_weight():
     with pytest.raises(BriefError, match="needs the specimen's weight"):
         build_target(make_brief(loads=(shape_load(), inertia_load(2.0))))
