@@ -12,6 +12,7 @@ from rigdesign.checks.geometry import leans
 from rigdesign.checks.measures import length
 from rigdesign.checks.model import Check, RegionVerdict
 from rigdesign.checks.regions import WHOLE_SPAN, inside, sides
+from rigdesign.checks.remedies import band_remedy, jack_remedy
 from rigdesign.checks.sampling import by_side
 from rigdesign.checks.statics import off_line
 from rigdesign.checks.text import also, of_quantity, percent
@@ -151,7 +152,7 @@ def _band_exceeded(check: Check, row: RegionVerdict) -> Finding:
         f"{word} of the {quantity} at {show(float(curves.x[worst]), 'length', unit='m')}: {row.use:.3g} times its band",
         f"{of_quantity(size, quantity)}, {percent(size / peak)} of the peak target {quantity}",
         f"{of_quantity(band, quantity)}, {percent(band / peak)} of the peak target {quantity}",
-        "more pads, other places for them, a smaller drill step or a wider band",
+        band_remedy(check, quantity, float(curves.x[worst]), size),
     )
 
 
@@ -172,7 +173,7 @@ def _jack_offset(check: Check) -> Iterator[Finding]:
         f"{percent(moment / target.moment_peak)} of the peak target moment, which the errors include",
         show(abs(offset), "length"),
         "at the resultant",
-        "let the jack stand at the resultant, or take a smaller drill step",
+        jack_remedy(check),
     )
 
 

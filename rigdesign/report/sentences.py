@@ -18,6 +18,9 @@ CAUTION = (
     "under the codes and safety rules that hold where you are."
 )
 
+MOST_REASONS = 3
+"""So many failures apart from the bands are named in the verdict."""
+
 _AT_ONE_PLACE = 1e-6  # [m]: far below what a drawing or a survey can tell
 
 
@@ -43,8 +46,11 @@ def verdict(check: Check) -> str:
     reasons = [
         f"{region.quantity} over {region.name} takes {percent(region.use or 0.0)} of its band" for region in broken
     ]
-    if not reasons:
-        reasons = [f"{finding.object}: {finding.text.rstrip('.')} ({finding.name})" for finding in failures[:3]]
+    # what breaks a band is a finding of the statics as well, and said already
+    others = [finding for finding in failures if not (broken and finding.stage == "statics")]
+    reasons += [f"{finding.object}: {finding.text.rstrip('.')} ({finding.name})" for finding in others[:MOST_REASONS]]
+    if len(others) > MOST_REASONS:
+        reasons.append(f"{len(others) - MOST_REASONS} more among the findings")
     return f"Not accepted: {size}; " + "; ".join(reasons) + "."
 
 
@@ -112,7 +118,8 @@ def _hand_line(check: Check) -> str:
     if check.hand_moment <= 0:
         return ""
     return (
-        f"By hand, {counted(check.rig.plan.n_pads, 'strip')} of equal width lumped at the centroid would give "
+        f"By hand, {counted(check.rig.plan.n_pads, 'strip')} of equal width lumped at the centroid, wherever that lies "
+        "and without drilling, would give "
         f"{percent(check.hand_moment)} for the moment and {percent(check.hand_shear)} for the shear; "
         f"this rig gives {percent(check.moment_error_peak)} and {percent(check.shear_error_peak)}."
     )

@@ -18,7 +18,7 @@ from factories import (
 )
 from hand_rigs import make_rig, with_brief, with_hole
 
-from rigdesign.brief.model import Region
+from rigdesign.brief.model import JackRules, Region
 from rigdesign.checks import check
 from rigdesign.checks.measures import hand_pads
 from rigdesign.findings import Finding
@@ -252,3 +252,38 @@ def test_statics_that_does_not_close_fails(monkeypatch):
     monkeypatch.setattr(module, "lever_fractions", lambda a, b: (1.01 * b / (a + b), a / (a + b)))
     texts = [f.text for f in check(rig()).findings if f.severity == "failure"]
     assert sum(text.startswith("the statics does not close") for text in texts) == 3
+
+
+def test_a_jack_that_the_brief_holds_back_is_told_by_its_key():
+    for rules, words in (
+        (JackRules(at=1.4, step=None), 'another "at" in [jack]'),
+        (JackRules(at=None, step=0.05), 'a smaller "step" in [jack]'),
+        (JackRules(at=None, step=None), "a smaller drill step"),
+    ):
+        moved = make_rig(X + 0.0125, FORCE, make_brief(jack=rules))
+        assert words in next(f for f in remarks(moved) if f.object == "jack 1").remedy
+
+
+def test_more_pads_are_not_advised_where_the_place_of_the_jack_makes_the_error():
+    asked = make_acceptance(moment=0.005, shear=None)
+    far = next(
+        f
+        for f in remarks(make_rig(X + 0.03, FORCE, make_brief(acceptance=asked)))
+        if "under-test" in f.text or "over-test" in f.text
+    )
+    assert far.remedy.startswith("the jack's place alone makes more than half of it; let the jack stand")
+    close = next(f for f in remarks(make_rig(X, FORCE, make_brief(acceptance=asked))) if "-test" in f.text)
+    assert close.remedy.startswith("more pads")
+
+
+def test_more_pads_are_not_advised_where_a_keep_out_makes_the_error():
+    asked = make_acceptance(moment=None, shear=0.005)
+    plain = next(f for f in remarks(make_rig(X, FORCE, make_brief(acceptance=asked))) if "of the shear" in f.text)
+    assert plain.remedy.startswith("more pads")
+    x = float(plain.text.split(" at ")[1].split(" m")[0])
+    # the footprint of 120 mm ends where the keep-out starts
+    beside = make_pads(keep_out=((x + 0.06, x + 0.1),))
+    found = next(
+        f for f in remarks(make_rig(X, FORCE, make_brief(acceptance=asked, pads=beside))) if "of the shear" in f.text
+    )
+    assert found.remedy.startswith(f"the keep-out from {x + 0.06:.3f} m to {x + 0.1:.3f} m binds here")

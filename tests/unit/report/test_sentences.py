@@ -46,6 +46,15 @@ def test_a_rig_that_fails_for_another_reason_names_the_finding():
     assert verdict(broken).endswith("pad 3: carries too much (practice 2).")
 
 
+def test_a_broken_band_does_not_hide_another_failure():
+    check = checked(acceptance=make_acceptance(moment=0.001, shear=None))
+    failures = tuple(Finding("practice", "failure", f"pad {k}", "is too near.", number=k) for k in range(1, 6))
+    words = verdict(replace(check, findings=(*check.findings, *failures)))
+    assert "moment over whole span takes " in words
+    assert words.endswith("pad 3: is too near (practice 3); 2 more among the findings.")
+    assert "statics" not in words
+
+
 def test_errors_say_under_and_over_where_and_per_cent_of_what():
     check = checked()
     row = next(region for region in check.regions if region.quantity == "moment")
