@@ -11,7 +11,7 @@ import numpy as np
 from rigdesign.brief.model import Brief
 from rigdesign.checks.curves import curves
 from rigdesign.checks.holes_table import HolesTable, read_holes, with_holes
-from rigdesign.checks.measures import length
+from rigdesign.checks.measures import evenness, length, shares_of_curve
 from rigdesign.checks.model import Check
 from rigdesign.checks.statics import solve_statics
 from rigdesign.checks.text import NOT_PROVEN, percent
@@ -21,7 +21,7 @@ from rigdesign.errors import InputError
 from rigdesign.findings import Finding
 from rigdesign.levers.model import Hole, Piece, Rig
 from rigdesign.pads.model import PadPlan, Proof
-from rigdesign.target.curve import Curve, Floats
+from rigdesign.target.curve import Floats
 from rigdesign.target.model import Target
 
 
@@ -125,35 +125,22 @@ def recheck(rig: Rig, brief: Brief) -> Check:
 
 
 def _rescaled(plan: PadPlan, target: Target, scale: float) -> PadPlan:
-    from rigdesign.pads.forces import LEAST_SHARE  # late: it brings the solvers
-
     force = plan.force * scale
     share = shares_of_curve(target.net, plan.x)
     found = curves(target, plan.x, force)
     use = max(float(found.use("moment").max()), float(found.use("shear").max()))
-    least_share = LEAST_SHARE * abs(target.net.total) / plan.n_pads
-    uneven = np.abs(force - share) / np.maximum(np.abs(share), least_share)
+    uneven = evenness(force, share)
     proof = Proof(
         band_use=use,
         band_use_least=0.0,
         moment_error_least=0.0,
         method=NOT_PROVEN,
         words="the pads are those of a rig that exists",
-        evenness=float(uneven.max()),
-        evenness_before=float(uneven.max()),
+        evenness=uneven,
+        evenness_before=uneven,
         band_use_found=use,
     )
     return replace(plan, target=target, force=force, share=share, proof=proof, findings=())
-
-
-def shares_of_curve(curve: Curve, pad_x: Floats) -> Floats:
-    """Return the part of the load that is nearest to each pad [N], (n_pads,); boundaries lie midway between pads."""
-    order = np.argsort(pad_x, kind="stable")
-    middle = 0.5 * (pad_x[order][1:] + pad_x[order][:-1])
-    beyond = np.concatenate([[curve.total], curve.force_beyond(middle, "inboard"), [0.0]])
-    share = np.empty(pad_x.size)
-    share[order] = beyond[:-1] - beyond[1:]
-    return share
 
 
 def _target_remarks(rig: Rig, moved: Rig, scale: float) -> Iterator[Finding]:

@@ -8,6 +8,7 @@ from rigdesign.checks.curves import curves
 from rigdesign.checks.model import Curves, Statics
 from rigdesign.checks.sampling import local_errors
 from rigdesign.levers.model import Piece, Rig
+from rigdesign.pads.model import LEAST_SHARE
 from rigdesign.target.bands import Quantity
 from rigdesign.target.curve import Curve, Floats
 from rigdesign.target.model import Target
@@ -67,6 +68,28 @@ def hand_errors(target: Target, n_pads: int) -> tuple[float, float]:
     return moment, shear
 
 
+def shares_of_curve(curve: Curve, pad_x: Floats) -> Floats:
+    """Return the part of the load that is nearest to each pad [N], (n_pads,); boundaries lie midway between pads."""
+    order = np.argsort(pad_x, kind="stable")
+    middle = 0.5 * (pad_x[order][1:] + pad_x[order][:-1])
+    beyond = np.concatenate([[curve.total], curve.force_beyond(middle, "inboard"), [0.0]])
+    share = np.empty(pad_x.size)
+    share[order] = beyond[:-1] - beyond[1:]
+    return share
+
+
+def evenness(force: Floats, share: Floats) -> float:
+    """Return the largest |force − share| over |share| among pads, both (n_pads,) [N].
+
+    A share counts as at least `LEAST_SHARE` of the mean share.
+
+    >>> evenness(np.array([110.0, 290.0]), np.array([100.0, 300.0]))
+    0.1
+    """
+    least = LEAST_SHARE * abs(float(share.mean()))
+    return float((np.abs(force - share) / np.maximum(np.abs(share), least)).max())
+
+
 def arms(piece: Piece) -> tuple[float, float]:
     """Return the arms of a lever from its pivot to ends A and B [m], along the line of its end pins.
 
@@ -81,6 +104,13 @@ def arms(piece: Piece) -> tuple[float, float]:
     along_u, along_v = (b.u - a.u) / length, (b.v - a.v) / length
     to_a = (pivot.u - a.u) * along_u + (pivot.v - a.v) * along_v
     return float(to_a), float((b.u - pivot.u) * along_u + (b.v - pivot.v) * along_v)
+
+
+def reaches(piece: Piece) -> tuple[float, ...]:
+    """Return how far each outer hole of a piece is from its pivot [m]: a lever's arms, a plate's distances."""
+    if piece.kind == "lever":
+        return arms(piece)
+    return tuple(float(np.hypot(hole.u - piece.pivot.u, hole.v - piece.pivot.v)) for hole in piece.ends)
 
 
 def length(piece: Piece) -> float:
@@ -115,10 +145,9 @@ def steel_estimate(rig: Rig, statics: Statics) -> float:
 
 def _plate_steel(piece: Piece, statics: Statics) -> float:
     total = 0.0
-    for hole in piece.ends:
+    for hole, r in zip(piece.ends, reaches(piece), strict=True):
         kind, number = hole.joins.split()
         force = statics.pad_force[int(number) - 1] if kind == "pad" else statics.piece_load[hole.joins]
-        r = float(np.hypot(hole.u - piece.pivot.u, hole.v - piece.pivot.v))
         total += abs(force * r) ** (2 / 3) * r
     return total
 

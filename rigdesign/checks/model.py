@@ -17,8 +17,9 @@ from rigdesign.target.curve import Floats
 class Statics:
     """Forces solved down the tree from holes and jack forces alone.
 
-    `pad_force` (n_pads,) [N]; `share` (n_pads,) of its own jack's force; `piece_load` [N] by piece name; `residual`
-    is the largest force [as a fraction of the jack's] and moment [over load times length] left over at any pivot.
+    `pad_force` (n_pads,) [N]; `share` (n_pads,) of its own jack's force; `piece_load` [N] by piece name;
+    `force_residual`, `moment_residual` are the largest force [as a fraction of the jack's] and moment [over load times
+    length] left over at any pivot.
     """
 
     pad_force: Floats
@@ -83,7 +84,9 @@ class Check:
     `moment_error_local`, `shear_error_local` of the local value where it is at least 5 % of the peak.
     `shear_area` is ∫|V_rig − V_target| dx [N·m].  `hand_moment`, `hand_shear` are the peak errors of as many strips of
     equal width lumped at their centroids.  `jack_offset` [m] is from the resultant to the jack.
-    `sum_residual`, `moment_sum_residual` close ΣF and ΣFx of the pads against the jacks.
+    `sum_residual`, `moment_sum_residual` close ΣF and ΣFx of the pads against the jacks.  `share_of_curve` (n_pads,)
+    [N] is the net target's own load nearest to each pad as drilled, `evenness` the largest |force − share| over that
+    share.
     """
 
     rig: Rig
@@ -106,6 +109,8 @@ class Check:
     sum_residual: float
     moment_sum_residual: float
     steel_estimate: float
+    share_of_curve: Floats
+    evenness: float
     findings: tuple[Finding, ...]
 
     @property

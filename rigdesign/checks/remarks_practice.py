@@ -10,7 +10,7 @@ from collections.abc import Iterator
 import numpy as np
 
 from rigdesign.brief.model import LeverRules
-from rigdesign.checks.measures import arms, length, ratio
+from rigdesign.checks.measures import length, ratio, reaches
 from rigdesign.checks.model import Check
 from rigdesign.checks.text import NOT_PROVEN, also, percent
 from rigdesign.display import show
@@ -20,6 +20,7 @@ from rigdesign.target.curve import Floats
 
 USUAL_RATIO = 4.0  # common practice: 4 is accepted, above 5 avoided
 IDLE_PAD = 0.05  # of the mean pad force: such a pad is hardware for nothing
+COSTLY_DRILLING, COSTLY_USE = 1.2, 0.5  # drilling is remarked on where it raises the band use so much, to above this
 LENGTH_SLACK = 1e-9  # m: a pad at its limit must not fail by rounding
 FORCE_SLACK = 1e-9  # of the limit, for the same reason
 
@@ -30,6 +31,7 @@ def practice_remarks(check: Check) -> Iterator[Finding]:
     yield from _pad_places(check)
     yield from _levers(check)
     yield from _idle_pads(check)
+    yield from _drilling(check)
     yield from _aim(check)
 
 
@@ -194,9 +196,7 @@ def _ratios(levers: list[Piece], limit: float) -> Iterator[Finding]:
 
 
 def _shortest(piece: Piece) -> float:
-    if piece.kind == "lever":
-        return min(arms(piece))
-    return min(float(np.hypot(hole.u - piece.pivot.u, hole.v - piece.pivot.v)) for hole in piece.ends)
+    return min(reaches(piece))
 
 
 def _others(breakers: dict[Piece, float], worst: Piece) -> str:
@@ -219,6 +219,26 @@ def _idle_pads(check: Check) -> Iterator[Finding]:
         )
 
 
+def _drilling(check: Check) -> Iterator[Finding]:
+    """What whole drill steps, or holes as built, cost of the bands, where it matters for acceptance."""
+    plan = check.rig.plan
+    before, use, step = plan.proof.band_use, check.band_use, plan.target.brief.levers.drill_step
+    if plan.proof.method == NOT_PROVEN or use <= max(COSTLY_DRILLING * before, COSTLY_USE):
+        return
+    spoiled = before <= 1.0 < use
+    yield Finding(
+        "practice",
+        "warning" if spoiled else "note",
+        "rig",
+        "holes on whole drill steps take the rig out of its bands"
+        if spoiled
+        else "holes on whole drill steps cost much of the bands",
+        f"band use {use:.3g} as drilled, {before:.3g} before drilling",
+        f"drill_step {show(step, 'length', unit='mm')}",
+        "choose a finer drill_step",
+    )
+
+
 def _aim(check: Check) -> Iterator[Finding]:
     plan = check.rig.plan
     if plan.proof.method == NOT_PROVEN:
@@ -230,7 +250,7 @@ def _aim(check: Check) -> Iterator[Finding]:
     }[rules.aim]
     if rules.places == "free" and rules.aim == "closest" and plan.proof.band_use_found >= plan.proof.band_use:
         strove = "least band use; free places that follow one curve leave no choice of forces beyond that"
-    evenness = f"up to {percent(plan.proof.evenness)} of its share of the curve"
+    evenness = f"up to {percent(check.evenness)} of its share of the curve"
     yield Finding(
         "practice", "note", "pads", f'the aim "{rules.aim}" was {strove}', f"a pad's force is off by {evenness}"
     )

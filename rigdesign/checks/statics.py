@@ -146,7 +146,7 @@ def solve_statics(rig: Rig) -> Statics:
 
 
 def _residuals(tree: Layout, load: Floats) -> tuple[Floats, Floats]:
-    """What ΣF [N] and ΣM [over load times length] leave at each pivot: (n_pieces,) and (n_pieces, 2) or empty.
+    """What ΣF [N] and ΣM [over load times length] leave at each pivot: (n_pieces,) and (2, n_pieces), or empty.
 
     Moments of a lever are taken along its own line, those of a plate about both axes of its frame.
     """

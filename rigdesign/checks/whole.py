@@ -51,6 +51,7 @@ def check(rig: Rig, extra: tuple[Finding, ...] = ()) -> Check:
     shear_local, shear_local_x = measures.local_error(full, "shear", target.shear_peak)
     hand_moment, hand_shear = measures.hand_errors(target, int(rig.pad_x.size))
     sum_left, moment_left = measures.sum_residuals(rig, solved)
+    share = measures.shares_of_curve(target.net, rig.pad_x)
     result = Check(
         rig=rig,
         statics=solved,
@@ -72,6 +73,8 @@ def check(rig: Rig, extra: tuple[Finding, ...] = ()) -> Check:
         sum_residual=sum_left,
         moment_sum_residual=moment_left,
         steel_estimate=measures.steel_estimate(rig, solved),
+        share_of_curve=share,
+        evenness=measures.evenness(solved.pad_force, share),
         findings=(),
     )
     earlier = target.findings + rig.plan.findings + rig.findings

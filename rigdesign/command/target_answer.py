@@ -20,14 +20,12 @@ def target_object(target: Target) -> dict[str, Any]:
     from rigdesign.target.words import echo
 
     specimen = target.brief.specimen
-    about = specimen.supports[0] if specimen.supports else specimen.left
-    first = target.total.first_moment - about * target.total.total
     return {
         "title": target.brief.title,
         "resultant_N": target.resultant,
         "centroid_x_m": target.centroid,
-        "root_moment_Nm": first,
-        "moment_about_m": about,
+        "root_moment_Nm": target.moment_about,
+        "moment_about_m": target.about,
         "pads_resultant_N": target.net.total,
         "shear_peak_N": target.shear_peak,
         "shear_peak_x_m": target.shear_peak_x,

@@ -14,6 +14,8 @@ from rich.table import Table
 from rich.text import Text
 
 from rigdesign.chain import Study
+from rigdesign.checks.measures import ratio, reaches
+from rigdesign.checks.remarks_practice import pressures
 from rigdesign.checks.text import percent
 from rigdesign.command.pipe import reader_may_leave
 from rigdesign.display import System, show
@@ -152,7 +154,6 @@ def _pad_table(check: Check, system: System) -> tuple[list[str], list[list[str]]
     rig = check.rig
     force = scale("force", max(abs(float(f)) for f in check.statics.pad_force), system)
     place = scale("length", 1.0, system)
-    length, width = rig.plan.target.brief.pads.length, rig.plan.target.brief.pads.width
     hangs = {hole.joins: piece.name for tree in rig.trees for piece in tree.pieces for hole in piece.ends}
     headings = [
         "pad",
@@ -162,15 +163,15 @@ def _pad_table(check: Check, system: System) -> tuple[list[str], list[list[str]]
         "share of jack",
         "hangs on",
     ]
-    area = length * width if width and length > 0 else 0.0
-    pressure = scale("pressure", float(abs(check.statics.pad_force).max()) / area, system, 2) if area else None
-    if pressure:
-        headings.insert(5, f"pressure [{pressure.unit}]")
+    pressure = pressures(check)
+    bears = None if pressure is None else scale("pressure", float(pressure.max()), system, 2)
+    if bears is not None:
+        headings.insert(5, f"pressure [{bears.unit}]")
     rows = []
     for k, (x, f) in enumerate(zip(rig.pad_x, check.statics.pad_force, strict=True)):
         row = [str(k + 1), place.show(float(x)), force.show(float(f)), force.show(float(rig.plan.force[k]))]
         row += [f"{100 * float(check.statics.share[k]):.2f} %"]
-        row += [pressure.show(abs(float(f)) / area)] if pressure else []
+        row += [bears.show(float(pressure[k]))] if bears is not None and pressure is not None else []
         rows.append([*row, hangs.get(f"pad {k + 1}", "jack 1")])
     return headings, rows
 
@@ -185,10 +186,9 @@ def _lever_table(check: Check, system: System) -> tuple[list[str], list[list[str
     for piece in (piece for tree in check.rig.trees for piece in tree.pieces):
         row = [str(piece.number), str(piece.tier), piece.parent, place.show(piece.pivot.x)]
         row.append(loads.show(check.statics.piece_load[piece.name]))
-        lengths = [math.hypot(hole.u - piece.pivot.u, hole.v - piece.pivot.v) for hole in piece.ends]
-        for hole, length in zip(piece.ends, lengths, strict=True):
-            row += [arms.show(length), hole.joins]
-        rows.append([*row, f"{max(lengths) / min(lengths):.2f}"])
+        for hole, arm in zip(piece.ends, reaches(piece), strict=True):
+            row += [arms.show(arm), hole.joins]
+        rows.append([*row, f"{ratio(piece):.2f}"])
     return headings, rows
 
 

@@ -6,20 +6,17 @@ from collections.abc import Callable
 
 import numpy as np
 
-from rigdesign.findings import Finding, Refusal, numbered
+from rigdesign.findings import Refusal
 from rigdesign.levers.drilled import Drilled
 from rigdesign.levers.drilling_fixed import drill_fixed
 from rigdesign.levers.drilling_free import drill_free
 from rigdesign.levers.geometry import build_tree
-from rigdesign.levers.grouping import group_pads, millimetres
+from rigdesign.levers.grouping import group_pads
 from rigdesign.levers.hanging import hang_fixed, hang_free
 from rigdesign.levers.model import Rig
 from rigdesign.levers.wiring import Wiring, ideal_levers
 from rigdesign.pads.model import PadPlan
 from rigdesign.pads.tube import Tube, build_tube
-
-COSTLY, MATTERS = 1.2, 0.5
-"""Drilling is remarked on where it raises the band use by this factor, to more than this."""
 
 Progress = Callable[[float, str], None]
 
@@ -62,8 +59,7 @@ def build_rig(plan: PadPlan, progress: Progress | None = None) -> Rig | Refusal:
     if progress is not None:
         progress(1.0, "drilled")
     words = f"{_grouping_words(plan, wiring)}; {drilled.words}"
-    findings = numbered(_remarks(plan, drilled.use))
-    return Rig(plan, drilled.hung.pad_x[0].copy(), np.zeros(plan.n_pads), (tree,), words, findings)
+    return Rig(plan, drilled.hung.pad_x[0].copy(), np.zeros(plan.n_pads), (tree,), words, ())
 
 
 def _alone(plan: PadPlan, wiring: Wiring, tube: Tube) -> Drilled:
@@ -77,37 +73,16 @@ def _alone(plan: PadPlan, wiring: Wiring, tube: Tube) -> Drilled:
     return Drilled(hung, np.empty((0, 2), dtype=np.int64), use, "nothing to drill")
 
 
-def _remarks(plan: PadPlan, use: float) -> list[Finding]:
-    """What whole drill steps cost, where it matters for acceptance."""
-    before, step = plan.proof.band_use, plan.target.brief.levers.drill_step
-    if use <= max(COSTLY * before, MATTERS):
-        return []
-    spoiled = before <= 1.0 < use
-    return [
-        Finding(
-            "levers",
-            "warning" if spoiled else "note",
-            "rig",
-            "whole drill steps take the rig out of its bands"
-            if spoiled
-            else "whole drill steps cost much of the bands",
-            f"band use {use:.3g} after drilling, {before:.3g} before",
-            f"drill_step {millimetres(step)}",
-            "choose a finer drill_step",
-        )
-    ]
-
-
 def _grouping_words(plan: PadPlan, wiring: Wiring) -> str:
     if not wiring.n_levers:
         return "grouping: the one pad hangs on the jack itself"
     levers = ideal_levers(wiring, plan.x, np.abs(plan.force))
-    steel = show_steel(levers.steel_estimate)
+    steel = f"steel estimate {show_steel(levers.steel_estimate)} before drilling"
     if plan.target.brief.levers.grouping is not None:
-        return f"grouping: as prescribed, {wiring.n_levers} levers in {wiring.depth} tiers, steel estimate {steel}"
+        return f"grouping: as prescribed, {wiring.n_levers} levers in {wiring.depth} tiers, {steel}"
     return (
-        f"grouping: {wiring.n_levers} levers in {wiring.depth} tiers, steel estimate {steel}, the least of all "
-        "neighbour groupings within the limits"
+        f"grouping: {wiring.n_levers} levers in {wiring.depth} tiers, {steel}, the least of all neighbour groupings "
+        "within the limits"
     )
 
 

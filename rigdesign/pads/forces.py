@@ -17,13 +17,12 @@ import scipy.sparse as sp
 from numpy.typing import NDArray
 from scipy.optimize import linprog
 
+from rigdesign.pads.model import LEAST_SHARE
 from rigdesign.pads.tube import Tube
 from rigdesign.target.curve import Floats
 
 Indices = NDArray[np.int_]
 
-# A pad's share of the curve counts as at least this part of the mean force when deviations are compared.
-LEAST_SHARE = 0.1
 # Even forces are first sought with every pad carrying at least this part of the mean force: no pads that carry nothing.
 WORTH_A_PAD = 0.05
 # The solver's own feasibility tolerance, in units of `rise` and band use.

@@ -10,7 +10,8 @@ from typing import NamedTuple
 
 import numpy as np
 
-from rigdesign.pads.forces import LEAST_SHARE, shares
+from rigdesign.pads.forces import shares
+from rigdesign.pads.model import LEAST_SHARE
 from rigdesign.pads.tube import Tube
 from rigdesign.target.curve import Floats
 

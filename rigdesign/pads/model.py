@@ -8,6 +8,10 @@ from rigdesign.findings import Finding
 from rigdesign.target.curve import Floats
 from rigdesign.target.model import Target
 
+LEAST_SHARE = 0.1
+"""A pad's share of the curve counts as at least this part of the mean force when deviations are compared: a share of
+next to nothing would make every force look uneven."""
+
 
 @dataclass(frozen=True)
 class Proof:

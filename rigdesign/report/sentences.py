@@ -127,9 +127,12 @@ def _hand_line(check: Check) -> str:
 
 def _even_line(check: Check) -> str:
     proof = check.rig.plan.proof
-    text = f"No pad's force differs by more than {percent(proof.evenness)} from its share of the curve"
+    text = f"No pad's force differs by more than {percent(check.evenness)} from its share of the curve"
     if proof.evenness_before > proof.evenness * 1.005:
-        text += f" ({percent(proof.evenness_before)} before the forces were made even)"
+        text += (
+            f" ({percent(proof.evenness)} before drilling, "
+            f"{percent(proof.evenness_before)} before the forces were made even)"
+        )
     return text + "."
 
 

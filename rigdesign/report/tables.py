@@ -91,7 +91,7 @@ def pads_csv(check: Check) -> bytes:
             float(solved.share[i]),
             None if pressure is None else float(pressure[i]),
             hangs.get(f"pad {i + 1}"),
-            float(rig.plan.share[i]),
+            float(check.share_of_curve[i]),
         ]
         for i in range(rig.pad_x.size)
     ]
@@ -194,15 +194,13 @@ def summary(check: Check) -> dict[str, Any]:
 
 def _target_part(check: Check) -> dict[str, Any]:
     target = check.rig.plan.target
-    specimen = target.brief.specimen
-    about = specimen.supports[0] if specimen.supports else specimen.left
     return {
         "title": target.brief.title,
         "verdict": "accepted" if check.accepted else "not accepted",
         "resultant_N": target.resultant,
         "centroid_x_m": target.centroid,
-        "root_moment_Nm": target.total.first_moment - about * target.total.total,
-        "moment_about_m": about,
+        "root_moment_Nm": target.moment_about,
+        "moment_about_m": target.about,
         "shear_peak_N": target.shear_peak,
         "shear_peak_x_m": target.shear_peak_x,
         "moment_peak_Nm": target.moment_peak,
@@ -242,7 +240,8 @@ def _rig_part(check: Check) -> dict[str, Any]:
         "band_use_least": proof.band_use_least,
         "band_use_gap": proof.gap,
         "proof": proof.method,
-        "evenness": proof.evenness,
+        "evenness": check.evenness,
+        "evenness_planned": proof.evenness,
         "evenness_before": proof.evenness_before,
         "steel_estimate": check.steel_estimate,
         "force_residual": check.statics.force_residual,

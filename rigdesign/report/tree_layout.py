@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass, replace
 
+from rigdesign.checks.measures import reaches
 from rigdesign.checks.model import Check
 from rigdesign.display import System
 from rigdesign.levers.model import Piece, Rig
@@ -175,7 +176,7 @@ def _labels(piece: Piece, load: float, frame: Frame) -> tuple[Label, ...]:
     """Arms beneath the bar, side by side where they fit, and the load beneath them; reach is from the bar."""
     low, high = frame.at(piece.ends[0].x) + AIR, frame.at(piece.ends[-1].x) - AIR
     pivot = frame.at(piece.pivot.x)
-    texts = [frame.arms.show(abs(hole.u)) for hole in piece.ends]
+    texts = [frame.arms.show(arm) for arm in reaches(piece)]
     wanted = [(pivot + frame.at(hole.x)) / 2 for hole in piece.ends]
     widths = [text_width(text, frame.font) for text in texts]
     flat = sum(widths) + AIR * (len(texts) - 1) <= high - low

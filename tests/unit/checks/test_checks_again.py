@@ -8,8 +8,8 @@ from factories import make_acceptance, make_brief, make_pads, shape_load
 from hand_rigs import make_rig, with_hole
 
 from rigdesign.checks import check, check_with_holes, check_with_table, recheck, solve_statics
-from rigdesign.checks.again import shares_of_curve
 from rigdesign.checks.holes_table import holes_from_text
+from rigdesign.checks.measures import shares_of_curve
 from rigdesign.errors import TableError
 from rigdesign.report.tables import holes_csv
 from rigdesign.target import build_target

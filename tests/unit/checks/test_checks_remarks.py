@@ -16,7 +16,8 @@ from factories import (
     shape_load,
     two_supports,
 )
-from hand_rigs import make_rig, with_brief, with_hole
+from hand_rigs import make_rig as hand_rig
+from hand_rigs import with_brief, with_hole
 
 from rigdesign.brief.model import JackRules, Region
 from rigdesign.checks import check
@@ -28,6 +29,16 @@ from rigdesign.target import build_target
 TARGET = build_target(make_brief())
 X, FORCE = hand_pads(TARGET.net, 6)
 ALWAYS = ["not checked", 'the aim "closest"']
+
+
+def planned(rig: Rig, band_use: float) -> Rig:
+    """The rig with this band use promised by its plan."""
+    return replace(rig, plan=replace(rig.plan, proof=replace(rig.plan.proof, band_use=band_use)))
+
+
+def make_rig(*args: object, **changes: object) -> Rig:
+    """A rig by hand whose plan promises so little that drilling cannot have spoiled it."""
+    return planned(hand_rig(*args, **changes), np.inf)
 
 
 def rig(**changes: object) -> Rig:
@@ -287,3 +298,18 @@ def test_more_pads_are_not_advised_where_a_keep_out_makes_the_error():
         f for f in remarks(make_rig(X, FORCE, make_brief(acceptance=asked, pads=beside))) if "of the shear" in f.text
     )
     assert found.remedy.startswith(f"the keep-out from {x + 0.06:.3f} m to {x + 0.1:.3f} m binds here")
+
+
+@pytest.mark.parametrize(
+    ("band", "promised", "severity"), [(0.95, 0.6, "warning"), (1.6, 0.5, "note"), (1.6, 0.8, None), (5.0, 0.01, None)]
+)
+def test_what_drilling_costs_is_remarked_on(band, promised, severity):
+    """Bands in units of the error that the rig has; a plan that promised less error than the holes keep."""
+    error = check(rig()).moment_error_peak
+    known = rig(acceptance=make_acceptance(band * error, None), levers=make_levers(drill_step=0.025))
+    found = [f for f in check(planned(known, promised)).findings if "whole drill steps" in f.text]
+    assert [f.severity for f in found] == ([severity] if severity else [])
+    if severity:
+        assert found[0].stage == "practice"
+        assert found[0].value == f"band use {1 / band:.3g} as drilled, {promised} before drilling"
+        assert found[0].limit == "drill_step 25.0 mm"

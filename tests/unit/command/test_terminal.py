@@ -7,7 +7,9 @@ import sys
 
 import pytest
 from factories import make_brief, make_levers, make_pads
+from hand_rigs import make_rig, with_hole
 
+from rigdesign import checks
 from rigdesign.chain import design
 from rigdesign.checks.model import Check
 from rigdesign.command import progress as bars
@@ -86,3 +88,13 @@ def test_a_bar_only_for_what_takes_long(monkeypatch, seconds, shown):
         clock[0] += seconds
         tell(0.5, "choosing pads")
     assert ("choosing pads" in screen.getvalue()) == shown
+
+
+def test_a_lever_whose_pivot_is_beyond_its_pins_does_not_look_sound(capsys):
+    """Ratio and arms are the check's: a pivot 20 mm inboard of hole A has a negative arm and no finite ratio."""
+    rig = make_rig([0.5, 0.9], [1300.0, 1100.0])
+    hole = rig.trees[0].pieces[0].ends[0]
+    Terminal().check(checks.check(with_hole(rig, 1, "pivot", u=hole.u - 0.02)))
+    line = next(line for line in capsys.readouterr().out.splitlines() if line.split()[:3] == ["1", "1", "jack"])
+    assert "−20" in line
+    assert line.split()[-1] == "inf"

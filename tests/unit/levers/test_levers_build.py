@@ -5,7 +5,7 @@ from __future__ import annotations
 import networkx as nx
 import numpy as np
 import pytest
-from factories import make_acceptance, shape_load
+from factories import shape_load
 from lever_plans import best_plan, brief_of, plan_by_hand
 
 from rigdesign.levers import Rig, build_rig
@@ -87,18 +87,3 @@ def test_progress_runs_from_nothing_to_all():
     assert seen[0] == 0.0
     assert seen[-1] == 1.0
     assert seen == sorted(seen)
-
-
-@pytest.mark.parametrize(
-    ("step", "band", "severity"), [(0.025, 0.0008, "warning"), (0.025, 0.0016, "note"), (0.001, 0.0008, None)]
-)
-def test_what_drilling_costs_is_remarked_on(step, band, severity):
-    """Sixteen pads: 25 mm costs two thirds of the band use and more, 1 mm next to nothing."""
-    brief = brief_of(16, levers={"drill_step": step}, acceptance=make_acceptance(band, None))
-    rig = build_rig(best_plan(brief, 16))
-    assert isinstance(rig, Rig)
-    assert [finding.severity for finding in rig.findings] == ([severity] if severity else [])
-    if severity:
-        assert rig.findings[0].name == "levers 1"
-        assert rig.findings[0].limit == "drill_step 25 mm"
-        assert "before" in rig.findings[0].value

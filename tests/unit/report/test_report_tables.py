@@ -10,7 +10,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 from factories import make_acceptance, make_brief, make_pads, make_weight, shape_load, two_supports
-from hand_rigs import make_rig
+from hand_rigs import lumped, make_rig
 
 from rigdesign.brief.model import Region
 from rigdesign.checks import check
@@ -46,7 +46,11 @@ def test_pads(found, tables):
     assert [float(row["pressure_Pa"]) for row in rows] == pytest.approx(FORCE / 0.024)
     hangs = {hole.joins: piece.number for piece in found.rig.trees[0].pieces for hole in piece.ends}
     assert [int(row["lever"]) for row in rows] == [hangs[f"pad {i}"] for i in range(1, 6)]
-    assert [float(row["share_of_curve_N"]) for row in rows] == pytest.approx(1.01 * FORCE)
+    middles = (X[1:] + X[:-1]) / 2
+    specimen = found.rig.plan.target.brief.specimen
+    _, nearest = lumped(found.rig.plan.target, [specimen.left, *middles, specimen.right])
+    # of the pads as drilled, not what the plan says of them; the midpoint sum is good to 1e-5 at a steep tip
+    assert [float(row["share_of_curve_N"]) for row in rows] == pytest.approx(nearest, rel=1e-4)
 
 
 def test_a_pad_on_the_jack_itself_and_without_width_leaves_cells_empty():
@@ -125,6 +129,9 @@ def test_summary_has_the_keys_and_their_values(found):
     assert result["moment_error_peak"] == found.moment_error_peak
     assert result["moment_error_least"] == 0.0031
     assert (result["band_use"], result["band_use_planned"], result["band_use_least"]) == (found.band_use, 0.61, 0.52)
+    share = found.share_of_curve
+    assert result["evenness"] == pytest.approx(np.max(np.abs(FORCE - share) / share), rel=1e-9)
+    assert result["evenness_planned"] == 0.12
     assert result["shear_error_peak"] == found.shear_error_peak
     assert result["steel_estimate"] == found.steel_estimate
     assert result["verdict"] == "accepted"
@@ -154,7 +161,7 @@ def test_summary_of_two_supports_with_weight():
 def test_what_is_infinite_is_null_in_json(found):
     plan = replace(found.rig.plan, proof=replace(found.rig.plan.proof, evenness=float("inf"), band_use_least=0.0))
     result = summary(replace(found, rig=replace(found.rig, plan=plan)))
-    assert (result["evenness"], result["band_use_gap"]) == (None, None)
+    assert (result["evenness_planned"], result["band_use_gap"]) == (None, None)
     json.dumps(result, allow_nan=False)
 
 

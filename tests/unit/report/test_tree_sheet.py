@@ -6,8 +6,10 @@ from itertools import combinations, pairwise
 
 import pytest
 from factories import make_brief, make_levers, make_pads, make_specimen, shape_load, two_supports
+from hand_rigs import make_rig, with_hole
 from matplotlib.textpath import TextPath
 
+from rigdesign import checks
 from rigdesign.chain import design
 from rigdesign.findings import Refusal
 from rigdesign.report.figures_parts import MARK
@@ -145,3 +147,15 @@ def test_a_specimen_far_from_the_origin_is_drawn_on_the_sheet():
     assert not isinstance(answer, Refusal)
     layout = plan_sheet(answer)
     assert 0 < min(layout.pad_x) < max(layout.pad_x) < layout.size[0]
+
+
+def test_arms_are_measured_from_the_pivot_wherever_the_frame_has_its_origin():
+    """A survey may count u from anywhere: all holes of lever 1 moved alike are the same lever."""
+    found = checks.check(make_rig([0.5, 0.9, 1.6], [1300.0, 1100.0, 700.0]))
+    moved = found.rig
+    for hole in found.rig.trees[0].pieces[0].holes:
+        moved = with_hole(moved, 1, hole.name, u=hole.u + 0.05)
+    texts = [[[label.text for label in bar.labels] for bar in plan_sheet(c).bars] for c in (found, checks.check(moved))]
+    assert texts[0] == texts[1]
+    arms = [sorted(abs(hole.u) for hole in piece.ends) for piece in found.rig.trees[0].pieces]
+    assert sorted(texts[0][0][:2]) == sorted(f"{1000 * arm:.0f}" for arm in arms[0])
