@@ -14,6 +14,7 @@ from collections.abc import Callable, Iterable
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
+from rigdesign.errors import BriefError
 from rigdesign.findings import Finding, Refusal, numbered
 
 if TYPE_CHECKING:
@@ -133,6 +134,8 @@ def study(brief: Brief, counts: Iterable[int], progress: Progress | None = None)
     ------
     ValueError
         If `counts` is empty or holds a number below 1.
+    BriefError
+        If the brief prescribes a grouping, which can fit one number of pads only, and `counts` holds several.
     """
     from rigdesign.target import build_target
 
@@ -144,6 +147,12 @@ def study_target(target: Target, counts: Iterable[int], progress: Progress | Non
     wanted = sorted(set(counts))
     if not wanted or wanted[0] < 1:
         raise ValueError("numbers of pads must be 1 or more, and at least one must be given")
+    if len(wanted) > 1 and target.brief.levers.grouping is not None:
+        raise BriefError(
+            "a study compares several numbers of pads, and a prescribed grouping fits one of them",
+            where=f"{target.brief.source.brief_name}, [levers] grouping",
+            remedy="delete the grouping for the study",
+        )
     rows = []
     for done, count in enumerate(wanted):
         part = _share(progress, done / len(wanted), (done + 1) / len(wanted))

@@ -26,7 +26,7 @@ _JSON = click.option("--json", "as_json", is_flag=True, help="Print one JSON obj
 _US = click.option(
     "--us", is_flag=True, help="US customary units on the terminal and in figures; tables keep those of their headings."
 )
-_REPLACE = click.option("--replace", is_flag=True, help="Replace the rig folder if it exists.")
+_REPLACE = click.option("--replace", is_flag=True, help="Replace the folder or figure of an earlier run.")
 _PNG = click.option("--png", is_flag=True, help="Write the figures as PNG as well.")
 _NO_FIGURES = click.option("--no-figures", is_flag=True, help="Write no figures.")
 _BRIEF = click.argument("brief", type=click.Path(path_type=Path), metavar="BRIEF")

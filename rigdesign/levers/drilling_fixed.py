@@ -39,6 +39,9 @@ JUDGED = 4_000_000
 JUDGED_AGAIN = 250_000
 """Rigs times pads that the repeated descents from the chosen place may judge."""
 
+AT_ONE_PLACE = 1e-6
+"""Distance [m] below which the jack stands where it was planned: far less than a hole can be drilled to."""
+
 ALL_PAIRS = 32
 """Up to so many levers the descent tries every pair of them; beyond, pairs of levers that are kin."""
 
@@ -168,7 +171,9 @@ def _no_pivots(step: float) -> Refusal:
 
 def _words(starts: int, judged: int, best: Descended, away: float) -> str:
     end = "no small move improves it" if best.is_settled else "stopped by its work limit"
+    where = f"{millimetres(away)} from where" if away > AT_ONE_PLACE else "where"
+    tried = "1 place" if starts == 1 else f"{starts} places"
     return (
-        f"drilling: {starts} places of the jack tried, {judged} rigs judged; from the chosen one {end}; "
-        f"the jack stands {millimetres(away)} from where it was planned"
+        f"drilling: {tried} of the jack tried, {judged} rigs judged; from the chosen one {end}; "
+        f"the jack stands {where} it was planned"
     )

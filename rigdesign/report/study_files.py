@@ -26,7 +26,7 @@ def study_object(study: Study) -> dict[str, Any]:
 
 def _row(study: Study, row: StudyRow) -> dict[str, Any]:
     if isinstance(row.answer, Refusal):
-        binds = f"{row.answer.text} {row.answer.limit}".strip()
+        binds = "; ".join(part.rstrip(".") for part in (row.answer.text, row.answer.limit) if part)
         return {
             **dict.fromkeys(COLUMNS),
             "pads": row.pads,

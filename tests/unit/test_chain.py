@@ -8,6 +8,7 @@ from factories import make_acceptance, make_brief, make_levers, make_pads, shape
 
 from rigdesign import chain
 from rigdesign.checks.model import Check
+from rigdesign.errors import BriefError
 from rigdesign.findings import Refusal
 
 
@@ -94,6 +95,13 @@ def test_study_without_an_accepted_row_has_no_fewest():
 def test_study_wants_numbers_of_pads(counts):
     with pytest.raises(ValueError, match="1 or more"):
         chain.study(make_brief(), counts)
+
+
+def test_a_study_of_several_counts_takes_no_prescribed_grouping():
+    brief = make_brief(levers=make_levers(grouping=((1, 2), (3, 4))), pads=make_pads(count=4))
+    with pytest.raises(BriefError, match=r"\[levers\] grouping: a study compares several .* delete the grouping"):
+        chain.study(brief, [4, 5])
+    assert chain.study(brief, [4]).rows[0].accepted
 
 
 def test_progress_goes_from_nothing_to_all_and_never_back():

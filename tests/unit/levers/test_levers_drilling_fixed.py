@@ -11,7 +11,8 @@ from lever_plans import arms, best_plan, brief_of, plan_by_hand
 
 from rigdesign.findings import Refusal
 from rigdesign.levers import Rig, build_rig
-from rigdesign.levers.drilling_fixed import NEAR_EQUAL, drill_fixed
+from rigdesign.levers.descent import Descended
+from rigdesign.levers.drilling_fixed import NEAR_EQUAL, _words, drill_fixed
 from rigdesign.levers.grouping import group_pads
 from rigdesign.levers.hanging import hang_fixed
 from rigdesign.levers.judging import build_judge
@@ -100,3 +101,11 @@ def test_limits_hold_and_a_step_without_room_is_refused():
     assert isinstance(refusal, Refusal)
     assert "whole drill steps" in refusal.text
     assert refusal.limit == "drill_step 50 mm"
+
+
+def test_what_rounding_leaves_of_the_jacks_distance_is_not_said():
+    words = [_words(count, 7, Descended(np.array([3]), 0.2, 7, True), away) for count, away in ((1, 9e-16), (3, 8e-4))]
+    assert words[0].startswith("drilling: 1 place of the jack tried, 7 rigs")
+    assert words[0].endswith("the jack stands where it was planned")
+    assert words[1].startswith("drilling: 3 places")
+    assert words[1].endswith("the jack stands 0.8 mm from where it was planned")

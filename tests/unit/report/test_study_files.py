@@ -34,7 +34,7 @@ def test_a_row_holds_the_figures_of_its_check():
 def test_a_row_without_a_rig_says_what_binds_and_knows_no_figures():
     row = study_object(a_study())["rows"][-1]
     assert row["verdict"] == "no rig"
-    assert row["what_binds"].endswith("400 mm")
+    assert row["what_binds"] == '=SUM of 9 pads, too many; a "footprint" of 400 mm'
     assert row["band_use"] is None
 
 
