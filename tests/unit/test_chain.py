@@ -101,7 +101,7 @@ def test_a_study_of_several_counts_takes_no_prescribed_grouping():
     brief = make_brief(levers=make_levers(grouping=((1, 2), (3, 4))), pads=make_pads(count=4))
     with pytest.raises(BriefError, match=r"\[levers\] grouping: a study compares several .* delete the grouping"):
         chain.study(brief, [4, 5])
-    assert chain.study(brief, [4]).rows[0].accepted
+    assert isinstance(chain.study(brief, [4]).rows[0].answer, Check)
 
 
 def test_progress_goes_from_nothing_to_all_and_never_back():
