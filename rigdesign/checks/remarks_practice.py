@@ -5,7 +5,8 @@ Pad forces and pressures are held to their limits at the peak of the test.
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
+from functools import partial
 
 import numpy as np
 
@@ -90,47 +91,64 @@ def _pad_forces(check: Check) -> Iterator[Finding]:
 
 def _pad_places(check: Check) -> Iterator[Finding]:
     brief = check.rig.plan.target.brief
-    rules, specimen = brief.pads, brief.specimen
-    x = check.rig.pad_x
-    start, end = x - rules.length / 2, x + rules.length / 2
-    off = np.maximum(specimen.left - start, end - specimen.right) - LENGTH_SLACK
-    if (off > 0).any():
-        worst, others = _worst_pad(off)
+    half, specimen, x = brief.pads.length / 2, brief.specimen, check.rig.pad_x
+
+    def off(places: Floats) -> Floats:
+        return np.maximum(specimen.left - places, places - specimen.right) + half - LENGTH_SLACK
+
+    if (off(x) > 0).any():
+        worst, others = _worst_pad(off(x))
         yield _failure(
             f"pad {worst + 1}",
             f"the pad's footprint reaches off the specimen{others}",
-            f"{_m(float(start[worst]))} to {_m(float(end[worst]))}",
-            f"{_m(specimen.left)} to {_m(specimen.right)}",
-            "move the pad or make it shorter",
+            _stretch(x[worst] - half, x[worst] + half),
+            _stretch(specimen.left, specimen.right),
+            _place_remedy(check, off, "move the pad or make it shorter"),
         )
-    for low, high in rules.keep_out:
-        into = np.minimum(end - low, high - start) - LENGTH_SLACK
-        if (into > 0).any():
-            worst, others = _worst_pad(into)
+    for low, high in brief.pads.keep_out:
+        into = partial(_into, low, high, half)
+        if (into(x) > 0).any():
+            worst, others = _worst_pad(into(x))
             yield _failure(
                 f"pad {worst + 1}",
-                f"the pad's footprint reaches into the keep-out from {_m(low)} to {_m(high)}{others}",
-                f"{_m(float(start[worst]))} to {_m(float(end[worst]))}",
+                f"the pad's footprint reaches into the keep-out from {_stretch(low, high)}{others}",
+                _stretch(x[worst] - half, x[worst] + half),
                 "clear of it",
-                "move the pad",
+                _place_remedy(check, into, "move the pad"),
             )
     yield from _gaps(check, x)
 
 
+def _into(low: float, high: float, half: float, x: Floats) -> Floats:
+    """How far footprints of pads at x reach into a keep-out [m]."""
+    return np.minimum(x + half - low, high - x + half) - LENGTH_SLACK
+
+
+def _place_remedy(check: Check, missed: Callable[[Floats], Floats], otherwise: str) -> str:
+    """What to do about a place: a smaller drill step where `missed(x)` [m] says that only drilling moved it there."""
+    plan = check.rig.plan
+    if plan.may_move and not (missed(plan.x) > 0).any():
+        return "choose a smaller drill step, or leave the pads more room: before drilling they kept clear"
+    return otherwise
+
+
 def _gaps(check: Check, x: Floats) -> Iterator[Finding]:
     rules = check.rig.plan.target.brief.pads
-    order = np.argsort(x, kind="stable")
-    gap = np.diff(x[order]) - rules.length
-    if (gap < rules.gap - LENGTH_SLACK).any():
-        least = int(np.argmin(gap))
+
+    def missing(places: Floats) -> Floats:
+        return rules.gap + rules.length - np.diff(np.sort(places)) - LENGTH_SLACK
+
+    if (missing(x) > 0).any():
+        order = np.argsort(x, kind="stable")
+        least = int(np.argmax(missing(x)))
         first, second = order[least] + 1, order[least + 1] + 1
-        others = int((gap < rules.gap - LENGTH_SLACK).sum()) - 1
+        others = int((missing(x) > 0).sum()) - 1
         yield _failure(
             f"pad {first} and pad {second}",
             "the gap between the pads is too small" + (f"; so too {others} more" if others else ""),
-            show(float(gap[least]), "length"),
+            show(float(np.diff(x[order])[least] - rules.length), "length"),
             show(rules.gap, "length"),
-            "move the pads apart, make them shorter or take fewer",
+            _place_remedy(check, missing, "move the pads apart, make them shorter or take fewer"),
         )
 
 
@@ -256,5 +274,5 @@ def _aim(check: Check) -> Iterator[Finding]:
     )
 
 
-def _m(value: float) -> str:
-    return show(value, "length", unit="m")
+def _stretch(start: float, end: float) -> str:
+    return f"{show(float(start), 'length', unit='m')} to {show(float(end), 'length', unit='m')}"

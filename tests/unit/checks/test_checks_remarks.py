@@ -132,6 +132,30 @@ def test_footprint_off_the_specimen():
     assert finding.limit == "0.200 m to 3.400 m"
 
 
+def test_places_that_only_drilling_spoiled_ask_for_a_smaller_step():
+    known = rig(pads=make_pads(length=0.53, gap=-1.0))
+    assert remarks(known) == []
+
+    def moved(by, pads):
+        changed = rig(pads=pads)
+        drilled = make_rig(X + by, FORCE, make_brief(pads=pads))
+        return replace(drilled, plan=replace(drilled.plan, x=changed.plan.x, may_move=True))
+
+    edge = float(X[2]) + 0.06
+    gap = float(np.diff(X).min()) - 0.12
+    shift = np.array([0.0, 0.0, 0.0, 0.0, 0.0, -0.01])
+    for by, pads, words in (
+        (-0.003, make_pads(length=0.53, gap=-1.0), "off the specimen"),
+        (0.003, make_pads(keep_out=((edge, edge + 0.1),)), "into the keep-out"),
+        (shift, make_pads(gap=gap), "gap between"),
+    ):
+        finding = next(f for f in remarks(moved(by, pads)) if words in f.text)
+        assert finding.remedy.startswith("choose a smaller drill step"), words
+        stays = moved(by, pads)
+        stays = replace(stays, plan=replace(stays.plan, may_move=False))
+        assert "drill step" not in next(f for f in remarks(stays) if words in f.text).remedy
+
+
 def test_footprint_in_a_keep_out():
     edge = float(X[2]) + 0.06
     assert remarks(rig(pads=make_pads(keep_out=((edge, edge + 0.1),)))) == []
