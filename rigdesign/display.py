@@ -2,7 +2,7 @@
 
 No digit in front of the decimal point is ever rounded away: "1214 lbf", never "1210 lbf".
 
-Depends on: nothing.
+Depends on: words.
 """
 
 from __future__ import annotations
@@ -10,11 +10,12 @@ from __future__ import annotations
 import math
 from typing import Literal
 
+from rigdesign.words import INCH, POUND_FORCE
+
 System = Literal["SI", "us"]
 
 # per kind: unit as shown, what one of it is in SI, from which value on it is used (in that unit)
 _Steps = tuple[tuple[str, float, float], ...]
-_LBF, _IN = 4.4482216152605, 0.0254
 _SI: dict[str, _Steps] = {
     "length": (("mm", 1e-3, 0.0), ("m", 1.0, 0.1)),
     "force": (("N", 1.0, 0.0), ("kN", 1e3, 1.0), ("MN", 1e6, 1.0)),
@@ -28,13 +29,13 @@ _SI: dict[str, _Steps] = {
     "fraction": (("%", 0.01, 0.0),),
 }
 _US: dict[str, _Steps] = {
-    "length": (("in", _IN, 0.0),),
-    "force": (("lbf", _LBF, 0.0), ("kip", 1e3 * _LBF, 10.0)),
+    "length": (("in", INCH, 0.0),),
+    "force": (("lbf", POUND_FORCE, 0.0), ("kip", 1e3 * POUND_FORCE, 10.0)),
     "mass": (("lb", 0.45359237, 0.0),),
     "mass per length": (("lb/ft", 0.45359237 / 0.3048, 0.0),),
-    "running load": (("lbf/in", _LBF / _IN, 0.0),),
-    "moment": (("in·lbf", _LBF * _IN, 0.0), ("in·kip", 1e3 * _LBF * _IN, 100.0)),
-    "pressure": (("psi", _LBF / _IN**2, 0.0), ("ksi", 1e3 * _LBF / _IN**2, 1.0)),
+    "running load": (("lbf/in", POUND_FORCE / INCH, 0.0),),
+    "moment": (("in·lbf", POUND_FORCE * INCH, 0.0), ("in·kip", 1e3 * POUND_FORCE * INCH, 100.0)),
+    "pressure": (("psi", POUND_FORCE / INCH**2, 0.0), ("ksi", 1e3 * POUND_FORCE / INCH**2, 1.0)),
     "angle": _SI["angle"],
     "time": _SI["time"],
     "fraction": _SI["fraction"],
@@ -83,6 +84,15 @@ def show(value: float, kind: str, system: System = "SI", *, digits: int = 3, uni
         if abs(float(f"{value / bigger:.{digits - 1}e}")) >= start:
             name, factor = other, bigger
     return f"{_number(value / factor, name, digits)} {name}"
+
+
+def counted(number: int, word: str) -> str:
+    """A number with its noun.
+
+    >>> counted(1, "pad"), counted(12, "lever")
+    ('1 pad', '12 levers')
+    """
+    return f"{number} {word}" if number == 1 else f"{number} {word}s"
 
 
 def _number(value: float, unit: str, digits: int) -> str:

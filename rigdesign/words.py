@@ -5,6 +5,12 @@ from __future__ import annotations
 STANDARD_GRAVITY = 9.80665
 """Standard acceleration of free fall [m/s²] (exact by definition)."""
 
+INCH = 0.0254
+"""An inch [m] (exact by definition)."""
+
+POUND_FORCE = 4.4482216152605
+"""A pound of force [N] (exact by definition)."""
+
 LOAD_CELL_FLOOR = 0.0025
 """What a load cell can see, as a fraction of its reading; common practice, a cell of 0.25 %."""
 

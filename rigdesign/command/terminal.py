@@ -18,10 +18,10 @@ from rigdesign.checks.measures import ratio, reaches
 from rigdesign.checks.remarks_practice import pressures
 from rigdesign.checks.text import percent
 from rigdesign.command.pipe import reader_may_leave
-from rigdesign.display import System, show
+from rigdesign.display import System, counted, show
 from rigdesign.findings import Finding, Refusal
 from rigdesign.report.scales import arm_scale, scale
-from rigdesign.report.sentences import CAUTION, answer, counted, finding_lines, refusal_lines, verdict
+from rigdesign.report.sentences import CAUTION, answer, finding_lines, refusal_lines, verdict
 
 if TYPE_CHECKING:
     from rigdesign.checks.model import Check

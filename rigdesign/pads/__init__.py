@@ -20,7 +20,7 @@ because the path of the pads' moment starts on a fixed line and ends on zero.
     refusals  which limit leaves no pads at all
     plan      from the target to the plan
 
-Depends on: brief, target, units, findings, words.  Knows no files, no printing, no figures.
+Depends on: brief, target, display, findings, words.  Knows no files, no printing, no figures.
 """
 
 from __future__ import annotations

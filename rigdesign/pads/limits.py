@@ -11,7 +11,8 @@ import numpy as np
 from rigdesign.brief.model import Brief
 from rigdesign.target.curve import Floats
 
-# Lengths that agree to this part of the span count as equal: a footprint may touch its neighbour.
+# Lengths that agree to this part of the span count as equal, and forces to this part of their limit: a footprint may
+# touch its neighbour, and a pad that a programme puts exactly on its limit keeps it.
 TOUCH = 1e-9
 
 
@@ -59,7 +60,7 @@ def violations(brief: Brief, pad_x: Floats, force: Floats) -> Floats:
     span = brief.specimen.right - brief.specimen.left
     least, largest = force_limits(brief)
     scale = np.abs(force).mean(axis=-1)
-    missing = (np.maximum(least - force, 0.0).sum(axis=-1)) / scale
+    missing = (np.maximum(least * (1 - TOUCH) - force, 0.0).sum(axis=-1)) / scale
     if np.isfinite(largest):
         missing = missing + np.maximum(force - largest * (1 + TOUCH), 0.0).sum(axis=-1) / scale
     missing = missing + np.maximum(-force, 0.0).sum(axis=-1) / scale

@@ -105,12 +105,13 @@ def _fewest(target: Target, jack_x: float, progress: Progress | None) -> PadPlan
 
 
 def _most_pads(target: Target) -> int:
+    """Most pads that fit and that can all carry the least force; one at least, so that a refusal can say what binds."""
     fit = most_that_fit(target.brief)
     most = MOST_PADS if fit is None else min(fit, MOST_PADS)
     if target.brief.pads.places == "hard points":
         most = min(most, usable_points(target.brief).size)
     least, _ = force_limits(target.brief)
-    return min(most, int(abs(target.net.total) / least * (1 + 1e-9))) if least > 0 else most
+    return max(1, min(most, int(abs(target.net.total) / least * (1 + 1e-9)))) if least > 0 else most
 
 
 def _fewest_possible(target: Target, jack_x: float, most: int) -> int:

@@ -5,10 +5,10 @@ from __future__ import annotations
 import numpy as np
 
 from rigdesign.brief.model import Brief
+from rigdesign.display import counted, show
 from rigdesign.findings import Refusal
 from rigdesign.pads.limits import allowed_stretches, force_limits, least_pitch, most_that_fit, usable_points
 from rigdesign.target.model import Target
-from rigdesign.units import show
 
 # Sums that agree to this fraction count as equal: a limit may be met exactly.
 EVEN = 1e-9
@@ -74,10 +74,10 @@ def _too_few_places(brief: Brief, count: int) -> Refusal | None:
     kind = "fixed places" if fixed else "hard points"
     return Refusal(
         "pads",
-        f"{count} pads are asked for, but there are {places} usable {kind}",
+        f"{counted(count, 'pad')} are asked for, but there are {places} usable {kind}",
         limit=f"{places} {kind}, keep-outs and the footprint considered",
-        best=f"{places} pads",
-        remedy=f"ask for {places} pads{'' if fixed else ' or fewer'}, or add places",
+        best=f"{counted(places, 'pad')}",
+        remedy=f"ask for {counted(places, 'pad')}{'' if fixed else ' or fewer'}, or add places",
     )
 
 
@@ -87,9 +87,9 @@ def _too_wide(brief: Brief, count: int) -> Refusal | None:
         return None
     return Refusal(
         "pads",
-        f"{count} pads do not fit side by side",
+        f"{counted(count, 'pad')} do not fit side by side",
         limit=f"footprint and gap take {show(least_pitch(brief), 'length')} a pad",
-        best=f"{fit} pads fit",
+        best=f"{counted(fit, 'pad')} fit",
         remedy="use fewer pads, a shorter footprint or a smaller gap",
     )
 
@@ -99,18 +99,19 @@ def _too_weak(brief: Brief, total: float, count: int) -> Refusal | None:
     if count * largest < total * (1 - EVEN):
         return Refusal(
             "pads",
-            f"{count} pads are too weak for the total",
+            f"{counted(count, 'pad')} are too weak for the total",
             limit=f"largest pad force {show(largest * brief.peak, 'force')} at the peak of the test",
             best=f"{show(count * largest, 'force')} of {show(total, 'force')} at the brief's load",
-            remedy=f"use at least {int(np.ceil(total / largest * (1 - EVEN)))} pads, or larger ones",
+            remedy=f"use at least {counted(int(np.ceil(total / largest * (1 - EVEN))), 'pad')}, or larger ones",
         )
     if count * least > total * (1 + EVEN):
+        most = int(total / least * (1 + EVEN))
         return Refusal(
             "pads",
-            f"{count} pads cannot all carry the least force",
+            f"{counted(count, 'pad')} cannot carry the least force each",
             limit=f"least pad force {show(least * brief.peak, 'force')} at the peak of the test",
-            best=f"{show(total, 'force')} to share among {count} pads",
-            remedy=f"use at most {int(total / least * (1 + EVEN))} pads, or lower least_force",
+            best=f"{show(total, 'force')} to share among {counted(count, 'pad')}",
+            remedy=f"use at most {counted(most, 'pad')}, or lower least_force" if most else "lower least_force",
         )
     return None
 
@@ -130,8 +131,8 @@ def unbalanced(target: Target, jack_x: float, count: int) -> Refusal:
         asked.append("keep-outs")
     return Refusal(
         "pads",
-        f"no forces of {count} pads within the limits have the target's sum and centre",
+        f"no forces of {counted(count, 'pad')} within the limits have the target's sum and centre",
         limit=", ".join(asked) or "pads of one sign at these places",
-        best=f"{show(target.net.total, 'force')} at {show(jack_x, 'length')} from {count} pads of one sign",
+        best=f"{show(target.net.total, 'force')} at {show(jack_x, 'length')} from {counted(count, 'pad')} of one sign",
         remedy="widen the limits one at a time, change the number of pads, or move places towards the resultant",
     )

@@ -135,41 +135,39 @@ class Tube:
         use = np.zeros(len(pad_x))
         distance = pad_x[:, None, :] - self.x[None, :, None]
         own = pad_x[:, None, :] - pad_x[:, :, None]
-        at_pads = self._interpolators(pad_x)
         if self.is_judged[0]:
             path = np.einsum("kmn,kn->km", np.maximum(distance, 0.0), force)
             error = path - self.moment + moved[:, None] * self.moment_unit
             use = np.maximum(use, _largest(error, *self.moment_width))
             path = np.einsum("kmn,kn->km", np.maximum(own, 0.0), force)
             for outboard in (False, True):
-                value, below, above, unit = at_pads("moment", outboard)
+                value, below, above, unit = self._moment_at(pad_x, outboard)
                 use = np.maximum(use, _largest(path - value + moved[:, None] * unit, below, above))
         if self.is_judged[1]:
             counts = np.where(self.outboard[None, :, None], distance > 0, distance >= 0)
             error = np.einsum("kmn,kn->km", counts, force) - self.shear + moved[:, None] * self.shear_unit
             use = np.maximum(use, _largest(error, *self.shear_width))
             for outboard in (False, True):
-                value, below, above, unit = at_pads("shear", outboard)
+                value, below, above, unit = self._shear_at(pad_x, outboard)
                 beyond = np.einsum("kmn,kn->km", own > 0 if outboard else own >= 0, force)
                 use = np.maximum(use, _largest(beyond - value + moved[:, None] * unit, below, above))
         return use
 
-    def _interpolators(self, pad_x: Floats):  # type: ignore[no-untyped-def]
-        """Return a function that gives target, widths and unit function at the pads, on one side of jumps."""
+    def _moment_at(self, x: Floats, outboard: bool) -> tuple[Floats, ...]:
+        """Moment, widths below and above, and unit function at stations x of any shape, on one side of jumps."""
+        rows = (self.moment, *self.moment_width, self.moment_unit)
+        return tuple(self._interpolated(row, x, outboard) for row in rows)
 
-        def at(values: Floats, outboard: bool) -> Floats:
-            if outboard:
-                return np.interp(pad_x, self.x, values)
-            return np.interp(-pad_x, -self.x[::-1], values[::-1])
+    def _shear_at(self, x: Floats, outboard: bool) -> tuple[Floats, ...]:
+        """Shear, widths below and above, and unit function at stations x of any shape, on one side of jumps."""
+        rows = (self.shear, *self.shear_width, self.shear_unit)
+        return tuple(self._interpolated(row, x, outboard) for row in rows)
 
-        def values(quantity: str, outboard: bool) -> tuple[Floats, Floats, Floats, Floats]:
-            if quantity == "moment":
-                rows = (self.moment, *self.moment_width, self.moment_unit)
-            else:
-                rows = (self.shear, *self.shear_width, self.shear_unit)
-            return at(rows[0], outboard), at(rows[1], outboard), at(rows[2], outboard), at(rows[3], outboard)
-
-        return values
+    def _interpolated(self, row: Floats, x: Floats, outboard: bool) -> Floats:
+        # of two stations at one x, interpolation takes the last: the outboard side, or turned round the inboard one
+        if outboard:
+            return np.interp(x, self.x, row)
+        return np.interp(-x, -self.x[::-1], row[::-1])
 
 
 def _largest(error: Floats, below: Floats, above: Floats) -> Floats:

@@ -7,7 +7,7 @@ from matplotlib.figure import Figure
 from matplotlib.patches import Rectangle
 
 from rigdesign.checks.model import Check
-from rigdesign.display import System
+from rigdesign.display import System, counted
 from rigdesign.report.figures_parts import MARK, arrow, directions, holes, mark, specimen_strip
 from rigdesign.report.figures_sheet import GREY, INK, new_sheet, paper, spread, styled, text_width
 from rigdesign.report.scales import scale
@@ -37,7 +37,7 @@ def elevation(check: Check, system: System = "SI") -> Figure:
     jack = f"{layout.frame.loads.show(tree.force)} {layout.frame.loads.unit}"
     place = scale("length", 1.0, system)
     words = (
-        f"{_counted(plan.n_pads, 'pad')}, {_counted(len(tree.pieces), 'lever')}, "
+        f"{counted(plan.n_pads, 'pad')}, {counted(len(tree.pieces), 'lever')}, "
         f"jack {jack} at x = {place.show(tree.jack.x)} {place.unit}; seen along the y axis, "
         "stations to scale, heights not"
     )
@@ -53,10 +53,6 @@ def elevation(check: Check, system: System = "SI") -> Figure:
     _key(axes, layout, system)
     directions(axes, layout.size[0] - 28.0, layout.size[1] - 20.0)
     return figure
-
-
-def _counted(number: int, word: str) -> str:
-    return f"{number} {word}" if number == 1 else f"{number} {word}s"
 
 
 class _Side:

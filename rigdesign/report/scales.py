@@ -11,13 +11,9 @@ from dataclasses import dataclass
 from typing import Literal
 
 from rigdesign.display import System
+from rigdesign.words import INCH, POUND_FORCE
 
 Kind = Literal["length", "arm", "force", "moment", "running load", "pressure"]
-
-INCH = 0.0254
-"""Metres in an inch (exact by definition)."""
-POUND_FORCE = 4.4482216152605
-"""Newtons in a pound-force (exact by definition)."""
 
 # (unit, SI value of one, smallest magnitude in that unit for which it is used), the largest unit first
 _UNITS: dict[System, dict[Kind, tuple[tuple[str, float, float], ...]]] = {
@@ -33,7 +29,7 @@ _UNITS: dict[System, dict[Kind, tuple[tuple[str, float, float], ...]]] = {
         "length": (("in", INCH, 0.0),),
         "arm": (("in", INCH, 0.0),),
         "force": (("kip", 1e3 * POUND_FORCE, 100.0), ("lbf", POUND_FORCE, 0.0)),
-        "moment": (("kip·in", 1e3 * POUND_FORCE * INCH, 1000.0), ("in·lbf", POUND_FORCE * INCH, 0.0)),
+        "moment": (("in·kip", 1e3 * POUND_FORCE * INCH, 1000.0), ("in·lbf", POUND_FORCE * INCH, 0.0)),
         "running load": (("lbf/in", POUND_FORCE / INCH, 0.0),),
         "pressure": (("psi", POUND_FORCE / INCH**2, 0.0),),
     },

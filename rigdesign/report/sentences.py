@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from rigdesign.checks.model import Check, RegionVerdict
 from rigdesign.checks.text import NOT_PROVEN, percent
-from rigdesign.display import System, show
+from rigdesign.display import System, counted, show
 from rigdesign.findings import Finding, Refusal
 from rigdesign.target.bands import Quantity
 from rigdesign.words import LOAD_CELL_FLOOR
@@ -52,15 +52,6 @@ def verdict(check: Check) -> str:
     if len(others) > MOST_REASONS:
         reasons.append(f"{len(others) - MOST_REASONS} more among the findings")
     return f"Not accepted: {size}; " + "; ".join(reasons) + "."
-
-
-def counted(number: int, word: str) -> str:
-    """A number with its noun.
-
-    >>> counted(1, "pad"), counted(12, "lever")
-    ('1 pad', '12 levers')
-    """
-    return f"{number} {word}" if number == 1 else f"{number} {word}s"
 
 
 def _whole(check: Check, quantity: Quantity) -> RegionVerdict:

@@ -201,6 +201,21 @@ def test_refuses_least_force_for_too_many_pads() -> None:
     assert "at most 5 pads" in refusal.remedy
 
 
+def test_refuses_a_least_force_above_the_total_whatever_the_count() -> None:
+    total = build_target(make_brief()).net.total
+    for count in ("fewest", 1):
+        refusal = refused(make_brief(pads=make_pads(count=count, least_force=1.01 * total)))
+        assert refusal.text == "1 pad cannot carry the least force each"
+        assert refusal.remedy == "lower least_force"
+
+
+def test_a_pad_on_its_least_force_keeps_it_despite_rounding() -> None:
+    brief = make_brief(pads=make_pads(least_force=500.0, largest_force=900.0))
+    x = np.array([0.6, 1.4])
+    assert violations(brief, x, np.array([500.0 * (1 - 1e-12), 900.0 * (1 + 1e-12)])) == 0.0
+    assert violations(brief, x, np.array([500.0 * (1 - 1e-6), 900.0])) > 0.0
+
+
 def test_refuses_when_gravity_brings_more_than_the_target() -> None:
     specimen = make_specimen(weight=make_weight([0.2, 3.4], [400.0, 200.0]), gravity=1)
     refusal = refused(make_brief(specimen=specimen))
