@@ -6,7 +6,6 @@ as the bound; then, for large trees, again and again below single levers, from t
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
@@ -14,9 +13,8 @@ import numpy as np
 from rigdesign.levers.branching import Pins, Search, rows_under
 from rigdesign.levers.judging import Lines
 from rigdesign.levers.wiring import Ints
+from rigdesign.pads.outcome import Progress
 from rigdesign.target.curve import Floats
-
-Progress = Callable[[float, str], None]
 
 WINDOW, WIDE, MENDING = 1, 2, 3
 """Steps to either side of the planned arms: in the first search, in the second, and below single levers."""

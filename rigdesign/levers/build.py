@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
-
 import numpy as np
 
 from rigdesign.findings import Refusal
@@ -16,9 +14,8 @@ from rigdesign.levers.hanging import hang_fixed, hang_free
 from rigdesign.levers.model import Rig
 from rigdesign.levers.wiring import Wiring, ideal_levers
 from rigdesign.pads.model import PadPlan
+from rigdesign.pads.outcome import Progress
 from rigdesign.pads.tube import Tube, build_tube
-
-Progress = Callable[[float, str], None]
 
 
 def build_rig(plan: PadPlan, progress: Progress | None = None) -> Rig | Refusal:

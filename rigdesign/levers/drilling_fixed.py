@@ -21,10 +21,10 @@ from rigdesign.levers.hanging import hang_fixed
 from rigdesign.levers.judging import Judge, build_judge
 from rigdesign.levers.wiring import Ints, Wiring, ideal_levers
 from rigdesign.pads.model import PadPlan
+from rigdesign.pads.outcome import Progress
 from rigdesign.pads.tube import Tube
 from rigdesign.target.curve import Floats
 
-Progress = Callable[[float, str], None]
 Value = Callable[[Ints], Floats]
 
 NEAR_EQUAL = 0.01

@@ -2,7 +2,7 @@
 
 The first moment stays exact whatever the arms are, so only the shape of the path is at stake.  A branch and bound
 (branching.py) finds the best arms in a window around the plan; a descent over single steps and pairs of steps, judged
-with pad limits and gaps and without a window, finishes.
+with pad limits and gaps and no further than a few steps away, finishes.
 """
 
 from __future__ import annotations
@@ -24,10 +24,9 @@ from rigdesign.levers.judging import Judge, Lines, build_judge
 from rigdesign.levers.wiring import Ints, Wiring, ideal_levers
 from rigdesign.pads.limits import violations
 from rigdesign.pads.model import PadPlan
+from rigdesign.pads.outcome import Progress
 from rigdesign.pads.tube import Tube
 from rigdesign.target.curve import Floats
-
-Progress = Callable[[float, str], None]
 
 JUDGED = 8_000_000
 """Rigs times pads that a descent may judge."""

@@ -14,7 +14,7 @@ from rigdesign.words import LOAD_CELL_FLOOR
 
 CAUTION = (
     "The check takes levers and links as rigid, weightless and free of friction; strength, clearances and deflections "
-    "are not checked.  Before anything is built or loaded from these files, have it reviewed by a licensed engineer "
+    "are not checked. Before anything is built or loaded from these files, have it reviewed by a licensed engineer "
     "under the codes and safety rules that hold where you are."
 )
 
@@ -95,7 +95,7 @@ def _proven_line(check: Check) -> str:
     drilled = check.band_use / proof.band_use if proof.band_use > 0 else 1.0
     least = f"no arrangement of so many pads under these rules can go below a band use of {proof.band_use_least:.3f}"
     return (
-        f"Proven ({proof.method}): {least}; {gap}, and drilling takes it to {drilled:.3f} times the plan's.  "
+        f"Proven ({proof.method}): {least}; {gap}, and drilling takes it to {drilled:.3f} times the plan's. "
         f"The moment's error alone cannot go below {percent(proof.moment_error_least)} of peak target moment."
     )
 

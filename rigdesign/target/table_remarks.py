@@ -14,7 +14,7 @@ from numpy.typing import NDArray
 
 from rigdesign.brief.model import InternalLoad
 from rigdesign.display import show
-from rigdesign.findings import Finding
+from rigdesign.findings import Finding, Severity
 from rigdesign.target.curve import Floats
 from rigdesign.target.internal_table import Steps, jumps_of, steps_of
 
@@ -97,8 +97,8 @@ def table_remarks(load: InternalLoad, name: str, right: float) -> list[Finding]:
     return _couples(view, right) + _left_shear(view, right) + (_envelope(view) or _disagreements(view) + _turns(view))
 
 
-def _finding(view: _View, severity: str, text: str, value: str, limit: str, remedy: str) -> Finding:
-    return Finding("target", severity, view.name, text, value, limit, remedy)  # type: ignore[arg-type]
+def _finding(view: _View, severity: Severity, text: str, value: str, limit: str, remedy: str) -> Finding:
+    return Finding("target", severity, view.name, text, value, limit, remedy)
 
 
 def _slip(view: _View) -> list[Finding]:
@@ -133,7 +133,7 @@ def _couples(view: _View, right: float) -> list[Finding]:
     findings = []
     for at, force, moment in zip(x[real], shear[real], couple[real], strict=True):
         last = at == x[-1]
-        severity = "warning" if abs(moment) <= _COUPLE_SMALL * view.peak else "failure"
+        severity: Severity = "warning" if abs(moment) <= _COUPLE_SMALL * view.peak else "failure"
         kind = "is left at its last row" if last else "is the jump between its two rows"
         text = (f"a moment of {show(float(moment), 'moment')} {kind} at {show(float(at), 'length')}; forces on "
                 "the span cannot make it, and the target leaves it out at every station inboard")  # fmt: skip

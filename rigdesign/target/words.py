@@ -14,6 +14,7 @@ from rigdesign.target.curve import Curve
 from rigdesign.target.internal import reactions
 from rigdesign.target.loads import load_curve
 from rigdesign.target.model import Target
+from rigdesign.target.remarks import along
 from rigdesign.words import STANDARD_GRAVITY
 
 
@@ -46,7 +47,7 @@ def direction(force: float) -> str:
     >>> direction(-350.0)
     'along −z, onto the loaded surface'
     """
-    return "along +z, out of the loaded surface" if force > 0 else "along −z, onto the loaded surface"
+    return f"{along(force)}, {'out of' if force > 0 else 'onto'} the loaded surface"
 
 
 def _end(target: Target) -> str:
@@ -73,14 +74,10 @@ def _supports(target: Target, system: System) -> list[str]:
     if not at.size:
         return []
     each = [
-        f"{show(abs(float(f)), 'force', system)} {_along(float(f))} at {show(float(x), 'length', system)}"
+        f"{show(abs(float(f)), 'force', system)} {along(float(f))} at {show(float(x), 'length', system)}"
         for x, f in zip(at, force, strict=True)
     ]
     return [f"The supports answer with {each[0]} and {each[1]}."]
-
-
-def _along(force: float) -> str:
-    return direction(force).split(",")[0]
 
 
 def _peaks(target: Target, system: System) -> str:
@@ -105,7 +102,7 @@ def _force_at(curve: Curve, system: System) -> str:
     total = curve.total
     if total == 0:
         return "no force in sum"
-    force = f"{show(abs(total), 'force', system)} {_along(total)}"
+    force = f"{show(abs(total), 'force', system)} {along(total)}"
     return f"{force} at {show(curve.first_moment / total, 'length', system)}"
 
 
@@ -147,7 +144,7 @@ def _shape(load: ShapeLoad) -> str:
 
 def _inertia(load: InertiaLoad, target: Target, system: System) -> str:
     mass = show(abs(target.gravity.total) / STANDARD_GRAVITY, "mass", system)
-    return f"inertia at {load.factor:g} g of {mass}"
+    return f"inertia at {load.factor:g} g of {mass}".replace("-", "−")
 
 
 def _stretch(start: float, end: float, system: System) -> str:
