@@ -1,6 +1,7 @@
 """SI floats as text for people: a fitting unit, a sensible number of digits, SI or US customary.
 
-No digit in front of the decimal point is ever rounded away: "1214 lbf", never "1210 lbf".
+No digit in front of the decimal point is ever rounded away: "1214 lbf", never "1210 lbf".  Negative values carry a
+true minus sign, as in tables and figures.
 
 Depends on: words.
 """
@@ -63,14 +64,14 @@ def show(value: float, kind: str, system: System = "SI", *, digits: int = 3, uni
     Examples
     --------
     >>> show(5400.0, "force"), show(1.3581, "length"), show(-0.0123, "fraction"), show(5400.0, "force", "us")
-    ('5.40 kN', '1.358 m', '-1.23 %', '1214 lbf')
+    ('5.40 kN', '1.358 m', '−1.23 %', '1214 lbf')
     >>> show(0.0, "moment"), show(float("inf"), "force"), show(1.25, "length", unit="mm")
     ('0 N·m', 'no limit', '1250 mm')
     """
     if math.isnan(value):
         return "not a number"
     if math.isinf(value):
-        return "no limit" if value > 0 else "-no limit"
+        return "no limit" if value > 0 else "−no limit"
     steps = {"SI": _SI, "us": _US}[system][kind]
     if value == 0:
         base = [name for name, factor, _ in steps if factor == 1.0] or [steps[0][0]]
@@ -104,5 +105,7 @@ def _number(value: float, unit: str, digits: int) -> str:
     elif abs(value) < 10.0**-decimals:
         return _number(value, "", digits)
     if decimals > 9:
-        return f"{value:.{digits - 1}e}"
-    return f"{value:.{decimals}f}"
+        text = f"{abs(value):.{digits - 1}e}"
+    else:
+        text = f"{abs(value):.{decimals}f}"
+    return f"−{text}" if value < 0 else text

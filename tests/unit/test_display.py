@@ -11,7 +11,7 @@ from rigdesign.display import System, show
     ("value", "kind", "system", "text"),
     [
         (5400.0, "force", "SI", "5.40 kN"),
-        (-5400.0, "force", "SI", "-5.40 kN"),
+        (-5400.0, "force", "SI", "−5.40 kN"),
         (999.96, "force", "SI", "1.00 kN"),
         (999.4, "force", "SI", "999 N"),
         (0.35, "force", "SI", "0.350 N"),
@@ -35,7 +35,7 @@ from rigdesign.display import System, show
         (0.0, "force", "SI", "0 N"),
         (0.0, "length", "SI", "0 m"),
         (0.0, "force", "us", "0 lbf"),
-        (-1e-12, "length", "SI", "-1.00e-09 mm"),
+        (-1e-12, "length", "SI", "−1.00e-09 mm"),
         (float("inf"), "force", "SI", "no limit"),
         (float("nan"), "force", "SI", "not a number"),
     ],

@@ -114,7 +114,7 @@ def test_a_point_load_against_the_rest():
     sign = next(f for f in found if f.object == "target")
     assert "350 N of it acts along −z, at 1.100 m," in sign.text
     against = next(f for f in found if f.object == "load 2")
-    assert (against.severity, against.value) == ("note", "-350 N")
+    assert (against.severity, against.value) == ("note", "−350 N")
     assert "against all other loads" in against.text
 
 
@@ -162,7 +162,7 @@ def test_the_resultant_beside_the_specimen():
     finding = next(f for f in found if f.object == "resultant")
     assert finding.severity == "warning"
     moment = 1000 * 3.2**2 / 6 - 900 * 3.2**2 / 3
-    assert finding.value == f"{LEFT + moment / 160:.3f} m"
+    assert finding.value == f"{LEFT + moment / 160:.3f} m".replace("-", "−")
 
 
 def test_inertia_that_adds():

@@ -43,7 +43,7 @@ def test_two_supports_and_a_load_downward():
     assert lines[0] == (
         "The target is 3.00 kN along −z, onto the loaded surface. It acts at 1.267 m, 1.067 m from the left end."
     )
-    assert lines[1] == "Its moment about the first support at 0.600 m is -2.00 kN·m."
+    assert lines[1] == "Its moment about the first support at 0.600 m is −2.00 kN·m."
     assert lines[2] == "The supports answer with 2.17 kN along +z at 0.600 m and 833 N along +z at 3.000 m."
 
 
@@ -52,7 +52,7 @@ def test_moment_carries_its_sign_between_supports():
     lines = said(specimen=ends, loads=(shape_load("uniform", -1000.0),))
     assert "the largest bending moment 400 N·m at 1.800 m" in lines[3]
     lines = said(specimen=ends, loads=(shape_load("uniform", 1000.0),))
-    assert "the largest bending moment -400 N·m at 1.800 m" in lines[3]
+    assert "the largest bending moment −400 N·m at 1.800 m" in lines[3]
 
 
 def test_weight_and_what_the_pads_bring():
@@ -61,7 +61,7 @@ def test_weight_and_what_the_pads_bring():
     # 40 kg: 392 N down; inertia −784.5 N; target 4615.5 N, pads 5007.7 N
     assert lines[3].startswith("The specimen weighs 40.0 kg, which brings 392 N along −z at 2.040 m by itself;")
     assert "the pads bring 5.01 kN along +z at" in lines[3]
-    assert lines[-1] == "Load 2: inertia at -2 g of 40.0 kg: 785 N along −z at 2.040 m."
+    assert lines[-1] == "Load 2: inertia at −2 g of 40.0 kg: 785 N along −z at 2.040 m."
 
 
 def test_every_load_in_one_line():
