@@ -245,19 +245,19 @@ def split_heading(heading: str) -> tuple[str, str | None]:
     return (match.group(1), match.group(2) or None) if match else (heading.strip(), None)
 
 
-def column_factor(heading: str, kind: str, where: str = "") -> float:
-    """Return what one in a column headed "x [in]" is in SI; raise InputError without a unit or with another kind's.
+def column_fraction(heading: str, kind: str, where: str = "") -> Fraction:
+    """Return what one in a column headed "x [in]" is in SI, exactly; for `scaled`.
+
+    Raises
+    ------
+    InputError
+        If the heading carries no unit, or one of another kind.
 
     Examples
     --------
-    >>> column_factor("x [in]", "length")
+    >>> float(column_fraction("x [in]", "length"))
     0.0254
     """
-    return float(column_fraction(heading, kind, where))
-
-
-def column_fraction(heading: str, kind: str, where: str = "") -> Fraction:
-    """Like `column_factor`, exactly; for `scaled`."""
     name, unit = split_heading(heading)
     if unit is None:
         limit = f'a unit of {kind} in brackets, such as "{name} [{KINDS[kind].unit}]"'

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
@@ -78,11 +79,15 @@ def design(
     return _finish(session, answer, terminal, _Wanted(folder, replace, not no_figures, png, system))
 
 
+@dataclass(frozen=True)
 class _Wanted:
     """What is to be written for an answer, and where; no folder where nothing is."""
 
-    def __init__(self, folder: Path | None, replace: bool, figures: bool, png: bool, system: System) -> None:
-        self.folder, self.replace, self.figures, self.png, self.system = folder, replace, figures, png, system
+    folder: Path | None
+    replace: bool
+    figures: bool
+    png: bool
+    system: System
 
     def write(self, check: Check) -> Path | None:
         """Write the rig folder if one is wanted, and return where it is."""
