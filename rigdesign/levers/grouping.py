@@ -36,8 +36,10 @@ def group_pads(plan: PadPlan) -> Wiring | Refusal:
         return _empty_pad(int(empty[0]) + 1)
     if rules.grouping is not None:
         return _prescribed(plan, rules)
-    best = cheapest(Stretches(x, force), rules)
-    return best.wiring if best.wiring is not None else why_none(Stretches(x, force), rules)
+    # shares rather than forces: twice the load must not decide a tie otherwise
+    pads = Stretches(x, force / force.sum())
+    best = cheapest(pads, rules)
+    return best.wiring if best.wiring is not None else why_none(pads, rules)
 
 
 def cheapest(pads: Stretches, rules: LeverRules) -> Best:

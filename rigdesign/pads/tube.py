@@ -221,7 +221,9 @@ def _stations(target: Target, count: int, extra: Floats | None) -> tuple[Floats,
     left, right = specimen.left, specimen.right
     even = np.linspace(left, right, count // 2 + 1)
     fine = np.linspace(left, right, 4 * count + 1)
-    root = np.sqrt(np.abs(target.net.running(fine, "outboard")))
+    load = np.abs(target.net.running(fine, "outboard"))
+    # of the greatest load, so that twice the load has the very same stations
+    root = np.sqrt(load / (load.max() or 1.0))
     grown = np.concatenate([[0.0], np.cumsum((root[1:] + root[:-1]) / 2)])
     by_load = np.interp(np.linspace(0, grown[-1], count // 2 + 1), grown, fine) if grown[-1] > 0 else even
     jumps = [target.net.breaks, target.total.breaks, np.array(specimen.supports, dtype=float)]
