@@ -104,8 +104,5 @@ def _number(value: float, unit: str, digits: int) -> str:
         decimals = max(digits - 1 - magnitude, 0)
     elif abs(value) < 10.0**-decimals:
         return _number(value, "", digits)
-    if decimals > 9:
-        text = f"{abs(value):.{digits - 1}e}"
-    else:
-        text = f"{abs(value):.{decimals}f}"
+    text = f"{abs(value):.{digits - 1}e}" if decimals > 9 else f"{abs(value):.{decimals}f}"
     return f"−{text}" if value < 0 else text
