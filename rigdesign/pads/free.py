@@ -12,7 +12,7 @@ from dataclasses import replace
 import numpy as np
 
 from rigdesign.pads.forces import evenness, wishes
-from rigdesign.pads.limits import allowed_stretches, fitted, force_limits, least_pitch, violations
+from rigdesign.pads.limits import TOUCH, allowed_stretches, fitted, force_limits, least_pitch, packed, violations
 from rigdesign.pads.outcome import Outcome, Progress, moment_alone, plain_amount
 from rigdesign.pads.path import COARSE, FINE, MANY, Path, least_use_path
 from rigdesign.pads.search import Arrangement, Limits, Search
@@ -104,7 +104,11 @@ class FreePlaces:
             wishes += [places, (wishes[0] + places) / 2]
         ends = self.limits.stretches
         pieces = [np.linspace(a, b, max(2, int(START_GRID * (b - a) / (tube.x[-1] - tube.x[0])))) for a, b in ends]
-        grid = np.unique(np.concatenate(pieces))
+        # the tightest packings from either end, so that pads which just fit find a place
+        slack = TOUCH * (tube.x[-1] - tube.x[0])
+        inboard = packed(ends, self.limits.pitch, n, slack)
+        outboard = -packed(-ends[::-1, ::-1], self.limits.pitch, n, slack)
+        grid = np.unique(np.concatenate([*pieces, inboard, outboard]))
         fits = [fitted(np.sort(wish), grid, self.limits.pitch) for wish in wishes]
         return [fit for fit in fits if fit is not None]
 

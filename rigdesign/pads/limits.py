@@ -92,6 +92,20 @@ def most_that_fit(brief: Brief) -> int | None:
     return count
 
 
+def packed(stretches: Floats, pitch: float, count: int, slack: float) -> Floats:
+    """The first `count` places [m] that stand as far inboard as the stretches (k, 2) and the pitch allow, or fewer.
+
+    Lengths that agree to `slack` [m] count as equal.
+    """
+    places: list[float] = []
+    for a, b in stretches:
+        x = float(a) if not places else max(float(a), places[-1] + pitch)
+        while x <= b + slack and len(places) < count:
+            places.append(min(x, float(b)))
+            x = places[-1] + pitch
+    return np.array(places)
+
+
 def fitted(wish: Floats, grid: Floats, pitch: float) -> Floats | None:
     """Places of the grid (g,) nearest to the wishes (n,), all [m] and sorted, at least `pitch` apart; None if none fit.
 

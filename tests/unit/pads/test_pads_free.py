@@ -22,7 +22,7 @@ from factories import (
 from rigdesign.brief.model import Brief, JackRules, Region
 from rigdesign.findings import Refusal
 from rigdesign.pads import PadPlan, plan_pads
-from rigdesign.pads.limits import allowed_stretches, fitted, most_that_fit, violations
+from rigdesign.pads.limits import allowed_stretches, fitted, most_that_fit, packed, violations
 from rigdesign.pads.stair import fewest_steps
 from rigdesign.pads.tube import build_tube
 from rigdesign.target import build_target
@@ -258,6 +258,24 @@ def test_fitted_places_are_nearest_and_apart() -> None:
     grid = np.array([0.0, 1.0, 2.0, 2.5, 4.0])
     np.testing.assert_allclose(fitted(np.array([1.9, 2.1, 2.2]), grid, 1.0), [1.0, 2.0, 4.0])
     assert fitted(np.array([1.0, 2.0, 3.0]), grid, 2.5) is None
+
+
+@pytest.mark.parametrize(("count", "keep_out"), [(8, ()), (4, ()), (7, ((1.0, 1.4),)), (6, ((1.0, 1.35), (2.15, 2.6)))])
+def test_pads_that_just_fit_have_a_place(count, keep_out) -> None:
+    # stretches of 3.2 m, of 0.8 m and 2.0 m, and three of 0.8 m, all filled
+    length = 0.8 if count == 4 else 0.4
+    brief = make_brief(pads=make_pads(count=count, length=length, gap=0.0, keep_out=keep_out))
+    assert most_that_fit(brief) == count
+    plan = planned(brief)
+    assert plan.n_pads == count
+
+
+def test_packed_places_stand_as_far_inboard_as_they_can() -> None:
+    stretches = np.array([[0.0, 1.0], [1.2, 1.2], [2.0, 2.95]])
+    assert packed(stretches, 0.5, 9, 1e-9).tolist() == [0.0, 0.5, 1.0, 2.0, 2.5]
+    assert packed(stretches, 0.5, 3, 1e-9).tolist() == [0.0, 0.5, 1.0]
+    # the last one touches the end and is not moved past it
+    assert packed(stretches, 0.475 + 1e-12, 9, 1e-9)[-1] == 2.95
 
 
 def test_violations_name_each_limit() -> None:
