@@ -68,7 +68,7 @@ def scale(kind: Kind, largest: float, system: System = "SI", digits: int = 4) ->
         return Scale(unit, size, {"m": 3, "mm": 0, "in": 2}[unit])
     whole = math.floor(math.log10(abs(largest) / size)) + 1 if largest else 1
     # a column in kN holds values of some 100 N as well: one digit more
-    decimals = max(0, digits - max(whole, 1)) + (1 if size > _UNITS[system][kind][-1][1] else 0)
+    decimals = max(0, digits - whole) + (1 if size > _UNITS[system][kind][-1][1] else 0)
     return Scale(unit, size, min(decimals, 4))
 
 

@@ -17,6 +17,7 @@ from rigdesign.report.scales import arm_scale, scale
         ("length", 3.2, "SI", "m", "1.358", 1.3581),
         ("length", 3.2, "us", "in", "53.47", 1.3581),
         ("pressure", 60_000.0, "SI", "kPa", "41.231", 41_231.0),
+        ("pressure", 4_100.0, "us", "psi", "0.4351", 3_000.0),
         ("running load", 2_000.0, "us", "lbf/in", "11.42", 2_000.0),
     ],
 )
