@@ -16,8 +16,8 @@ from rigdesign.brief.model import Brief
 from rigdesign.findings import Refusal
 from rigdesign.levers.arms import Arms, search_arms
 from rigdesign.levers.branching import Pins, Search
-from rigdesign.levers.descent import Descended, all_pairs, descend, moves_of, near_pairs
-from rigdesign.levers.drilled import REACH, Drilled, coarse, judged
+from rigdesign.levers.descent import Descended, all_pairs, descend, descend_again, moves_of, near_pairs
+from rigdesign.levers.drilled import BROKEN, REACH, Drilled, coarse, judged
 from rigdesign.levers.grouping import allowed, millimetres
 from rigdesign.levers.hanging import hang_free, metres
 from rigdesign.levers.judging import Judge, Lines, build_judge
@@ -51,7 +51,11 @@ def drill_free(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | N
     value = _value(brief, wiring, tube, judge, start)
     pairs = all_pairs(start.size) if start.size <= ALL_PAIRS else near_pairs(wiring, 2)
     moves = moves_of(start.size, pairs)
-    descended = descend(start, moves, value, max(1, JUDGED // (plan.n_pads * len(moves))) * len(moves))
+    most = max(1, JUDGED // (plan.n_pads * len(moves))) * len(moves)
+    descended = descend(start, moves, value, most)
+    if descended.value >= BROKEN:
+        # pads that stand close leave few choices that keep them apart, and single moves may not lead to one
+        descended = descend_again(descended, moves, value, most)
     hung = hang_free(wiring, descended.steps[None], step, tube.jack_x, tube.total)
     use = float(tube.use(hung.pad_x, hung.pad_force)[0])
     return Drilled(hung, descended.steps.reshape(-1, 2), use, _words(found, descended))

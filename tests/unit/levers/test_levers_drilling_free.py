@@ -321,3 +321,13 @@ def test_without_any_band_the_moment_error_counts():
         brief = brief_of(6, levers={"drill_step": 0.02}, acceptance=make_acceptance(band, None))
         rigs.append(build_rig(replace(best_plan(brief_of(6), 6), target=build_target(brief))))
     assert rigs[0].trees == rigs[1].trees
+
+
+def test_pads_that_stand_close_are_drilled_apart():
+    """The search that stops at the first place without a better neighbour leaves two of these pads too close."""
+    brief = brief_of(12, "parabolic", pads={"length": 3.2 / 14}, levers={"drill_step": 0.02})
+    x = [0.3143, 0.5504, 0.788, 1.0297, 1.2754, 1.5307, 1.7964, 2.0741, 2.3798, 2.7423, 3.0571, 3.2857]
+    force = [588.3, 593.4, 587.1, 576.2, 562.1, 543.3, 514.4, 481.7, 446.4, 319.7, 147.0, 40.3]
+    rig = build_rig(plan_by_hand(brief, x, force))
+    assert isinstance(rig, Rig)
+    assert violations(brief, rig.pad_x, np.abs(pad_forces(rig))) == 0
