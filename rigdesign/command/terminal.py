@@ -104,7 +104,8 @@ class Terminal:
 
     def findings(self, findings: tuple[Finding, ...]) -> None:
         """Print the findings, failures and warnings in colour."""
-        self.heading("Findings")
+        # a finding keeps its value as words: they are those of the rig folder, whatever the terminal's units
+        self.heading("Findings" if self.system == "SI" else "Findings, in SI units")
         if not findings:
             self.lines(["None."])
         for finding, line in zip(findings, finding_lines(findings), strict=True):
@@ -164,7 +165,7 @@ def _pad_table(check: Check, system: System) -> tuple[list[str], list[list[str]]
         "hangs on",
     ]
     pressure = pressures(check)
-    bears = None if pressure is None else scale("pressure", float(pressure.max()), system, 2)
+    bears = None if pressure is None else scale("pressure", float(pressure.max()), system, 2 if system == "SI" else 3)
     if bears is not None:
         headings.insert(5, f"pressure [{bears.unit}]")
     rows = []

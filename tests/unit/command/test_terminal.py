@@ -40,6 +40,18 @@ def test_tables_hold_what_the_check_found(check, capsys):
     assert float(words[6]) == pytest.approx(1e3 * abs(piece.ends[0].u), abs=0.05)
 
 
+def test_us_units_show_pressures_with_their_digits_and_say_where_findings_are_in_si(check, capsys):
+    Terminal("us").check(check)
+    text = capsys.readouterr().out
+    lines = text.splitlines()
+    start = next(k for k, line in enumerate(lines) if line.startswith("pad "))
+    psi = check.statics.pad_force[2] / (0.12 * 0.2) / 6894.757293168362
+    assert float(lines[start + 3].split()[6]) == pytest.approx(psi, rel=0.01)
+    assert "Findings, in SI units" in lines
+    Terminal().check(check)
+    assert "Findings" in capsys.readouterr().out.splitlines()
+
+
 def test_nothing_is_wider_than_the_output(check, capsys):
     Terminal().check(check)
     assert max(len(line) for line in capsys.readouterr().out.splitlines()) <= PLAIN_WIDTH
