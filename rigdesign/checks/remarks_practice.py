@@ -23,6 +23,7 @@ USUAL_RATIO = 4.0  # common practice: 4 is accepted, above 5 avoided
 IDLE_PAD = 0.05  # of the mean pad force: such a pad is hardware for nothing
 COSTLY_DRILLING, COSTLY_USE = 1.2, 0.5  # drilling is remarked on where it raises the band use so much, to above this
 LENGTH_SLACK = 1e-9  # m: a pad at its limit must not fail by rounding
+LIMIT_SLACK = 2e-9  # of a limit: nor a lever that was built right at it
 FORCE_SLACK = 1e-9  # of the limit, for the same reason
 
 
@@ -32,6 +33,7 @@ def practice_remarks(check: Check) -> Iterator[Finding]:
     yield from _pad_places(check)
     yield from _levers(check)
     yield from _idle_pads(check)
+    yield from _pushing(check)
     yield from _drilling(check)
     yield from _aim(check)
 
@@ -166,7 +168,7 @@ def _levers(check: Check) -> Iterator[Finding]:
 
 
 def _sizes(pieces: list[Piece], rules: LeverRules) -> Iterator[Finding]:
-    short = {piece: _shortest(piece) for piece in pieces if _shortest(piece) < rules.shortest_arm - LENGTH_SLACK}
+    short = {piece: _shortest(piece) for piece in pieces if _shortest(piece) < rules.shortest_arm * (1 - LIMIT_SLACK)}
     if short:
         worst = min(short, key=lambda piece: short[piece])
         yield _failure(
@@ -176,7 +178,7 @@ def _sizes(pieces: list[Piece], rules: LeverRules) -> Iterator[Finding]:
             show(rules.shortest_arm, "length"),
             "join other pads, or move them apart",
         )
-    long = {piece: length(piece) for piece in pieces if length(piece) > rules.longest + LENGTH_SLACK}
+    long = {piece: length(piece) for piece in pieces if length(piece) > rules.longest * (1 + LIMIT_SLACK)}
     if long:
         worst = max(long, key=lambda piece: long[piece])
         yield _failure(
@@ -219,6 +221,19 @@ def _shortest(piece: Piece) -> float:
 
 def _others(breakers: dict[Piece, float], worst: Piece) -> str:
     return also(piece.name for piece in breakers if piece is not worst)
+
+
+def _pushing(check: Check) -> Iterator[Finding]:
+    if check.rig.plan.target.brief.pads.action == "push" and check.rig.trees[0].pieces:
+        yield Finding(
+            "practice",
+            "warning",
+            "rig",
+            "a tree that pushes is not stable: its levers topple and its links fold unless they are guided",
+            'action "push"',
+            "",
+            "guide every lever and link sideways and against turning over, or turn the rig round so that it pulls",
+        )
 
 
 def _idle_pads(check: Check) -> Iterator[Finding]:

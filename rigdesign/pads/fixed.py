@@ -8,8 +8,8 @@ import numpy as np
 
 from rigdesign.pads.forces import ForceProgramme, shares, wishes
 from rigdesign.pads.limits import force_limits, least_pitch
-from rigdesign.pads.outcome import Outcome, moment_alone, plain_amount
-from rigdesign.pads.tube import build_tube
+from rigdesign.pads.outcome import Outcome, moment_floor, use_given_up_to
+from rigdesign.pads.tube import Tube, build_tube
 from rigdesign.target.model import Target
 
 STATIONS_A_PAD = 60
@@ -28,18 +28,17 @@ def choose_fixed(target: Target, jack_x: float) -> Outcome | None:
     best = programme.least_use()
     if best is None:
         return None
-    limit = 1.0 if brief.pads.aim == "even" and best.use <= 1 else best.use * (1 + brief.pads.ease)
+    limit = use_given_up_to(brief.pads, best.use)
     even = best
     for wish in wishes(brief.levers.ratio_limit, least, tube.total / x.size):
         tried = replace(programme, least=wish.least).most_even(limit, wish.ratio)
         if tried is not None:
             even = tried
             break
-    amount = plain_amount(tube, target.moment_peak)
-    if amount is not None:
-        moment_least = best.use * amount
-    else:
-        plain = moment_alone(tube, target.moment_peak)
-        alone = ForceProgramme(plain, x, least, largest, programme.share).least_use()
-        moment_least = alone.use if alone is not None else 0.0
+
+    def least_alone(plain: Tube) -> float:
+        alone = replace(programme, tube=plain).least_use()
+        return alone.use if alone is not None else 0.0
+
+    moment_least = moment_floor(tube, target.moment_peak, best.use, least_alone)
     return Outcome(x, even.force, best.use, best.use, moment_least, best.evenness, METHOD, f"{x.size} fixed places")

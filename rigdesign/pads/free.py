@@ -13,7 +13,7 @@ import numpy as np
 
 from rigdesign.pads.forces import evenness, wishes
 from rigdesign.pads.limits import TOUCH, allowed_stretches, fitted, force_limits, least_pitch, packed, violations
-from rigdesign.pads.outcome import Outcome, Progress, moment_alone, plain_amount
+from rigdesign.pads.outcome import Outcome, Progress, moment_floor, use_given_up_to
 from rigdesign.pads.path import COARSE, FINE, MANY, Path, least_use_path
 from rigdesign.pads.search import Arrangement, Limits, Search
 from rigdesign.pads.stair import least_use_stair
@@ -28,6 +28,8 @@ MANY_STARTS = 40
 # Where nothing is asked, searched pads keep apart by this part of their mean pitch: two at one place are one.
 APART = 1e-3
 SEARCH_STATIONS, SEARCH_STATIONS_MANY = 40, 16
+# A band use this far above its bound reaches it.
+REACHED = 1e-6
 PATH_METHOD = "exact optimum: path of fewest links in the tube around the moment, bisected on its width"
 
 
@@ -50,19 +52,17 @@ class FreePlaces:
         least = max(
             path_least if self.fine.is_judged[0] else 0.0, least_use_stair(self.fine, self.limits.stretches, self.count)
         )
-        moment_least = self._moment_least(path_least)
+        moment_least = moment_floor(
+            self.fine,
+            self.target.moment_peak,
+            path_least,
+            lambda plain: least_use_path(plain, self.count, self.start, self.end)[1],
+        )
         if path is not None and path.x.size == self.count and self._path_is_best(path, least):
             use, even = float(self.fine.use(path.x, path.force)), evenness(self.fine, path.x, path.force)
             words = f"{self.count} pads, no search needed"
             return Outcome(path.x, path.force, least, use, moment_least, even, PATH_METHOD, words)
         return self._search(path, least, moment_least)
-
-    def _moment_least(self, path_least: float) -> float:
-        amount = plain_amount(self.fine, self.target.moment_peak)
-        if amount is not None:
-            return path_least * amount
-        plain = moment_alone(self.fine, self.target.moment_peak)
-        return least_use_path(plain, self.count, self.start, self.end)[1]
 
     def _path_is_best(self, path: Path, least: float) -> bool:
         """Whether the path keeps the limits, its forces can be joined by levers, and no band but the moment's binds."""
@@ -71,7 +71,7 @@ class FreePlaces:
         step = path.force[1:] / path.force[:-1]
         if np.any(np.maximum(step, 1 / step) > self.brief.levers.ratio_limit):
             return False
-        return not self.fine.is_judged[1] or float(self.fine.use(path.x, path.force)) <= least * (1 + 1e-6)
+        return not self.fine.is_judged[1] or float(self.fine.use(path.x, path.force)) <= least * (1 + REACHED)
 
     # -- under limits or several bands ---------------------------------------------------------------------------------
 
@@ -84,7 +84,7 @@ class FreePlaces:
             return None
         use = float(self.fine.use(found.x, found.forces.force))
         method = "lower bound: path of fewest links for the moment, stair of fewest steps for the shear"
-        even = self._more_even(tube, found, use)
+        even = self._more_even(tube, found)
         stretches = self.limits.stretches.shape[0]
         words = f"places searched step by step over {stretches} allowed stretch{'es' if stretches > 1 else ''}"
         return Outcome(even.x, even.forces.force, least, use, moment_least, found.forces.evenness, method, words)
@@ -122,12 +122,9 @@ class FreePlaces:
         kept = [arrangement for arrangement in found if arrangement is not None]
         return min(kept, key=lambda arrangement: arrangement.forces.use) if kept else None
 
-    def _more_even(self, tube: Tube, found: Arrangement, use: float) -> Arrangement:
+    def _more_even(self, tube: Tube, found: Arrangement) -> Arrangement:
         """Second stage: forces as close to the pads' shares as the band use given up for it allows."""
-        pads = self.brief.pads
-        limit = max(1.0, use) if pads.aim == "even" else found.forces.use * (1 + pads.ease)
-        if pads.aim == "even" and use > 1:
-            limit = found.forces.use * (1 + pads.ease)
+        limit = use_given_up_to(self.brief.pads, found.forces.use)
         self._report(0.9, "evening out the forces")
         for wish in wishes(self.brief.levers.ratio_limit, self.limits.least, tube.total / self.count):
             search = Search(tube, replace(self.limits, least=wish.least), use_limit=limit, ratio=wish.ratio)

@@ -14,7 +14,7 @@ import numpy as np
 from rigdesign.pads.forces import ForceProgramme, Forces, Wish, shares, wishes
 from rigdesign.pads.limits import fitted, force_limits, least_pitch
 from rigdesign.pads.lines import LineSets, Places, TooManySetsError
-from rigdesign.pads.outcome import Outcome, Progress, moment_alone, plain_amount
+from rigdesign.pads.outcome import Outcome, Progress, moment_floor, use_given_up_to
 from rigdesign.pads.path import least_use_path
 from rigdesign.pads.stair import least_use_stair
 from rigdesign.pads.tube import Tube, build_tube
@@ -23,12 +23,21 @@ from rigdesign.target.model import Target
 
 # Bound and design meet when they differ by less than this fraction, or after so many questions to the sets.
 MEET, MOST_QUESTIONS = 1e-3, 40
+# The moment alone is only quoted: its bound is raised until it meets to this fraction.
+ROUGHLY = 0.02
+# The path's bound is taken between stations a trifle below: it is found by bisection and rounding.
+SAFE = 1 - 1e-6
+# A band use is asked for at most this factor above the bound, where the sets are small and the answer quick.
+NEAR = 1.1
+# Without a design yet, band uses are asked for that grow by this factor, and the factor by this power.
+FIRST_FACTOR, GROWTH = 1.05, 1.6
 STATIONS_A_GAP = 12
 # Sets of lines are told apart by at most so many places before.
 MOST_MEMORY = 4
 # Sweeps of the exchange for even forces, each over every pad's two neighbouring places.
 MOST_SWEEPS = 12
-FAR = 1e6
+# Band uses below and above which nothing is asked.
+SMALL, FAR = 1e-3, 1e6
 
 
 @dataclass(frozen=True)
@@ -54,7 +63,8 @@ class HardPoints:
         found, least = self._least(self.tube)
         if found is None:
             return None
-        moment_least = self._moment_least(found, least)
+        peak = self.target.moment_peak
+        moment_least = moment_floor(self.tube, peak, least, lambda plain: self._least(plain, ROUGHLY)[1])
         even, sweeps = self._more_even(found)
         method = "sets of lines over the hard points (dynamic programming), confirmed by a linear programme"
         words = f"{self.count} of {self.x.size} hard points; {sweeps} sweeps of exchanges for even forces"
@@ -63,32 +73,40 @@ class HardPoints:
             x, even.forces.force, least, found.forces.use, moment_least, found.forces.evenness, method, words
         )
 
+    def fewest_possible(self) -> int:
+        """Number of pads that no choice within the bands and limits can go below; all hard points if there is none."""
+        pads = self._sets(self.tube).reach(1.0, self.x.size, exact=False)
+        return self.x.size if pads is None else len(pads)
+
+    def _sets(self, tube: Tube) -> LineSets:
+        return LineSets(tube, Places(self.x, self.least, self.largest, self.pitch), self.count)
+
     def _programme(self, tube: Tube, pads: tuple[int, ...]) -> ForceProgramme:
         x = self.x[list(pads)]
         return ForceProgramme(tube, x, self.least, self.largest, shares(tube, x))
 
     # -- least band use ---------------------------------------------------------------------------------------
 
-    def _least(self, tube: Tube, known: _Choice | None = None, meet: float = MEET) -> tuple[_Choice | None, float]:
+    def _least(self, tube: Tube, meet: float = MEET) -> tuple[_Choice | None, float]:
         """Best choice found and proven lower bound on the band use in a tube."""
         start, end = float(self.x[0]), float(self.x[-1])
         low = max(least_use_path(tube, self.count, start, end)[1] if tube.is_judged[0] else 0.0, 0.0)
-        low = max(low * (1 - 1e-6), least_use_stair(tube, np.stack([self.x, self.x], axis=1), self.count))
+        low = max(low * SAFE, least_use_stair(tube, np.stack([self.x, self.x], axis=1), self.count))
         if not np.isfinite(low):
             return None, low
-        sets = LineSets(tube, Places(self.x, self.least, self.largest, self.pitch), self.count)
-        best = known or self._nearest(tube)
+        sets = self._sets(tube)
+        best = self._nearest(tube)
         high = best.forces.use if best else np.inf
-        step, memory = 1.05, 1
+        factor, memory = FIRST_FACTOR, 1
         for question in range(MOST_QUESTIONS):
             if high <= low * (1 + meet) + 1e-12 or low > FAR:
                 break
             self._report(min(0.8, 0.02 + 0.04 * question), "proving the best choice of hard points")
             if np.isfinite(high):
-                middle = np.sqrt(max(low, 1e-6 * high) * high)
-                middle = min(middle, low * 1.1) if low > 1e-6 * high else middle
+                above = max(low, SMALL * high)
+                middle = min(np.sqrt(above * high), NEAR * above)
             else:
-                middle, step = max(low, 1e-3) * step, step**1.6
+                middle, factor = max(low, SMALL) * factor, factor**GROWTH
             try:
                 pads = sets.reach(float(middle), self.count, memory=memory)
             except TooManySetsError:
@@ -124,20 +142,11 @@ class HardPoints:
                     choices.append(_Choice(pads, forces))
         return min(choices, key=lambda choice: choice.forces.use) if choices else None
 
-    def _moment_least(self, found: _Choice, least: float) -> float:
-        amount = plain_amount(self.tube, self.target.moment_peak)
-        if amount is not None:
-            return least * amount
-        plain = moment_alone(self.tube, self.target.moment_peak)
-        return self._least(plain, meet=0.02)[1]
-
     # -- even forces ------------------------------------------------------------------------------------------
 
     def _more_even(self, found: _Choice) -> tuple[_Choice, int]:
         """Exchange places with their neighbours while the forces become more even within the band use given up."""
-        pads = self.brief.pads
-        use = found.forces.use
-        limit = 1.0 if pads.aim == "even" and use <= 1 else use * (1 + pads.ease)
+        limit = use_given_up_to(self.brief.pads, found.forces.use)
         best = None
         for wish in wishes(self.brief.levers.ratio_limit, self.least, self.tube.total / self.count):
             best = self._even(found.pads, limit, wish)

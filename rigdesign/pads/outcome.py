@@ -7,6 +7,7 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
+from rigdesign.brief.model import PadRules
 from rigdesign.pads.tube import Tube, Widths
 from rigdesign.target.curve import Floats
 
@@ -38,7 +39,27 @@ def moment_alone(tube: Tube, peak: float) -> Tube:
     return replace(tube, moment_width=Widths(width, width), is_judged=(True, False))
 
 
-def plain_amount(tube: Tube, peak: float) -> float | None:
+def use_given_up_to(rules: PadRules, use: float) -> float:
+    """Band use that even forces may take, where `use` is the least found: all of the bands, or a part more (ease).
+
+    What keeps the bands goes on keeping them.
+    """
+    if use > 1:
+        return use * (1 + rules.ease)
+    return 1.0 if rules.aim == "even" else min(use * (1 + rules.ease), 1.0)
+
+
+def moment_floor(tube: Tube, peak: float, use_least: float, least: Callable[[Tube], float]) -> float:
+    """Largest moment error that cannot be gone below, over the `peak` target moment [N·m].
+
+    Where one plain moment band is all that is judged it follows from the least band use; else `least` is asked for the
+    least band use in the tube of the moment alone.
+    """
+    amount = _plain_amount(tube, peak)
+    return use_least * amount if amount is not None else least(moment_alone(tube, peak))
+
+
+def _plain_amount(tube: Tube, peak: float) -> float | None:
     """The band as a fraction of the peak, if it is the same everywhere and on both sides and is all that is judged."""
     if tube.is_judged != (True, False):
         return None

@@ -17,7 +17,8 @@ of 400 stations a pad that is below 2e-5 of the moment error.  Corners are found
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
+from functools import cached_property
 from itertools import pairwise
 
 import numpy as np
@@ -61,49 +62,56 @@ class Path:
     use: float
 
 
+@dataclass(frozen=True)
 class _Edges:
-    """Edges of the moment tube at one band use: distinct stations, their lower edge on both sides, and the hull H."""
+    """Edges of the moment tube at one band use, at distinct stations `x` (m,) [m].
 
-    def __init__(self, tube: Tube, use: float, start: float, end: float) -> None:
-        wanted = tube.moment_wanted
-        low = wanted - use * tube.moment_below
-        high = wanted + use * tube.moment_above
-        first = np.append(True, np.diff(tube.x) > 0)
-        last = np.append(first[1:], True)
-        self.x = tube.x[first]
-        self.low_in, self.low_out = low[first], low[last]
-        self.low = np.maximum(self.low_in, self.low_out)
-        self.slope_in, self.slope_out = -tube.shear_wanted[first], -tube.shear_wanted[last]
-        self.tolerance = ROUND_OFF * tube.total * (self.x[-1] - self.x[0])
-        first_line = Line(tube.jack_x, 0.0, -tube.total)
-        # a corner can stand no further left than `start` and no further right than `end`
-        hull = lower_hull(self.x, np.minimum(high[first], high[last]))
-        hull = _hull_through(*hull, start, float(first_line.value(start)))
-        self.hull_x, self.hull_y = _hull_through(*hull, end, 0.0)
-        self.needed = self._insert_foot()
+    The lower edge has a value on either side of each station (m,) [N·m], and a slope; the upper edge is given by the
+    vertices of its lower convex hull H.  `tolerance` [N·m] is far below any error.
+    """
 
-    def _insert_foot(self) -> int:
-        """Make the place where the lower edge goes below the axis for good a station; return its index, −1 if none."""
+    x: Floats
+    low_in: Floats
+    low_out: Floats
+    slope_in: Floats
+    slope_out: Floats
+    hull_x: Floats
+    hull_y: Floats
+    tolerance: float
+
+    @cached_property
+    def low(self) -> Floats:
+        """The lower edge where both its sides hold (m,)."""
+        return np.maximum(self.low_in, self.low_out)
+
+    @cached_property
+    def needed(self) -> int:
+        """Last station that a line other than zero must cover, −1 if none."""
         positive = np.flatnonzero(self.low > self.tolerance)
         if not positive.size:
             return -1
         last = int(positive[-1])
-        if last + 1 == self.x.size or self.low_out[last] <= self.tolerance:
-            return last
+        return min(last + 1, self.x.size - 1) if self.low_out[last] > self.tolerance else last
+
+    def with_foot(self) -> _Edges:
+        """The same with a station where the lower edge goes below the axis for good, unless one stands there."""
+        last = self.needed - 1
+        if last < 0 or self.low_out[last] <= self.tolerance:
+            return self
         foot, _ = self.crossing(Line(self.x[last], 0.0, 0.0), last + 1, upward=True)
-        if self.x[last] < foot < self.x[last + 1]:
-            share = (foot - self.x[last]) / (self.x[last + 1] - self.x[last])
-            slope = (1 - share) * self.slope_out[last] + share * self.slope_in[last + 1]
-            for name, value in {
-                "x": foot,
-                "low": 0,
-                "low_in": 0,
-                "low_out": 0,
-                "slope_in": slope,
-                "slope_out": slope,
-            }.items():
-                setattr(self, name, np.insert(getattr(self, name), last + 1, value))
-        return last + 1
+        if not self.x[last] < foot < self.x[last + 1]:
+            return self
+        share = (foot - self.x[last]) / (self.x[last + 1] - self.x[last])
+        slope = (1 - share) * self.slope_out[last] + share * self.slope_in[last + 1]
+        at = last + 1
+        return replace(
+            self,
+            x=np.insert(self.x, at, foot),
+            low_in=np.insert(self.low_in, at, 0.0),
+            low_out=np.insert(self.low_out, at, 0.0),
+            slope_in=np.insert(self.slope_in, at, slope),
+            slope_out=np.insert(self.slope_out, at, slope),
+        )
 
     def below(self, line: Line) -> bool:
         """Whether the line keeps below the upper edge."""
@@ -138,6 +146,24 @@ class _Edges:
         bend = -sign * float(self.slope_in[index] - self.slope_out[index - 1]) / (2 * h)
         x = float(a + _first_root(above, (beneath - above) / h - bend * h, bend, h))
         return x, float(line.value(x))
+
+
+def _edges_of(tube: Tube, use: float, start: float, end: float) -> _Edges:
+    """Edges of a tube at a band use, for pads between `start` and `end` [m]."""
+    wanted = tube.moment_wanted
+    low = wanted - use * tube.moment_below
+    high = wanted + use * tube.moment_above
+    first = np.append(True, np.diff(tube.x) > 0)
+    last = np.append(first[1:], True)
+    x = tube.x[first]
+    # a corner can stand no further left than `start` and no further right than `end`
+    hull = lower_hull(x, np.minimum(high[first], high[last]))
+    hull = _hull_through(*hull, start, tube.total * (tube.jack_x - start))
+    hull_x, hull_y = _hull_through(*hull, end, 0.0)
+    slope = -tube.shear_wanted
+    tolerance = ROUND_OFF * tube.total * (x[-1] - x[0])
+    edges = _Edges(x, low[first], low[last], slope[first], slope[last], hull_x, hull_y, tolerance)
+    return edges.with_foot()
 
 
 def _first_root(d0: float, d1: float, d2: float, h: float) -> float:
@@ -218,7 +244,7 @@ def fewest_lines(tube: Tube, use: float, start: float, end: float, most: int) ->
 
     Pads stand between `start` and `end` [m].
     """
-    edges = _Edges(tube, use, start, end)
+    edges = _edges_of(tube, use, start, end)
     line, last = Line(tube.jack_x, 0.0, -tube.total), Line(edges.x[-1], 0.0, 0.0)
     if not (edges.below(line) and edges.below(last)):
         return None

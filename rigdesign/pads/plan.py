@@ -127,6 +127,8 @@ def _fewest_possible(target: Target, jack_x: float, most: int) -> int:
     _, largest = force_limits(brief)
     if np.isfinite(largest):
         counts.append(int(np.ceil(abs(target.net.total) / largest * (1 - 1e-9))))
+    if brief.pads.places == "hard points":
+        counts.append(HardPoints(target, jack_x, usable_points(brief), max(counts), None).fewest_possible())
     return max(counts)
 
 

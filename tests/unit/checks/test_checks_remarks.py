@@ -337,3 +337,17 @@ def test_what_drilling_costs_is_remarked_on(band, promised, severity):
         assert found[0].stage == "practice"
         assert found[0].value == f"band use {1 / band:.3g} as drilled, {promised} before drilling"
         assert found[0].limit == "drill_step 25.0 mm"
+
+
+def test_a_tree_that_pushes_is_said_to_topple():
+    found = only(rig(pads=make_pads(action="push")))
+    assert (found.severity, found.object) == ("warning", "rig")
+    assert "not stable" in found.text
+    assert "guide" in found.remedy
+
+
+def test_a_lever_built_right_at_its_limit_is_not_too_long():
+    lengths = [np.ptp([hole.u for hole in piece.ends]) for piece in rig().trees[0].pieces]
+    longest = max(lengths) * (1 - 1e-9)  # the levers stage allows this much above the limit
+    assert not remarks(rig(levers=make_levers(longest=longest)))
+    assert "too long" in only(rig(levers=make_levers(longest=longest * (1 - 1e-6)))).text
