@@ -24,7 +24,7 @@ from rigdesign.findings import Refusal
 from rigdesign.pads import PadPlan, plan_pads
 from rigdesign.pads.limits import allowed_stretches, fitted, most_that_fit, packed, violations
 from rigdesign.pads.stair import fewest_steps
-from rigdesign.pads.tube import build_tube
+from rigdesign.pads.tube import MOST_BREAKS, build_tube
 from rigdesign.target import build_target
 
 
@@ -307,3 +307,16 @@ def test_inertia_relief_lowers_the_pads() -> None:
     )
     # the target is 5400 N − 3.8 m g, and the pads lift m g besides
     assert planned(brief).force.sum() == pytest.approx(5400.0 - 2.8 * 96.0 * 9.80665)
+
+
+def test_a_table_of_very_many_forces_is_followed_at_its_largest_steps() -> None:
+    x = np.linspace(0.2, 3.4, 30_001)
+    force = np.full(x.size, 0.1)
+    force[17_001] = 900.0
+    target = build_target(make_brief(loads=(point_loads(x, force),)))
+    tube = build_tube(target, 1.7, 8, 40)
+    assert tube.x.size < 3 * MOST_BREAKS
+    # both sides of the one large step stand among the stations
+    assert np.count_nonzero(tube.x == x[17_001]) == 2
+    twice = build_tube(build_target(make_brief(loads=(point_loads(x, 2 * force),))), 1.7, 8, 40)
+    assert np.array_equal(tube.x, twice.x)
