@@ -17,7 +17,7 @@ from rigdesign.findings import Refusal
 from rigdesign.levers.arms import Arms, search_arms
 from rigdesign.levers.branching import Pins, Search
 from rigdesign.levers.descent import Descended, all_pairs, descend, descend_again, moves_of, near_pairs
-from rigdesign.levers.drilled import BROKEN, REACH, Drilled, coarse, judged
+from rigdesign.levers.drilled import BROKEN, REACH, Drilled, coarse, judged, weighed
 from rigdesign.levers.grouping import allowed, millimetres
 from rigdesign.levers.hanging import hang_free, metres
 from rigdesign.levers.judging import Judge, Lines, build_judge
@@ -43,7 +43,8 @@ def drill_free(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | N
     refusal = coarse(wiring, levers.a, levers.b, step)
     if refusal is not None:
         return refusal
-    judge = build_judge(tube)
+    aimed = weighed(tube, plan.x, np.abs(plan.force))
+    judge = build_judge(aimed)
     found = _searched(plan, wiring, tube, judge, progress) if wiring.is_neighbourly else None
     start = found.steps.reshape(-1) if found is not None else _rounded(brief, levers.a, levers.b, step)
     if start is None:
@@ -58,7 +59,7 @@ def drill_free(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | N
         descended = descend_again(descended, moves, value, most)
     hung = hang_free(wiring, descended.steps[None], step, tube.jack_x, tube.total)
     use = float(tube.use(hung.pad_x, hung.pad_force)[0])
-    return Drilled(hung, descended.steps.reshape(-1, 2), use, _words(found, descended))
+    return Drilled(hung, descended.steps.reshape(-1, 2), use, _words(found, descended, aimed is tube))
 
 
 def _value(brief: Brief, wiring: Wiring, tube: Tube, judge: Judge, start: Ints) -> Callable[[Ints], Floats]:
@@ -121,9 +122,14 @@ def _no_side(step: float) -> Refusal:
     )
 
 
-def _words(found: Arms | None, descended: Descended) -> str:
+def _words(found: Arms | None, descended: Descended, is_proof: bool) -> str:
     if found is None:
         head = "drilling: arms rounded, then moved"
+    elif not is_proof:
+        head = (
+            f"drilling: {found.nodes} choices of arms looked at, for the quantity that the plan keeps inside its band "
+            "not to leave it for the sake of the other"
+        )
     elif found.window:
         head = (
             f"drilling: {found.nodes} choices of arms looked at; proven: no arms up to {steps_of(found.window)} either "

@@ -72,7 +72,7 @@ def rounded_arms(plan):
     return np.rint(np.stack([levers.a, levers.b], axis=1) / step).astype(int).reshape(-1)
 
 
-@pytest.mark.parametrize("shear", [None, 0.12])
+@pytest.mark.parametrize("shear", [None, 0.24])  # a shear band that three pads can keep
 @pytest.mark.parametrize(("count", "step"), [(3, 0.02), (4, 0.03)])
 def test_no_better_arms_by_brute_force(count, step, shear):
     """Every choice of arms up to two steps around the ones found, all levers at once."""
@@ -331,3 +331,20 @@ def test_pads_that_stand_close_are_drilled_apart():
     rig = build_rig(plan_by_hand(brief, x, force))
     assert isinstance(rig, Rig)
     assert violations(brief, rig.pad_x, np.abs(pad_forces(rig))) == 0
+
+
+def test_a_shear_that_cannot_be_kept_is_no_leave_to_spoil_the_moment():
+    """A shear band of 1 % is beyond nine pads; the moment keeps its band before drilling and must as drilled."""
+    plain = brief_of(9, "parabolic", levers={"drill_step": 0.04})
+    brief = replace(plain, acceptance=make_acceptance(moment=0.006, shear=0.01))
+    plan = best_plan(plain, 9)
+    plan = plan_by_hand(brief, plan.x, plan.force)
+    rig = build_rig(plan)
+    assert isinstance(rig, Rig)
+    tube = build_tube(plan.target, plan.jack_x, 9)
+    moment, shear = (replace(tube, is_judged=one) for one in ((True, False), (False, True)))
+    planned, drilled = (plan.x[None], plan.force[None]), (rig.pad_x[None], np.abs(pad_forces(rig))[None])
+    assert shear.use(*planned)[0] > 5
+    assert moment.use(*planned)[0] < 0.7
+    assert moment.use(*drilled)[0] <= 1.0 + 1e-9
+    assert shear.use(*drilled)[0] <= 1.05 * shear.use(*planned)[0]
