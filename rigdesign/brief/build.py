@@ -26,7 +26,7 @@ from rigdesign.brief.model import (
 )
 from rigdesign.brief.specimen import specimen
 from rigdesign.display import show
-from rigdesign.words import DEFAULT_MOMENT_BAND
+from rigdesign.words import DEFAULT_MOMENT_BAND, MOST_PADS
 
 _SIDES: tuple[Literal["under", "over"], ...] = ("under", "over")
 _QUANTITIES: tuple[Literal["moment", "shear"], ...] = ("moment", "shear")
@@ -102,13 +102,17 @@ def _stations(table: PadsTable, piece: Specimen, context: Context) -> Floats:
         what = f'places = "{table.places}" needs the stations once'
         raise context.error(what, "pads", "places", limit='"stations" or "table", and not both', value="")
     if table.table is not None:
-        rows = context.table(table.table, ("pads", "table"), {"x": "length"})
-        return table_stations(rows, piece)
-    listed = () if table.stations is None else table.stations
-    x: Floats = np.array([context.station(float(x), piece, "pads", "stations") for x in listed])
-    if np.any(np.diff(x) <= 0):
-        raise context.error("the stations must be in order of x, each once", "pads", "stations")
-    return frozen(x)
+        x = table_stations(context.table(table.table, ("pads", "table"), {"x": "length"}), piece)
+    else:
+        listed = () if table.stations is None else table.stations
+        x = frozen(np.array([context.station(float(x), piece, "pads", "stations") for x in listed]))
+        if np.any(np.diff(x) <= 0):
+            raise context.error("the stations must be in order of x, each once", "pads", "stations")
+    if x.size > MOST_PADS:
+        what, limit = f"{x.size} stations are more than can be designed for", f"up to {MOST_PADS}"
+        remedy = 'name fewer, or write places = "free"'
+        raise context.error(what, "pads", given[0], limit=limit, remedy=remedy)
+    return x
 
 
 def _count(table: PadsTable, stations: Floats, context: Context) -> int | Literal["fewest"]:

@@ -10,6 +10,7 @@ from typing import Protocol
 
 from rigdesign.brief.model import Source
 from rigdesign.errors import BriefError, InputError, TableError
+from rigdesign.units import in_words
 
 
 class Texts(Protocol):
@@ -28,6 +29,8 @@ class FolderTexts:
     def __init__(self, brief: Path) -> None:
         """Read the brief itself; raise BriefError if it cannot be read."""
         self.folder = brief.parent
+        if not brief.name.isprintable():  # it stands in messages, figures and rig.json; bytes that are no text too
+            raise BriefError("the name of the brief is not plain text", value=in_words(brief.name), remedy="rename it")
         # a path such as "." has no name of its own and is called what it was called
         self._texts = {brief.name: _read(brief, brief.name or str(brief), BriefError, "", what="the brief")}
 
@@ -85,6 +88,11 @@ def _read(path: Path, name: str, error: type[InputError], where: str, *, what: s
         raise error(f"{what} is a folder, not a file", where=place, value=named) from None
     except (FileNotFoundError, NotADirectoryError):
         raise error(f"{what} does not exist", where=place, value=named, remedy=_near(path)) from None
+    except UnicodeEncodeError:
+        what_to_do = "set a UTF-8 locale, or use plain names"
+        raise error(
+            f"{what} has a name that this machine cannot write", where=place, value=named, remedy=what_to_do
+        ) from None
     except OSError as problem:
         reason = (problem.strerror or "unknown reason").lower()
         raise error(f"{what} cannot be read: {reason}", where=place, value=named) from None

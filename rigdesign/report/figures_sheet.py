@@ -8,6 +8,7 @@ black-and-white print loses nothing.
 from __future__ import annotations
 
 import io
+import warnings
 from collections.abc import Callable
 from functools import wraps
 from typing import Any, ParamSpec, TypeVar
@@ -133,5 +134,8 @@ def png(figure: Figure) -> bytes:
 @styled
 def _saved(figure: Figure, form: str, metadata: dict[str, Any]) -> bytes:
     buffer = io.BytesIO()
-    figure.savefig(buffer, format=form, metadata=metadata, dpi=150)
+    with warnings.catch_warnings():
+        # a title in a script that the fonts lack shows boxes, as everywhere; that is no message for the terminal
+        warnings.filterwarnings("ignore", message=r"Glyph \d+ .* missing from font")
+        figure.savefig(buffer, format=form, metadata=metadata, dpi=150)
     return buffer.getvalue()

@@ -33,6 +33,16 @@ def require_free(folder: Path, replace: bool) -> None:
     OutputError
         Where something is in the way and may not be replaced, or the folder above is missing or cannot be written.
     """
+    try:
+        _require_free(folder, replace)
+    except OutputError:
+        raise
+    except (OSError, UnicodeEncodeError) as error:  # a name too long, or one that this machine cannot write
+        reason = error.strerror if isinstance(error, OSError) else "this machine cannot write its name"
+        raise OutputError(f"{folder}: cannot be written: {reason}") from error
+
+
+def _require_free(folder: Path, replace: bool) -> None:
     where = str(folder)
     parent = _parent(folder)
     if not parent.exists():
@@ -104,7 +114,7 @@ def write_folder(files: Mapping[str, bytes], folder: Path, replace: bool = False
     folder = Path(os.path.abspath(folder))
     parent = folder.parent
     try:
-        fresh = Path(tempfile.mkdtemp(prefix=f".{folder.name}.", suffix=".new", dir=parent))
+        fresh = Path(tempfile.mkdtemp(prefix=_beside(folder), suffix=".new", dir=parent))
     except OSError as error:
         raise OutputError(f"{folder}: cannot be written: {error.strerror}") from error
     try:
@@ -115,6 +125,11 @@ def write_folder(files: Mapping[str, bytes], folder: Path, replace: bool = False
     finally:
         # gone by now if all went well; an interruption of the user passes through here too
         shutil.rmtree(fresh, ignore_errors=True)
+
+
+def _beside(folder: Path) -> str:
+    """How the name of a temporary folder begins: hidden, and short where the folder's own is long."""
+    return f".{folder.name[:40]}."
 
 
 def _fill(fresh: Path, files: Mapping[str, bytes]) -> None:
@@ -137,7 +152,7 @@ def _put_in_place(fresh: Path, folder: Path) -> None:
     if not folder.exists():
         os.rename(fresh, folder)
         return
-    aside = Path(tempfile.mkdtemp(prefix=f".{folder.name}.", suffix=".old", dir=folder.parent))
+    aside = Path(tempfile.mkdtemp(prefix=_beside(folder), suffix=".old", dir=folder.parent))
     old = aside / folder.name
     try:
         os.rename(folder, old)

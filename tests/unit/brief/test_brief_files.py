@@ -39,6 +39,21 @@ def test_a_brief_that_may_not_be_read(tmp_path: Path, monkeypatch: pytest.Monkey
         read_brief(tmp_path / "foil.toml")
 
 
+def test_names_that_are_no_text(read, tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    for name in ("fo\udcffil.toml", "fo\x1b[1mil.toml"):
+        with pytest.raises(BriefError, match="the name of the brief is not plain text") as caught:
+            read_brief(tmp_path / name)
+        assert str(caught.value).isprintable()
+
+    def encode(path: Path) -> bytes:
+        return path.name.encode("ascii")
+
+    # as on a machine whose file names are ASCII
+    monkeypatch.setattr(Path, "read_bytes", encode)
+    with pytest.raises(BriefError, match=r"a name that this machine cannot write.*set a UTF-8 locale"):
+        read_brief(tmp_path / "flügel.toml")
+
+
 def test_a_brief_that_is_not_utf8(tmp_path: Path) -> None:
     (tmp_path / "foil.toml").write_bytes(b'title = "a"\n# Fl\xfcgel\n')
     with pytest.raises(BriefError, match=r"foil.toml, line 2: the brief is not UTF-8 text; save it as UTF-8"):

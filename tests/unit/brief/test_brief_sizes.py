@@ -29,6 +29,16 @@ def test_a_brief_of_impossible_sizes(refusal, edit, parts) -> None:
         assert part in message
 
 
+@pytest.mark.parametrize("places", ["fixed", "hard points"])
+def test_more_stations_than_can_be_designed_for(refusal, read, places) -> None:
+    keys = f'places = "{places}"\ntable = "ribs.csv"' + ("" if places == "fixed" else "\ncount = 6")
+    rows = [f"{0.2 + 0.003 * k:.4f}\n" for k in range(1001)]
+    message = refusal(("count = 6", keys), ribs="x [m]\n" + "".join(rows))
+    assert "[pads] table: 1001 stations are more than can be designed for" in message
+    assert "up to 1000" in message
+    assert read(("count = 6", keys), ribs="x [m]\n" + "".join(rows[1:])).pads.stations.size == 1000
+
+
 def test_sizes_right_on_the_limits_are_read(read) -> None:
     assert read(("count = 6", "count = 1000")).pads.count == 1000
     assert read(("Test foil", 200 * "ü")).title == 200 * "ü"

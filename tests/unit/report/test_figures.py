@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from dataclasses import replace
 from itertools import combinations
 
 import numpy as np
@@ -108,6 +109,14 @@ def test_drawing_changes_no_settings_and_obeys_none():
     with matplotlib.rc_context({"font.size": 23.0, "font.family": ["serif"], "axes.unicode_minus": False}):
         assert figures_sheet.svg(elevation(check)) == plain
     assert dict(matplotlib.rcParams) == before
+
+
+def test_a_title_in_a_script_that_the_fonts_lack_is_drawn_without_a_warning():
+    check = checked(3)  # warnings are errors here
+    brief = replace(check.rig.plan.target.brief, title="翼 試験")
+    sheet = target_sheet(replace(check.rig.plan.target, brief=brief))
+    assert figures_sheet.svg(sheet)
+    assert figures_sheet.png(sheet)
 
 
 def test_the_curves_are_those_of_the_check():

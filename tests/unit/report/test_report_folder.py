@@ -45,6 +45,15 @@ def test_replaced_when_asked(tmp_path):
     assert os.listdir(tmp_path) == ["rig"]
 
 
+def test_names_as_long_as_they_can_be(tmp_path):
+    write_folder(FILES, tmp_path / (255 * "n"))
+    write_folder(OTHER, tmp_path / (255 * "n"), replace=True)
+    assert contents(tmp_path / (255 * "n")) == OTHER
+    with pytest.raises(OutputError, match="cannot be written: File name too long"):
+        require_free(tmp_path / (256 * "n"), replace=False)
+    assert os.listdir(tmp_path) == [255 * "n"]
+
+
 def test_study_folders_are_replaced_too(tmp_path):
     study = {"study.csv": b"1", "study.json": b"2", "study.svg": b"3"}
     write_folder(study, tmp_path / "study")
