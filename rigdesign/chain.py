@@ -30,6 +30,9 @@ Progress = Callable[[float, str], None]
 MORE_PADS = 4
 """With `count = "fewest"`, so many more pads are tried at most when what drilling costs breaks a band."""
 
+FEWER_PADS = 40
+"""With `count = "fewest"`, so many fewer pads are tried at most when levers cannot join those that bands ask for."""
+
 _PADS_PART = 0.6  # of the whole work, as progress shows it: choosing pads takes longer than levers and check
 
 
@@ -78,6 +81,8 @@ def design(brief: Brief, progress: Progress | None = None) -> Check | Refusal:
 def design_target(target: Target, progress: Progress | None = None) -> Check | Refusal:
     """Like `design`, for a target that has been built already."""
     first = _design(target, None, progress)
+    if target.brief.pads.count == "fewest" and isinstance(first, Refusal) and first.stage == "levers":
+        return _most_that_levers_join(target, first, progress)
     if target.brief.pads.count != "fewest" or isinstance(first, Refusal) or first.accepted:
         return first
     best, planned = first, first.rig.plan.n_pads
@@ -90,6 +95,28 @@ def design_target(target: Target, progress: Progress | None = None) -> Check | R
         if answer.band_use < best.band_use:
             best = answer
     return best
+
+
+def _most_that_levers_join(target: Target, refusal: Refusal, progress: Progress | None) -> Check | Refusal:
+    """Return the rig with the most pads, below the number wanted, that levers can join; the refusal if none."""
+    from rigdesign.pads import plan_pads
+
+    plan = plan_pads(target)
+    wanted = 1 if isinstance(plan, Refusal) else plan.n_pads
+    for count in range(wanted - 1, max(0, wanted - 1 - FEWER_PADS), -1):
+        remark = Finding(
+            "levers",
+            "failure",
+            "rig",
+            f"the bands ask for {wanted} pads, and no levers join so many within their limits: {refusal.best}",
+            f"{count} pads",
+            refusal.limit,
+            refusal.remedy,
+        )
+        answer = _design(target, count, progress, (remark,))
+        if not isinstance(answer, Refusal):
+            return answer
+    return refusal
 
 
 def _more_than_planned(planned: int, count: int) -> Finding:

@@ -6,9 +6,9 @@ from dataclasses import replace
 
 import numpy as np
 
-from rigdesign.pads.forces import ForceProgramme, shares, wishes
+from rigdesign.pads.forces import ForceProgramme, Forces, shares, wishes
 from rigdesign.pads.limits import force_limits, least_pitch
-from rigdesign.pads.outcome import Outcome, moment_floor, use_given_up_to
+from rigdesign.pads.outcome import Outcome, held_apart, moment_floor, use_given_up_to
 from rigdesign.pads.tube import Tube, build_tube
 from rigdesign.target.model import Target
 
@@ -29,12 +29,7 @@ def choose_fixed(target: Target, jack_x: float) -> Outcome | None:
     if best is None:
         return None
     limit = use_given_up_to(brief.pads, best.use)
-    even = best
-    for wish in wishes(brief.levers.ratio_limit, least, tube.total / x.size):
-        tried = replace(programme, least=wish.least).most_even(limit, wish.ratio)
-        if tried is not None:
-            even = tried
-            break
+    even = _more_even(programme, best, limit, brief.levers.ratio_limit)
 
     def least_alone(plain: Tube) -> float:
         alone = replace(programme, tube=plain).least_use()
@@ -42,3 +37,14 @@ def choose_fixed(target: Target, jack_x: float) -> Outcome | None:
 
     moment_least = moment_floor(tube, target.moment_peak, best.use, least_alone)
     return Outcome(x, even.force, best.use, best.use, moment_least, best.evenness, METHOD, f"{x.size} fixed places")
+
+
+def _more_even(programme: ForceProgramme, best: Forces, limit: float, ratio_limit: float) -> Forces:
+    """Forces as close to the pads' shares as the band use `limit` allows; the best ones themselves if none are."""
+    tube, x = programme.tube, programme.x
+    for held in held_apart(tube, x, best.force, limit):
+        for wish in wishes(ratio_limit, programme.least, tube.total / x.size):
+            tried = replace(programme, tube=held, least=wish.least).most_even(limit, wish.ratio)
+            if tried is not None:
+                return tried
+    return best

@@ -13,7 +13,7 @@ import numpy as np
 
 from rigdesign.pads.forces import evenness, wishes
 from rigdesign.pads.limits import TOUCH, allowed_stretches, fitted, force_limits, least_pitch, packed, violations
-from rigdesign.pads.outcome import Outcome, Progress, moment_floor, use_given_up_to
+from rigdesign.pads.outcome import Outcome, Progress, held_apart, moment_floor, use_given_up_to
 from rigdesign.pads.path import COARSE, FINE, MANY, Path, least_use_path
 from rigdesign.pads.search import Arrangement, Limits, Search
 from rigdesign.pads.stair import least_use_stair
@@ -102,7 +102,11 @@ class FreePlaces:
                 else wishes[0]
             )
             wishes += [places, (wishes[0] + places) / 2]
-        ends = self.limits.stretches
+        return self._fit(wishes)
+
+    def _fit(self, wishes: list[Floats]) -> list[Floats]:
+        """Places nearest to the wishes (n,) that the stretches and the least pitch allow, where there are any."""
+        tube, n, ends = self.fine, self.count, self.limits.stretches
         pieces = [np.linspace(a, b, max(2, int(START_GRID * (b - a) / (tube.x[-1] - tube.x[0])))) for a, b in ends]
         # the tightest packings from either end, so that pads which just fit find a place
         slack = TOUCH * (tube.x[-1] - tube.x[0])
@@ -114,7 +118,12 @@ class FreePlaces:
 
     def _best_of(self, search: Search, starts: list[Floats]) -> Arrangement | None:
         """Refine the starts, the most promising first (only two of them for many pads), and keep the best."""
-        ranked = sorted(starts, key=lambda x: _use(search, x))
+        uses = {k: _use(search, x) for k, x in enumerate(starts)}
+        ranked = [starts[k] for k in sorted(uses, key=lambda k: uses[k])]
+        if not np.isfinite(min(uses.values(), default=np.inf)):
+            # a jack far from the load asks for pads near both ends
+            even = self._fit([np.linspace(self.start, self.end, self.count)])
+            ranked = even + ranked
         found = []
         for k, start in enumerate(ranked if self.count <= MANY_STARTS else ranked[:2]):
             self._report(0.1 + 0.25 * k, "searching places")
@@ -126,13 +135,14 @@ class FreePlaces:
         """Second stage: forces as close to the pads' shares as the band use given up for it allows."""
         limit = use_given_up_to(self.brief.pads, found.forces.use)
         self._report(0.9, "evening out the forces")
-        for wish in wishes(self.brief.levers.ratio_limit, self.limits.least, tube.total / self.count):
-            search = Search(tube, replace(self.limits, least=wish.least), use_limit=limit, ratio=wish.ratio)
-            # where the wish cannot be had at these places, places of least band use under its least force may allow it
-            near = None if search.forces(found.x) is not None else replace(search, use_limit=None).refine(found.x)
-            even = search.refine(found.x if near is None else near.x)
-            if even is not None:
-                return even
+        for held in held_apart(tube, found.x, found.forces.force, limit):
+            for wish in wishes(self.brief.levers.ratio_limit, self.limits.least, tube.total / self.count):
+                search = Search(held, replace(self.limits, least=wish.least), use_limit=limit, ratio=wish.ratio)
+                # where the wish cannot be had at these places, places of least band use under it may allow it
+                near = None if search.forces(found.x) is not None else replace(search, use_limit=None).refine(found.x)
+                even = search.refine(found.x if near is None else near.x)
+                if even is not None:
+                    return even
         return found
 
     def _report(self, fraction: float, words: str) -> None:

@@ -14,7 +14,7 @@ import numpy as np
 from rigdesign.pads.forces import ForceProgramme, Forces, Wish, shares, wishes
 from rigdesign.pads.limits import fitted, force_limits, least_pitch
 from rigdesign.pads.lines import LineSets, Places, TooManySetsError
-from rigdesign.pads.outcome import Outcome, Progress, moment_floor, use_given_up_to
+from rigdesign.pads.outcome import Outcome, Progress, held_apart, moment_floor, use_given_up_to
 from rigdesign.pads.path import least_use_path
 from rigdesign.pads.stair import least_use_stair
 from rigdesign.pads.tube import Tube, build_tube
@@ -147,18 +147,14 @@ class HardPoints:
     def _more_even(self, found: _Choice) -> tuple[_Choice, int]:
         """Exchange places with their neighbours while the forces become more even within the band use given up."""
         limit = use_given_up_to(self.brief.pads, found.forces.use)
-        best = None
-        for wish in wishes(self.brief.levers.ratio_limit, self.least, self.tube.total / self.count):
-            best = self._even(found.pads, limit, wish)
-            if best is not None:
-                break
+        best, tube, wish = self._first_even(found, limit)
         if best is None:
             return found, 0
         for sweep in range(MOST_SWEEPS):
             self._report(0.8 + 0.2 * sweep / MOST_SWEEPS, "evening out the forces")
             better = best
             for pads_tried in self._exchanges(best.pads):
-                tried = self._even(pads_tried, limit, wish)
+                tried = self._even(tube, pads_tried, limit, wish)
                 if tried is not None and tried.forces.evenness < better.forces.evenness * (1 - 1e-6):
                     better = tried
             if better is best:
@@ -166,8 +162,18 @@ class HardPoints:
             best = better
         return best, MOST_SWEEPS
 
-    def _even(self, pads: tuple[int, ...], limit: float, wish: Wish) -> _Choice | None:
-        programme = replace(self._programme(self.tube, pads), least=wish.least)
+    def _first_even(self, found: _Choice, limit: float) -> tuple[_Choice | None, Tube, Wish]:
+        """Even forces at the places found, with the tube and the wish that allow them; None where nothing does."""
+        mean = self.tube.total / self.count
+        for tube in held_apart(self.tube, self.x[list(found.pads)], found.forces.force, limit):
+            for wish in wishes(self.brief.levers.ratio_limit, self.least, mean):
+                best = self._even(tube, found.pads, limit, wish)
+                if best is not None:
+                    return best, tube, wish
+        return None, self.tube, Wish(None, self.least)
+
+    def _even(self, tube: Tube, pads: tuple[int, ...], limit: float, wish: Wish) -> _Choice | None:
+        programme = replace(self._programme(tube, pads), least=wish.least)
         forces = programme.most_even(limit, wish.ratio)
         return None if forces is None else _Choice(pads, forces)
 

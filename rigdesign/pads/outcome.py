@@ -49,6 +49,21 @@ def use_given_up_to(rules: PadRules, use: float) -> float:
     return 1.0 if rules.aim == "even" else min(use * (1 + rules.ease), 1.0)
 
 
+def held_apart(tube: Tube, x: Floats, force: Floats, limit: float) -> tuple[Tube, ...]:
+    """Tubes in which to even forces out within `limit`, in the order in which they are given up.
+
+    Where one band cannot be kept, that is no leave to break the other: the tube of the band which binds less is made
+    so much narrower that `limit` is one whole band of it.
+    """
+    if limit <= 1 or tube.is_judged != (True, True):
+        return (tube,)
+    alone = [replace(tube, is_judged=judged) for judged in ((True, False), (False, True))]
+    moment_use, shear_use = (float(one.use(x, force)) for one in alone)
+    if moment_use < shear_use:
+        return replace(tube, moment_width=Widths(*(width / limit for width in tube.moment_width))), tube
+    return replace(tube, shear_width=Widths(*(width / limit for width in tube.shear_width))), tube
+
+
 def moment_floor(tube: Tube, peak: float, use_least: float, least: Callable[[Tube], float]) -> float:
     """Largest moment error that cannot be gone below, over the `peak` target moment [N·m].
 

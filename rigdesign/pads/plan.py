@@ -166,7 +166,7 @@ def _remarks(proof: Proof) -> list[Finding]:
                 "pads",
                 "note",
                 "pads",
-                f"the band use found is {proof.gap:.1%} above the proven least",
+                f"the band use found is {100 * proof.gap:.2g} % above the proven least",
                 value=f"{proof.band_use_found:.4g}",
                 limit=f"{proof.band_use_least:.4g}",
                 remedy="a better arrangement may exist, by at most this much",

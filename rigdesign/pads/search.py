@@ -124,7 +124,7 @@ class Search:
     def _band_rows(self, model: LinearPath) -> tuple[list[Floats], list[Floats]]:
         """Rows that keep the bands: within the value sought, or within the band use given up for evenness."""
         rows, constant, width = model.edges()
-        use = (rows @ model.start + constant) / width
+        use = ((rows * model.start).sum(axis=1) + constant) / width
         busy = use > IDLE_EDGE * (self.use_limit or float(use.max()))
         rows, constant, width = rows[busy], constant[busy], width[busy]
         if self.use_limit is None:
@@ -164,7 +164,8 @@ def _with_stations(tube: Tube, x: Floats) -> Tube:
 
 def _balanced(tube: Tube, x: Floats) -> Floats:
     """Forces (n,) near the pads' shares with the right sum and first moment, whatever the limits."""
+    # sums, not matrix products: those may differ in their last digit from one process to the next
     share = shares(tube, x)
     lever = x - x.mean()
-    turn = tube.total * tube.jack_x - share @ x
-    return np.asarray(share + turn * lever / (lever @ lever)) if x.size > 1 else share
+    turn = tube.total * tube.jack_x - (share * x).sum()
+    return np.asarray(share + turn * lever / (lever * lever).sum()) if x.size > 1 else share

@@ -28,9 +28,13 @@ def fewest_steps(tube: Tube, use: float, stretches: Floats, most: int) -> int | 
     high = np.minimum.accumulate(tube.shear_wanted + use * tube.shear_above)
     low = np.maximum.accumulate((tube.shear_wanted - use * tube.shear_below)[::-1])[::-1]
     last_needed = int(np.flatnonzero(low > 0)[-1]) if low[0] > 0 else -1
+    if last_needed >= 0 and tube.x[last_needed] > stretches[-1, 1]:
+        return None  # no pad may stand where the shear must still be held
     start, steps = _covered(low, high, 0, tube.total), 1
     while start <= last_needed:
         place = _last_allowed(float(tube.x[start]), stretches)
+        if place == -np.inf:
+            return None  # nor may one stand where the shear must fall already
         restart = int(np.searchsorted(tube.x, place, side="left"))
         # a pad at the station itself leaves its inboard side to the level before
         restart = min(start, restart + int(place == tube.x[restart] and not tube.outboard[restart]))

@@ -135,3 +135,19 @@ def test_assess_with_holes_and_another_target_at_once(tmp_path):
     both = chain.assess(answer.rig, holes=holes, brief=make_brief(loads=(shape_load("elliptical", 9000.0),)))
     assert both.rig.plan.target.resultant == pytest.approx(9000.0)
     assert both.statics.share != pytest.approx(answer.statics.share, rel=1e-3)
+
+
+def test_fewest_that_levers_cannot_join_gives_the_most_that_they_can():
+    """Bands that no number of pads keeps ask for as many as fit; the answer is a rig all the same, and says why."""
+    brief = make_brief(
+        pads=make_pads(count="fewest", length=0.2, gap=0.0),
+        levers=make_levers(shortest_arm=0.12),
+        acceptance=make_acceptance(moment=0.0005, shear=None),
+    )
+    answer = chain.design(brief)
+    assert not isinstance(answer, Refusal)
+    assert not answer.accepted
+    finding = next(f for f in answer.findings if f.stage == "levers" and f.severity == "failure")
+    assert "the bands ask for" in finding.text
+    assert "shortest_arm" in finding.limit
+    assert finding.value == f"{answer.rig.plan.n_pads} pads"

@@ -320,3 +320,30 @@ def test_a_table_of_very_many_forces_is_followed_at_its_largest_steps() -> None:
     assert np.count_nonzero(tube.x == x[17_001]) == 2
     twice = build_tube(build_target(make_brief(loads=(point_loads(x, 2 * force),))), 1.7, 8, 40)
     assert np.array_equal(tube.x, twice.x)
+
+
+def test_a_jack_far_from_the_load_is_balanced_all_the_same() -> None:
+    """Costly, but not impossible: heavy outer pads and light inner ones."""
+    plan = planned(make_brief(jack=JackRules(at=3.0, step=None), acceptance=make_acceptance(shear=None)))
+    assert plan.proof.band_use > 10
+
+
+def test_a_band_that_cannot_be_kept_is_no_leave_to_break_the_other() -> None:
+    plan = planned(make_brief(pads=make_pads(count=5), acceptance=make_acceptance(moment=0.02, shear=0.05)))
+    assert plan.proof.band_use_least > 1
+    tube = build_tube(plan.target, plan.jack_x, 5, 100, extra=plan.x)
+    alone = replace(tube, is_judged=(True, False))
+    # the tube of the check is finer than that of the search: 1e-3
+    assert float(alone.use(plan.x, plan.force)) <= 1 + 1e-3
+
+
+def test_stair_knows_where_no_pad_may_stand_at_the_ends() -> None:
+    """Load beyond the last allowed place: the shear there is all error, whatever the number of pads."""
+    brief = make_brief(
+        loads=(table_load([0.2, 3.4], [1000.0, 1000.0]),),
+        pads=make_pads(keep_out=((2.8, 3.4),)),
+        acceptance=make_acceptance(None, 0.1),
+    )
+    plan = planned(brief)
+    # beyond 2.74 m lie 660 N of 3200 N, against a band of 10 % of them
+    assert plan.proof.band_use_least == pytest.approx(660 / 320, rel=5e-3)
