@@ -130,6 +130,14 @@ def _require_tree(tree: Tree, node: dict[str, int]) -> None:
                 value=f"{piece.parent}, tier {piece.tier}",
                 limit=f"{parent}, tier {depth[piece.name]}",
             )
+        pivot = next(hole for hole in piece.holes if hole.name == "pivot")
+        if pivot.joins != parent:
+            raise InputError(
+                "a pivot joins another than what the piece hangs on",
+                where=f"rig, {piece.name} hole pivot",
+                value=pivot.joins,
+                limit=parent,
+            )
     pieces = {piece.name for piece in tree.pieces}
     for name in graph.nodes:
         if name.startswith("lever") and name not in pieces:

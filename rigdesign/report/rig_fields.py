@@ -3,11 +3,13 @@
 from __future__ import annotations
 
 import json
-import math
+import sys
 from dataclasses import dataclass
 from typing import Any, NoReturn
 
 from rigdesign.errors import InputError
+
+LARGEST_FLOAT = sys.float_info.max
 
 
 @dataclass(frozen=True)
@@ -55,7 +57,9 @@ class Fields:
     def number(self, key: str) -> float:
         """A finite number."""
         value = self._get(key)
-        if isinstance(value, bool) or not isinstance(value, (int, float)) or not math.isfinite(value):
+        is_number = isinstance(value, (int, float)) and not isinstance(value, bool)
+        # compared, not converted: a whole number can be too large for a float
+        if not is_number or not -LARGEST_FLOAT <= value <= LARGEST_FLOAT:
             self._wrong(key, "a finite number")
         return float(value)
 
@@ -93,6 +97,10 @@ def read_object(text: str) -> Fields:
         value = json.loads(text, object_pairs_hook=_once)
     except json.JSONDecodeError as error:
         raise InputError(f"this is not a rig: it is not JSON ({error.msg})", where=f"line {error.lineno}") from error
+    except ValueError as error:  # json reads no whole number of more than 4300 digits and says so in its own way
+        if isinstance(error, InputError):
+            raise
+        raise InputError("this is not a rig: it holds a whole number of thousands of digits") from error
     except RecursionError as error:
         raise InputError("this is not a rig: it is nested too deep") from error
     if not isinstance(value, dict):

@@ -141,6 +141,7 @@ def rig_from_json(text: str) -> Rig:
     pads = [pad.numbers("x_m", "y_m", "wanted_x_m", "wanted_N", "share_of_curve_N") for pad in fields.objects("pads")]
     if not pads:
         raise InputError("the rig has no pads", where="pads")
+    _require_order(fields)
     x, y, wanted_x, wanted, share = np.array(pads).T.copy()
     plan_fields = fields.object("plan")
     plan = PadPlan(
@@ -157,6 +158,18 @@ def rig_from_json(text: str) -> Rig:
     if not trees:
         raise InputError("the rig has no jack", where="trees")
     return Rig(plan, x, y, trees, fields.text("words"), _findings(fields))
+
+
+def _require_order(fields: Fields) -> None:
+    """Pads are known by their place in the list: numbers that say otherwise are an error, not passed over."""
+    for place, pad in enumerate(fields.objects("pads"), start=1):
+        if (number := pad.whole("pad")) != place:
+            raise InputError(
+                "the pads are not in the order of their numbers",
+                where=f"pads[{place - 1}].pad",
+                value=f"pad {number}",
+                limit=f"pad {place}",
+            )
 
 
 def _entered(text: str) -> Fields:

@@ -258,6 +258,7 @@ def _joined(rig: Rig, lever: int, hole: str, joins: str) -> Rig:
         (lambda r: replace(r, trees=(replace(r.trees[0], force=0.0),)), "jack 1: the jack has no force"),
         (lambda r: _piece(r, 2, tier=3), "lever 2: a piece's parent or tier"),
         (lambda r: _piece(r, 2, parent="lever 3"), "lever 2: a piece's parent or tier"),
+        (lambda r: _joined(r, 2, "pivot", "lever 3"), "lever 2 hole pivot: a pivot joins another .*: lever 3"),
         (lambda r: _piece(r, 2, number=3), "share a number"),
         (lambda r: _piece(r, 2, kind="plate"), "wrong holes: pivot, A, B .accepted: pivot, A, B, C"),
         (lambda r: replace(r, trees=(r.trees[0], _second())), "hangs on two jacks' trees: pad 4"),
