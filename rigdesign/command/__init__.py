@@ -14,6 +14,7 @@ draws progress or ends the process.  Heavy libraries are imported inside the com
 
 from __future__ import annotations
 
+import os
 import signal
 import sys
 from collections.abc import Iterator, Sequence
@@ -25,6 +26,9 @@ ACCEPTED, LIMITS, BAD_INPUT, INTERRUPTED = 0, 1, 2, 130
 
 def main() -> None:
     """Run the command and end the process with its exit code."""
+    for stream in ("stdout", "stderr"):
+        if getattr(sys, stream) is None:  # closed by who started this process: what is said there is said to nobody
+            setattr(sys, stream, open(os.devnull, "w"))  # noqa: SIM115 - open to the end of the process
     sys.exit(run(sys.argv[1:]))
 
 
@@ -33,6 +37,7 @@ def run(arguments: Sequence[str]) -> int:
     import click
 
     from rigdesign.command.commands import rigdesign
+    from rigdesign.command.pipe import say_no_more
     from rigdesign.command.session import Session
     from rigdesign.errors import RigdesignError
 
@@ -47,9 +52,12 @@ def run(arguments: Sequence[str]) -> int:
     except click.ClickException as error:
         _complain(f"{error.format_message().rstrip('.')}; see rigdesign {session.name_for_help}--help")
         return BAD_INPUT
+    except OSError as error:  # of the standard output, such as a full disk behind it
+        say_no_more()
+        _complain(f"the answer cannot be printed: {error.strerror or error}; {session.what_was_written}")
+        return BAD_INPUT
     except (KeyboardInterrupt, click.Abort):
-        written = f"{session.written} had been written" if session.written else "nothing was written"
-        _complain(f"interrupted; {written}")
+        _complain(f"interrupted; {session.what_was_written}")
         return INTERRUPTED
 
 
@@ -60,17 +68,23 @@ def _complain(message: str) -> None:
 
 @contextmanager
 def _termination_interrupts() -> Iterator[None]:
-    """While inside, being told to terminate is the same as being interrupted: what was begun is undone."""
+    """While inside, being told to terminate, or losing the terminal, is being interrupted: what was begun is undone."""
 
     def interrupt(_signal: int, _frame: FrameType | None) -> None:
         raise KeyboardInterrupt
 
+    # what is ignored stays so, as under nohup; not every system knows the second
+    names = [name for name in ("SIGTERM", "SIGHUP") if hasattr(signal, name)]
+    heard = [getattr(signal, name) for name in names]
+    before = {number: signal.getsignal(number) for number in heard if signal.getsignal(number) != signal.SIG_IGN}
     try:
-        before = signal.signal(signal.SIGTERM, interrupt)
+        for number in before:
+            signal.signal(number, interrupt)
     except ValueError:  # not in the main thread, where nobody can be told
         yield
         return
     try:
         yield
     finally:
-        signal.signal(signal.SIGTERM, before)
+        for number, handler in before.items():
+            signal.signal(number, handler)

@@ -15,7 +15,11 @@ def reader_may_leave() -> Iterator[None]:
         yield
         sys.stdout.flush()
     except BrokenPipeError:
-        # on the level of the file, so that Python's own flush on the way out finds nobody missing either
-        nobody = os.open(os.devnull, os.O_WRONLY)
-        os.dup2(nobody, sys.stdout.fileno())
-        os.close(nobody)
+        say_no_more()
+
+
+def say_no_more() -> None:
+    """Send the rest to nobody: on the level of the file, so that Python's last flush goes there too."""
+    nobody = os.open(os.devnull, os.O_WRONLY)
+    os.dup2(nobody, sys.stdout.fileno())
+    os.close(nobody)

@@ -14,6 +14,11 @@ class Session:
     written: Path | None = None
 
     @property
+    def what_was_written(self) -> str:
+        """What stands on the disk, for the message of a run that was stopped."""
+        return f"{self.written} had been written" if self.written else "nothing was written"
+
+    @property
     def name_for_help(self) -> str:
         """The command's name with a space behind it, or nothing before a command is known."""
         return f"{self.command} " if self.command else ""
