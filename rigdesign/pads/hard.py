@@ -74,8 +74,14 @@ class HardPoints:
         )
 
     def fewest_possible(self) -> int:
-        """Number of pads that no choice within the bands and limits can go below; all hard points if there is none."""
-        pads = self._sets(self.tube).reach(1.0, self.x.size, exact=False)
+        """Number of pads that no choice within the bands and limits can go below; all hard points if there is none.
+
+        1 where the hard points are too many to tell.
+        """
+        try:
+            pads = self._sets(self.tube).reach(1.0, self.x.size, exact=False)
+        except TooManySetsError:
+            return 1
         return self.x.size if pads is None else len(pads)
 
     def _sets(self, tube: Tube) -> LineSets:

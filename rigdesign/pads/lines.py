@@ -33,6 +33,8 @@ from rigdesign.target.curve import Floats
 SLACK = 1e-8
 # More sets of lines than this in one step are not followed.
 MOST_SETS = 20_000
+# Nor is a question answered with more pairs of places, or with more pairs times pads: one near this takes ten seconds.
+MOST_PAIRS, MOST_PAIRS_TIMES_PADS = 8_000, 80_000
 
 
 class TooManySetsError(Exception):
@@ -130,7 +132,7 @@ class LineSets:
         )
         return HalfPlanes(normal, offset)
 
-    def _arcs(self, use: float) -> _Arcs:
+    def _arcs(self, use: float, pads: int) -> _Arcs:
         """Pairs of places that neighbouring pads can take, and the lines that keep the tube between them."""
         x, huge = self.places.x, 64.0 * self.n * self.n
         everything = np.array([[-huge, -huge], [huge, -huge], [huge, huge], [-huge, huge]])
@@ -144,6 +146,9 @@ class LineSets:
             parts.append(_Arcs(start, start + offset, stack, np.zeros(start.size, dtype=int)))
             if not start.size:
                 break
+            pairs = sum(part.start.size for part in parts)
+            if pairs > MOST_PAIRS or pairs * pads > MOST_PAIRS_TIMES_PADS:
+                raise TooManySetsError
         start, end = np.concatenate([p.start for p in parts]), np.concatenate([p.end for p in parts])
         far = x[end] - x[start] >= self.places.pitch * (1 - 1e-12)
         start, end, stack = start[far], end[far], joined([p.stack for p in parts])[far]
@@ -201,12 +206,13 @@ class LineSets:
         """Places (indices) of `most` pads, or of the fewest up to `most` unless `exact`, that the sets reach; or None.
 
         None proves that no such pads keep the tube at this band use.  Sets of lines that came by the same last
-        `memory` places are merged into their hull.  Raises `TooManySetsError` if there are more than `MOST_SETS`.
+        `memory` places are merged into their hull.  Raises `TooManySetsError` if there are more than `MOST_SETS`,
+        or more than `MOST_PAIRS` to go through.
         """
         first, last = self._first(use), self._last(use)
         if not first.at.size or not last.at.size:
             return None
-        arcs = self._arcs(use)
+        arcs = self._arcs(use, most if exact else 1)
         layers = [_Arcs(first.at, first.at, first.stack, np.zeros(first.at.size, dtype=int))]
         for k in range(1, most + 1):
             if k == most or not exact:

@@ -11,7 +11,7 @@ from factories import make_acceptance, make_brief, make_pads, make_specimen, sha
 from scipy.optimize import linprog
 
 from rigdesign.brief.model import Floats
-from rigdesign.pads import PadPlan, plan_pads
+from rigdesign.pads import PadPlan, lines, plan_pads
 from rigdesign.pads.limits import force_limits
 from rigdesign.pads.tube import Tube, build_tube
 from rigdesign.target import build_target
@@ -181,3 +181,23 @@ def test_fewest_is_the_first_count_that_the_bands_allow() -> None:
 def test_specimen_of_the_default_brief_is_what_the_places_assume() -> None:
     specimen = make_specimen()
     assert (specimen.left, specimen.right) == (0.2, 3.4)
+
+
+def test_too_many_places_to_prove_over_are_answered_with_the_gap() -> None:
+    places = np.linspace(0.21, 3.39, 420)
+    plan = plan_pads(target_of(places, 20))
+    assert isinstance(plan, PadPlan)
+    assert np.isin(plan.x, places).all()
+    # the sets of lines would go through more pairs of places than they may: the bound is that of free places
+    assert 0 < plan.proof.band_use_least < plan.proof.band_use_found < 1.3 * plan.proof.band_use_least
+
+
+def test_fewest_over_too_many_places_counts_up_from_the_bound_of_free_places(monkeypatch) -> None:
+    target = target_of(irregular(16, 5), "fewest")
+    proven = plan_pads(target)
+    monkeypatch.setattr(lines, "MOST_PAIRS", 10)
+    counted = plan_pads(target)
+    assert isinstance(proven, PadPlan)
+    assert isinstance(counted, PadPlan)
+    assert counted.proof.band_use <= 1
+    assert counted.n_pads == proven.n_pads
