@@ -93,9 +93,12 @@ def _proven_line(check: Check) -> str:
     if proof.band_use > proof.band_use_found * (1 + 5e-4):
         gap += f", {percent(proof.band_use / proof.band_use_found - 1)} more is given up for even forces"
     drilled = check.band_use / proof.band_use if proof.band_use > 0 else 1.0
+    below = ""
+    if check.band_use < proof.band_use_least * (1 - 1e-6):
+        below = ", below the bound, which holds for the resultant met exactly and every limit kept, before drilling"
     least = f"no arrangement of so many pads under these rules can go below a band use of {proof.band_use_least:.3f}"
     return (
-        f"Proven ({proof.method}): {least}; {gap}, and drilling takes it to {drilled:.3f} times the plan's. "
+        f"Proven ({proof.method}): {least}; {gap}, and drilling takes it to {drilled:.3f} times the plan's{below}. "
         f"The moment's error alone cannot go below {percent(proof.moment_error_least)} of peak target moment."
     )
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 
+import numpy as np
 import pytest
 from factories import make_acceptance, make_brief, make_pads, make_specimen, make_weight, shape_load
 
@@ -86,6 +87,16 @@ def test_the_proof_and_what_drilling_costs():
     assert f"below a band use of {proof.band_use_least:.3f}" in line
     assert f"{check.band_use / proof.band_use:.3f} times" in line
     assert f"{percent(proof.moment_error_least)} of peak target moment" in line
+
+
+def test_a_drilled_rig_below_the_bound_says_what_the_bound_is_of():
+    free, below = checked(), "below the bound, which holds for the resultant met exactly"
+    assert below not in line_with(free, "Proven")
+    # four hard points leave no choice, and the jack that drilling moved answers some of the error
+    pads = make_pads(count=4, places="hard points", stations=np.array([0.7, 1.2, 1.7, 2.7]), length=0.0, gap=0.0)
+    moved = checked(pads=pads, acceptance=make_acceptance(moment=0.05, shear=None))
+    assert moved.band_use < moved.rig.plan.proof.band_use_least * 0.999
+    assert below in line_with(moved, "Proven")
 
 
 def test_the_hand_method_stands_beside_the_rig():
