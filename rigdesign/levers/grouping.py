@@ -90,7 +90,8 @@ def _ratio(a: Floats, b: Floats) -> Floats:
 
 def millimetres(length: float) -> str:
     """A length of a lever in words [given in m]: "60 mm"."""
-    return f"{1000 * length:.4g} mm"
+    value = 1000 * length
+    return f"{value:.4g} mm" if value < 1e4 else f"{value:.0f} mm"
 
 
 LIMITS = (

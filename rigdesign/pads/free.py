@@ -12,7 +12,7 @@ from dataclasses import replace
 import numpy as np
 
 from rigdesign.pads.forces import evenness, wishes
-from rigdesign.pads.limits import TOUCH, allowed_stretches, fitted, force_limits, least_pitch, packed, violations
+from rigdesign.pads.limits import TOUCH, allowed_stretches, fitted, force_limits, packed, violations, with_room
 from rigdesign.pads.outcome import Outcome, Progress, held_apart, moment_floor, use_given_up_to
 from rigdesign.pads.path import COARSE, FINE, MANY, Path, least_use_path
 from rigdesign.pads.search import Arrangement, Limits, Search
@@ -43,15 +43,15 @@ class FreePlaces:
         self.fine = build_tube(target, jack_x, count, FINE if count <= MANY else COARSE)
         least, largest = force_limits(brief)
         apart = APART * (brief.specimen.right - brief.specimen.left) / count
-        self.limits = Limits(least, largest, max(least_pitch(brief), apart), allowed_stretches(brief))
-        self.start, self.end = float(self.limits.stretches[0, 0]), float(self.limits.stretches[-1, 1])
+        stretches, pitch = with_room(brief, count)
+        self.limits = Limits(least, largest, max(pitch, apart), stretches)
+        self.allowed = allowed_stretches(brief)
+        self.start, self.end = float(self.allowed[0, 0]), float(self.allowed[-1, 1])
 
     def choose(self) -> Outcome | None:
         """Pads of least band use, or None if no search found forces within the limits."""
         path, path_least = least_use_path(self.fine, self.count, self.start, self.end)
-        least = max(
-            path_least if self.fine.is_judged[0] else 0.0, least_use_stair(self.fine, self.limits.stretches, self.count)
-        )
+        least = max(path_least if self.fine.is_judged[0] else 0.0, least_use_stair(self.fine, self.allowed, self.count))
         moment_least = moment_floor(
             self.fine,
             self.target.moment_peak,

@@ -8,6 +8,7 @@ N places keeps the bands at some band use (see `lines`), or give places whose be
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
+from typing import NamedTuple
 
 import numpy as np
 
@@ -40,6 +41,18 @@ MOST_SWEEPS = 12
 SMALL, FAR = 1e-3, 1e6
 
 
+SETS_METHOD = "sets of lines over the hard points (dynamic programming), confirmed by a linear programme"
+FREE_METHOD = "lower bound of free places: path of fewest links for the moment, stair of fewest steps for the shear"
+
+
+class _Bound(NamedTuple):
+    """Best choice found, proven lower bound on the band use, and whether the sets of lines proved it."""
+
+    best: _Choice | None
+    low: float
+    by_sets: bool
+
+
 @dataclass(frozen=True)
 class _Choice:
     """Places taken, as indices of the hard points, and their forces."""
@@ -60,13 +73,13 @@ class HardPoints:
 
     def choose(self) -> Outcome | None:
         """Pads of least band use, then more even ones; None if no choice within the limits balances the target."""
-        found, least = self._least(self.tube)
+        found, least, by_sets = self._least(self.tube)
         if found is None:
             return None
         peak = self.target.moment_peak
-        moment_least = moment_floor(self.tube, peak, least, lambda plain: self._least(plain, ROUGHLY)[1])
+        moment_least = moment_floor(self.tube, peak, least, lambda plain: self._least(plain, ROUGHLY).low)
         even, sweeps = self._more_even(found)
-        method = "sets of lines over the hard points (dynamic programming), confirmed by a linear programme"
+        method = SETS_METHOD if by_sets else FREE_METHOD
         words = f"{self.count} of {self.x.size} hard points; {sweeps} sweeps of exchanges for even forces"
         x = self.x[list(even.pads)]
         return Outcome(
@@ -93,14 +106,14 @@ class HardPoints:
 
     # -- least band use ---------------------------------------------------------------------------------------
 
-    def _least(self, tube: Tube, meet: float = MEET) -> tuple[_Choice | None, float]:
+    def _least(self, tube: Tube, meet: float = MEET) -> _Bound:
         """Best choice found and proven lower bound on the band use in a tube."""
         start, end = float(self.x[0]), float(self.x[-1])
         low = max(least_use_path(tube, self.count, start, end)[1] if tube.is_judged[0] else 0.0, 0.0)
         low = max(low * SAFE, least_use_stair(tube, np.stack([self.x, self.x], axis=1), self.count))
         if not np.isfinite(low):
-            return None, low
-        sets = self._sets(tube)
+            return _Bound(None, low, False)
+        sets, by_sets = self._sets(tube), False
         best = self._nearest(tube)
         high = best.forces.use if best else np.inf
         factor, memory = FIRST_FACTOR, 1
@@ -118,7 +131,7 @@ class HardPoints:
             except TooManySetsError:
                 break
             if pads is None:
-                low = float(middle)
+                low, by_sets = float(middle), True
                 continue
             forces = self._programme(tube, pads).least_use()
             if forces is not None and (best is None or forces.use < best.forces.use):
@@ -128,7 +141,7 @@ class HardPoints:
                 memory += 1
                 if memory > MOST_MEMORY:
                     break
-        return best, low
+        return _Bound(best, low, by_sets)
 
     def _nearest(self, tube: Tube) -> _Choice | None:
         """Hard points nearest to the best free places, as a start."""

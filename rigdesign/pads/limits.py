@@ -106,6 +106,21 @@ def packed(stretches: Floats, pitch: float, count: int, slack: float) -> Floats:
     return np.array(places)
 
 
+def with_room(brief: Brief, count: int) -> tuple[Floats, float]:
+    """Stretches (k, 2) and least pitch [m] for free pads, with a drill step of room for the drilling to use up.
+
+    Where `count` pads would not fit with that room, they are the allowed stretches and the least pitch themselves.
+    """
+    stretches, pitch = allowed_stretches(brief), least_pitch(brief)
+    room = brief.levers.drill_step
+    inner = stretches + np.array([room, -room])
+    inner = inner[inner[:, 1] > inner[:, 0]]
+    slack = TOUCH * (brief.specimen.right - brief.specimen.left)
+    if len(inner) == len(stretches) and packed(inner, pitch + room, count, slack).size >= count:
+        return inner, pitch + room
+    return stretches, pitch
+
+
 def fitted(wish: Floats, grid: Floats, pitch: float) -> Floats | None:
     """Places of the grid (g,) nearest to the wishes (n,), all [m] and sorted, at least `pitch` apart; None if none fit.
 

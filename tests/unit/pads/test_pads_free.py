@@ -22,7 +22,7 @@ from factories import (
 from rigdesign.brief.model import Brief, JackRules, Region
 from rigdesign.findings import Refusal
 from rigdesign.pads import PadPlan, plan_pads
-from rigdesign.pads.limits import allowed_stretches, fitted, most_that_fit, packed, violations
+from rigdesign.pads.limits import allowed_stretches, fitted, most_that_fit, packed, violations, with_room
 from rigdesign.pads.stair import fewest_steps
 from rigdesign.pads.tube import MOST_BREAKS, build_tube
 from rigdesign.target import build_target
@@ -347,3 +347,14 @@ def test_stair_knows_where_no_pad_may_stand_at_the_ends() -> None:
     plan = planned(brief)
     # beyond 2.74 m lie 660 N of 3200 N, against a band of 10 % of them
     assert plan.proof.band_use_least == pytest.approx(660 / 320, rel=5e-3)
+
+
+def test_pads_leave_a_drill_step_of_room_where_there_is_one() -> None:
+    """Footprints that barely fit: drilling may shift each by up to a step and must not push two together."""
+    roomy = make_brief(pads=make_pads(count=16, length=0.195, gap=0.0), acceptance=make_acceptance(0.05, None))
+    stretches, pitch = with_room(roomy, 16)
+    assert pitch == pytest.approx(0.196)
+    np.testing.assert_allclose(stretches, [[0.2 + 0.0985, 3.4 - 0.0985]])
+    tight = make_brief(pads=make_pads(count=8, length=0.4, gap=0.0))
+    assert with_room(tight, 8)[1] == pytest.approx(0.4)
+    assert np.diff(planned(roomy).x).min() >= 0.196 - 1e-9
