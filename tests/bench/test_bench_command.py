@@ -66,6 +66,23 @@ def test_a_design_of_many_pads(n_pads):
     print(f"\n{n_pads} pads designed and checked: {seconds:.2f} s ({words})")
 
 
+@pytest.mark.parametrize(("n_points", "n_pads"), [(40, 12), (80, 24)])
+@pytest.mark.parametrize("bands", [(0.02, None), (0.02, 0.12), (0.002, 0.06)], ids=["moment", "loose", "tight"])
+def test_a_proof_over_hard_points(n_points, n_pads, bands):
+    from rigdesign.pads import plan_pads
+    from rigdesign.target import build_target
+
+    for seed in (1, 2, 3):
+        gaps = np.random.default_rng(seed).uniform(0.2, 1.8, n_points + 1)
+        places = 0.2 + np.cumsum(gaps)[:-1] / gaps.sum() * 3.2
+        pads = make_pads(count=n_pads, places="hard points", stations=places, length=0.0, gap=0.0)
+        target = build_target(make_brief(pads=pads, acceptance=make_acceptance(*bands)))
+        start = time.perf_counter()
+        plan = plan_pads(target)
+        seconds = time.perf_counter() - start
+        print(f"\n{n_pads} of {n_points} hard points, seed {seed}: {seconds:.2f} s, gap {100 * plan.proof.gap:.3f} %")
+
+
 def test_a_check_of_two_thousand_pads():
     rig = big_rig(2000)
     seconds = best_of_three(lambda: check(rig))
