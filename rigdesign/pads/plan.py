@@ -22,6 +22,8 @@ from rigdesign.target.model import Target
 MOST_PADS = 200
 # A gap between what was found and what is proven is remarked on above this.
 GAP_REMARK = 0.005
+# Bounds and designs are taken at different stations and may differ by this fraction.
+BOUND_TOLERANCE = 1e-3
 
 
 def plan_pads(target: Target, count: int | None = None, progress: Progress | None = None) -> PadPlan | Refusal:
@@ -154,8 +156,25 @@ def _plan(target: Target, jack_x: float, outcome: Outcome) -> PadPlan:
         jack_x=jack_x,
         may_move=target.brief.pads.places == "free",
         proof=proof,
-        findings=numbered(_remarks(proof)),
+        findings=numbered((*_doubts(outcome, use), *_remarks(proof))),
     )
+
+
+def _doubts(outcome: Outcome, use: float) -> list[Finding]:
+    """A bound above what was found cannot be a bound: said, not smoothed over."""
+    if outcome.use_least <= use * (1 + BOUND_TOLERANCE):
+        return []
+    return [
+        Finding(
+            "pads",
+            "warning",
+            "pads",
+            "the pads found are better than what the bound calls possible, so the bound is not to be trusted",
+            value=f"band use {use:.4g}",
+            limit=f"bound {outcome.use_least:.4g}",
+            remedy="the pads and their check stand; take the proven least as not proven, and report the brief",
+        )
+    ]
 
 
 def _remarks(proof: Proof) -> list[Finding]:

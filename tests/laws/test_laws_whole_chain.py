@@ -151,7 +151,7 @@ def test_moment_error_is_never_below_the_proven_least(draw: Draw) -> None:
     plan = found.rig.plan
     moved = abs(found.statics.pad_force @ found.rig.pad_x - plan.force @ plan.x) / plan.target.moment_peak
     assert found.moment_error_peak >= plan.proof.moment_error_least * (1 - 1e-6) - moved
-    assert plan.proof.band_use >= plan.proof.band_use_least * (1 - 1e-9)
+    assert not [finding for finding in plan.findings if "not to be trusted" in finding.text]
 
 
 TIED = Draw(

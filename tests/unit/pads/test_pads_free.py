@@ -21,7 +21,7 @@ from factories import (
 
 from rigdesign.brief.model import Brief, JackRules, Region
 from rigdesign.findings import Refusal
-from rigdesign.pads import PadPlan, plan_pads
+from rigdesign.pads import PadPlan, free, plan_pads
 from rigdesign.pads.limits import allowed_stretches, fitted, most_that_fit, packed, violations, with_room
 from rigdesign.pads.stair import fewest_steps
 from rigdesign.pads.tube import MOST_BREAKS, build_tube
@@ -358,3 +358,13 @@ def test_pads_leave_a_drill_step_of_room_where_there_is_one() -> None:
     tight = make_brief(pads=make_pads(count=8, length=0.4, gap=0.0))
     assert with_room(tight, 8)[1] == pytest.approx(0.4)
     assert np.diff(planned(roomy).x).min() >= 0.196 - 1e-9
+
+
+def test_a_bound_above_what_was_found_is_said_and_not_smoothed_over(monkeypatch: pytest.MonkeyPatch) -> None:
+    brief = make_brief(acceptance=make_acceptance(shear=None))
+    assert not planned(brief).findings
+    sound = free.least_use_path
+    monkeypatch.setattr(free, "least_use_path", lambda *a: (sound(*a)[0], sound(*a)[1] * 1.01))
+    found = planned(brief).findings
+    assert [finding.severity for finding in found] == ["warning"]
+    assert "not to be trusted" in found[0].text
