@@ -61,7 +61,7 @@ def make_plan(target: Target, x: ArrayLike, force: ArrayLike) -> PadPlan:
     """A plan that wants these forces; its proof is made up."""
     x, force = np.asarray(x, dtype=float), np.asarray(force, dtype=float)
     proof = Proof(0.61, 0.52, 0.0031, "a made-up proof", "no search", 0.12, 0.34, 0.6)
-    return PadPlan(target, x, force, 1.01 * force, float(x @ force / force.sum()), True, proof, ())
+    return PadPlan(target, x, 0 * x, force, 1.01 * force, float(x @ force / force.sum()), 0.0, True, proof, ())
 
 
 def make_rig(

@@ -45,18 +45,21 @@ class Proof:
 
 @dataclass(frozen=True)
 class PadPlan:
-    """Places and wanted forces before drilling: `x` [m], `force` [N], both (n_pads,), root to tip.
+    """Places and wanted forces before drilling: `x`, `y` [m], `force` [N], all (n_pads,), root to tip (by x, then y).
 
     Forces carry the sign of the load (against z negative) and are those at the brief's load; they sum to the net
-    target, with their first moment such that the jack stands at `jack_x` [m].  `share` (n_pads,) is the target's own
-    load nearest to each pad [N].  `may_move` tells whether drilling may shift the pads (free places).
+    target, with their first moments such that the jack stands at `jack_x`, `jack_y` [m].  `share` (n_pads,) is the
+    target's own load nearest to each pad [N].  `may_move` tells whether drilling may shift the pads (free places).  On
+    a line rig every y is 0.
     """
 
     target: Target
     x: Floats
+    y: Floats
     force: Floats
     share: Floats
     jack_x: float
+    jack_y: float
     may_move: bool
     proof: Proof
     findings: tuple[Finding, ...]

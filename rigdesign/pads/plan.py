@@ -151,9 +151,11 @@ def _plan(target: Target, jack_x: float, outcome: Outcome) -> PadPlan:
     return PadPlan(
         target=target,
         x=outcome.x,
+        y=np.zeros(outcome.x.size),
         force=fine.sign * outcome.force,
         share=fine.sign * shares(fine, outcome.x),
         jack_x=jack_x,
+        jack_y=0.0,
         may_move=target.brief.pads.places == "free",
         proof=proof,
         findings=numbered((*_doubts(outcome, use), *_remarks(proof))),

@@ -147,9 +147,11 @@ def rig_from_json(text: str) -> Rig:
     plan = PadPlan(
         target=target,
         x=wanted_x,
+        y=y,
         force=wanted,
         share=share,
         jack_x=plan_fields.number("jack_x_m"),
+        jack_y=plan_fields.number("jack_y_m"),
         may_move=plan_fields.flag("may_move"),
         proof=_proof(plan_fields.object("proof")),
         findings=_findings(plan_fields),

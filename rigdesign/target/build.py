@@ -10,11 +10,12 @@ from rigdesign.errors import BriefError
 from rigdesign.findings import numbered
 from rigdesign.target import internal
 from rigdesign.target.curve import Curve
+from rigdesign.target.line_load import LineLoad, PlanSum
 from rigdesign.target.loads import NOTHING, gravity_curve, load_curve
-from rigdesign.target.model import Target
+from rigdesign.target.model import Peak, Target
 from rigdesign.target.peaks import peak, stretches
+from rigdesign.target.plan_load import ALONG_X
 from rigdesign.target.remarks import remarks
-from rigdesign.target.sums import Combined
 from rigdesign.words import LARGEST_NUMBER, SMALLEST_TOTAL
 
 # A sum below this part of the largest force beyond any station is the rounding of loads that cancel.
@@ -36,21 +37,24 @@ def build_target(brief: Brief) -> Target:
     The curves are exact: closed forms for the shapes, piecewise polynomials for tables.  The peaks are found to
     rounding, about 1e-12 of their value.
     """
-    total = Combined(tuple(load_curve(load, brief.specimen) for load in brief.loads), (1.0,) * len(brief.loads))
+    axis = brief.specimen.reference_axis
+    total_plan = PlanSum(
+        tuple(LineLoad(load_curve(load, brief.specimen), axis) for load in brief.loads), (1.0,) * len(brief.loads)
+    )
+    total = total_plan.along(ALONG_X).force
     _refuse_nothing(total)
     gravity = gravity_curve(brief)
-    net = total if gravity is NOTHING else Combined((total, gravity), (1.0, -1.0))
-    (shear_peak, shear_x), (moment_peak, moment_x) = _peaks(brief, total)
-    _refuse_unbent(brief, total, moment_peak)
+    gravity_plan = LineLoad(gravity, axis)
+    net_plan = total_plan if gravity is NOTHING else PlanSum((total_plan, gravity_plan), (1.0, -1.0))
+    net = net_plan.along(ALONG_X).force
+    shear, moment = (Peak(*found) for found in _peaks(brief, total))
+    _refuse_unbent(brief, total, moment.value)
     return Target(
         brief=brief,
-        total=total,
-        gravity=gravity,
-        net=net,
-        shear_peak=shear_peak,
-        shear_peak_x=shear_x,
-        moment_peak=moment_peak,
-        moment_peak_x=moment_x,
+        total_plan=total_plan,
+        gravity_plan=gravity_plan,
+        net_plan=net_plan,
+        peaks={"shear": shear, "moment": moment, "torsion": Peak(0.0, brief.specimen.left)},
         findings=numbered(remarks(brief, total, gravity, net)),
     )
 

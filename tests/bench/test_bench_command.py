@@ -101,7 +101,7 @@ def big_rig(n_pads: int):
     x = (edges[1:] + edges[:-1]) / 2
     force = np.full(n_pads, 5400.0 / n_pads)
     proof = Proof(1.0, 0.0, 0.0, "nothing", "nothing", 0.0, 0.0, 1.0)
-    plan = PadPlan(target, x, force, force, 1.8, True, proof, ())
+    plan = PadPlan(target, x, 0 * x, force, force, 1.8, 0.0, True, proof, ())
     pieces, level, tier = [], [(0, n_pads, "jack 1")], 1
     while level:
         below = []

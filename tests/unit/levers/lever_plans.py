@@ -40,7 +40,9 @@ def plan_by_hand(brief: Brief, x: ArrayLike, force: ArrayLike, may_move: bool = 
     x, force = np.array(x, dtype=float), np.array(force, dtype=float)
     target = build_target(brief)
     jack_x = float((x * force).sum() / force.sum())
-    return PadPlan(target, x, force, force, jack_x, may_move, Proof(1.0, 0.0, 0.0, "", "", 0.0, 0.0, 0.0), ())
+    return PadPlan(
+        target, x, 0 * x, force, force, jack_x, 0.0, may_move, Proof(1.0, 0.0, 0.0, "", "", 0.0, 0.0, 0.0), ()
+    )
 
 
 def uniform_plan(brief: Brief, count: int) -> PadPlan:
@@ -59,9 +61,11 @@ def uniform_plan(brief: Brief, count: int) -> PadPlan:
     return PadPlan(
         plan.target,
         plan.x,
+        plan.y,
         plan.force,
         plan.share,
         LEFT + SPAN / 2,
+        0.0,
         True,
         Proof(least, least, 0.0, "", "", 0.0, 0.0, 0.0),
         (),
@@ -78,9 +82,11 @@ def best_plan(brief: Brief, count: int, may_move: bool = True) -> PadPlan:
     return PadPlan(
         target,
         path.x,
+        0 * path.x,
         sign * path.force,
         sign * path.force,
         tube.jack_x,
+        0.0,
         may_move,
         Proof(path.use, least, 0.0, "", "", 0.0, 0.0, 0.0),
         (),
