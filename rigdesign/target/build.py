@@ -10,12 +10,14 @@ from rigdesign.errors import BriefError
 from rigdesign.findings import numbered
 from rigdesign.target import internal
 from rigdesign.target.curve import Curve
-from rigdesign.target.line_load import LineLoad, PlanSum
-from rigdesign.target.loads import NOTHING, gravity_curve, load_curve
+from rigdesign.target.line_load import LineLoad
+from rigdesign.target.loads import gravity_curve, load_curve
 from rigdesign.target.model import Peak, Target
 from rigdesign.target.peaks import peak, stretches
 from rigdesign.target.plan_load import ALONG_X
+from rigdesign.target.plan_sum import PlanSum
 from rigdesign.target.remarks import remarks
+from rigdesign.target.sums import NO_CURVE
 from rigdesign.words import LARGEST_NUMBER, SMALLEST_TOTAL
 
 # A sum below this part of the largest force beyond any station is the rounding of loads that cancel.
@@ -45,7 +47,7 @@ def build_target(brief: Brief) -> Target:
     _refuse_nothing(total)
     gravity = gravity_curve(brief)
     gravity_plan = LineLoad(gravity, axis)
-    net_plan = total_plan if gravity is NOTHING else PlanSum((total_plan, gravity_plan), (1.0, -1.0))
+    net_plan = total_plan if gravity is NO_CURVE else PlanSum((total_plan, gravity_plan), (1.0, -1.0))
     net = net_plan.along(ALONG_X).force
     shear, moment = (Peak(*found) for found in _peaks(brief, total))
     _refuse_unbent(brief, total, moment.value)

@@ -19,14 +19,11 @@ from rigdesign.target.closed import ClosedForm, Elliptical, Power, Sine
 from rigdesign.target.curve import Curve, Floats
 from rigdesign.target.internal_table import internal_curve
 from rigdesign.target.polynomial import Polynomials
-from rigdesign.target.sums import Combined, Points
+from rigdesign.target.sums import NO_CURVE, Combined, Points
 from rigdesign.words import STANDARD_GRAVITY
 
 # Ends of a chord table and of the load that agree to this part of the load's length count as the same station.
 _SAME_STATION = 1e-9
-
-NOTHING = Combined((), ())
-"""The curve of no load at all."""
 
 
 def load_curve(load: Load, specimen: Specimen) -> Curve:
@@ -70,7 +67,7 @@ def gravity_curve(brief: Brief) -> Curve:
     """Return what gravity already brings [N/m, N]: no load where the brief gives no weight."""
     specimen = brief.specimen
     if specimen.weight is None:
-        return NOTHING
+        return NO_CURVE
     return Combined((mass_curve(specimen.weight),), (specimen.gravity * STANDARD_GRAVITY,))
 
 

@@ -14,7 +14,7 @@ from typing import TYPE_CHECKING, NamedTuple, Protocol
 import numpy as np
 
 from rigdesign.brief.model import Quantity, Specimen
-from rigdesign.target.curve import Curve, Floats, Side
+from rigdesign.target.curve import Curve, Distribution, Floats, Side
 from rigdesign.target.cuts import (
     ACROSS,
     cuts_at,
@@ -55,7 +55,7 @@ class Projection:
     """
 
     force: Curve
-    turning: Curve
+    turning: Distribution
 
 
 class PlanLoad(Protocol):

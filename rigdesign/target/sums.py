@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
 
 import numpy as np
 
-from rigdesign.target.curve import Curve, Floats, Side
+from rigdesign.target.curve import Curve, Distribution, Floats, Side
 from rigdesign.target.internal import sums_at, sums_beyond
 
 
@@ -71,47 +70,30 @@ class Points:
 
 
 @dataclass(frozen=True)
-class Combined:
-    """Σ factor · curve; without parts it is no load at all.
+class Summed:
+    """Σ factor · part of quantities spread over stations; without parts it is nothing at all."""
 
-    Examples
-    --------
-    >>> one = Points(np.array([1.5]), np.array([200.0]))
-    >>> both = Combined((one, one), (1.0, -0.25))
-    >>> both.total, both.first_moment
-    (150.0, 225.0)
-    """
-
-    parts: tuple[Curve, ...]
+    parts: tuple[Distribution, ...]
     factors: tuple[float, ...]
 
     def running(self, x: Floats, side: Side) -> Floats:
-        """Running load w [N/m]."""
-        return self._sum(x, lambda part: part.running(x, side))
+        """Amount per length; running load w [N/m] of loads."""
+        result = np.zeros(x.shape)
+        for part, factor in zip(self.parts, self.factors, strict=True):
+            result += factor * part.running(x, side)
+        return result
 
     def force_beyond(self, x: Floats, side: Side) -> Floats:
         """Sum of the load outboard of x [N]; a point load at x counts on its inboard side."""
-        return self._sum(x, lambda part: part.force_beyond(x, side))
-
-    def moment_beyond(self, x: Floats) -> Floats:
-        """First moment about x of the load outboard of x [N·m]."""
-        return self._sum(x, lambda part: part.moment_beyond(x))
-
-    def _sum(self, x: Floats, of: Callable[[Curve], Floats]) -> Floats:
         result = np.zeros(x.shape)
         for part, factor in zip(self.parts, self.factors, strict=True):
-            result += factor * of(part)
+            result += factor * part.force_beyond(x, side)
         return result
 
     @cached_property
     def total(self) -> float:
         """Sum of the load [N]."""
         return float(sum(factor * part.total for part, factor in zip(self.parts, self.factors, strict=True)))
-
-    @cached_property
-    def first_moment(self) -> float:
-        """First moment of the load about x = 0 [N·m]."""
-        return float(sum(factor * part.first_moment for part, factor in zip(self.parts, self.factors, strict=True)))
 
     @cached_property
     def breaks(self) -> Floats:
@@ -126,3 +108,34 @@ class Combined:
         force = np.concatenate([np.empty(0), *(factor * own for (_, own), factor in pairs)])
         gathered = Points.gathered(x, force)
         return gathered.x, gathered.force
+
+
+@dataclass(frozen=True)
+class Combined(Summed):
+    """Σ factor · curve; without parts it is no load at all.
+
+    Examples
+    --------
+    >>> one = Points(np.array([1.5]), np.array([200.0]))
+    >>> both = Combined((one, one), (1.0, -0.25))
+    >>> both.total, both.first_moment
+    (150.0, 225.0)
+    """
+
+    parts: tuple[Curve, ...]
+
+    def moment_beyond(self, x: Floats) -> Floats:
+        """First moment about x of the load outboard of x [N·m]."""
+        result = np.zeros(x.shape)
+        for part, factor in zip(self.parts, self.factors, strict=True):
+            result += factor * part.moment_beyond(x)
+        return result
+
+    @cached_property
+    def first_moment(self) -> float:
+        """First moment of the load about x = 0 [N·m]."""
+        return float(sum(factor * part.first_moment for part, factor in zip(self.parts, self.factors, strict=True)))
+
+
+NO_CURVE = Combined((), ())
+"""The curve of no load at all."""

@@ -11,9 +11,9 @@ from scipy.integrate import quad
 from rigdesign.errors import BriefError
 from rigdesign.target.closed import ClosedForm, Elliptical, Power, Sine
 from rigdesign.target.internal import points_beyond
-from rigdesign.target.loads import NOTHING, load_curve
+from rigdesign.target.loads import load_curve
 from rigdesign.target.polynomial import Polynomials
-from rigdesign.target.sums import Combined, Points
+from rigdesign.target.sums import NO_CURVE, Combined, Points
 
 A, B, TOTAL = 0.7, 3.1, -730.0
 CHORD = {"chord_x": np.array([0.2, 1.9, 3.4]), "chord": np.array([1.4, 1.1, 0.3])}
@@ -176,11 +176,11 @@ def test_sums_and_multiples():
 
 def test_no_load_at_all():
     x = np.array([0.5, 2.0])
-    assert NOTHING.total == 0.0
-    assert NOTHING.first_moment == 0.0
-    assert NOTHING.breaks.size == 0
-    assert NOTHING.points[0].size == 0
-    assert NOTHING.force_beyond(x, "inboard").tolist() == [0.0, 0.0]
+    assert NO_CURVE.total == 0.0
+    assert NO_CURVE.first_moment == 0.0
+    assert NO_CURVE.breaks.size == 0
+    assert NO_CURVE.points[0].size == 0
+    assert NO_CURVE.force_beyond(x, "inboard").tolist() == [0.0, 0.0]
 
 
 def test_a_million_rows():
