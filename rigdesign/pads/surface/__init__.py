@@ -1,0 +1,12 @@
+"""Pads in plan: where they can stand, what is theirs of the load, which are chosen, and what rules them all out.
+
+    footprints  the rectangle of a pad, turned; which pads keep the gap
+    room        where a pad may stand, as an area
+    places      which of the brief's places can be used; candidates and nearest places for free pads
+    fitting     how many can fit
+    shares      each pad's tributary share of the load
+    refusals    which limit leaves no pads at all
+
+Depends on: brief, target, the pads stage's own model and limits, display, findings.  shapely is imported when it is
+used, so that a line rig does not wait for it.
+"""
