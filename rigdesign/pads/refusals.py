@@ -16,16 +16,17 @@ EVEN = 1e-9
 
 def whatever_the_count(target: Target, jack_x: float) -> Refusal | None:
     """Refusal that no number of pads can cure, if there is one."""
-    return _other_way(target) or _no_room(target.brief) or _jack_aside(target.brief, jack_x)
+    return other_way(target) or _no_room(target.brief) or _jack_aside(target.brief, jack_x)
 
 
 def for_the_count(target: Target, count: int) -> Refusal | None:
     """Refusal of this number of pads, if there is one."""
     brief, total = target.brief, abs(target.net.total)
-    return _too_few_places(brief, count) or _too_wide(brief, count) or _too_weak(brief, total, count)
+    return _too_few_places(brief, count) or _too_wide(brief, count) or too_weak(brief, total, count)
 
 
-def _other_way(target: Target) -> Refusal | None:
+def other_way(target: Target) -> Refusal | None:
+    """Refusal where gravity brings more than the target asks for."""
     if target.net.total * target.resultant > 0:
         return None
     return Refusal(
@@ -94,7 +95,8 @@ def _too_wide(brief: Brief, count: int) -> Refusal | None:
     )
 
 
-def _too_weak(brief: Brief, total: float, count: int) -> Refusal | None:
+def too_weak(brief: Brief, total: float, count: int) -> Refusal | None:
+    """Refusal where so many pads cannot carry `total` [N] between their least and largest forces."""
     least, largest = force_limits(brief)
     if count * largest < total * (1 - EVEN):
         return Refusal(

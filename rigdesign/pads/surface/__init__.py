@@ -5,7 +5,9 @@
     places      which of the brief's places can be used; candidates and nearest places for free pads
     fitting     how many can fit
     shares      each pad's tributary share of the load
+    spread      whether places surround a point, or stand in one line
     refusals    which limit leaves no pads at all
+    remarks     places in one line where torsion has a band
 
 Depends on: brief, target, the pads stage's own model and limits, display, findings.  shapely is imported when it is
 used, so that a line rig does not wait for it.

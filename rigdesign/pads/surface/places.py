@@ -42,7 +42,7 @@ __all__ = [
 ]
 
 # Places of a grid fall into keep-outs; so many grids are tried for the number asked for.
-TRIES = 4
+TRIES = 8
 # A column of places lower than this part of the usable length is one place.
 POINTED = 1e-6
 
@@ -105,7 +105,8 @@ def _over_area(room: Room, about: int) -> Floats:
         kept = int(room.allowed(grid[:, 0], grid[:, 1]).sum())
         if abs(kept - about) < miss:
             best, miss = grid, abs(kept - about)
-        asked *= float(np.clip(about / max(kept, 1), 0.25, 4.0))
+        # by half the way on a logarithmic scale: the number kept jumps by whole rows and columns
+        asked *= float(np.sqrt(np.clip(about / max(kept, 1), 0.1, 10.0)))
     return best
 
 

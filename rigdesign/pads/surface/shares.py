@@ -30,10 +30,7 @@ def tributary_shares(target: Target, x: Floats, y: Floats) -> Floats:
     is split half-way between neighbours.  Pads at one place share its part evenly.
     """
     places, which, pads_there = _distinct(target, x, y)
-    if target.brief.specimen.is_surface:
-        own = _of_cells(target, places)
-    else:
-        own = _along_line(target, places[:, 0])
+    own = _of_cells(target, places) if target.brief.specimen.is_surface else _along_line(target, places[:, 0])
     return np.asarray((own / pads_there)[which])
 
 
@@ -116,7 +113,7 @@ def _cell(places: Floats, k: int, box: Floats) -> Floats:
 
 
 def _cut(cell: Floats, beyond: Floats) -> Floats:
-    """Cut a convex polygon (m, 2) to where `beyond` (m,), the distance of its corners beyond a line, is not positive."""
+    """Cut a convex polygon (m, 2) along a line that its corners lie `beyond` (m,) [m]; what is not beyond stays."""
     if (beyond <= 0).all():
         return cell
     corners = []
