@@ -60,6 +60,7 @@ KINDS = {
         Kind("running load", "N/m", "1.8 kN/m"),
         Kind("moment", "N*m", "50 N*m"),
         Kind("pressure", "Pa", "60 kPa"),
+        Kind("running torque", "N*m/m", "90 N*m/m"),
         Kind("angle", "rad", "5 deg"),
         Kind("time", "s", "3 s"),
         Kind("fraction", "%", "2 %"),

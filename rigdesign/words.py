@@ -23,6 +23,16 @@ SMALL_TARGET = 0.05
 DEFAULT_MOMENT_BAND = 0.02
 """Band on the moment where the brief has no [acceptance], as a fraction of the peak; common practice."""
 
+DEFAULT_TORSION_BAND = 0.05
+"""Band on the torsion of a surface where the brief has no [acceptance], as a fraction of the peak; common practice."""
+
+DEFAULT_SHARE = 0.25
+"""How far a pad's force may be from its tributary share of a panel's load where the brief does not say, of that share;
+set here."""
+
+DEFAULT_CLEARANCE = 0.03
+"""Least clearance in plan between pieces of one tier of a plan rig where the brief does not say [m]; common practice."""
+
 MOST_PADS = 1000
 """No rig and no study goes beyond this many pads; a search for more would take hours."""
 

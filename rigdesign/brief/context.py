@@ -8,6 +8,7 @@ from typing import Any
 import numpy as np
 
 from rigdesign.brief.locate import Places
+from rigdesign.brief.messages import is_plan
 from rigdesign.brief.model import Floats, Specimen
 from rigdesign.brief.sources import Texts
 from rigdesign.brief.tables import CsvTable, Repeats, read_table
@@ -58,7 +59,7 @@ class Context:
     ) -> CsvTable:
         """Read the table that the key at `path` names."""
         text = self.texts.table(name, self.places.where(*path))
-        return read_table(text, name, kinds, repeats=repeats, optional=optional)
+        return read_table(text, name, kinds, repeats=repeats, optional=optional, plan=is_plan(self.raw))
 
     def station(self, x: float, specimen: Specimen, *path: str | int, what: str = "the station") -> float:
         """Return a station that lies on the specimen, moved onto its end if only rounding parts them."""

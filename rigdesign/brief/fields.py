@@ -27,16 +27,17 @@ _UNITS = {
     "running load": f"{_FORCE}/{_LENGTH}",
     "moment": f"({_FORCE}{_TIMES}{_LENGTH}|{_LENGTH}{_TIMES}{_FORCE})",
     "pressure": f"(Pa|kPa|MPa|GPa|bar|psi|ksi|psf|{_FORCE}/{_LENGTH}(\\^?2|²))",
+    "angle": "(deg|rad)",
     "fraction": "%",
 }
 
 
-def _pattern(kind: str) -> dict[str, Any]:
+def pattern(kind: str) -> dict[str, Any]:
     """JSON Schema of one quantity."""
     return {"type": "string", "pattern": rf"^\s*{_NUMBER}\s*{_UNITS[kind]}\s*$", "examples": [KINDS[kind].example]}
 
 
-def _checked(value: float, written: object, *, above: float | None, least: float | None, shown: str) -> float:
+def checked(value: float, written: object, *, above: float | None, least: float | None, shown: str) -> float:
     """Return the value if it lies above `above` or is at least `least`; raise InputError otherwise."""
     if above is not None and not value > above:
         raise InputError("the value is too small", value=in_words(written), limit=f"more than {shown}")
@@ -45,13 +46,13 @@ def _checked(value: float, written: object, *, above: float | None, least: float
     return value
 
 
-def _quantity(kind: str, *, above: float | None = None, least: float | None = None) -> Any:
+def one_quantity(kind: str, *, above: float | None = None, least: float | None = None) -> Any:
     """The pair of reader and schema for one quantity, optionally bounded (a bound of 0 needs no unit)."""
 
     def read(value: object) -> float:
-        return _checked(quantity(value, kind), value, above=above, least=least, shown="0")
+        return checked(quantity(value, kind), value, above=above, least=least, shown="0")
 
-    return PlainValidator(read), WithJsonSchema(_pattern(kind))
+    return PlainValidator(read), WithJsonSchema(pattern(kind))
 
 
 def _number(*, above: float | None = None, least: float | None = None, nonzero: bool = False) -> Any:
@@ -69,12 +70,12 @@ def _number(*, above: float | None = None, least: float | None = None, nonzero: 
         if nonzero and value == 0:
             raise InputError("the number must not be zero: it would leave no load", value=in_words(value))
         shown = f"{above if above is not None else least if least is not None else 0:g}"
-        return _checked(float(value), value, above=above, least=least, shown=shown)
+        return checked(float(value), value, above=above, least=least, shown=shown)
 
     return PlainValidator(read), WithJsonSchema({"type": "number", **limits})
 
 
-def _choice(*words: str) -> Any:
+def choice(*words: str) -> Any:
     """The pair of reader and schema for one word out of several."""
 
     def read(value: object) -> str:
@@ -128,7 +129,7 @@ def _count(value: object) -> int | Literal["fewest"]:
     return count
 
 
-def _several(count: int | None = None) -> Callable[[object], Floats]:
+def several(count: int | None = None) -> Callable[[object], Floats]:
     """A reader of a list of lengths, of a given number if `count` is given."""
 
     def read(value: object) -> Floats:
@@ -154,7 +155,7 @@ def _pairs(value: object) -> tuple[tuple[float, float], ...]:
             value=in_words(value),
             limit='such as [["1.40 m", "1.52 m"]]',
         )
-    pairs = [_several(2)(item) for item in value]
+    pairs = [several(2)(item) for item in value]
     return tuple((float(start), float(end)) for start, end in pairs)
 
 
@@ -171,7 +172,7 @@ def _reversed_columns(value: object) -> tuple[str, ...]:
 
 
 def _grouping(value: object) -> Grouping:
-    """Read nested pairs of pad numbers, each pad used once."""
+    """Read nested groups of two or three pad numbers, each pad used once."""
     seen: set[int] = set()
     result = _group(value, seen)
     if isinstance(result, int):
@@ -181,9 +182,9 @@ def _grouping(value: object) -> Grouping:
 
 def _group(value: object, seen: set[int]) -> int | Grouping:
     if isinstance(value, list):
-        if len(value) != 2:
+        if len(value) not in (2, 3):
             raise InputError(
-                f"every lever joins two, and this group holds {len(value)}",
+                f"a lever joins two and a plate three, and this group holds {len(value)}",
                 value=in_words(value),
                 limit="such as [[1, 2], [3, [4, 5]]]",
             )
@@ -203,7 +204,7 @@ class Amount(NamedTuple):
     absolute: bool
 
 
-def _band(kind: str) -> Any:
+def band(kind: str) -> Any:
     """The pair of reader and schema for a band: a percentage, or a quantity of `kind`."""
 
     def read(value: object) -> Amount:
@@ -213,29 +214,29 @@ def _band(kind: str) -> Any:
         except InputError as error:
             limit = f'a percentage such as "2 %", or a {kind} such as "{KINDS[kind].example}"'
             raise InputError(error.what, value=error.value, limit=limit, remedy=error.remedy) from None
-        return Amount(_checked(amount, value, above=None, least=0.0, shown="0"), not is_fraction)
+        return Amount(checked(amount, value, above=None, least=0.0, shown="0"), not is_fraction)
 
-    return PlainValidator(read), WithJsonSchema({"anyOf": [_pattern("fraction"), _pattern(kind)]})
+    return PlainValidator(read), WithJsonSchema({"anyOf": [pattern("fraction"), pattern(kind)]})
 
 
-_lengths_schema = {"anyOf": [{"type": "string"}, {"type": "array", "items": _pattern("length"), "minItems": 1}]}
-_pair_schema = {"type": "array", "items": _pattern("length"), "minItems": 2, "maxItems": 2}
-_group_schema = {"type": "array", "minItems": 2, "maxItems": 2, "items": {"type": ["integer", "array"]}}
+_lengths_schema = {"anyOf": [{"type": "string"}, {"type": "array", "items": pattern("length"), "minItems": 1}]}
+_pair_schema = {"type": "array", "items": pattern("length"), "minItems": 2, "maxItems": 2}
+_group_schema = {"type": "array", "minItems": 2, "maxItems": 3, "items": {"type": ["integer", "array"]}}
 
 Text = Annotated[str, PlainValidator(_text), WithJsonSchema({"type": "string", "minLength": 1})]
 Title = Annotated[
     str, PlainValidator(_title), WithJsonSchema({"type": "string", "minLength": 1, "maxLength": LONGEST_TITLE})
 ]
-Length = Annotated[float, *_quantity("length")]
-PositiveLength = Annotated[float, *_quantity("length", above=0.0)]
-LengthOrZero = Annotated[float, *_quantity("length", least=0.0)]
-Force = Annotated[float, *_quantity("force")]
-PositiveForce = Annotated[float, *_quantity("force", above=0.0)]
-ForceOrZero = Annotated[float, *_quantity("force", least=0.0)]
-RunningLoad = Annotated[float, *_quantity("running load")]
-PositivePressure = Annotated[float, *_quantity("pressure", above=0.0)]
-Percentage = Annotated[float, *_quantity("fraction", above=0.0)]
-PercentageOrZero = Annotated[float, *_quantity("fraction", least=0.0)]
+Length = Annotated[float, *one_quantity("length")]
+PositiveLength = Annotated[float, *one_quantity("length", above=0.0)]
+LengthOrZero = Annotated[float, *one_quantity("length", least=0.0)]
+Force = Annotated[float, *one_quantity("force")]
+PositiveForce = Annotated[float, *one_quantity("force", above=0.0)]
+ForceOrZero = Annotated[float, *one_quantity("force", least=0.0)]
+RunningLoad = Annotated[float, *one_quantity("running load")]
+PositivePressure = Annotated[float, *one_quantity("pressure", above=0.0)]
+Percentage = Annotated[float, *one_quantity("fraction", above=0.0)]
+PercentageOrZero = Annotated[float, *one_quantity("fraction", least=0.0)]
 Factor = Annotated[float, *_number(nonzero=True)]
 PositiveNumber = Annotated[float, *_number(above=0.0)]
 Ratio = Annotated[float, *_number(least=1.0)]
@@ -245,8 +246,8 @@ Count = Annotated[
     PlainValidator(_count),
     WithJsonSchema({"anyOf": [{"type": "integer", "minimum": 1, "maximum": MOST_PADS}, {"const": "fewest"}]}),
 ]
-Lengths = Annotated[Any, PlainValidator(_several()), WithJsonSchema(_lengths_schema)]
-TwoLengths = Annotated[Any, PlainValidator(_several(2)), WithJsonSchema({"anyOf": [{"type": "string"}, _pair_schema]})]
+Lengths = Annotated[Any, PlainValidator(several()), WithJsonSchema(_lengths_schema)]
+TwoLengths = Annotated[Any, PlainValidator(several(2)), WithJsonSchema({"anyOf": [{"type": "string"}, _pair_schema]})]
 Pairs = Annotated[
     tuple[tuple[float, float], ...],
     PlainValidator(_pairs),
@@ -258,17 +259,17 @@ Columns = Annotated[
     WithJsonSchema({"type": "array", "items": {"enum": ["shear", "moment", "torsion"]}}),
 ]
 Groups = Annotated[Any, PlainValidator(_grouping), WithJsonSchema(_group_schema)]
-MomentBand = Annotated[Amount, *_band("moment")]
-ShearBand = Annotated[Amount, *_band("force")]
-SupportWord = Annotated[Literal["cantilever", "two supports"], *_choice("cantilever", "two supports")]
-GravityWord = Annotated[Literal["against", "with"], *_choice("against", "with")]
+MomentBand = Annotated[Amount, *band("moment")]
+ShearBand = Annotated[Amount, *band("force")]
+SupportWord = Annotated[Literal["cantilever", "two supports"], *choice("cantilever", "two supports")]
+GravityWord = Annotated[Literal["against", "with"], *choice("against", "with")]
 ShapeWord = Annotated[
     Literal["uniform", "linear", "triangular", "elliptical", "parabolic", "power", "sine", "schrenk"],
-    *_choice("uniform", "linear", "triangular", "elliptical", "parabolic", "power", "sine", "schrenk"),
+    *choice("uniform", "linear", "triangular", "elliptical", "parabolic", "power", "sine", "schrenk"),
 ]
-EndWord = Annotated[Literal["root", "tip"], *_choice("root", "tip")]
-OriginWord = Annotated[Literal["root", "tip"], *_choice("root", "tip")]
-PlacesWord = Annotated[Literal["free", "fixed", "hard points"], *_choice("free", "fixed", "hard points")]
-ActionWord = Annotated[Literal["pull", "push"], *_choice("pull", "push")]
-AimWord = Annotated[Literal["closest", "even"], *_choice("closest", "even")]
-OfWord = Annotated[Literal["peak", "local"], *_choice("peak", "local")]
+EndWord = Annotated[Literal["root", "tip"], *choice("root", "tip")]
+OriginWord = Annotated[Literal["root", "tip"], *choice("root", "tip")]
+PlacesWord = Annotated[Literal["free", "fixed", "hard points"], *choice("free", "fixed", "hard points")]
+ActionWord = Annotated[Literal["pull", "push"], *choice("pull", "push")]
+AimWord = Annotated[Literal["closest", "even"], *choice("closest", "even")]
+OfWord = Annotated[Literal["peak", "local"], *choice("peak", "local")]

@@ -15,24 +15,29 @@ from rigdesign.brief.context import (
     table_stations,
 )
 from rigdesign.brief.layout import (
+    CoupleEntry,
     ForcesEntry,
     InertiaEntry,
     InternalEntry,
     LoadEntry,
     PointEntry,
+    PressureEntry,
     ShapeEntry,
     TableEntry,
+    TorqueEntry,
 )
 from rigdesign.brief.messages import PLAN_RIG
 from rigdesign.brief.model import (
     InertiaLoad,
     InternalLoad,
+    Line,
     Load,
     PointLoads,
     ShapeLoad,
     Specimen,
     TableLoad,
 )
+from rigdesign.brief.surface.loads import check_load_line, couple, plan_forces, plan_point, pressure, torque
 from rigdesign.brief.tables import CsvTable
 from rigdesign.errors import TableError
 
@@ -48,21 +53,13 @@ def load(entry: LoadEntry, number: int, piece: Specimen, context: Context) -> Lo
         case ShapeEntry():
             return _shape(entry, number, piece, context)
         case TableEntry():
-            rows = context.table(
-                entry.table, ("load", number, "table"), {"x": "length", "load": "running load"}, repeats="jump"
-            )
-            return TableLoad(running(rows, "load", piece), rows["load"], entry.times, f"{where}, {entry.table}")
+            return _table(entry, number, piece, context)
         case InternalEntry():
             return _internal(entry, number, piece, context)
         case ForcesEntry():
-            rows = context.table(entry.forces, ("load", number, "forces"), {"x": "length", "force": "force"})
-            not_all_zero(rows, "force")
-            return PointLoads(table_stations(rows, piece), rows["force"], entry.times, f"{where}, {entry.forces}")
+            return _forces(entry, number, piece, context)
         case PointEntry():
-            if entry.point == 0:
-                raise context.error("a point load of zero loads nothing", "load", number, "point")
-            x = context.station(entry.at, piece, "load", number, "at", what="the point load")
-            return PointLoads(frozen(np.array([x])), frozen(np.array([entry.point])), entry.times, where)
+            return _point(entry, number, piece, context)
         case InertiaEntry():
             if piece.weight is None:
                 what, remedy = (
@@ -71,13 +68,69 @@ def load(entry: LoadEntry, number: int, piece: Specimen, context: Context) -> Lo
                 )
                 raise context.error(what, "load", number, "inertia", remedy=remedy)
             return InertiaLoad(entry.inertia, entry.times, where)
+        case PressureEntry() | TorqueEntry() | CoupleEntry():
+            return _plan_load(entry, number, piece, context)
     raise AssertionError(f"unknown kind of load: {type(entry).__name__}")
+
+
+def _plan_load(
+    entry: PressureEntry | TorqueEntry | CoupleEntry, number: int, piece: Specimen, context: Context
+) -> Load:
+    """Return a load of a kind that only plan rigs have."""
+    match entry:
+        case PressureEntry():
+            return pressure(entry, number, context)
+        case TorqueEntry():
+            return torque(entry, number, piece, context)
+        case CoupleEntry():
+            return couple(entry, number, piece, context)
+
+
+def _table(entry: TableEntry, number: int, piece: Specimen, context: Context) -> TableLoad:
+    """Return a running load as a table."""
+    kinds = {"x": "length", "load": "running load"}
+    rows = context.table(entry.table, ("load", number, "table"), kinds, repeats="jump")
+    x = running(rows, "load", piece)
+    _check_line(entry.line, float(x[0]), float(x[-1]), piece, context, "load", number)
+    where = f"{context.places.where('load', number)}, {entry.table}"
+    return TableLoad(x, rows["load"], entry.times, where, entry.line)
+
+
+def _check_line(
+    line: Line | None, start: float, end: float, piece: Specimen, context: Context, *path: str | int
+) -> None:
+    """Raise BriefError where a running load of a surface, from start to end [m], leaves the outline."""
+    if piece.is_surface:
+        check_load_line(line, start, end, piece, context, *path)
+
+
+def _forces(entry: ForcesEntry, number: int, piece: Specimen, context: Context) -> PointLoads:
+    """Return a table of point loads."""
+    if piece.is_surface:
+        return plan_forces(entry, number, piece, context)
+    rows = context.table(entry.forces, ("load", number, "forces"), {"x": "length", "force": "force"})
+    not_all_zero(rows, "force")
+    where = f"{context.places.where('load', number)}, {entry.forces}"
+    return PointLoads(table_stations(rows, piece), rows["force"], entry.times, where)
+
+
+def _point(entry: PointEntry, number: int, piece: Specimen, context: Context) -> PointLoads:
+    """Return one point load."""
+    if entry.point == 0:
+        raise context.error("a point load of zero loads nothing", "load", number, "point")
+    where, force = context.places.where("load", number), frozen(np.array([entry.point]))
+    if piece.is_surface:
+        x, y = plan_point(entry, number, piece, context)
+        return PointLoads(frozen(np.array([x])), force, entry.times, where, frozen(np.array([y])))
+    x = context.station(entry.at.x, piece, "load", number, "at", what="the point load")
+    return PointLoads(frozen(np.array([x])), force, entry.times, where)
 
 
 def _shape(entry: ShapeEntry, number: int, piece: Specimen, context: Context) -> ShapeLoad:
     """Return a running load of a named shape."""
     _shape_keys(entry, number, context)
     start_x, end_x = stretch(entry.from_, entry.to, piece, context, "load", number)
+    _check_line(entry.line, start_x, end_x, piece, context, "load", number)
     chord_x, chord = _NOTHING, _NOTHING
     if entry.chord is not None:
         rows = context.table(entry.chord, ("load", number, "chord"), {"x": "length", "chord": "length"}, repeats="jump")
@@ -104,6 +157,7 @@ def _shape(entry: ShapeEntry, number: int, piece: Specimen, context: Context) ->
         chord=chord,
         times=entry.times,
         where=context.places.where("load", number),
+        line=entry.line,
     )
 
 
@@ -155,22 +209,27 @@ def _internal(entry: InternalEntry, number: int, piece: Specimen, context: Conte
         raise context.error("a table of shear and moment needs a cantilever", *path, remedy=remedy)
     kinds = {"x": "length", "shear": "force", "moment": "moment"}
     rows = context.table(entry.internal, path, kinds, repeats="jump", optional={"torsion": "moment"})
-    _no_torsion(rows)
-    not_all_zero(rows, "shear", "moment")
-    shear, moment = (rows[name] * (-1.0 if name in entry.reverse else 1.0) + 0.0 for name in ("shear", "moment"))
+    if not piece.is_surface:
+        _no_torsion(rows)
+    names = [name for name in ("shear", "moment", "torsion") if name in rows.columns]
+    not_all_zero(rows, *(names if piece.is_surface else names[:2]))
+    columns = {name: rows[name] * (-1.0 if name in entry.reverse else 1.0) + 0.0 for name in names}
     x = table_stations(rows, piece, piece.right - rows["x"] if entry.stations_from == "tip" else None)
     if entry.stations_from == "tip":
-        x, shear, moment = x[::-1], shear[::-1], moment[::-1]
+        x, columns = x[::-1], {name: values[::-1] for name, values in columns.items()}
     if not x[0] < x[-1]:
         raise TableError("the table needs rows at two different x", where=rows.name)
+    has_torsion = piece.is_surface and "torsion" in columns
     return InternalLoad(
         x=frozen(x),
-        shear=frozen(shear),
-        moment=frozen(moment),
+        shear=frozen(columns["shear"]),
+        moment=frozen(columns["moment"]),
         shear_digit=rows.digit("shear"),
         moment_digit=rows.digit("moment"),
         times=entry.times,
         where=f"{context.places.where('load', number)}, {entry.internal}",
+        torsion=frozen(columns["torsion"]) if has_torsion else _NOTHING,
+        torsion_digit=rows.digit("torsion") if has_torsion else 0.0,
     )
 
 
@@ -179,5 +238,5 @@ def _no_torsion(rows: CsvTable) -> None:
     if "torsion" in rows.columns and rows["torsion"].any():
         row = int(np.flatnonzero(rows["torsion"])[0])
         what = f"pads on one line bring no torsion; torsion {PLAN_RIG}"
-        remedy = "delete the column if the test may leave the torsion out"
+        remedy = "give [specimen] outline, or delete the column if the test may leave the torsion out"
         raise TableError(what, where=rows.where(row), value=rows.cell("torsion", row), remedy=remedy)

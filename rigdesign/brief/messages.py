@@ -7,6 +7,7 @@ seem missing, and otherwise the first in the file.
 from __future__ import annotations
 
 import difflib
+from collections.abc import Iterator
 from typing import Any
 
 from pydantic import ValidationError
@@ -16,7 +17,7 @@ from rigdesign.brief.locate import Path, Places
 from rigdesign.errors import BriefError, InputError
 from rigdesign.units import in_words
 
-PLAN_RIG = "belongs to plan rigs, which this version does not design yet"
+PLAN_RIG = "belongs to plan rigs, whose specimen is given by an outline"
 _AT_END = 10**9
 
 
@@ -32,26 +33,65 @@ def brief_error(error: ValidationError, raw: dict[str, Any], places: Places) -> 
     kind = fault["type"]
     if kind == "extra_forbidden":
         return _unknown_key(path, raw, places)
+    if (plan := plan_error(raw, places)) is not None:
+        return plan
     if kind == "missing":
         return _missing(path, places)
     if kind == "union_tag_not_found":
         return _what_load(path, fault["input"], places)
     inner = fault.get("ctx", {}).get("error")
     if isinstance(inner, InputError):
-        return placed(inner, places.where(*path), plan=_is_plan_place(path, fault["input"]))
+        return placed(inner, places.where(*path))
     return _structure(path, fault, places)
 
 
-def placed(error: InputError, where: str, *, plan: bool = False) -> BriefError:
+def placed(error: InputError, where: str) -> BriefError:
     """Return a BriefError with the place added."""
-    if plan:
-        return BriefError(f"a place given by x and y {PLAN_RIG}", where=where, remedy="give x alone")
     return BriefError(error.what, where=where, value=error.value, limit=error.limit, remedy=error.remedy)
 
 
-def _is_plan_place(path: Path, value: object) -> bool:
-    """Whether a point load's place is a pair, as on plan rigs."""
-    return path[0] == "load" and path[-1] == "at" and isinstance(value, list) and len(value) == 2
+def is_plan(raw: dict[str, Any]) -> bool:
+    """Whether the brief is one of a plan rig: its specimen has an outline."""
+    specimen = raw.get("specimen")
+    return isinstance(specimen, dict) and "outline" in specimen
+
+
+def plan_error(raw: dict[str, Any], places: Places) -> BriefError | None:
+    """Return the message for the first key in the file that needs an outline where there is none, or None."""
+    if is_plan(raw) or not isinstance(raw.get("specimen"), dict):
+        return None
+    found = list(_plan_paths(raw))
+    if not found:
+        return None
+    path = min(found, key=lambda path: places.lines.get(path, _AT_END))
+    if path[-1] == "at":
+        what, remedy = f"a place given by x and y {PLAN_RIG}", "give [specimen] outline, or x alone"
+    else:
+        what, remedy = f'"{path[-1]}" {PLAN_RIG}', "give [specimen] outline, or delete it to design a line rig"
+    return BriefError(what, where=places.where(*path), remedy=remedy)
+
+
+def _plan_paths(raw: dict[str, Any]) -> Iterator[Path]:
+    """Yield the path of each key that needs an outline; the file may be out of shape otherwise."""
+    for path, table in _plain_tables(raw):
+        home = str(path[0])
+        for key, value in table.items():
+            is_pair = home in ("load", "jack") and key == "at" and isinstance(value, list) and len(value) == 2
+            if key in PLAN_KEYS.get(home, ()) or is_pair:
+                yield (*path, key)
+
+
+def _plain_tables(raw: dict[str, Any]) -> Iterator[tuple[Path, dict[str, Any]]]:
+    """Yield the tables of the file that are tables, each load and region among them, with their paths."""
+    for home, table in raw.items():
+        if isinstance(table, dict):
+            yield (home,), table
+    acceptance = raw.get("acceptance")
+    regions = acceptance.get("region") if isinstance(acceptance, dict) else None
+    for path, entries in ((("load",), raw.get("load")), (("acceptance", "region"), regions)):
+        for number, entry in enumerate(entries if isinstance(entries, list) else ()):
+            if isinstance(entry, dict):
+                yield (*path, number), entry
 
 
 def _path(loc: tuple[int | str, ...]) -> Path:
@@ -76,8 +116,6 @@ def _unknown_key(path: Path, raw: dict[str, Any], places: Places) -> BriefError:
     where = places.where(*path)
     if len(path) == 1 and isinstance(raw[key], dict):
         where = where.removesuffix(key) + f"[{key}]"
-    if key in PLAN_KEYS.get(home, ()):
-        return BriefError(f'"{key}" {PLAN_RIG}', where=where, remedy="delete it to design a line rig")
     known = keys_of(_table_at(path, raw))
     table = "a brief" if len(path) == 1 else _called(path, raw)
     what = f'"{key}" is no key of {table}'
@@ -118,9 +156,6 @@ def _what_load(path: Path, value: object, places: Places) -> BriefError:
     if given:
         what = f"a load is one thing, and this one names {len(given)}"
         return BriefError(what, where=where, value=", ".join(given), remedy="write a [[load]] for each; they are added")
-    plan = [key for key in value if key in PLAN_KEYS["load"]]
-    if plan:
-        return BriefError(f'"{plan[0]}" {PLAN_RIG}', where=places.where(*path, plan[0]), remedy="delete this load")
     near = [
         match
         for key in value

@@ -13,7 +13,7 @@ from rigdesign.brief.build import build
 from rigdesign.brief.context import Context
 from rigdesign.brief.layout import BriefFile
 from rigdesign.brief.locate import Places, key_lines
-from rigdesign.brief.messages import brief_error
+from rigdesign.brief.messages import brief_error, plan_error
 from rigdesign.brief.model import Brief, Source
 from rigdesign.brief.sources import FolderTexts, KeptTexts, Texts
 from rigdesign.errors import BriefError
@@ -41,6 +41,8 @@ def _read(name: str, text: str, texts: Texts) -> Brief:
         file = BriefFile.model_validate(raw)
     except ValidationError as error:
         raise brief_error(error, raw, places) from None
+    if (plan := plan_error(raw, places)) is not None:
+        raise plan
     return build(file, Context(raw, places, texts))
 
 

@@ -10,6 +10,8 @@ import numpy as np
 from rigdesign.brief.context import Context, frozen, not_all_zero, not_negative, running, table_stations
 from rigdesign.brief.layout import SpecimenTable
 from rigdesign.brief.model import Specimen, Weight
+from rigdesign.brief.surface.loads import check_weight_line
+from rigdesign.brief.surface.specimen import check_supports, surface
 from rigdesign.display import show
 
 T = TypeVar("T")
@@ -39,7 +41,24 @@ def specimen(table: SpecimenTable, context: Context) -> Specimen:
         what = "the specimen is too short for where it stands, so that stations on it could not be told apart"
         raise context.error(what, "specimen", key, limit=limit, remedy="count x from nearer by")
     bare = Specimen(table.support, left, right, (), None, 1 if table.gravity == "with" else -1)
-    return replace(bare, supports=_supports(table, bare, context), weight=_weight(table, bare, context))
+    if table.outline is None:
+        return replace(bare, supports=_supports(table, bare, context), weight=_weight(table, bare, context))
+    return _surface(table, bare, context)
+
+
+def _surface(table: SpecimenTable, bare: Specimen, context: Context) -> Specimen:
+    """Return a specimen that is given by its outline."""
+    piece = surface(table, bare, context)
+    piece = replace(piece, supports=_supports(table, piece, context))
+    check_supports(piece, context)
+    weight = _weight(table, piece, context)
+    if weight is None:
+        if table.weight_line is not None:
+            what, remedy = '"weight_line" goes with the weight', "give weight or point_masses, or delete it"
+            raise context.error(what, "specimen", "weight_line", value="", remedy=remedy)
+        return piece
+    check_weight_line(table.weight_line, weight, piece, context)
+    return replace(piece, weight=weight, weight_line=table.weight_line)
 
 
 def _supports(table: SpecimenTable, bare: Specimen, context: Context) -> tuple[float, ...]:

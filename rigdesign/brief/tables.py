@@ -26,10 +26,33 @@ from rigdesign.errors import InputError, TableError
 from rigdesign.units import NUMBER, column_fraction, scaled, split_heading
 from rigdesign.words import LARGEST_NUMBER
 
-Repeats = Literal["jump", "none"]
+Repeats = Literal["jump", "none", "any"]
 _PLAIN = re.compile(rf"\s*{NUMBER}\s*")
-_PLAN_COLUMNS = {"y": "length", "pressure": "pressure", "torque": "moment"}
+_PLAN_COLUMNS = ("y", "turn", "pressure", "torque")
 NOTE = "note"
+NAME = "name"
+"""The kind of a column that holds names: text without a unit."""
+
+
+@dataclass(frozen=True)
+class Known:
+    """The columns that a table must and may have, with their kinds, and whether the brief is one of a plan rig."""
+
+    kinds: dict[str, str]
+    optional: dict[str, str]
+    plan: bool
+
+    @property
+    def every(self) -> dict[str, str]:
+        """All of them by name."""
+        return {**self.kinds, **self.optional}
+
+    @property
+    def wanted(self) -> str:
+        """Those that must be there, for a message."""
+        return ", ".join(
+            column if kind == NAME else f"{column} [unit of {kind}]" for column, kind in self.kinds.items()
+        )
 
 
 @dataclass(frozen=True)
@@ -43,7 +66,10 @@ class Heading:
 
 @dataclass(frozen=True)
 class CsvTable:
-    """A table as read: its file name, text and heading, and the columns by name in SI, (n,) each."""
+    """A table as read: its file name, text and heading, and the columns by name in SI, (n,) each.
+
+    Columns of names are not among them; `names` reads them.
+    """
 
     name: str
     text: str
@@ -69,6 +95,11 @@ class CsvTable:
         printed = self._printed[0][row][self.heading.names.index(column)].strip()
         return f"{column} = {printed} {self.heading.units[column]}"
 
+    def names(self, column: str) -> list[str]:
+        """The cells of a column of names."""
+        place = self.heading.names.index(column)
+        return [row[place].strip() for row in self._printed[0]]
+
     def digit(self, column: str) -> float:
         """The smallest decimal place that any cell of the column shows, in SI: the rounding unit of the column."""
         place = self.heading.names.index(column)
@@ -76,7 +107,13 @@ class CsvTable:
 
 
 def read_table(
-    text: str, name: str, kinds: dict[str, str], *, repeats: Repeats, optional: dict[str, str] | None = None
+    text: str,
+    name: str,
+    kinds: dict[str, str],
+    *,
+    repeats: Repeats,
+    optional: dict[str, str] | None = None,
+    plan: bool = False,
 ) -> CsvTable:
     """Read a table.
 
@@ -85,36 +122,38 @@ def read_table(
     text, name
         The text of the file, and its name for messages.
     kinds
-        The kind of quantity of each column that must be there; "x" among them, by which the rows are in order.
+        The kind of quantity of each column that must be there; "x" among them.
     repeats
-        Whether two rows at one x are a jump, or an error.
+        Rows are in order of x, and two rows at one x are a jump, or an error; or rows are in any order.
     optional
         Columns that may be there, with their kinds.
+    plan
+        Whether the brief is one of a plan rig; otherwise columns that only these have are answered as such.
 
     Raises
     ------
     TableError
         With the line, the column, the value and what to do.
     """
-    values, heading = _quickly(text, name, kinds, optional or {}) or _row_by_row(text, name, kinds, optional or {})
+    columns_known = Known(kinds, optional or {}, plan)
+    values, heading = _quickly(text, name, columns_known) or _row_by_row(text, name, columns_known)
     columns = {}
     for column, factor in heading.factors.items():
         columns[column] = scaled(values[heading.names.index(column)], factor)
         columns[column].setflags(write=False)
     table = CsvTable(name, text, heading, columns)
     _check_size(table)
-    _check_order(table, repeats)
+    if repeats != "any":
+        check_order(table, repeats)
     return table
 
 
-def _quickly(
-    text: str, name: str, kinds: dict[str, str], optional: dict[str, str]
-) -> tuple[Sequence[Floats], Heading] | None:
+def _quickly(text: str, name: str, known: Known) -> tuple[Sequence[Floats], Heading] | None:
     """Return the columns as printed, and the heading; None where the table is not a plain block of finite numbers."""
     first, _, body = text.partition("\n")
-    if '"' in text or "_" in body or not first.strip() or not body.strip():
+    if '"' in text or "_" in body or not first.strip() or not body.strip() or NAME in known.kinds.values():
         return None
-    heading = _heading(first.strip("\r").split(","), f"{name}, line 1", kinds, optional)
+    heading = _heading(first.strip("\r").split(","), f"{name}, line 1", known)
     try:
         values = np.loadtxt(io.StringIO(body), delimiter=",", comments=None, ndmin=2)
     except ValueError:
@@ -124,12 +163,10 @@ def _quickly(
     return list(np.ascontiguousarray(values.T)), heading
 
 
-def _row_by_row(
-    text: str, name: str, kinds: dict[str, str], optional: dict[str, str]
-) -> tuple[Sequence[Floats], Heading]:
+def _row_by_row(text: str, name: str, known: Known) -> tuple[Sequence[Floats], Heading]:
     """Return the columns as printed, and the heading; raise TableError naming the first row that cannot be used."""
     rows, lines = _rows(text, name)
-    heading = _heading(rows[0], f"{name}, line {lines[0]}", kinds, optional)
+    heading = _heading(rows[0], f"{name}, line {lines[0]}", known)
     width, body, lines = len(heading.names), rows[1:], lines[1:]
     if not body:
         raise TableError("the table has a heading and no rows", where=name, remedy="add at least one row")
@@ -139,7 +176,8 @@ def _row_by_row(
             raise TableError(what, where=f"{name}, line {line}", value=_short(",".join(cells)))
     columns = []
     for column, printed in zip(heading.names, zip(*body, strict=True), strict=True):
-        columns.append(np.zeros(len(body)) if column == NOTE else _numbers(column, printed, name, lines))
+        is_text = column not in heading.factors
+        columns.append(np.zeros(len(body)) if is_text else _numbers(column, printed, name, lines))
     return columns, heading
 
 
@@ -161,10 +199,9 @@ def _rows(text: str, name: str) -> tuple[list[list[str]], list[int]]:
     return rows, lines
 
 
-def _heading(cells: list[str], where: str, kinds: dict[str, str], optional: dict[str, str]) -> Heading:
+def _heading(cells: list[str], where: str, known: Known) -> Heading:
     """Return the heading; raise TableError where a column is unknown, missing, twice there or without its unit."""
-    known = {**kinds, **optional}
-    wanted = ", ".join(f"{column} [unit of {kind}]" for column, kind in kinds.items())
+    wanted = known.wanted
     if len(cells) == 1 and re.search(r"[;\t]", cells[0]):
         raise TableError("columns are separated by commas", where=where, value=_short(cells[0]), limit=wanted)
     names: list[str] = []
@@ -173,14 +210,14 @@ def _heading(cells: list[str], where: str, kinds: dict[str, str], optional: dict
     for text in cells:
         name, unit = split_heading(text)
         units[name] = unit or ""
-        if name != NOTE and name not in known:
-            raise _unknown_column(name, text, where, wanted, known)
+        if name != NOTE and name not in known.every:
+            raise _unknown_column(name, text, where, known)
         if name in names:
             raise TableError("two columns have one name", where=where, value=f'"{name}"')
         names.append(name)
-        if name != NOTE:
+        if name != NOTE and known.every[name] != NAME:
             try:
-                factors[name] = column_fraction(text, known[name])
+                factors[name] = column_fraction(text, known.every[name])
             except InputError as error:
                 raise TableError(
                     error.what,
@@ -189,26 +226,27 @@ def _heading(cells: list[str], where: str, kinds: dict[str, str], optional: dict
                     limit=error.limit,
                     remedy=error.remedy,
                 ) from None
-    missing = [column for column in kinds if column not in names]
+    missing = [column for column in known.kinds if column not in names]
     if missing:
         raise TableError(f'the column "{missing[0]}" is missing', where=where, limit=wanted)
     return Heading(tuple(names), units, factors)
 
 
-def _unknown_column(name: str, text: str, where: str, wanted: str, known: dict[str, str]) -> TableError:
+def _unknown_column(name: str, text: str, where: str, known: Known) -> TableError:
     """Return the error for a column that this table does not have."""
     if _PLAIN.fullmatch(text):
         what = "the first line is a heading with units, and this is a number"
-        return TableError(what, where=where, value=text.strip(), limit=wanted)
-    if name in _PLAN_COLUMNS:
-        return TableError(f'the column "{name}" {PLAN_RIG}', where=where, remedy="delete the column")
-    near = difflib.get_close_matches(name.lower(), known, n=1)
+        return TableError(what, where=where, value=text.strip(), limit=known.wanted)
+    if name in _PLAN_COLUMNS and not known.plan:
+        remedy = "delete the column, or give [specimen] outline"
+        return TableError(f'the column "{name}" {PLAN_RIG}', where=where, remedy=remedy)
+    near = difflib.get_close_matches(name.lower(), known.every, n=1)
     remedy = f'did you mean "{near[0]}"? ' if near else ""
     return TableError(
         "this table has no such column",
         where=where,
         value=f'"{text.strip()}"',
-        limit=wanted,
+        limit=known.wanted,
         remedy=remedy + 'a column for remarks is headed "note"',
     )
 
@@ -240,7 +278,7 @@ def _check_size(table: CsvTable) -> None:
             )
 
 
-def _check_order(table: CsvTable, repeats: Repeats) -> None:
+def check_order(table: CsvTable, repeats: Repeats) -> None:
     """Raise TableError unless x rises from row to row, save for two rows at one x where these are a jump."""
     step = np.diff(table["x"])
     if (falling := np.flatnonzero(step < 0)).size:

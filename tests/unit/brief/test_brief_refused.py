@@ -8,7 +8,7 @@ ELLIPTICAL = 'shape = "elliptical"\ntotal = "5.4 kN"'
 CANTILEVER = 'support = "cantilever"\nroot = "0.2 m"\ntip = "3.4 m"'
 ON_TWO = 'support = "two supports"\nends = ["0 m", "6 m"]\nsupports = ["0.4 m", "5.6 m"]'
 FIXED = 'places = "fixed"\nstations = "0.30, 0.61, 0.95 m"'
-PLAN = "belongs to plan rigs, which this version does not design yet"
+PLAN = "belongs to plan rigs, whose specimen is given by an outline"
 
 
 def refused_in(refusal, edits, parts) -> None:
@@ -34,7 +34,7 @@ def refused_in(refusal, edits, parts) -> None:
             ["line 17, [[acceptance.region]] 1, shaer", "no key of [[acceptance.region]]", 'did you mean "shear"?'],
         ),
         (("count = 6", 'edge = "30 mm"'), ["[pads] edge", f'"edge" {PLAN}']),
-        (("support =", 'outline = "a.csv"\nsupport ='), ["[specimen] outline", PLAN]),
+        (("support =", 'cut = "square to axis"\nsupport ='), ["[specimen] cut", PLAN, "give [specimen] outline"]),
         ((ELLIPTICAL, 'pressure = "p.csv"'), ["line 9, [[load]] 1, pressure", f'"pressure" {PLAN}']),
         ((ELLIPTICAL, ELLIPTICAL + '\nline = "p.csv"'), [f'"line" {PLAN}']),
         ((ELLIPTICAL, 'point = "3 N"\nat = ["1 m", "0.1 m"]'), ["[[load]] 1, at", f"a place given by x and y {PLAN}"]),

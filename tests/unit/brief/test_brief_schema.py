@@ -11,7 +11,7 @@ import pytest
 import rigdesign.brief
 from rigdesign.brief import SCHEMA_FILE, schema
 from rigdesign.brief.describe import schema_text
-from rigdesign.brief.fields import _pattern
+from rigdesign.brief.fields import pattern
 from rigdesign.units import KINDS, quantity
 
 BASE = 'title = "Test foil"\n[specimen]\nsupport = "cantilever"\nroot = "0.2 m"\ntip = "3.4 m"\n'
@@ -74,7 +74,7 @@ def test_bad_briefs_do_not(rest: str) -> None:
 
 @pytest.mark.parametrize("kind", ["length", "force", "running load", "moment", "pressure", "fraction"])
 def test_patterns_and_reader_agree(kind: str) -> None:
-    fits = jsonschema.Draft202012Validator(_pattern(kind)).is_valid
+    fits = jsonschema.Draft202012Validator(pattern(kind)).is_valid
     texts = {
         "length": ["1.2 m", "-3 in", ".5ft"],
         "force": ["5.4 kN", "1e3 lbf"],
