@@ -149,8 +149,8 @@ class Room:
     def _forbidden(self, turn: float, wider: float) -> list[Geometries]:
         import shapely
 
-        # half the slack stays, so that a strip as wide as the footprint keeps places in its middle
-        near = slack(self.brief) / 2
+        # less than half the slack stays in all, so that a strip as wide as the footprint keeps places in its middle
+        near = slack(self.brief) / 4
         box = corners(np.array([turn]), *half_sizes(self.brief, less=near))[0]
         outline = self.brief.specimen.outline
         assert outline is not None
