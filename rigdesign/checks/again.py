@@ -9,13 +9,12 @@ from pathlib import Path
 import numpy as np
 
 from rigdesign.brief.model import Brief
-from rigdesign.checks.curves import curves
 from rigdesign.checks.holes_table import HolesTable, read_holes, with_holes
-from rigdesign.checks.measures import evenness, length, shares_of_curve
+from rigdesign.checks.measures import evenness, length, shares_of_pads
 from rigdesign.checks.model import Check
 from rigdesign.checks.statics import solve_statics
 from rigdesign.checks.text import NOT_PROVEN, percent
-from rigdesign.checks.whole import check
+from rigdesign.checks.whole import band_use, check
 from rigdesign.display import show
 from rigdesign.errors import InputError
 from rigdesign.findings import Finding
@@ -126,9 +125,8 @@ def recheck(rig: Rig, brief: Brief) -> Check:
 
 def _rescaled(plan: PadPlan, target: Target, scale: float) -> PadPlan:
     force = plan.force * scale
-    share = shares_of_curve(target.net, plan.x)
-    found = curves(target, plan.x, force)
-    use = max(float(found.use("moment").max()), float(found.use("shear").max()))
+    share = shares_of_pads(target, plan.x, plan.y)
+    use = band_use(target, plan.x, plan.y, force)
     uneven = evenness(force, share)
     proof = Proof(
         band_use=use,

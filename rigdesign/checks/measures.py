@@ -4,40 +4,32 @@ from __future__ import annotations
 
 import numpy as np
 
+from rigdesign.brief.model import Specimen
 from rigdesign.checks.curves import curves
+from rigdesign.checks.errors import peak_error
 from rigdesign.checks.model import Curves, Statics
-from rigdesign.checks.sampling import local_errors
 from rigdesign.levers.model import Piece, Rig
 from rigdesign.pads.model import LEAST_SHARE
-from rigdesign.target.bands import Quantity
 from rigdesign.target.curve import Curve, Floats
+from rigdesign.target.cuts import stretch_at, stretch_directions
 from rigdesign.target.model import Target
 
 
-def peak_error(curves: Curves, quantity: Quantity, peak: float) -> tuple[float, float]:
-    """Return the largest |error| as a fraction of the peak target `peak` [N or N·m], and its station [m]."""
-    error = np.abs(curves.error(quantity))
-    row = int(np.argmax(error))
-    return float(error[row] / peak), float(curves.x[row])
-
-
-def local_error(curves: Curves, quantity: Quantity, peak: float) -> tuple[float, float]:
-    """Return the largest |error| as a fraction of the local target, and its station [m].
-
-    Only stations count at which |target| is at least 5 % of its peak `peak` [N or N·m].
-    """
-    error = local_errors(curves, quantity, peak)
-    row = int(np.argmax(error))
-    return float(error[row]), float(curves.x[row])
-
-
-def shear_area(curves: Curves) -> float:
+def shear_area(curves: Curves, specimen: Specimen) -> float:
     """Return ∫ |V_rig − V_target| dx over the span [N·m].
 
-    Since dM/dx = −V, and since every zero of the shear error is a station, it is the sum of the moment error's
-    changes from station to station.
+    Between two stations dM/ds = −V, s counted along the direction of the cuts, and every zero of the shear error is a
+    station.  So it is the sum of the moment error's changes from station to station, each times dx/ds.  Between the
+    two sides of one station lie no dx: there the moment jumps at kinks of an axis that cuts are square to.
     """
-    return float(np.abs(np.diff(curves.error("moment"))).sum())
+    change = np.abs(np.diff(curves.error("moment")))
+    if not specimen.is_surface:
+        return float(change.sum())
+    slope = np.ones(change.size)
+    if specimen.cut == "square to axis":
+        middle = 0.5 * (curves.x[1:] + curves.x[:-1])
+        slope = stretch_directions(specimen)[0][stretch_at(specimen, middle, "outboard")]
+    return float((change * slope)[np.diff(curves.x) > 0].sum())
 
 
 def hand_pads(curve: Curve, n_strips: int) -> tuple[Floats, Floats]:
@@ -68,6 +60,15 @@ def hand_errors(target: Target, n_pads: int) -> tuple[float, float]:
     return moment, shear
 
 
+def shares_of_pads(target: Target, pad_x: Floats, pad_y: Floats) -> Floats:
+    """Return the part of the net load that is nearest to each pad [N], (n_pads,): in plan, its tributary share."""
+    if not target.brief.specimen.is_surface:
+        return shares_of_curve(target.net, pad_x)
+    from rigdesign.pads.surface.shares import tributary_shares
+
+    return tributary_shares(target, pad_x, pad_y)
+
+
 def shares_of_curve(curve: Curve, pad_x: Floats) -> Floats:
     """Return the part of the load that is nearest to each pad [N], (n_pads,); boundaries lie midway between pads."""
     order = np.argsort(pad_x, kind="stable")
@@ -78,16 +79,25 @@ def shares_of_curve(curve: Curve, pad_x: Floats) -> Floats:
     return share
 
 
-def evenness(force: Floats, share: Floats) -> float:
-    """Return the largest |force − share| over |share| among pads, both (n_pads,) [N].
+def unevenness(force: Floats, share: Floats) -> Floats:
+    """Return |force − share| over |share| of each pad, all (n_pads,) [N].
 
     A share counts as at least `LEAST_SHARE` of the mean share.
+
+    >>> unevenness(np.array([110.0, 290.0]), np.array([100.0, 300.0])).round(4).tolist()
+    [0.1, 0.0333]
+    """
+    least = LEAST_SHARE * abs(float(share.mean()))
+    return np.asarray(np.abs(force - share) / np.maximum(np.abs(share), least))
+
+
+def evenness(force: Floats, share: Floats) -> float:
+    """Return the largest of `unevenness` among pads.
 
     >>> evenness(np.array([110.0, 290.0]), np.array([100.0, 300.0]))
     0.1
     """
-    least = LEAST_SHARE * abs(float(share.mean()))
-    return float((np.abs(force - share) / np.maximum(np.abs(share), least)).max())
+    return float(unevenness(force, share).max())
 
 
 def arms(piece: Piece) -> tuple[float, float]:
@@ -171,13 +181,28 @@ def jack_offset(rig: Rig) -> float:
     return dot(force, jack_x) / float(force.sum()) - net.first_moment / net.total
 
 
+def jack_offset_y(rig: Rig) -> float:
+    """Return how far the jacks' resultant stands along y from the resultant that the pads must bring [m]."""
+    force = rig.jack_forces
+    jack_y = np.array([tree.jack.y for tree in rig.trees])
+    sums = rig.plan.target.net_plan.sums
+    return dot(force, jack_y) / float(force.sum()) - sums.first_y / sums.force
+
+
 def sum_residuals(rig: Rig, statics: Statics) -> tuple[float, float]:
-    """Return what is left of ΣF [of the jacks' force] and ΣFx [of that force times the span], pads against jacks."""
+    """Return what is left of ΣF [of the jacks' force] and of ΣFx and ΣFy [of that force times the span].
+
+    Pads against jacks; the moments as one vector's length.
+    """
     force, pads = rig.jack_forces, statics.pad_force
-    jack_x = np.array([tree.jack.x for tree in rig.trees])
     specimen = rig.plan.target.brief.specimen
     span, size = specimen.right - specimen.left, float(np.abs(force).sum())
-    # about the first jack, so that the place of the origin does not cost digits
-    about = jack_x[0]
-    moment = dot(pads, rig.pad_x - about) - dot(force, jack_x - about)
-    return abs(float(pads.sum() - force.sum())) / size, abs(moment) / (size * span)
+    moments = []
+    for pad, jack in (
+        (rig.pad_x, np.array([tree.jack.x for tree in rig.trees])),
+        (rig.pad_y, np.array([tree.jack.y for tree in rig.trees])),
+    ):
+        # about the first jack, so that the place of the origin does not cost digits
+        about = jack[0]
+        moments.append(dot(pads, pad - about) - dot(force, jack - about))
+    return abs(float(pads.sum() - force.sum())) / size, float(np.hypot(moments[0], moments[1])) / (size * span)

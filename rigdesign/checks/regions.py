@@ -7,14 +7,15 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from rigdesign.brief.model import Quantity
 from rigdesign.checks.model import Curves, RegionVerdict
-from rigdesign.checks.sampling import QUANTITIES
-from rigdesign.target.bands import Quantity
 from rigdesign.target.curve import Floats
 from rigdesign.target.model import Target
 
 USE_SLACK = 1e-9  # pads that the search puts exactly on the band must not fail by rounding
 WHOLE_SPAN = "whole span"
+WHOLE_WIDTH = "whole width"
+WHOLES = (WHOLE_SPAN, WHOLE_WIDTH)
 
 
 @dataclass(frozen=True)
@@ -51,19 +52,24 @@ def inside(curves: Curves, start_x: float, end_x: float) -> NDArray[np.bool_]:
     return np.asarray(after_start & before_end)
 
 
-def verdicts(target: Target, curves: Curves) -> tuple[RegionVerdict, ...]:
-    """Return a verdict for the whole span and then for each region, for shear and moment each.
+def verdicts(target: Target, curves: Curves, across: Curves | None = None) -> tuple[RegionVerdict, ...]:
+    """Return a verdict for the whole span and then for each region, for every quantity of the curves.
 
-    The whole span is held to the band in force at each station, regions included.
+    The whole span is held to the band in force at each station, regions included.  What is cut across comes last, over
+    the whole width.
     """
-    everywhere = np.ones(curves.x.size, bool)
-    low, high = float(curves.x[0]), float(curves.x[-1])
-    rows = [verdict(curves, quantity, everywhere, low, high, WHOLE_SPAN) for quantity in QUANTITIES]
+    rows = _whole(curves, WHOLE_SPAN)
     for region in target.brief.acceptance.regions:
         mask = inside(curves, region.start_x, region.end_x)
         start, end = region.start_x, region.end_x
-        rows += [verdict(curves, quantity, mask, start, end, region.name) for quantity in QUANTITIES if mask.any()]
-    return tuple(rows)
+        rows += [verdict(curves, quantity, mask, start, end, region.name) for quantity in curves.target if mask.any()]
+    return (*rows, *([] if across is None else _whole(across, WHOLE_WIDTH)))
+
+
+def _whole(curves: Curves, name: str) -> list[RegionVerdict]:
+    everywhere = np.ones(curves.x.size, bool)
+    low, high = float(curves.x[0]), float(curves.x[-1])
+    return [verdict(curves, quantity, everywhere, low, high, name) for quantity in curves.target]
 
 
 def verdict(

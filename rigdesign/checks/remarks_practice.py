@@ -30,7 +30,8 @@ FORCE_SLACK = 1e-9  # of the limit, for the same reason
 def practice_remarks(check: Check) -> Iterator[Finding]:
     """Yield the remarks of this stage, not numbered yet, in a fixed order."""
     yield from _pad_forces(check)
-    yield from _pad_places(check)
+    # in plan the stage "space" says where footprints may be
+    yield from () if check.rig.plan.target.brief.specimen.is_surface else _pad_places(check)
     yield from _levers(check)
     yield from _idle_pads(check)
     yield from _pushing(check)
@@ -158,6 +159,7 @@ def _levers(check: Check) -> Iterator[Finding]:
     rules = check.rig.plan.target.brief.levers
     pieces = [piece for tree in check.rig.trees for piece in tree.pieces]
     yield from _ratios([piece for piece in pieces if piece.kind == "lever"], rules.ratio_limit)
+    yield from _plates(check)
     yield from _sizes(pieces, rules)
     tiers = max((piece.tier for piece in pieces), default=0)
     if rules.tiers is not None and tiers > rules.tiers:
@@ -212,6 +214,28 @@ def _ratios(levers: list[Piece], limit: float) -> Iterator[Finding]:
             f"{high[worst]:.3g}",
             f"{USUAL_RATIO:.0f} by common practice",
             "a small error of the pivot's place moves much load on such a lever; drill it with care",
+        )
+
+
+def _plates(check: Check) -> Iterator[Finding]:
+    """Plates that hand one point much more than another: what a high ratio is to a lever."""
+    if not any(piece.kind == "plate" for tree in check.rig.trees for piece in tree.pieces):
+        return
+    from rigdesign.checks.surface.remarks import plate_fractions
+
+    fractions = plate_fractions(check)
+    high = {p: max(own) / min(own) for p, own in fractions.items() if min(own) > 0}
+    high = {piece: spread for piece, spread in high.items() if spread > USUAL_RATIO * (1 + FORCE_SLACK)}
+    if high:
+        worst = max(high, key=lambda piece: high[piece])
+        yield Finding(
+            "practice",
+            "note",
+            worst.name,
+            f"the plate's points share its load very unequally{_others(high, worst)}",
+            f"the largest share is {high[worst]:.3g} times the smallest",
+            f"{USUAL_RATIO:.0f} by common practice for levers",
+            "a small error of the pivot's place moves much load on such a plate; drill it with care",
         )
 
 
@@ -276,14 +300,20 @@ def _aim(check: Check) -> Iterator[Finding]:
     plan = check.rig.plan
     if plan.proof.method == NOT_PROVEN:
         return  # these pads strove for another target
-    rules = plan.target.brief.pads
+    rules, is_surface = plan.target.brief.pads, plan.target.brief.specimen.is_surface
+    share = "tributary share" if is_surface else "share of the curve"
     strove = {
         "closest": f"least band use first, then forces as even as {percent(rules.ease)} more band use allows",
-        "even": "forces as close to each pad's share of the curve as the bands allow",
+        "even": f"forces as close to each pad's {share} as the bands allow",
     }[rules.aim]
-    if rules.places == "free" and rules.aim == "closest" and plan.proof.band_use_found >= plan.proof.band_use:
+    if (
+        not is_surface
+        and rules.places == "free"
+        and rules.aim == "closest"
+        and plan.proof.band_use_found >= plan.proof.band_use
+    ):
         strove = "least band use; free places that follow one curve leave no choice of forces beyond that"
-    evenness = f"up to {percent(check.evenness)} of its share of the curve"
+    evenness = f"up to {percent(check.evenness)} of its {share}"
     yield Finding(
         "practice", "note", "pads", f'the aim "{rules.aim}" was {strove}', f"a pad's force is off by {evenness}"
     )

@@ -11,15 +11,17 @@ from rigdesign.checks.entry import layout
 from rigdesign.checks.geometry import leans
 from rigdesign.checks.measures import length
 from rigdesign.checks.model import Check, RegionVerdict
-from rigdesign.checks.regions import WHOLE_SPAN, inside, sides
+from rigdesign.checks.regions import WHOLES, inside, sides
 from rigdesign.checks.remedies import band_remedy, jack_remedy
 from rigdesign.checks.sampling import by_side
 from rigdesign.checks.statics import off_line
+from rigdesign.checks.surface.remarks import jack_offset_in_plan, plate_remarks, share_remarks
 from rigdesign.checks.text import also, of_quantity, percent
 from rigdesign.display import show
 from rigdesign.findings import Finding, Severity
 from rigdesign.target.bands import Band, bands
 from rigdesign.target.curve import Floats, Side
+from rigdesign.target.cuts import ACROSS
 from rigdesign.words import BAND_FLOOR, LOAD_CELL_FLOOR, SMALL_TARGET
 
 RESIDUAL_LIMIT = 1e-9  # statics of a few thousand pieces closes to 1e-12; more means that the solution is wrong
@@ -31,14 +33,24 @@ IN_LINE = 1e-6  # of a lever's length
 def statics_remarks(check: Check) -> Iterator[Finding]:
     """Yield the remarks of this stage, not numbered yet, in a fixed order."""
     yield from _residuals(check)
+    yield from plate_remarks(check) if _has_plates(check) else ()
     yield from _wrong_way(check)
     yield from _holes_off_line(check)
     yield from _leaning_links(check)
     yield from _bands_exceeded(check)
-    yield from _jack_offset(check)
+    yield from share_remarks(check)
+    yield from jack_offset_in_plan(check) if _is_surface(check) else _jack_offset(check)
     yield from _band_floor(check)
     yield from _below_cell(check)
     yield from _left_out(check)
+
+
+def _is_surface(check: Check) -> bool:
+    return check.rig.plan.target.brief.specimen.is_surface
+
+
+def _has_plates(check: Check) -> bool:
+    return any(piece.kind == "plate" for tree in check.rig.trees for piece in tree.pieces)
 
 
 def _remark(severity: Severity, where: str, text: str, value: str = "", limit: str = "", remedy: str = "") -> Finding:
@@ -76,7 +88,8 @@ def _wrong_way(check: Check) -> Iterator[Finding]:
             f"the pad would have to act against its jack, or carries nothing{others}",
             f"{percent(float(share[worst]))} of the jack's force",
             "above 0 %",
-            "drill the pivot of every lever between its end pins",
+            "drill the pivot of every lever between its end pins"
+            + (", that of every plate inside its triangle" if _has_plates(check) else ""),
         )
 
 
@@ -127,17 +140,18 @@ def _bands_exceeded(check: Check) -> Iterator[Finding]:
     """One remark for each row that is not accepted; the whole span only where no region already says the same."""
     failed = [row for row in check.regions if row.accepted is False]
     for row in failed:
-        said = any(r.quantity == row.quantity and r.use == row.use for r in failed if r.name != WHOLE_SPAN)
-        if row.name == WHOLE_SPAN and said:
+        said = any(r.quantity == row.quantity and r.use == row.use for r in failed if r.name not in WHOLES)
+        if row.name in WHOLES and said:
             continue
         yield _band_exceeded(check, row)
 
 
 def _band_exceeded(check: Check, row: RegionVerdict) -> Finding:
-    curves, quantity = check.curves, row.quantity
-    target = check.rig.plan.target
-    peak = target.moment_peak if quantity == "moment" else target.shear_peak
-    mask = np.ones(curves.x.size, bool) if row.name == WHOLE_SPAN else inside(curves, row.start_x, row.end_x)
+    quantity = row.quantity
+    curves, errors = check.curves_of(quantity), check.errors[quantity]
+    peak = errors.reference
+    words = f"the {errors.of}" if errors.of.startswith("peak") else errors.of
+    mask = np.ones(curves.x.size, bool) if row.name in WHOLES else inside(curves, row.start_x, row.end_x)
     rows = np.flatnonzero(mask)
     worst = int(rows[np.argmax(curves.use(quantity)[rows])])
     side = sides(curves, quantity)
@@ -145,13 +159,14 @@ def _band_exceeded(check: Check, row: RegionVerdict) -> Finding:
     size = float(side.under[worst] if is_under else side.over[worst])
     band = float(side.band_under[worst] if is_under else side.band_over[worst])
     word = "under-test" if is_under else "over-test"
+    at = show(float(curves.x[worst]), "length", unit="m")
     return Finding(
         "statics",
         "failure",
         row.name,
-        f"{word} of the {quantity} at {show(float(curves.x[worst]), 'length', unit='m')}: {row.use:.3g} times its band",
-        f"{of_quantity(size, quantity)}, {percent(size / peak)} of the peak target {quantity}",
-        f"{of_quantity(band, quantity)}, {percent(band / peak)} of the peak target {quantity}",
+        f"{word} of the {quantity} at {'y = ' if quantity in ACROSS else ''}{at}: {row.use:.3g} times its band",
+        f"{of_quantity(size, quantity)}, {percent(size / peak)} of {words}",
+        f"{of_quantity(band, quantity)}, {percent(band / peak)} of {words}",
         band_remedy(check, quantity, float(curves.x[worst]), size),
     )
 
@@ -179,8 +194,10 @@ def _jack_offset(check: Check) -> Iterator[Finding]:
 
 def _band_floor(check: Check) -> Iterator[Finding]:
     """Say where a band as asked for is narrower than the least that is judged."""
-    curves = check.curves
     for quantity, band in bands(check.rig.plan.target).items():
+        if quantity == "torsion":
+            continue  # its floor follows from the outline, and the target says where it applies
+        curves = check.curves_of(quantity)
         # a small target takes the wider side, so that a narrow one says nothing there
         large = np.abs(curves.target[quantity]) >= SMALL_TARGET * band.peak
         asked = np.where(large, by_side(partial(_narrower, band), curves.x, curves.outboard), np.inf)
@@ -213,10 +230,11 @@ def _below_cell(check: Check) -> Iterator[Finding]:
 
 
 def _left_out(check: Check) -> Iterator[Finding]:
+    plan = "links that pass pieces of other tiers, " if _is_surface(check) else ""
     yield _remark(
         "note",
         "rig",
-        "not checked: the rig's own weight at the pads, friction in the pins, the specimen's deflection and the swing "
-        "of links that comes with it, and the strength of levers, pins, links, pads and specimen",
+        f"not checked: {plan}the rig's own weight at the pads, friction in the pins, the specimen's deflection and the "
+        "swing of links that comes with it, and the strength of levers, pins, links, pads and specimen",
         remedy="have them checked by a licensed engineer, by the codes that hold locally, before it is built or loaded",
     )

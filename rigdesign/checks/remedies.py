@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
+from rigdesign.brief.model import Quantity
 from rigdesign.checks.model import Check
 from rigdesign.checks.text import NOT_PROVEN
 from rigdesign.display import show
-from rigdesign.target.bands import Quantity
+from rigdesign.target.cuts import ACROSS
 
 MUCH = 0.5  # of an error: what causes so much of it is the first thing to change
 
@@ -24,15 +25,16 @@ def jack_remedy(check: Check) -> str:
 
 
 def band_remedy(check: Check, quantity: Quantity, x: float, size: float) -> str:
-    """What would bring an error of `size` [N or N·m] at the station x [m] inside its band.
+    """What would bring an error of `size` [N or N·m] at a station [m] (x, or y for what is cut across) inside its band.
 
     More pads are of no use where the jack's place makes the error, nor beside a stretch where no pad may sit.
     """
     target = check.rig.plan.target
-    if quantity == "moment" and abs(check.jack_offset * target.net.total) > MUCH * size:
+    offset = {"moment": check.jack_offset, "torsion": check.jack_offset_y, "moment across": check.jack_offset_y}
+    if abs(offset.get(quantity, 0.0) * target.net.total) > MUCH * size:
         return f"the jack's place alone makes more than half of it; {jack_remedy(check)}"
     reach = target.brief.pads.length / 2 + target.brief.levers.drill_step
-    for low, high in target.brief.pads.keep_out:
+    for low, high in () if quantity in ACROSS else target.brief.pads.keep_out:
         if low - reach <= x <= high + reach:
             stretch = f"{show(low, 'length', unit='m')} to {show(high, 'length', unit='m')}"
             return f"the keep-out from {stretch} binds here: shorten it, take shorter pads beside it or a wider band"

@@ -5,25 +5,46 @@ rig = what the pads bring + the supports' answer to the pads + what gravity brin
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterable
 from dataclasses import dataclass
+from typing import Protocol
 
 import numpy as np
 from numpy.typing import NDArray
 
+from rigdesign.brief.model import Quantity, Specimen
 from rigdesign.checks.model import Curves
 from rigdesign.target import internal
-from rigdesign.target.bands import Band, Quantity, bands
+from rigdesign.target.bands import Band, bands
 from rigdesign.target.curve import Floats, Side
+from rigdesign.target.cuts import ACROSS, ALONG
 from rigdesign.target.model import Target
 from rigdesign.words import SMALL_TARGET
 
-QUANTITIES: tuple[Quantity, ...] = ("shear", "moment")
+ON_LINES: tuple[Quantity, ...] = ("shear", "moment")
+"""What is cut of a specimen without an outline."""
+
+
+def along_span(specimen: Specimen) -> tuple[Quantity, ...]:
+    """Return the quantities of cuts along the span: torsion too where the specimen is a surface."""
+    return ALONG if specimen.is_surface else ON_LINES
+
+
+def across_span(specimen: Specimen) -> tuple[Quantity, ...]:
+    """Return the quantities of cuts square to y: none but on surfaces."""
+    return ACROSS if specimen.is_surface else ()
+
+
+class Loads(Protocol):
+    """What acts on the specimen in the rig."""
+
+    def value(self, quantity: Quantity, at: Floats, side: Side) -> Floats:
+        """A quantity of the rig [N or N·m] at stations (n,), reactions included."""
 
 
 @dataclass(frozen=True)
 class RigLoads:
-    """Everything that acts on the specimen: pads and the supports' answer to them as point loads, and gravity.
+    """All that acts on a specimen along a line: pads and the supports' answer to them as point loads, and gravity.
 
     `at` [m], `force` [N] are (n_points,), pads first.
     """
@@ -42,9 +63,13 @@ class RigLoads:
         gravity = internal.moment(self.target.gravity, self.target.brief.specimen, x)
         return internal.points_beyond(x, self.at, self.force, "inboard")[1] + gravity
 
+    def value(self, quantity: Quantity, at: Floats, side: Side) -> Floats:
+        """Shear or moment at stations (n,)."""
+        return self.moment(at) if quantity == "moment" else self.shear(at, side)
+
 
 def rig_loads(target: Target, pad_x: Floats, pad_force: Floats) -> RigLoads:
-    """Return what pads of `pad_force` (n_pads,) [N] at `pad_x` (n_pads,) [m] do to the target's specimen."""
+    """Return what pads of `pad_force` (n_pads,) [N] at `pad_x` (n_pads,) [m] do to a specimen along a line."""
     total, first_moment = float(pad_force.sum()), float((pad_force * pad_x).sum())
     support_x, support_force = internal.reactions(target.brief.specimen, total, first_moment)
     return RigLoads(target, np.concatenate([pad_x, support_x]), np.concatenate([pad_force, support_force]))
@@ -52,23 +77,39 @@ def rig_loads(target: Target, pad_x: Floats, pad_force: Floats) -> RigLoads:
 
 @dataclass(frozen=True)
 class Sampler:
-    """Target, rig and bands, to be asked at any stations."""
+    """Target, rig and bands of some quantities, to be asked at any stations.
+
+    `jump` (k,) [m] are the stations where one of the quantities or a band may jump, the first and last station among
+    them; `own` [m] those of pads and supports; `breaks` (m,) [m] those where a curve may kink.  Cuts at jumps stand
+    `near` [m] off them.
+    """
 
     target: Target
-    rig: RigLoads
+    rig: Loads
     bands: dict[Quantity, Band]
+    quantities: tuple[Quantity, ...]
+    jump: Floats
+    own: Floats
+    breaks: Floats
+    near: float = 0.0
 
-    def rows(self, x: Floats, outboard: NDArray[np.bool_]) -> Curves:
-        """Return everything at stations x (n,), on the sides `outboard` (n,)."""
-        widths = {q: self._widths(q, x, outboard) for q in QUANTITIES}
+    def rows(self, x: Floats, outboard: NDArray[np.bool_], only: tuple[Quantity, ...] | None = None) -> Curves:
+        """Return everything, or some quantities `only`, at stations x (n,), on the sides `outboard` (n,)."""
+        wanted = only or self.quantities
+        widths = {q: self._widths(q, x, outboard) for q in wanted}
         return Curves(
             x=x,
             outboard=outboard,
-            target={"shear": by_side(self.target.shear, x, outboard), "moment": self.target.moment(x)},
-            rig={"shear": by_side(self.rig.shear, x, outboard), "moment": self.rig.moment(x)},
-            below={q: widths[q][0] for q in QUANTITIES},
-            above={q: widths[q][1] for q in QUANTITIES},
+            target={q: self._values(self.target, q, x, outboard) for q in wanted},
+            rig={q: self._values(self.rig, q, x, outboard) for q in wanted},
+            below={q: widths[q][0] for q in wanted},
+            above={q: widths[q][1] for q in wanted},
         )
+
+    def _values(self, loads: Loads, quantity: Quantity, x: Floats, outboard: NDArray[np.bool_]) -> Floats:
+        if quantity == "moment" and not self.target.brief.specimen.is_surface:
+            return loads.value(quantity, x, "outboard")  # along a line no moment jumps
+        return by_side(lambda at, side: loads.value(quantity, at, side), x, outboard)
 
     def _widths(self, quantity: Quantity, x: Floats, outboard: NDArray[np.bool_]) -> tuple[Floats, Floats]:
         below, above = np.full(x.shape, np.inf), np.full(x.shape, np.inf)
@@ -79,9 +120,31 @@ class Sampler:
         return below, above
 
 
-def sampler(target: Target, pad_x: Floats, pad_force: Floats) -> Sampler:
-    """Return a sampler of the target and of pads (n_pads,) [m], [N] on its specimen."""
-    return Sampler(target, rig_loads(target, pad_x, pad_force), bands(target))
+def sampler(target: Target, pad_x: Floats, pad_force: Floats, pad_y: Floats | None = None) -> Sampler:
+    """Return a sampler along the span of the target and of pads (n_pads,) [m], [N] on its specimen.
+
+    `pad_y` [m] counts on surfaces alone, None for every y = 0.
+    """
+    if target.brief.specimen.is_surface:
+        from rigdesign.checks.surface.stations import sampler_in_plan
+
+        y = np.zeros(pad_x.shape) if pad_y is None else pad_y
+        return sampler_in_plan(target, pad_x, y, pad_force, along_span(target.brief.specimen))
+    judged: dict[Quantity, Band] = {**bands(target)}
+    loads = rig_loads(target, pad_x, pad_force)
+    breaks = np.concatenate([target.total.breaks, target.gravity.breaks])
+    return Sampler(target, loads, judged, ON_LINES, jumps(target, loads.at, judged.values()), loads.at, breaks)
+
+
+def jumps(target: Target, at: Floats, judged: Iterable[Band]) -> Floats:
+    """Return the stations (k,) where V or a band may jump: pads and supports `at`, point loads, ends of regions."""
+    points = [curve.points[0] for curve in (target.total, target.gravity, target.net)]
+    edges = [band.edges for band in judged]
+    specimen = target.brief.specimen
+    ends = np.array([specimen.left, specimen.right])
+    every = np.unique(np.concatenate([at, *points, *edges, ends]))
+    low, high = min(specimen.left, at.min()), max(specimen.right, at.max())
+    return np.asarray(every[(every >= low) & (every <= high)])
 
 
 def by_side(function: Callable[[Floats, Side], Floats], x: Floats, outboard: NDArray[np.bool_]) -> Floats:
@@ -100,5 +163,5 @@ def _sides(outboard: NDArray[np.bool_]) -> tuple[tuple[NDArray[np.bool_], Side],
 def local_errors(rows: Curves, quantity: Quantity, peak: float) -> Floats:
     """Return |error| over the local |target|, (n_stations,), zero where that is below 5 % of `peak` [N or N·m]."""
     size = np.abs(rows.target[quantity])
-    counts = size >= SMALL_TARGET * peak
+    counts = (size >= SMALL_TARGET * peak) & (size > 0)
     return np.where(counts, np.abs(rows.error(quantity)) / np.where(counts, size, 1.0), 0.0)

@@ -3,11 +3,19 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
+from typing import Literal
 
-from rigdesign.display import show
-from rigdesign.target.bands import Quantity
+from rigdesign.brief.model import Quantity
+from rigdesign.display import System, show
+from rigdesign.target.cuts import ACROSS
 
-UNIT_KIND: dict[Quantity, str] = {"shear": "force", "moment": "moment"}
+UNIT_KIND: dict[Quantity, Literal["force", "moment"]] = {
+    "shear": "force",
+    "moment": "moment",
+    "torsion": "moment",
+    "shear across": "force",
+    "moment across": "moment",
+}
 MOST_NAMES = 8
 NOT_PROVEN = "nothing is proven for a target that the rig was not designed for; 0 is the trivial bound"
 """The proof's method where a rig is checked against another target than its own."""
@@ -25,8 +33,18 @@ def percent(fraction: float) -> str:
 
 
 def of_quantity(value: float, quantity: Quantity) -> str:
-    """Shear [N] or moment [N·m] with its unit."""
+    """Shear [N], moment or torsion [N·m] with its unit."""
     return show(value, UNIT_KIND[quantity])
+
+
+def station(at: float, quantity: Quantity, system: System = "SI") -> str:
+    """A station of a quantity's cuts, named x or y.
+
+    >>> station(1.25, "torsion"), station(-0.5, "shear across")
+    ('x = 1.250 m', 'y = −0.500 m')
+    """
+    name = "y" if quantity in ACROSS else "x"
+    return f"{name} = {show(at, 'length', system, unit='m' if system == 'SI' else None)}"
 
 
 def listed(names: Iterable[str]) -> str:
