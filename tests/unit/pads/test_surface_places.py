@@ -206,7 +206,7 @@ def test_nearest_places_are_allowed_and_nothing_allowed_is_nearer(brief: Brief) 
         places = np.column_stack(scattered(30000, 4))
     places = places[room.allowed(places[:, 0], places[:, 1])]
     brute = np.hypot(x[:, None] - places[:, 0], y[:, None] - places[:, 1]).min(axis=1)
-    # 0.12 % of the edge, 36 µm, may be lost at a corner that the edge rounds; the next place of brute force is up to 3 cm off
+    # 0.12 % of the edge, 36 µm, may be lost at a corner that the edge rounds; brute force is up to 3 cm coarse
     away = np.hypot(x - near_x, y - near_y)
     assert (away - brute).max() < 4e-5
     assert (brute - away).max() < 0.03
