@@ -163,10 +163,10 @@ def _fixed(brief: Brief, count: int) -> Refusal | None:
     if not clash.size:
         return None
     a, b = clash[0]
-    more = f", and {len(clash) // 2 - 1} more pairs" if len(clash) > 2 else ""
+    more = f"; so are those of {counted(len(clash) // 2 - 1, 'other pair')}" if len(clash) > 2 else ""
     return Refusal(
         "pads",
-        f"the footprints of pads {a + 1} and {b + 1} overlap or stand closer than the gap{more}",
+        f"the footprints of pads {a + 1} and {b + 1} are closer than the gap, or overlap{more}",
         limit=f"{_footprint(brief)}, gap {show(brief.pads.gap, 'length')}",
         best=f"pad {a + 1} at {place_words(x[a], y[a])}, pad {b + 1} at {place_words(x[b], y[b])}",
         remedy="move one of them, or make the footprint or the gap smaller",

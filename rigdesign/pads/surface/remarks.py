@@ -54,13 +54,12 @@ def _largest_about(target: Target, line: OneLine) -> tuple[float, float]:
     specimen, seen = target.brief.specimen, target.net_plan.along(ALONG_X)
     slope = line.a_y / line.a_x
     at = np.union1d(np.linspace(specimen.left, specimen.right, STATIONS), seen.force.breaks)
-    largest, where = 0.0, specimen.left
+    # ∫ (y − y_line(s)) dF(s) with y_line(s) = y_line(x) + slope (s − x); the same at neighbours but for rounding
     sides: tuple[Side, ...] = ("inboard", "outboard")
+    off = np.zeros(at.shape)
     for side in sides:
-        beyond = seen.force.force_beyond(at, side)
-        # ∫ (y − y_line(s)) dF(s) with y_line(s) = y_line(x) + slope (s − x)
-        on_line = (line.y + slope * (at - line.x)) * beyond + slope * seen.force.moment_beyond(at)
-        off = np.abs(seen.turning.force_beyond(at, side) - on_line)
-        if off.max() > largest:
-            largest, where = float(off.max()), float(at[np.argmax(off)])
-    return largest, where
+        on_line = (line.y + slope * (at - line.x)) * seen.force.force_beyond(at, side)
+        on_line = on_line + slope * seen.force.moment_beyond(at)
+        off = np.maximum(off, np.abs(seen.turning.force_beyond(at, side) - on_line))
+    largest = float(off.max())
+    return largest, float(at[np.argmax(off >= largest * (1 - NO_TORSION))])
