@@ -4,17 +4,18 @@ from __future__ import annotations
 
 import numpy as np
 
-from rigdesign.brief.model import Brief
+from rigdesign.brief.model import Brief, Quantity
 from rigdesign.display import show
 from rigdesign.errors import BriefError
 from rigdesign.findings import numbered
 from rigdesign.target import internal
 from rigdesign.target.curve import Curve
-from rigdesign.target.line_load import LineLoad
-from rigdesign.target.loads import gravity_curve, load_curve
+from rigdesign.target.cuts import ACROSS, ALONG
 from rigdesign.target.model import Peak, Target
 from rigdesign.target.peaks import peak, stretches
-from rigdesign.target.plan_load import ALONG_X
+from rigdesign.target.plan_load import ALONG_X, PlanLoad
+from rigdesign.target.plan_loads import gravity_load, plan_load
+from rigdesign.target.plan_stations import largest
 from rigdesign.target.plan_sum import PlanSum
 from rigdesign.target.remarks import remarks
 from rigdesign.target.sums import NO_CURVE
@@ -32,41 +33,39 @@ def build_target(brief: Brief) -> Target:
     Raises
     ------
     BriefError
-        If the loads add up to nothing or bend nothing, or one of them cannot be made into a curve (see `load_curve`).
+        If the loads add up to nothing or bend nothing, or one of them cannot be made into a load (see `plan_load`).
 
     Notes
     -----
-    The curves are exact: closed forms for the shapes, piecewise polynomials for tables.  The peaks are found to
-    rounding, about 1e-12 of their value.
+    The curves are exact: closed forms for the shapes, piecewise polynomials for tables and, to 1e-9 of what a map's
+    pressures add up to, for pressures.  The peaks are found to rounding, about 1e-12 of their value.
     """
-    axis = brief.specimen.reference_axis
-    total_plan = PlanSum(
-        tuple(LineLoad(load_curve(load, brief.specimen), axis) for load in brief.loads), (1.0,) * len(brief.loads)
-    )
+    specimen = brief.specimen
+    total_plan = PlanSum(tuple(plan_load(load, specimen) for load in brief.loads), (1.0,) * len(brief.loads))
     total = total_plan.along(ALONG_X).force
     _refuse_nothing(total)
-    gravity = gravity_curve(brief)
-    gravity_plan = LineLoad(gravity, axis)
-    net_plan = total_plan if gravity is NO_CURVE else PlanSum((total_plan, gravity_plan), (1.0, -1.0))
-    net = net_plan.along(ALONG_X).force
-    shear, moment = (Peak(*found) for found in _peaks(brief, total))
-    _refuse_unbent(brief, total, moment.value)
+    gravity_plan = gravity_load(brief)
+    gravity = gravity_plan.curve
+    net_plan: PlanLoad = total_plan if gravity is NO_CURVE else PlanSum((total_plan, gravity_plan), (1.0, -1.0))
+    peaks = _peaks(brief, total_plan)
+    _refuse_unbent(brief, total, peaks["moment"].value)
     return Target(
         brief=brief,
         total_plan=total_plan,
         gravity_plan=gravity_plan,
         net_plan=net_plan,
-        peaks={"shear": shear, "moment": moment, "torsion": Peak(0.0, brief.specimen.left)},
-        findings=numbered(remarks(brief, total, gravity, net)),
+        peaks=peaks,
+        findings=numbered(remarks(brief, total, gravity, net_plan.along(ALONG_X).force)),
     )
 
 
 def _refuse_nothing(total: Curve) -> None:
     """Raise BriefError where the loads cancel, or come to a size beyond all reason: there is no place for a jack."""
     # between the breaks as well: a load that changes sign in a stretch may cancel itself there
-    x = np.union1d(total.breaks, np.linspace(total.breaks[0], total.breaks[-1], _LOOKED_AT))
-    largest = float(np.abs(total.force_beyond(x, "inboard")).max(initial=0.0))
-    if abs(total.total) <= _CANCELLED * largest:
+    breaks = total.breaks
+    x = np.union1d(breaks, np.linspace(breaks[0], breaks[-1], _LOOKED_AT)) if breaks.size else breaks
+    most = float(np.abs(total.force_beyond(x, "inboard")).max(initial=0.0))
+    if abs(total.total) <= _CANCELLED * most:
         raise BriefError(
             "the loads add up to nothing, so that no jack can bring them",
             where="[[load]]",
@@ -74,11 +73,11 @@ def _refuse_nothing(total: Curve) -> None:
             limit="a total other than zero",
             remedy="check their totals and signs; loads of both signs need a rig for each sign",
         )
-    if not SMALLEST_TOTAL <= largest <= LARGEST_NUMBER:
+    if not SMALLEST_TOTAL <= most <= LARGEST_NUMBER:
         raise BriefError(
             "the loads are of a size that no rig can bring",
             where="[[load]]",
-            value=f"{largest:.3g} N",
+            value=f"{most:.3g} N",
             limit=f"{SMALLEST_TOTAL:g} N to {LARGEST_NUMBER:g} N",
             remedy="check their units and times",
         )
@@ -98,12 +97,22 @@ def _refuse_unbent(brief: Brief, total: Curve, moment_peak: float) -> None:
     )
 
 
-def _peaks(brief: Brief, total: Curve) -> tuple[tuple[float, float], tuple[float, float]]:
-    """Largest |V| and |M| of the whole target with their stations."""
+def _peaks(brief: Brief, load: PlanLoad) -> dict[Quantity, Peak]:
+    """The largest magnitude of each internal load of the whole target, with its station."""
+    specimen = brief.specimen
+    if not specimen.is_surface:
+        return {**_line_peaks(brief, load.along(ALONG_X).force), "torsion": Peak(0.0, specimen.left)}
+    return {quantity: Peak(*largest(load, specimen, quantity)) for quantity in (*ALONG, *ACROSS)}
+
+
+def _line_peaks(brief: Brief, total: Curve) -> dict[Quantity, Peak]:
+    """Largest |V| and |M| of a line rig's target, by the shortest road."""
     specimen = brief.specimen
     edges = stretches(total.breaks, specimen.left, specimen.right, np.array(specimen.supports))
-    return (
-        peak(lambda x, side: internal.shear(total, specimen, x, side), total.running, edges),
-        peak(lambda x, side: internal.moment(total, specimen, x),
-             lambda x, side: internal.shear(total, specimen, x, side), edges),
-    )  # fmt: skip
+    shear = peak(lambda x, side: internal.shear(total, specimen, x, side), total.running, edges)
+    moment = peak(
+        lambda x, side: internal.moment(total, specimen, x),
+        lambda x, side: internal.shear(total, specimen, x, side),
+        edges,
+    )
+    return {"shear": Peak(*shear), "moment": Peak(*moment)}

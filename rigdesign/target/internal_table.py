@@ -109,6 +109,25 @@ def stepped_curve(load: InternalLoad) -> Curve:
     return _with_points(load, steps, np.zeros(steps.start.size))
 
 
+def torque_curve(load: InternalLoad) -> Curve:
+    """Return the torque that has the table's torsion at its rows, spread evenly between them [N·m/m, N·m].
+
+    A jump of T between two rows at one x, and a torsion left at the last row, are couples.  Raises BriefError as
+    `internal_curve` does.
+    """
+    steps = steps_of(load)
+    rows = np.flatnonzero(np.diff(load.x) > 0)
+    even = (load.torsion[rows] - load.torsion[rows + 1]) / steps.width
+    running = Polynomials(np.append(steps.start, steps.end[-1]), even, np.zeros(even.size), np.zeros(even.size))
+    same = np.flatnonzero(np.diff(load.x) == 0)
+    x = np.append(load.x[same], load.x[-1])
+    couple = np.append(load.torsion[same] - load.torsion[same + 1], load.torsion[-1])
+    real = couple != 0
+    if not real.any():
+        return running
+    return Combined((running, Points.gathered(x[real], couple[real])), (1.0, 1.0))
+
+
 def _with_points(load: InternalLoad, steps: Steps, swing: Floats) -> Curve:
     """The running load P/h ∓ swing from row to row, and the point loads of the table."""
     running = Polynomials(

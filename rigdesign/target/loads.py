@@ -6,6 +6,7 @@ import numpy as np
 
 from rigdesign.brief.model import (
     Brief,
+    InertiaLoad,
     InternalLoad,
     Load,
     PointLoads,
@@ -27,7 +28,9 @@ _SAME_STATION = 1e-9
 
 
 def load_curve(load: Load, specimen: Specimen) -> Curve:
-    """Return the curve of one load, its `times` included.
+    """Return the curve over x of one load that acts along a line, its `times` included.
+
+    Torques and couples bring no force; a pressure map is no such load (`plan_loads`).
 
     Raises
     ------
@@ -42,11 +45,13 @@ def _unscaled(load: Load, specimen: Specimen) -> Curve:
     if isinstance(load, ShapeLoad):
         return shape_curve(load)
     if isinstance(load, TableLoad):
-        return _table(load.x, load.load, load.where)
+        return table_curve(load.x, load.load, load.where)
     if isinstance(load, InternalLoad):
         return internal_curve(load)
     if isinstance(load, PointLoads):
         return Points.gathered(load.x, load.force)
+    if not isinstance(load, InertiaLoad):
+        return NO_CURVE
     if specimen.weight is None:
         raise BriefError("an inertia load needs the specimen's weight, and none is given", where=load.where,
                          remedy="name the weight table in [specimen] weight")  # fmt: skip
@@ -57,7 +62,7 @@ def mass_curve(weight: Weight) -> Curve:
     """Return the specimen's mass as a curve: kg/m for N/m, kg for N; its total is the mass [kg]."""
     parts: list[Curve] = []
     if weight.x.size:
-        parts.append(_table(weight.x, weight.mass, "[specimen] weight"))
+        parts.append(table_curve(weight.x, weight.mass, "[specimen] weight"))
     if weight.point_x.size:
         parts.append(Points.gathered(weight.point_x, weight.point_mass))
     return Combined(tuple(parts), (1.0,) * len(parts))
@@ -71,7 +76,8 @@ def gravity_curve(brief: Brief) -> Curve:
     return Combined((mass_curve(specimen.weight),), (specimen.gravity * STANDARD_GRAVITY,))
 
 
-def _table(x: Floats, load: Floats, where: str) -> Curve:
+def table_curve(x: Floats, load: Floats, where: str) -> Curve:
+    """Return the curve straight between rows; raise BriefError where there are no two stations."""
     if np.unique(x).size < 2:
         raise BriefError("a table along the span needs two stations at least", where=where,
                          value=f"{np.unique(x).size} station", remedy="add its other rows")  # fmt: skip
@@ -123,7 +129,7 @@ def _chord(load: ShapeLoad, total: float) -> Curve:
     """The chord between the load's ends as a running load that carries the total."""
     a, b = load.start_x, load.end_x
     slack = _SAME_STATION * (b - a)
-    whole = _table(load.chord_x, load.chord, load.where)
+    whole = table_curve(load.chord_x, load.chord, load.where)
     first, last = load.chord_x[0], load.chord_x[-1]
     if first > a + slack or last < b - slack:
         raise BriefError("the chord table does not cover its load", where=load.where,

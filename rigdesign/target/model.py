@@ -11,6 +11,7 @@ from rigdesign.brief.model import Brief, Quantity
 from rigdesign.findings import Finding
 from rigdesign.target.curve import Curve, Floats, Side
 from rigdesign.target.plan_load import ALONG_X, PlanLoad, loads_at
+from rigdesign.target.plan_sum import PlanSum
 
 
 class Peak(NamedTuple):
@@ -24,16 +25,16 @@ class Peak(NamedTuple):
 class Target:
     """What the specimen must feel (`total_plan`), what gravity already brings, and what the pads bring (`net_plan`).
 
-    net = total − gravity.  Without a `weight` in the brief gravity is no load at all.  `peaks` holds the largest
-    magnitudes of the total's internal loads: shear, moment and torsion anywhere on the span and, on a surface, shear
-    and moment across.  `findings` are numbered.
+    `total_plan` has one part for each [[load]], in order.  net = total − gravity; without a `weight` in the brief
+    gravity is no load at all.  `peaks` holds the largest magnitudes of the total's internal loads: shear, moment and
+    torsion anywhere on the span and, on a surface, shear and moment across.  `findings` are numbered.
 
     `total`, `gravity` and `net` are the same loads as curves along the span, whatever their y: on a line rig they say
     everything.
     """
 
     brief: Brief
-    total_plan: PlanLoad
+    total_plan: PlanSum
     gravity_plan: PlanLoad
     net_plan: PlanLoad
     peaks: Mapping[Quantity, Peak]
