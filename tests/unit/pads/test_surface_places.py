@@ -216,6 +216,28 @@ def test_nearest_places_are_allowed_and_nothing_allowed_is_nearer(brief: Brief) 
     np.testing.assert_array_equal(near_x[kept], x[kept])
 
 
+def test_nothing_is_allowed_within_a_wide_keep_out() -> None:
+    hatch = outline((0.4, 0.2), (1.6, 0.2), (1.6, 0.8), (0.4, 0.8))
+    room = Room(surface_brief(PLATE, pads={"length": 0.1, "width": 0.1, "keep_out_areas": (hatch,)}))
+    near_x, near_y = room.nearest(array([1.0, 1.5]), array([0.55, 0.45]))
+    np.testing.assert_allclose([near_x, near_y], [[1.0, 1.65], [0.85, 0.45]], atol=4e-9)
+    # 1.9 × 0.9 m of places less 1.3 × 0.7 m about the hatch
+    assert room.area.area == pytest.approx(1.9 * 0.9 - 1.3 * 0.7, rel=1e-6)
+
+
+def test_the_nearest_place_keeps_the_edge_from_a_corner_that_points_inward() -> None:
+    """Point pads 0.3 m from a notch's tip: places about it lie on an arc, which the area draws by its chords."""
+    notched = outline((0, 0), (2, 0), (2, 1), (1.2, 1), (1.0, 0.5), (0.8, 1), (0, 1))
+    room = Room(surface_brief(notched, pads={"length": 0.0, "edge": 0.3}))
+    angle = np.linspace(-2.3, -0.8, 40)
+    x, y = room.nearest(1.0 + 0.29 * np.cos(angle), 0.5 + 0.15 * np.sin(angle))
+    assert room.allowed(x, y).all()
+    away = np.hypot(x - 1.0, y - 0.5)[y < 0.4]
+    assert away.size > 10
+    # the tangents that stand for the arc are at most 0.24 % further off than it
+    assert away.max() < 0.3 * 1.0025
+
+
 def test_candidates_on_a_row_are_even_and_reach_its_ends() -> None:
     keep = {"keep_out": ((1.0, 1.1),), "rows": (line((0.0, 0.2), (2.0, 0.6)),)}
     brief = surface_brief(PLATE, pads={"length": 0.2, "width": 0.1, **keep})
@@ -270,6 +292,18 @@ def test_most_that_fit_counts_strips_and_rows() -> None:
     assert most_that_fit(surface_brief(PLATE, pads={**plate, **row})) == 5
     assert most_that_fit(surface_brief(PLATE, pads={**plate, "width": 1.2})) == 0
     assert most_that_fit(surface_brief(PLATE, pads={"length": 0.0, "gap": 0.0})) is None
+
+
+def test_pads_that_pass_at_a_corner_are_not_forgotten() -> None:
+    """Two pads at opposite corners, √(0.75² + 0.75²) of the gap apart: more than the gap, on a plate too small else."""
+    small = outline((0.0, 0.0), (0.46, 0.0), (0.46, 0.26), (0.0, 0.26))
+    brief = surface_brief(small, pads={"length": 0.2, "width": 0.1, "gap": 0.08})
+    x, y = array([0.1, 0.36]), array([0.05, 0.21])
+    assert allowed(brief, x, y).all()
+    assert compatible(brief, x, y).all()
+    bound = most_that_fit(brief)
+    assert bound is not None
+    assert bound >= 2
 
 
 def test_nobody_packs_more_than_most_that_fit(brief: Brief) -> None:
