@@ -17,6 +17,9 @@ LOAD_CELL_FLOOR = 0.0025
 BAND_FLOOR = 0.0005
 """No band is narrower than this fraction of the peak of the target's curve."""
 
+TORSION_ARM = 0.01
+"""No torsion band is narrower than the target's resultant at this part of the outline's mean width."""
+
 SMALL_TARGET = 0.05
 """Below this fraction of the target's peak the wider side of a band holds for both."""
 

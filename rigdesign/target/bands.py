@@ -1,9 +1,10 @@
-"""The accepted error of V and M as numbers along the span.
+"""The accepted error of V, M and T as numbers along the span, and on a surface of V and M across it.
 
 A band is asked for as a per cent of the peak, of the local value, or as a quantity; here it becomes two widths at
 every station: how far the error may go below zero and above.  Errors are rig − target; "under" means that the rig's
 magnitude is smaller, so the sides change places where the target is negative.  Where |target| is below 5 % of its
-peak the wider side holds for both; no width is below 0.05 % of the peak.  Where nothing is asked the width is infinite.
+peak the wider side holds for both; no width is below 0.05 % of the peak, and none on torsion below the resultant times
+1 % of the outline's mean width.  Where nothing is asked the width is infinite.
 """
 
 from __future__ import annotations
@@ -11,18 +12,17 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
-from typing import Literal
 
 import numpy as np
 from numpy.typing import NDArray
 
-from rigdesign.brief.model import Acceptance, BandRule, Region
+from rigdesign.brief.model import Acceptance, BandRule, Quantity, Region
 from rigdesign.target.curve import Floats, Side
+from rigdesign.target.cuts import ACROSS
 from rigdesign.target.model import Target
-from rigdesign.target.peaks import crossings, stretches
-from rigdesign.words import BAND_FLOOR, SMALL_TARGET
-
-Quantity = Literal["shear", "moment"]
+from rigdesign.target.peaks import crossings
+from rigdesign.target.plan_stations import smooth_stretches
+from rigdesign.words import BAND_FLOOR, SMALL_TARGET, TORSION_ARM
 
 
 @dataclass(frozen=True)
@@ -30,7 +30,8 @@ class Band:
     """Band of one quantity.  `peak` is the largest |target| [N or N·m]; `value(x, side)` gives the target (n,).
 
     `stretches` (k,) [m] are the ends of the specimen and, between them, the stations where the target's curve jumps or
-    kinks.  A region that reaches an end of the specimen holds on both sides of it.
+    kinks; across the span they are places y.  A region that reaches an end of the specimen holds on both sides of it.
+    `least` is the least width [N or N·m].
     """
 
     quantity: Quantity
@@ -38,6 +39,7 @@ class Band:
     acceptance: Acceptance
     value: Callable[[Floats, Side], Floats]
     stretches: Floats
+    least: float
 
     @property
     def is_judged(self) -> bool:
@@ -81,8 +83,8 @@ class Band:
         below, above = np.where(negative, over, under), np.where(negative, under, over)
         small = np.abs(target) < SMALL_TARGET * self.peak
         wider = np.maximum(below, above)
-        floor = BAND_FLOOR * self.peak
-        return (np.maximum(np.where(small, wider, below), floor), np.maximum(np.where(small, wider, above), floor))
+        below, above = np.where(small, wider, below), np.where(small, wider, above)
+        return np.maximum(below, self.least), np.maximum(above, self.least)
 
     def under_over(self, x: Floats, side: Side) -> tuple[Floats, Floats]:
         """The widths asked for, under and over, before the rules on small targets and the floor: (n,) each."""
@@ -112,10 +114,25 @@ class Band:
 
 
 def bands(target: Target) -> dict[Quantity, Band]:
-    """Return the bands of the target's shear and moment."""
-    accept, specimen = target.brief.acceptance, target.brief.specimen
-    ends = stretches(target.total.breaks, specimen.left, specimen.right, np.array(specimen.supports))
-    return {
-        "moment": Band("moment", target.moment_peak, accept, lambda x, side: target.moment(x), ends),
-        "shear": Band("shear", target.shear_peak, accept, lambda x, side: target.shear(x, side), ends),
-    }
+    """Return the bands of the target's moment and shear and, on a surface, of its torsion, and of both across."""
+    quantities: tuple[Quantity, ...] = ("moment", "shear")
+    if target.brief.specimen.is_surface:
+        quantities = ("moment", "shear", "torsion", *ACROSS)
+    return {quantity: _band(target, quantity) for quantity in quantities}
+
+
+def _band(target: Target, quantity: Quantity) -> Band:
+    def value(at: Floats, side: Side) -> Floats:
+        return target.value(quantity, at, side)
+
+    specimen, peak = target.brief.specimen, target.peaks[quantity].value
+    least = BAND_FLOOR * peak
+    if quantity == "torsion":
+        least = max(least, torsion_least(target))
+    ends = smooth_stretches(target.total_plan, specimen, quantity)
+    return Band(quantity, peak, target.brief.acceptance, value, ends, least)
+
+
+def torsion_least(target: Target) -> float:
+    """Return the least width of a torsion band that follows from the outline [N·m]; 0 on a line rig."""
+    return abs(target.resultant) * TORSION_ARM * target.brief.specimen.mean_width
