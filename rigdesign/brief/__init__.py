@@ -13,6 +13,8 @@ a `Brief` (`rigdesign.brief.model`): validated, in SI units, frozen, tables read
     context    checks that several parts share
     specimen   [specimen], with its weight
     loads      [[load]]
+    pads       [pads]
+    surface    all that is said in plan: outline, axis, places, pressure maps
     build      everything else that concerns several keys at once
     read       all of it in order
     describe   the JSON Schema
@@ -21,14 +23,19 @@ What is decided here, where a file could be read in two ways:
 
 - A quantity is one number and one unit in a string; a fraction is a percentage; `lb` and `kg` are masses, `lbf` and
   `kgf` forces.
-- A load is one of shape, table, internal, forces, point, inertia.  A linear shape has `start` and `end` and no total,
-  every other shape a total that is not zero.
-- A table has exactly its own columns, in any order, and maybe one named "note".  Rows are in order of x.  Two rows at
-  one x are a jump in running loads, masses per length, chords and internal loads; among point loads, point masses,
-  hard points and pads they are an error.
+- An outline makes it a plan rig; without one, every key and column that only plan rigs have is an error.
+- A load is one of shape, table, internal, forces, point, inertia, pressure, torque, couple.  A linear shape has
+  `start` and `end` and no total, every other shape a total that is not zero.
+- A table has exactly its own columns, in any order, and maybe one named "note".  Rows are in order of x; those with x
+  and y in any order.  Two rows at one x are a jump in running loads, running torques, masses per length, chords and
+  internal loads; among point loads, point masses, hard points and pads they are an error, and in plan two rows at one
+  place.
 - Internal tables counted from the tip are in order of that count and are turned round: of the two rows of a jump the
   outboard one, met first from the tip, stands first in the file.  Signs stay as given.  A torsion column may be there
-  if it holds zeros.
+  if it holds zeros, and on a surface with any torsion.
+- A place or a line in plan may lie off the outline by rounding alone: 1e-6 of the span where the brief writes it, half
+  of the last printed digit in a table.  Without a y, what acts or stands there does so on the reference axis.
+- A spar runs outboard, a rib across; each crossing is a place, and each spar and rib has at least one.
 - A region's percentages are of what [acceptance] says unless it says otherwise itself.
 - Tables lie in the folder of the brief or below it.
 

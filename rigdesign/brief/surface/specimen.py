@@ -44,6 +44,7 @@ def surface(table: SpecimenTable, piece: Specimen, context: Context) -> Specimen
         what="the reference axis",
         along="from end to end of the specimen",
         remedy="move its points, or correct the outline",
+        whole=True,
     )
     return replace(piece, axis=_line_to_ends(table.axis, piece))
 

@@ -82,10 +82,12 @@ def check_line(
     what: str,
     along: str,
     remedy: str,
+    whole: bool = False,
 ) -> None:
     """Raise BriefError unless a line covers the stretch from start to end [m] and lies on the outline all along it.
 
     `what` names the line and `along` the stretch, as in "the reference axis", "from end to end of the specimen".
+    `whole` says that nothing of the line may lie off the outline, beyond the stretch neither.
     """
     slack = LINE_TOLERANCE * span(piece)
     if line.x[0] > start + slack or line.x[-1] < end - slack:
@@ -96,7 +98,8 @@ def check_line(
             limit=f"at least {between(start, end)}",
             remedy="add points",
         )
-    found = stray(outline_of(piece), *stretch_of(line, start, end), slack)
+    x, y = (line.x, line.y) if whole else stretch_of(line, start, end)
+    found = stray(outline_of(piece), x, y, slack)
     if found is not None:
         value = f"at {place(found.x, found.y)} it is {show(found.distance, 'length')} off"
         raise context.error(f"{what} leaves the outline", *path, value=value, remedy=remedy)

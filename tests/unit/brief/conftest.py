@@ -6,6 +6,7 @@ from collections.abc import Callable
 from pathlib import Path
 
 import pytest
+from plan_briefs import PLAN, TEXTS
 
 from rigdesign.brief import read_brief
 from rigdesign.brief.model import Brief
@@ -60,6 +61,36 @@ def refusal(read: Read) -> Callable[..., str]:
     def message(*edits: Edit, **tables: str) -> str:
         with pytest.raises(InputError) as caught:
             read(*edits, **tables)
+        return f"{type(caught.value).__name__}: {caught.value}"
+
+    return message
+
+
+@pytest.fixture
+def read_plan(tmp_path: Path) -> Read:
+    """Like `read`, for the brief of a surface in plan_briefs; its tables are there unless others are given."""
+
+    def write_and_read(*edits: Edit, **tables: str) -> Brief:
+        text = PLAN
+        for old, new in edits:
+            assert old in text
+            text = text.replace(old, new, 1) if old else text + new + "\n"
+        (tmp_path / "plane.toml").write_text(text, encoding="utf-8")
+        for name, table in {**TEXTS, **tables}.items():
+            (tmp_path / f"{name}.csv").write_text(table, encoding="utf-8", newline="")
+        return read_brief(tmp_path / "plane.toml")
+
+    return write_and_read
+
+
+@pytest.fixture
+def plan_refusal(read_plan: Read) -> Callable[..., str]:
+    """Like `refusal`, for the brief of a surface."""
+    from rigdesign.errors import InputError
+
+    def message(*edits: Edit, **tables: str) -> str:
+        with pytest.raises(InputError) as caught:
+            read_plan(*edits, **tables)
         return f"{type(caught.value).__name__}: {caught.value}"
 
     return message

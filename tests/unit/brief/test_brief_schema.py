@@ -49,6 +49,13 @@ def verdict(text: str) -> bool:
         + PADS
         + '[acceptance]\nmoment = "2 %"\nshear = "50 N"\nmoment_over = "5 ft-lbf"\n'
         '[[acceptance.region]]\nfrom = "1 m"\nto = "2 m"\nmoment = "1 %"\nof = "local"\n',
+        '[[load]]\npressure = "p.csv"\n[[load]]\ntorque = "t.csv"\n[[load]]\ncouple = "-3 N*m"\nat = "1 m"\n'
+        '[[load]]\npoint = "1 N"\nat = ["1 m", "0 m"]\n'
+        '[[load]]\ntable = "l.csv"\nline = [["0 m", "0 m"], ["1 m", "1 m"]]\n'
+        + PADS
+        + 'spars = [[["0 m", "0 m"], ["1 m", "1 m"]]]\nribs = "0.3, 0.6 m"\nturn = "12 deg"\nedge = "3 mm"\n'
+        '[levers]\nplates = true\npair = "any"\nclearance = "1 in"\ngrouping = [[1, 2, 3], 4]\n'
+        '[jack]\nat = ["1 m", "0 m"]\n[acceptance]\ntorsion = "5 %"\nacross_over = "5 %"\nshare = "20 %"\n',
     ],
 )
 def test_good_briefs_fit_the_schema(rest: str) -> None:
@@ -66,13 +73,16 @@ def test_good_briefs_fit_the_schema(rest: str) -> None:
         "[[load]]\ninertia = 2\n[pads]\ncuont = 6\n",
         "[[load]]\ninertia = 2\n[pads]\ncount = 0\n",
         '[[load]]\ninertia = 2\n[pads]\ncount = 6\nease = "2 m"\n',
+        '[[load]]\ninertia = 2\n[pads]\ncount = 6\nturn = "along y"\n',
+        '[[load]]\ninertia = 2\n[pads]\ncount = 6\nrows = [["0 m", "0 m"], ["1 m", "1 m"]]\n',
+        '[[load]]\npoint = "3 N"\nat = ["1 m"]\n' + PADS,
     ],
 )
 def test_bad_briefs_do_not(rest: str) -> None:
     assert not verdict(BASE + rest)
 
 
-@pytest.mark.parametrize("kind", ["length", "force", "running load", "moment", "pressure", "fraction"])
+@pytest.mark.parametrize("kind", ["length", "force", "running load", "moment", "pressure", "angle", "fraction"])
 def test_patterns_and_reader_agree(kind: str) -> None:
     fits = jsonschema.Draft202012Validator(pattern(kind)).is_valid
     texts = {
@@ -81,6 +91,7 @@ def test_patterns_and_reader_agree(kind: str) -> None:
         "running load": ["3 lbf/ft"],
         "moment": ["5 ft-lbf", "5 N·m", "5 Nm", "3 kip*in"],
         "pressure": ["3 psi", "3 N/mm²", "3 kN/m^2"],
+        "angle": ["-12 deg", "0.2 rad"],
         "fraction": ["2 %", "150%"],
     }
     for text in [*texts[kind], KINDS[kind].example]:
