@@ -16,7 +16,7 @@ from rich.text import Text
 from rigdesign.chain import Study
 from rigdesign.checks.measures import ratio, reaches
 from rigdesign.checks.remarks_practice import pressures
-from rigdesign.checks.text import percent
+from rigdesign.checks.text import UNIT_KIND, percent
 from rigdesign.command.pipe import reader_may_leave
 from rigdesign.display import System, counted, show
 from rigdesign.findings import Finding, Refusal
@@ -94,7 +94,8 @@ class Terminal:
         self.heading("Pads")
         self.table(*_pad_table(check, self.system))
         if any(tree.pieces for tree in check.rig.trees):
-            self.heading("Levers")
+            has_plates = any(piece.kind == "plate" for tree in check.rig.trees for piece in tree.pieces)
+            self.heading("Levers and plates" if has_plates else "Levers")
             self.table(*_lever_table(check, self.system))
         self.heading("Errors by stretch")
         self.table(*_region_table(check, self.system))
@@ -133,7 +134,8 @@ class Terminal:
                 self.lines([f"{counted(row.pads, 'pad')}: " + " ".join(refusal_lines(row.answer))])
             elif not row.accepted:
                 self.lines([verdict(row.answer)])
-        self.lines(["", "Errors are per cent of peak target moment and shear, as drilled.", CAUTION])
+        peaks = "moment, shear and torsion" if study.brief.specimen.is_surface else "moment and shear"
+        self.lines(["", f"Errors are per cent of peak target {peaks}, as drilled.", CAUTION])
 
 
 def wrapped(line: str, width: int) -> list[str]:
@@ -156,9 +158,11 @@ def _pad_table(check: Check, system: System) -> tuple[list[str], list[list[str]]
     force = scale("force", max(abs(float(f)) for f in check.statics.pad_force), system)
     place = scale("length", 1.0, system)
     hangs = {hole.joins: piece.name for tree in rig.trees for piece in tree.pieces for hole in piece.ends}
+    is_surface = rig.plan.target.brief.specimen.is_surface
     headings = [
         "pad",
         f"x [{place.unit}]",
+        *([f"y [{place.unit}]"] if is_surface else []),
         f"force [{force.unit}]",
         f"wanted [{force.unit}]",
         "share of jack",
@@ -167,10 +171,11 @@ def _pad_table(check: Check, system: System) -> tuple[list[str], list[list[str]]
     pressure = pressures(check)
     bears = None if pressure is None else scale("pressure", float(pressure.max()), system, 2 if system == "SI" else 3)
     if bears is not None:
-        headings.insert(5, f"pressure [{bears.unit}]")
+        headings.insert(-1, f"pressure [{bears.unit}]")
     rows = []
     for k, (x, f) in enumerate(zip(rig.pad_x, check.statics.pad_force, strict=True)):
-        row = [str(k + 1), place.show(float(x)), force.show(float(f)), force.show(float(rig.plan.force[k]))]
+        row = [str(k + 1), place.show(float(x)), *([place.show(float(rig.pad_y[k]))] if is_surface else [])]
+        row += [force.show(float(f)), force.show(float(rig.plan.force[k]))]
         row += [f"{100 * float(check.statics.share[k]):.2f} %"]
         row += [bears.show(float(pressure[k]))] if bears is not None and pressure is not None else []
         rows.append([*row, hangs.get(f"pad {k + 1}", "jack 1")])
@@ -181,25 +186,31 @@ def _lever_table(check: Check, system: System) -> tuple[list[str], list[list[str
     brief = check.rig.plan.target.brief
     arms, place = arm_scale(brief.levers.drill_step, system), scale("length", 1.0, system)
     loads = scale("force", max(abs(tree.force) for tree in check.rig.trees), system)
-    headings = ["lever", "tier", "hangs on", f"pivot x [{place.unit}]", f"load [{loads.unit}]"]
-    headings += [f"arm A [{arms.unit}]", "holds", f"arm B [{arms.unit}]", "holds", "ratio"]
+    pieces = [piece for tree in check.rig.trees for piece in tree.pieces]
+    is_surface = brief.specimen.is_surface
+    most = max(len(piece.ends) for piece in pieces)
+    headings = ["lever", "tier", "hangs on", f"pivot x [{place.unit}]"]
+    headings += [f"pivot y [{place.unit}]"] if is_surface else []
+    headings += [f"load [{loads.unit}]"]
+    for name in "ABC"[:most]:
+        headings += [f"arm {name} [{arms.unit}]", "holds"]
     rows = []
-    for piece in (piece for tree in check.rig.trees for piece in tree.pieces):
+    for piece in pieces:
         row = [str(piece.number), str(piece.tier), piece.parent, place.show(piece.pivot.x)]
+        row += [place.show(piece.pivot.y)] if is_surface else []
         row.append(loads.show(check.statics.piece_load[piece.name]))
         for hole, arm in zip(piece.ends, reaches(piece), strict=True):
             row += [arms.show(arm), hole.joins]
-        rows.append([*row, f"{ratio(piece):.2f}"])
-    return headings, rows
+        row += [""] * 2 * (most - len(piece.ends))
+        rows.append([*row, f"{ratio(piece):.2f}" if piece.kind == "lever" else "plate"])
+    return [*headings, "ratio"], rows
 
 
 def _region_table(check: Check, system: System) -> tuple[list[str], list[list[str]]]:
     headings = ["stretch", "quantity", "under-test", "over-test", "band under", "band over", "band use", "verdict"]
-    target = check.rig.plan.target
     rows = []
     for region in check.regions:
-        kind = "force" if region.quantity == "shear" else "moment"
-        peak = target.shear_peak if region.quantity == "shear" else target.moment_peak
+        kind, peak = UNIT_KIND[region.quantity], check.errors[region.quantity].reference
         # what is left of exact zeros after rounding is zero
         sizes = [show(size if size > 1e-9 * peak else 0.0, kind, system) for size in (region.under, region.over)]
         bands = [
@@ -212,10 +223,12 @@ def _region_table(check: Check, system: System) -> tuple[list[str], list[list[st
 
 
 def _study_table(study: Study) -> tuple[list[str], list[list[str]]]:
+    is_surface = study.brief.specimen.is_surface
     headings = [
         "pads",
         "moment error",
         "shear error",
+        *(["torsion error"] if is_surface else []),
         "band use",
         "proven least",
         "levers",
@@ -225,13 +238,15 @@ def _study_table(study: Study) -> tuple[list[str], list[list[str]]]:
     rows = []
     for row in study.rows:
         if isinstance(row.answer, Refusal):
-            rows.append([str(row.pads), "", "", "", "", "", "", "no rig"])
+            rows.append([str(row.pads), *[""] * (len(headings) - 2), "no rig"])
             continue
         check = row.answer
         mark = "  fewest" if study.fewest is row else ""
+        torsion = [] if check.torsion_error_peak is None else [percent(check.torsion_error_peak)]
         rows.append([
-            str(row.pads), percent(check.moment_error_peak), percent(check.shear_error_peak), f"{check.band_use:.3f}",
-            f"{check.rig.plan.proof.band_use_least:.3f}", str(sum(len(tree.pieces) for tree in check.rig.trees)),
-            f"{check.steel_estimate:.1f}", ("accepted" if row.accepted else "not accepted") + mark,
+            str(row.pads), percent(check.moment_error_peak), percent(check.shear_error_peak), *torsion,
+            f"{check.band_use:.3f}", f"{check.rig.plan.proof.band_use_least:.3f}",
+            str(sum(len(tree.pieces) for tree in check.rig.trees)), f"{check.steel_estimate:.1f}",
+            ("accepted" if row.accepted else "not accepted") + mark,
         ])  # fmt: skip
     return headings, rows

@@ -60,8 +60,11 @@ def _errors(axes: Axes, study: Study) -> None:
     _line(axes, study, [100 * check.moment_error_peak for check in checks], BLUE, "o", "moment, drilled")
     least = [100 * check.rig.plan.proof.moment_error_least for check in checks]
     axes.plot([pads for pads, _ in _checked(study)], least, color=BLUE, linestyle=":", label="moment, proven least")
-    hand = [100 * check.hand_moment for check in checks]
-    axes.plot([pads for pads, _ in _checked(study)], hand, color=GREY, linestyle="--", label="moment, strips by hand")
+    hand = [100 * check.hand_moment for check in checks if check.hand_moment is not None]
+    if not study.brief.specimen.is_surface:  # strips are no layout of pads in plan
+        axes.plot(
+            [pads for pads, _ in _checked(study)], hand, color=GREY, linestyle="--", label="moment, strips by hand"
+        )
     _frame(axes, study)
     axes.set_ylabel("largest error [% of peak target value]", size=8)
     axes.legend(loc="upper right", fontsize=7, framealpha=0.9, edgecolor="none")

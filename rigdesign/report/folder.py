@@ -20,8 +20,8 @@ MARKS = (frozenset({"rig.json", "summary.json"}), frozenset({"study.csv", "study
 """Files that tell a folder written here from any other: all of one set are in it."""
 
 TABLES = frozenset({"rig.json", "summary.json", "pads.csv", "levers.csv", "holes.csv", "jacks.csv", "stations.csv",
-                    "regions.csv", "study.csv", "study.json"})  # fmt: skip
-FIGURES = frozenset({"target", "load_and_pads", "shear_and_moment", "tree", "study"})
+                    "regions.csv", "across.csv", "study.csv", "study.json"})  # fmt: skip
+FIGURES = frozenset({"target", "load_and_pads", "shear_and_moment", "tree", "plan", "across", "study"})
 FIGURE_ENDINGS = frozenset({".svg", ".png"})
 
 

@@ -5,16 +5,19 @@ Layout number 1.  Every number is written so that the same float is read again; 
     schema_number   1
     title           the brief's
     brief           name, texts: the brief and its tables as they were read, by file name
-    pads            a list, root to tip: pad, x_m, y_m, wanted_x_m, wanted_N, share_of_curve_N, and force_N as checked
-    plan            jack_x_m, may_move, proof (band_use, band_use_least, moment_error_least, evenness, evenness_before,
-                    band_use_found, method, words; "infinite" where a number is), findings
+    pads            a list, root to tip: pad, x_m, y_m, wanted_x_m, wanted_N, share_of_curve_N, and force_N as checked;
+                    on surfaces wanted_y_m too
+    plan            jack_x_m, on surfaces jack_y_m too, may_move, proof (band_use, band_use_least, moment_error_least,
+                    evenness, evenness_before, band_use_found, method, words; "infinite" where a number is), findings
     trees           a list, a jack each: jack, x_m, y_m, force_N, carries, and levers, a list: lever, kind, tier,
                     parent, load_N as checked, and holes, a list: hole, joins, u_m, v_m, x_m, y_m
     words           what the search for grouping and holes did
     findings        of the levers stage
-    check           verdict, moment_error_peak, shear_error_peak, band_use: for readers; never read back
+    check           verdict, moment_error_peak, shear_error_peak, band_use, on surfaces torsion_error_peak: for readers;
+                    never read back
 
-force_N of a pad, load_N of a lever and `check` are results of the check.  Whoever reads a rig recomputes them.
+A line rig without wanted_y_m and jack_y_m has them at 0; a surface's must be there.  force_N of a pad, load_N of a
+lever and `check` are results of the check.  Whoever reads a rig recomputes them.
 
 Depends on: brief, target, pads, levers, checks.
 """
@@ -35,6 +38,7 @@ from rigdesign.levers.model import Hole, HoleName, Jack, Piece, Rig, Tree
 from rigdesign.pads.model import PadPlan, Proof
 from rigdesign.report.rig_fields import Fields, read_object
 from rigdesign.report.tables import finding_object, json_bytes
+from rigdesign.target.model import Target
 from rigdesign.words import SCHEMA_NUMBER
 
 INFINITE = "infinite"
@@ -44,7 +48,7 @@ _PROOF_NUMBERS = ("band_use", "band_use_least", "moment_error_least", "evenness"
 def rig_to_json(check: Check) -> str:
     """Return the checked rig as the text of rig.json."""
     rig, plan = check.rig, check.rig.plan
-    source = plan.target.brief.source
+    source, is_surface = plan.target.brief.source, plan.target.brief.specimen.is_surface
     return json_bytes(
         {
             "schema_number": SCHEMA_NUMBER,
@@ -53,6 +57,7 @@ def rig_to_json(check: Check) -> str:
             "pads": _pad_objects(check),
             "plan": {
                 "jack_x_m": plan.jack_x,
+                **({"jack_y_m": plan.jack_y} if is_surface else {}),
                 "may_move": plan.may_move,
                 "proof": _proof_object(plan.proof),
                 "findings": [finding_object(finding) for finding in plan.findings],
@@ -65,6 +70,7 @@ def rig_to_json(check: Check) -> str:
                 "moment_error_peak": check.moment_error_peak,
                 "shear_error_peak": check.shear_error_peak,
                 "band_use": _number(check.band_use),
+                **({"torsion_error_peak": check.torsion_error_peak} if is_surface else {}),
             },
         }
     ).decode()
@@ -72,10 +78,12 @@ def rig_to_json(check: Check) -> str:
 
 def _pad_objects(check: Check) -> list[dict[str, Any]]:
     rig, plan = check.rig, check.rig.plan
-    columns = (rig.pad_x, rig.pad_y, plan.x, plan.force, plan.share, check.statics.pad_force)
-    names = ("x_m", "y_m", "wanted_x_m", "wanted_N", "share_of_curve_N", "force_N")
-    rows = zip(*(column.tolist() for column in columns), strict=True)
-    return [{"pad": i + 1, **dict(zip(names, row, strict=True))} for i, row in enumerate(rows)]
+    columns = {"x_m": rig.pad_x, "y_m": rig.pad_y, "wanted_x_m": plan.x}
+    if plan.target.brief.specimen.is_surface:
+        columns["wanted_y_m"] = plan.y
+    columns |= {"wanted_N": plan.force, "share_of_curve_N": plan.share, "force_N": check.statics.pad_force}
+    rows = zip(*(column.tolist() for column in columns.values()), strict=True)
+    return [{"pad": i + 1, **dict(zip(columns, row, strict=True))} for i, row in enumerate(rows)]
 
 
 def _proof_object(proof: Proof) -> dict[str, Any]:
@@ -138,20 +146,23 @@ def rig_from_json(text: str) -> Rig:
     brief = fields.object("brief")
     source = Source(brief_name=brief.text("name"), texts=brief.texts("texts"))
     target = build_target(brief_from_source(source))
-    pads = [pad.numbers("x_m", "y_m", "wanted_x_m", "wanted_N", "share_of_curve_N") for pad in fields.objects("pads")]
+    pads = [
+        [*pad.numbers("x_m", "y_m", "wanted_x_m", "wanted_N", "share_of_curve_N"), _across(target, pad, "wanted_y_m")]
+        for pad in fields.objects("pads")
+    ]
     if not pads:
         raise InputError("the rig has no pads", where="pads")
     _require_order(fields)
-    x, y, wanted_x, wanted, share = np.array(pads).T.copy()
+    x, y, wanted_x, wanted, share, wanted_y = np.array(pads).T.copy()
     plan_fields = fields.object("plan")
     plan = PadPlan(
         target=target,
         x=wanted_x,
-        y=y,
+        y=wanted_y,
         force=wanted,
         share=share,
         jack_x=plan_fields.number("jack_x_m"),
-        jack_y=plan_fields.number("jack_y_m"),
+        jack_y=_across(target, plan_fields, "jack_y_m"),
         may_move=plan_fields.flag("may_move"),
         proof=_proof(plan_fields.object("proof")),
         findings=_findings(plan_fields),
@@ -160,6 +171,12 @@ def rig_from_json(text: str) -> Rig:
     if not trees:
         raise InputError("the rig has no jack", where="trees")
     return Rig(plan, x, y, trees, fields.text("words"), _findings(fields))
+
+
+def _across(target: Target, fields: Fields, key: str) -> float:
+    """A place across the span [m]: a surface's must be there, a line rig's counts as 0 where it is not."""
+    is_needed = target.brief.specimen.is_surface or key in fields.values
+    return fields.number(key) if is_needed else 0.0
 
 
 def _require_order(fields: Fields) -> None:

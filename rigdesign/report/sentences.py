@@ -5,11 +5,14 @@ Every number comes from the check or, where it is said to be proven, from the pa
 
 from __future__ import annotations
 
+from rigdesign.brief.model import Quantity
 from rigdesign.checks.model import Check, RegionVerdict
-from rigdesign.checks.text import NOT_PROVEN, percent
+from rigdesign.checks.regions import WHOLES
+from rigdesign.checks.surface.remarks import offset_words
+from rigdesign.checks.text import NOT_PROVEN, UNIT_KIND, percent
 from rigdesign.display import System, counted, show
 from rigdesign.findings import Finding, Refusal
-from rigdesign.target.bands import Quantity
+from rigdesign.target.cuts import ACROSS
 from rigdesign.words import LOAD_CELL_FLOOR
 
 CAUTION = (
@@ -27,16 +30,28 @@ _AT_ONE_PLACE = 1e-6  # [m]: far below what a drawing or a survey can tell
 def answer(check: Check, system: System = "SI") -> list[str]:
     """Return the sentences on a checked rig: verdict, errors, what is proven, jack, and what a load cell sees."""
     lines = [verdict(check)]
-    lines += [error_line(check, "moment", system), error_line(check, "shear", system)]
-    lines += [_local_line(check), _proven_line(check), _search_line(check), _hand_line(check), _even_line(check)]
-    lines += [_jack_line(check, system), _floor_line(check)]
+    quantities = [row.quantity for row in check.regions if row.name in WHOLES and _is_told(row)]
+    # the moment first: it is what a test is judged by
+    quantities.sort(key=lambda quantity: quantity != "moment")
+    lines += [error_line(check, quantity, system) for quantity in quantities]
+    lines += [_local_line(check), _share_line(check, system), _proven_line(check), _search_line(check)]
+    lines += [_hand_line(check), _even_line(check), *_plan_lines(check, system), _jack_line(check, system)]
+    lines += [_floor_line(check)]
     return [line for line in lines if line]
+
+
+def _is_told(row: RegionVerdict) -> bool:
+    """Whether the answer has a sentence on it: what is cut across only where it is judged."""
+    return row.quantity not in ACROSS or row.use is not None
+
+
+def _is_surface(check: Check) -> bool:
+    return check.rig.plan.target.brief.specimen.is_surface
 
 
 def verdict(check: Check) -> str:
     """The verdict in one sentence, with what binds where a rig is not accepted."""
-    pads, levers = check.rig.plan.n_pads, sum(len(tree.pieces) for tree in check.rig.trees)
-    size = f"{counted(pads, 'pad')} on {counted(levers, 'lever')}"
+    size = f"{counted(check.rig.plan.n_pads, 'pad')} on {pieces_words(check)}"
     use = f"the largest error takes {percent(check.band_use)} of its band"
     if check.accepted:
         judged = use if any(region.use is not None for region in check.regions) else "no band was asked for"
@@ -47,11 +62,26 @@ def verdict(check: Check) -> str:
         f"{region.quantity} over {region.name} takes {percent(region.use or 0.0)} of its band" for region in broken
     ]
     # what breaks a band is a finding of the statics as well, and said already
-    others = [finding for finding in failures if not (broken and finding.stage == "statics")]
+    said = {region.name for region in broken} if _is_surface(check) else None
+    others = [
+        finding
+        for finding in failures
+        if not (broken and finding.stage == "statics" and (said is None or finding.object in said))
+    ]
     reasons += [f"{finding.object}: {finding.text.rstrip('.')} ({finding.name})" for finding in others[:MOST_REASONS]]
     if len(others) > MOST_REASONS:
         reasons.append(f"{len(others) - MOST_REASONS} more among the findings")
     return f"Not accepted: {size}; " + "; ".join(reasons) + "."
+
+
+def pieces_words(check: Check) -> str:
+    """How many levers, and plates where there are any: "9 levers and 2 plates"."""
+    pieces = [piece for tree in check.rig.trees for piece in tree.pieces]
+    plates = sum(piece.kind == "plate" for piece in pieces)
+    levers = counted(len(pieces) - plates, "lever")
+    if not plates:
+        return levers
+    return f"{levers} and {counted(plates, 'plate')}" if plates < len(pieces) else counted(plates, "plate")
 
 
 def _whole(check: Check, quantity: Quantity) -> RegionVerdict:
@@ -61,28 +91,56 @@ def _whole(check: Check, quantity: Quantity) -> RegionVerdict:
 
 def error_line(check: Check, quantity: Quantity, system: System = "SI") -> str:
     """The largest under- and over-test of a quantity, in per cent of the peak of the target, and where."""
-    target = check.rig.plan.target
-    peak = target.moment_peak if quantity == "moment" else target.shear_peak
-    row = _whole(check, quantity)
+    errors, row = check.errors[quantity], _whole(check, quantity)
+    name = "y" if quantity in ACROSS else "x"
     sides = []
-    for size, x, words in ((row.under, row.under_x, "under-test"), (row.over, row.over_x, "over-test")):
-        if size > 1e-9 * peak:
-            sides.append(f"{percent(size / peak)} {words} at x = {show(x, 'length', system)}")
+    for size, at, words in ((row.under, row.under_x, "under-test"), (row.over, row.over_x, "over-test")):
+        if size > 1e-9 * errors.reference:
+            sides.append(f"{percent(size / errors.reference)} {words} at {name} = {show(at, 'length', system)}")
         else:
             sides.append(f"no {words}")
-    kind = "force" if quantity == "shear" else "moment"
     judged = "not judged" if row.use is None else f"band use {row.use:.3f}"
     return (
-        f"Largest errors of the {quantity}, per cent of peak target {quantity} "
-        f"({show(peak, kind, system)}): {sides[0]}, {sides[1]}; {judged}."
+        f"Largest errors of the {quantity}, per cent of {errors.of} "
+        f"({show(errors.reference, UNIT_KIND[quantity], system)}): {sides[0]}, {sides[1]}; {judged}."
     )
 
 
 def _local_line(check: Check) -> str:
+    locals_ = [("moment", check.moment_error_local), ("shear", check.shear_error_local)]
+    if "torsion" in check.errors and (torsion := check.errors["torsion"].local) is not None:
+        locals_.append(("torsion", torsion))
+    said = ", ".join(f"{quantity} {percent(error)}" for quantity, error in locals_)
+    return f"Per cent of the local value, where that is at least 5 % of the peak: {said}."
+
+
+def _share_line(check: Check, system: System) -> str:
+    """How far a panel's pads are from their tributary shares, beside what is allowed."""
+    accept = check.rig.plan.target.brief.acceptance
+    if accept.share is None or check.share_error is None:
+        return ""
+    k = check.uneven_pad - 1
+    force, share = float(check.statics.pad_force[k]), float(check.share_of_curve[k])
+    kept = "within" if check.share_error <= accept.share * (1 + 1e-9) else "beyond"
+    default = " (the default)" if accept.share_defaulted else ""
     return (
-        "Per cent of the local value, where that is at least 5 % of the peak: "
-        f"moment {percent(check.moment_error_local)}, shear {percent(check.shear_error_local)}."
+        f"Pad by pad: pad {check.uneven_pad} is farthest from its tributary share, with {show(force, 'force', system)} "
+        f"for {show(share, 'force', system)}, {percent(check.share_error)} off, {kept} the {percent(accept.share)} "
+        f"allowed{default}."
     )
+
+
+def _plan_lines(check: Check, system: System) -> list[str]:
+    """The target's centre in plan, and what hangs the pads."""
+    if not _is_surface(check):
+        return []
+    target, rig = check.rig.plan.target, check.rig
+    x, y = show(target.centroid, "length", system), show(target.centroid_y, "length", system)
+    tiers = max((piece.tier for tree in rig.trees for piece in tree.pieces), default=0)
+    return [
+        f"The target's resultant, {show(target.resultant, 'force', system)}, acts at x = {x}, y = {y}; "
+        f"{counted(rig.plan.n_pads, 'pad')} bring it by {pieces_words(check)} in {counted(tiers, 'tier')}."
+    ]
 
 
 def _proven_line(check: Check) -> str:
@@ -109,7 +167,7 @@ def _search_line(check: Check) -> str:
 
 
 def _hand_line(check: Check) -> str:
-    if check.hand_moment <= 0:
+    if check.hand_moment is None or check.hand_shear is None or check.hand_moment <= 0:
         return ""
     return (
         f"By hand, {counted(check.rig.plan.n_pads, 'strip')} of equal width lumped at the centroid, wherever that lies "
@@ -121,7 +179,8 @@ def _hand_line(check: Check) -> str:
 
 def _even_line(check: Check) -> str:
     proof = check.rig.plan.proof
-    text = f"No pad's force differs by more than {percent(check.evenness)} from its share of the curve"
+    share = "tributary share" if _is_surface(check) else "share of the curve"
+    text = f"No pad's force differs by more than {percent(check.evenness)} from its {share}"
     if proof.evenness_before > proof.evenness * 1.005:
         text += (
             f" ({percent(proof.evenness)} before drilling, "
@@ -137,12 +196,17 @@ def _jack_line(check: Check, system: System) -> str:
     peak = check.rig.plan.target.brief.peak
     top = f", {show(abs(tree.force) * peak, 'force', system)} at the peak of the test" if peak != 1.0 else ""
     way = "up (+z)" if tree.force > 0 else "down (−z)"
-    if abs(check.jack_offset) < _AT_ONE_PLACE:
-        place = "at the resultant of what the pads bring"
-    else:
-        side = "outboard" if check.jack_offset > 0 else "inboard"
-        place = f"{show(abs(check.jack_offset), 'length', system)} {side} of the resultant of what the pads bring"
-    return f"Jack 1 acts {way} with {force}{top}, at x = {at}, {place}."
+    at = f"x = {at}, y = {show(tree.jack.y, 'length', system)}" if _is_surface(check) else f"x = {at}"
+    return f"Jack 1 acts {way} with {force}{top}, at {at}, {_jack_place(check, system)}."
+
+
+def _jack_place(check: Check, system: System) -> str:
+    if abs(check.jack_offset) < _AT_ONE_PLACE and abs(check.jack_offset_y) < _AT_ONE_PLACE:
+        return "at the resultant of what the pads bring"
+    if _is_surface(check):
+        return f"{offset_words(check, system)} of the resultant of what the pads bring"
+    side = "outboard" if check.jack_offset > 0 else "inboard"
+    return f"{show(abs(check.jack_offset), 'length', system)} {side} of the resultant of what the pads bring"
 
 
 def _floor_line(check: Check) -> str:

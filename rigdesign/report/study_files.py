@@ -14,6 +14,14 @@ COLUMNS = (
 )  # fmt: skip
 
 
+def columns(study: Study) -> tuple[str, ...]:
+    """The columns of a study: on surfaces with the torsion's error."""
+    if not study.brief.specimen.is_surface:
+        return COLUMNS
+    after = COLUMNS.index("shear_error_peak") + 1
+    return (*COLUMNS[:after], "torsion_error_peak", *COLUMNS[after:])
+
+
 def study_object(study: Study) -> dict[str, Any]:
     """Return the study as an object for JSON; errors are fractions of the peak target value."""
     fewest = study.fewest
@@ -28,7 +36,7 @@ def _row(study: Study, row: StudyRow) -> dict[str, Any]:
     if isinstance(row.answer, Refusal):
         binds = "; ".join(part.rstrip(".") for part in (row.answer.text, row.answer.limit) if part)
         return {
-            **dict.fromkeys(COLUMNS),
+            **dict.fromkeys(columns(study)),
             "pads": row.pads,
             "verdict": "no rig",
             "fewest_accepted": False,
@@ -37,12 +45,13 @@ def _row(study: Study, row: StudyRow) -> dict[str, Any]:
     check = row.answer
     proof = check.rig.plan.proof
     failures = [f"{finding.object}: {finding.text}" for finding in check.findings if finding.severity == "failure"]
-    return {
+    values: dict[str, Any] = {
         "pads": row.pads,
         "verdict": "accepted" if row.accepted else "not accepted",
         "moment_error_peak": check.moment_error_peak,
         "moment_error_least": proof.moment_error_least,
         "shear_error_peak": check.shear_error_peak,
+        "torsion_error_peak": check.torsion_error_peak,
         "band_use": check.band_use,
         "band_use_least": proof.band_use_least,
         "levers": sum(len(tree.pieces) for tree in check.rig.trees),
@@ -50,12 +59,13 @@ def _row(study: Study, row: StudyRow) -> dict[str, Any]:
         "fewest_accepted": study.fewest is row,
         "what_binds": "; ".join(failures),
     }
+    return {name: values[name] for name in columns(study)}
 
 
 def study_csv(study: Study) -> bytes:
     """Return the study as a table; what is not known for a row without a rig stays empty."""
-    rows = [[_cell(row[column]) for column in COLUMNS] for row in study_object(study)["rows"]]
-    return csv_bytes(COLUMNS, rows)
+    rows = [[_cell(row[column]) for column in columns(study)] for row in study_object(study)["rows"]]
+    return csv_bytes(columns(study), rows)
 
 
 def _cell(value: Cell) -> Cell:

@@ -19,14 +19,18 @@ from typing import Any
 import numpy as np
 
 from rigdesign.checks.measures import dot, length, ratio
-from rigdesign.checks.model import Check
+from rigdesign.checks.model import Check, Curves
 from rigdesign.checks.remarks_practice import pressures
+from rigdesign.checks.text import UNIT_KIND
 from rigdesign.findings import Finding
 from rigdesign.levers.model import Piece
+from rigdesign.target.cuts import cuts_at
+from rigdesign.target.model import Target
 
 Cell = str | int | float | None
 FORMULA_STARTS = ("=", "+", "-", "−", "@", "\t", "\r", "\n")
 DIGITS = 12
+COLUMN_UNIT = {"force": "N", "moment": "Nm"}
 
 
 def table_files(check: Check) -> dict[str, bytes]:
@@ -39,6 +43,7 @@ def table_files(check: Check) -> dict[str, bytes]:
         "jacks.csv": jacks_csv(check),
         "stations.csv": stations_csv(check),
         "regions.csv": regions_csv(check),
+        **({} if check.across is None else {"across.csv": across_csv(check)}),
     }
 
 
@@ -77,7 +82,10 @@ def json_bytes(value: Any) -> bytes:
 
 
 def pads_csv(check: Check) -> bytes:
-    """A row a pad: place, force as drilled and as wanted, share of its jack, pressure, and the lever it hangs on."""
+    """A row a pad: place, force as drilled and as wanted, share of its jack, pressure, and the lever it hangs on.
+
+    On surfaces also the direction of its footprint's length.
+    """
     rig, solved = check.rig, check.statics
     hangs = {hole.joins: piece.number for piece in _pieces(check) for hole in piece.ends}
     pressure = pressures(check)
@@ -96,6 +104,11 @@ def pads_csv(check: Check) -> bytes:
         for i in range(rig.pad_x.size)
     ]
     head = ["pad", "x_m", "y_m", "force_N", "wanted_N", "share", "pressure_Pa", "lever", "share_of_curve_N"]
+    if check.across is not None:
+        from rigdesign.pads.surface.places import turns
+
+        turned = np.degrees(turns(rig.plan.target.brief, rig.pad_x, rig.pad_y))
+        rows, head = [[*row, float(turn)] for row, turn in zip(rows, turned, strict=True)], [*head, "turn_deg"]
     return csv_bytes(head, rows)
 
 
@@ -136,31 +149,37 @@ def jacks_csv(check: Check) -> bytes:
 
 
 def stations_csv(check: Check) -> bytes:
-    """V and M of target and rig by station, and how far the error may go below and above zero."""
-    curves = check.curves
-    columns = [
-        curves.x,
-        curves.target["shear"],
-        curves.rig["shear"],
-        curves.target["moment"],
-        curves.rig["moment"],
-        curves.below["shear"],
-        curves.above["shear"],
-        curves.below["moment"],
-        curves.above["moment"],
-    ]
+    """V, M and on surfaces T of target and rig by station, and how far the error may go below and above zero."""
+    return _curves_csv(check.curves, "x_m", ("inboard", "outboard"))
+
+
+def across_csv(check: Check) -> bytes:
+    """Shear and moment cut the other way by station y, on surfaces; the side is that of lesser or of greater y."""
+    assert check.across is not None
+    return _curves_csv(check.across, "y_m", ("lesser y", "greater y"))
+
+
+def _curves_csv(curves: Curves, station: str, sides: tuple[str, str]) -> bytes:
+    columns, head = [curves.x], [station, "side"]
+    for quantity in curves.target:
+        name, unit = quantity.replace(" ", "_"), COLUMN_UNIT[UNIT_KIND[quantity]]
+        columns += [curves.target[quantity], curves.rig[quantity]]
+        head += [f"{name}_target_{unit}", f"{name}_rig_{unit}"]
+    for quantity in curves.target:
+        name, unit = quantity.replace(" ", "_"), COLUMN_UNIT[UNIT_KIND[quantity]]
+        columns += [curves.below[quantity], curves.above[quantity]]
+        head += [f"{name}_band_below_{unit}", f"{name}_band_above_{unit}"]
     rows = zip(*(column.tolist() for column in columns), strict=True)
-    named = (
-        (x, "outboard" if out else "inboard", *rest) for (x, *rest), out in zip(rows, curves.outboard, strict=True)
-    )
-    head = ["x_m", "side", "shear_target_N", "shear_rig_N", "moment_target_Nm", "moment_rig_Nm"]
-    head += ["shear_band_below_N", "shear_band_above_N", "moment_band_below_Nm", "moment_band_above_Nm"]
+    named = ((x, sides[int(out)], *rest) for (x, *rest), out in zip(rows, curves.outboard, strict=True))
     return csv_bytes(head, named)
 
 
 def regions_csv(check: Check) -> bytes:
-    """A row a stretch and quantity: largest under- and over-test as magnitudes, where, bands, band use, verdict."""
-    units = {"shear": "N", "moment": "N*m"}
+    """A row a stretch and quantity: largest under- and over-test as magnitudes, where, bands, band use, verdict.
+
+    Of what is cut across, from, to and where are y.
+    """
+    units = {"force": "N", "moment": "N*m"}
     words = {None: "not judged", True: "accepted", False: "not accepted"}
     rows = [
         [
@@ -168,7 +187,7 @@ def regions_csv(check: Check) -> bytes:
             row.end_x,
             row.name,
             row.quantity,
-            units[row.quantity],
+            units[UNIT_KIND[row.quantity]],
             row.under,
             row.over,
             row.band_under,
@@ -189,7 +208,10 @@ def summary(check: Check) -> dict[str, Any]:
 
     Errors, uses and shares are fractions, forces at the brief's load; null says "not limited" or "not known".
     """
-    return {key: _plain(value) for key, value in (_target_part(check) | _rig_part(check)).items()}
+    parts = _target_part(check) | _rig_part(check)
+    if check.across is not None:
+        parts = _with_plan_part(check, parts)
+    return {key: _plain(value) for key, value in parts.items()}
 
 
 def _target_part(check: Check) -> dict[str, Any]:
@@ -250,6 +272,51 @@ def _rig_part(check: Check) -> dict[str, Any]:
         "moment_sum_residual": check.moment_sum_residual,
         "findings": [finding_object(finding) for finding in check.findings],
     }
+
+
+def _with_plan_part(check: Check, parts: dict[str, Any]) -> dict[str, Any]:
+    """What surfaces have besides, each beside what it belongs with; the findings stay last."""
+    target, rig, errors = check.rig.plan.target, check.rig, check.errors
+    force, torsion = check.statics.pad_force, errors["torsion"]
+    pieces = list(_pieces(check))
+    after: dict[str, dict[str, Any]] = {
+        "centroid_x_m": {"centroid_y_m": target.centroid_y},
+        "moment_about_m": {"root_torsion_Nm": _root_torsion(target)},
+        "moment_peak_x_m": {
+            "torsion_peak_Nm": target.torsion_peak,
+            "torsion_peak_x_m": target.peaks["torsion"].at,
+            "shear_across_peak_N": target.peaks["shear across"].value,
+            "moment_across_peak_Nm": target.peaks["moment across"].value,
+        },
+        "levers": {"plates": sum(piece.kind == "plate" for piece in pieces)},
+        "pads_centroid_x_m": {"pads_centroid_y_m": dot(force, rig.pad_y) / float(force.sum())},
+        "jack_x_m": {"jack_y_m": [tree.jack.y for tree in rig.trees]},
+        "jack_offset_m": {"jack_offset_y_m": check.jack_offset_y},
+        "shear_error_by_hand": {
+            "torsion_error_peak": torsion.peak,
+            "torsion_error_of": torsion.of,
+            "torsion_error_x_m": torsion.at,
+            "torsion_error_local": torsion.local,
+            "torsion_error_local_x_m": torsion.local_at,
+            "across_error_peak": check.across_error_peak,
+            "shear_across_error_peak": errors["shear across"].peak,
+            "shear_across_error_y_m": errors["shear across"].at,
+            "moment_across_error_peak": errors["moment across"].peak,
+            "moment_across_error_y_m": errors["moment across"].at,
+            "share_error": check.share_error,
+            "share_error_pad": check.share_error_pad,
+        },
+    }
+    return {name: value for key, own in parts.items() for name, value in {key: own, **after.get(key, {})}.items()}
+
+
+def _root_torsion(target: Target) -> float:
+    """First moment of the whole target about the reference axis' direction where it is held, reactions left out."""
+    specimen, at = target.brief.specimen, np.array([target.about])
+    cut = cuts_at(specimen, "torsion", at, "outboard")
+    sums = target.total_plan.sums
+    left, along = sums.first_y - sums.force * cut.y[0], sums.first_x - sums.force * cut.x[0]
+    return float(left * cut.a_x[0] - along * cut.a_y[0])
 
 
 def finding_object(finding: Finding) -> dict[str, Any]:

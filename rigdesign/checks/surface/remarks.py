@@ -12,7 +12,7 @@ from rigdesign.checks.model import Check
 from rigdesign.checks.remedies import jack_remedy
 from rigdesign.checks.statics import link_fractions
 from rigdesign.checks.text import also, listed, percent
-from rigdesign.display import show
+from rigdesign.display import System, show
 from rigdesign.findings import Finding, Severity
 from rigdesign.levers.model import Piece
 from rigdesign.words import LOAD_CELL_FLOOR
@@ -123,12 +123,12 @@ def jack_offset_in_plan(check: Check) -> Iterator[Finding]:
     )
 
 
-def offset_words(check: Check) -> str:
-    """Where the jack stands as seen from the resultant, in words: "3.0 mm outboard and 1.2 mm on the side of +y"."""
+def offset_words(check: Check, system: System = "SI") -> str:
+    """Where the jack stands as seen from the resultant, in words: "3.00 mm outboard and 1.20 mm towards greater y"."""
     x, y = check.jack_offset, check.jack_offset_y
     parts = []
     if abs(x) > SAME_PLACE:
-        parts.append(f"{show(abs(x), 'length')} {'outboard' if x > 0 else 'inboard'}")
+        parts.append(f"{show(abs(x), 'length', system)} {'outboard' if x > 0 else 'inboard'}")
     if abs(y) > SAME_PLACE:
-        parts.append(f"{show(abs(y), 'length')} on the side of {'greater' if y > 0 else 'lesser'} y")
+        parts.append(f"{show(abs(y), 'length', system)} towards {'greater' if y > 0 else 'lesser'} y")
     return " and ".join(parts)
