@@ -39,6 +39,11 @@ def build_rig(plan: PadPlan, progress: Progress | None = None) -> Rig | Refusal:
     BriefError
         A prescribed grouping does not name every pad once in nested pairs.
     """
+    if plan.target.brief.specimen.is_surface:
+        # imported late: a line rig does not wait for it
+        from rigdesign.levers.surface.build import build_in_plan
+
+        return build_in_plan(plan, progress)
     if progress is not None:
         progress(0.0, "grouping")
     wiring = group_pads(plan)

@@ -33,7 +33,7 @@ def group_pads(plan: PadPlan) -> Wiring | Refusal:
     rules, x, force = plan.target.brief.levers, plan.x, np.abs(plan.force)
     empty = np.flatnonzero(force <= EMPTY_PAD * force.mean())
     if empty.size and plan.n_pads > 1:
-        return _empty_pad(int(empty[0]) + 1)
+        return empty_pad(int(empty[0]) + 1)
     if rules.grouping is not None:
         return _prescribed(plan, rules)
     # shares rather than forces: twice the load must not decide a tie otherwise
@@ -210,10 +210,11 @@ def _where(pads: Stretches, limit: Limit, best: Best) -> str:
 
 def joined(wiring: Wiring, row: int) -> str:
     """What a lever joins, in words: "pads 1 to 3 and pad 4"."""
-    return " and ".join(_pads(wiring.pads_under(int(end))) for end in wiring.ends[row])
+    return " and ".join(pads_in_words(wiring.pads_under(int(end))) for end in wiring.ends[row])
 
 
-def _pads(pads: np.ndarray) -> str:
+def pads_in_words(pads: np.ndarray) -> str:
+    """Pads (from 0, in order) in words: "pads 1 to 3"."""
     numbers = pads + 1
     if numbers.size == 1:
         return f"pad {numbers[0]}"
@@ -257,7 +258,8 @@ def broken_limit(wiring: Wiring, levers: Levers, rules: LeverRules) -> Refusal |
     return None
 
 
-def _empty_pad(pad: int) -> Refusal:
+def empty_pad(pad: int) -> Refusal:
+    """Refusal for a pad (from 1) that carries nothing."""
     return Refusal(
         "levers",
         f"pad {pad} carries nothing, and no lever can hang a pad that carries nothing",

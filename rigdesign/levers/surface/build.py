@@ -1,0 +1,142 @@
+"""From planned pads in plan to a drilled tree of levers and plates."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from rigdesign.findings import Finding, Refusal, numbered
+from rigdesign.levers.build import show_steel
+from rigdesign.levers.drilled import REACH
+from rigdesign.levers.grouping import millimetres
+from rigdesign.levers.model import Rig, Tree
+from rigdesign.levers.surface.clashes import Shape, clashing
+from rigdesign.levers.surface.drilling import DrilledInPlan, drill_in_plan
+from rigdesign.levers.surface.grouping import Grouped, group_in_plan, steel_of
+from rigdesign.levers.surface.pieces import tree_in_plan
+from rigdesign.levers.surface.subsets import LONELY
+from rigdesign.levers.surface.wiring import Branches, branches_of
+from rigdesign.pads.model import PadPlan
+from rigdesign.pads.outcome import Progress
+
+
+def build_in_plan(plan: PadPlan, progress: Progress | None = None) -> Rig | Refusal:
+    """Join the pads of a plan in plan by levers and plates, and drill them; see `rigdesign.levers.build_rig`.
+
+    Where drilling brings pieces of one tier closer than the clearance, a tree with more room between them is looked
+    for; if there is none, the first one is kept and a finding says so.
+    """
+
+    def grouping(part: float) -> None:
+        if progress is not None:
+            progress(0.6 * part, "grouping")
+
+    grouping(0.0)
+    grouped = group_in_plan(plan, progress=grouping)
+    if isinstance(grouped, Refusal):
+        return grouped
+    rig = _drilled(plan, grouped)
+    if isinstance(rig, Refusal):
+        return rig
+    rules = plan.target.brief.levers
+    if not grouped.clashes and rig.findings and rules.grouping is None:
+        roomy = group_in_plan(plan, rules.clearance + 2 * REACH * rules.drill_step, grouping)
+        if not isinstance(roomy, Refusal) and not roomy.clashes:
+            again = _drilled(plan, roomy)
+            if not isinstance(again, Refusal) and not again.findings:
+                rig = again
+    if progress is not None:
+        progress(1.0, "drilled")
+    return rig
+
+
+def _drilled(plan: PadPlan, grouped: Grouped) -> Rig | Refusal:
+    """The rig of one grouping."""
+    step = plan.target.brief.levers.drill_step / grouped.field.extent
+    branches = branches_of(grouped.root, plan.n_pads, step)
+    drilled = drill_in_plan(plan, branches)
+    if isinstance(drilled, Refusal):
+        return drilled
+    tree = tree_in_plan(branches, drilled.hung, float(plan.force.sum()))
+    findings = numbered(_findings(plan, grouped, tree))
+    return Rig(plan, *_pads(drilled), (tree,), _words(plan, grouped, branches, drilled), findings)
+
+
+def _pads(drilled: DrilledInPlan) -> tuple[np.ndarray, np.ndarray]:
+    return drilled.hung.pad_x[0].copy(), drilled.hung.pad_y[0].copy()
+
+
+def close_pieces(tree: Tree, clearance: float) -> list[tuple[str, str]]:
+    """Pairs of pieces of one tier that cross, touch or come closer in plan than the clearance [m], by name."""
+    result = []
+    for tier in sorted({piece.tier for piece in tree.pieces}):
+        pieces = [piece for piece in tree.pieces if piece.tier == tier]
+        shapes: list[Shape] = [tuple((hole.x, hole.y) for hole in piece.ends) for piece in pieces]
+        result += [(pieces[i].name, pieces[j].name) for i, j in clashing(shapes, clearance)]
+    return result
+
+
+def _findings(plan: PadPlan, grouped: Grouped, tree: Tree) -> list[Finding]:
+    """A remark on pieces of one tier that are too close."""
+    rules = plan.target.brief.levers
+    close = close_pieces(tree, rules.clearance)
+    if not close:
+        return []
+    pairs = "1 pair of pieces" if len(close) == 1 else f"{len(close)} pairs of pieces"
+    named = ", ".join(f"{one} and {other}" for one, other in close[:3]) + (", …" if len(close) > 3 else "")
+    if rules.grouping is not None:
+        why, remedy = "in the prescribed grouping", "group the pads otherwise"
+    elif grouped.clashes:
+        proof = "proven" if grouped.is_best else "as far as was searched, not proven"
+        why = f"no tree within the limits keeps all pieces of one tier clear of one another ({proof}): in the best one"
+        remedy = "allow other pads" if rules.plates else "plates = true, or other pads"
+    else:
+        why, remedy = "as drilled", "a finer drill_step"
+    return [
+        Finding(
+            "levers",
+            "warning",
+            "rig",
+            f"{why} {pairs} of one tier cross or come too close in plan: {named}",
+            pairs,
+            f"clearance {millimetres(rules.clearance)}",
+            f"a smaller clearance, or {remedy}",
+        )
+    ]
+
+
+def _words(plan: PadPlan, grouped: Grouped, branches: Branches, drilled: DrilledInPlan) -> str:
+    return f"{_grouping_words(plan, grouped, branches)}; {drilled.words}"
+
+
+def _grouping_words(plan: PadPlan, grouped: Grouped, branches: Branches) -> str:
+    """What the search for a grouping did, and what is proven of it."""
+    if not branches.n_pieces:
+        return grouped.words
+    steel = f"steel estimate {show_steel(grouped.steel)} before drilling"
+    head = f"{_counted(branches)} in {_tiers(branches.depth)}, {steel}"
+    if plan.target.brief.levers.grouping is not None:
+        return f"grouping: as prescribed, {head}"
+    lonely = round((grouped.root.value - steel_of(grouped.root.value)) / LONELY)
+    if lonely:
+        first = plan.target.brief.levers.pair
+        head += f', the fewest pads found that hang without a partner ("{first}"): {lonely}'
+    if grouped.least is None:
+        return f"grouping: {head}, the best found ({grouped.words}); not proven to be the least"
+    above = grouped.root.value / grouped.least - 1.0
+    if above <= 1e-9:
+        return f"grouping: {head}, proven: the least within the limits, whether pieces cross or not"
+    best = ", and the least of all that keep clear" if grouped.is_best else ""
+    return f"grouping: {head}, {100 * above:.2g} % above the proven least without regard to crossings{best}"
+
+
+def _counted(branches: Branches) -> str:
+    plates = branches.n_plates
+    levers = branches.n_pieces - plates
+    parts = [
+        f"{count} {name}{'' if count == 1 else 's'}" for count, name in ((levers, "lever"), (plates, "plate")) if count
+    ]
+    return " and ".join(parts)
+
+
+def _tiers(count: int) -> str:
+    return "1 tier" if count == 1 else f"{count} tiers"
