@@ -46,7 +46,11 @@ STEPS = 800
 
 @styled
 def target_sheet(target: Target, system: System = "SI") -> Figure:
-    """Return the picture of the target alone: running load, point loads, shear and moment."""
+    """Return the picture of the target alone: running load, point loads, shear and moment; in plan for a surface."""
+    if target.brief.specimen.is_surface:
+        from rigdesign.report.surface.figures_load import target_in_plan
+
+        return target_in_plan(target, system)
     figure = new_sheet(A4, f"{target.brief.title}: the target", _target_words(target, system))
     width = A4[0] - LEFT - RIGHT
     load = panel(figure, LEFT, 138.0, width, 44.0)
@@ -60,8 +64,12 @@ def target_sheet(target: Target, system: System = "SI") -> Figure:
 
 @styled
 def load_and_pads(check: Check, system: System = "SI") -> Figure:
-    """Return the picture of the target's load with the pads that replace it, forces to scale."""
+    """Return the picture of the target's load with the pads that replace it, forces to scale; in plan for a surface."""
     target = check.rig.plan.target
+    if target.brief.specimen.is_surface:
+        from rigdesign.report.surface.figures_load import load_and_pads_in_plan
+
+        return load_and_pads_in_plan(check, system)
     size = A4 if check.rig.plan.n_pads <= 16 else A3
     figure = new_sheet(size, f"{target.brief.title}: load and pads", _target_words(target, system))
     low = size[1] * 0.52

@@ -68,7 +68,7 @@ def rig_files(check: Check, *, figures: bool = True, png: bool = False, system: 
 
 def figure_files(check: Check, *, svg: bool = True, png: bool = False, system: System = "SI") -> dict[str, bytes]:
     """Return the figures by file name."""
-    from rigdesign.report.figures_curves import shear_and_moment
+    from rigdesign.report.figures_curves import across, shear_and_moment
     from rigdesign.report.figures_load import load_and_pads, target_sheet
     from rigdesign.report.figures_tree import elevation
 
@@ -78,6 +78,12 @@ def figure_files(check: Check, *, svg: bool = True, png: bool = False, system: S
         "shear_and_moment": shear_and_moment(check, system),
         "tree": elevation(check, system),
     }
+    if check.rig.plan.target.brief.specimen.is_surface:
+        from rigdesign.report.surface.figures_plan import plan_sheet
+
+        sheets["plan"] = plan_sheet(check, system)
+    if check.across is not None:
+        sheets["across"] = across(check, system)
     return drawn(sheets, svg=svg, png=png)
 
 
