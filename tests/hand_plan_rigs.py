@@ -6,10 +6,11 @@ pads carry the forces asked for.
 
 from __future__ import annotations
 
+from dataclasses import replace
 from typing import Any
 
 import numpy as np
-from factories import array, band_rules, make_brief, make_pads, make_specimen
+from factories import array, band_rules, make_brief, make_pads, make_specimen, shape_load
 from hand_rigs import Group, halves
 from numpy.typing import ArrayLike
 
@@ -35,17 +36,9 @@ def outline(corners: ArrayLike = CORNERS, name: str = "planform.csv") -> Outline
 
 
 def surface(**changes: Any) -> Specimen:
-    """A swept wing held at its root, its reference axis on the swept line through 0, 0.05 m."""
+    """A swept wing held at its root, its reference axis from y = 0.05 m at the root to −0.40 m at the tip."""
     fields: dict[str, Any] = {"outline": outline(), "axis": line((0.2, 0.05), (3.4, -0.40))}
-    return make_specimen_in_plan(**{**fields, **changes})
-
-
-def make_specimen_in_plan(**changes: Any) -> Specimen:
-    """`make_specimen` with the fields of a surface."""
-    plain = {key: value for key, value in changes.items() if key in ("support", "left", "right", "supports", "weight")}
-    from dataclasses import replace
-
-    return replace(make_specimen(**plain), **{key: value for key, value in changes.items() if key not in plain})
+    return replace(make_specimen(), **{**fields, **changes})
 
 
 def panel(**changes: Any) -> Specimen:
@@ -54,7 +47,7 @@ def panel(**changes: Any) -> Specimen:
         "support": "two supports", "left": 0.0, "right": 2.0, "supports": (0.1, 1.8),
         "outline": outline(((0.0, -0.5), (2.0, -0.5), (2.0, 0.7), (0.0, 0.7))), "axis": None,
     }  # fmt: skip
-    return make_specimen_in_plan(**{**fields, **changes})
+    return replace(make_specimen(), **{**fields, **changes})
 
 
 def pressure(value: float = 1000.0, slope_x: float = 0.0, slope_y: float = 0.0, times: float = 1.0) -> PressureLoad:
@@ -83,8 +76,6 @@ def accept(moment: float = 0.02, shear: float = 0.12, torsion: float | None = 0.
 
 def plan_brief(specimen: Specimen | None = None, **changes: Any) -> Brief:
     """A brief for a surface: a linear pressure, pads of 120 × 80 mm at fixed places."""
-    from dataclasses import replace
-
     fields: dict[str, Any] = {
         "specimen": specimen if specimen is not None else surface(),
         "loads": (pressure(900.0, -150.0, 200.0),),
@@ -144,8 +135,4 @@ def make_plan_rig(
 
 def line_load(total: float, at: Line | None = None, **changes: Any) -> ShapeLoad:
     """A running load along a line in plan."""
-    from factories import shape_load
-
-    from dataclasses import replace
-
     return replace(shape_load(total=total), line=at, **changes)
