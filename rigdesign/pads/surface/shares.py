@@ -15,13 +15,15 @@ from numpy.typing import NDArray
 from rigdesign.pads.model import LEAST_SHARE
 from rigdesign.target.curve import Floats
 from rigdesign.target.model import Target
+from rigdesign.target.plan_load import PlanLoad
+from rigdesign.target.plan_sum import PlanSum
 
 if TYPE_CHECKING:
     from shapely import Geometry, Polygon
 
 # Pads nearer to each other than this part of the span share one place, and its share.
 SAME_PLACE = 1e-9
-# A border between cells is moved by this part of the span to find what lies on it.
+# Borders between cells are moved by this part of the span to split what lies on them.
 HAIR = 1e-8
 # Four steps, one into each quarter of the plan: borders along x or y are crossed to both sides evenly.
 ASKEW = np.sqrt(0.5) * np.array([[1.0, 1.0], [-1.0, 1.0], [-1.0, -1.0], [1.0, -1.0]])
@@ -83,13 +85,30 @@ def _along_line(target: Target, x: Floats) -> Floats:
 
 
 def _of_cells(target: Target, places: Floats) -> Floats:
-    """What lies in each cell [N], the mean of four: cells a hair to each side split what lies on their borders.
-
-    To either side the pressure's part changes by as much up as down, so that the mean is good to a hair squared.
-    """
+    """What lies in each cell [N]; of line and point loads the mean of four: with cells a hair to each side."""
+    areas, lines = _pressures_and_others(target.net_plan)
+    own = areas.inside(_nearest_areas(target, places)) if areas.parts else np.zeros(places.shape[0])
+    if not lines.parts:
+        return own
     hair = HAIR * (target.brief.specimen.right - target.brief.specimen.left)
-    parts = [target.net_plan.inside(_nearest_areas(target, places + hair * step)) for step in ASKEW]
-    return np.asarray(sum(parts) / len(parts))
+    beside = [lines.inside(_nearest_areas(target, places + hair * step)) for step in ASKEW]
+    return np.asarray(own + sum(beside) / len(beside))
+
+
+def _pressures_and_others(load: PlanLoad) -> tuple[PlanSum, PlanSum]:
+    """Split a load into pressures, which leave nothing on a border between cells, and what may lie on one."""
+    from rigdesign.target.surface.pressure import Pressure
+
+    found: tuple[list[tuple[PlanLoad, float]], list[tuple[PlanLoad, float]]] = ([], [])
+    left = [(load, 1.0)]
+    while left:
+        part, factor = left.pop(0)
+        if isinstance(part, PlanSum):
+            left += [(one, factor * times) for one, times in zip(part.parts, part.factors, strict=True)]
+        else:
+            found[0 if isinstance(part, Pressure) else 1].append((part, factor))
+    areas, lines = (PlanSum(tuple(p for p, _ in kind), tuple(f for _, f in kind)) for kind in found)
+    return areas, lines
 
 
 def _nearest_areas(target: Target, places: Floats) -> list[Polygon]:

@@ -11,7 +11,7 @@ import shapely
 from factories import make_brief, point_loads, shape_load, table_load, two_supports
 from pad_surfaces import line, outline, surface_brief
 
-from rigdesign.brief.model import Brief, Outline
+from rigdesign.brief.model import Brief, Outline, PressureLoad
 from rigdesign.pads.forces import shares
 from rigdesign.pads.surface.shares import cells, evenness, tributary_shares
 from rigdesign.pads.tube import build_tube
@@ -22,6 +22,7 @@ from rigdesign.target.model import Target
 from rigdesign.target.plan_load import PlanLoad, Projection
 from rigdesign.target.plan_points import PlanPoints
 from rigdesign.target.plan_sum import PlanSum
+from rigdesign.target.surface.pressure import pressure_over
 
 PANEL = outline((0.0, 0.0), (1.8, 0.0), (1.8, 1.2), (0.0, 1.2))
 SWEPT = outline((0.0, -0.4), (3.2, -0.75), (3.2, -0.45), (1.5, 0.1), (0.0, 0.4))
@@ -145,6 +146,18 @@ def test_two_pads_at_one_place_halve_its_share() -> None:
     once = tributary_shares(target, X, Y)
     once[2] /= 2
     np.testing.assert_allclose(share, np.append(once, once[2]), rtol=1e-12)
+
+
+def test_a_pressure_and_a_line_load_add_up() -> None:
+    """A pressure map that rises along x, less twice a point load; the panel split at x = 0.8 m and y = 0.5 m."""
+    rising = pressure_over(PressureLoad(PANEL.x, PANEL.y, 500.0 * PANEL.x, 1.0, "map"), PANEL)
+    point = PlanPoints(np.array([0.8]), np.array([0.2]), np.array([30.0]))
+    load = PlanSum((rising, PlanSum((point, point), (1.0, 1.0))), (1.0, -1.0))
+    x, y = np.array([0.5, 0.5, 1.1, 1.1]), np.array([0.2, 0.8, 0.2, 0.8])
+    share = tributary_shares(target_of(surface_brief(PANEL), load), x, y)
+    # ∫ 500 x dx is 160 N/m up to 0.8 m and 650 N/m from there
+    by_hand = [160 * 0.5 - 30, 160 * 0.7, 650 * 0.5 - 30, 650 * 0.7]
+    np.testing.assert_allclose(share, by_hand, rtol=1e-12)
 
 
 def test_pads_off_the_load_have_none_of_it() -> None:
