@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 
 from rigdesign.brief.model import Brief, Quantity
@@ -49,14 +51,15 @@ def build_target(brief: Brief) -> Target:
     net_plan: PlanLoad = total_plan if gravity is NO_CURVE else PlanSum((total_plan, gravity_plan), (1.0, -1.0))
     peaks = _peaks(brief, total_plan)
     _refuse_unbent(brief, total, peaks["moment"].value)
-    return Target(
+    target = Target(
         brief=brief,
         total_plan=total_plan,
         gravity_plan=gravity_plan,
         net_plan=net_plan,
         peaks=peaks,
-        findings=numbered(remarks(brief, total, gravity, net_plan.along(ALONG_X).force)),
+        findings=(),
     )
+    return replace(target, findings=numbered(remarks(target)))
 
 
 def _refuse_nothing(total: Curve) -> None:

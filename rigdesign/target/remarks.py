@@ -9,14 +9,18 @@ from collections.abc import Iterator
 
 import numpy as np
 
-from rigdesign.brief.model import Brief, InertiaLoad, InternalLoad, Load
+from rigdesign.brief.model import Brief, InertiaLoad, InternalLoad, Load, Specimen
 from rigdesign.display import show
 from rigdesign.findings import Finding, Severity
-from rigdesign.target.curve import Curve
+from rigdesign.target.curve import Curve, Floats
+from rigdesign.target.cuts import reactions_in_plan
 from rigdesign.target.internal import reactions
 from rigdesign.target.internal_table import stepped_curve
-from rigdesign.target.loads import load_curve
+from rigdesign.target.model import Target
 from rigdesign.target.peaks import Parts, signed_parts
+from rigdesign.target.plan_load import ALONG_X, PlanLoad
+from rigdesign.target.plan_loads import table_along_x
+from rigdesign.target.plan_remarks import plan_remarks, torsion_remarks
 from rigdesign.target.sums import Combined
 from rigdesign.target.table_remarks import table_remarks
 from rigdesign.words import STANDARD_GRAVITY
@@ -39,16 +43,20 @@ _DWARFED = 2000.0
 _FEW = 3
 
 
-def remarks(brief: Brief, total: Curve, gravity: Curve, net: Curve) -> Iterator[Finding]:
+def remarks(target: Target) -> Iterator[Finding]:
     """Yield the findings of the target stage, not numbered yet: the gravest kinds first."""
-    curves = [load_curve(load, brief.specimen) for load in brief.loads]
+    brief, total, gravity, net = target.brief, target.total, target.gravity, target.net
+    curves = [part.along(ALONG_X).force for part in target.total_plan.parts]
+    surface = brief.specimen.is_surface
     yield from _net_against_total(total, gravity, net)
     for number, load in enumerate(brief.loads, 1):
         if isinstance(load, InternalLoad):
-            yield from table_remarks(load, f"load {number}", brief.specimen.right)
-    yield from _other_sign(brief, gravity)
-    yield from _centroid(brief, total, net)
-    yield from _supports(brief, total, gravity)
+            along_x = table_along_x(load, brief.specimen)
+            yield from table_remarks(along_x, f"load {number}", brief.specimen.right)
+            yield from torsion_remarks(load, f"load {number}", brief.specimen)
+    yield from _other_sign(target, curves)
+    yield from plan_remarks(target) if surface else _centroid(brief, total, net)
+    yield from _supports(target)
     yield from _against_the_rest(brief.loads, curves, brief.specimen.gravity)
     yield from _sizes(brief, total, gravity)
     yield from _dwarfed(curves)
@@ -77,14 +85,14 @@ def _net_against_total(total: Curve, gravity: Curve, net: Curve) -> Iterator[Fin
     yield _remark("warning", "weight", text, show(net.total, "force"), f"pads that act {along(total.total)}", remedy)
 
 
-def _other_sign(brief: Brief, gravity: Curve) -> Iterator[Finding]:
+def _other_sign(target: Target, curves: list[Curve]) -> Iterator[Finding]:
     """Stretches where what the pads bring acts against its own sum, a table of V and M judged by its rows alone."""
-    curves = [
-        Combined((stepped_curve(load),), (load.times,)) if isinstance(load, InternalLoad)
-        else load_curve(load, brief.specimen)
-        for load in brief.loads
-    ]  # fmt: skip
-    net = Combined((*curves, gravity), (*(1.0 for _ in curves), -1.0))
+    brief = target.brief
+    judged = [
+        Combined((stepped_curve(load),), (load.times,)) if isinstance(load, InternalLoad) else curve
+        for load, curve in zip(brief.loads, curves, strict=True)
+    ]
+    net = Combined((*judged, target.gravity), (*(1.0 for _ in judged), -1.0))
     parts = signed_parts(net, brief.specimen.left, brief.specimen.right)
     if not parts.force.size or net.total == 0:
         return
@@ -137,10 +145,11 @@ def _centroid(brief: Brief, total: Curve, net: Curve) -> Iterator[Finding]:
         return
 
 
-def _supports(brief: Brief, total: Curve, gravity: Curve) -> Iterator[Finding]:
+def _supports(target: Target) -> Iterator[Finding]:
     """Supports that must do more than bear: act with the load, or hold the specimen down against it."""
+    brief, total = target.brief, target.total
     specimen = brief.specimen
-    at, force = reactions(specimen, total.total, total.first_moment)
+    at, force = support_forces(specimen, target.total_plan)
     if not at.size:
         return
     sign = float(np.sign(total.total))
@@ -149,7 +158,17 @@ def _supports(brief: Brief, total: Curve, gravity: Curve) -> Iterator[Finding]:
         yield _with_the_load(brief, float(x), float(reaction))
     down = float(specimen.gravity)
     if not lifted.any() and sign != down:
-        yield _held_down(brief, at, force, gravity)
+        _, dead = support_forces(specimen, target.gravity_plan)
+        yield _held_down(brief, at, force, dead)
+
+
+def support_forces(specimen: Specimen, load: PlanLoad) -> tuple[Floats, Floats]:
+    """Return stations (k,) [m] and forces (k,) [N] of the supports' answer to a load; k = 0 for a cantilever."""
+    if specimen.is_surface:
+        answer = reactions_in_plan(specimen, *load.sums)
+        return answer.x, answer.force
+    curve = load.along(ALONG_X).force
+    return reactions(specimen, curve.total, curve.first_moment)
 
 
 def _with_the_load(brief: Brief, x: float, reaction: float) -> Finding:
@@ -177,7 +196,7 @@ def _with_the_load(brief: Brief, x: float, reaction: float) -> Finding:
     return _remark("warning", f"support at {show(x, 'length')}", text, show(abs(reaction), "force"), limit, remedy)
 
 
-def _held_down(brief: Brief, at: np.ndarray, force: np.ndarray, gravity: Curve) -> Finding:
+def _held_down(brief: Brief, at: Floats, force: Floats, dead: Floats) -> Finding:
     """Both supports hold the specimen against a load that lifts it."""
     specimen = brief.specimen
     forces = " and ".join(
@@ -186,7 +205,6 @@ def _held_down(brief: Brief, at: np.ndarray, force: np.ndarray, gravity: Curve) 
     text = f"the target lifts the specimen off its supports, which must hold it down with {forces}"
     if specimen.weight is not None:
         text += ", its weight counted"
-        _, dead = reactions(specimen, gravity.total, gravity.first_moment)
         part = float(np.min(dead / (dead - force)))
         if 0 < part < 1:
             text += f"; the first support lets go at {show(part, 'fraction')} of the pads' load"

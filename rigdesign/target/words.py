@@ -8,7 +8,16 @@ from __future__ import annotations
 
 import numpy as np
 
-from rigdesign.brief.model import InertiaLoad, InternalLoad, Load, PointLoads, ShapeLoad, TableLoad
+from rigdesign.brief.model import (
+    InertiaLoad,
+    InternalLoad,
+    Load,
+    PointLoads,
+    PressureLoad,
+    ShapeLoad,
+    TableLoad,
+    TorqueLoad,
+)
 from rigdesign.display import System, show
 from rigdesign.target.curve import Curve
 from rigdesign.target.internal import reactions
@@ -28,13 +37,17 @@ def echo(target: Target, system: System = "SI") -> list[str]:
     system
         Units to show: "SI" or "us" (US customary).
     """
+    if target.brief.specimen.is_surface:
+        from rigdesign.target.plan_words import echo_in_plan
+
+        return echo_in_plan(target, system)
     return [
         _resultant(target, system),
         _moment(target, system),
         *_supports(target, system),
         _peaks(target, system),
         *_weight(target, system),
-        *_test_peak(target, system),
+        *test_peak(target, system),
         *(_load(number, load, target, system) for number, load in enumerate(target.brief.loads, 1)),
     ]
 
@@ -106,7 +119,8 @@ def _force_at(curve: Curve, system: System) -> str:
     return f"{force} at {show(curve.first_moment / total, 'length', system)}"
 
 
-def _test_peak(target: Target, system: System) -> list[str]:
+def test_peak(target: Target, system: System) -> list[str]:
+    """How far the test goes beyond the brief's load."""
     peak = target.brief.peak
     highest = show(abs(target.resultant) * peak, "force", system)
     level = show(peak, "fraction", system)
@@ -116,22 +130,32 @@ def _test_peak(target: Target, system: System) -> list[str]:
 def _load(number: int, load: Load, target: Target, system: System) -> str:
     curve = load_curve(load, target.brief.specimen)
     times = "" if load.times == 1.0 else f" (times {load.times:g})"
-    return f"Load {number}: {_kind(load, target, system)}{times}: {_force_at(curve, system)}."
+    return f"Load {number}: {kind(load, target, system)}{times}: {_force_at(curve, system)}."
 
 
-def _kind(load: Load, target: Target, system: System) -> str:
+def kind(load: Load, target: Target, system: System) -> str:
+    """What a load is and where it reaches, its size left out."""
     if isinstance(load, ShapeLoad):
         return f"{_shape(load)} {_stretch(load.start_x, load.end_x, system)}"
     if isinstance(load, TableLoad):
         return f"a table of running load, {load.x.size} rows {_stretch(float(load.x[0]), float(load.x[-1]), system)}"
     if isinstance(load, InternalLoad):
         rows = f"{load.x.size} rows {_stretch(float(load.x[0]), float(load.x[-1]), system)}"
-        return f"a table of shear and moment, {rows}"
+        columns = "shear, moment and torsion" if load.torsion.size else "shear and moment"
+        return f"a table of {columns}, {rows}"
     if isinstance(load, PointLoads):
         if load.x.size == 1:
             return "a point load"
         return f"{load.x.size} point loads {_stretch(float(load.x.min()), float(load.x.max()), system)}"
-    return _inertia(load, target, system)
+    if isinstance(load, InertiaLoad):
+        return _inertia(load, target, system)
+    if isinstance(load, PressureLoad):
+        least, most = (show(float(p), "pressure", system) for p in (load.pressure.min(), load.pressure.max()))
+        return f"a pressure map of {load.x.size} points, {least} to {most}"
+    if isinstance(load, TorqueLoad):
+        stretch = _stretch(float(load.x[0]), float(load.x[-1]), system)
+        return f"a table of running torque, {load.x.size} rows {stretch}"
+    return f"a couple at {show(load.x, 'length', system)}"
 
 
 def _shape(load: ShapeLoad) -> str:

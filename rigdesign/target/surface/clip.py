@@ -3,13 +3,16 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import numpy as np
 from numpy.typing import NDArray
-from shapely import Polygon
 
 from rigdesign.target.curve import Floats
 from rigdesign.target.surface.mesh import Pieces
+
+if TYPE_CHECKING:
+    from shapely import Polygon
 
 # Triangles below this part of the outline's area are the rounding of corners.
 _NOTHING = 1e-18
