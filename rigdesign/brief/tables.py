@@ -151,7 +151,7 @@ def read_table(
 def _quickly(text: str, name: str, known: Known) -> tuple[Sequence[Floats], Heading] | None:
     """Return the columns as printed, and the heading; None where the table is not a plain block of finite numbers."""
     first, _, body = text.partition("\n")
-    if '"' in text or "_" in body or not first.strip() or not body.strip() or NAME in known.kinds.values():
+    if '"' in text or "_" in body or not first.strip() or not body.strip():
         return None
     heading = _heading(first.strip("\r").split(","), f"{name}, line 1", known)
     try:

@@ -176,6 +176,10 @@ def test_what_acts_on_a_default_axis_off_the_outline(plan_refusal, read_plan) ->
             "x [m],y [m],pressure [Pa]\n1,0,5\n2,0.1,6\n3,0.1,4\n1,0,7\n",
             ["map.csv, line 5: two rows stand at one place: x = 1 m, y = 0 m, as on line 2", "one row"],
         ),
+        (
+            "x [m],y [m],pressure [Pa]\n3,0.1,5\n1,0,6\n3,0.1,4\n1,0,7\n",
+            ["map.csv, line 4: two rows stand at one place: x = 3 m, y = 0.1 m, as on line 2"],
+        ),
         (PRESSURE.replace("[Pa]", "[N]"), ["column pressure", "a pressure is due, and N is a unit of force"]),
         ("x [m],y [m],pressure [Pa]\n1,0,0\n2,0.1,0\n3,0.1,0\n", ["the pressure of every row is zero"]),
         ("x [m],pressure [Pa]\n1,0\n", ['the column "y" is missing']),
@@ -284,3 +288,5 @@ def test_a_place_just_off_the_outline_is_on_it_by_rounding_alone(read_plan, plan
     heading = "x [m],y [m],force [N]\n"
     assert read_plan(keys, f=heading + "0.974,0.18,5\n").loads[0].y.tolist() == [0.18]
     told(plan_refusal(keys, f=heading + "0.974,0.180,5\n"), ["off the outline", "y = 0.180 m (0.926 mm off)"])
+    # half of the last digits is more than 20 mm here, and no row may be off by more than 1.6 mm
+    told(plan_refusal(keys, f="x [ft],y [ft],force [N]\n3.2,0.6,5\n"), ["off the outline", "y = 0.6 ft (3.98 mm off)"])

@@ -40,6 +40,11 @@ def refused_in(refusal, edits, parts) -> None:
         ((ELLIPTICAL, 'point = "3 N"\nat = ["1 m", "0.1 m"]'), ["[[load]] 1, at", f"a place given by x and y {PLAN}"]),
         (("", '[acceptance]\ntorsion = "5 %"'), [f'"torsion" {PLAN}']),
         (("", "[levers]\nplates = true"), ["[levers] plates", PLAN]),
+        (
+            ("", '[[acceptance.region]]\nfrom = "1 m"\nto = "2 m"\ntorsion = "2 %"'),
+            ["line 17, [[acceptance.region]] 1, torsion", PLAN],
+        ),
+        (("", '[jack]\nat = ["1 m", "0 m"]'), ["[jack] at", f"a place given by x and y {PLAN}", "or x alone"]),
     ],
 )
 def test_unknown_keys(refusal, edit, parts) -> None:
