@@ -10,10 +10,7 @@ from rigdesign.brief.model import Quantity
 from rigdesign.checks.model import Curves, Errors
 from rigdesign.checks.sampling import local_errors
 from rigdesign.target.model import Target
-from rigdesign.words import SMALL_TARGET
-
-LEAST_TORSION = 0.01
-"""Of the resultant times the outline's mean width: a smaller peak of the target's torsion is no measure of errors."""
+from rigdesign.words import SMALL_TARGET, TORSION_ARM
 
 
 class Reference(NamedTuple):
@@ -32,7 +29,7 @@ def reference(target: Target, quantity: Quantity) -> Reference:
     peak = target.peaks[quantity].value
     if quantity == "torsion":
         lever = abs(target.resultant) * target.brief.specimen.mean_width
-        if peak < LEAST_TORSION * lever:
+        if peak < TORSION_ARM * lever:
             return Reference(lever, "the resultant times the outline's mean width")
     return Reference(peak, f"peak target {quantity}")
 

@@ -91,6 +91,15 @@ def unevenness(force: Floats, share: Floats) -> Floats:
     return np.asarray(np.abs(force - share) / np.maximum(np.abs(share), least))
 
 
+def first_largest(values: Floats) -> int:
+    """Return the index of the largest value (n,) ≥ 0, of several that agree to rounding the first.
+
+    >>> first_largest(np.array([0.1, 0.3 - 1e-15, 0.3]))
+    1
+    """
+    return int(np.flatnonzero(values >= values.max() * (1.0 - 1e-9))[0])
+
+
 def evenness(force: Floats, share: Floats) -> float:
     """Return the largest of `unevenness` among pads.
 

@@ -75,7 +75,7 @@ def check(rig: Rig, extra: tuple[Finding, ...] = ()) -> Check:
         steel_estimate=measures.steel_estimate(rig, solved),
         share_of_curve=share,
         evenness=float(uneven.max()),
-        uneven_pad=int(np.argmax(uneven)) + 1,
+        uneven_pad=measures.first_largest(uneven) + 1,
         findings=(),
     )
     earlier = target.findings + rig.plan.findings + rig.findings

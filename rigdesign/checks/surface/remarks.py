@@ -84,7 +84,7 @@ def share_remarks(check: Check) -> Iterator[Finding]:
     broken = np.flatnonzero(off > accept.share * (1 + USE_SLACK))
     if not broken.size:
         return
-    worst = int(np.argmax(off))
+    worst = check.uneven_pad - 1
     others = also(f"pad {i + 1}" for i in broken if i != worst)
     force, share = float(check.statics.pad_force[worst]), float(check.share_of_curve[worst])
     asked = ", the default" if accept.share_defaulted else ""

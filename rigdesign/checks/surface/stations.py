@@ -21,6 +21,7 @@ from rigdesign.target.cuts import ACROSS, jump_stations, stretch_directions
 from rigdesign.target.model import Target
 from rigdesign.target.plan_load import ALONG_X, ALONG_Y, Direction, PlanLoad, loads_at
 from rigdesign.target.plan_points import PlanPoints
+from rigdesign.target.plan_stations import ends_of, smooth_stretches
 from rigdesign.target.plan_sum import PlanSum
 
 NEAR = 1e-9
@@ -58,13 +59,15 @@ def sampler_in_plan(
     first, last = _ends(specimen, quantities[0], pad_x)
     own = jump_stations(specimen, quantities[0], *_places(specimen, quantities[0], pad_x, pad_y))
     own = _between(own, first, last)
-    places, breaks = [own], []
-    for points, kinks in _load_stations(target, quantities[0]):
-        places.append(points)
-        breaks.append(kinks)
+    points = _load_stations(target, quantities[0])
+    breaks = [
+        smooth_stretches(load, specimen, quantity)
+        for load in (target.total_plan, target.gravity_plan)
+        for quantity in quantities
+    ]
     edges = np.concatenate([[first, last], *(band.edges for band in judged.values())])
     near = NEAR * (specimen.right - specimen.left)
-    jump = _distinct(_between(edges, first, last), _between(np.concatenate(places), first, last), 0.5 * near)
+    jump = _distinct(_between(edges, first, last), _between(np.concatenate([own, *points]), first, last), 0.5 * near)
     loads = PlanLoads(target, pad_x, pad_y, pad_force)
     return Sampler(target, loads, judged, quantities, jump, _nearest(jump, own), np.concatenate(breaks), near)
 
@@ -77,12 +80,11 @@ def _nearest(stations: Floats, at: Floats) -> Floats:
 
 
 def _ends(specimen: Specimen, quantity: Quantity, pad_x: Floats) -> tuple[float, float]:
-    """The first and last station: those of the axis, or those across; a pad beyond the specimen is within them."""
-    if quantity in ACROSS and specimen.outline is not None:
-        return float(specimen.outline.y.min()), float(specimen.outline.y.max())
-    if specimen.cut == "square to axis":
-        return specimen.left, specimen.right
-    return min(specimen.left, float(pad_x.min())), max(specimen.right, float(pad_x.max()))
+    """The first and last station; cut square to x, a pad beyond the specimen is within them."""
+    first, last = ends_of(specimen, quantity)
+    if quantity in ACROSS or specimen.cut == "square to axis":
+        return first, last
+    return min(first, float(pad_x.min())), max(last, float(pad_x.max()))
 
 
 def _places(specimen: Specimen, quantity: Quantity, pad_x: Floats, pad_y: Floats) -> tuple[Floats, Floats]:
@@ -93,18 +95,15 @@ def _places(specimen: Specimen, quantity: Quantity, pad_x: Floats, pad_y: Floats
     return np.concatenate([pad_x, x]), np.concatenate([pad_y, specimen.reference_axis.at(x)])
 
 
-def _load_stations(target: Target, quantity: Quantity) -> Iterator[tuple[Floats, Floats]]:
-    """Stations [m] of point loads and couples, and of breaks, of the target's loads as cuts see them."""
+def _load_stations(target: Target, quantity: Quantity) -> Iterator[Floats]:
+    """Stations [m] of the target's point loads and couples, as cuts see them."""
     for load in (target.total_plan, target.gravity_plan):
         for direction, start, end, offset in _stretches(target.brief.specimen, quantity):
             seen = load.along(direction)
+            slope = direction.a_y if quantity in ACROSS else direction.a_x
             for curve in (seen.force, seen.turning):
-                pair = []
-                for s in (curve.points[0], curve.breaks):
-                    # straight along the stretch, whose own points lie at offset + s · slope
-                    slope = direction.a_y if quantity in ACROSS else direction.a_x
-                    pair.append(_between(offset + s * slope, start, end))
-                yield pair[0], pair[1]
+                # straight along the stretch, whose own points lie at offset + s · slope
+                yield _between(offset + curve.points[0] * slope, start, end)
 
 
 def _stretches(specimen: Specimen, quantity: Quantity) -> Iterator[tuple[Direction, float, float, float]]:
