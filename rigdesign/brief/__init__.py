@@ -9,6 +9,7 @@ a `Brief` (`rigdesign.brief.model`): validated, in SI units, frozen, tables read
     locate     the line of each key
     messages   what pydantic finds, in one plain message
     sources    texts of brief and tables, from the folder or kept
+    headings   the first line of a table: its columns and their units
     tables     CSV with units in its headings
     context    checks that several parts share
     specimen   [specimen], with its weight

@@ -8,60 +8,22 @@ that stumbles are the rows gone through one by one, to say which of them is wron
 from __future__ import annotations
 
 import csv
-import difflib
 import io
 import math
-import re
 from collections.abc import Sequence
 from dataclasses import dataclass
-from fractions import Fraction
 from functools import cached_property
 from typing import Literal
 
 import numpy as np
 
-from rigdesign.brief.messages import PLAN_RIG
+from rigdesign.brief.headings import PLAIN, Heading, Known, read_heading, shortened
 from rigdesign.brief.model import Floats
-from rigdesign.errors import InputError, TableError
-from rigdesign.units import NUMBER, column_fraction, scaled, split_heading
+from rigdesign.errors import TableError
+from rigdesign.units import scaled
 from rigdesign.words import LARGEST_NUMBER
 
 Repeats = Literal["jump", "none", "any"]
-_PLAIN = re.compile(rf"\s*{NUMBER}\s*")
-_PLAN_COLUMNS = ("y", "turn", "pressure", "torque")
-NOTE = "note"
-NAME = "name"
-"""The kind of a column that holds names: text without a unit."""
-
-
-@dataclass(frozen=True)
-class Known:
-    """The columns that a table must and may have, with their kinds, and whether the brief is one of a plan rig."""
-
-    kinds: dict[str, str]
-    optional: dict[str, str]
-    plan: bool
-
-    @property
-    def every(self) -> dict[str, str]:
-        """All of them by name."""
-        return {**self.kinds, **self.optional}
-
-    @property
-    def wanted(self) -> str:
-        """Those that must be there, for a message."""
-        return ", ".join(
-            column if kind == NAME else f"{column} [unit of {kind}]" for column, kind in self.kinds.items()
-        )
-
-
-@dataclass(frozen=True)
-class Heading:
-    """The first line of a table: the columns' names in the file's order, units, and exact factors of those read."""
-
-    names: tuple[str, ...]
-    units: dict[str, str]
-    factors: dict[str, Fraction]
 
 
 @dataclass(frozen=True)
@@ -153,7 +115,7 @@ def _quickly(text: str, name: str, known: Known) -> tuple[Sequence[Floats], Head
     first, _, body = text.partition("\n")
     if '"' in text or "_" in body or not first.strip() or not body.strip():
         return None
-    heading = _heading(first.strip("\r").split(","), f"{name}, line 1", known)
+    heading = read_heading(first.strip("\r").split(","), f"{name}, line 1", known)
     try:
         values = np.loadtxt(io.StringIO(body), delimiter=",", comments=None, ndmin=2)
     except ValueError:
@@ -166,14 +128,14 @@ def _quickly(text: str, name: str, known: Known) -> tuple[Sequence[Floats], Head
 def _row_by_row(text: str, name: str, known: Known) -> tuple[Sequence[Floats], Heading]:
     """Return the columns as printed, and the heading; raise TableError naming the first row that cannot be used."""
     rows, lines = _rows(text, name)
-    heading = _heading(rows[0], f"{name}, line {lines[0]}", known)
+    heading = read_heading(rows[0], f"{name}, line {lines[0]}", known)
     width, body, lines = len(heading.names), rows[1:], lines[1:]
     if not body:
         raise TableError("the table has a heading and no rows", where=name, remedy="add at least one row")
     for cells, line in zip(body, lines, strict=True):
         if len(cells) != width:
             what = f"the row has {_cells(len(cells))} and the heading {width}"
-            raise TableError(what, where=f"{name}, line {line}", value=_short(",".join(cells)))
+            raise TableError(what, where=f"{name}, line {line}", value=shortened(",".join(cells)))
     columns = []
     for column, printed in zip(heading.names, zip(*body, strict=True), strict=True):
         is_text = column not in heading.factors
@@ -199,69 +161,17 @@ def _rows(text: str, name: str) -> tuple[list[list[str]], list[int]]:
     return rows, lines
 
 
-def _heading(cells: list[str], where: str, known: Known) -> Heading:
-    """Return the heading; raise TableError where a column is unknown, missing, twice there or without its unit."""
-    wanted = known.wanted
-    if len(cells) == 1 and re.search(r"[;\t]", cells[0]):
-        raise TableError("columns are separated by commas", where=where, value=_short(cells[0]), limit=wanted)
-    names: list[str] = []
-    factors: dict[str, Fraction] = {}
-    units: dict[str, str] = {}
-    for text in cells:
-        name, unit = split_heading(text)
-        units[name] = unit or ""
-        if name != NOTE and name not in known.every:
-            raise _unknown_column(name, text, where, known)
-        if name in names:
-            raise TableError("two columns have one name", where=where, value=f'"{name}"')
-        names.append(name)
-        if name != NOTE and known.every[name] != NAME:
-            try:
-                factors[name] = column_fraction(text, known.every[name])
-            except InputError as error:
-                raise TableError(
-                    error.what,
-                    where=f"{where}, column {name}",
-                    value=error.value,
-                    limit=error.limit,
-                    remedy=error.remedy,
-                ) from None
-    missing = [column for column in known.kinds if column not in names]
-    if missing:
-        raise TableError(f'the column "{missing[0]}" is missing', where=where, limit=wanted)
-    return Heading(tuple(names), units, factors)
-
-
-def _unknown_column(name: str, text: str, where: str, known: Known) -> TableError:
-    """Return the error for a column that this table does not have."""
-    if _PLAIN.fullmatch(text):
-        what = "the first line is a heading with units, and this is a number"
-        return TableError(what, where=where, value=text.strip(), limit=known.wanted)
-    if name in _PLAN_COLUMNS and not known.plan:
-        remedy = "delete the column, or give [specimen] outline"
-        return TableError(f'the column "{name}" {PLAN_RIG}', where=where, remedy=remedy)
-    near = difflib.get_close_matches(name.lower(), known.every, n=1)
-    remedy = f'did you mean "{near[0]}"? ' if near else ""
-    return TableError(
-        "this table has no such column",
-        where=where,
-        value=f'"{text.strip()}"',
-        limit=known.wanted,
-        remedy=remedy + 'a column for remarks is headed "note"',
-    )
-
-
 def _numbers(column: str, cells: tuple[str, ...], name: str, lines: list[int]) -> Floats:
     """Return the cells as floats (n,); raise TableError at the first that is not a finite number."""
     for cell, line in zip(cells, lines, strict=True):
-        if not _PLAIN.fullmatch(cell) or not math.isfinite(float(cell.replace("−", "-"))):
+        if not PLAIN.fullmatch(cell) or not math.isfinite(float(cell.replace("−", "-"))):
             where = f"{name}, line {line}, column {column}"
             if not cell.strip():
                 raise TableError("the cell is empty", where=where, remedy="write the number, 0 if it is zero")
             raise TableError(
                 "this is not a number",
                 where=where,
-                value=f'"{_short(cell.strip())}"',
+                value=f'"{shortened(cell.strip())}"',
                 limit="a finite number with a decimal point",
             )
     return np.fromiter((float(cell.replace("−", "-")) for cell in cells), dtype=float, count=len(cells))
@@ -319,7 +229,3 @@ def _place(cell: str) -> float:
 
 def _cells(count: int) -> str:
     return "1 cell" if count == 1 else f"{count} cells"
-
-
-def _short(text: str) -> str:
-    return text if len(text) <= 60 else text[:57] + "..."

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from rigdesign.brief.context import Context, frozen, table_stations
+from rigdesign.brief.headings import NAME
 from rigdesign.brief.layout import PadsTable
 from rigdesign.brief.model import Floats, Line, Outline, Specimen
 from rigdesign.brief.surface.crossings import crossings
@@ -20,7 +21,7 @@ from rigdesign.brief.surface.within import (
     rows_on_outline,
     span,
 )
-from rigdesign.brief.tables import NAME, CsvTable, check_order
+from rigdesign.brief.tables import CsvTable, check_order
 from rigdesign.errors import InputError, TableError
 from rigdesign.words import MOST_PADS
 
