@@ -198,7 +198,13 @@ def test_bands_by_quantity_are_said_with_what_they_are_fractions_of():
     peak = checked.rig.plan.target.torsion_peak
     assert torsion.value.endswith(f"{100 * checked.errors['torsion'].peak:.1f} % of the peak target torsion")
     assert checked.errors["torsion"].reference == peak
-    assert "jack's place alone" in torsion.remedy
+    assert "more pads" in torsion.remedy
+    # pads at the centres of their shares but for 50 mm along y, which the jack stands off as well
+    x, y = np.array([0.5, 0.5, 1.5, 1.5]), np.array([-0.15, 0.45, -0.15, 0.45])
+    checked = found(x, y, np.full(4, 600.0), ((1, 2), (3, 4)), acceptance=tight)
+    failures = [f for f in of_stage(checked, "statics") if f.severity == "failure" and "torsion" in f.text]
+    assert all("jack's place alone" in failure.remedy for failure in failures)
+    assert failures
 
 
 def test_the_jack_s_place_in_plan_is_told_with_what_it_costs():
