@@ -11,10 +11,10 @@ from rigdesign.target.model import Target
 from rigdesign.target.plan_load import PlanLoad
 from rigdesign.target.plan_loads import weight_line
 from rigdesign.target.remarks import along
-from rigdesign.target.words import direction, kind, test_peak
+from rigdesign.target.words import direction, kind, peak_of_test
 from rigdesign.words import STANDARD_GRAVITY
 
-GREATER_Y = "the side of greater y (+y, the leading edge of a right wing seen from above)"
+LEADING_EDGE = ", the leading edge of a right wing seen from above"
 
 # A torsion below this part of the resultant times the span is rounding.
 _NO_TORSION = 1e-9
@@ -30,7 +30,7 @@ def echo_in_plan(target: Target, system: System) -> list[str]:
         _peaks(target, system),
         *_across(target, system),
         *_weight(target, system),
-        *test_peak(target, system),
+        *peak_of_test(target, system),
         *(_load(number, load, target, system) for number, load in enumerate(target.brief.loads, 1)),
         _accuracy(target),
     ]
@@ -42,15 +42,15 @@ def place(x: float, y: float, system: System) -> str:
     return f"x = {show(x, 'length', system, unit=unit)}, y = {show(y, 'length', system, unit=unit)}"
 
 
-def twist(torsion: float) -> str:
-    """Which side a torsion lifts.
+def twist(torsion: float, supported: bool = False) -> str:
+    """Which side a torsion lifts; on two supports no side is a leading edge.
 
     Examples
     --------
     >>> twist(-3.0)
     'lowers the side of greater y (+y, the leading edge of a right wing seen from above)'
     """
-    return f"{'raises' if torsion > 0 else 'lowers'} {GREATER_Y}"
+    return f"{'raises' if torsion > 0 else 'lowers'} the side of greater y (+y{'' if supported else LEADING_EDGE})"
 
 
 def _resultant(target: Target, system: System) -> str:
@@ -89,7 +89,8 @@ def _at_root(target: Target, system: System) -> str:
 def _torsion(torsion: float, target: Target, system: System) -> str:
     if abs(torsion) <= _NO_TORSION * abs(target.resultant) * (target.brief.specimen.right - target.brief.specimen.left):
         return "no torsion about the reference axis"
-    return f"torsion {show(torsion, 'moment', system)} about the reference axis, which {twist(torsion)}"
+    which = twist(torsion, bool(target.brief.specimen.supports))
+    return f"torsion {show(torsion, 'moment', system)} about the reference axis, which {which}"
 
 
 def _whole(target: Target, system: System) -> list[str]:

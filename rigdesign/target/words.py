@@ -47,7 +47,7 @@ def echo(target: Target, system: System = "SI") -> list[str]:
         *_supports(target, system),
         _peaks(target, system),
         *_weight(target, system),
-        *test_peak(target, system),
+        *peak_of_test(target, system),
         *(_load(number, load, target, system) for number, load in enumerate(target.brief.loads, 1)),
     ]
 
@@ -119,7 +119,7 @@ def _force_at(curve: Curve, system: System) -> str:
     return f"{force} at {show(curve.first_moment / total, 'length', system)}"
 
 
-def test_peak(target: Target, system: System) -> list[str]:
+def peak_of_test(target: Target, system: System) -> list[str]:
     """How far the test goes beyond the brief's load."""
     peak = target.brief.peak
     highest = show(abs(target.resultant) * peak, "force", system)
@@ -151,7 +151,8 @@ def kind(load: Load, target: Target, system: System) -> str:
         return _inertia(load, target, system)
     if isinstance(load, PressureLoad):
         least, most = (show(float(p), "pressure", system) for p in (load.pressure.min(), load.pressure.max()))
-        return f"a pressure map of {load.x.size} points, {least} to {most}"
+        values = least if least == most else f"{least} to {most}"
+        return f"a pressure map of {load.x.size} points, {values}"
     if isinstance(load, TorqueLoad):
         stretch = _stretch(float(load.x[0]), float(load.x[-1]), system)
         return f"a table of running torque, {load.x.size} rows {stretch}"
