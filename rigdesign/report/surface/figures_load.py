@@ -167,7 +167,7 @@ def _pads(axes: Axes, frame: Frame, board: Board, check: Check) -> list[tuple[fl
     marks = []
     for k, (x, y) in enumerate(zip(rig.pad_x, rig.pad_y, strict=True)):
         place = frame.at(x, y)
-        at = board.place(*place, MARK, MARK)
+        at = board.place(*place, MARK, MARK, covered=0.0)
         axes.plot(*place, ".", color=INK, markersize=3, zorder=3)
         pieces.leader(axes, place, at, MARK / 2)
         figures_parts.mark(axes, "pad", k + 1, *at)

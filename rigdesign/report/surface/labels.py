@@ -42,14 +42,17 @@ class Board:
                 np.column_stack([np.linspace(x[k], x[k + 1], parts), np.linspace(y[k], y[k + 1], parts)])
             )
 
-    def place(self, x: float, y: float, width: float, height: float, start: float = 0.0) -> tuple[float, float]:
+    def place(
+        self, x: float, y: float, width: float, height: float, start: float = 0.0, covered: float = COVERED
+    ) -> tuple[float, float]:
         """Return the centre of a label of this size for an object at x, y, and take the place.
 
-        `start` is how far from the object the label begins; 0 tries a label on the object itself first.
+        `start` is how far from the object the label begins; 0 tries a label on the object itself first.  `covered` is
+        the weight of a point of a drawn line under the label, in millimetres of distance.
         """
         centre_x, centre_y, far = _candidates(x, y, width, height, start)
         overlap = self._overlap(centre_x, centre_y, width, height)
-        cost = far + COVERED * self._covered(centre_x, centre_y, width, height)
+        cost = far + covered * self._covered(centre_x, centre_y, width, height)
         # where every place touches something the smallest overlap wins
         best = int(np.lexsort((np.arange(cost.size), cost, np.round(overlap, 6)))[0])
         place = float(centre_x[best]), float(centre_y[best])
