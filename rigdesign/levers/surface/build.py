@@ -11,9 +11,8 @@ from rigdesign.levers.grouping import millimetres
 from rigdesign.levers.model import Rig, Tree
 from rigdesign.levers.surface.clashes import Shape, clashing
 from rigdesign.levers.surface.drilling import DrilledInPlan, drill_in_plan
-from rigdesign.levers.surface.grouping import Grouped, group_in_plan, steel_of
+from rigdesign.levers.surface.grouping import Grouped, group_in_plan
 from rigdesign.levers.surface.pieces import tree_in_plan
-from rigdesign.levers.surface.subsets import LONELY
 from rigdesign.levers.surface.wiring import Branches, branches_of
 from rigdesign.pads.model import PadPlan
 from rigdesign.pads.outcome import Progress
@@ -51,7 +50,7 @@ def build_in_plan(plan: PadPlan, progress: Progress | None = None) -> Rig | Refu
 
 def _drilled(plan: PadPlan, grouped: Grouped) -> Rig | Refusal:
     """The rig of one grouping."""
-    step = plan.target.brief.levers.drill_step / grouped.field.extent
+    step = plan.target.brief.levers.drill_step / grouped.maker.field.extent
     branches = branches_of(grouped.root, plan.n_pads, step)
     drilled = drill_in_plan(plan, branches)
     if isinstance(drilled, Refusal):
@@ -116,17 +115,20 @@ def _grouping_words(plan: PadPlan, grouped: Grouped, branches: Branches) -> str:
     head = f"{_counted(branches)} in {_tiers(branches.depth)}, {steel}"
     if plan.target.brief.levers.grouping is not None:
         return f"grouping: as prescribed, {head}"
-    lonely = round((grouped.root.value - steel_of(grouped.root.value)) / LONELY)
+    lonely, within = grouped.lonely, "within the limits"
     if lonely:
         first = plan.target.brief.levers.pair
-        head += f', the fewest pads found that hang without a partner ("{first}"): {lonely}'
+        head += f', pads that hang without a partner ("{first}"): {lonely}'
     if grouped.least is None:
         return f"grouping: {head}, the best found ({grouped.words}); not proven to be the least"
-    above = grouped.root.value / grouped.least - 1.0
-    if above <= 1e-9:
-        return f"grouping: {head}, proven: the least within the limits, whether pieces cross or not"
+    more = lonely - grouped.maker.lonely(grouped.least)
+    if grouped.root is grouped.least:
+        proven = f"the fewest such pads and the least steel {within}" if lonely else f"the least {within}"
+        return f"grouping: {head}, proven: {proven}, whether pieces cross or not"
     best = ", and the least of all that keep clear" if grouped.is_best else ""
-    return f"grouping: {head}, {100 * above:.2g} % above the proven least without regard to crossings{best}"
+    above = f"{100 * grouped.above:.2g} % above" if grouped.above > 0 else f"{-100 * grouped.above:.2g} % below"
+    pads = f" (with {more} more pads without a partner)" if more else ""
+    return f"grouping: {head}, {above} the proven least without regard to crossings{pads}{best}"
 
 
 def _counted(branches: Branches) -> str:

@@ -22,7 +22,8 @@ from rigdesign.levers.surface.hanging import (
     hang_moving,
     hang_staying,
 )
-from rigdesign.levers.surface.judging import Use, judge_of, missed
+from rigdesign.levers.surface.judging import Use, judge_of
+from rigdesign.levers.surface.pad_limits import PadLimits
 from rigdesign.levers.surface.wiring import Branches, Planned
 from rigdesign.levers.wiring import Ints
 from rigdesign.pads.model import PadPlan
@@ -38,7 +39,17 @@ MOVING_COST = 12
 """A rig whose pads move costs so many times more to judge than one whose pads stay."""
 
 A_STEP_AWAY = 0.01
-"""Part of the band use that may be given up to bring the jack a drill step nearer to where it was planned."""
+"""Part of the planned band use that may be given up to bring the jack a drill step nearer to where it was planned."""
+
+FURTHER_AWAY = 1.0
+"""The same for each step beyond the first: a place of the jack within a step of the planned one is always near."""
+
+OFF_PLAN = 0.1
+"""Part of the planned band use that may be given up to bring the force that is furthest off its plan by its whole size
+nearer to it: once errors are as small as planned, the forces that the plan chose are what counts."""
+
+LEAST_PLANNED = 1e-3
+"""A planned band use below this counts as this: less is never seen in a test."""
 
 
 @dataclass(frozen=True)
@@ -71,7 +82,7 @@ def drill_in_plan(plan: PadPlan, branches: Branches) -> DrilledInPlan | Refusal:
         hung = hang(start[None])
         use = float(judge(hung.pad_x, hung.pad_y, hung.pad_force)[0])
         return DrilledInPlan(hung, start, use, "nothing to drill")
-    value = _value(plan, hang, judge, start)
+    value = _value(PadLimits(plan, branches), hang, judge, start)
     if not np.isfinite(value(start[None])[0]):
         return _no_steps(step)
     size = start.size
@@ -87,9 +98,14 @@ def drill_in_plan(plan: PadPlan, branches: Branches) -> DrilledInPlan | Refusal:
     return DrilledInPlan(hung, found.steps, use, f"drilling: a descent over {found.judged} rigs, {end}{where}")
 
 
-def _value(plan: PadPlan, hang: Hang, judge: Use, start: Ints) -> Callable[[Ints], Floats]:
-    """Band use of rows of steps; far larger where pad limits are missed, infinite where a piece breaks a limit."""
-    brief = plan.target.brief
+def _value(limits: PadLimits, hang: Hang, judge: Use, start: Ints) -> Callable[[Ints], Floats]:
+    """What rows of steps are worth: the band use, but none below the plan's, and what is lost of the plan itself.
+
+    Far larger where pad limits are missed, infinite where a piece breaks a limit.
+    """
+    plan = limits.plan
+    brief, wanted = plan.target.brief, np.abs(plan.force)
+    planned = max(LEAST_PLANNED, float(judge(plan.x[None], plan.y[None], wanted[None])[0]))
 
     def value(rows: Ints) -> Floats:
         result = np.full(len(rows), np.inf)
@@ -100,11 +116,14 @@ def _value(plan: PadPlan, hang: Hang, judge: Use, start: Ints) -> Callable[[Ints
         kept = hung.kept(brief.levers)
         if not kept.any():
             return result
-        force = hung.pad_force[kept]
-        use = judge(hung.pad_x[kept], hung.pad_y[kept], force)
+        pads = hung.pad_x[kept], hung.pad_y[kept], hung.pad_force[kept]
+        use = judge(*pads)
         away = np.hypot(hung.jack_x - plan.jack_x, hung.jack_y - plan.jack_y)[kept] / brief.levers.drill_step
-        excess = missed(brief, force)
-        result[near[kept]] = use * (1.0 + A_STEP_AWAY * away) + np.where(excess > 0, BROKEN * (1.0 + excess), 0.0)
+        off = np.abs(pads[2] / wanted - 1.0).max(axis=1)
+        lost = A_STEP_AWAY * away + FURTHER_AWAY * np.maximum(away - 1.0, 0.0) + OFF_PLAN * off
+        excess = limits.missed(*pads)
+        missed = np.where(excess > 0, BROKEN * (1.0 + excess), 0.0)
+        result[near[kept]] = np.maximum(use, planned) + planned * lost + missed
         return result
 
     return value

@@ -10,12 +10,12 @@ import numpy as np
 from rigdesign.errors import BriefError
 from rigdesign.findings import Refusal
 from rigdesign.levers.grouping import EMPTY_PAD, empty_pad
-from rigdesign.levers.surface.limits import Field, Limits, field_of, limits_of
+from rigdesign.levers.surface.limits import field_of, limits_of
 from rigdesign.levers.surface.nodes import Maker, Node, items_of
-from rigdesign.levers.surface.refusals import broken_prescription, why_none
+from rigdesign.levers.surface.refusals import broken_prescription, too_few_tiers, why_none
 from rigdesign.levers.surface.repair import CLASH, Repair
 from rigdesign.levers.surface.search import Search, clash_count, first_tree
-from rigdesign.levers.surface.subsets import BROKEN, LONELY, Problem, partners, steel_rule
+from rigdesign.levers.surface.subsets import BROKEN, Problem, partners, steel_rule
 from rigdesign.levers.surface.wiring import node_of_grouping
 from rigdesign.pads.model import PadPlan
 
@@ -25,7 +25,7 @@ EXACT = 12
 UNFINISHED = 20_000
 """Unfinished trees that are looked at to find, with proof, the best tree whose pieces keep clear of one another."""
 
-WORK, WORK_PER_PAD = 2_000_000, 120_000
+WORK, WORK_PER_PAD = 4_000_000, 200_000
 """Splits that a search over many pads looks at: at least so many, and so many a pad."""
 
 
@@ -33,14 +33,13 @@ WORK, WORK_PER_PAD = 2_000_000, 120_000
 class Grouped:
     """A tree over the pads.
 
-    `least` is the proven least value without regard to clearance, scaled, None where nothing is proven; `clashes` the
-    number of pairs of pieces of one tier that are too close; `is_best` whether no tree is better that keeps clear.
+    `least` is the best tree without regard to clearance, proven, None where nothing is proven; `clashes` the number of
+    pairs of pieces of one tier that are too close; `is_best` whether no tree is better that keeps clear.
     """
 
-    field: Field
-    limits: Limits
+    maker: Maker
     root: Node
-    least: float | None
+    least: Node | None
     clashes: int
     is_best: bool
     words: str
@@ -48,12 +47,17 @@ class Grouped:
     @property
     def steel(self) -> float:
         """Steel estimate before drilling [N^(2/3)·m^(5/3)]."""
-        return steel_of(self.root.value) * self.field.steel_unit
+        return self.maker.steel(self.root) * self.maker.field.steel_unit
 
+    @property
+    def lonely(self) -> int:
+        """How many pads hang without a partner."""
+        return self.maker.lonely(self.root)
 
-def steel_of(value: float) -> float:
-    """The steel in a value, lonely pads left out (broken limits cost digits and are refused before)."""
-    return value % LONELY
+    @property
+    def above(self) -> float:
+        """Steel above that of the proven least tree, as a fraction; 0 where nothing is proven."""
+        return 0.0 if self.least is None else self.maker.steel(self.root) / self.maker.steel(self.least) - 1.0
 
 
 def group_in_plan(
@@ -72,9 +76,11 @@ def group_in_plan(
         return empty_pad(int(empty[0]) + 1)
     maker = Maker(field, limits, partners(field.x, field.y, limits.pair))
     if plan.n_pads == 1:
-        return Grouped(field, limits, maker.pad(0), None, 0, True, "grouping: the one pad hangs on the jack itself")
+        return Grouped(maker, maker.pad(0), None, 0, True, "grouping: the one pad hangs on the jack itself")
     if rules.grouping is not None:
         return _prescribed(plan, replace(maker, partner=None))
+    if limits.tiers is not None and (3 if limits.plates else 2) ** min(limits.tiers, 40) < plan.n_pads:
+        return too_few_tiers(maker)
     return _exact(maker) if plan.n_pads <= EXACT else _searched(maker, progress)
 
 
@@ -89,13 +95,13 @@ def _exact(maker: Maker) -> Grouped | Refusal:
         best = maker.nested(solved.nest, pads) if np.isfinite(solved.value) else None
     if best is None or solved.value >= BROKEN:
         return why_none(maker, pads)
-    clashes, is_best = clash_count(best, limits.clearance), True
+    clashes, is_best, least = clash_count(best, limits.clearance), True, best
     if clashes:
         if limits.tiers is not None and len(solved.best) == 1:
             solved = solved.problem.solve(limits.tiers)
         best, is_best = _kept_clear(maker, Repair(solved, pads, 1, {}, limits.clearance), best)
         clashes = clash_count(best, limits.clearance)
-    return Grouped(field, limits, best, solved.value, clashes, is_best, "")
+    return Grouped(maker, best, least, clashes, is_best, "")
 
 
 def _kept_clear(maker: Maker, repair: Repair, best: Node) -> tuple[Node, bool]:
@@ -117,7 +123,7 @@ def _searched(maker: Maker, progress: Callable[[float], None] | None) -> Grouped
     if found.value - CLASH * clashes >= BROKEN or (tiers is not None and found.root.height > tiers):
         return why_none(maker, [maker.pad(index) for index in range(maker.field.n_pads)], found.root)
     words = f"{found.tries} branches joined anew"
-    return Grouped(maker.field, maker.limits, found.root, None, clashes, False, words)
+    return Grouped(maker, found.root, None, clashes, False, words)
 
 
 def _prescribed(plan: PadPlan, maker: Maker) -> Grouped | Refusal:
@@ -133,4 +139,4 @@ def _prescribed(plan: PadPlan, maker: Maker) -> Grouped | Refusal:
     if broken is not None:
         return broken
     clashes = clash_count(root, maker.limits.clearance)
-    return Grouped(maker.field, maker.limits, root, None, clashes, False, "as prescribed")
+    return Grouped(maker, root, None, clashes, False, "as prescribed")

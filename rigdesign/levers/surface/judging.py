@@ -6,8 +6,6 @@ from collections.abc import Callable
 
 import numpy as np
 
-from rigdesign.brief.model import Brief
-from rigdesign.pads.limits import TOUCH, force_limits
 from rigdesign.pads.model import PadPlan
 from rigdesign.pads.surface.error_rows import ErrorRows, error_rows
 from rigdesign.target.curve import Floats
@@ -60,13 +58,3 @@ def _largest(rows: ErrorRows, brought: Floats) -> Floats:
     error = brought - rows.wanted
     use = np.maximum(error / rows.above, -error / rows.below).max(axis=1, initial=0.0)
     return np.asarray(np.round(use, DIGITS))
-
-
-def missed(brief: Brief, force: Floats) -> Floats:
-    """How far rigs with pad forces (k, n_pads) miss the limits on a pad's force, relative to the mean force; (k,)."""
-    least, largest = force_limits(brief)
-    scale = force.mean(axis=1)
-    result = np.maximum(least * (1 - TOUCH) - force, 0.0).sum(axis=1)
-    if np.isfinite(largest):
-        result = result + np.maximum(force - largest * (1 + TOUCH), 0.0).sum(axis=1)
-    return np.asarray(result / scale)

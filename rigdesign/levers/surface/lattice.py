@@ -8,13 +8,24 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import dataclass
-from functools import cache
+from functools import cache, cached_property
 from itertools import combinations
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
 
 Masks = NDArray[np.int64]
+
+
+class Singles(NamedTuple):
+    """Splits with parts of one item: whether each split is one (n_splits,), and for those that are the item's place.
+
+    `position` (n_single, parts) counts from 0 in the order of the items; −1 is a part of several items.
+    """
+
+    split: NDArray[np.bool_]
+    position: Masks
 
 
 @dataclass(frozen=True)
@@ -23,6 +34,16 @@ class Splits:
 
     pairs: Masks
     triples: Masks
+
+    @cached_property
+    def single_pairs(self) -> Singles:
+        """Which pairs have a part of one item."""
+        return _singles(self.pairs)
+
+    @cached_property
+    def single_triples(self) -> Singles:
+        """Which triples have a part of one item."""
+        return _singles(self.triples)
 
 
 @dataclass(frozen=True)
@@ -59,6 +80,13 @@ def splits_of(size: int) -> Splits:
         second = _subsets(others)[:-1] + lowest
         triples.append(np.stack([np.full(second.size, one), second, rest - second], axis=1))
     return Splits(_even_first(pairs), _even_first(np.concatenate(triples)))
+
+
+def _singles(parts: Masks) -> Singles:
+    single = (parts & (parts - 1)) == 0
+    split = single.any(axis=1)
+    bit = np.log2(parts[split]).astype(np.int64)
+    return Singles(split, np.where(single[split], bit, -1))
 
 
 def _subsets(mask: int) -> Masks:

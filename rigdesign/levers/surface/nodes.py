@@ -18,6 +18,15 @@ from rigdesign.levers.surface.limits import Field, Limits, is_flat
 from rigdesign.levers.surface.subsets import BROKEN, LONELY, Items
 
 
+def pads_of(mask: int) -> list[int]:
+    """Pads (from 0) of a mask.
+
+    >>> pads_of(0b1101)
+    [0, 2, 3]
+    """
+    return [pad for pad in range(mask.bit_length()) if mask >> pad & 1]
+
+
 @dataclass(frozen=True, eq=False, slots=True)
 class Node:
     """A pad (no kids) or a piece: the pads under it as a mask, load, force centroid, value and tiers below it."""
@@ -75,9 +84,16 @@ class Maker:
 
     def own_value(self, kids: tuple[Node, ...], x: float, y: float) -> float:
         """Steel of one piece with its pivot at x, y, and what it adds for lonely pads and broken limits."""
-        reach = [hypot(kid.x - x, kid.y - y) for kid in kids]
-        steel = sum(cbrt((kid.load * r) ** 2) * r for kid, r in zip(kids, reach, strict=True))
-        return steel + BROKEN * self._broken(kids, reach) + LONELY * self._lonely(kids)
+        reach = _reach(kids, x, y)
+        return _steel(kids, reach) + BROKEN * self._broken(kids, reach) + LONELY * self._lonely(kids)
+
+    def steel(self, root: Node) -> float:
+        """Steel of a tree alone."""
+        return sum(_steel(node.kids, _reach(node.kids, node.x, node.y)) for node, _ in root.pieces())
+
+    def lonely(self, root: Node) -> int:
+        """How many pads of a tree hang without a partner."""
+        return sum(self._lonely(node.kids) for node, _ in root.pieces())
 
     def _broken(self, kids: tuple[Node, ...], reach: list[float]) -> int:
         limits = self.limits
@@ -108,6 +124,16 @@ class Maker:
             return branch
         kids = tuple(self.replaced(kid, branch) if kid.mask & branch.mask else kid for kid in root.kids)
         return self.piece(kids)
+
+
+def _reach(kids: tuple[Node, ...], x: float, y: float) -> list[float]:
+    """Distances of a piece's ends from its pivot at x, y."""
+    return [hypot(kid.x - x, kid.y - y) for kid in kids]
+
+
+def _steel(kids: tuple[Node, ...], reach: list[float]) -> float:
+    """Steel of one piece."""
+    return sum(cbrt((kid.load * r) ** 2) * r for kid, r in zip(kids, reach, strict=True))
 
 
 def items_of(nodes: list[Node]) -> Items:

@@ -10,7 +10,7 @@ import numpy as np
 from rigdesign.findings import Refusal
 from rigdesign.levers.grouping import millimetres, pads_in_words
 from rigdesign.levers.surface.limits import FLATTEST, Limits, is_flat
-from rigdesign.levers.surface.nodes import Maker, Node, items_of
+from rigdesign.levers.surface.nodes import Maker, Node, items_of, pads_of
 from rigdesign.levers.surface.subsets import BROKEN, Problem, Rule, steel_rule
 from rigdesign.target.curve import Floats
 
@@ -57,6 +57,21 @@ def why_none(maker: Maker, pads: list[Node], best: Node | None = None) -> Refusa
         ways.append("allow plates (plates = true)")
     limit = " or ".join(f"{key} {shown[key]}" for key, _ in helps)
     return Refusal("levers", text, limit, best_words, ", or ".join([*ways, "change the number of pads"]))
+
+
+def too_few_tiers(maker: Maker) -> Refusal:
+    """Refusal where the pads are more than so many tiers can have."""
+    tiers, plates, count = maker.limits.tiers or 0, maker.limits.plates, maker.field.n_pads
+    kinds = 3 if plates else 2
+    needed = next(more for more in range(tiers + 1, 64) if kinds**more >= count)
+    remedy = f"raise tiers to {needed} or more, or take fewer pads"
+    return Refusal(
+        "levers",
+        f"{count} pads are more than hang on so few tiers",
+        f"tiers {tiers}",
+        f"{tiers} tiers of {'plates' if plates else 'levers'} hold {kinds**tiers} pads at most",
+        remedy if plates else f"{remedy}, or allow plates (plates = true)",
+    )
 
 
 _VERB = {"ratio_limit": "raise", "shortest_arm": "lower", "longest": "raise", "tiers": "raise"}
@@ -129,7 +144,7 @@ def joins(node: Node) -> str:
 
 
 def _pads(node: Node) -> np.ndarray:
-    return np.array([pad for pad in range(node.mask.bit_length()) if node.mask >> pad & 1])
+    return np.array(pads_of(node.mask))
 
 
 def broken_prescription(maker: Maker, root: Node) -> Refusal | None:

@@ -21,8 +21,8 @@ from rigdesign.levers.surface.nodes import Node
 from rigdesign.levers.surface.subsets import Solved
 from rigdesign.target.curve import Floats
 
-CLASH = 1e4
-"""Value of a pair of pieces that clash: less than a broken limit, more than lonely pads."""
+CLASH = 1e6
+"""Value of a pair of pieces that clash: less than a broken limit, more than all lonely pads."""
 
 
 @dataclass(frozen=True, slots=True)

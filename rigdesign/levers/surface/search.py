@@ -19,9 +19,9 @@ import numpy as np
 from rigdesign.levers.descent import MODULUS, MULTIPLIER
 from rigdesign.levers.surface.clashes import Shape, clashing
 from rigdesign.levers.surface.lattice import splits_of
-from rigdesign.levers.surface.nodes import Maker, Node, items_of
+from rigdesign.levers.surface.nodes import Maker, Node, items_of, pads_of
 from rigdesign.levers.surface.repair import CLASH, Repair
-from rigdesign.levers.surface.subsets import Problem, Solved, steel_rule
+from rigdesign.levers.surface.subsets import BROKEN, Problem, Solved, steel_rule
 from rigdesign.target.curve import Floats
 
 MOST_ITEMS, MOST_ITEMS_PLATES = 10, 9
@@ -110,6 +110,7 @@ class Search:
         """Note where the search stands."""
         self.value = self._full_value(self.root)
         self.work, self.tries = 0, 0
+        self._clashing: list[int] = []
         self._known: dict[frozenset[int], float] = {}
 
     def run(self, progress: Callable[[float], None] | None = None) -> Found:
@@ -123,6 +124,7 @@ class Search:
                     best = self.root, self.value
                 else:
                     self.root, self.value = best
+                    self._note_clashes()
                 self._disturb()
                 stale = 0
             if progress is not None and self.tries % 50 == 0:
@@ -134,7 +136,7 @@ class Search:
     def _full_value(self, root: Node) -> float:
         tiers = self.maker.limits.tiers
         over = 0 if tiers is None else max(0, root.height - tiers)
-        return root.value + CLASH * clash_count(root, self.maker.limits.clearance) + TOO_HIGH * over
+        return root.value + CLASH * clash_count(root, self.maker.limits.clearance) + BROKEN * over
 
     def _try(self) -> bool:
         """Join some items anew; whether the tree became better."""
@@ -162,7 +164,20 @@ class Search:
         if not value < self.value - small:
             return False
         self.root, self.value = root, value
+        self._note_clashes()
         return True
+
+    def _note_clashes(self) -> None:
+        """Note the pads under pieces that clash: they are where to look first."""
+        self._clashing = []
+        if self.value % BROKEN < CLASH:
+            return
+        tiers: dict[int, list[Node]] = {}
+        for node, tier in self.root.pieces():
+            tiers.setdefault(tier, []).append(node)
+        for nodes in tiers.values():
+            for pair in clashing([node.shape for node in nodes], self.maker.limits.clearance):
+                self._clashing += [pad for k in pair for pad in pads_of(nodes[k].mask)]
 
     def _repaired(self, opened: _Opened, solved: Solved, small: float) -> bool:
         """Take the best branch that keeps clear of the others, if there is one."""
@@ -186,7 +201,8 @@ class Search:
         tiers = None if maker.limits.tiers is None else max(0, maker.limits.tiers - opened.tier + 1)
         problem = Problem(items, maker.limits, steel_rule(maker.limits), partner, noise)
         table = splits_of(items.count)
-        self.work += OVERHEAD + 2 * len(table.pairs) + (3 * len(table.triples) if maker.limits.plates else 0)
+        splits = 2 * len(table.pairs) + (3 * len(table.triples) if maker.limits.plates else 0)
+        self.work += OVERHEAD + splits * (1 if tiers is None else 1 + tiers // 2)
         return problem.solve(tiers)
 
     def _disturb(self) -> None:
@@ -199,12 +215,15 @@ class Search:
         if np.isfinite(nest.value):
             self.root = self.maker.replaced(self.root, self.maker.nested(nest.nest, opened.items))
             self.value = self._full_value(self.root)
+            self._note_clashes()
 
     def _opened(self) -> _Opened:
         """Open the branch around a pad and one of its neighbours."""
         field, sequence = self.maker.field, self.sequence
         most = MOST_ITEMS_PLATES if self.maker.limits.plates else MOST_ITEMS
         one = sequence.below(field.n_pads)
+        if self._clashing and sequence.below(2):
+            one = self._clashing[sequence.below(len(self._clashing))]
         other = int(field.near[one, sequence.below(min(NEAREST, field.n_pads - 1))])
         top, tier = self.root, 1
         while True:
@@ -228,11 +247,7 @@ class Search:
         return _Opened(top, tier, items)
 
 
-TOO_HIGH = 1e6
-"""Value of a tier beyond the limit."""
-
-
-def first_tree(maker: Maker, order: Callable[[list[int]], list[int]] | None = None) -> Node:
+def first_tree(maker: Maker) -> Node:
     """A first tree: the pads halved by load again and again, across their longer side, as evenly as the tiers ask."""
     tiers = maker.limits.tiers
     kinds = 3 if maker.limits.plates else 2

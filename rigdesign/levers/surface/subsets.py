@@ -25,11 +25,11 @@ from rigdesign.levers.surface.lattice import Masks, Ring, ring, rings, splits_of
 from rigdesign.levers.surface.limits import Limits, is_flat
 from rigdesign.target.curve import Floats
 
-BROKEN = 1e6
-"""Value of a broken limit: more than all lonely pads."""
+BROKEN = 1e8
+"""Value of a broken limit: more than all clashes (`repair.CLASH`)."""
 
 LONELY = 100.0
-"""Value of a lonely pad: more than all steel, which is below 10 in shares and extents."""
+"""Value of a lonely pad: more than all steel, which is below 10 in shares and extents wherever trees are searched."""
 
 TIE = 1e-12
 """Two trees whose values differ by less than this fraction are equal: rounding must not choose between them."""
@@ -91,13 +91,13 @@ def steel_rule(limits: Limits) -> Rule:
 
     def link(load: Floats, r: Floats) -> Floats:
         steel = np.cbrt((load * r) ** 2) * r
-        return steel + BROKEN * (r < limits.shortest) if limits.shortest > 0 else steel
+        return np.asarray(steel + BROKEN * (r < limits.shortest) if limits.shortest > 0 else steel)
 
     def lever(ratio: Floats, length: Floats) -> Floats:
-        return np.asarray(BROKEN * ((ratio > limits.ratio).astype(float) + (length > limits.longest)))
+        return np.where(ratio > limits.ratio, BROKEN, 0.0) + np.where(length > limits.longest, BROKEN, 0.0)
 
     def plate(length: Floats) -> Floats:
-        return BROKEN * (length > limits.longest)
+        return np.where(length > limits.longest, BROKEN, 0.0)
 
     return Rule(link, lever, plate if np.isfinite(limits.longest) else None, np.add)
 
@@ -161,7 +161,7 @@ class Problem:
             fits = items.height <= layer if tiers is not None else np.ones(items.count, bool)
             best[layer, 1 << np.arange(items.count)] = np.where(fits, items.value, np.inf)
         for subsets in rings(items.count):
-            rows = np.arange(len(subsets.masks))
+            rows = np.arange(subsets.masks.size)
             own = self._own(subsets, rows)
             for layer in range(0 if tiers is None else 1, layers):
                 values = self._joined(subsets, rows, best[max(0, layer - 1)], own)
@@ -222,24 +222,24 @@ class Problem:
         """How many pads each split leaves on a piece without a partner, (n_rows, n_splits)."""
         assert self.partner is not None
         count, table = self.items.count, splits_of(subsets.size)
-        tables = [table.pairs, table.triples] if self.limits.plates else [table.pairs]
+        singles = [table.single_pairs, table.single_triples] if self.limits.plates else [table.single_pairs]
         # the item beyond the last stands for "no pad": it is alone with nobody and minds nothing
         partner = np.zeros((count + 1, count + 1), bool)
         partner[:-1, :-1] = self.partner
         is_pad = np.append(self.items.is_pad, False)
         result = []
-        for parts in tables:
-            single = (parts & (parts - 1)) == 0
-            position = np.where(single, np.log2(np.maximum(parts, 1)).astype(np.int64), 0)
-            item = np.where(single, subsets.members[rows][:, position], count)
+        for split, position in singles:
+            item = np.where(position >= 0, subsets.members[rows][:, position], count)
             lonely = np.zeros(item.shape[:2])
-            for one in range(parts.shape[1]):
+            for one in range(position.shape[1]):
                 has = np.zeros(item.shape[:2], bool)
-                for other in range(parts.shape[1]):
+                for other in range(position.shape[1]):
                     if other != one:
                         has |= partner[item[:, :, one], item[:, :, other]]
                 lonely += is_pad[item[:, :, one]] & ~has
-            result.append(lonely)
+            values = np.zeros((len(rows), split.size))
+            values[:, split] = lonely
+            result.append(values)
         return np.concatenate(result, axis=1)
 
 
