@@ -23,6 +23,8 @@ from rigdesign.pads.model import PadPlan, Proof
 from rigdesign.target.curve import Floats
 from rigdesign.target.model import Target
 
+SAME_LINE = 1e-9  # m: pads that are nearer to y = 0 stand on it
+
 
 def check_with_holes(rig: Rig, holes: Path) -> Check:
     """Return the check of a rig with the holes of a table (the layout of holes.csv) in place of its own.
@@ -107,10 +109,12 @@ def recheck(rig: Rig, brief: Brief) -> Check:
     Raises
     ------
     InputError
-        Where the rig's jacks pull nothing together, so that they cannot be scaled.
+        Where the rig's jacks pull nothing together, so that they cannot be scaled, or pads stand off the line y = 0
+        of a brief without an outline.
     """
     from rigdesign.target import build_target
 
+    _require_outline(rig, brief)
     target = build_target(brief)
     total = float(rig.jack_forces.sum())
     if total == 0:
@@ -121,6 +125,21 @@ def recheck(rig: Rig, brief: Brief) -> Check:
     # what the searches did and remarked was about the old target
     moved = replace(rig, plan=plan, trees=trees, words="the levers are those of a rig that exists", findings=())
     return check(moved, tuple(_target_remarks(rig, moved, scale)))
+
+
+def _require_outline(rig: Rig, brief: Brief) -> None:
+    """A brief without an outline knows nothing of places across the span: torsion would be passed over."""
+    off = np.abs(rig.pad_y)
+    if brief.specimen.is_surface or off.max() <= SAME_LINE:
+        return
+    worst = int(np.argmax(off))
+    raise InputError(
+        "a plan rig cannot be checked against a brief without an outline",
+        where=f"rig, pad {worst + 1}",
+        value=f"y = {show(float(rig.pad_y[worst]), 'length', unit='m')}",
+        limit="y = 0 for every pad",
+        remedy="give [specimen] outline in the brief",
+    )
 
 
 def _rescaled(plan: PadPlan, target: Target, scale: float) -> PadPlan:

@@ -24,9 +24,9 @@ from rigdesign.target.plan_points import PlanPoints
 from rigdesign.target.plan_stations import ends_of, smooth_stretches
 from rigdesign.target.plan_sum import PlanSum
 
-NEAR = 1e-9
+NEAR = 1e-10
 """Of the span: how far a cut's sides stand off it; places nearer than half of it are on one cut.  A running load adds
-a part in 1e9 over that distance."""
+a part in 1e10 over that distance."""
 
 
 @dataclass(frozen=True)
