@@ -16,9 +16,7 @@ from rigdesign.report.scales import Scale, scale
 from rigdesign.target.curve import Floats
 from rigdesign.target.cuts import ACROSS
 
-_SYMBOL: dict[Quantity, str] = {
-    "shear": "V", "moment": "M", "torsion": "T", "shear across": "V across", "moment across": "M across",
-}  # fmt: skip
+_SYMBOL: dict[Quantity, str] = {"shear": "V", "moment": "M", "torsion": "T", "shear across": "V", "moment across": "M"}
 
 
 @styled

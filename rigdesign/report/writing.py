@@ -71,6 +71,7 @@ def figure_files(check: Check, *, svg: bool = True, png: bool = False, system: S
     from rigdesign.report.figures_curves import across, shear_and_moment
     from rigdesign.report.figures_load import load_and_pads, target_sheet
     from rigdesign.report.figures_tree import elevation
+    from rigdesign.target.cuts import ACROSS
 
     sheets = {
         "target": target_sheet(check.rig.plan.target, system),
@@ -78,11 +79,12 @@ def figure_files(check: Check, *, svg: bool = True, png: bool = False, system: S
         "shear_and_moment": shear_and_moment(check, system),
         "tree": elevation(check, system),
     }
-    if check.rig.plan.target.brief.specimen.is_surface:
+    brief = check.rig.plan.target.brief
+    if brief.specimen.is_surface:
         from rigdesign.report.surface.figures_plan import plan_sheet
 
         sheets["plan"] = plan_sheet(check, system)
-    if check.across is not None:
+    if any(rule.quantity in ACROSS for rule in brief.acceptance.rules):
         sheets["across"] = across(check, system)
     return drawn(sheets, svg=svg, png=png)
 

@@ -20,6 +20,7 @@ from rigdesign.report.surface import ground, pieces, pressure_map
 from rigdesign.report.surface.frame import Frame, fitted, plan_panel
 from rigdesign.report.surface.labels import Board
 from rigdesign.target.model import Target
+from rigdesign.target.plan_load import ALONG_X
 
 LEFT, RIGHT, HEAD = 22.0, 32.0, 26.0
 """Margins of the sheet beside and above the drawing [mm]; the bar of the pressure stands at the right."""
@@ -127,7 +128,8 @@ def _internal(axes: Axes, target: Target, quantity: Quantity, system: System) ->
     """Draw V, M or T of the target along the span with its peak."""
     specimen = target.brief.specimen
     even = np.linspace(specimen.left, specimen.right, STEPS)
-    breaks = np.concatenate([target.total.breaks, np.array(specimen.supports), specimen.reference_axis.x])
+    turning = target.total_plan.along(ALONG_X).turning
+    breaks = np.concatenate([target.total.breaks, turning.breaks, specimen.supports, specimen.reference_axis.x])
     breaks = breaks[(breaks >= specimen.left) & (breaks <= specimen.right)]
     x = np.repeat(np.unique(np.concatenate([even, breaks])), 2)
     values = np.empty_like(x)

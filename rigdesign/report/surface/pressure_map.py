@@ -39,8 +39,8 @@ RIBBON = 9.0
 MOST_LABELS = 12
 """Point loads are labelled up to so many."""
 # pale enough for numbers upon it, light to dark with the magnitude; against z it turns to the other hue
-_ALONG = ["#F7F7F7", "#C9DFEF", "#8FBFDF", "#5A9CC9"]
-_AGAINST = ["#C98A5A", "#DFB48F", "#EFDAC9", "#F7F7F7"]
+_ALONG = ["#F8F8F8", "#D3E5F2", "#A6CCE5", "#78B0D6"]
+_AGAINST = ["#DDAE86", "#EBCBB0", "#F4E4D6", "#F8F8F8"]
 
 
 def pressure_at(load: PressureLoad, brief: Brief, x: Floats, y: Floats) -> Floats:

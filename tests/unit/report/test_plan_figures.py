@@ -10,6 +10,7 @@ import numpy as np
 import pytest
 from factories import make_pads, make_weight
 from hand_plan_rigs import accept, forces, line, line_load, make_plan_rig, panel, plan_brief, pressure, surface
+from hand_rigs import make_rig
 from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.patches import Circle, PathPatch
 from matplotlib.text import Text
@@ -149,7 +150,14 @@ def test_the_same_figure_gives_the_same_bytes_without_a_date():
 
 
 def test_a_plan_rig_has_its_own_sheets_and_a_line_rig_has_not():
-    assert set(figure_files(checked(5))) == {f"{name}.svg" for name in sheets(checked(5))}
+    check = checked(5)
+    assert set(figure_files(check)) == {f"{name}.svg" for name in sheets(check)}
+    brief = replace(check.rig.plan.target.brief, acceptance=accept())
+    not_judged = replace(check.rig.plan, target=replace(check.rig.plan.target, brief=brief))
+    across_not_judged = replace(check, rig=replace(check.rig, plan=not_judged))
+    assert set(figure_files(check)) - set(figure_files(across_not_judged)) == {"across.svg"}
+    straight = checks.check(make_rig([0.5, 0.9, 1.6], [1300.0, 1100.0, 700.0]))
+    assert set(figure_files(straight)) == {"target.svg", "load_and_pads.svg", "shear_and_moment.svg", "tree.svg"}
 
 
 def test_plan_is_to_scale_and_says_which():
@@ -224,7 +232,7 @@ def test_the_curves_are_those_of_the_check():
     check = checked(6)
     for figure, name, quantity in (
         (shear_and_moment(check), "torsion T", "torsion"),
-        (across(check), "shear across V across", "shear across"),
+        (across(check), "shear across V", "shear across"),
     ):
         by_title = {axes.get_title(loc="left"): axes for axes in figure.axes}
         rig = next(line for line in by_title[name].lines if line.get_label() == "rig as drilled")
