@@ -91,8 +91,8 @@ def share_remarks(check: Check) -> Iterator[Finding]:
     yield _remark(
         "failure",
         f"pad {worst + 1}",
-        "the pad's force is too far from its tributary share, the load that is nearest to it; V, M and T alone would "
-        f"accept pads that all stand in one line{others}",
+        "the pad's force is too far from its tributary share, the load that is nearest to it: between the pads the "
+        f"panel would bend as it does not under its load{others}",
         f"{show(force, 'force')} for a share of {show(share, 'force')}, {percent(float(off[worst]))} off",
         f"{percent(accept.share)} of the share{asked}",
         'place pads so that each carries what is nearest to it, take aim = "even", or a larger "share" in [acceptance]',

@@ -180,7 +180,7 @@ def test_a_panel_s_pads_are_judged_one_by_one():
     broken = found(x, y, force, group, acceptance=accept(9.0, 9.0, 9.0, share=0.19))
     failure = the_failure(broken, "statics")
     assert failure.object == "pad 1"
-    assert failure.text.endswith("pads that all stand in one line; so too pad 2, pad 3 and pad 4")
+    assert failure.text.endswith("as it does not under its load; so too pad 2, pad 3 and pad 4")
     assert failure.value == "480 N for a share of 600 N, 20.0 % off"
     assert failure.limit == "19.0 % of the share"
     assert found(x, y, force, group).accepted
