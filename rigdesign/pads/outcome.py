@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 
@@ -18,6 +18,8 @@ Progress = Callable[[float, str], None]
 class Outcome:
     """Pads `x` [m] and `force` [N] (n,), both root to tip and forces positive, and what is proven about them.
 
+    `y` [m] (n,) on a surface, empty on a line rig.
+
     `use_least` and `moment_least` are lower bounds that no arrangement of as many pads can go below: the band use, and
     the largest moment error as a fraction of the peak.  `use_found` is the least band use found,
     before forces were made even.  `evenness_before` is that of the forces of least band use.
@@ -31,6 +33,7 @@ class Outcome:
     evenness_before: float
     method: str
     words: str
+    y: Floats = field(default_factory=lambda: np.empty(0))
 
 
 def moment_alone(tube: Tube, peak: float) -> Tube:

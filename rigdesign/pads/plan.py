@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from rigdesign.findings import Finding, Refusal, numbered
+from rigdesign.findings import Refusal, numbered
 from rigdesign.pads.fixed import choose_fixed
 from rigdesign.pads.forces import evenness, shares
 from rigdesign.pads.free import FreePlaces
@@ -14,16 +14,13 @@ from rigdesign.pads.model import PadPlan, Proof
 from rigdesign.pads.outcome import Outcome, Progress
 from rigdesign.pads.path import COARSE, fewest_pads
 from rigdesign.pads.refusals import for_the_count, unbalanced, whatever_the_count
+from rigdesign.pads.remarks import doubts, proof_remarks
 from rigdesign.pads.stair import fewest_steps
 from rigdesign.pads.tube import build_tube
 from rigdesign.target.model import Target
 
 # "fewest" tries no more pads than this.
 MOST_PADS = 200
-# A gap between what was found and what is proven is remarked on above this.
-GAP_REMARK = 0.005
-# Bounds and designs are taken at different stations and may differ by this fraction.
-BOUND_TOLERANCE = 1e-3
 
 
 def plan_pads(target: Target, count: int | None = None, progress: Progress | None = None) -> PadPlan | Refusal:
@@ -44,6 +41,11 @@ def plan_pads(target: Target, count: int | None = None, progress: Progress | Non
     A plan whose band use is above 1 is still a plan: the best there is.
     """
     brief = target.brief
+    if brief.specimen.is_surface:
+        # imported late: a line rig has no use for mixed-integer programmes and geometry in plan
+        from rigdesign.pads.surface.plan import plan_in_plan
+
+        return plan_in_plan(target, count, progress)
     wanted = brief.pads.count if count is None else count
     jack_x = jack_place(target)
     refusal = whatever_the_count(target, jack_x)
@@ -158,39 +160,5 @@ def _plan(target: Target, jack_x: float, outcome: Outcome) -> PadPlan:
         jack_y=0.0,
         may_move=target.brief.pads.places == "free",
         proof=proof,
-        findings=numbered((*_doubts(outcome, use), *_remarks(proof))),
+        findings=numbered((*doubts(outcome, use), *proof_remarks(proof))),
     )
-
-
-def _doubts(outcome: Outcome, use: float) -> list[Finding]:
-    """A bound above what was found cannot be a bound: said, not smoothed over."""
-    if outcome.use_least <= use * (1 + BOUND_TOLERANCE):
-        return []
-    return [
-        Finding(
-            "pads",
-            "warning",
-            "pads",
-            "the pads found are better than what the bound calls possible, so the bound is not to be trusted",
-            value=f"band use {use:.4g}",
-            limit=f"bound {outcome.use_least:.4g}",
-            remedy="the pads and their check stand; take the proven least as not proven, and report the brief",
-        )
-    ]
-
-
-def _remarks(proof: Proof) -> list[Finding]:
-    findings = []
-    if proof.gap > GAP_REMARK:
-        findings.append(
-            Finding(
-                "pads",
-                "note",
-                "pads",
-                f"the band use found is {100 * proof.gap:.2g} % above the proven least",
-                value=f"{proof.band_use_found:.4g}",
-                limit=f"{proof.band_use_least:.4g}",
-                remedy="a better arrangement may exist, by at most this much",
-            )
-        )
-    return findings

@@ -20,6 +20,7 @@ from typing import NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
+from rigdesign.brief.model import Quantity
 from rigdesign.target.bands import bands
 from rigdesign.target.curve import Floats, Side
 from rigdesign.target.internal import points_beyond, reactions
@@ -29,6 +30,8 @@ from rigdesign.target.model import Target
 # Of so many stations where the target breaks the rest is left out: a table of a million rows must not take minutes.
 MOST_BREAKS = 2000
 UNBOUNDED = 1e9
+# What a tube holds: on a surface there is torsion besides, which no line of pads can answer for.
+TUBE_QUANTITIES: tuple[Quantity, Quantity] = ("moment", "shear")
 # Most numbers in one block of a batched evaluation; keeps a batch below about 100 MB.
 BLOCK = 4_000_000
 
@@ -187,7 +190,8 @@ def build_tube(target: Target, jack_x: float, count: int, per_pad: int = 40, ext
     x, outboard = _stations(target, max(per_pad * count, 600), extra)
     judged = bands(target)
     widths = {}
-    for quantity, band in judged.items():
+    for quantity in TUBE_QUANTITIES:
+        band = judged[quantity]
         inboard_widths, outboard_widths = band.widths(x, "inboard"), band.widths(x, "outboard")
         below, above = (
             np.minimum(np.where(outboard, o, i), UNBOUNDED * band.peak)
@@ -246,7 +250,7 @@ def _stations(target: Target, count: int, extra: Floats | None) -> tuple[Floats,
     grown = np.concatenate([[0.0], np.cumsum((root[1:] + root[:-1]) / 2)])
     by_load = np.interp(np.linspace(0, grown[-1], count // 2 + 1), grown, fine) if grown[-1] > 0 else even
     jumps = [_breaks(target), np.array(specimen.supports, dtype=float)]
-    jumps += [band.edges for band in bands(target).values()]
+    jumps += [band.edges for quantity, band in bands(target).items() if quantity in TUBE_QUANTITIES]
     jump = np.unique(np.concatenate(jumps))
     jump = jump[(jump >= left) & (jump <= right)]
     single = np.concatenate([even, by_load, extra if extra is not None else np.empty(0)])

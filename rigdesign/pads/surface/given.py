@@ -1,0 +1,198 @@
+"""Pads at given places in plan: at all of them (fixed), or at the best of them (hard points)."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from rigdesign.pads.forces import Forces
+from rigdesign.pads.limits import force_limits
+from rigdesign.pads.outcome import Outcome, Progress
+from rigdesign.pads.surface.balance import Balance, balance
+from rigdesign.pads.surface.choice import choose, fewest
+from rigdesign.pads.surface.choice_model import Choice, Indices, Truths
+from rigdesign.pads.surface.error_rows import ErrorRows, error_rows
+from rigdesign.pads.surface.evening import limits, more_even
+from rigdesign.pads.surface.line_bounds import line_bounds
+from rigdesign.pads.surface.many import choose_of_many
+from rigdesign.pads.surface.places import compatible, given_places, usable_points
+from rigdesign.pads.surface.program import Programme
+from rigdesign.pads.surface.shares import tributary_shares
+from rigdesign.target.curve import Floats
+from rigdesign.target.model import Target
+
+PROVEN = 64
+"""Up to so many places one mixed-integer programme finds the best choice and proves it; more are a search."""
+NODES = 20_000
+FEW_NODES = 2_000
+FINE = 40
+"""Stations a pad at which forces are worked out and judged."""
+SWEEPS, WORST, NEAREST = 6, 8, 4
+"""Exchanges for even forces: so many sweeps, of the pads that deviate most, with the nearest places each."""
+
+FIXED_METHOD = "linear programme over the forces at the fixed places"
+CHOICE_METHOD = "mixed-integer programme over places and forces, branch and bound"
+LINE_METHOD = "free pads on a line, whose shear and moment no pads in plan can better"
+
+
+@dataclass(frozen=True)
+class Placed:
+    """Pads at x, y (n,) [m] with forces and their tributary shares (n,) [N], all positive."""
+
+    x: Floats
+    y: Floats
+    forces: Forces
+    share: Floats
+
+
+def sign_of(target: Target) -> float:
+    """Return the sign of the target: forces here are multiplied by it."""
+    return 1.0 if target.resultant >= 0 else -1.0
+
+
+def shares(target: Target, x: Floats, y: Floats) -> Floats:
+    """Return the tributary shares (n,) [N], times the sign of the target."""
+    return sign_of(target) * tributary_shares(target, x, y)
+
+
+def programme(target: Target, even: Balance, x: Floats, y: Floats, rows: ErrorRows | None = None) -> Programme:
+    """Return the programmes over pads at x, y (n,) [m], judged at rows of their own unless some are given."""
+    least, largest = force_limits(target.brief)
+    if rows is None:
+        rows = error_rows(target, x, y, max(200, FINE * x.size))
+    return Programme(rows, even, x, y, least, largest)
+
+
+def evened(target: Target, own: Programme, best: Forces) -> Placed:
+    """Return the pads of a programme with forces as even as the brief lets them be."""
+    share = shares(target, own.x, own.y)
+    return Placed(own.x, own.y, more_even(own, best, limits(target.brief.pads, own, best), share), share)
+
+
+def choose_fixed(target: Target, jack_x: float, jack_y: float) -> Outcome | None:
+    """Forces at the brief's places; None where no forces within the limits balance the target."""
+    x, y = given_places(target.brief)
+    own = programme(target, balance(target, jack_x, jack_y), x, y)
+    best = own.least_use()
+    if best is None:
+        return None
+    placed = evened(target, own, best)
+    _, moment_least = line_bounds(target, jack_x, x.size)
+    before = own.judged(best.force, placed.share).evenness
+    words = f"{x.size} fixed places"
+    return Outcome(
+        x, placed.forces.force, best.use * (1 - 1e-9), best.use, moment_least, before, FIXED_METHOD, words, y
+    )
+
+
+@dataclass(frozen=True)
+class HardPlaces:
+    """The search over hard points for `count` pads under a jack at jack_x, jack_y [m]."""
+
+    target: Target
+    jack_x: float
+    jack_y: float
+    count: int
+    progress: Progress | None
+
+    def choose(self) -> Outcome | None:
+        """Best pads with their proof; None where no choice balances the target within the limits."""
+        x, y = self._places()
+        outcome = best_of_places(self.target, (self.jack_x, self.jack_y), x, y, self.count, self.progress)
+        return outcome
+
+    def fewest_possible(self) -> int:
+        """Return a number of pads that no choice within the bands goes below."""
+        x, y = self._places()
+        if x.size > PROVEN:
+            return 1
+        return fewest(choice_of(self.target, (self.jack_x, self.jack_y), x, y, 1), 1.0, FEW_NODES)
+
+    def _places(self) -> tuple[Floats, Floats]:
+        pads, usable = self.target.brief.pads, usable_points(self.target.brief)
+        y = pads.y if pads.y.size else np.zeros(pads.stations.size)
+        return pads.stations[usable], y[usable]
+
+
+def choice_of(target: Target, jack: tuple[float, float], x: Floats, y: Floats, count: int) -> Choice:
+    """Return the problem of choosing `count` of the places x, y (n,) [m]."""
+    least, largest = force_limits(target.brief)
+    rows, pads = error_rows(target, x, y), compatible(target.brief, x, y)
+    return Choice(rows, balance(target, *jack), x, y, count, least, largest, pads)
+
+
+def best_of_places(
+    target: Target, jack: tuple[float, float], x: Floats, y: Floats, count: int, progress: Progress | None
+) -> Outcome | None:
+    """Choose `count` of the places x, y (n,) [m]: least band use, then even forces; None where nothing balances."""
+    choice = choice_of(target, jack, x, y, count)
+    _tell(progress, 0.02, f"choosing {count} of {x.size} places")
+    line_use, moment_least = line_bounds(target, jack[0], count)
+    if x.size <= PROVEN:
+        found = choose(choice, NODES)
+        words = f"{count} of {x.size} places, branch and bound"
+    else:
+        found = choose_of_many(choice, line_use, progress)
+        words = f"{count} of {x.size} places, windows of places searched in turn"
+    if found.pads is None:
+        return None
+    bound = max(found.bound * (1 - 1e-6), line_use)
+    method = CHOICE_METHOD if found.bound * (1 - 1e-6) >= line_use else LINE_METHOD
+    own = programme(target, choice.balance, x[found.pads], y[found.pads])
+    best = own.least_use()
+    if best is None:
+        return None
+    _tell(progress, 0.85, "evening out the forces")
+    first = evened(target, own, best)
+    before = own.judged(best.force, first.share).evenness
+    placed, sweeps = exchanged(choice, target, found.pads, first, limits(target.brief.pads, own, best))
+    words += f"; {sweeps} sweeps of exchanges for even forces"
+    return Outcome(placed.x, placed.forces.force, bound, best.use, moment_least, before, method, words, placed.y)
+
+
+def exchanged(choice: Choice, target: Target, pads: Indices, first: Placed, limit: Floats) -> tuple[Placed, int]:
+    """Exchange places with their neighbours while the forces become more even within the band uses `limit`."""
+    best, chosen, sweeps = first, list(pads), 0
+    while sweeps < SWEEPS:
+        deviation = np.abs(best.forces.force - best.share) / np.maximum(best.share, 1e-3 * best.share.mean())
+        better = None
+        for k in np.argsort(-deviation, kind="stable")[:WORST]:
+            for place in _neighbours(choice, chosen, int(k)):
+                tried = _tried(choice, target, [*chosen[:k], place, *chosen[k + 1 :]], limit)
+                if tried is not None and tried.forces.evenness < (better or best).forces.evenness * (1 - 1e-3):
+                    better, swapped = tried, [*chosen[:k], place, *chosen[k + 1 :]]
+        if better is None:
+            break
+        best, chosen, sweeps = better, swapped, sweeps + 1
+    if best is first:
+        return first, sweeps
+    order = np.lexsort((choice.y[chosen], choice.x[chosen]))
+    x, y = choice.x[chosen][order], choice.y[chosen][order]
+    fine = programme(target, choice.balance, x, y)
+    again = more_even(fine, Forces(best.forces.force[order], best.forces.use, np.inf), limit, best.share[order])
+    # judged at more stations it may break a limit by a little: then the first stays
+    if np.any(fine.uses(again.force) > limit * (1 + 1e-6)):
+        return first, sweeps
+    return Placed(x, y, again, best.share[order]), sweeps
+
+
+def _neighbours(choice: Choice, chosen: list[int], k: int) -> list[int]:
+    """The nearest places that pad k could take with the others where they are."""
+    others = [place for i, place in enumerate(chosen) if i != k]
+    fits: Truths = np.all(choice.compatible[:, others], axis=1) & ~np.isin(np.arange(choice.x.size), chosen)
+    away = np.hypot(choice.x - choice.x[chosen[k]], choice.y - choice.y[chosen[k]])
+    return [int(i) for i in np.argsort(away, kind="stable") if fits[i]][:NEAREST]
+
+
+def _tried(choice: Choice, target: Target, chosen: list[int], limit: Floats) -> Placed | None:
+    x, y = choice.x[chosen], choice.y[chosen]
+    own = programme(target, choice.balance, x, y, choice.rows)
+    share = shares(target, x, y)
+    forces = own.most_even(limit, share)
+    return None if forces is None else Placed(x, y, forces, share)
+
+
+def _tell(progress: Progress | None, part: float, words: str) -> None:
+    if progress is not None:
+        progress(part, words)
