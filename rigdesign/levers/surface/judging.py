@@ -10,8 +10,8 @@ from rigdesign.pads.model import PadPlan
 from rigdesign.pads.surface.error_rows import ErrorRows, error_rows
 from rigdesign.target.curve import Floats
 
-EVEN_MOVING = 40
-"""Stations along the span at which rigs with pads that move are judged, besides those of pads and bands."""
+EVEN_STAYING, EVEN_MOVING = 80, 40
+"""Stations along the span at which rigs are judged, besides those of pads and bands: pads that stay, pads that move."""
 
 DIGITS = 10
 """Decimals of a band use that decide: beyond them the same sum may come out otherwise elsewhere in memory."""
@@ -25,16 +25,16 @@ Use = Callable[[Floats, Floats, Floats], Floats]
 
 def judge_of(plan: PadPlan) -> Use:
     """The judge of a plan's rigs: pads that stay share one matrix, for pads that move it is made anew."""
-    even = {"even": EVEN_MOVING} if plan.may_move else {}
-    rows = error_rows(plan.target, plan.x, plan.y, **even)
+    rows = error_rows(plan.target, plan.x, plan.y, EVEN_MOVING if plan.may_move else EVEN_STAYING)
     return _moving(rows) if plan.may_move else _staying(rows, plan.x, plan.y)
 
 
 def _staying(rows: ErrorRows, x: Floats, y: Floats) -> Use:
-    matrix = rows.matrix(x, y).T
+    matrix = rows.matrix(x, y)
 
     def use(pad_x: Floats, pad_y: Floats, force: Floats) -> Floats:
-        return _largest(rows, force @ matrix)
+        # no BLAS product: how that sums depends on where in memory its arrays happen to lie
+        return _largest(rows, np.einsum("kn,mn->km", force, matrix))
 
     return use
 

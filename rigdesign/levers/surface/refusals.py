@@ -11,7 +11,7 @@ from rigdesign.findings import Refusal
 from rigdesign.levers.grouping import millimetres, pads_in_words
 from rigdesign.levers.surface.limits import FLATTEST, Limits, is_flat
 from rigdesign.levers.surface.nodes import Maker, Node, items_of, pads_of
-from rigdesign.levers.surface.subsets import BROKEN, Problem, Rule, steel_rule
+from rigdesign.levers.surface.subsets import BROKEN, NOTHING, Problem, Rule, steel_rule
 from rigdesign.target.curve import Floats
 
 SPARE = 1e-3
@@ -112,7 +112,7 @@ def _needed(maker: Maker, pads: list[Node], key: str) -> float | None:
             if Problem(items, lifted, steel_rule(lifted)).solve(tiers).value < BROKEN:
                 return float(tiers)
         return None
-    none = np.full(items.count, -np.inf)
+    none = np.full(items.count, NOTHING)
     solved = Problem(replace(items, value=none), lifted, _least_of(lifted, key)).solve(lifted.tiers)
     if not np.isfinite(solved.value):
         return None
@@ -123,15 +123,15 @@ def _least_of(limits: Limits, key: str) -> Rule:
     """The rule under which a tree's value is what it needs of one limit; infinite where it breaks another."""
 
     def link(load: Floats, r: Floats) -> Floats:
-        own = -r if key == "shortest_arm" else np.full(r.shape, -np.inf)
+        own = -r if key == "shortest_arm" else np.full(r.shape, NOTHING)
         return np.where(r < limits.shortest, np.inf, own)
 
     def lever(ratio: Floats, length: Floats) -> Floats:
-        own = ratio if key == "ratio_limit" else length if key == "longest" else np.full(ratio.shape, -np.inf)
+        own = ratio if key == "ratio_limit" else length if key == "longest" else np.full(ratio.shape, NOTHING)
         return np.where((ratio > limits.ratio) | (length > limits.longest), np.inf, own)
 
     def plate(length: Floats) -> Floats:
-        own = length if key == "longest" else np.full(length.shape, -np.inf)
+        own = length if key == "longest" else np.full(length.shape, NOTHING)
         return np.where(length > limits.longest, np.inf, own)
 
     return Rule(link, lever, plate, np.maximum)

@@ -34,8 +34,8 @@ LONELY = 100.0
 TIE = 1e-12
 """Two trees whose values differ by less than this fraction are equal: rounding must not choose between them."""
 
-Nest = "int | tuple[Nest, ...]"
-"""A tree as nested tuples of items."""
+NOTHING = -1e18
+"""Value of what needs nothing of a limit, where the value of a tree is what it needs most of."""
 
 
 @dataclass(frozen=True)
@@ -203,7 +203,7 @@ class Problem:
             link = link * self.noise[subsets.spread[rows]]
         table = splits_of(subsets.size)
         a, b = r[:, table.pairs[:, 0]], r[:, table.pairs[:, 1]]
-        zero = -np.inf if self.rule.join is np.maximum else 0.0
+        zero = NOTHING if self.rule.join is np.maximum else 0.0
         piece = np.full(a.shape, zero)
         if self.rule.lever is not None:
             with np.errstate(divide="ignore", invalid="ignore"):
