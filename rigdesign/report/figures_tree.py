@@ -48,12 +48,13 @@ def elevation(check: Check, system: System = "SI") -> Figure:
         axes.add_patch(Rectangle((left, low), right - left, high - low, facecolor=PALE, edgecolor=INK, linewidth=0.8))
     else:
         specimen_strip(axes, brief, layout.frame.at, low, high)
-        directions(axes, layout.size[0] - 28.0, layout.size[1] - 20.0)
     _pads(axes, check, layout, side, system)
     for bar in layout.bars:
         _lever(axes, bar, layout, side)
     _jack(axes, layout, side, f"jack {jack}, {_action(check)}", check)
     _key(axes, layout, system, brief.specimen.is_surface)
+    if not brief.specimen.is_surface:
+        directions(axes, layout.size[0] - 28.0, layout.size[1] - 20.0)
     return figure
 
 
