@@ -5,7 +5,8 @@ the pivot:
 
     ΣF_i = P,   ΣF_i u_i = 0,   ΣF_i v_i = 0
 
-A lever takes the first equation and moments along its own line; a plate all three.  So each link carries a fixed
+A lever takes the first equation and moments along its own line; a plate all three.  Across a lever's own line moments
+close where its three holes are in line; where they are not, it rolls, which is a remark.  So each link carries a fixed
 fraction of what its piece carries, and pad forces are a matrix times jack forces.
 """
 
