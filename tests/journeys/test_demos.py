@@ -72,6 +72,20 @@ def test_the_python_of_the_readme_runs(here, capsys):
     assert (here / "rudder_rig" / "tree.svg").is_file()
 
 
+def test_the_surface_of_the_readme_is_that_of_its_demo(rigdesign):
+    text = (ROOT / "README.md").read_text().split("## Surfaces")[1]
+    block = re.search(r"\n\n((?:    .*\n|\n)+)", text)
+    assert block is not None
+    shown = tomllib.loads("\n".join(line[4:] for line in block[1].splitlines()))
+    demo = tomllib.loads((ROOT / "demo_rigs" / "lagoon_foil" / "brief.toml").read_text())
+    assert set(shown) == {"specimen", "load", "pads", "levers", "acceptance"}
+    for key in ("specimen", "pads", "levers", "acceptance"):
+        assert shown[key].items() <= demo[key].items()
+    assert shown["load"][0] == demo["load"][0]
+    ended = rigdesign("target", ROOT / "demo_rigs" / "lagoon_foil" / "brief.toml")
+    assert ended.code == 0
+
+
 def test_links_in_the_pages_lead_somewhere():
     pages = [ROOT / "README.md", ROOT / "DEVELOPERS.md", *sorted((ROOT / "docs").glob("*.md"))]
     for page in pages:
