@@ -38,7 +38,7 @@ JUDGED, JUDGED_AGAIN = 1_500_000, 250_000
 MOVING_COST = 12
 """A rig whose pads move costs so many times more to judge than one whose pads stay."""
 
-A_STEP_AWAY = 0.01
+A_STEP_AWAY = 0.001
 """Part of the planned band use that may be given up to bring the jack a drill step nearer to where it was planned."""
 
 FURTHER_AWAY = 1.0
