@@ -41,21 +41,18 @@ def target_object(target: Target) -> dict[str, Any]:
 
 
 def _in_plan(target: Target) -> dict[str, Any]:
-    """What a surface adds: the centre's y, torsion, the moments about x, what is cut across."""
+    """What a surface adds: the centre's y, torsion, what is cut across."""
     import numpy as np
 
-    root = np.array([target.about])
-    sums = target.total_plan.sums
-    axis_y = float(target.brief.specimen.reference_axis.at(root)[0])
+    left = np.array([target.brief.specimen.left])
     across = {quantity: target.peaks[quantity] for quantity in ("shear across", "moment across")}
     return {
         "cut": target.brief.specimen.cut,
         "centroid_y_m": target.centroid_y,
-        "torsion_at_root_Nm": float(target.torsion(root, "outboard")[0]),
+        "root_torsion_Nm": target.torsion_about,
+        "torsion_at_root_Nm": float(target.torsion(left, "outboard")[0]),
         "torsion_peak_Nm": target.torsion_peak,
         "torsion_peak_x_m": target.peaks["torsion"].at,
-        "moment_about_x_Nm": sums.first_y - sums.force * axis_y,
-        "moment_about_y_m": axis_y,
         "shear_across_peak_N": across["shear across"].value,
         "shear_across_peak_y_m": across["shear across"].at,
         "moment_across_peak_Nm": across["moment across"].value,

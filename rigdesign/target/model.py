@@ -7,9 +7,12 @@ from dataclasses import dataclass
 from functools import cached_property
 from typing import NamedTuple
 
+import numpy as np
+
 from rigdesign.brief.model import Brief, Quantity
 from rigdesign.findings import Finding
 from rigdesign.target.curve import Curve, Floats, Side
+from rigdesign.target.cuts import cuts_at
 from rigdesign.target.plan_load import ALONG_X, PlanLoad, loads_at
 from rigdesign.target.plan_sum import PlanSum
 
@@ -105,6 +108,14 @@ class Target:
     def moment_about(self) -> float:
         """First moment of the target about the root or the first support [N·m], reactions left out."""
         return self.total.first_moment - self.total.total * self.about
+
+    @property
+    def torsion_about(self) -> float:
+        """First moment of the target about the cut's own direction there [N·m], reactions left out."""
+        specimen, at = self.brief.specimen, np.array([self.about])
+        cut, sums = cuts_at(specimen, "torsion", at, "outboard"), self.total_plan.sums
+        left, along = sums.first_y - sums.force * cut.y[0], sums.first_x - sums.force * cut.x[0]
+        return float(left * cut.a_x[0] - along * cut.a_y[0])
 
     def value(self, quantity: Quantity, at: Floats, side: Side) -> Floats:
         """A quantity of the whole target at stations `at` (n,) [m], reactions included; at is y for what is across."""

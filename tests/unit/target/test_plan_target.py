@@ -277,6 +277,7 @@ def test_the_command_answers_with_the_plan():
     assert answer["torsion_at_root_Nm"] == pytest.approx(
         float(target.value("torsion", np.array([LEFT]), "outboard")[0])
     )
+    assert answer["root_torsion_Nm"] == pytest.approx(answer["torsion_at_root_Nm"], rel=1e-9)
     assert answer["torsion_peak_Nm"] == target.torsion_peak
     assert answer["moment_across_peak_Nm"] == target.peaks["moment across"].value
     lines = target_object(build_target(make_brief()))
