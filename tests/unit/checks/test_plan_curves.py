@@ -139,6 +139,33 @@ def test_no_dense_sampling_finds_a_higher_peak(known):
             assert found.errors[quantity].peak == pytest.approx(np.abs(rows.error(quantity)).max() / size, rel=1e-12)
 
 
+def test_the_torsion_s_error_is_found_where_it_turns_between_stations_though_nothing_judges_it():
+    brief = plan_brief(
+        surface(axis=line((0.2, -0.3), (3.4, 0.2))),
+        loads=(pressure(900.0, -150.0, -400.0),),
+        acceptance=accept(torsion=None),
+    )
+    target = build_target(brief)
+    x, y, force = np.array([0.9, 2.4]), np.array([0.0, -0.3]), np.array([0.6, 0.4]) * target.net.total
+    rows = curves(target, x, force, y)
+    error = np.abs(rows.error("torsion"))
+    at = rows.x[np.argmax(error)]
+    assert 0.8 < at < 0.88
+    close = np.linspace(at - 2e-3, at + 2e-3, 4001)
+    dense = sampler(target, x, force, y).rows(close, np.ones(close.size, bool))
+    # even stations are 8 mm apart: the nearest of them would miss by a part in a million
+    assert np.abs(dense.error("torsion")).max() <= error.max() * (1 + 1e-10)
+
+
+def test_a_couple_is_a_jump_of_the_torsion_with_both_its_sides():
+    target = build_target(BRIEFS["weight on a line"])
+    rows = curves(target, X, FORCE, Y)
+    at = np.flatnonzero(rows.x == 1.25)
+    assert rows.outboard[at].tolist() == [False, True]
+    assert np.diff(rows.target["torsion"][at]) == pytest.approx(-130.0, abs=1e-4)
+    assert np.diff(rows.target["shear"][at]) == pytest.approx(0.0, abs=1e-4)
+
+
 def test_the_area_between_the_shear_curves_is_its_integral(known):
     target, x, y, force, found = known
     sample = sampler_in_plan(target, x, y, force, ("shear", "moment", "torsion"))
@@ -181,6 +208,8 @@ def test_pads_of_one_rib_are_on_one_cut_whatever_the_last_digit(cut):
     x = np.array([0.5, 0.5 + 1e-15, 1.5 * (1 + 2**-52), 1.5])
     y = np.array([-0.2, 0.4, -0.2, 0.4])
     found = check(make_plan_rig(x, y, np.full(4, 600.0), brief))
+    # two rows a rib, and that for its two pads together
+    assert [int((np.abs(found.curves.x - rib) < 1e-9).sum()) for rib in (0.5, 1.5)] == [2, 2]
     # 2 nm times 600 N at most
     assert np.abs(found.curves.error("torsion")).max() < 1e-5
     # a uniform pressure has no torsion about the middle: errors are fractions of what would be one
