@@ -113,13 +113,17 @@ def _key(figure: Figure, frame: Frame, handles: list[Any]) -> None:
 
 
 def _resultant(axes: Axes, frame: Frame, board: Board, target: Target, system: System) -> None:
-    """Mark the place of the resultant."""
+    """Mark the place of the resultant, or say near the edge where it lies that it is beyond the drawing."""
     place = frame.at(target.centroid, target.centroid_y)
-    axes.plot(*place, "X", color=INK, markeredgecolor="white", markersize=8, zorder=5)
-    board.take(*place, 4.0, 4.0)
+    inside = frame.nearest(*place)
     unit = scale("force", abs(target.resultant), system)
     words = f"resultant {unit.show(target.resultant)} {unit.unit}"
-    at = board.place(*place, text_width(words, 8.0), 3.6, 3.0)
+    if inside == place:
+        axes.plot(*place, "X", color=INK, markeredgecolor="white", markersize=8, zorder=5)
+        board.take(*place, 4.0, 4.0)
+    else:
+        words += ", beyond this drawing"
+    at = board.place(*inside, text_width(words, 8.0), 3.6, 3.0)
     text = axes.text(*at, words, size=8, weight="bold", ha="center", va="center", zorder=6)
     text.set_bbox({"facecolor": "white", "edgecolor": "none", "pad": 0.4, "alpha": 0.75})
 

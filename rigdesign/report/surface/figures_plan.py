@@ -54,22 +54,23 @@ def _frames(check: Check, n_tiers: int) -> tuple[Frame, list[Frame], float]:
     x0, y0, x1, y1 = bounds(brief)
     shape = (x1 - x0) / (y1 - y0)
     width = A3[0] - LEFT - RIGHT
-    across = 2 if shape > 2.2 else 3 if shape > 1.0 else 4
+    across = 1 if shape > 7.0 else 2 if shape > 2.2 else 3 if shape > 1.0 else 4
+    tall, small_tall = (150.0, 110.0) if shape > 1.0 else (190.0, 150.0)
     crowd = max(1.0, (check.rig.plan.n_pads / 40.0) ** 0.5)
-    whole = fitted(brief, LEFT, 0.0, width, 150.0 * crowd)
+    whole = fitted(brief, LEFT, 0.0, width, tall * crowd)
     column = (A3[0] - 20.0) / across
-    small = fitted(brief, 0.0, 0.0, column, 110.0 * crowd)
+    small = fitted(brief, 0.0, 0.0, column, small_tall * crowd)
     rows = -(-n_tiers // across) if n_tiers else 0
     below = KEY + TICKS + rows * (HEADING + small.height) + FOOT
     height = max(A3[1], HEAD + whole.height + below)
     spare = height - HEAD - whole.height - below
-    whole = fitted(brief, LEFT, height - HEAD - spare / 3, width, 150.0 * crowd)
+    whole = fitted(brief, LEFT, height - HEAD - spare / 3, width, tall * crowd)
     top = whole.low - TICKS - KEY - spare / 3
     panels = []
     for k in range(n_tiers):
         row, place = divmod(k, across)
         start = top - row * (HEADING + small.height) - HEADING
-        panels.append(fitted(brief, 10.0 + place * column, start, column, 110.0 * crowd, small.ratio))
+        panels.append(fitted(brief, 10.0 + place * column, start, column, small_tall * crowd, small.ratio))
     return whole, panels, height
 
 
@@ -105,7 +106,7 @@ def _overview(figure: Figure, frame: Frame, check: Check, system: System) -> lis
     diameters = np.array([pieces.disc_diameter(float(value), per_newton) for value in force])
     pieces.pad_numbers(axes, frame, board, rig.pad_x, rig.pad_y, diameters)
     for tree in rig.trees:
-        place = frame.at(tree.jack.x, tree.jack.y)
+        place = frame.at(tree.jack.x, tree.jack.y)  # among the pads, so inside the drawing
         pieces.mark_beside(axes, board, "jack", tree.jack.number, place, 1.5)
     _letters(axes, frame, board, by_tier)
     _direction(paper(figure), frame)

@@ -54,6 +54,11 @@ class Frame:
         """Place on the sheet [mm] of one point [m]."""
         return float(self.x(x)), float(self.y(y))
 
+    def nearest(self, x: float, y: float) -> tuple[float, float]:
+        """The place on this part of the sheet nearest to a place [mm], a little off its edges; itself where inside."""
+        across = min(max(x, self.left + 1.0), self.left + self.width - 1.0)
+        return across, min(max(y, self.low + 1.0), self.low + self.height - 1.0)
+
     def points(self, points: ArrayLike) -> Floats:
         """Places on the sheet (n, 2) [mm] of points (n, 2) [m]."""
         rows = np.asarray(points, dtype=float)

@@ -9,7 +9,7 @@ from itertools import combinations
 import numpy as np
 import pytest
 from factories import make_pads, make_weight
-from hand_plan_rigs import accept, forces, line, line_load, make_plan_rig, panel, plan_brief, pressure, surface
+from hand_plan_rigs import accept, forces, line, line_load, make_plan_rig, outline, panel, plan_brief, pressure, surface
 from hand_rigs import make_rig
 from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.patches import Circle, PathPatch
@@ -76,9 +76,9 @@ def checked(n_pads: int, specimen=None, **changes):
     return checks.check(rig)
 
 
-def _sides(outline):
+def _sides(shape):
     """Lower and upper side of an outline of four corners, as x and y each."""
-    x, y = outline.x, outline.y
+    x, y = shape.x, shape.y
     return (x[[0, 1]], y[[0, 1]]), (x[[3, 2]], y[[3, 2]])
 
 
@@ -110,7 +110,35 @@ def texts_of(figure):
     return drawn
 
 
+def of_any_shape(n_pads: int, corners, loads=None):
+    """A check of pads in two rows over a surface of four corners, fixed places."""
+    shape = outline(corners)
+    left, right = shape.x.min(), shape.x.max()
+    specimen = surface(left=float(left), right=float(right), outline=shape, axis=None, cut="square to axis")
+    size = right - left
+    along = np.linspace(left + 0.05 * size, right - 0.05 * size, n_pads // 2)
+    places = []
+    for at in along:
+        low, high = (float(np.interp(at, *side)) for side in _sides(shape))
+        places += [(at, low + part * (high - low)) for part in (0.2, 0.7)]
+    x, y = np.array(sorted(places)).T
+    rules = replace(make_pads(count=n_pads, places="fixed", length=0.02 * size, width=0.01 * size, stations=x), y=y)
+    brief = plan_brief(specimen, loads=loads or (pressure(900.0),), pads=rules, acceptance=accept(across=0.2))
+    force = 2000.0 + 1300.0 * np.cos(1.7 * np.arange(n_pads))
+    return checks.check(make_plan_rig(x, y, force, brief, grouped(x, y, list(range(n_pads)))))
+
+
 CASES = {
+    "slender, far off": lambda: of_any_shape(40, [(40.0, -5.45), (52.6, -5.18), (52.6, -4.91), (40.0, -4.5)]),
+    "broad": lambda: of_any_shape(20, [(0.0, -1.5), (0.8, -1.2), (0.8, 1.0), (0.0, 1.6)]),
+    "resultant beyond": lambda: of_any_shape(
+        6,
+        [(0.2, -0.5), (3.4, -0.7), (3.4, -0.1), (0.2, 0.6)],
+        (
+            pressure(-4000.0, 2500.0),
+            forces([1.0, 1.05, 1.1, 1.2], [-0.1, -0.12, 0.0, 0.1], [300.0, -200.0, 50.0, 900.0]),
+        ),
+    ),
     "1 pad": lambda: checked(1),
     "2 pads": lambda: checked(2),
     "5 pads": lambda: checked(5),
