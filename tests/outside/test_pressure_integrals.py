@@ -126,6 +126,19 @@ def test_half_an_ellipse_as_a_polygon(sides):
     assert growing.along(towards(41.0)).force.total == pytest.approx(900.0 * first, rel=1e-11)
 
 
+def test_an_outline_with_deep_notches():
+    """C: the polygon's own formula again; its pieces are far from convex."""
+    area = outline(
+        (0.0, -1.0), (3.0, -1.2), (3.1, 0.9), (2.6, -0.9), (2.2, 1.0), (1.7, -0.8), (1.2, 0.7), (0.4, -0.7), (0.1, 0.8)
+    )
+    size, first, second = polygon_moments(area)
+    uniform, growing = under(area, 250.0), under(area, 0.0, by_y=900.0)
+    assert uniform.sums[::2] == pytest.approx((250.0 * size, 250.0 * first), rel=EXACT)
+    assert growing.sums[::2] == pytest.approx((900.0 * first, 900.0 * second), rel=EXACT)
+    assert growing.along(towards(41.0)).force.total == pytest.approx(900.0 * first, rel=1e-11)
+    assert (growing.triangles.sign < 0).any()
+
+
 def test_polygons_converge_to_the_ellipse():
     """S: centroid of the semiellipse 4b/3π.  C: centre of pressure of water on it 3πb/16.  Errors fall with the square
     of the number of sides.

@@ -145,6 +145,8 @@ def test_points_on_a_line_that_rounding_has_bent():
     place_x, place_y = np.round(np.tile(x, 3), 3), np.round(np.concatenate([edge + row for row in rows]) - 0.1, 3)
     along = np.sqrt(np.maximum(1.0 - ((x - 0.2) / 3.2) ** 2, 0.0))
     bent = over(pressure_map(place_x, place_y, 800.0 * np.tile(along, 3)))
+    # nothing is counted twice where the border bends inward, and nothing left out
+    assert bent.triangles.area.sum() == pytest.approx(PLANFORM.polygon.area, rel=1e-12)
     # the pressure depends on x almost alone, and so does the load of the strip beyond the leading edge
     strip = shapely.Polygon([(0.2, 0.4), (0.2, 0.31), (3.4, -0.4), (3.4, -0.31)])
     width = 0.09

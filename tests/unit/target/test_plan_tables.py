@@ -12,6 +12,7 @@ from plan_targets import KINKED, SWEPT, line, surface_target
 from rigdesign.errors import BriefError
 from rigdesign.target.closed import ClosedForm, Elliptical
 from rigdesign.target.curve import Curve
+from rigdesign.target.plan_load import ALONG_X
 
 X = np.linspace(LEFT, RIGHT, 17)
 
@@ -87,6 +88,15 @@ def test_torsion_in_another_unit():
     assert "a slip of unit" in table.text
     assert table.value == "300 kN·m"
     assert "slip of unit" in whole.text
+
+
+@pytest.mark.parametrize("axis", [SWEPT, KINKED], ids=["straight", "kinked"])
+def test_the_running_torque_is_the_slope_of_the_torque_beyond(axis):
+    target = surface_target(vmt(X, 0.04 * np.linspace(1.0, 0.0, 17) ** 2 * 5400.0), axis=axis)
+    turning, step = target.total_plan.along(ALONG_X).turning, 1e-6
+    x = np.array([0.47, 1.13, 2.21, 3.09])
+    slope = (turning.force_beyond(x - step, "outboard") - turning.force_beyond(x + step, "outboard")) / (2.0 * step)
+    assert turning.running(x, "outboard") == pytest.approx(slope, rel=1e-6)  # of the differences
 
 
 def test_a_table_without_torsion_lies_on_the_axis():

@@ -75,6 +75,17 @@ def test_peaks_are_those_of_a_fine_look(cut, axis, supports):
         assert max(own) == pytest.approx(found.value, rel=1e-9)
 
 
+def test_a_torsion_peak_between_the_breaks_of_a_swept_axis():
+    """Uniform w and a uniform torque t per x about an axis of slope k, cut square to x: T = t u + k w u²/2 with
+    u = L − x, whose slope is zero at u = −t/(k w).
+    """
+    slope, w, t = -0.5 / 3.2, 500.0, 130.0
+    target = surface_target(shape_load("uniform", 3.2 * w), torque_load([LEFT, RIGHT], [t, t]))
+    u = -t / (slope * w)
+    assert 1.0 < u < 2.0
+    assert target.peaks["torsion"] == pytest.approx((t * u / 2.0, RIGHT - u), rel=1e-9)
+
+
 def test_parts_add_up():
     whole, parts = (
         surface_target(*EVERY_KIND),
