@@ -5,14 +5,14 @@ Pad forces and pressures are held to their limits at the peak of the test.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator
-from functools import partial
+from collections.abc import Iterator
 
 import numpy as np
 
 from rigdesign.brief.model import LeverRules
 from rigdesign.checks.measures import length, ratio, reaches
 from rigdesign.checks.model import Check
+from rigdesign.checks.remarks_places import failure, place_remarks, worst_pad
 from rigdesign.checks.text import NOT_PROVEN, also, percent
 from rigdesign.display import show
 from rigdesign.findings import Finding
@@ -22,31 +22,20 @@ from rigdesign.target.curve import Floats
 USUAL_RATIO = 4.0  # common practice: 4 is accepted, above 5 avoided
 IDLE_PAD = 0.05  # of the mean pad force: such a pad is hardware for nothing
 COSTLY_DRILLING, COSTLY_USE = 1.2, 0.5  # drilling is remarked on where it raises the band use so much, to above this
-LENGTH_SLACK = 1e-9  # m: a pad at its limit must not fail by rounding
-LIMIT_SLACK = 2e-9  # of a limit: nor a lever that was built right at it
-FORCE_SLACK = 1e-9  # of the limit, for the same reason
+LIMIT_SLACK = 2e-9  # of a limit: a lever that was built right at it must not fail by rounding
+FORCE_SLACK = 1e-9  # of the limit: nor a pad
 
 
 def practice_remarks(check: Check) -> Iterator[Finding]:
     """Yield the remarks of this stage, not numbered yet, in a fixed order."""
     yield from _pad_forces(check)
     # in plan the stage "space" says where footprints may be
-    yield from () if check.rig.plan.target.brief.specimen.is_surface else _pad_places(check)
+    yield from () if check.rig.plan.target.brief.specimen.is_surface else place_remarks(check)
     yield from _levers(check)
     yield from _idle_pads(check)
     yield from _pushing(check)
     yield from _drilling(check)
     yield from _aim(check)
-
-
-def _failure(where: str, text: str, value: str, limit: str, remedy: str) -> Finding:
-    return Finding("practice", "failure", where, text, value, limit, remedy)
-
-
-def _worst_pad(excess: Floats) -> tuple[int, str]:
-    """The pad that breaks a limit most, counted from 0, and the others in words; excess (n_pads,) > 0 breaks."""
-    worst = int(np.argmax(excess))
-    return worst, also(f"pad {i + 1}" for i in np.flatnonzero(excess > 0) if i != worst)
 
 
 def pressures(check: Check) -> Floats | None:
@@ -63,8 +52,8 @@ def _pad_forces(check: Check) -> Iterator[Finding]:
     peak = f"at {percent(brief.peak)} of the brief's load, the peak of the test"
     force = np.abs(check.statics.pad_force) * brief.peak
     if (force > rules.largest_force * (1 + FORCE_SLACK)).any():
-        worst, others = _worst_pad(force - rules.largest_force * (1 + FORCE_SLACK))
-        yield _failure(
+        worst, others = worst_pad(force - rules.largest_force * (1 + FORCE_SLACK))
+        yield failure(
             f"pad {worst + 1}",
             f"the pad force is above largest_force, {peak}{others}",
             show(float(force[worst]), "force"),
@@ -72,8 +61,8 @@ def _pad_forces(check: Check) -> Iterator[Finding]:
             "more pads, or pads that bear more",
         )
     if (force < rules.least_force * (1 - FORCE_SLACK)).any():
-        worst, others = _worst_pad(rules.least_force * (1 - FORCE_SLACK) - force)
-        yield _failure(
+        worst, others = worst_pad(rules.least_force * (1 - FORCE_SLACK) - force)
+        yield failure(
             f"pad {worst + 1}",
             f"the pad force is below least_force, {peak}{others}",
             show(float(force[worst]), "force"),
@@ -82,76 +71,13 @@ def _pad_forces(check: Check) -> Iterator[Finding]:
         )
     pressure = pressures(check)
     if pressure is not None and (pressure * brief.peak > rules.largest_pressure * (1 + FORCE_SLACK)).any():
-        worst, others = _worst_pad(pressure * brief.peak - rules.largest_pressure * (1 + FORCE_SLACK))
-        yield _failure(
+        worst, others = worst_pad(pressure * brief.peak - rules.largest_pressure * (1 + FORCE_SLACK))
+        yield failure(
             f"pad {worst + 1}",
             f"the pressure under the pad is above largest_pressure, {peak}{others}",
             show(float(pressure[worst] * brief.peak), "pressure"),
             show(rules.largest_pressure, "pressure"),
             "larger or more pads",
-        )
-
-
-def _pad_places(check: Check) -> Iterator[Finding]:
-    brief = check.rig.plan.target.brief
-    half, specimen, x = brief.pads.length / 2, brief.specimen, check.rig.pad_x
-
-    def off(places: Floats) -> Floats:
-        return np.maximum(specimen.left - places, places - specimen.right) + half - LENGTH_SLACK
-
-    if (off(x) > 0).any():
-        worst, others = _worst_pad(off(x))
-        yield _failure(
-            f"pad {worst + 1}",
-            f"the pad's footprint reaches off the specimen{others}",
-            _stretch(x[worst] - half, x[worst] + half),
-            _stretch(specimen.left, specimen.right),
-            _place_remedy(check, off, "move the pad or make it shorter"),
-        )
-    for low, high in brief.pads.keep_out:
-        into = partial(_into, low, high, half)
-        if (into(x) > 0).any():
-            worst, others = _worst_pad(into(x))
-            yield _failure(
-                f"pad {worst + 1}",
-                f"the pad's footprint reaches into the keep-out from {_stretch(low, high)}{others}",
-                _stretch(x[worst] - half, x[worst] + half),
-                "clear of it",
-                _place_remedy(check, into, "move the pad"),
-            )
-    yield from _gaps(check, x)
-
-
-def _into(low: float, high: float, half: float, x: Floats) -> Floats:
-    """How far footprints of pads at x reach into a keep-out [m]."""
-    return np.minimum(x + half - low, high - x + half) - LENGTH_SLACK
-
-
-def _place_remedy(check: Check, missed: Callable[[Floats], Floats], otherwise: str) -> str:
-    """What to do about a place: a smaller drill step where `missed(x)` [m] says that only drilling moved it there."""
-    plan = check.rig.plan
-    if plan.may_move and not (missed(plan.x) > 0).any():
-        return "choose a smaller drill step, or leave the pads more room: before drilling they kept clear"
-    return otherwise
-
-
-def _gaps(check: Check, x: Floats) -> Iterator[Finding]:
-    rules = check.rig.plan.target.brief.pads
-
-    def missing(places: Floats) -> Floats:
-        return rules.gap + rules.length - np.diff(np.sort(places)) - LENGTH_SLACK
-
-    if (missing(x) > 0).any():
-        order = np.argsort(x, kind="stable")
-        least = int(np.argmax(missing(x)))
-        first, second = order[least] + 1, order[least + 1] + 1
-        others = int((missing(x) > 0).sum()) - 1
-        yield _failure(
-            f"pad {first} and pad {second}",
-            "the gap between the pads is too small" + (f"; so too {others} more" if others else ""),
-            show(float(np.diff(x[order])[least] - rules.length), "length"),
-            show(rules.gap, "length"),
-            _place_remedy(check, missing, "move the pads apart, make them shorter or take fewer"),
         )
 
 
@@ -164,7 +90,7 @@ def _levers(check: Check) -> Iterator[Finding]:
     tiers = max((piece.tier for piece in pieces), default=0)
     if rules.tiers is not None and tiers > rules.tiers:
         deepest = next(piece for piece in pieces if piece.tier == tiers)
-        yield _failure(
+        yield failure(
             deepest.name, "the tree has too many tiers", str(tiers), str(rules.tiers), "group the pads otherwise"
         )
 
@@ -173,7 +99,7 @@ def _sizes(pieces: list[Piece], rules: LeverRules) -> Iterator[Finding]:
     short = {piece: _shortest(piece) for piece in pieces if _shortest(piece) < rules.shortest_arm * (1 - LIMIT_SLACK)}
     if short:
         worst = min(short, key=lambda piece: short[piece])
-        yield _failure(
+        yield failure(
             worst.name,
             f"the shortest arm is too short{_others(short, worst)}",
             show(short[worst], "length"),
@@ -183,7 +109,7 @@ def _sizes(pieces: list[Piece], rules: LeverRules) -> Iterator[Finding]:
     long = {piece: length(piece) for piece in pieces if length(piece) > rules.longest * (1 + LIMIT_SLACK)}
     if long:
         worst = max(long, key=lambda piece: long[piece])
-        yield _failure(
+        yield failure(
             worst.name,
             f"the {worst.kind} is too long{_others(long, worst)}",
             show(long[worst], "length"),
@@ -196,7 +122,7 @@ def _ratios(levers: list[Piece], limit: float) -> Iterator[Finding]:
     over = {piece: ratio(piece) for piece in levers if ratio(piece) > limit * (1 + FORCE_SLACK)}
     if over:
         worst = max(over, key=lambda piece: over[piece])
-        yield _failure(
+        yield failure(
             worst.name,
             f"the lever ratio is above ratio_limit{_others(over, worst)}",
             f"{over[worst]:.3g}" if np.isfinite(over[worst]) else "the pivot is not between the end pins",
@@ -264,7 +190,7 @@ def _idle_pads(check: Check) -> Iterator[Finding]:
     force = np.abs(check.statics.pad_force)
     share = force / force.mean()
     if (share < IDLE_PAD).any():
-        worst, others = _worst_pad(IDLE_PAD - share)
+        worst, others = worst_pad(IDLE_PAD - share)
         yield Finding(
             "practice",
             "warning",
@@ -317,7 +243,3 @@ def _aim(check: Check) -> Iterator[Finding]:
     yield Finding(
         "practice", "note", "pads", f'the aim "{rules.aim}" was {strove}', f"a pad's force is off by {evenness}"
     )
-
-
-def _stretch(start: float, end: float) -> str:
-    return f"{show(float(start), 'length', unit='m')} to {show(float(end), 'length', unit='m')}"
