@@ -7,12 +7,8 @@ from __future__ import annotations
 
 from typing import Any
 
-import numpy as np
-
 from rigdesign.checks.measures import dot
 from rigdesign.checks.model import Check
-from rigdesign.target.cuts import cuts_at
-from rigdesign.target.model import Target
 
 
 def with_plan_part(check: Check, parts: dict[str, Any]) -> dict[str, Any]:
@@ -22,7 +18,7 @@ def with_plan_part(check: Check, parts: dict[str, Any]) -> dict[str, Any]:
     pieces = [piece for tree in rig.trees for piece in tree.pieces]
     after: dict[str, dict[str, Any]] = {
         "centroid_x_m": {"centroid_y_m": target.centroid_y},
-        "moment_about_m": {"root_torsion_Nm": root_torsion(target)},
+        "moment_about_m": {"root_torsion_Nm": target.torsion_about},
         "moment_peak_x_m": {
             "torsion_peak_Nm": target.torsion_peak,
             "torsion_peak_x_m": target.peaks["torsion"].at,
@@ -51,15 +47,3 @@ def with_plan_part(check: Check, parts: dict[str, Any]) -> dict[str, Any]:
         },
     }
     return {name: value for key, own in parts.items() for name, value in {key: own, **after.get(key, {})}.items()}
-
-
-def root_torsion(target: Target) -> float:
-    """Return the first moment of the whole target about the reference axis where it is held [N·m], reactions left out.
-
-    About the x direction, or about the axis' own where cuts are square to it.
-    """
-    specimen, at = target.brief.specimen, np.array([target.about])
-    cut = cuts_at(specimen, "torsion", at, "outboard")
-    sums = target.total_plan.sums
-    left, along = sums.first_y - sums.force * cut.y[0], sums.first_x - sums.force * cut.x[0]
-    return float(left * cut.a_x[0] - along * cut.a_y[0])
