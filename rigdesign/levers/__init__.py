@@ -14,6 +14,7 @@ How:
   (descent) finishes; for pads that stay the pivots are searched.  Both judge a rig by its errors (judging) at the
   places that can hold the largest.
 - Geometry (geometry).  Pieces with pivot, A and B, in their own frames and in plan.
+- Surfaces (surface).  The same for pads in plan: levers in any direction, three-point plates, pieces that keep clear.
 
 Searches are bounded by counted work, so the same plan gives the same rig; what was proven and what was not is in
 `Rig.words`.

@@ -38,11 +38,12 @@ JUDGED, JUDGED_AGAIN = 1_500_000, 250_000
 MOVING_COST = 12
 """A rig whose pads move costs so many times more to judge than one whose pads stay."""
 
-A_STEP_AWAY = 0.001
-"""Part of the planned band use that may be given up to bring the jack a drill step nearer to where it was planned."""
+AWAY = 5.0
+"""Part of the planned band use that may be given up to bring the jack nearer to its planned place by the extent of the
+pads: 0.02 % of the extent counts as 1 % of a pad's force."""
 
-FURTHER_AWAY = 1.0
-"""The same for each step beyond the first: a place of the jack within a step of the planned one is always near."""
+A_STEP_AWAY = 1.0
+"""The same for each drill step beyond the first: a place within a step of the planned one is always near."""
 
 OFF_PLAN = 0.1
 """Part of the planned band use that may be given up to bring the force that is furthest off its plan by its whole size
@@ -105,6 +106,8 @@ def _value(limits: PadLimits, hang: Hang, judge: Use, start: Ints) -> Callable[[
     """
     plan = limits.plan
     brief, wanted = plan.target.brief, np.abs(plan.force)
+    extent = max(np.ptp(plan.x), np.ptp(plan.y))
+    step = brief.levers.drill_step / extent
     planned = max(LEAST_PLANNED, float(judge(plan.x[None], plan.y[None], wanted[None])[0]))
 
     def value(rows: Ints) -> Floats:
@@ -118,9 +121,9 @@ def _value(limits: PadLimits, hang: Hang, judge: Use, start: Ints) -> Callable[[
             return result
         pads = hung.pad_x[kept], hung.pad_y[kept], hung.pad_force[kept]
         use = judge(*pads)
-        away = np.hypot(hung.jack_x - plan.jack_x, hung.jack_y - plan.jack_y)[kept] / brief.levers.drill_step
+        away = np.hypot(hung.jack_x - plan.jack_x, hung.jack_y - plan.jack_y)[kept] / extent
         off = np.abs(pads[2] / wanted - 1.0).max(axis=1)
-        lost = A_STEP_AWAY * away + FURTHER_AWAY * np.maximum(away - 1.0, 0.0) + OFF_PLAN * off
+        lost = AWAY * away + A_STEP_AWAY * np.maximum(away / step - 1.0, 0.0) + OFF_PLAN * off
         excess = limits.missed(*pads)
         missed = np.where(excess > 0, BROKEN * (1.0 + excess), 0.0)
         result[near[kept]] = np.maximum(use, planned) + planned * lost + missed

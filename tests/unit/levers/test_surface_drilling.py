@@ -8,7 +8,7 @@ import numpy as np
 import pytest
 from factories import make_pads
 from hand_plan_rigs import panel, plan_brief, pressure
-from plan_trees import gridded, plan_of, scattered
+from plan_trees import Looked, gridded, plan_of, scattered
 
 from rigdesign.checks.geometry import leans
 from rigdesign.checks.measures import steel_estimate
@@ -19,6 +19,7 @@ from rigdesign.levers.model import Piece, Rig
 from rigdesign.levers.surface.build import close_pieces
 from rigdesign.levers.surface.grouping import Grouped, group_in_plan
 from rigdesign.levers.surface.hanging import handed_on
+from rigdesign.levers.surface.nodes import Node
 from rigdesign.levers.surface.pad_limits import PadLimits
 from rigdesign.levers.surface.wiring import branches_of
 from rigdesign.pads.model import PadPlan, Proof
@@ -239,6 +240,15 @@ def test_free_pads_stay_on_the_outline_and_apart():
     assert limits.missed(rig.pad_x[None], off[None], force[None])[0] > 0
 
 
+def test_the_jack_stays_at_its_place_though_errors_could_be_smaller_elsewhere():
+    # these pads leave errors of several bands, and a jack some steps away would make them smaller
+    plan = replace(free_pads(), may_move=False)
+    levers = replace(plan.target.brief.levers, drill_step=0.01)
+    rig = built(replace(plan, target=replace(plan.target, brief=replace(plan.target.brief, levers=levers))))
+    jack = rig.trees[0].jack
+    assert np.hypot(jack.x - plan.jack_x, jack.y - plan.jack_y) < 0.01
+
+
 def test_pieces_too_close_are_told_in_a_finding():
     plan = plan_of([0.0, 0.0, 1.0, 1.0], [0.0, 1.0, 0.1, 1.2], [100.0, 210.0, 190.0, 110.0], grouping=((1, 4), (2, 3)))
     rig = built(plan)
@@ -249,11 +259,32 @@ def test_pieces_too_close_are_told_in_a_finding():
     assert "group the pads otherwise" in finding.remedy
 
 
-def test_drilling_that_brings_pieces_too_close_looks_for_more_room():
-    # two levers side by side, planned exactly the clearance apart: their own pads fix them, and they stay
+def test_pieces_planned_at_the_clearance_itself_are_far_enough():
+    # two levers side by side, exactly the clearance apart: their own pads fix them, and they stay
     plan = plan_of([0.0, 0.0, 0.4, 0.4], [0.0, 0.1, 0.0, 0.1], [100.0, 120.0, 110.0, 130.0], clearance=0.4)
-    rig = built(plan)
-    assert rig.findings == ()
+    assert built(plan).findings == ()
+
+
+def test_drilling_that_brings_pieces_too_close_looks_for_more_room():
+    # the clearance is what the planned tree has to spare: with steps of 10 mm the drilled one lacks some of it
+    close = []
+    for seed in range(1, 9):
+        plan = scattered(9, seed, drill_step=0.01)
+        tight = closest(plan)
+        rig = built(scattered(9, seed, drill_step=0.01, clearance=tight))
+        close += [len(close_pieces(rig.trees[0], tight))]
+    assert sum(close) == 0
+
+
+def closest(plan: PadPlan) -> float:
+    """Least distance of two pieces of one tier before drilling [m]."""
+    answer = group_in_plan(plan)
+    assert isinstance(answer, Grouped)
+    return Looked(plan, nest_of(answer.root)).closest
+
+
+def nest_of(node: Node):
+    return tuple(nest_of(kid) for kid in node.kids) if node.kids else node.pad
 
 
 def test_the_words_say_what_is_proven():
