@@ -14,7 +14,7 @@ from rigdesign.levers.surface.grouping import Grouped, group_in_plan
 from rigdesign.levers.surface.limits import field_of, limits_of
 from rigdesign.levers.surface.nodes import Maker, Node, items_of
 from rigdesign.levers.surface.search import Search, clash_count, first_tree
-from rigdesign.levers.surface.subsets import Problem, partners, steel_rule
+from rigdesign.levers.surface.subsets import BROKEN, Problem, partners, steel_rule
 
 
 def grouped(plan) -> Grouped:
@@ -170,6 +170,19 @@ def test_the_search_finds_what_is_proven_for_twelve_pads(limits):
         assert found.value >= least.value * (1 - 1e-9)
         if not clash_count(maker.nested(least.nest, pads), 0.0):
             assert found.value == pytest.approx(least.value, rel=1e-9)
+
+
+def test_a_tree_is_worth_its_steel_and_what_it_breaks():
+    plan = plan_of([0.0, 0.5, 1.0], [0.0, 0.3, 0.1], [100.0, 150.0, 120.0], ratio_limit=2.0, tiers=1)
+    maker = maker_of(plan)
+    pads = [maker.pad(k) for k in range(3)]
+    inner = maker.piece((pads[0], pads[1]))
+    chain = maker.piece((inner, pads[2]))
+    assert inner.value < 1
+    # 250 : 120 is a ratio of 2.08
+    assert chain.value == pytest.approx(BROKEN + maker.steel(chain))
+    # and it stands in two tiers where one is allowed
+    assert Search(maker, chain, 0).value == pytest.approx(2 * BROKEN + maker.steel(chain))
 
 
 def test_many_pads_keep_all_limits_and_clear_of_each_other():
