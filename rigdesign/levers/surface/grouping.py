@@ -19,8 +19,8 @@ from rigdesign.levers.surface.subsets import BROKEN, Problem, partners, steel_ru
 from rigdesign.levers.surface.wiring import node_of_grouping
 from rigdesign.pads.model import PadPlan
 
-EXACT = 12
-"""Up to so many pads the best tree is found with proof."""
+EXACT, EXACT_PLATES = 14, 13
+"""Up to so many pads the best tree is found with proof, without and with plates."""
 
 UNFINISHED = 20_000
 """Unfinished trees that are looked at to find, with proof, the best tree whose pieces keep clear of one another."""
@@ -81,7 +81,8 @@ def group_in_plan(
         return _prescribed(plan, replace(maker, partner=None))
     if limits.tiers is not None and (3 if limits.plates else 2) ** min(limits.tiers, 40) < plan.n_pads:
         return too_few_tiers(maker)
-    return _exact(maker) if plan.n_pads <= EXACT else _searched(maker, progress)
+    exact = EXACT_PLATES if limits.plates else EXACT
+    return _exact(maker) if plan.n_pads <= exact else _searched(maker, progress)
 
 
 def _exact(maker: Maker) -> Grouped | Refusal:

@@ -34,6 +34,9 @@ LONELY = 100.0
 TIE = 1e-12
 """Two trees whose values differ by less than this fraction are equal: rounding must not choose between them."""
 
+BLOCK = 500_000
+"""Most splits that are looked at at once."""
+
 NOTHING = -1e18
 """Value of what needs nothing of a limit, where the value of a tree is what it needs most of."""
 
@@ -161,14 +164,22 @@ class Problem:
             fits = items.height <= layer if tiers is not None else np.ones(items.count, bool)
             best[layer, 1 << np.arange(items.count)] = np.where(fits, items.value, np.inf)
         for subsets in rings(items.count):
-            rows = np.arange(subsets.masks.size)
-            own = self._own(subsets, rows)
-            for layer in range(0 if tiers is None else 1, layers):
-                values = self._joined(subsets, rows, best[max(0, layer - 1)], own)
-                least = values.min(axis=1)
-                first = (values <= (least + TIE * np.abs(least))[:, None]).argmax(axis=1)
-                best[layer, subsets.masks], pick[layer, subsets.masks] = values[rows, first], first
+            for rows in self._blocks(subsets):
+                own, masks = self._own(subsets, rows), subsets.masks[rows]
+                for layer in range(0 if tiers is None else 1, layers):
+                    values = self._joined(subsets, rows, best[max(0, layer - 1)], own)
+                    least = values.min(axis=1)
+                    first = (values <= (least + TIE * np.abs(least))[:, None]).argmax(axis=1)
+                    best[layer, masks], pick[layer, masks] = values[np.arange(rows.size), first], first
         return Solved(self, best, pick)
+
+    def _blocks(self, subsets: Ring) -> list[Masks]:
+        """The subsets of a ring, so many at a time that memory stays small."""
+        table = splits_of(subsets.size)
+        splits = len(table.pairs) + (len(table.triples) if self.limits.plates else 0)
+        count = subsets.masks.size
+        block = max(1, BLOCK // splits)
+        return [np.arange(start, min(start + block, count)) for start in range(0, count, block)]
 
     def values(self, subsets: Ring, rows: Masks, below: Floats) -> Floats:
         """Values of all splits of some subsets of a ring, levers first: (n_rows, n_splits); infinite: not possible."""

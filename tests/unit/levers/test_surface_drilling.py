@@ -300,7 +300,7 @@ def nest_of(node: Node):
 def test_the_words_say_what_is_proven():
     assert "proven: the least within the limits" in built(scattered(6, 1)).words
     assert "above the proven least without regard to crossings" in built(scattered(6, 35, clearance=0.3)).words
-    assert "not proven to be the least" in built(scattered(13, 1)).words
+    assert "not proven to be the least" in built(scattered(15, 1)).words
     assert "as prescribed" in built(scattered(3, 1, grouping=((1, 2), 3))).words
 
 
