@@ -25,8 +25,8 @@ EXACT, EXACT_PLATES = 14, 13
 UNFINISHED = 20_000
 """Unfinished trees that are looked at to find, with proof, the best tree whose pieces keep clear of one another."""
 
-WORK, WORK_PER_PAD = 4_000_000, 200_000
-"""Splits that a search over many pads looks at: at least so many, and so many a pad."""
+WORK, WORK_PER_PAD, MOST_PADS_WORKED = 4_000_000, 200_000, 120
+"""Splits that a search over many pads looks at: at least so many, and so many a pad for up to so many pads."""
 
 
 @dataclass(frozen=True)
@@ -116,7 +116,7 @@ def _kept_clear(maker: Maker, repair: Repair, best: Node) -> tuple[Node, bool]:
 
 def _searched(maker: Maker, progress: Callable[[float], None] | None) -> Grouped | Refusal:
     """A good tree of many pads."""
-    work = WORK + WORK_PER_PAD * maker.field.n_pads
+    work = WORK + WORK_PER_PAD * min(maker.field.n_pads, MOST_PADS_WORKED)
     found = Search(maker, first_tree(maker), work).run(progress)
     clearance = maker.limits.clearance
     clashes = clash_count(found.root, clearance)

@@ -54,20 +54,22 @@ class Repaired:
     looked_at: int
 
 
-@dataclass
 class Repair:
     """The search for one set of items in the top tier `tier`, beside `rest`, the shapes that stay by tier."""
 
-    solved: Solved
-    nodes: Sequence[Node]
-    tier: int
-    rest: Mapping[int, Sequence[Shape]]
-    clearance: float
-
-    def __post_init__(self) -> None:
-        """Make room for the splits that were looked up."""
+    def __init__(
+        self,
+        solved: Solved,
+        nodes: Sequence[Node],
+        tier: int = 1,
+        rest: Mapping[int, Sequence[Shape]] | None = None,
+        clearance: float = 0.0,
+    ) -> None:
+        """Take the best trees of all sets of the items that `nodes` stand for."""
+        self.solved, self.nodes, self.tier, self.clearance = solved, nodes, tier, clearance
+        self.rest = rest or {}
         self._choices: dict[tuple[int, int], tuple[Floats, NDArray[np.int64]]] = {}
-        _, self._x, self._y = self.solved.problem.items.sums
+        _, self._x, self._y = solved.problem.items.sums
 
     def best(self, limit: float, most: int) -> Repaired:
         """Find the best tree with a value below `limit`, looking at no more than `most` unfinished ones."""

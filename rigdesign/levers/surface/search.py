@@ -11,7 +11,6 @@ Work is counted, never timed; which pads are tried follows a fixed sequence, so 
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass, field
 from typing import NamedTuple
 
 import numpy as np
@@ -44,6 +43,10 @@ REPAIRS = 60
 
 OVERHEAD = 4_000
 """What one try costs whatever its size, in splits looked at."""
+
+
+WHOLE = 20
+"""What it costs to look at a whole tree, in splits a pad."""
 
 
 class Sequence:
@@ -97,17 +100,13 @@ def shapes_by_tier(root: Node, without: Node | None = None) -> dict[int, list[Sh
     return result
 
 
-@dataclass
 class Search:
     """A search over the trees of one field of pads, from a first tree on."""
 
-    maker: Maker
-    root: Node
-    most_work: int
-    sequence: Sequence = field(default_factory=Sequence)
-
-    def __post_init__(self) -> None:
-        """Note where the search stands."""
+    def __init__(self, maker: Maker, root: Node, most_work: int) -> None:
+        """Start from a tree and look at no more than so many splits."""
+        self.maker, self.root, self.most_work = maker, root, most_work
+        self.sequence = Sequence()
         self.value = self._full_value(self.root)
         self.work, self.tries = 0, 0
         self._clashing: list[int] = []
@@ -159,6 +158,8 @@ class Search:
         return self._repaired(opened, solved, small)
 
     def _taken(self, opened: _Opened, branch: Node, small: float) -> bool:
+        """Whether a branch makes the tree better; it is then in the tree."""
+        self.work += WHOLE * self.maker.field.n_pads
         root = self.maker.replaced(self.root, branch)
         value = self._full_value(root)
         if not value < self.value - small:
