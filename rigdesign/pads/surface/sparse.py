@@ -16,6 +16,8 @@ import scipy.sparse as sp
 from scipy.optimize import Bounds, LinearConstraint, OptimizeResult, milp
 
 from rigdesign.pads.surface.choice_model import Choice, Indices, Truths, cliques
+from rigdesign.pads.surface.jumps import JumpLimits
+from rigdesign.pads.surface.quiet import quiet
 from rigdesign.target.curve import Floats
 
 NEGLIGIBLE = 1e-11
@@ -112,8 +114,9 @@ class SparseChoice:
         *,
         use: float | None,
         may: Truths | None = None,
-        at_most: int | None = None,
-        per_use: Floats | None = None,
+        must: Truths | None = None,
+        jumps: JumpLimits | None = None,
+        weight: Floats | None = None,
         relaxed: bool = False,
         options: dict[str, float] | None = None,
     ) -> OptimizeResult:
@@ -125,12 +128,12 @@ class SparseChoice:
             Most that each place's pad can carry [N], (n,).
         use
             Band use to be kept; None makes it least with `count` pads.
-        may
-            Places that may get pads, (n,); None: all.
-        at_most
-            Bound on the number of pads.
-        per_use
-            Most that each place's pad can carry [N] per unit of band use, (n,), infinite where that is no limit.
+        may, must
+            Places that may get pads, all if None, and places that must, (n,).
+        jumps
+            What jumps allow, to make the programme tight.
+        weight
+            What a pad at each place counts for, (n,), instead of one.
         relaxed
             Whether parts of pads count, which makes it a linear programme.
         options
@@ -143,20 +146,24 @@ class SparseChoice:
         high[:n], high[n + 1 : 2 * n + 1] = top, 1.0
         if may is not None:
             high[n + 1 : 2 * n + 1] = may
+        if must is not None:
+            low[n + 1 : 2 * n + 1] = must
         cost = np.zeros(size)
         if use is None:
             cost[n] = 1.0
         else:
             low[n] = high[n] = use
-            cost[n + 1 : 2 * n + 1] = 1.0
+            cost[n + 1 : 2 * n + 1] = 1.0 if weight is None else weight
         whole = np.zeros(size)
         whole[n + 1 : 2 * n + 1] = 0.0 if relaxed else 1.0
-        constraints = [*self._fixed_rows, *self._place_rows(top, use, at_most, per_use)]
-        return milp(cost, constraints=constraints, bounds=Bounds(low, high), integrality=whole, options=options or {})
+        constraints = [*self._fixed_rows, *self._place_rows(top, use), *self._jump_rows(use, jumps)]
+        with quiet():
+            return milp(
+                cost, constraints=constraints, bounds=Bounds(low, high), integrality=whole, options=options or {}
+            )
 
-    def _place_rows(
-        self, top: Floats, use: float | None, at_most: int | None, per_use: Floats | None
-    ) -> list[LinearConstraint]:
+    def _place_rows(self, top: Floats, use: float | None) -> list[LinearConstraint]:
+        """Forces only where there are pads, within the limits; with the band use open, so many pads."""
         choice, n = self.choice, self.choice.x.size
         one, none = sp.eye_array(n), sp.csr_array((n, 1))
         rows = [LinearConstraint(self._padded(sp.hstack([one, none, -sp.diags_array(top)])), -np.inf, 0.0)]
@@ -164,16 +171,28 @@ class SparseChoice:
             rows.append(
                 LinearConstraint(self._padded(sp.hstack([one, none, -one * (choice.least / self.mean)])), 0.0, np.inf)
             )
-        pads = self._padded(sp.csr_array(np.concatenate([np.zeros(n + 1), np.ones(n)])[None]))
         if use is None:
+            pads = self._padded(sp.csr_array(np.concatenate([np.zeros(n + 1), np.ones(n)])[None]))
             rows.append(LinearConstraint(pads, choice.count, choice.count))
-        elif at_most is not None:
-            rows.append(LinearConstraint(pads, -np.inf, at_most))
-        if use is None and per_use is not None and np.isfinite(per_use).all():
-            # no pad carries more than its part of the band use, so the pads together carry no more than count times it
-            share = self._padded(sp.csr_array(np.append(self.mean / per_use, -float(choice.count))[None]))
-            rows.append(LinearConstraint(share, -np.inf, 0.0))
         return rows
+
+    def _jump_rows(self, use: float | None, jumps: JumpLimits | None) -> list[LinearConstraint]:
+        """What the pads at each station can carry together; with the band use open, what all pads can."""
+        if jumps is None:
+            return []
+        n = self.choice.x.size
+        limited = np.flatnonzero(np.isfinite(jumps.per_pad))
+        if use is None:
+            if limited.size < n:
+                return []
+            row = self._padded(sp.csr_array(np.append(self.mean / jumps.per_pad, -float(self.choice.count))[None]))
+            return [LinearConstraint(row, -np.inf, 0.0)]
+        if use <= 0:
+            return []
+        values = np.concatenate([self.mean / (jumps.per_pad[limited] * use), -np.ones(limited.size)])
+        where = np.tile(jumps.station[limited], 2), np.concatenate([limited, n + 1 + limited])
+        shape = (int(jumps.station.max()) + 1, self._layout[0])
+        return [LinearConstraint(sp.csr_array((values, where), shape=shape), -np.inf, 0.0)]
 
 
 def _chain(response: Floats, at: Floats, has_slope: bool) -> tuple[Chain, np.ndarray]:
