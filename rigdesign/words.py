@@ -34,7 +34,7 @@ DEFAULT_SHARE = 0.25
 set here."""
 
 DEFAULT_CLEARANCE = 0.03
-"""Least clearance in plan between pieces of one tier of a plan rig where the brief does not say [m]; common practice."""
+"""Least clearance in plan between pieces of one tier where the brief does not say [m]; common practice."""
 
 MOST_PADS = 1000
 """No rig and no study goes beyond this many pads; a search for more would take hours."""

@@ -22,6 +22,7 @@ from numpy.typing import NDArray
 
 from rigdesign.brief.model import Quantity, Specimen
 from rigdesign.target.curve import Floats, Side
+from rigdesign.target.internal import points_beyond
 
 SAME_PLACE = 1e-12
 """Of the span: what is nearer to a cut stands on it."""
@@ -154,6 +155,10 @@ def reaction_loads(specimen: Specimen, quantity: Quantity, cuts: Cuts, answer: R
     """Return what the supports' answer brings to a quantity at cuts, (n,)."""
     if not answer.x.size or quantity in ACROSS:
         return np.zeros(cuts.x.shape)
+    if specimen.cut == "square to x" and quantity != "torsion":
+        # summed from the outermost support inward, so that near it nothing large cancels
+        beyond = points_beyond(cuts.x, answer.x, answer.force, cuts.side)
+        return beyond[0] if quantity == "shear" else beyond[1]
     brought = (_direct(specimen, quantity, cuts, answer.x, answer.y) * answer.force).sum(axis=1)
     if quantity == "shear":
         return np.asarray(brought)
