@@ -8,6 +8,7 @@ import numpy as np
 
 from rigdesign.pads.forces import Forces
 from rigdesign.pads.limits import force_limits
+from rigdesign.pads.model import LEAST_SHARE
 from rigdesign.pads.outcome import Outcome, Progress
 from rigdesign.pads.surface.balance import Balance, balance
 from rigdesign.pads.surface.choice import choose, fewest
@@ -15,6 +16,7 @@ from rigdesign.pads.surface.choice_model import Choice, Indices, Truths
 from rigdesign.pads.surface.error_rows import ErrorRows, error_rows
 from rigdesign.pads.surface.evening import limits, more_even
 from rigdesign.pads.surface.line_bounds import line_bounds
+from rigdesign.pads.surface.lumps import Lumps, lumps
 from rigdesign.pads.surface.many import choose_of_many
 from rigdesign.pads.surface.places import compatible, given_places, usable_points
 from rigdesign.pads.surface.program import Programme
@@ -28,11 +30,13 @@ NODES = 20_000
 FEW_NODES = 2_000
 FINE = 40
 """Stations a pad at which forces are worked out and judged."""
-SWEEPS, WORST, NEAREST = 6, 8, 4
-"""Exchanges for even forces: so many sweeps, of the pads that deviate most, with the nearest places each."""
+WORST, NEAREST, EXCHANGES = 8, 4, 1600
+"""Exchanges for even forces: of the pads that deviate most, with the nearest places each, so many over the number of
+pads in all (a programme over many pads takes its time)."""
 
 FIXED_METHOD = "linear programme over the forces at the fixed places"
 CHOICE_METHOD = "mixed-integer programme over places and forces, branch and bound"
+STATES_METHOD = "shear and torsion of all that pads at these places could do, followed from tip to root"
 LINE_METHOD = "free pads on a line, whose shear and moment no pads in plan can better"
 
 
@@ -134,11 +138,12 @@ def best_of_places(
         words = f"{count} of {x.size} places, branch and bound"
     else:
         found = choose_of_many(choice, line_use, progress)
-        words = f"{count} of {x.size} places, windows of places searched in turn"
+        words = f"{count} of {x.size} places, searched level by level of band use"
     if found.pads is None:
         return None
     bound = max(found.bound * (1 - 1e-6), line_use)
-    method = CHOICE_METHOD if found.bound * (1 - 1e-6) >= line_use else LINE_METHOD
+    own_method = CHOICE_METHOD if x.size <= PROVEN else STATES_METHOD
+    method = own_method if found.bound * (1 - 1e-6) >= line_use else LINE_METHOD
     own = programme(target, choice.balance, x[found.pads], y[found.pads])
     best = own.least_use()
     if best is None:
@@ -152,29 +157,34 @@ def best_of_places(
 
 
 def exchanged(choice: Choice, target: Target, pads: Indices, first: Placed, limit: Floats) -> tuple[Placed, int]:
-    """Exchange places with their neighbours while the forces become more even within the band uses `limit`."""
-    best, chosen, sweeps = first, list(pads), 0
-    while sweeps < SWEEPS:
-        deviation = np.abs(best.forces.force - best.share) / np.maximum(best.share, 1e-3 * best.share.mean())
-        better = None
+    """Exchange places with their neighbours while the forces become more even within the band uses `limit`.
+
+    Exchanges are compared by shares from lumps of the load; what comes of them is judged by the exact shares.
+    """
+    lumped, chosen, left, sweeps = lumps(target, sign_of(target)), list(pads), max(16, EXCHANGES // pads.size), 0
+    best = _tried(choice, target, chosen, limit, lumped)
+    while best is not None and left > 0:
+        deviation = np.abs(best.forces.force - best.share) / np.maximum(best.share, LEAST_SHARE * best.share.mean())
+        better, swapped = best, chosen
         for k in np.argsort(-deviation, kind="stable")[:WORST]:
-            for place in _neighbours(choice, chosen, int(k)):
-                tried = _tried(choice, target, [*chosen[:k], place, *chosen[k + 1 :]], limit)
-                if tried is not None and tried.forces.evenness < (better or best).forces.evenness * (1 - 1e-3):
+            for place in _neighbours(choice, chosen, int(k))[: max(left, 0)]:
+                left -= 1
+                tried = _tried(choice, target, [*chosen[:k], place, *chosen[k + 1 :]], limit, lumped)
+                if tried is not None and tried.forces.evenness < better.forces.evenness * (1 - 1e-3):
                     better, swapped = tried, [*chosen[:k], place, *chosen[k + 1 :]]
-        if better is None:
+        if better is best:
             break
         best, chosen, sweeps = better, swapped, sweeps + 1
-    if best is first:
+    if best is None or not sweeps:
         return first, sweeps
     order = np.lexsort((choice.y[chosen], choice.x[chosen]))
     x, y = choice.x[chosen][order], choice.y[chosen][order]
-    fine = programme(target, choice.balance, x, y)
-    again = more_even(fine, Forces(best.forces.force[order], best.forces.use, np.inf), limit, best.share[order])
-    # judged at more stations it may break a limit by a little: then the first stays
-    if np.any(fine.uses(again.force) > limit * (1 + 1e-6)):
+    fine, share = programme(target, choice.balance, x, y), shares(target, x, y)
+    again = more_even(fine, Forces(best.forces.force[order], best.forces.use, np.inf), limit, share)
+    # judged at more stations, or by the exact shares, it may be no better after all: then the first stays
+    if np.any(fine.uses(again.force) > limit * (1 + 1e-6)) or again.evenness >= first.forces.evenness:
         return first, sweeps
-    return Placed(x, y, again, best.share[order]), sweeps
+    return Placed(x, y, again, share), sweeps
 
 
 def _neighbours(choice: Choice, chosen: list[int], k: int) -> list[int]:
@@ -185,11 +195,12 @@ def _neighbours(choice: Choice, chosen: list[int], k: int) -> list[int]:
     return [int(i) for i in np.argsort(away, kind="stable") if fits[i]][:NEAREST]
 
 
-def _tried(choice: Choice, target: Target, chosen: list[int], limit: Floats) -> Placed | None:
+def _tried(choice: Choice, target: Target, chosen: list[int], limit: Floats, lumped: Lumps) -> Placed | None:
     x, y = choice.x[chosen], choice.y[chosen]
-    own = programme(target, choice.balance, x, y, choice.rows)
-    share = shares(target, x, y)
-    forces = own.most_even(limit, share)
+    share = lumped.shares(x, y)
+    # of many places most rows are at stations where these pads have no jump
+    rows = choice.rows if choice.x.size <= PROVEN else error_rows(target, x, y)
+    forces = programme(target, choice.balance, x, y, rows).most_even(limit, share)
     return None if forces is None else Placed(x, y, forces, share)
 
 
