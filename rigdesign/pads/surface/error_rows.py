@@ -109,7 +109,7 @@ def error_rows(target: Target, x: Floats, y: Floats, even: int = EVEN) -> ErrorR
     blocks: list[Block] = []
     for band in judged:
         for side, at in zip(SIDES, _stations(target, band, x, y, even), strict=True):
-            blocks.append(_block(target, band, side, at, sign))
+            blocks.append(block_at(target, band, side, at, sign))
     if not judged:
         blocks.append(_without_bands(target, every["moment"], x, y, even, sign))
     return ErrorRows(specimen, tuple(blocks))
@@ -137,11 +137,13 @@ def _stations(target: Target, band: Band, x: Floats, y: Floats, even: int) -> tu
     return np.union1d(both, smooth), np.empty(0)
 
 
-def _block(target: Target, band: Band, side: Side, at: Floats, sign: float) -> Block:
+def block_at(target: Target, band: Band, side: Side, at: Floats, sign: float) -> Block:
+    """Return a quantity's rows at those of the stations `at` (n,) [m] where it has a band; `sign` is the target's."""
     below, above = band.widths(at, side)
     asked = np.isfinite(below) | np.isfinite(above)
     at, below, above = at[asked], below[asked], above[asked]
-    most = 1e9 * max(band.peak, 1e-300)  # keeps infinities out of programmes: nothing exceeds it
+    # keeps infinities out of programmes: nothing exceeds it; a target of nothing still has a least width
+    most = 1e9 * max(band.peak, band.least, 1e-300)
     below, above = np.minimum(below, most), np.minimum(above, most)
     wanted = sign * loads_at(target.net_plan, target.brief.specimen, band.quantity, at, side)
     return Block(band.quantity, side, at, wanted, *((below, above) if sign > 0 else (above, below)))
