@@ -49,7 +49,9 @@ def _closest(programme: Programme, found: Forces, limit: Floats, share: Floats) 
     mean = programme.mean
     scale = np.maximum(share, LEAST_SHARE * mean)
     rows = programme.balance.rows(programme.x, programme.y) * scale
-    free = null_space(rows / np.linalg.norm(rows, axis=1, keepdims=True))
+    size = np.linalg.norm(rows, axis=1, keepdims=True)
+    # with all pads on a line through the jack nothing is asked of the moment about it
+    free = null_space(rows / np.where(size > 0, size, 1.0))
     start = (found.force - share) / scale
     # unknown: the deviations d = start + free q, of least sum of squares
     d_0 = start - (free * (free * start[:, None]).sum(axis=0)).sum(axis=1)
