@@ -95,6 +95,11 @@ class Search:
 
     def found(self, low: float) -> tuple[Indices | None, float]:
         """Return the best pads of the levels above `low`, and their band use."""
+        best, high = self.by_beam(low)
+        return (best, high) if best is not None else self._by_relaxation(low)
+
+    def by_beam(self, low: float) -> tuple[Indices | None, float]:
+        """Return the best pads that the beam finds at levels above `low`, and their band use."""
         best, high, left = None, np.inf, AFTER
         level = max(low, 1e-9) * (1 + MEET)
         for step in range(BEAM_LEVELS):
@@ -107,7 +112,7 @@ class Search:
             level *= BEAM_RISE
             if not left or level >= high or high <= low * (1 + MEET):
                 break
-        return (best, high) if best is not None else self._by_relaxation(low)
+        return best, high
 
     def _filled(self, pads: Indices) -> tuple[Indices | None, float]:
         """Return as many pads as are wanted, these among them, and their least band use."""
