@@ -2,8 +2,11 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 
+from rigdesign.display import counted
 from rigdesign.findings import Finding, Refusal, numbered
 from rigdesign.levers.build import show_steel
 from rigdesign.levers.drilled import REACH
@@ -16,6 +19,12 @@ from rigdesign.levers.surface.pieces import tree_in_plan
 from rigdesign.levers.surface.wiring import Branches, branches_of
 from rigdesign.pads.model import PadPlan
 from rigdesign.pads.outcome import Progress
+
+MARGINS = (1, 3, 8)
+"""Drill steps by which the limits of levers are drawn closer in turn where drilling cannot keep them."""
+
+RATIO_MARGIN = 0.02
+"""Part of the ratio limit that goes with each of these steps."""
 
 
 def build_in_plan(plan: PadPlan, progress: Progress | None = None) -> Rig | Refusal:
@@ -34,6 +43,13 @@ def build_in_plan(plan: PadPlan, progress: Progress | None = None) -> Rig | Refu
     if isinstance(grouped, Refusal):
         return grouped
     rig = _drilled(plan, grouped)
+    for margin in MARGINS if plan.target.brief.levers.grouping is None else ():
+        if not isinstance(rig, Refusal):
+            break
+        # the best tree stands so close to a limit that no holes on the drill step keep it: one with room is asked for
+        roomier = group_in_plan(_with_margin(plan, margin), progress=grouping)
+        if not isinstance(roomier, Refusal):
+            grouped, rig = roomier, _drilled(plan, roomier, margin)
     if isinstance(rig, Refusal):
         return rig
     rules = plan.target.brief.levers
@@ -48,8 +64,21 @@ def build_in_plan(plan: PadPlan, progress: Progress | None = None) -> Rig | Refu
     return rig
 
 
-def _drilled(plan: PadPlan, grouped: Grouped) -> Rig | Refusal:
-    """The rig of one grouping."""
+def _with_margin(plan: PadPlan, steps: int) -> PadPlan:
+    """The plan with limits of its levers drawn closer by so many drill steps."""
+    brief = plan.target.brief
+    rules = brief.levers
+    closer = replace(
+        rules,
+        shortest_arm=rules.shortest_arm + steps * rules.drill_step,
+        longest=max(rules.longest - 2 * steps * rules.drill_step, 0.5 * rules.longest),
+        ratio_limit=1.0 + (rules.ratio_limit - 1.0) * (1.0 - RATIO_MARGIN * steps),
+    )
+    return replace(plan, target=replace(plan.target, brief=replace(brief, levers=closer)))
+
+
+def _drilled(plan: PadPlan, grouped: Grouped, margin: int = 0) -> Rig | Refusal:
+    """The rig of one grouping, which kept limits closer by so many drill steps than the brief's."""
     step = plan.target.brief.levers.drill_step / grouped.maker.field.extent
     branches = branches_of(grouped.root, plan.n_pads, step)
     drilled = drill_in_plan(plan, branches)
@@ -57,7 +86,10 @@ def _drilled(plan: PadPlan, grouped: Grouped) -> Rig | Refusal:
         return drilled
     tree = tree_in_plan(branches, drilled.hung, float(plan.force.sum()))
     findings = numbered(_findings(plan, grouped, tree))
-    return Rig(plan, *_pads(drilled), (tree,), _words(plan, grouped, branches, drilled), findings)
+    words = _words(plan, grouped, branches, drilled)
+    if margin:
+        words += f"; grouped with limits {counted(margin, 'drill step')} closer than the brief's, so that drilling keeps these"
+    return Rig(plan, *_pads(drilled), (tree,), words, findings)
 
 
 def _pads(drilled: DrilledInPlan) -> tuple[np.ndarray, np.ndarray]:

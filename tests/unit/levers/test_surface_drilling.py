@@ -17,6 +17,7 @@ from rigdesign.findings import Refusal
 from rigdesign.levers import build_rig
 from rigdesign.levers.model import Piece, Rig
 from rigdesign.levers.surface.build import close_pieces
+from rigdesign.levers.surface.drilling import drill_in_plan
 from rigdesign.levers.surface.grouping import Grouped, group_in_plan
 from rigdesign.levers.surface.hanging import handed_on, hang_staying
 from rigdesign.levers.surface.nodes import Node
@@ -309,3 +310,25 @@ def test_the_same_plan_gives_the_same_rig():
     one, other = built(plan), built(plan)
     assert one.trees[0].pieces == other.trees[0].pieces
     assert one.words == other.words
+
+
+def test_a_tree_at_its_limits_makes_way_for_one_with_room(monkeypatch):
+    # the first tree cannot be drilled, whatever it is; the next is grouped within closer limits and says so
+    plan = scattered(7, 4, shortest_arm=0.03)
+    refused = Refusal("levers", "no", "no", "no", "no")
+    asked: list[float] = []
+
+    def drilled(own, branches):
+        return refused if len(asked) == 1 else drill_in_plan(own, branches)
+
+    def grouped(own, *rest, **more):
+        asked.append(own.target.brief.levers.shortest_arm)
+        return group_in_plan(own, *rest, **more)
+
+    monkeypatch.setattr("rigdesign.levers.surface.build.drill_in_plan", drilled)
+    monkeypatch.setattr("rigdesign.levers.surface.build.group_in_plan", grouped)
+    rig = build_rig(plan)
+    assert isinstance(rig, Rig)
+    step = plan.target.brief.levers.drill_step
+    assert asked == pytest.approx([0.03, 0.03 + step])
+    assert "limits 1 drill step closer" in rig.words
