@@ -88,7 +88,8 @@ def _drilled(plan: PadPlan, grouped: Grouped, margin: int = 0) -> Rig | Refusal:
     findings = numbered(_findings(plan, grouped, tree))
     words = _words(plan, grouped, branches, drilled)
     if margin:
-        words += f"; grouped with limits {counted(margin, 'drill step')} closer than the brief's, so that drilling keeps these"
+        closer = counted(margin, "drill step")
+        words += f"; grouped with limits {closer} closer than the brief's, so that drilling keeps these"
     return Rig(plan, *_pads(drilled), (tree,), words, findings)
 
 
