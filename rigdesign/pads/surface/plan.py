@@ -10,6 +10,7 @@ from rigdesign.pads.model import PadPlan, Proof
 from rigdesign.pads.outcome import Outcome, Progress
 from rigdesign.pads.remarks import doubts, proof_remarks
 from rigdesign.pads.surface.error_rows import error_rows
+from rigdesign.pads.surface.fewest import fewest_hard_points
 from rigdesign.pads.surface.free import FreeInPlan
 from rigdesign.pads.surface.given import FINE, HardPlaces, choose_fixed, shares, sign_of
 from rigdesign.pads.surface.places import most_that_fit, usable_points
@@ -59,7 +60,7 @@ def _fewest(target: Target, jack: tuple[float, float], progress: Progress | None
     most = _most_pads(target)
     first = 1
     if brief.pads.places == "hard points":
-        first = min(HardPlaces(target, *jack, most, progress).fewest_possible(), most)
+        first = min(fewest_hard_points(target, jack), most)
     _, largest = force_limits(brief)
     if np.isfinite(largest):
         first = max(first, int(np.ceil(abs(target.net_plan.sums.force) / largest * (1 - 1e-9))))

@@ -15,9 +15,11 @@ from rigdesign.pads.surface.beam import few_pads
 from rigdesign.pads.surface.choice import choose, fewest, largest
 from rigdesign.pads.surface.choice_model import Choice, cliques
 from rigdesign.pads.surface.error_rows import band_use
+from rigdesign.pads.surface.fewest import fewest_hard_points
 from rigdesign.pads.surface.jumps import jump_limits
 from rigdesign.pads.surface.many import choose_of_many
 from rigdesign.pads.surface.program import Programme
+from rigdesign.pads.surface.refusals import jack_place_in_plan
 from rigdesign.pads.surface.sparse import SparseChoice
 from rigdesign.pads.surface.states import pads_needed
 
@@ -184,6 +186,17 @@ def test_the_fewest_pads_in_plan() -> None:
     assert fewer.proof.band_use <= 1.0
     one_less = plan_pads(target, fewer.n_pads - 1)
     assert not isinstance(one_less, PadPlan) or one_less.proof.band_use_least > 1.0
+
+
+def test_the_fewest_of_many_are_bounded_as_those_of_few(monkeypatch: pytest.MonkeyPatch) -> None:
+    x, y = places(36, 1, spars=6)
+    target = make_target(x, y, 10, shear=0.25, torsion=0.1, moment=0.05)
+    jack = jack_place_in_plan(target)
+    exact = fewest_hard_points(target, jack)
+    monkeypatch.setattr("rigdesign.pads.surface.fewest.PROVEN", 20)
+    bound = fewest_hard_points(target, jack)
+    assert exact - 1 <= bound <= exact
+    assert exact > 4
 
 
 def test_the_same_brief_gives_the_same_pads() -> None:
