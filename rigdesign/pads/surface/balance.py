@@ -9,6 +9,9 @@ import numpy as np
 from rigdesign.target.curve import Floats
 from rigdesign.target.model import Target
 
+FREE = 3
+"""So many pads are needed to hit a sum and two moments."""
+
 
 @dataclass(frozen=True)
 class Balance:
@@ -33,14 +36,36 @@ class Balance:
 
     def hit(self, x: Floats, y: Floats, force: Floats) -> Floats:
         """Return the forces (n,) moved onto sum and moments exactly, each in proportion to itself."""
+        return self._moved(x, y, force, np.zeros(force.size))
+
+    def hit_within(self, x: Floats, y: Floats, force: Floats, least: float, largest: float) -> Floats:
+        """Return the forces (n,) moved onto sum and moments by those of them that no limit holds.
+
+        Limits may be missed where too few pads are left to move.
+        """
+        held = np.zeros(x.size, bool)
+        for _ in range(x.size):
+            free, kept = np.where(held, 0.0, force), np.where(held, force, 0.0)
+            moved = self._moved(x, y, free, kept)
+            inside = np.clip(moved, least, largest)
+            if np.array_equal(moved, inside):
+                return moved
+            more = (moved != inside) & ~held
+            if not more.any() or (~(held | more)).sum() < FREE:
+                return self.hit(x, y, inside)
+            held, force = held | more, inside
+        return self.hit(x, y, force)
+
+    def _moved(self, x: Floats, y: Floats, free: Floats, kept: Floats) -> Floats:
+        """Forces `free` (n,) moved so that with those kept the sums are hit, each in proportion to itself."""
         rows = self.rows(x, y)
         for _ in range(2):  # the second time takes out the rounding of the first
-            left = np.array([self.total, 0.0, 0.0]) - (rows * force).sum(axis=1)
-            weighed = rows * force
+            left = np.array([self.total, 0.0, 0.0]) - (rows * (free + kept)).sum(axis=1)
+            weighed = rows * free
             normal = (weighed[:, None, :] * rows[None, :, :]).sum(axis=2)
             # pads in one line leave one combination of the moments without a say
-            force = force + (weighed * np.linalg.lstsq(normal, left, rcond=1e-12)[0][:, None]).sum(axis=0)
-        return force
+            free = free + (weighed * np.linalg.lstsq(normal, left, rcond=1e-12)[0][:, None]).sum(axis=0)
+        return free + kept
 
 
 def balance(target: Target, jack_x: float, jack_y: float) -> Balance:

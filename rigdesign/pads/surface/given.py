@@ -82,7 +82,7 @@ def choose_fixed(target: Target, jack_x: float, jack_y: float) -> Outcome | None
     if best is None:
         return None
     placed = evened(target, own, best)
-    _, moment_least = line_bounds(target, jack_x, x.size)
+    _, moment_least = line_bounds(target, (jack_x, jack_y), x.size)
     before = own.judged(best.force, placed.share).evenness
     words = f"{x.size} fixed places"
     return Outcome(
@@ -132,7 +132,7 @@ def best_of_places(
     """Choose `count` of the places x, y (n,) [m]: least band use, then even forces; None where nothing balances."""
     choice = choice_of(target, jack, x, y, count)
     _tell(progress, 0.02, f"choosing {count} of {x.size} places")
-    line_use, moment_least = line_bounds(target, jack[0], count)
+    line_use, moment_least = line_bounds(target, jack, count)
     if x.size <= PROVEN:
         found = choose(choice, NODES)
         words = f"{count} of {x.size} places, branch and bound"

@@ -56,11 +56,21 @@ class Programme:
         largest = self.largest / self.mean if np.isfinite(self.largest) else None
         return [(max(self.least, 0.0) / self.mean, largest)] * self.x.size
 
-    def least_use(self) -> Forces | None:
-        """Forces of least band use; None if no forces within the limits balance the target at these places."""
+    def least_use(self, near: Floats | None = None, within: float = np.inf) -> Forces | None:
+        """Forces of least band use; None if no forces within the limits balance the target at these places.
+
+        With `near` (n,) [N], the pads' shares, forces also keep `within` that part of them.
+        """
         a, c = self.edges
         cost = np.append(np.zeros(self.x.size), 1.0)
-        found = self._solve(cost, np.column_stack([a, -np.ones(c.size)]), c, self._bounds)
+        bounds = self._bounds
+        if near is not None:
+            reach = within * np.maximum(near, LEAST_SHARE * self.mean)
+            closer = zip(bounds, (near - reach) / self.mean, (near + reach) / self.mean, strict=True)
+            bounds = [(max(low, lo), hi if high is None else min(high, hi)) for (low, high), lo, hi in closer]
+            if any(high is not None and low > high for low, high in bounds):
+                return None
+        found = self._solve(cost, np.column_stack([a, -np.ones(c.size)]), c, bounds)
         return None if found is None else self.judged(found)
 
     def most_even(self, limit: Floats, share: Floats) -> Forces | None:

@@ -20,6 +20,7 @@ from rigdesign.pads.surface.balance import Balance
 from rigdesign.pads.surface.ground import Ground, MoveLimits, nearest_rows, rows_at
 from rigdesign.pads.surface.moving import Errors
 from rigdesign.pads.surface.program import SOLVER_TOLERANCE
+from rigdesign.pads.surface.share_slopes import ShareSlopes
 from rigdesign.target.curve import Floats
 
 FIRST_MOVE, LAST_MOVE = 0.35, 5e-4
@@ -40,6 +41,7 @@ WAYS: tuple[Way, ...] = ("together", "apart", "turned")
 """How pads at one station are moved: all together, or as if told apart, one way round or the other."""
 
 Shares = Callable[[Floats, Floats], Floats]
+Refill = Callable[[Floats, Floats], Floats | None]
 
 
 @dataclass(frozen=True)
@@ -57,7 +59,8 @@ class Search:
     """A search over places: least band use, or, with `limit`, most even forces within these band uses.
 
     `limit` (q,) is in the order of the errors' quantities.  With `share_limit` forces keep within that part of the
-    pads' own shares of the load.
+    pads' own shares of the load; `slopes` tells how these change.  `refill` gives the best forces at given places, for
+    steps whose own forces miss a limit.
     """
 
     errors: Errors
@@ -66,8 +69,10 @@ class Search:
     least: float
     largest: float
     shares: Shares | None = None
+    slopes: ShareSlopes | None = None
     share_limit: float | None = None
     limit: Floats | None = None
+    refill: Refill | None = None
 
     def value(self, x: Floats, y: Floats, force: Floats) -> float:
         """Return what is to be least; infinite where a limit is missed."""
@@ -80,7 +85,7 @@ class Search:
         if self.limit is not None and np.any(uses > self.limit * (1 + 1e-9) + 1e-12):
             return np.inf
         off = self._uneven(x, y, force)
-        if self.share_limit is not None and off > self.share_limit * (1 + 1e-9):
+        if self.share_limit is not None and off > self.share_limit * (1 + 1e-6):
             return np.inf
         return off if self.limit is not None else float(uses.max(initial=0.0))
 
@@ -122,18 +127,13 @@ class Search:
             x, y = self.ground.room.nearest(x, y)
             if not self.ground.keeps(x, y):
                 return None
-        force = self.balance.hit(x, y, now.force + found[:n])
-        force = self._clipped(x, y, force)
-        return Standing(x, y, force, self.value(x, y, force))
-
-    def _clipped(self, x: Floats, y: Floats, force: Floats) -> Floats:
-        """Forces a hair outside their limits put back, as far as sum and moments allow."""
-        for _ in range(3):
-            inside = np.clip(force, self.least, self.largest)
-            if np.array_equal(inside, force):
-                break
-            force = self.balance.hit(x, y, inside)
-        return force
+        force = self.balance.hit_within(x, y, now.force + found[:n], self.least, self.largest)
+        value = self.value(x, y, force)
+        if value == np.inf and self.refill is not None:
+            best = self.refill(x, y)
+            if best is not None:
+                force, value = best, self.value(x, y, best)
+        return Standing(x, y, force, value)
 
     def _solved(self, now: Standing, limits: MoveLimits, reach: float, way: Way) -> Floats | None:
         """Changes of forces [N] and places [m], stacked (3 n,).
@@ -162,7 +162,9 @@ class Search:
             if not beyond.any():
                 break
             chosen |= beyond
-        return None if found is None else found[:-1] * unit
+        if found is None or (self.limit is None and found[-1] >= now.value * (1 - LEAST_GAIN)):
+            return None
+        return np.asarray(found[:-1] * unit)
 
     def _programme(
         self, now: Standing, limits: MoveLimits, unit: Floats, reach: float, orders: tuple[Floats, Floats, Floats]
@@ -194,6 +196,8 @@ class Search:
         scale = self._scale(share)
         own = np.zeros((n, 3 * n))
         own[:, :n] = np.diag(unit[:n] / scale)
+        if self.slopes is not None:
+            own[:, n:] = -np.hstack(self.slopes.at(now.x, now.y)) * unit[n:] / scale[:, None]
         off = (now.force - share) / scale
         a, b = [], []
         if self.limit is not None:
@@ -201,7 +205,8 @@ class Search:
             b += [-off, off]
         if self.share_limit is not None:
             a += [np.hstack([sign * own, np.zeros((n, 1))]) for sign in (1.0, -1.0)]
-            b += [self.share_limit - off, self.share_limit + off]
+            most = self.share_limit * (1 - INSIDE)
+            b += [np.maximum(most - off, 0.0), np.maximum(most + off, 0.0)]
         return np.concatenate(a), np.concatenate(b)
 
     def _equal(self, now: Standing, limits: MoveLimits, unit: Floats) -> tuple[Floats, Floats]:
