@@ -58,6 +58,11 @@ def _errors(axes: Axes, study: Study) -> None:
         axes.yaxis.set_major_formatter(FuncFormatter(lambda value, _: f"{value:g}"))
     _line(axes, study, [100 * check.shear_error_peak for check in checks], VERMILION, "s", "shear, drilled")
     _line(axes, study, [100 * check.moment_error_peak for check in checks], BLUE, "o", "moment, drilled")
+    if study.brief.specimen.is_surface and checks:
+        of = checks[0].errors["torsion"].of
+        words = "" if of == "peak target torsion" else f" [% of {of}]"
+        torsion = [100 * check.errors["torsion"].peak for check in checks]
+        _line(axes, study, torsion, GREEN, "^", f"torsion, drilled{words}")
     least = [100 * check.rig.plan.proof.moment_error_least for check in checks]
     axes.plot([pads for pads, _ in _checked(study)], least, color=BLUE, linestyle=":", label="moment, proven least")
     hand = [100 * check.hand_moment for check in checks if check.hand_moment is not None]
@@ -67,6 +72,9 @@ def _errors(axes: Axes, study: Study) -> None:
         )
     _frame(axes, study)
     axes.set_ylabel("largest error [% of peak target value]", size=8)
+    if study.brief.specimen.is_surface and checks:
+        low, high = axes.get_ylim()
+        axes.set_ylim(low, high * (high / low) ** 0.18)  # room for the key above the curves
     axes.legend(loc="upper right", fontsize=7, framealpha=0.9, edgecolor="none")
 
 

@@ -32,6 +32,8 @@ MOST_NUMBERS = 40
 """Force and share are written at the pads up to so many of them."""
 FONT = 6.2
 """Size of force and share at the pads [pt]."""
+BORDER = 1e-6
+"""Borders between pads that differ by less than this part of the span are one."""
 STEPS = 600
 _SYMBOL: dict[Quantity, str] = {"shear": "V", "moment": "M", "torsion": "T"}
 
@@ -97,7 +99,7 @@ def _loads(figure: Figure, frame: Frame, target: Target, system: System) -> tupl
     figure.texts[1].set_text(f"{figure.texts[1].get_text()}; scale 1 : {frame.ratio:g} on A3")
     board = Board(frame.left + 1.0, frame.low + 1.0, frame.left + frame.width - 1.0, frame.low + frame.height + 1.0)
     clip = ground.outline(axes, frame, brief)
-    drawn, peak = pressure_map.draw_pressure(axes, frame, brief, clip)
+    drawn, peak = pressure_map.draw_pressure(axes, frame, brief, clip, system)
     if drawn is not None:
         pressure_map.colour_bar(figure, frame, drawn, peak, system)
     handles = ground.surroundings(axes, frame, brief, board)
@@ -158,7 +160,11 @@ def _cells(axes: Axes, frame: Frame, board: Board, check: Check) -> list[Any]:
 
     rig = check.rig
     areas = cells(rig.plan.target, rig.pad_x, rig.pad_y)
-    borders = shapely.line_merge(shapely.union_all([area.boundary for area in areas if not area.is_empty]))
+    # neighbours find their common border each for itself: on a fine grid the two are one line
+    specimen = rig.plan.target.brief.specimen
+    fine = BORDER * (specimen.right - specimen.left)
+    borders = shapely.union_all([area.boundary for area in areas if not area.is_empty], grid_size=fine)
+    borders = shapely.line_merge(borders)
     style: Any = {"color": INK, "linewidth": 0.9, "linestyle": (0, (3, 2))}
     for line in shapely.get_parts(borders):
         points = frame.points(shapely.get_coordinates(line))

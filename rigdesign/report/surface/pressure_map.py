@@ -63,10 +63,10 @@ def pressure_at(load: PressureLoad, brief: Brief, x: Floats, y: Floats) -> Float
     return np.asarray(load.times * np.where(np.ma.getmaskarray(inside), nearest, inside.filled(0.0)))
 
 
-def draw_pressure(axes: Axes, frame: Frame, brief: Brief, clip: PathPatch) -> tuple[Any, float]:
+def draw_pressure(axes: Axes, frame: Frame, brief: Brief, clip: PathPatch, system: System) -> tuple[Any, float]:
     """Draw the sum of the pressures as filled contours with their lines; return them and the largest magnitude [Pa].
 
-    Returns None and 0 where there is no pressure.
+    Contours stand at round values of the unit that the bar shows.  Returns None and 0 where there is no pressure.
     """
     loads = [load for load in brief.loads if isinstance(load, PressureLoad)]
     outline = brief.specimen.outline
@@ -80,7 +80,8 @@ def draw_pressure(axes: Axes, frame: Frame, brief: Brief, clip: PathPatch) -> tu
     values = sum(pressure_at(load, brief, at_x, at_y) for load in loads).reshape(n_y, n_x)  # type: ignore[union-attr]
     seen = values[_inside(brief, at_x, at_y).reshape(n_y, n_x)]
     low, high = min(0.0, float(seen.min())), max(0.0, float(seen.max()))
-    levels = np.asarray(MaxNLocator(9).tick_values(low, high))
+    unit = scale("pressure", max(-low, high), system).size
+    levels = unit * np.asarray(MaxNLocator(9).tick_values(low / unit, high / unit))
     drawn = axes.contourf(
         frame.x(x), frame.y(y), values, levels=levels, cmap=_colours(levels), zorder=1.2, extend="both"
     )

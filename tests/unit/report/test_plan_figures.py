@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 from dataclasses import replace
-from itertools import combinations
+from itertools import combinations, pairwise
 
 import numpy as np
 import pytest
@@ -17,10 +17,12 @@ from matplotlib.text import Text
 
 from rigdesign import checks
 from rigdesign.brief.model import CoupleLoad, Outline
+from rigdesign.chain import Study, StudyRow
 from rigdesign.report import figures_sheet
 from rigdesign.report.figures_curves import across, shear_and_moment
 from rigdesign.report.figures_load import load_and_pads, target_sheet
 from rigdesign.report.figures_sheet import SMALLEST_FONT
+from rigdesign.report.figures_study import study_sheet
 from rigdesign.report.figures_tree import elevation
 from rigdesign.report.surface import pieces
 from rigdesign.report.surface.branches import in_branches
@@ -278,6 +280,34 @@ def test_the_pressure_drawn_is_linear_between_points_and_the_nearest_beyond():
     # the map ends at x = 5 m
     wanted = 1.5 * (700.0 - 150.0 * np.array([0.4, 1.7, 5.0]) + 200.0 * y)
     np.testing.assert_allclose(pressure_at(load, brief, x, y), wanted, rtol=1e-12)
+
+
+def test_the_pressure_s_bar_has_round_numbers_of_its_own_unit():
+    for system, unit in (("SI", "Pa"), ("us", "psi")):
+        figure = target_sheet(checked(6).rig.plan.target, system)
+        (bar,) = (axes for axes in figure.axes if axes.get_ylabel().startswith("pressure"))
+        assert f"[{unit}]" in bar.get_ylabel()
+        ticks = [text.get_text() for text in bar.get_yticklabels()]
+        assert len(ticks) > 3
+        assert all(len(tick.lstrip("−0.").replace(".", "").rstrip("0")) <= 3 for tick in ticks), ticks
+
+
+def test_a_border_between_pads_is_drawn_once():
+    """Twice, its dashes would fill each other's gaps."""
+    figure = load_and_pads(checked(8))
+    lines = [curve.get_xydata() for axes in figure.axes for curve in axes.get_lines() if curve.is_dashed()]
+    pieces_drawn = [
+        tuple(sorted((tuple(a.round(3)), tuple(b.round(3))))) for points in lines for a, b in pairwise(points)
+    ]
+    assert len(pieces_drawn) > 20
+    assert len(set(pieces_drawn)) == len(pieces_drawn)
+
+
+def test_a_study_of_plan_rigs_shows_torsion_too():
+    check = checked(8)
+    figure = study_sheet(Study(check.rig.plan.target.brief, (StudyRow(8, check),)))
+    curves = {curve.get_label(): curve.get_ydata() for curve in figure.axes[0].get_lines()}
+    assert curves["torsion, drilled"] == pytest.approx([100 * check.torsion_error_peak])
 
 
 def test_branches_keep_who_hangs_with_whom_and_never_cross():
