@@ -14,8 +14,9 @@ import numpy as np
 
 from rigdesign.brief.model import Quantity
 from rigdesign.pads.surface.choice_model import Choice, Indices
+from rigdesign.pads.surface.error_rows import SIDES, Block
 from rigdesign.target.curve import Floats, Side
-from rigdesign.target.cuts import cuts_at, reaction_loads, reactions_in_plan
+from rigdesign.target.cuts import SAME_PLACE, cuts_at, reaction_loads, reactions_in_plan
 
 CELLS = 21
 """Cells a quantity, over the width of its band, in which partial rigs compete."""
@@ -24,7 +25,6 @@ PARTS = np.array([1.0, 0.85, 0.7, 0.55, 0.4, 0.25])
 SETS = 6
 """Sets of pads that are handed on at most."""
 
-SIDES: tuple[Side, Side] = ("inboard", "outboard")
 QUANTITIES: tuple[Quantity, ...] = ("shear", "torsion", "moment")
 
 
@@ -47,6 +47,9 @@ class Walls:
         return np.asarray((value >= self.low[k]) & (value <= self.high[k]))
 
 
+AllWalls = dict[tuple[Quantity, Side], Walls]
+
+
 @dataclass(frozen=True)
 class _Partial:
     """Partial rigs (s,): force V [N], first moments K = ΣFx, Y = ΣFy [N·m], number of pads, index in their layer."""
@@ -67,7 +70,7 @@ def few_pads(choice: Choice, use: float, top: Floats) -> list[Indices]:
         return []
     stations, walls = walls_of(choice, use)
     y_axis = choice.rows.specimen.reference_axis.at(stations)
-    place_of = np.searchsorted(stations, choice.x - 1e-9 * choice.balance.size)
+    place_of = station_of(stations, choice.x)
     now = _Partial(np.zeros(1), np.zeros(1), np.zeros(1), np.zeros(1, dtype=np.int64))
     layers: list[tuple[np.ndarray, np.ndarray]] = []
     for k in range(stations.size - 1, -1, -1):
@@ -89,41 +92,54 @@ def few_pads(choice: Choice, use: float, top: Floats) -> list[Indices]:
     return _sets(choice, now, layers)
 
 
-def walls_of(choice: Choice, use: float) -> tuple[Floats, dict[tuple[Quantity, Side], Walls]]:
-    """Stations, root to tip, and what the pads alone must keep between there."""
-    rows, even, specimen = choice.rows, choice.balance, choice.rows.specimen
-    blocks = [block for block in rows.blocks if block.quantity in QUANTITIES]
-    stations = np.unique(np.concatenate([choice.x, *(block.at for block in blocks)]))
-    # a station beside a place by rounding is the same one
-    stations = stations[np.append(True, np.diff(stations) > 1e-8 * even.size)]
-    answer = reactions_in_plan(specimen, even.total, even.total * even.x, even.total * even.y)
-    walls: dict[tuple[Quantity, Side], Walls] = {}
+def walls_of(choice: Choice, use: float) -> tuple[Floats, AllWalls]:
+    """Stations (m,) [m], root to tip, and what the pads alone must keep between there within a band use."""
+    blocks = [block for block in choice.rows.blocks if block.quantity in QUANTITIES]
+    every = np.sort(np.concatenate([choice.x, *(block.at for block in blocks)]))
+    stations = every[np.append(True, np.diff(every) > SAME_PLACE * choice.balance.size)]
+    walls: AllWalls = {}
     for quantity in QUANTITIES:
-        for side in SIDES:
-            low, high = np.full(stations.size, -np.inf), np.full(stations.size, np.inf)
-            for block in blocks:
-                if block.quantity == quantity and (block.side == side or quantity == "moment"):
-                    cuts = cuts_at(specimen, quantity, block.at, block.side)
-                    wanted = block.wanted - reaction_loads(specimen, quantity, cuts, answer)
-                    at = np.clip(np.searchsorted(stations, block.at - 1e-8 * even.size), 0, stations.size - 1)
-                    np.maximum.at(low, at, wanted - use * block.below)
-                    np.minimum.at(high, at, wanted + use * block.above)
-            walls[quantity, side] = Walls(low, high)
-        # a station without a row on one side has no jump there: what holds on the other side holds on both
-        one, other = walls[quantity, "inboard"], walls[quantity, "outboard"]
-        for mine, others in ((one, other), (other, one)):
-            bare = np.isinf(mine.low) & np.isinf(mine.high)
-            mine.low[bare], mine.high[bare] = others.low[bare], others.high[bare]
+        own = [block for block in blocks if block.quantity == quantity]
+        if quantity == "moment":
+            walls[quantity, "inboard"] = walls[quantity, "outboard"] = _walls(choice, stations, own, use)
+            continue
+        inner, outer = (_walls(choice, stations, [b for b in own if b.side == side], use) for side in SIDES)
+        # without a place there is no jump: what holds on one side of a station holds on both
+        smooth = np.isin(np.arange(stations.size), station_of(stations, choice.x), invert=True)
+        walls[quantity, "inboard"], walls[quantity, "outboard"] = (
+            Walls(
+                np.where(smooth, np.maximum(one.low, other.low), one.low),
+                np.where(smooth, np.minimum(one.high, other.high), one.high),
+            )
+            for one, other in ((inner, outer), (outer, inner))
+        )
     return stations, walls
+
+
+def station_of(stations: Floats, x: Floats) -> Indices:
+    """Return which of the stations (m,) each place x (k,) [m], from which they were gathered, stands at, (k,)."""
+    return np.asarray(np.searchsorted(stations, x, side="right") - 1)
+
+
+def _walls(choice: Choice, stations: Floats, blocks: list[Block], use: float) -> Walls:
+    """What the rows of some blocks ask at the stations (m,)."""
+    even, specimen = choice.balance, choice.rows.specimen
+    answer = reactions_in_plan(specimen, even.total, even.total * even.x, even.total * even.y)
+    low, high = np.full(stations.size, -np.inf), np.full(stations.size, np.inf)
+    for block in blocks:
+        cuts = cuts_at(specimen, block.quantity, block.at, block.side)
+        wanted = block.wanted - reaction_loads(specimen, block.quantity, cuts, answer)
+        at = station_of(stations, block.at)
+        np.maximum.at(low, at, wanted - use * block.below)
+        np.minimum.at(high, at, wanted + use * block.above)
+    return Walls(low, high)
 
 
 def _values(now: _Partial, x: float, y_axis: float) -> dict[Quantity, Floats]:
     return {"shear": now.v, "torsion": now.y - y_axis * now.v, "moment": now.k - x * now.v}
 
 
-def _within(
-    now: _Partial, walls: dict[tuple[Quantity, Side], Walls], k: int, x: float, y_axis: float, side: Side
-) -> np.ndarray:
+def _within(now: _Partial, walls: AllWalls, k: int, x: float, y_axis: float, side: Side) -> np.ndarray:
     values = _values(now, x, y_axis)
     result = np.ones(now.v.size, bool)
     for quantity in QUANTITIES:
@@ -136,7 +152,7 @@ def _grown(
     now: _Partial,
     place: int,
     top: float,
-    walls: dict[tuple[Quantity, Side], Walls],
+    walls: AllWalls,
     k: int,
     y_axis: float,
     alone: bool,
@@ -161,9 +177,7 @@ def _grown(
     return grown.taken(best), parent[best], pad[best]
 
 
-def _best_of_cells(
-    rigs: _Partial, walls: dict[tuple[Quantity, Side], Walls], k: int, x: float, y_axis: float
-) -> np.ndarray:
+def _best_of_cells(rigs: _Partial, walls: AllWalls, k: int, x: float, y_axis: float) -> np.ndarray:
     """The rig with the fewest pads, then the smallest errors, of each cell of errors."""
     values = _values(rigs, x, y_axis)
     places = np.stack([walls[quantity, "inboard"].cell(k, values[quantity]) for quantity in QUANTITIES])

@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 from rigdesign.pads.surface.balance import Balance
 from rigdesign.pads.surface.error_rows import ErrorRows
 from rigdesign.target.curve import Floats
+from rigdesign.target.cuts import SAME_PLACE
 
 Truths = NDArray[np.bool_]
 Indices = NDArray[np.intp]
@@ -36,6 +37,20 @@ class Chosen:
     pads: Indices | None
     bound: float
     is_proven: bool
+
+
+def station_numbers(x: Floats, span: float) -> Indices:
+    """Return the number of the station at which each place x (n,) [m] stands, (n,), counted from the root.
+
+    Places that one cut goes through share a station, as `counts` sees it.
+
+    >>> station_numbers(np.array([1.0, 0.2, 1.0 + 1e-14, 3.0]), 4.0)
+    array([1, 0, 1, 2])
+    """
+    order = np.argsort(x, kind="stable")
+    numbers = np.empty(x.size, dtype=np.intp)
+    numbers[order] = np.cumsum(np.diff(x[order], prepend=-np.inf) > SAME_PLACE * span) - 1
+    return numbers
 
 
 def cliques(compatible: Truths) -> list[list[int]]:

@@ -12,9 +12,9 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from rigdesign.pads.surface.choice_model import Choice, Indices, Truths
+from rigdesign.pads.surface.choice_model import Choice, Indices, Truths, station_numbers
 from rigdesign.target.curve import Floats
-from rigdesign.target.cuts import cuts_at, reaction_loads, reactions_in_plan
+from rigdesign.target.cuts import SAME_PLACE, cuts_at, reaction_loads, reactions_in_plan
 
 SAME = 1e-9
 """Of the largest response: a smaller jump is rounding."""
@@ -44,31 +44,42 @@ class JumpLimits:
 
 def jump_limits(choice: Choice) -> JumpLimits:
     """Return what the jumps of shear and torsion at the places themselves allow."""
-    station = np.asarray(np.unique(np.round(choice.x / choice.balance.size, 12), return_inverse=True)[1])
     n = choice.x.size
-    limits = JumpLimits(choice, np.zeros(n), np.full(n, np.inf), np.full(n, np.inf), station)
+    station = station_numbers(choice.x, choice.balance.size)
+    start, per_use = np.zeros(n), np.full(n, np.inf)
     alone, together = np.full(n, np.inf), np.full(n, np.inf)
     from_zero = np.ones(n, bool)
     for jump, up, down, wanted in _jumps(choice):
-        # where the pads at one station jump both ways, they may hide each other
-        one_way: Truths = ~(np.any(jump > 0, axis=1) & np.any(jump < 0, axis=1))
         row, pad = np.nonzero(jump)
+        if not row.size:
+            continue
+        # where pads jump both ways, they may hide each other
+        one_way: Truths = ~(np.any(jump > 0, axis=1) & np.any(jump < 0, axis=1))
         size, is_up = np.abs(jump[row, pad]), jump[row, pad] > 0
         rise = np.where(is_up, up[row], down[row]) / size
         base = np.maximum(np.where(is_up, wanted[row], -wanted[row]) / size, 0.0)
-        np.minimum.at(alone, pad, rise)
         from_zero[pad[base > SAME * choice.balance.total]] = False
+        # of a support's jump every pad has a part: those elsewhere may hide what a pad does to it
+        own: Truths = one_way | _at_one_station(jump, station)
+        np.minimum.at(alone, pad[own[row]], rise[own[row]])
         for k, more, offset in zip(pad[one_way[row]], rise[one_way[row]], base[one_way[row]], strict=True):
-            if more < limits.per_use[k]:
-                limits.start[k], limits.per_use[k] = offset, more
+            if more < per_use[k]:
+                start[k], per_use[k] = offset, more
         # all of one size and way, as the shear's jumps are: the pads at a station share one limit
-        if np.ptp(np.abs(jump[row, pad])) <= SAME * np.abs(jump).max() and one_way.all():
+        if np.ptp(size) <= SAME * size.max() and one_way.all():
             np.minimum.at(together, pad, rise)
     crowd = np.bincount(station)[station]
     # one pad carries what it can alone; of two or more each at most half of what they can together
-    own = np.where(crowd == 1, alone, np.maximum(alone, together / 2))
-    limits.per_pad[from_zero] = own[from_zero]
-    return limits
+    most = np.where(crowd == 1, alone, np.maximum(alone, together / 2))
+    return JumpLimits(choice, start, per_use, np.where(from_zero, most, np.inf), station)
+
+
+def _at_one_station(jump: Floats, station: Indices) -> Truths:
+    """Whether all that jumps in each row of jumps (k, n) stands at one of the stations (n,), (k,)."""
+    numbers = np.broadcast_to(station, jump.shape)
+    first = np.where(jump != 0, numbers, station.size).min(axis=1)
+    last = np.where(jump != 0, numbers, -1).max(axis=1)
+    return np.asarray(first >= last)
 
 
 def _jumps(choice: Choice) -> Iterator[tuple[Floats, Floats, Floats, Floats]]:
@@ -100,9 +111,10 @@ def _by_path(choice: Choice, use: float) -> Floats:
     answer = reactions_in_plan(specimen, even.total, even.total * even.x, even.total * even.y)
     path = block.wanted - reaction_loads(specimen, "moment", cuts, answer)
     low, high = path - use * block.below, path + use * block.above
-    own_low = np.interp(choice.x, at, low)
     away = at[None, :] - choice.x[:, None]
-    close = 1e-9 * even.size
+    close = SAME_PLACE * even.size
+    # the path falls to zero: at a place it is no lower than anywhere further out, be the place itself judged or not
+    own_low = np.where(away >= -close, low, 0.0).max(axis=1, initial=0.0)
     steepest = np.where(away > close, (high - own_low[:, None]) / np.where(away > close, away, 1.0), np.inf)
     flattest = np.where(away < -close, (high - own_low[:, None]) / np.where(away < -close, away, 1.0), -np.inf)
     after = np.minimum(steepest.min(axis=1), 0.0)

@@ -16,22 +16,24 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rigdesign.brief.model import Quantity
-from rigdesign.pads.surface.beam import Walls, walls_of
+from rigdesign.pads.surface.beam import AllWalls, Walls, station_of, walls_of
 from rigdesign.pads.surface.choice_model import Choice, Truths
-from rigdesign.target.curve import Floats, Side
+from rigdesign.pads.surface.error_rows import SIDES
+from rigdesign.target.curve import Floats
 
-CELLS = 96
-"""Cells over the width of each band: a finer plane proves a little more, for the square of the work."""
+CELLS, MOST_CELLS = 96, 384
+"""Cells over the width of each band where it is narrowest, and the most of them where it is widest: a finer plane
+proves a little more, for the square of the work."""
+ROUNDING = 1e-9
+"""Of the total, or the total times the span: what sums of forces are out by through rounding."""
 NONE = np.int16(20_000)
 """The number of pads of a state that cannot be reached."""
 LEAN = 0.5
 """Of the torsion band's width: the most that σ's distance from the axis may skew the window."""
 
 JUDGED: tuple[Quantity, Quantity] = ("shear", "torsion")
-SIDES: tuple[Side, Side] = ("inboard", "outboard")
 
 Counts = NDArray[np.int16]
-AllWalls = dict[tuple[Quantity, Side], Walls]
 
 
 @dataclass(frozen=True)
@@ -64,25 +66,23 @@ class Plane:
 def pads_needed(choice: Choice, use: float, top: Floats) -> int:
     """Return a number of pads that no choice within band use `use` goes below; pads carry at most `top` (n,) [N].
 
-    1 where shear and torsion are not both judged along the whole span, for then there is nothing to follow.
+    1 where shear and torsion are not both judged along the whole span, for then there is nothing to follow; one more
+    than there are places where not even all of them keep it.
     """
     stations, walls = walls_of(choice, use)
-    widths = [walls[q, side].high - walls[q, side].low for q in JUDGED for side in SIDES]
-    judged: Truths = np.logical_and.reduce([np.isfinite(width) for width in widths])
-    places = np.searchsorted(stations, choice.x - 1e-9 * choice.balance.size)
-    if choice.rows.specimen.cut != "square to x" or not np.all(judged[places]):
+    judged: Truths = np.logical_and.reduce([_width(walls[q, side]) < np.inf for q in JUDGED for side in SIDES])
+    if choice.rows.specimen.cut != "square to x" or not np.all(judged[station_of(stations, choice.x)]):
         return 1
-    stations = stations[judged]
-    walls = {key: Walls(wall.low[judged], wall.high[judged]) for key, wall in walls.items()}
-    widths = [walls[quantity, "inboard"].high - walls[quantity, "inboard"].low for quantity in JUDGED]
-    axis = choice.rows.specimen.reference_axis.at(stations)
-    d_v, d_z = (float(width.min()) / CELLS for width in widths)  # the narrowest place sets the cells
-    place_of = np.searchsorted(stations, choice.x - 1e-9 * choice.balance.size)
-    plane = Plane(np.zeros((1, 1), dtype=np.int16), 0, 0, float(axis[-1]), d_v, d_z)
+    stations, axis = stations[judged], choice.rows.specimen.reference_axis.at(stations[judged])
+    asked = {key: Walls(wall.low[judged], wall.high[judged]) for key, wall in walls.items()}
+    walls = {key: _in_reach(choice, key[0], wall, axis) for key, wall in asked.items()}
+    d_v, d_z = (_cell(asked, walls, quantity) for quantity in JUDGED)
+    widths = _width(walls["shear", "inboard"]), _width(walls["torsion", "inboard"])
+    place_of = station_of(stations, choice.x)
     # the state of nothing at all is a point, at a corner of four cells
-    plane = replace(plane.moved(-1, -1, (2, 2)), counts=np.zeros((2, 2), dtype=np.int16))
+    plane = Plane(np.zeros((2, 2), dtype=np.int16), -1, -1, float(axis[-1]), d_v, d_z)
     for k in range(stations.size - 1, -1, -1):
-        plane = _window(_sheared(plane, axis[k], widths[1][k], float(widths[0][k])), walls, k, axis[k])
+        plane = _window(_sheared(plane, axis[k], float(widths[1][k]), float(widths[0][k])), walls, k, axis[k])
         plane = _pruned(plane, walls["shear", "outboard"], walls["torsion", "outboard"], k, axis[k])
         here = np.flatnonzero(place_of == k)
         if here.size:
@@ -91,6 +91,30 @@ def pads_needed(choice: Choice, use: float, top: Floats) -> int:
         if plane.counts.min() >= NONE:
             return choice.x.size + 1
     return _at_the_end(plane, choice)
+
+
+def _width(walls: Walls) -> Floats:
+    return walls.high - walls.low
+
+
+def _in_reach(choice: Choice, quantity: Quantity, walls: Walls, axis: Floats) -> Walls:
+    """The walls at stations where the axis is at `axis` (m,) [m], no further apart than any pads can come.
+
+    A band with one side alone is as good as infinite on the other.
+    """
+    total, hair = choice.balance.total, ROUNDING * choice.balance.total
+    if quantity == "shear":
+        return Walls(np.maximum(walls.low, -hair), np.minimum(walls.high, total + hair))
+    arms = np.minimum(choice.y.min() - axis, 0.0), np.maximum(choice.y.max() - axis, 0.0)
+    hair *= choice.balance.size
+    return Walls(np.maximum(walls.low, total * arms[0] - hair), np.minimum(walls.high, total * arms[1] + hair))
+
+
+def _cell(asked: AllWalls, walls: AllWalls, quantity: Quantity) -> float:
+    """Size of the cells of shear or torsion [N or N·m]: by the narrowest band, and not too many over the widest."""
+    narrowest = min(float(_width(asked[quantity, side]).min()) for side in SIDES)
+    widest = max(float(_width(walls[quantity, side]).max()) for side in SIDES)
+    return max(min(narrowest, widest) / CELLS, widest / MOST_CELLS)
 
 
 def _window(plane: Plane, walls: AllWalls, k: int, axis: float) -> Plane:

@@ -9,6 +9,7 @@ import numpy as np
 import pytest
 from plan_choices import make_choice, make_target, places
 
+from rigdesign.brief.model import Acceptance, BandRule, Region
 from rigdesign.pads import plan_pads
 from rigdesign.pads.model import PadPlan
 from rigdesign.pads.surface.beam import few_pads
@@ -16,12 +17,14 @@ from rigdesign.pads.surface.choice import choose, fewest, largest
 from rigdesign.pads.surface.choice_model import Choice, cliques
 from rigdesign.pads.surface.error_rows import band_use
 from rigdesign.pads.surface.fewest import fewest_hard_points
+from rigdesign.pads.surface.given import choice_of
 from rigdesign.pads.surface.jumps import jump_limits
 from rigdesign.pads.surface.many import choose_of_many
 from rigdesign.pads.surface.program import Programme
 from rigdesign.pads.surface.refusals import jack_place_in_plan
 from rigdesign.pads.surface.sparse import SparseChoice
 from rigdesign.pads.surface.states import pads_needed
+from rigdesign.target import build_target
 
 
 def least_use(choice: Choice, pads: object) -> float:
@@ -206,3 +209,55 @@ def test_the_same_brief_gives_the_same_pads() -> None:
     assert isinstance(second, PadPlan)
     assert np.array_equal(first.force, second.force)
     assert np.array_equal(first.y, second.y)
+
+
+def in_region(start: float, end: float, most: int = 4, supports: tuple[float, ...] = ()) -> Choice:
+    """The choice of some of 11 places under bands between two stations alone; with supports, on the shear alone."""
+    x, y = places(11, 1)
+    brief = make_target(x, y, most).brief
+    rules = tuple(
+        BandRule(quantity, side, width, False, "peak")
+        for quantity, width in (("shear", 0.12), ("moment", 0.02), ("torsion", 0.05))[: 1 if supports else 3]
+        for side in ("under", "over")
+    )
+    held = replace(brief.specimen, support="two supports", supports=supports) if supports else brief.specimen
+    region = Region("region 1", start, end, rules)
+    target = build_target(replace(brief, specimen=held, acceptance=Acceptance((), (region,), False)))
+    return choice_of(target, jack_place_in_plan(target), x, y, most)
+
+
+@pytest.mark.parametrize("supports", [(), (1.0, 2.0)])
+def test_what_pads_beyond_a_region_carry_is_not_limited_by_what_is_judged_in_it(supports: tuple[float, ...]) -> None:
+    choice = in_region(0.5, 1.5, supports=supports)
+    limits = jump_limits(choice)
+    for pads in combinations(range(11), 4):
+        forces = Programme(choice.rows, choice.balance, choice.x[[*pads]], choice.y[[*pads]], 0.0, np.inf).least_use()
+        if forces is None:
+            continue
+        # within the solver's tolerance
+        assert np.all(forces.force <= limits.at(forces.use * (1 + 1e-6))[[*pads]] + 1e-6 * choice.balance.total)
+        assert np.all(forces.force <= limits.per_pad[[*pads]] * forces.use * (1 + 1e-6) + 1e-6 * choice.balance.total)
+
+
+def test_a_region_without_any_place_limits_no_pad() -> None:
+    choice = in_region(3.9, 3.99)
+    assert np.all(choice.x < 3.9)
+    assert np.all(np.isinf(jump_limits(choice).per_pad))
+
+
+def test_beyond_a_region_that_ends_at_a_place_nothing_is_followed() -> None:
+    x, _ = places(11, 1)
+    choice = in_region(0.0, float(x[-1]), 9)
+    assert pads_needed(choice, 1e-3, largest(choice)) == 1
+    assert pads_needed(in_region(0.0, 4.0, 9), 1e-3, largest(choice)) > 9
+
+
+def test_bands_of_one_side_alone_are_followed() -> None:
+    choice = make_choice(5, 16, 1)
+    endless = tuple(replace(block, above=np.full(block.at.size, 1e12)) for block in choice.rows.blocks)
+    one_sided = replace(choice, rows=replace(choice.rows, blocks=endless))
+    best = choose(one_sided, 20_000)
+    assert best.pads is not None
+    use = least_use(one_sided, best.pads) * (1 + 1e-6)
+    assert pads_needed(one_sided, use, limits_at(one_sided, use)) <= 5
+    assert pads_needed(one_sided, 0.1 * use, limits_at(one_sided, 0.1 * use)) > 1
