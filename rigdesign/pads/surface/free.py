@@ -54,6 +54,8 @@ EVEN_STEPS, EVEN_STEPS_MANY, EVEN_START = 15, 5, 8
 EVEN_ENOUGH = 1e-3
 MOST_EVENED = 6
 """Of so many of the best found the most even is taken."""
+STEPS_APART, MOST_APART = 4.0, 0.2
+"""Where torsion is judged, pads keep so many drill steps apart along the span, at most this part of their pitch."""
 SHARE_KEPT = 0.92
 """Pads judged against their shares keep to this part of what is allowed, so that the drilling has room."""
 ANYTHING = 1e6
@@ -113,7 +115,9 @@ class FreeInPlan:
 
     @cached_property
     def _errors(self) -> Errors:
-        return Errors(self.target, STATIONS * self.count)
+        brief = self.target.brief
+        most = MOST_APART * (brief.specimen.right - brief.specimen.left) / self.count
+        return Errors(self.target, STATIONS * self.count, min(STEPS_APART * brief.levers.drill_step, most))
 
     @cached_property
     def _slopes(self) -> ShareSlopes:
@@ -143,7 +147,8 @@ class FreeInPlan:
             if ground.room.places.is_empty:
                 continue
             tried = (
-                self._start(ground, x, y, share_limit) for _, x, y in Starts(self.target, ground, self.jack_x).all()
+                self._start(ground, x, y, share_limit)
+                for _, x, y in Starts(self.target, ground, self._errors, self.jack_x).all()
             )
             found = [(ground, start) for start in tried if start is not None]
             if found:

@@ -32,7 +32,9 @@ from rigdesign.target.model import Target
 NEAR = 1e-8
 """Of the span: by so much stations are moved to see how an error changes along it."""
 TOLD_APART = 1e-6
-"""Of the span: pads at one station are taken for so far apart, so that each of their jumps is seen on its own."""
+"""Of the span: pads keep at least so far apart, so that each of their jumps is seen on its own."""
+CLOSE = 1.5
+"""Pads whose stations are nearer than so many times what keeps them apart may change places."""
 STEPS = ("shear", "torsion", "shear across")
 """Quantities that jump at a pad."""
 
@@ -67,10 +69,15 @@ class _Tied(NamedTuple):
 
 @dataclass(frozen=True)
 class Errors:
-    """Errors over their bands, for any places, looked at from `even` fixed stations and from the pads' own."""
+    """Errors over their bands, for any places, looked at from `even` fixed stations and from the pads' own.
+
+    Pads to both sides of the axis can hide their jumps of torsion from one another where they share a station.  What
+    shifts a pad by a little lays them bare, so pads that move keep `apart` [m] along the span where torsion is judged.
+    """
 
     target: Target
     even: int
+    apart: float = 0.0
 
     @property
     def sign(self) -> float:
@@ -103,40 +110,67 @@ class Errors:
                 found[k] = max(found[k], float(self._use(block, x, y, force).max()))
         return found
 
+    @cached_property
+    def _along(self) -> tuple[float, float]:
+        """The direction in which stations count, from the axis' first point to its last; x for cuts square to x."""
+        specimen = self.target.brief.specimen
+        if specimen.cut == "square to x":
+            return 1.0, 0.0
+        axis = specimen.reference_axis
+        d_x, d_y = float(axis.x[-1] - axis.x[0]), float(axis.y[-1] - axis.y[0])
+        return d_x / float(np.hypot(d_x, d_y)), d_y / float(np.hypot(d_x, d_y))
+
+    @property
+    def _counted(self) -> list[tuple[tuple[float, float], float]]:
+        """Directions along which something jumps, and how far apart two pads must stand along each [m]."""
+        found = []
+        if "torsion" in self._quantities:
+            found.append((self._along, max(self.apart, TOLD_APART * self._span)))
+        elif "shear" in self._quantities:
+            found.append((self._along, TOLD_APART * self._span))
+        if "shear across" in self._quantities:
+            found.append(((0.0, 1.0), TOLD_APART * self._span))
+        return found
+
     def told_apart(self, x: Floats, y: Floats, turned: bool) -> tuple[Floats, Floats]:
-        """Return the places x, y (n,) [m] with pads at one station a hair apart; `turned` the other way round."""
-        hair = TOLD_APART * self._span
-        sign = -1.0 if turned else 1.0
-        return _spread(x, np.lexsort((sign * y, x)), hair), _spread(y, np.lexsort((sign * x, y)), hair)
+        """Return the places x, y (n,) [m] with pads at one station apart; `turned` those at near ones change places."""
+        for (a_x, a_y), hair in self._counted:
+            count, beside = x * a_x + y * a_y, y * a_x - x * a_y
+            step = _spread(count, _order(count, beside, hair, turned), hair) - count
+            x, y = x + step * a_x, y + step * a_y
+        return x, y
 
-    def orders(self, x: Floats, y: Floats, reach: float) -> tuple[Floats, Floats, Floats]:
-        """Return rows on moves (k, 2 n) and the least and largest value of each: pads keep their order along the span.
+    def are_apart(self, x: Floats, y: Floats) -> bool:
+        """Return whether no two pads at x, y (n,) [m] share a station at which torsion jumps, or nearly."""
+        return all(
+            np.diff(np.sort(x * a_x + y * a_y)).min(initial=np.inf) >= hair * 0.99
+            for (a_x, a_y), hair in self._counted[:1]
+        )
 
-        The errors are linear as long as no two pads pass at what jumps; pads at one station stay together.  For moves
-        of at most `reach` [m].
+    def has_near(self, x: Floats, y: Floats) -> bool:
+        """Return whether pads at x, y (n,) [m] stand so near one another's stations that they could change places."""
+        return any(
+            np.diff(np.sort(x * a_x + y * a_y)).min(initial=np.inf) < CLOSE * hair for (a_x, a_y), hair in self._counted
+        )
+
+    def orders(self, x: Floats, y: Floats, reach: float) -> tuple[Floats, Floats]:
+        """Return rows on moves (k, 2 n) and the least value of each [m]: pads keep their order along the span.
+
+        The errors are linear as long as no two pads pass at what jumps.  For moves of at most `reach` [m].
         """
         n = x.size
-        rows, least, most = [np.empty((0, 2 * n))], [NOWHERE], [NOWHERE]
-        same = TOLD_APART / 2 * self._span
-        for first, count in ((0, x), (n, y)):
-            names = ("shear across",) if first else ("shear", "torsion")
-            if not any(name in self._quantities for name in names):
-                continue
+        rows, least = [np.empty((0, 2 * n))], [NOWHERE]
+        for (a_x, a_y), hair in self._counted:
+            count = x * a_x + y * a_y
             rank = np.argsort(count, kind="stable")
             gap = np.diff(count[rank])
-            near = np.flatnonzero(gap < 2 * reach)
-            own = np.zeros((near.size, 2 * n))
-            own[np.arange(near.size), first + rank[near + 1]] = 1.0
-            own[np.arange(near.size), first + rank[near]] = -1.0
+            near = np.flatnonzero(gap < hair + 3 * reach)
+            own, each = np.zeros((near.size, 2 * n)), np.arange(near.size)
+            for pads, sign in ((rank[near + 1], 1.0), (rank[near], -1.0)):
+                own[each, pads], own[each, n + pads] = sign * a_x, sign * a_y
             rows.append(own)
-            least.append(-gap[near])
-            most.append(np.where(gap[near] < same, -gap[near], np.inf))
-        return np.concatenate(rows), np.concatenate(least), np.concatenate(most)
-
-    def has_ties(self, x: Floats, y: Floats) -> bool:
-        """Return whether pads at x, y (n,) [m] share a station at which something jumps."""
-        _, _, most = self.orders(x, y, TOLD_APART * self._span)
-        return bool(np.isfinite(most).any())
+            least.append(hair - gap[near])
+        return np.concatenate(rows), np.concatenate(least)
 
     def linear(self, x: Floats, y: Floats, force: Floats, reach: float) -> Linear:
         """Return the rows that tell about moves of at most `reach` [m], both sides of each band.
@@ -170,8 +204,9 @@ class Errors:
         for block in self._fixed:
             kept = np.ones(block.at.size, bool)
             if block.quantity in STEPS:
-                own = y if block.quantity in ACROSS else x
-                kept = np.abs(block.at[:, None] - own).min(axis=1) > reach
+                band = next(band for band in self._bands if band.quantity == block.quantity)
+                own = _tied(self.target, band, x, y).at
+                kept = np.abs(block.at[:, None] - own).min(axis=1, initial=np.inf) > reach
             found.append(Block(block.quantity, block.side, *(c[kept] for c in _columns(block))))
         return [block for block in found if block.at.size]
 
@@ -189,7 +224,7 @@ class Errors:
         error = (matrix * force).sum(axis=1) - block.wanted
         by_x, by_y = (part * force for part in self._slopes(block, x, y))
         if tie is not None:
-            along = self._along(block, x, y, force, error)
+            along = self._by_station(block, x, y, force, error)
             each = np.arange(block.at.size)
             by_x[each, tie.pad] += along * tie.by_x
             by_y[each, tie.pad] += along * tie.by_y
@@ -201,7 +236,7 @@ class Errors:
         )
         return Linear(use, by_force, by_x, by_y, quantity)
 
-    def _along(self, block: Block, x: Floats, y: Floats, force: Floats, error: Floats) -> Floats:
+    def _by_station(self, block: Block, x: Floats, y: Floats, force: Floats, error: Floats) -> Floats:
         """Slopes of the errors along the span on the rows' side of their stations, pads where they are."""
         specimen = self.target.brief.specimen
         step = NEAR * (specimen.right - specimen.left) * (-1.0 if block.side == "inboard" else 1.0)
@@ -230,11 +265,33 @@ class Errors:
         return by_x + first, by_y + second
 
 
+def _order(count: Floats, beside: Floats, hair: float, turned: bool) -> NDArray[np.intp]:
+    """Order of pads by where they count (n,); those nearer than a hair from outside in, or those that are near turned.
+
+    Taken from outside in, one side and the other by turns, the torsion of pads at one station stays small between them.
+    """
+    rank = np.argsort(count, kind="stable")
+    ends = np.flatnonzero(np.diff(count[rank]) >= (CLOSE if turned else 0.5) * hair) + 1
+    groups = []
+    for group in np.split(rank, ends):
+        if turned:
+            groups.append(group[::-1])
+            continue
+        side = group[np.argsort(beside[group], kind="stable")]
+        both = np.empty_like(side)
+        both[0::2], both[1::2] = side[: (side.size + 1) // 2], side[(side.size + 1) // 2 :][::-1]
+        groups.append(both)
+    return np.concatenate(groups)
+
+
 def _spread(value: Floats, order: NDArray[np.intp], hair: float) -> Floats:
-    """Values (n,) with successive ones, in an order, at least a hair apart."""
-    result = value.copy()
+    """Values (n,) with successive ones, in an order, at least a hair apart: the middle of a group stays."""
+    wanted = np.maximum.accumulate(value[order])
     step = hair * np.arange(value.size)
-    result[order] = np.maximum.accumulate(value[order] - step) + step
+    up = np.maximum.accumulate(wanted - step) + step
+    down = np.minimum.accumulate((wanted - step)[::-1])[::-1] + step
+    result = np.empty(value.size)
+    result[order] = (up + down) / 2
     return result
 
 

@@ -9,7 +9,6 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass, replace
-from typing import Literal
 
 import numpy as np
 from numpy.typing import NDArray
@@ -35,10 +34,6 @@ LEAST_GAIN = 1e-5
 """Smallest gain, as a fraction, that a step must bring."""
 INSIDE = 1e-3
 """A step keeps this far inside the band use that it must not exceed, so that its curvature does not spoil it."""
-
-Way = Literal["together", "apart", "turned"]
-WAYS: tuple[Way, ...] = ("together", "apart", "turned")
-"""How pads at one station are moved: all together, or as if told apart, one way round or the other."""
 
 Shares = Callable[[Floats, Floats], Floats]
 Refill = Callable[[Floats, Floats], Floats | None]
@@ -99,23 +94,25 @@ class Search:
 
     def refined(self, start: Standing, steps: int, enough: float = 0.0) -> Standing:
         """Return the best standing found from a start within so many steps; ends at a value of `enough`."""
-        best, move, ways = start, FIRST_MOVE, WAYS
+        best, move, turned = start, FIRST_MOVE, False
         for _ in range(steps):
             if best.value <= enough or move < LAST_MOVE:
                 break
-            tried = self._step(best, move * self.ground.pitch, ways[0])
+            tried = self._step(best, move * self.ground.pitch, turned)
             if tried is not None and tried.value < best.value * (1 - LEAST_GAIN):
-                best, move = tried, min(1.5 * move, FIRST_MOVE)
+                best, move, turned = tried, min(1.5 * move, FIRST_MOVE), False
                 continue
-            # pads at one station: kept together, then told apart, before the moves are made smaller
-            ways = ways[1:] if len(ways) > 1 and self.errors.has_ties(best.x, best.y) else WAYS
-            move = move / 2.5 if ways is WAYS else move
+            # pads at nearly one station are made to change places before the moves are made smaller
+            turned = not turned and self.errors.has_near(best.x, best.y)
+            move = move if turned else move / 2.5
         return best
 
-    def _step(self, now: Standing, reach: float, way: Way) -> Standing | None:
+    def _step(self, now: Standing, reach: float, turned: bool) -> Standing | None:
         """Places and forces after the best linearised move of at most `reach` [m]; None if there is none."""
+        x, y = self.errors.told_apart(now.x, now.y, turned)
+        now = replace(now, x=x, y=y)
         limits = self.ground.moves(now.x, now.y, reach)
-        found = self._solved(now, limits, reach, way)
+        found = self._solved(now, limits, reach)
         if found is None:
             return None
         n = now.x.size
@@ -127,6 +124,8 @@ class Search:
             x, y = self.ground.room.nearest(x, y)
             if not self.ground.keeps(x, y):
                 return None
+        if not self.errors.are_apart(x, y):
+            return None
         force = self.balance.hit_within(x, y, now.force + found[:n], self.least, self.largest)
         value = self.value(x, y, force)
         if value == np.inf and self.refill is not None:
@@ -135,21 +134,18 @@ class Search:
                 force, value = best, self.value(x, y, best)
         return Standing(x, y, force, value)
 
-    def _solved(self, now: Standing, limits: MoveLimits, reach: float, way: Way) -> Floats | None:
+    def _solved(self, now: Standing, limits: MoveLimits, reach: float) -> Floats | None:
         """Changes of forces [N] and places [m], stacked (3 n,).
 
         Rows of the errors are taken on as they turn out to bind, those that are most used first.
         """
         n, mean = now.x.size, self.balance.total / now.x.size
         unit = np.concatenate([np.full(n, mean), np.full(2 * n, reach)])
-        x, y = now.x, now.y
-        if way != "together":
-            x, y = self.errors.told_apart(x, y, way == "turned")
-        linear = self.errors.linear(x, y, now.force, reach)
+        linear = self.errors.linear(now.x, now.y, now.force, reach)
         change = np.concatenate([linear.by_force, linear.by_x, linear.by_y], axis=1) * unit
         most = np.full(linear.use.size, np.nan) if self.limit is None else self.limit[linear.quantity]
         chosen = linear.use >= IDLE * (linear.use.max(initial=0.0) if self.limit is None else most)
-        programme = self._programme(now, limits, unit, reach, self.errors.orders(x, y, reach))
+        programme = self._programme(now, limits, unit, reach)
         found = None
         for _ in range(ROUNDS):
             found = programme.solved(change[chosen], linear.use[chosen], most[chosen])
@@ -166,17 +162,13 @@ class Search:
             return None
         return np.asarray(found[:-1] * unit)
 
-    def _programme(
-        self, now: Standing, limits: MoveLimits, unit: Floats, reach: float, orders: tuple[Floats, Floats, Floats]
-    ) -> _Programme:
+    def _programme(self, now: Standing, limits: MoveLimits, unit: Floats, reach: float) -> _Programme:
         """What a step must keep whatever the errors: room, gaps, order, shares, balance, bounds."""
         n = now.x.size
         a, b = [], []
-        order, least, most = orders
-        tied = np.isfinite(most)
-        for rows, value in ((-limits.rows, -limits.least), (-order, -least), (order[tied], most[tied])):
-            a.append(np.hstack([np.zeros((value.size, n)), rows, np.zeros((value.size, 1))]))
-            b.append(value / reach)
+        for rows, least in ((limits.rows, limits.least), self.errors.orders(now.x, now.y, reach)):
+            a.append(np.hstack([np.zeros((least.size, n)), -rows, np.zeros((least.size, 1))]))
+            b.append(-least / reach)
         if self.shares is not None and (self.limit is not None or self.share_limit is not None):
             rows, values = self._share_rows(now, unit)
             a.append(rows)

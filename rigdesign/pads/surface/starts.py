@@ -17,6 +17,7 @@ from scipy.optimize import linprog
 
 from rigdesign.pads.path import least_use_path
 from rigdesign.pads.surface.ground import Ground, nearest_rows, rows_at
+from rigdesign.pads.surface.moving import Errors
 from rigdesign.pads.tube import Tube, build_tube
 from rigdesign.target.curve import Curve, Floats
 from rigdesign.target.model import Target
@@ -35,10 +36,11 @@ CURVE = 2001
 
 @dataclass(frozen=True)
 class Starts:
-    """Places for `ground.count` pads of a target under a jack at jack_x [m]."""
+    """Places for `ground.count` pads of a target under a jack at jack_x [m], apart as the errors ask."""
 
     target: Target
     ground: Ground
+    errors: Errors
     jack_x: float
 
     def all(self) -> Iterator[tuple[str, Floats, Floats]]:
@@ -129,19 +131,21 @@ class Starts:
     def _settled(self, x: Floats, y: Floats) -> tuple[Floats, Floats] | None:
         """The nearest places found that keep room and gaps; None if pads could not be pushed apart."""
         ground, reach = self.ground, self.ground.pitch / 2
-        if ground.brief.pads.rows:
-            y = ground.on_rows(x, y)
-        x, y = ground.room.nearest(x, y)
+        x, y = ground.room.nearest(x, ground.on_rows(x, y))
         for _ in range(SETTLING):
+            x, y = self.errors.told_apart(x, y, turned=False)
+            y = ground.on_rows(x, y)
             if ground.keeps(x, y):
+                return x, y
+            if not ground.room.allowed(x, y).all():
+                x, y = ground.room.nearest(x, y)
+            if ground.keeps(x, y) and self.errors.are_apart(x, y):
                 return x, y
             moved = _pushed(ground, x, y, reach)
             if moved is None:
                 return None
             x, y = moved
-            if not ground.room.allowed(x, y).all():
-                x, y = ground.room.nearest(x, y)
-        return (x, y) if ground.keeps(x, y) else None
+        return None
 
 
 def _pushed(ground: Ground, x: Floats, y: Floats, reach: float) -> tuple[Floats, Floats] | None:
