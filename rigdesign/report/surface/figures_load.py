@@ -98,7 +98,7 @@ def _loads(figure: Figure, frame: Frame, target: Target, system: System) -> tupl
     axes = plan_panel(figure, frame, system)
     figure.texts[1].set_text(f"{figure.texts[1].get_text()}; scale 1 : {frame.ratio:g} on A3")
     board = Board(frame.left + 1.0, frame.low + 1.0, frame.left + frame.width - 1.0, frame.low + frame.height + 1.0)
-    clip = ground.outline(axes, frame, brief)
+    clip = ground.outline(axes, frame, brief, board)
     drawn, peak = pressure_map.draw_pressure(axes, frame, brief, clip, system)
     if drawn is not None:
         pressure_map.colour_bar(figure, frame, drawn, peak, system)
