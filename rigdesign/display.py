@@ -108,3 +108,12 @@ def _number(value: float, unit: str, digits: int) -> str:
         return _number(value, "", digits)
     text = f"{abs(value):.{digits - 1}e}" if decimals > 9 else f"{abs(value):.{decimals}f}"
     return f"−{text}" if value < 0 else text
+
+
+def show_steel(value: float) -> str:
+    """Return a steel estimate in words: four digits, more where more stand before the decimal point.
+
+    >>> show_steel(28.7061), show_steel(59869.6)
+    ('28.71 N^(2/3)·m^(5/3)', '59870 N^(2/3)·m^(5/3)')
+    """
+    return f"{value:.4g} N^(2/3)·m^(5/3)" if abs(value) < 1e4 else f"{value:.0f} N^(2/3)·m^(5/3)"

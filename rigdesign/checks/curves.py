@@ -18,7 +18,8 @@ from numpy.typing import NDArray
 from rigdesign.brief.model import Quantity
 from rigdesign.checks.errors import reference
 from rigdesign.checks.model import Curves
-from rigdesign.checks.sampling import Sampler, local_errors, sampler
+from rigdesign.checks.samplers import sampler
+from rigdesign.checks.sampling import Sampler, local_errors
 from rigdesign.target.curve import Floats
 from rigdesign.target.model import Target
 

@@ -15,7 +15,7 @@ from numpy.typing import NDArray
 from rigdesign.brief.model import Quantity, Specimen
 from rigdesign.checks.model import Curves
 from rigdesign.target import internal
-from rigdesign.target.bands import Band, bands
+from rigdesign.target.bands import Band
 from rigdesign.target.curve import Floats, Side
 from rigdesign.target.cuts import ACROSS, ALONG
 from rigdesign.target.model import Target
@@ -118,22 +118,6 @@ class Sampler:
                 if mask.any():
                     below[mask], above[mask] = self.bands[quantity].widths(x[mask], side)
         return below, above
-
-
-def sampler(target: Target, pad_x: Floats, pad_force: Floats, pad_y: Floats | None = None) -> Sampler:
-    """Return a sampler along the span of the target and of pads (n_pads,) [m], [N] on its specimen.
-
-    `pad_y` [m] counts on surfaces alone, None for every y = 0.
-    """
-    if target.brief.specimen.is_surface:
-        from rigdesign.checks.surface.stations import sampler_in_plan
-
-        y = np.zeros(pad_x.shape) if pad_y is None else pad_y
-        return sampler_in_plan(target, pad_x, y, pad_force, along_span(target.brief.specimen))
-    judged: dict[Quantity, Band] = {**bands(target)}
-    loads = rig_loads(target, pad_x, pad_force)
-    breaks = np.concatenate([target.total.breaks, target.gravity.breaks])
-    return Sampler(target, loads, judged, ON_LINES, jumps(target, loads.at, judged.values()), loads.at, breaks)
 
 
 def jumps(target: Target, at: Floats, judged: Iterable[Band]) -> Floats:

@@ -13,7 +13,8 @@ from rigdesign.checks.model import Check
 from rigdesign.checks.regions import verdicts
 from rigdesign.checks.remarks_practice import practice_remarks
 from rigdesign.checks.remarks_statics import statics_remarks
-from rigdesign.checks.sampling import Sampler, across_span, sampler
+from rigdesign.checks.samplers import across_sampler, sampler
+from rigdesign.checks.sampling import Sampler
 from rigdesign.checks.statics import solve_statics
 from rigdesign.checks.thin import thinned
 from rigdesign.findings import Finding, Stage, numbered
@@ -50,7 +51,7 @@ def check(rig: Rig, extra: tuple[Finding, ...] = ()) -> Check:
     specimen = target.brief.specimen
     along = sampler(target, rig.pad_x, solved.pad_force, rig.pad_y)
     full = searched(along)
-    crosswise = _across_sampler(target, rig.pad_x, rig.pad_y, solved.pad_force)
+    crosswise = across_sampler(target, rig.pad_x, rig.pad_y, solved.pad_force)
     across = None if crosswise is None else searched(crosswise)
     rows = verdicts(target, full, across)
     hand_moment, hand_shear = (None, None) if specimen.is_surface else measures.hand_errors(target, int(rig.pad_x.size))
@@ -88,19 +89,9 @@ def check(rig: Rig, extra: tuple[Finding, ...] = ()) -> Check:
 def band_use(target: Target, pad_x: Floats, pad_y: Floats, force: Floats) -> float:
     """Return the largest error over its band of pads (n_pads,) [m], [N], zero where nothing is judged."""
     every = [searched(sampler(target, pad_x, force, pad_y))]
-    across = _across_sampler(target, pad_x, pad_y, force)
+    across = across_sampler(target, pad_x, pad_y, force)
     every += [] if across is None else [searched(across)]
     return max(float(curves.use(quantity).max()) for curves in every for quantity in curves.target)
-
-
-def _across_sampler(target: Target, pad_x: Floats, pad_y: Floats, force: Floats) -> Sampler | None:
-    """What is cut the other way, on surfaces."""
-    quantities = across_span(target.brief.specimen)
-    if not quantities:
-        return None
-    from rigdesign.checks.surface.stations import sampler_in_plan
-
-    return sampler_in_plan(target, pad_x, pad_y, force, quantities)
 
 
 def _space_remarks(check: Check) -> list[Finding]:

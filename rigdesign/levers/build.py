@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
+from rigdesign.display import show_steel
 from rigdesign.findings import Refusal
 from rigdesign.levers.drilled import Drilled
 from rigdesign.levers.drilling_fixed import drill_fixed
@@ -86,12 +87,3 @@ def _grouping_words(plan: PadPlan, wiring: Wiring) -> str:
         f"grouping: {wiring.n_levers} levers in {wiring.depth} tiers, {steel}, the least of all neighbour groupings "
         "within the limits"
     )
-
-
-def show_steel(value: float) -> str:
-    """A steel estimate in words: four digits, more where more stand before the decimal point.
-
-    >>> show_steel(28.7061), show_steel(59869.6)
-    ('28.71 N^(2/3)·m^(5/3)', '59870 N^(2/3)·m^(5/3)')
-    """
-    return f"{value:.4g} N^(2/3)·m^(5/3)" if abs(value) < 1e4 else f"{value:.0f} N^(2/3)·m^(5/3)"

@@ -11,7 +11,7 @@ import numpy as np
 
 from rigdesign.brief.model import Line
 from rigdesign.target.curve import Curve, Distribution, Floats, Side
-from rigdesign.target.plan_load import ALONG_X, Direction, Projection, Sums
+from rigdesign.target.plan_load import ALONG_X, Direction, Projected, Projection, Sums
 from rigdesign.target.plan_points import PlanPoints, owners
 from rigdesign.target.plan_stretch import LoadedStretch, bent, stretches_seen
 from rigdesign.target.sums import NO_CURVE, Combined, Points, Summed
@@ -104,7 +104,7 @@ class SeenTurning(_Seen):
 
 
 @dataclass(frozen=True)
-class LineLoad:
+class LineLoad(Projected):
     """A load `curve` over x [N/m, N] that acts along a `line` in plan.
 
     Along x its force is the curve itself; on y = 0 it turns nothing.
@@ -119,16 +119,6 @@ class LineLoad:
 
     curve: Curve
     line: Line
-
-    @cached_property
-    def _seen(self) -> dict[Direction, Projection]:
-        return {}
-
-    def along(self, direction: Direction) -> Projection:
-        """The load seen along a direction."""
-        if direction not in self._seen:
-            self._seen[direction] = self._project(direction)
-        return self._seen[direction]
 
     def _project(self, direction: Direction) -> Projection:
         if direction == ALONG_X and not self.line.y.any():

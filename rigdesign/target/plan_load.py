@@ -7,11 +7,14 @@ times n, which turns the specimen.  V, M and T at any cut square to the directio
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from abc import ABC, abstractmethod
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
+from functools import cached_property
 from typing import TYPE_CHECKING, NamedTuple, Protocol
 
 import numpy as np
+from numpy.typing import NDArray
 
 from rigdesign.brief.model import Quantity, Specimen
 from rigdesign.target.curve import Curve, Distribution, Floats, Side
@@ -21,6 +24,7 @@ from rigdesign.target.cuts import (
     reaction_loads,
     reactions_in_plan,
     stretch_at,
+    stretch_directions,
 )
 
 if TYPE_CHECKING:
@@ -78,6 +82,24 @@ class PlanLoad(Protocol):
         """
 
 
+class Projected(ABC):
+    """A load that is projected once for each direction along which it is looked at."""
+
+    @cached_property
+    def _seen(self) -> dict[Direction, Projection]:
+        return {}
+
+    def along(self, direction: Direction) -> Projection:
+        """The load seen along a direction."""
+        if direction not in self._seen:
+            self._seen[direction] = self._project(direction)
+        return self._seen[direction]
+
+    @abstractmethod
+    def _project(self, direction: Direction) -> Projection:
+        """The load seen along a direction, worked out."""
+
+
 def loads_at(load: PlanLoad, specimen: Specimen, quantity: Quantity, at: Floats, side: Side) -> Floats:
     """Return what a load and the supports' answer to it bring to a quantity at stations `at` (n,) [m], (n,)."""
     cuts = cuts_at(specimen, quantity, at, side)
@@ -98,14 +120,14 @@ def loads_at(load: PlanLoad, specimen: Specimen, quantity: Quantity, at: Floats,
 
 def directions(specimen: Specimen) -> tuple[Direction, ...]:
     """Return the directions of the cuts along the span: x, or those of the axis' stretches, root to tip."""
-    from rigdesign.target.cuts import stretch_directions
-
     if specimen.cut == "square to x":
         return (ALONG_X,)
     return tuple(Direction(float(x), float(y)) for x, y in zip(*stretch_directions(specimen), strict=True))
 
 
-def _by_direction(specimen: Specimen, quantity: Quantity, at: Floats, side: Side):  # type: ignore[no-untyped-def]
+def _by_direction(
+    specimen: Specimen, quantity: Quantity, at: Floats, side: Side
+) -> Iterator[tuple[NDArray[np.bool_], Direction]]:
     """Yield masks (n,) of the stations that share a direction of their cuts, with that direction."""
     every = np.ones(at.shape, bool)
     if quantity in ACROSS:

@@ -11,7 +11,7 @@ import numpy as np
 
 from rigdesign.target.curve import Floats, Side
 from rigdesign.target.internal import sums_at
-from rigdesign.target.plan_load import ALONG_X, ALONG_Y, Direction, Projection, Sums
+from rigdesign.target.plan_load import ALONG_X, ALONG_Y, Direction, Projected, Projection, Sums
 from rigdesign.target.sums import NO_CURVE, Points
 
 if TYPE_CHECKING:
@@ -59,7 +59,7 @@ class NearPoints(Points):
 
 
 @dataclass(frozen=True)
-class PlanPoints:
+class PlanPoints(Projected):
     """Forces [N] at places x, y [m], all (k,), in any order.
 
     Examples
@@ -72,16 +72,6 @@ class PlanPoints:
     x: Floats
     y: Floats
     force: Floats
-
-    @cached_property
-    def _seen(self) -> dict[Direction, Projection]:
-        return {}
-
-    def along(self, direction: Direction) -> Projection:
-        """The forces seen along a direction."""
-        if direction not in self._seen:
-            self._seen[direction] = self._project(direction)
-        return self._seen[direction]
 
     def _project(self, direction: Direction) -> Projection:
         a_x, a_y = direction

@@ -10,7 +10,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from rigdesign.target.curve import Floats
-from rigdesign.target.plan_load import Direction, PlanLoad, Projection, Sums
+from rigdesign.target.plan_load import Direction, PlanLoad, Projected, Projection, Sums
 from rigdesign.target.sums import NO_CURVE, Combined, Summed
 
 if TYPE_CHECKING:
@@ -18,28 +18,19 @@ if TYPE_CHECKING:
 
 
 @dataclass(frozen=True)
-class PlanSum:
+class PlanSum(Projected):
     """Σ factor · load; without parts it is no load at all."""
 
     parts: tuple[PlanLoad, ...]
     factors: tuple[float, ...]
 
-    @cached_property
-    def _seen(self) -> dict[Direction, Projection]:
-        return {}
-
-    def along(self, direction: Direction) -> Projection:
-        """The loads seen along a direction."""
-        if direction not in self._seen:
-            seen = [part.along(direction) for part in self.parts]
-            turning = [
-                (one.turning, f) for one, f in zip(seen, self.factors, strict=True) if one.turning is not NO_CURVE
-            ]
-            self._seen[direction] = Projection(
-                Combined(tuple(one.force for one in seen), self.factors),
-                Summed(tuple(part for part, _ in turning), tuple(f for _, f in turning)),
-            )
-        return self._seen[direction]
+    def _project(self, direction: Direction) -> Projection:
+        seen = [part.along(direction) for part in self.parts]
+        turning = [(one.turning, f) for one, f in zip(seen, self.factors, strict=True) if one.turning is not NO_CURVE]
+        return Projection(
+            Combined(tuple(one.force for one in seen), self.factors),
+            Summed(tuple(part for part, _ in turning), tuple(f for _, f in turning)),
+        )
 
     @cached_property
     def sums(self) -> Sums:

@@ -19,7 +19,7 @@ import numpy as np
 
 from rigdesign.brief.model import Line
 from rigdesign.target.curve import Curve, Distribution, Floats, Side
-from rigdesign.target.plan_load import ALONG_X, Direction, Projection, Sums
+from rigdesign.target.plan_load import ALONG_X, Direction, Projected, Projection, Sums
 from rigdesign.target.plan_points import NearPoints, closeness
 from rigdesign.target.plan_stretch import Stretch, stretches_seen
 from rigdesign.target.sums import NO_CURVE, Points, Summed
@@ -119,22 +119,12 @@ class BendingOf:
 
 
 @dataclass(frozen=True)
-class Torque:
+class Torque(Projected):
     """A torque over x [N·m/m, N·m] on the axis `line`: about x or, `about_axis`, about each stretch."""
 
     torque: Distribution
     line: Line
     about_axis: bool
-
-    @cached_property
-    def _seen(self) -> dict[Direction, Projection]:
-        return {}
-
-    def along(self, direction: Direction) -> Projection:
-        """The torque seen along a direction."""
-        if direction not in self._seen:
-            self._seen[direction] = self._project(direction)
-        return self._seen[direction]
 
     def _project(self, direction: Direction) -> Projection:
         if direction == ALONG_X and not self.about_axis:

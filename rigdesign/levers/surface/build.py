@@ -6,9 +6,8 @@ from dataclasses import replace
 
 import numpy as np
 
-from rigdesign.display import counted
+from rigdesign.display import counted, show_steel
 from rigdesign.findings import Finding, Refusal, numbered
-from rigdesign.levers.build import show_steel
 from rigdesign.levers.drilled import REACH
 from rigdesign.levers.grouping import millimetres
 from rigdesign.levers.model import Rig, Tree

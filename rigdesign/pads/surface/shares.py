@@ -134,7 +134,7 @@ def _cell(places: Floats, k: int, box: Floats) -> Floats:
         # beyond twice the cell's reach no place can cut it
         if away[other] > 2 * np.hypot(*(cell - places[k]).T).max():
             break
-        cell = _cut(cell, (cell - places[k]) @ (step[other] / away[other]) - away[other] / 2)
+        cell = _cut(cell, ((cell - places[k]) * (step[other] / away[other])).sum(axis=1) - away[other] / 2)
     return cell
 
 

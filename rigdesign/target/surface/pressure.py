@@ -11,7 +11,7 @@ import numpy as np
 
 from rigdesign.brief.model import Outline, PressureLoad
 from rigdesign.target.curve import Floats
-from rigdesign.target.plan_load import Direction, Projection, Sums
+from rigdesign.target.plan_load import Direction, Projected, Projection, Sums
 from rigdesign.target.surface.clip import Triangles, clipped
 from rigdesign.target.surface.mesh import carried_on, covered_pieces, mesh_of
 from rigdesign.target.surface.strips import strips_of
@@ -25,7 +25,7 @@ _SAME_BREAK = 1e-10
 
 
 @dataclass(frozen=True)
-class Pressure:
+class Pressure(Projected):
     """A pressure linear over triangles inside the outline; those of `covered` lie between the map's points, those of
     `beyond` outside them.
 
@@ -53,19 +53,11 @@ class Pressure:
         along = float(self.triangles.along_z.sum())
         return along, float(self.triangles.force.sum()) - along
 
-    @cached_property
-    def _seen(self) -> dict[Direction, Projection]:
-        return {}
-
-    def along(self, direction: Direction) -> Projection:
-        """The pressure seen along a direction."""
-        if direction not in self._seen:
-            a_x, a_y = direction
-            x, y = self.triangles.corners[:, :, 0], self.triangles.corners[:, :, 1]
-            s, n = x * a_x + y * a_y, y * a_x - x * a_y
-            force, turning = strips_of(s, n, self.triangles.values, self.triangles.sign, self._breaks(s, n, direction))
-            self._seen[direction] = Projection(force, turning)
-        return self._seen[direction]
+    def _project(self, direction: Direction) -> Projection:
+        a_x, a_y = direction
+        x, y = self.triangles.corners[:, :, 0], self.triangles.corners[:, :, 1]
+        s, n = x * a_x + y * a_y, y * a_x - x * a_y
+        return Projection(*strips_of(s, n, self.triangles.values, self.triangles.sign, self._breaks(s, n, direction)))
 
     def _breaks(self, s: Floats, n: Floats, direction: Direction) -> Floats:
         """Where the load or its slope jumps: at corners of the outline, and at edges of triangles that stand on a cut.

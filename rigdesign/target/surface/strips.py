@@ -241,4 +241,6 @@ def _fitted(knots: Floats, moments: Floats, breaks: Floats) -> Strips:
     """The polynomials with these Legendre moments (degree + 1, k)."""
     degrees = moments.shape[0]
     factor = (2.0 * np.arange(degrees) + 1.0)[:, None] / np.diff(knots)
-    return Strips(knots, _IN_POWERS[:degrees, :degrees].T @ (factor * moments), breaks)
+    # no BLAS product: how that sums depends on where in memory its arrays happen to lie
+    powers = (_IN_POWERS[:degrees, :degrees, None] * (factor * moments)[:, None, :]).sum(axis=0)
+    return Strips(knots, powers, breaks)

@@ -22,7 +22,8 @@ from rigdesign.checks import check
 from rigdesign.checks.curves import curves
 from rigdesign.checks.measures import hand_errors, hand_pads, peak_error
 from rigdesign.checks.regions import inside, sides, verdicts
-from rigdesign.checks.sampling import local_errors, sampler
+from rigdesign.checks.samplers import sampler
+from rigdesign.checks.sampling import local_errors
 from rigdesign.checks.thin import MOST_ROWS, thinned
 from rigdesign.target import build_target
 

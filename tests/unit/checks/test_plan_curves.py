@@ -15,7 +15,8 @@ from rigdesign.brief.model import CoupleLoad, Region, TorqueLoad
 from rigdesign.checks import check
 from rigdesign.checks.curves import curves
 from rigdesign.checks.errors import reference
-from rigdesign.checks.sampling import local_errors, sampler
+from rigdesign.checks.samplers import sampler
+from rigdesign.checks.sampling import local_errors
 from rigdesign.checks.surface.stations import sampler_in_plan
 from rigdesign.target import build_target
 from rigdesign.target.cuts import ACROSS
