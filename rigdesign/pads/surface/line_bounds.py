@@ -27,7 +27,7 @@ from rigdesign.pads.surface.room import Room
 from rigdesign.pads.tube import UNBOUNDED, Tube, Widths, build_tube
 from rigdesign.target.bands import Band, bands
 from rigdesign.target.curve import Floats
-from rigdesign.target.cuts import ACROSS, cuts_at, stretch_directions
+from rigdesign.target.cuts import ACROSS, SAME_PLACE, cuts_at, stretch_directions
 from rigdesign.target.internal import points_beyond
 from rigdesign.target.model import Target
 from rigdesign.target.plan_load import ALONG_X, ALONG_Y, Direction
@@ -163,7 +163,7 @@ class LineBounds:
         known = np.unique(np.concatenate([start + scale * edges, curve.breaks, [low, high]]))
         first, last = _ends(self._stretches(direction))
         s, outboard = _stations(known, min(low, first), max(high, last), max(COARSE * count, 600))
-        at = np.clip((s - start) / scale, *ends)
+        at = _back_on(np.unique(edges), np.clip((s - start) / scale, *ends))
         # pads may stand beyond the first and the last cut, where nothing is asked
         cut = (s >= low) & (s <= high) & ~((s == low) & ~outboard & (first < low)) & ~((s == high) & outboard)
         widths = [_widths(band, at, outboard, cut, sign) for band in (moment, shear)]
@@ -203,6 +203,13 @@ def _stations(known: Floats, low: float, high: float, even: int) -> tuple[Floats
     outboard = np.concatenate([np.zeros(jump.size, bool), np.ones(jump.size + single.size, bool)])
     order = np.lexsort((outboard, s))
     return s[order], outboard[order]
+
+
+def _back_on(edges: Floats, at: Floats) -> Floats:
+    """Stations `at` (m,) [m], those that rounding has put beside one of the edges (k,) on it: there bands jump."""
+    place = np.clip(np.searchsorted(edges, at), 1, edges.size - 1)
+    nearest = np.where(at - edges[place - 1] < edges[place] - at, edges[place - 1], edges[place])
+    return np.where(np.abs(at - nearest) <= SAME_PLACE * (edges[-1] - edges[0]), nearest, at)
 
 
 def _widths(band: Band, at: Floats, outboard: NDArray[np.bool_], cut: NDArray[np.bool_], sign: int) -> Widths:
