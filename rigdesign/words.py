@@ -45,5 +45,8 @@ LARGEST_NUMBER = 1e15
 SMALLEST_TOTAL = 1e-12
 """A target's total below this [N] is taken for a slip of the pen: no pad and no load cell could bring it."""
 
+ROUNDING = 1e-9
+"""A place nearer to zero than this [m], or a part smaller than this, is rounding: it is said to be zero."""
+
 SCHEMA_NUMBER = 1
 """Number of the rig.json layout that this version writes and reads."""

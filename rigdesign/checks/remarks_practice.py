@@ -5,7 +5,7 @@ Pad forces and pressures are held to their limits at the peak of the test.
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterable, Iterator
 
 import numpy as np
 
@@ -21,6 +21,7 @@ from rigdesign.target.curve import Floats
 
 USUAL_RATIO = 4.0  # common practice: 4 is accepted, above 5 avoided
 IDLE_PAD = 0.05  # of the mean pad force: such a pad is hardware for nothing
+NEAR_PIVOT = 0.032  # [m] from pivot to hole: four diameters of an 8 mm hole, common practice
 COSTLY_DRILLING, COSTLY_USE = 1.2, 0.5  # drilling is remarked on where it raises the band use so much, to above this
 LIMIT_SLACK = 2e-9  # of a limit: a lever that was built right at it must not fail by rounding
 FORCE_SLACK = 1e-9  # of the limit: nor a pad
@@ -150,6 +151,7 @@ def _plates(check: Check) -> Iterator[Finding]:
     from rigdesign.checks.surface.remarks import plate_fractions
 
     fractions = plate_fractions(check)
+    yield from _near_pivot(fractions, check.rig.plan.target.brief.levers)
     high = {p: max(own) / min(own) for p, own in fractions.items() if min(own) > 0}
     high = {piece: spread for piece, spread in high.items() if spread > USUAL_RATIO * (1 + FORCE_SLACK)}
     if high:
@@ -162,6 +164,22 @@ def _plates(check: Check) -> Iterator[Finding]:
             f"the largest share is {high[worst]:.3g} times the smallest",
             f"{USUAL_RATIO:.0f} by common practice for levers",
             "a small error of the pivot's place moves much load on such a plate; drill it with care",
+        )
+
+
+def _near_pivot(plates: Iterable[Piece], rules: LeverRules) -> Iterator[Finding]:
+    """Plates with a hole so near the pivot that two pins hardly fit, where the brief sets no shortest arm."""
+    near = {piece: _shortest(piece) for piece in plates if _shortest(piece) < NEAR_PIVOT}
+    if near and rules.shortest_arm <= 0:
+        worst = min(near, key=lambda piece: near[piece])
+        yield Finding(
+            "practice",
+            "warning",
+            worst.name,
+            f"a hole of the plate is so near its pivot that their pins hardly fit side by side{_others(near, worst)}",
+            show(near[worst], "length"),
+            f"{show(NEAR_PIVOT, 'length')}, four holes of 8 mm by common practice",
+            'set "shortest_arm" in [levers]',
         )
 
 

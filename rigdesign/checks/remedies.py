@@ -9,6 +9,7 @@ from rigdesign.display import show
 from rigdesign.target.cuts import ACROSS
 
 MUCH = 0.5  # of an error: what causes so much of it is the first thing to change
+DRILLED_WELL = 1.02  # times the plan's band use: a finer drill step would not bring more than that
 
 
 def jack_remedy(check: Check) -> str:
@@ -38,4 +39,6 @@ def band_remedy(check: Check, quantity: Quantity, x: float, size: float) -> str:
         if low - reach <= x <= high + reach:
             stretch = f"{show(low, 'length', unit='m')} to {show(high, 'length', unit='m')}"
             return f"the keep-out from {stretch} binds here: shorten it, take shorter pads beside it or a wider band"
+    if target.brief.specimen.is_surface and check.band_use <= DRILLED_WELL * check.rig.plan.proof.band_use:
+        return "more pads, other places for them or a wider band"
     return "more pads, other places for them, a smaller drill step or a wider band"

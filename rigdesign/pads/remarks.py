@@ -32,7 +32,19 @@ def doubts(outcome: Outcome, use: float) -> list[Finding]:
 def proof_remarks(proof: Proof) -> list[Finding]:
     """A gap between what was found and what is proven."""
     findings = []
-    if proof.gap > GAP_REMARK:
+    if proof.gap == float("inf"):
+        findings.append(
+            Finding(
+                "pads",
+                "note",
+                "pads",
+                "nothing is proven of how small the band use of so many pads could be",
+                value=f"{proof.band_use_found:.4g} found",
+                limit="no bound above zero",
+                remedy="a better arrangement may exist: try more pads, or given places, whose choice can be proven",
+            )
+        )
+    elif proof.gap > GAP_REMARK:
         findings.append(
             Finding(
                 "pads",

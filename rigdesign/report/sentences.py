@@ -13,7 +13,7 @@ from rigdesign.checks.text import NOT_PROVEN, UNIT_KIND, percent
 from rigdesign.display import System, counted, show
 from rigdesign.findings import Finding, Refusal
 from rigdesign.target.cuts import ACROSS
-from rigdesign.words import LOAD_CELL_FLOOR
+from rigdesign.words import LOAD_CELL_FLOOR, ROUNDING
 
 CAUTION = (
     "The check takes levers and links as rigid, weightless and free of friction; strength, clearances and deflections "
@@ -59,7 +59,7 @@ def verdict(check: Check) -> str:
     broken = [region for region in check.regions if region.accepted is False]
     failures = [finding for finding in check.findings if finding.severity == "failure"]
     reasons = [
-        f"{region.quantity} over {region.name} takes {percent(region.use or 0.0)} of its band" for region in broken
+        f"{region.quantity} over {region.name} takes {_beyond(region.use or 0.0)} of its band" for region in broken
     ]
     # what breaks a band is a finding of the statics as well, and said already
     said = {region.name for region in broken} if _is_surface(check) else None
@@ -72,6 +72,15 @@ def verdict(check: Check) -> str:
     if len(others) > MOST_REASONS:
         reasons.append(f"{len(others) - MOST_REASONS} more among the findings")
     return f"Not accepted: {size}; " + "; ".join(reasons) + "."
+
+
+def _beyond(use: float) -> str:
+    """A band use above 1 in per cent, never such that it reads as if the band were kept.
+
+    >>> _beyond(1.186), _beyond(1.0003)
+    ('119 %', 'a little more than 100 %')
+    """
+    return percent(use) if percent(use) != percent(1.0) else f"a little more than {percent(1.0)}"
 
 
 def pieces_words(check: Check) -> str:
@@ -135,7 +144,7 @@ def _plan_lines(check: Check, system: System) -> list[str]:
     if not _is_surface(check):
         return []
     target, rig = check.rig.plan.target, check.rig
-    x, y = show(target.centroid, "length", system), show(target.centroid_y, "length", system)
+    x, y = (show(at if abs(at) > ROUNDING else 0.0, "length", system) for at in (target.centroid, target.centroid_y))
     tiers = max((piece.tier for tree in rig.trees for piece in tree.pieces), default=0)
     return [
         f"The target's resultant, {show(target.resultant, 'force', system)}, acts at x = {x}, y = {y}; "
@@ -147,6 +156,8 @@ def _proven_line(check: Check) -> str:
     proof = check.rig.plan.proof
     if proof.method == NOT_PROVEN:
         return "Nothing is proven here: the rig was designed for another target."
+    if proof.band_use_least <= 0 < proof.band_use_found:
+        return _unproven_line(check)
     gap = f"the best found is {percent(proof.gap)} above that" if proof.gap > 5e-4 else "the best found reaches that"
     if proof.band_use > proof.band_use_found * (1 + 5e-4):
         gap += f", {percent(proof.band_use / proof.band_use_found - 1)} more is given up for even forces"
@@ -158,6 +169,20 @@ def _proven_line(check: Check) -> str:
     return (
         f"Proven ({proof.method}): {least}; {gap}, and drilling takes it to {drilled:.3f} times the plan's{below}. "
         f"The moment's error alone cannot go below {percent(proof.moment_error_least)} of peak target moment."
+    )
+
+
+def _unproven_line(check: Check) -> str:
+    """Where the bound is zero it says nothing, and a gap over it has no size."""
+    proof = check.rig.plan.proof
+    given = ""
+    if proof.band_use > proof.band_use_found * (1 + 5e-4):
+        given = f", {percent(proof.band_use / proof.band_use_found - 1)} more is given up for even forces"
+    drilled = f"{check.band_use / proof.band_use:.3f}" if proof.band_use > 0 else "1.000"
+    return (
+        f"Nothing is proven here of how small the band use of so many pads could be ({proof.method}: no bound above "
+        f"zero); the least found is {proof.band_use_found:.3f}{given}, and drilling takes it to {drilled} times the "
+        "plan's."
     )
 
 

@@ -13,7 +13,7 @@ from rigdesign.target.bands import bands, torsion_least
 from rigdesign.target.curve import Floats, Side
 from rigdesign.target.model import Target
 from rigdesign.target.surface.pressure import Pressure
-from rigdesign.words import BAND_FLOOR, SMALL_TARGET
+from rigdesign.words import BAND_FLOOR, ROUNDING, SMALL_TARGET
 
 # What rests on values beyond the outermost points: below the first part it is not worth a word, above the second it
 # wants a decision.
@@ -76,7 +76,8 @@ def _centre(target: Target) -> Iterator[Finding]:
 
 def place_in_plan(x: float, y: float) -> str:
     """A place in words: "x = 1.358 m, y = −0.040 m"."""
-    return f"x = {show(x, 'length', unit='m')}, y = {show(y, 'length', unit='m')}"
+    at_x, at_y = (show(at if abs(at) > ROUNDING else 0.0, "length", unit="m") for at in (x, y))
+    return f"x = {at_x}, y = {at_y}"
 
 
 def _pressure(part: Pressure, name: str) -> Iterator[Finding]:
@@ -153,7 +154,9 @@ def _torsion_band(target: Target) -> Iterator[Finding]:
     if torsion_least(target) < BAND_FLOOR * band.peak:
         rule = "0.05 % of the peak target torsion"
     limit = f"{show(band.least, 'moment')}, {rule}"
-    yield _remark("note", "torsion", text, show(float(asked[narrow].min()), "moment"), limit)
+    least = float(asked[narrow].min())
+    value = show(least if least > ROUNDING * band.least else 0.0, "moment")
+    yield _remark("note", "torsion", text, value, limit)
 
 
 def _station(x: Floats) -> str:

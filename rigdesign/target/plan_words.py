@@ -5,14 +5,14 @@ from __future__ import annotations
 import numpy as np
 
 from rigdesign.brief.model import InertiaLoad, Line, Load, PointLoads, ShapeLoad, TableLoad
-from rigdesign.display import System, show
+from rigdesign.display import System, counted, show
 from rigdesign.target.cuts import ACROSS, reactions_in_plan
 from rigdesign.target.model import Target
 from rigdesign.target.plan_load import PlanLoad
 from rigdesign.target.plan_loads import weight_line
 from rigdesign.target.remarks import along
 from rigdesign.target.words import direction, kind, peak_of_test
-from rigdesign.words import STANDARD_GRAVITY
+from rigdesign.words import ROUNDING, STANDARD_GRAVITY
 
 LEADING_EDGE = ", the leading edge of a right wing seen from above"
 
@@ -39,7 +39,8 @@ def echo_in_plan(target: Target, system: System) -> list[str]:
 def place(x: float, y: float, system: System) -> str:
     """A place in words: "x = 1.358 m, y = −0.040 m"."""
     unit = "m" if system == "SI" else None
-    return f"x = {show(x, 'length', system, unit=unit)}, y = {show(y, 'length', system, unit=unit)}"
+    at_x, at_y = (show(at if abs(at) > ROUNDING else 0.0, "length", system, unit=unit) for at in (x, y))
+    return f"x = {at_x}, y = {at_y}"
 
 
 def twist(torsion: float, supported: bool = False) -> str:
@@ -204,7 +205,7 @@ def _along_what(load: Load, target: Target, system: System) -> str:
 
 def _line(line: Line, system: System) -> str:
     start, end = (place(float(line.x[i]), float(line.y[i]), system) for i in (0, -1))
-    bent = "" if line.x.size == 2 else f" by way of {line.x.size - 2} more"
+    bent = "" if line.x.size == 2 else f" by way of {counted(line.x.size - 2, 'point')} between"
     return f"the line from {start} to {end}{bent}"
 
 

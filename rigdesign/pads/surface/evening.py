@@ -22,15 +22,19 @@ from rigdesign.target.curve import Floats
 ROOM = 1e-7
 """Slack in units of deviation and band use that the first step leaves to the second."""
 
+FOR_DRILLING = 0.99
+"""Of a band that is kept, even forces take no more than this: holes on whole drill steps need a little as well."""
+
 
 def limits(rules: PadRules, programme: Programme, best: Forces) -> Floats:
     """Return the band use that each quantity of the rows may take, in their order.
 
-    Where one band cannot be kept, that is no leave to break another: what keeps its band goes on keeping it.
+    Where one band cannot be kept, that is no leave to break another: what keeps its band goes on keeping it, with
+    a little left for drilling.
     """
     most = use_given_up_to(rules, best.use)
     own = programme.uses(best.force)
-    return np.where(own <= 1.0, min(most, 1.0), most)
+    return np.where(own <= 1.0, np.minimum(most, np.maximum(own, FOR_DRILLING)), most)
 
 
 def more_even(programme: Programme, best: Forces, limit: Floats, share: Floats) -> Forces:

@@ -231,3 +231,26 @@ def test_turns_given_place_by_place_turn_the_footprints():
     assert the_failure(found(y=y, pads=rules)).value == "by 10.0 mm"
     swept = plan_brief(surface(axis=line((0.2, 0.05), (3.4, -0.40))), acceptance=WIDE)
     assert check(make_plan_rig(X, Y, FORCE, swept, GROUP)).across is not None
+
+
+def test_a_hole_of_a_plate_beside_its_pivot_is_a_warning_where_no_shortest_arm_is_asked_for():
+    x, y = X[:3], Y[:3]
+    # nearly all of the load on the second point draws the pivot to it
+    checked = found(x, y, np.array([20.0, 1500.0, 25.0]), (1, 3, 2), levers=levers(shortest_arm=0.0))
+    plate = checked.rig.trees[0].pieces[0]
+    near = min(np.hypot(hole.u, hole.v) for hole in plate.ends)
+    (warned,) = [f for f in of_stage(checked, "practice") if "pins hardly fit" in f.text]
+    assert (warned.severity, warned.object, warned.value) == ("warning", "lever 1", f"{1e3 * near:.1f} mm")
+    asked = found(x, y, np.array([20.0, 1500.0, 25.0]), (1, 3, 2), levers=levers(shortest_arm=0.01))
+    apart = found(x, y, np.array([100.0, 390.0, 300.0]), (1, 3, 2), levers=levers(shortest_arm=0.0))
+    assert not [f for one in (asked, apart) for f in of_stage(one, "practice") if "hardly fit" in f.text]
+
+
+def test_a_finer_drill_step_is_advised_only_where_drilling_cost_something():
+    rig = make_plan_rig(X, Y + 0.03, FORCE, brief(acceptance=accept(9.0, 9.0, 0.05)), GROUP)
+    for before, advised in ((0.9, True), (1.0, False)):
+        proof = replace(rig.plan.proof, band_use=before * check(rig).band_use)
+        checked = check(replace(rig, plan=replace(rig.plan, proof=proof)))
+        failures = [f for f in of_stage(checked, "statics") if "more pads" in f.remedy]
+        assert failures
+        assert all(("drill step" in f.remedy) == advised for f in failures)

@@ -261,3 +261,13 @@ def test_bands_of_one_side_alone_are_followed() -> None:
     use = least_use(one_sided, best.pads) * (1 + 1e-6)
     assert pads_needed(one_sided, use, limits_at(one_sided, use)) <= 5
     assert pads_needed(one_sided, 0.1 * use, limits_at(one_sided, 0.1 * use)) > 1
+
+
+def test_even_forces_leave_a_little_of_the_bands_to_drilling() -> None:
+    x, y = places(20, 3, spars=2)
+    target = make_target(x, y, 8, shear=0.3, moment=0.08, torsion=0.3)
+    target = replace(target, brief=replace(target.brief, pads=replace(target.brief.pads, aim="even")))
+    plan = plan_pads(target)
+    assert isinstance(plan, PadPlan)
+    assert plan.proof.band_use_found < 0.9  # there was room to give up, and forces took it
+    assert 0.98 < plan.proof.band_use < 0.992  # 0.99, judged at more stations

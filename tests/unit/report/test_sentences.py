@@ -13,6 +13,7 @@ from rigdesign.checks.model import Check
 from rigdesign.checks.text import percent
 from rigdesign.display import show
 from rigdesign.findings import Finding, Refusal
+from rigdesign.pads.remarks import proof_remarks
 from rigdesign.report.sentences import answer, counted, error_line, finding_lines, refusal_lines, verdict
 
 
@@ -147,3 +148,24 @@ def test_findings_and_refusals_are_paragraphs():
 
 def test_counting():
     assert (counted(0, "lever"), counted(1, "lever"), counted(2, "lever")) == ("0 levers", "1 lever", "2 levers")
+
+
+def test_a_bound_of_zero_is_no_proof_and_its_gap_has_no_size():
+    check = checked()
+    plan = check.rig.plan
+    proof = replace(plan.proof, band_use_least=0.0, band_use_found=plan.proof.band_use / 1.25)
+    line = line_with(replace(check, rig=replace(check.rig, plan=replace(plan, proof=proof))), "Nothing is proven")
+    assert f"the least found is {proof.band_use_found:.3f}, 25.0 % more is given up for even forces" in line
+    assert f"to {check.band_use / proof.band_use:.3f} times" in line
+    assert "limit" not in line
+    (remark,) = proof_remarks(proof)
+    assert remark.text == "nothing is proven of how small the band use of so many pads could be"
+    assert remark.value == f"{proof.band_use_found:.4g} found"
+
+
+def test_a_band_just_broken_does_not_read_as_kept():
+    check = checked(acceptance=make_acceptance(shear=None))
+    regions = tuple(replace(region, use=1.0002, accepted=False) for region in check.regions)
+    broken = replace(check, regions=regions)
+    assert not broken.accepted
+    assert "takes a little more than 100 % of its band" in verdict(broken)

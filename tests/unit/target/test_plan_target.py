@@ -36,6 +36,7 @@ from rigdesign.command.target_answer import target_object
 from rigdesign.errors import BriefError
 from rigdesign.target import build_target
 from rigdesign.target.bands import bands
+from rigdesign.target.plan_remarks import place_in_plan
 from rigdesign.target.plan_stations import smooth_stretches
 from rigdesign.target.words import echo
 
@@ -173,6 +174,18 @@ def test_where_torsion_is_at_its_floor_a_note_says_so():
     assert note.limit.endswith("N·m, the resultant at 1 % of the outline's mean width")
 
 
+def test_rounding_is_said_to_be_zero():
+    # a load symmetric about its axis has its centre there and no torsion, but for the last digits
+    shape = outline((LEFT, -0.3), (RIGHT, -0.3), (RIGHT, 0.3), (LEFT, 0.3))
+    load = pressure_map([0.0, 4.0, 0.0, 4.0], [-1.0, -1.0, 1.0, 1.0], [900.0, 1100.0, 900.0, 1100.0])
+    target = surface_target(load, outline=shape, axis=None, acceptance=asked(torsion=0.05))
+    assert abs(target.centroid_y) < 1e-12
+    assert "y = 0 m: " in echo(target)[0]
+    (note,) = [one for one in target.findings if one.object == "torsion"]
+    assert note.value == "0 N·m"
+    assert place_in_plan(1.0, 3e-17) == "x = 1.000 m, y = 0 m"
+
+
 def one_finding(target, what):
     (found,) = [finding for finding in target.findings if what in finding.text]
     return found
@@ -256,6 +269,8 @@ def test_words_of_a_wing():
     assert "none about z" in said[2]
     assert "Load 1: a pressure map of 4 points, 500 Pa: " in text
     assert "Load 2: uniform shape from 0.200 m to 3.400 m, along the line from x = 0.200 m, y = 0.100 m" in text
+    bent = replace(loads[1], line=line((LEFT, 0.1), (1.0, 0.05), (RIGHT, -0.5)))
+    assert "y = −0.500 m by way of 1 point between: " in "\n".join(echo(surface_target(bent)))
     assert "Load 3: a point load: 150 N along −z at x = 1.000 m, y = 0.200 m." in text
     assert "Load 4: a couple at 1.100 m (times −2): 140 N·m about x in all, which raises the side of greater y." in text
     assert "Cut the other way" not in text
