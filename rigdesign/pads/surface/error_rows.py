@@ -90,11 +90,6 @@ class ErrorRows:
         """Return the largest error over its band of pads at x, y (n,) [m] with forces (n,) [N] > 0."""
         return float(self.uses(x, y, force).max(initial=0.0))
 
-    def use_by_quantity(self, x: Floats, y: Floats, force: Floats) -> Floats:
-        """Return the largest error over its band of each of `quantities`."""
-        uses = self.uses(x, y, force)
-        return np.array([uses[self.quantity == k].max(initial=0.0) for k in range(len(self.quantities))])
-
 
 def error_rows(target: Target, x: Floats, y: Floats, even: int = EVEN) -> ErrorRows:
     """Return the rows at which pads anywhere among the places x, y (n,) [m] are to be judged.

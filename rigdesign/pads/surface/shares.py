@@ -12,7 +12,6 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numpy.typing import NDArray
 
-from rigdesign.pads.model import LEAST_SHARE
 from rigdesign.target.curve import Floats
 from rigdesign.target.model import Target
 from rigdesign.target.plan_load import PlanLoad
@@ -52,18 +51,6 @@ def cells(target: Target, x: Floats, y: Floats) -> list[Geometry]:
     places, which, _ = _distinct(target, x, y)
     own = shapely.intersection(np.array(_nearest_areas(target, places), dtype=object), outline.polygon)
     return [own[k] for k in which]
-
-
-def evenness(force: Floats, share: Floats) -> float:
-    """Return the largest |force − share| over |share| among pads, both (n,) [N].
-
-    A share counts as at least `LEAST_SHARE` of the mean one.
-
-    >>> evenness(np.array([90.0, 210.0]), np.array([100.0, 200.0]))
-    0.1
-    """
-    least = LEAST_SHARE * abs(float(share.mean()))
-    return float((np.abs(force - share) / np.maximum(np.abs(share), least)).max())
 
 
 def _distinct(target: Target, x: Floats, y: Floats) -> tuple[Floats, NDArray[np.intp], Floats]:

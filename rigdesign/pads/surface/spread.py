@@ -46,13 +46,11 @@ class Outside:
     depth: float
 
 
-def in_hull(x: Floats, y: Floats, px: float, py: float) -> bool:
-    """Return whether forces of one sign at places x, y (n,) [m], n ≥ 1, can have their resultant at px, py [m]."""
-    return outside_hull(x, y, px, py) is None
-
-
 def outside_hull(x: Floats, y: Floats, px: float, py: float) -> Outside | None:
-    """Return how the point px, py [m] lies outside the hull of places x, y (n,) [m], n ≥ 1; None if it does not."""
+    """Return how the point px, py [m] lies outside the hull of places x, y (n,) [m], n ≥ 1.
+
+    None where it does not: then forces of one sign at the places can have their resultant there.
+    """
     from shapely import MultiPoint, Point
     from shapely.ops import nearest_points
 

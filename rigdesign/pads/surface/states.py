@@ -26,6 +26,8 @@ CELLS, MOST_CELLS = 96, 384
 proves a little more, for the square of the work."""
 ROUNDING = 1e-9
 """Of the total, or the total times the span: what sums of forces are out by through rounding."""
+HAIR, END = 1e-9, 1e-6
+"""Of a cell: what rounding may have moved a bound across, and how far the last state may stand beside the one asked."""
 NONE = np.int16(20_000)
 """The number of pads of a state that cannot be reached."""
 LEAN = 0.5
@@ -174,9 +176,9 @@ def _moves(plane: Plane, arm: float, most: float, least: float) -> set[tuple[int
     parts = max(1, int(np.ceil(abs(arm) * plane.d_v / plane.d_z)))
     step = plane.d_v / parts
     furthest = min(most, rows * plane.d_v, columns * plane.d_z / max(abs(arm), 1e-12))
-    g = np.arange(int(least / step * (1 - 1e-9)), int(np.ceil(furthest / step)) + 1)
+    g = np.arange(int(least / step * (1 - HAIR)), int(np.ceil(furthest / step)) + 1)
     turned = np.sort(np.stack([g, g + 1]) * (step * arm / plane.d_z), axis=0)
-    low, high = np.floor(turned[0] - 1e-9).astype(int), np.ceil(turned[1] + 1e-9).astype(int)
+    low, high = np.floor(turned[0] - HAIR).astype(int), np.ceil(turned[1] + HAIR).astype(int)
     return {
         (int(v) + up, z)
         for v, first, last in zip(g // parts, low, high, strict=True)
@@ -200,8 +202,8 @@ def _with_several(plane: Plane, counts: Counts, arms: Floats, most: float) -> No
     rows = len(counts)
     for v in range(min(rows, int(np.ceil(most / plane.d_v)) + 1)):
         force = np.array([v, v + 1]) * plane.d_v
-        low = int(np.floor((force * arms.min()).min() / plane.d_z - 1e-9))
-        high = int(np.ceil((force * arms.max()).max() / plane.d_z + 1e-9))
+        low = int(np.floor((force * arms.min()).min() / plane.d_z - HAIR))
+        high = int(np.ceil((force * arms.max()).max() / plane.d_z + HAIR))
         reached = _least_within(plane.counts, -high, -low)
         for up in (0, 1):
             if v + up < rows:
@@ -227,9 +229,8 @@ def _at_the_end(plane: Plane, choice: Choice) -> int:
     total = choice.balance.total
     v, z = total, total * (choice.balance.y - plane.sigma)
     edge_v, edge_z = plane.edges()
-    close = 1e-6
-    rows = (edge_v <= v + close * plane.d_v) & (edge_v + plane.d_v >= v - close * plane.d_v)
-    columns = (edge_z <= z + close * plane.d_z) & (edge_z + plane.d_z >= z - close * plane.d_z)
+    rows = (edge_v <= v + END * plane.d_v) & (edge_v + plane.d_v >= v - END * plane.d_v)
+    columns = (edge_z <= z + END * plane.d_z) & (edge_z + plane.d_z >= z - END * plane.d_z)
     found = plane.counts[np.ix_(rows, columns)]
     least = int(found.min()) if found.size else int(NONE)
     return least if least < NONE else choice.x.size + 1

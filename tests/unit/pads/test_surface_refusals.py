@@ -21,7 +21,7 @@ from rigdesign.pads.surface.refusals import (
     whatever_the_count,
 )
 from rigdesign.pads.surface.remarks import torsion_on_one_line
-from rigdesign.pads.surface.spread import in_hull, one_line, outside_hull
+from rigdesign.pads.surface.spread import one_line, outside_hull
 from rigdesign.target.model import Peak, Target
 from rigdesign.target.plan_points import PlanPoints
 from rigdesign.target.plan_sum import PlanSum
@@ -238,7 +238,7 @@ def test_places_in_words() -> None:
 # -- hulls and lines ---------------------------------------------------------------------------------------------------
 
 
-def test_in_hull_means_that_forces_of_one_sign_balance() -> None:
+def test_not_outside_the_hull_means_that_forces_of_one_sign_balance() -> None:
     from scipy.optimize import linprog
 
     draw = np.random.default_rng(11)
@@ -247,18 +247,18 @@ def test_in_hull_means_that_forces_of_one_sign_balance() -> None:
         x, y = draw.uniform(0, 3, 5), draw.uniform(-1, 1, 5)
         px, py = draw.uniform(0.5, 2.5), draw.uniform(-0.7, 0.7)
         found = linprog(np.zeros(5), A_eq=np.vstack([np.ones(5), x, y]), b_eq=[1.0, px, py], bounds=(0, None))
-        assert in_hull(x, y, px, py) == (found.status == 0)
+        assert (outside_hull(x, y, px, py) is None) == (found.status == 0)
         answers.add(found.status == 0)
     assert answers == {True, False}
 
 
-def test_in_hull_of_a_line_and_of_one_place() -> None:
+def test_the_hull_of_a_line_and_of_one_place() -> None:
     x, y = array([0.1, 0.7, 2.2]), array([0.3, 0.9, 2.4])
-    assert in_hull(x, y, 1.3, 1.5)
-    assert not in_hull(x, y, 1.3, 1.5001)
-    assert not in_hull(x, y, 2.3, 2.5)
-    assert in_hull(x[:1], y[:1], 0.1, 0.3)
-    assert not in_hull(x[:1], y[:1], 0.1, 0.4)
+    assert outside_hull(x, y, 1.3, 1.5) is None
+    assert outside_hull(x, y, 1.3, 1.5001) is not None
+    assert outside_hull(x, y, 2.3, 2.5) is not None
+    assert outside_hull(x[:1], y[:1], 0.1, 0.3) is None
+    assert outside_hull(x[:1], y[:1], 0.1, 0.4) is not None
 
 
 def test_one_line_allows_for_a_millionth_of_the_span() -> None:

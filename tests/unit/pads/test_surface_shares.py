@@ -13,7 +13,7 @@ from pad_surfaces import line, outline, surface_brief
 
 from rigdesign.brief.model import Brief, Outline, PressureLoad
 from rigdesign.pads.forces import shares
-from rigdesign.pads.surface.shares import cells, evenness, tributary_shares
+from rigdesign.pads.surface.shares import cells, tributary_shares
 from rigdesign.pads.tube import build_tube
 from rigdesign.target import build_target
 from rigdesign.target.curve import Floats
@@ -209,11 +209,3 @@ def test_four_hundred_cells_are_right_too() -> None:
     nearest = np.argmin(np.hypot(load.x[:, None] - x, load.y[:, None] - y), axis=1)
     share = tributary_shares(target_of(surface_brief(PANEL), load), x, y)
     np.testing.assert_allclose(share, np.bincount(nearest, load.force, 400), rtol=1e-12, atol=1e-12)
-
-
-def test_evenness_is_of_the_share_but_not_of_next_to_nothing() -> None:
-    share = np.array([-100.0, -200.0, -0.5, -99.5])
-    force = np.array([-110.0, -190.0, -1.5, -98.5])
-    # a tenth of the mean share, 10 N, stands for half a newton
-    assert evenness(force, share) == pytest.approx(0.1)
-    assert evenness(force + np.array([0, 0, 4.0, -4.0]), share) == pytest.approx(0.3)
