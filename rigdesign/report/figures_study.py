@@ -51,6 +51,13 @@ def _line(axes: Axes, study: Study, values: list[float], color: str, shape: str,
             axes.plot([pads], [value], shape, color="white", markeredgecolor=color, markersize=4.5)
 
 
+def _bound(axes: Axes, study: Study, least: list[float], color: str, label: str) -> None:
+    """A dotted line through what is proven; none where a surface's bounds are all zero and say nothing."""
+    if study.brief.specimen.is_surface and not any(value > 0 for value in least):
+        return
+    axes.plot([pads for pads, _ in _checked(study)], least, color=color, linestyle=":", label=label)
+
+
 def _errors(axes: Axes, study: Study) -> None:
     checks = [check for _, check in _checked(study)]
     if checks:
@@ -64,7 +71,7 @@ def _errors(axes: Axes, study: Study) -> None:
         torsion = [100 * check.errors["torsion"].peak for check in checks]
         _line(axes, study, torsion, GREEN, "^", f"torsion, drilled{words}")
     least = [100 * check.rig.plan.proof.moment_error_least for check in checks]
-    axes.plot([pads for pads, _ in _checked(study)], least, color=BLUE, linestyle=":", label="moment, proven least")
+    _bound(axes, study, least, BLUE, "moment, proven least")
     hand = [100 * check.hand_moment for check in checks if check.hand_moment is not None]
     if not study.brief.specimen.is_surface:  # strips are no layout of pads in plan
         axes.plot(
@@ -82,10 +89,12 @@ def _use(axes: Axes, study: Study) -> None:
     checks = [check for _, check in _checked(study)]
     _line(axes, study, [check.band_use for check in checks], INK, "o", "drilled")
     least = [check.rig.plan.proof.band_use_least for check in checks]
-    axes.plot([pads for pads, _ in _checked(study)], least, color=INK, linestyle=":", label="proven least")
+    _bound(axes, study, least, INK, "proven least")
     axes.axhline(1.0, color=VERMILION, linewidth=0.9)
     _frame(axes, study)
-    axes.set_ylim(0.0, min(max([1.2, *(1.1 * check.band_use for check in checks)]), 4.0))
+    top = min(max([1.2, *(1.1 * check.band_use for check in checks)]), 4.0)
+    # more pads need not use less of the bands of a surface: room for the key above the curve
+    axes.set_ylim(0.0, 1.25 * top if study.brief.specimen.is_surface else top)
     axes.set_ylabel("band use (1 or less passes)", size=8)
     axes.legend(loc="upper right", fontsize=7, framealpha=0.9, edgecolor="none")
 

@@ -318,6 +318,24 @@ def test_a_study_of_plan_rigs_shows_torsion_too():
     assert curves["torsion, drilled"] == pytest.approx([100 * check.torsion_error_peak])
 
 
+def test_a_study_without_a_bound_shows_none_and_its_key_is_clear_of_the_curve():
+    check = checked(8)
+    plan = check.rig.plan
+    for least, shown in ((0.0, False), (0.4, True)):
+        proof = replace(plan.proof, band_use_least=least, moment_error_least=least / 100)
+        bound = replace(check, band_use=3.8, rig=replace(check.rig, plan=replace(plan, proof=proof)))
+        figure = study_sheet(Study(plan.target.brief, (StudyRow(8, bound), StudyRow(12, bound))))
+        labels = {
+            text.get_text() for axes in figure.axes if axes.get_legend() for text in axes.get_legend().get_texts()
+        }
+        assert {"proven least" in labels, "moment, proven least" in labels} == {shown}
+        use = next(axes for axes in figure.axes if "band use" in axes.get_ylabel())
+        figure.draw(FigureCanvasAgg(figure).get_renderer())
+        key = use.get_legend().get_window_extent()
+        top = max(line.get_ydata()[0] for line in use.lines if line.get_label() == "drilled")
+        assert use.transData.transform((12, top))[1] < key.y0
+
+
 def test_branches_keep_who_hangs_with_whom_and_never_cross():
     check = checked(24)
     drawn = in_branches(check.rig)
