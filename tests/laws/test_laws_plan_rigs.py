@@ -22,7 +22,7 @@ from rigdesign.findings import Refusal
 from rigdesign.report.rig_json import rig_from_json, rig_to_json
 from rigdesign.report.tables import table_files
 
-few = settings(max_examples=6, deadline=None, suppress_health_check=list(HealthCheck), derandomize=True)
+few = settings(max_examples=4, deadline=None, suppress_health_check=list(HealthCheck), derandomize=True)
 
 ROOT, TIP = np.array([0.0, 0.05]), np.array([3.2, -0.10])
 KITE = np.array([ROOT, [1.1, -0.75], [2.5, -0.70], TIP, [2.2, 0.52], [0.9, 0.80]])
