@@ -22,8 +22,9 @@ from rigdesign.target.curve import Floats
 ROOM = 1e-7
 """Slack in units of deviation and band use that the first step leaves to the second."""
 
-FOR_DRILLING = 0.99
-"""Of a band that is kept, even forces take no more than this: holes on whole drill steps need a little as well."""
+FOR_DRILLING, FOR_MOVING = 0.99, 0.97
+"""Of a band that is kept, even forces take no more than this: holes on whole drill steps need a little as well, and
+free pads, which drilling moves, a little more."""
 
 
 def limits(rules: PadRules, programme: Programme, best: Forces) -> Floats:
@@ -33,8 +34,8 @@ def limits(rules: PadRules, programme: Programme, best: Forces) -> Floats:
     a little left for drilling.
     """
     most = use_given_up_to(rules, best.use)
-    own = programme.uses(best.force)
-    return np.where(own <= 1.0, np.minimum(most, np.maximum(own, FOR_DRILLING)), most)
+    own, whole = programme.uses(best.force), FOR_MOVING if rules.places == "free" else FOR_DRILLING
+    return np.where(own <= 1.0, np.minimum(most, np.maximum(own, whole)), most)
 
 
 def more_even(programme: Programme, best: Forces, limit: Floats, share: Floats) -> Forces:
