@@ -45,7 +45,7 @@ MOST = 240
 NODES = 1_000
 STATIONS = 16
 """Stations a pad at which errors are looked at while pads move."""
-HEATS = ((8, 8), (4, 12), (2, 60))
+HEATS = ((6, 8), (3, 12), (2, 40))
 HEATS_MANY = ((4, 6), (1, 40))
 """So many starts are refined by so many steps each, the best first; of more than `MANY` pads fewer."""
 MANY = 24
@@ -58,6 +58,7 @@ STEPS_APART, MOST_APART = 4.0, 0.2
 """Where torsion is judged, pads keep so many drill steps apart along the span, at most this part of their pitch."""
 SHARE_KEPT = 0.92
 """Pads judged against their shares keep to this part of what is allowed, so that the drilling has room."""
+KNOWN = 8
 ANYTHING = 1e6
 """A band use that allows everything."""
 ENOUGH = 1.005
@@ -124,7 +125,17 @@ class FreeInPlan:
         return ShareSlopes(self.target)
 
     def _shares(self, x: Floats, y: Floats) -> Floats:
-        return shares(self.target, x, y)
+        """Tributary shares (n,) [N]; those of the places last asked for are kept, as a step asks for them again."""
+        known, place = self._known_shares, x.tobytes() + y.tobytes()
+        if place not in known:
+            if len(known) >= KNOWN:
+                known.pop(next(iter(known)))
+            known[place] = shares(self.target, x, y)
+        return known[place]
+
+    @cached_property
+    def _known_shares(self) -> dict[bytes, Floats]:
+        return {}
 
     def _search(self, ground: Ground, share_limit: float | None) -> Search:
         least, largest = force_limits(self.target.brief)

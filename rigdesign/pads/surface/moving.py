@@ -28,6 +28,7 @@ from rigdesign.target.cuts import (
     stretch_directions,
 )
 from rigdesign.target.model import Target
+from rigdesign.target.plan_load import loads_at
 
 NEAR = 1e-8
 """Of the span: by so much stations are moved to see how an error changes along it."""
@@ -192,10 +193,11 @@ class Errors:
             tied = _tied(self.target, band, x, y)
             sides: tuple[Side, ...] = SIDES if band.quantity in STEPS or band.edges.size else SIDES[:1]
             for side in sides:
-                below, above = band.widths(tied.at, side)
-                asked = np.isfinite(below) | np.isfinite(above)
-                tie = tied.where(asked)
-                found.append((block_at(self.target, band, side, tie.at, self.sign), tie))
+                block, tie = block_at(self.target, band, side, tied.at, self.sign), tied
+                if block.at.size < tied.at.size:
+                    below, above = band.widths(tied.at, side)
+                    tie = tied.where(np.isfinite(below) | np.isfinite(above))
+                found.append((block, tie))
         return found
 
     def _away(self, x: Floats, y: Floats, reach: float) -> list[Block]:
@@ -238,13 +240,11 @@ class Errors:
 
     def _by_station(self, block: Block, x: Floats, y: Floats, force: Floats, error: Floats) -> Floats:
         """Slopes of the errors along the span on the rows' side of their stations, pads where they are."""
-        specimen = self.target.brief.specimen
-        step = NEAR * (specimen.right - specimen.left) * (-1.0 if block.side == "inboard" else 1.0)
-        band = next(band for band in self._bands if band.quantity == block.quantity)
-        moved = block_at(self.target, band, block.side, block.at + step, self.sign)
-        if moved.at.size != block.at.size:
-            return np.zeros(block.at.size)
-        return (self._error(moved, x, y, force) - error) / step
+        specimen, at = self.target.brief.specimen, block.at
+        step = NEAR * self._span * (-1.0 if block.side == "inboard" else 1.0)
+        matrix = responses(specimen, block.quantity, at + step, block.side, x, y)
+        wanted = self.sign * loads_at(self.target.net_plan, specimen, block.quantity, at + step, block.side)
+        return np.asarray(((matrix * force).sum(axis=1) - wanted - error) / step)
 
     def _slopes(self, block: Block, x: Floats, y: Floats) -> tuple[Floats, Floats]:
         """What rows change by as places of unit forces move along x and along y: (m, n) each."""
