@@ -26,7 +26,7 @@ from rigdesign.target.model import Target
 
 PROVEN = 64
 """Up to so many places one mixed-integer programme finds the best choice and proves it; more are a search."""
-NODES = 20_000
+NODES = 8_000
 FEW_NODES = 2_000
 FINE = 40
 """Stations a pad at which forces are worked out and judged."""
