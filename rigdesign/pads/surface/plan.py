@@ -11,8 +11,10 @@ from rigdesign.pads.outcome import Outcome, Progress
 from rigdesign.pads.remarks import doubts, proof_remarks
 from rigdesign.pads.surface.error_rows import error_rows
 from rigdesign.pads.surface.fewest import fewest_hard_points
+from rigdesign.pads.surface.fewest_free import fewest_free
 from rigdesign.pads.surface.free import FreeInPlan
 from rigdesign.pads.surface.given import FINE, HardPlaces, choose_fixed, shares, sign_of
+from rigdesign.pads.surface.line_bounds import LineBounds
 from rigdesign.pads.surface.places import most_that_fit, usable_points
 from rigdesign.pads.surface.program import unevenness
 from rigdesign.pads.surface.refusals import for_the_count, jack_place_in_plan, unbalanced, whatever_the_count
@@ -64,6 +66,9 @@ def _fewest(target: Target, jack: tuple[float, float], progress: Progress | None
     _, largest = force_limits(brief)
     if np.isfinite(largest):
         first = max(first, int(np.ceil(abs(target.net_plan.sums.force) / largest * (1 - 1e-9))))
+    if brief.pads.places == "free":
+        bounds = LineBounds(target, jack)
+        return fewest_free(bounds, first, most, lambda count: _planned(target, jack, count, progress))
     best: PadPlan | Refusal | None = None
     for count in range(min(first, most), most + 1):
         plan = _planned(target, jack, count, progress)

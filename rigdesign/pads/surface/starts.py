@@ -16,6 +16,7 @@ import numpy as np
 from scipy.optimize import linprog
 
 from rigdesign.pads.path import least_use_path
+from rigdesign.pads.surface.footprints import half_sizes
 from rigdesign.pads.surface.ground import Ground, nearest_rows, rows_at
 from rigdesign.pads.surface.moving import Errors
 from rigdesign.pads.tube import Tube, build_tube
@@ -30,6 +31,10 @@ SPREADS = (1.0, 0.5, 0.0)
 """How far pads spread about the centre of the load, as a part of what the room allows both sides of it."""
 SETTLING = 30
 """Most steps in which pads of a start are pushed apart."""
+WIDER = (3.0, 2.0, 1.6, 1.3, 1.15, 1.05, 1.0)
+"""Lattices on which pads are packed: so many times as wide as the least."""
+MOST_PACKED = 20_000
+"""Places of a lattice that are looked at."""
 CURVE = 2001
 """Stations at which the load is summed up."""
 
@@ -66,6 +71,9 @@ class Starts:
         for columns in range(1, n + 1):
             if n % columns == 0:
                 yield f"columns {columns}", *self._grid(columns, n // columns)
+        packed = self._packed()
+        if packed is not None:
+            yield "packed", *packed
 
     def _stations(self, count: int) -> Iterator[Floats]:
         """Stations (count,) [m] of the best pads on a line, and those that each take as much of the load."""
@@ -126,6 +134,31 @@ class Starts:
         chord_low, chord_high = _chord(outline.polygon, every_x)
         return every_x, chord_low + every_part * (chord_high - chord_low)
 
+    def _packed(self) -> tuple[Floats, Floats] | None:
+        """Places on the widest lattice that has enough of them, as far from one another as may be; None if none has."""
+        import shapely
+
+        ground, n = self.ground, self.ground.count
+        if ground.brief.pads.rows:
+            return None
+        turn = ground.room.directions[0][0]
+        half = half_sizes(ground.brief)
+        least = 2 * np.array(half) + ground.gap * 1.000001
+        middle = np.array(shapely.get_coordinates(ground.room.area.centroid))[0]
+        reach = float(np.hypot(*np.ptp(shapely.get_coordinates(ground.room.area), axis=0)))
+        for wider in WIDER:
+            pitch = np.maximum(least * wider, 1e-2 * ground.pitch)
+            along, across = (np.arange(-k, k + 1) * p for p, k in zip(pitch, np.ceil(reach / pitch), strict=True))
+            if along.size * across.size > MOST_PACKED:
+                continue
+            u, v = (part.ravel() for part in np.meshgrid(along, across, indexing="ij"))
+            x = middle[0] + u * np.cos(turn) - v * np.sin(turn)
+            y = middle[1] + u * np.sin(turn) + v * np.cos(turn)
+            kept = ground.room.allowed(x, y)
+            if kept.sum() >= n:
+                return _far_apart(x[kept], y[kept], n)
+        return None
+
     # -- pushed apart --------------------------------------------------------------------------------------------------
 
     def _settled(self, x: Floats, y: Floats) -> tuple[Floats, Floats] | None:
@@ -176,6 +209,16 @@ def _pushed(ground: Ground, x: Floats, y: Floats, reach: float) -> tuple[Floats,
     moved_x, moved_y = x + reach * result.x[:n], y + reach * result.x[n : 2 * n]
     rows = ground.brief.pads.rows
     return moved_x, rows_at(rows, moved_x, nearest_rows(rows, x, y)) if rows else moved_y
+
+
+def _far_apart(x: Floats, y: Floats, count: int) -> tuple[Floats, Floats]:
+    """So many of the places x, y (n,) [m], each as far as can be from those taken before it."""
+    taken = [int(np.lexsort((y, x))[0])]
+    away = np.hypot(x - x[taken[0]], y - y[taken[0]])
+    while len(taken) < count:
+        taken.append(int(np.argmax(away)))
+        away = np.minimum(away, np.hypot(x - x[taken[-1]], y - y[taken[-1]]))
+    return x[taken], y[taken]
 
 
 def _clock_steps(n: int) -> list[int]:
