@@ -8,6 +8,12 @@
     spread      whether places surround a point, or stand in one line
     refusals    which limit leaves no pads at all
     remarks     places in one line where torsion has a band
+    ground      what the room and other pads leave a free pad that moves
+    moving      how errors change as pads move
+    refine      places and forces moved together
+    starts      where free pads set out from
+    free        the search for free pads
+    line_bounds what no pads in plan can do better than
 
 Depends on: brief, target, the pads stage's own model and limits, display, findings.  shapely is imported when it is
 used, so that a line rig does not wait for it.
