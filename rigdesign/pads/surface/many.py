@@ -27,6 +27,8 @@ RISE = 1.08
 RISES, HALVINGS = 40, 2
 BEAM_RISE, BEAM_LEVELS, AFTER = 1.03, 16, 3
 """Levels at which sets of pads are looked for, and how many more once some are found."""
+FAR_RISE, FAR_LEVELS = 1.15, 30
+"""Levels beyond these, for few pads whose best band use is many times what is proven."""
 MEET = 0.005
 """The search ends where what is found is this close to what is proven."""
 TRIES, CLOSE, NEIGHBOURS = 60, 3, 4
@@ -102,14 +104,15 @@ class Search:
         """Return the best pads that the beam finds at levels above `low`, and their band use."""
         best, high, left = None, np.inf, AFTER
         level = max(low, 1e-9) * (1 + MEET)
-        for step in range(BEAM_LEVELS):
-            self._tell(0.3 + 0.5 * step / BEAM_LEVELS, f"choosing {self.choice.count} of {self.choice.x.size} places")
+        for step in range(BEAM_LEVELS + FAR_LEVELS):
+            part = min(step / BEAM_LEVELS, 1.0)
+            self._tell(0.3 + 0.5 * part, f"choosing {self.choice.count} of {self.choice.x.size} places")
             for pads in few_pads(self.choice, level, self.at(level)):
                 filled, use = self._filled(pads)
                 if filled is not None and use < high:
                     best, high = filled, use
             left -= best is not None
-            level *= BEAM_RISE
+            level *= BEAM_RISE if step < BEAM_LEVELS else FAR_RISE
             if not left or level >= high or high <= low * (1 + MEET):
                 break
         return best, high
@@ -117,6 +120,8 @@ class Search:
     def _filled(self, pads: Indices) -> tuple[Indices | None, float]:
         """Return as many pads as are wanted, these among them, and their least band use."""
         choice, chosen = self.choice, list(pads)
+        if not chosen:  # where nothing is judged along the span, nothing asks for a pad
+            chosen = [int(np.argmin(np.hypot(choice.x - choice.balance.x, choice.y - choice.balance.y)))]
         while len(chosen) < choice.count:
             away = np.hypot(choice.x[:, None] - choice.x[chosen], choice.y[:, None] - choice.y[chosen]).min(axis=1)
             fits: Truths = np.all(choice.compatible[:, chosen], axis=1) & (away > 0)

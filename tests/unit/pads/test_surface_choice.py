@@ -19,7 +19,7 @@ from rigdesign.pads.surface.error_rows import band_use
 from rigdesign.pads.surface.fewest import fewest_hard_points
 from rigdesign.pads.surface.given import choice_of
 from rigdesign.pads.surface.jumps import jump_limits
-from rigdesign.pads.surface.many import choose_of_many
+from rigdesign.pads.surface.many import BEAM_LEVELS, Search, choose_of_many
 from rigdesign.pads.surface.program import Programme
 from rigdesign.pads.surface.refusals import jack_place_in_plan
 from rigdesign.pads.surface.sparse import SparseChoice
@@ -141,6 +141,16 @@ def test_many_places_with_a_small_gap(spars: int, stagger: float) -> None:
     assert found.pads is not None
     assert found.pads.size == 16
     assert found.bound * (1 - 1e-9) <= least_use(choice, found.pads) <= 1.1 * found.bound
+
+
+def test_few_of_many_far_from_what_is_proven(monkeypatch: pytest.MonkeyPatch) -> None:
+    """Six pads on two spars twist the surface far more than the bound knows: the beam goes on to such levels."""
+    monkeypatch.setattr(Search, "_by_relaxation", lambda *_: pytest.fail("minutes of programmes are not needed"))
+    choice = make_choice(6, 60, 1, spars=2, shear=None, torsion=0.01)
+    found = choose_of_many(choice, 0.0, None)
+    assert found.pads is not None
+    assert found.pads.size == 6
+    assert found.bound * 1.03**BEAM_LEVELS < least_use(choice, found.pads) < np.inf
 
 
 def test_many_places_where_the_cuts_are_square_to_the_axis() -> None:
