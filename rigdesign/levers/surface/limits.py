@@ -84,6 +84,7 @@ class Limits:
             "shortest_arm": replace(self, shortest=0.0),
             "longest": replace(self, longest=np.inf),
             "tiers": replace(self, tiers=None),
+            "drill_step": replace(self, least=0.0),
         }
         return lifted[key]
 

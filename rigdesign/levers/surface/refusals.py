@@ -17,6 +17,9 @@ from rigdesign.target.curve import Floats
 SPARE = 1e-3
 """A remedy asks for this fraction more than what is needed, so that the printed digits suffice."""
 
+STEPS_IN_ARM = 10
+"""A remedy asks for a drill step that goes so many times into the shortest arm, so that rounding moves few forces."""
+
 MORE_TIERS = 12
 """A remedy looks for up to so many tiers."""
 
@@ -43,6 +46,8 @@ def why_none(maker: Maker, pads: list[Node], best: Node | None = None) -> Refusa
     limits = maker.limits
     keys = [key for key, given in _given(limits).items() if given]
     helps = [(key, need) for key in keys if (need := _needed(maker, pads, key)) is not None]
+    if not helps and (need := _needed(maker, pads, "drill_step")):
+        keys, helps = ["drill_step"], [("drill_step", need)]
     shown = {key: _shown(maker, key, _value(limits, key)) for key in keys}
     if not helps:
         all_of = " with ".join(f"{key} {shown[key]}" for key in keys)
@@ -69,12 +74,13 @@ def too_few_tiers(maker: Maker) -> Refusal:
         "levers",
         f"{count} pads are more than hang on so few tiers",
         f"tiers {tiers}",
-        f"{tiers} tiers of {'plates' if plates else 'levers'} hold {kinds**tiers} pads at most",
+        f"{tiers} {'tier' if tiers == 1 else 'tiers'} of {'plates' if plates else 'levers'} "
+        f"{'holds' if tiers == 1 else 'hold'} {kinds**tiers} pads at most",
         remedy if plates else f"{remedy}, or allow plates (plates = true)",
     )
 
 
-_VERB = {"ratio_limit": "raise", "shortest_arm": "lower", "longest": "raise", "tiers": "raise"}
+_VERB = {"ratio_limit": "raise", "shortest_arm": "lower", "longest": "raise", "tiers": "raise", "drill_step": "lower"}
 
 
 def _given(limits: Limits) -> dict[str, bool]:
@@ -88,6 +94,7 @@ def _given(limits: Limits) -> dict[str, bool]:
 
 def _value(limits: Limits, key: str) -> float:
     names = {"ratio_limit": limits.ratio, "shortest_arm": limits.shortest, "longest": limits.longest}
+    names["drill_step"] = limits.least
     return names[key] if key in names else float(limits.tiers or 0)
 
 
@@ -100,6 +107,8 @@ def _shown(maker: Maker, key: str, value: float) -> str:
 def _eased(key: str, value: float) -> float:
     if key == "tiers":
         return value
+    if key == "drill_step":
+        return value / STEPS_IN_ARM
     return value * (1 - SPARE) if key == "shortest_arm" else value * (1 + SPARE)
 
 
@@ -116,14 +125,14 @@ def _needed(maker: Maker, pads: list[Node], key: str) -> float | None:
     solved = Problem(replace(items, value=none), lifted, _least_of(lifted, key)).solve(lifted.tiers)
     if not np.isfinite(solved.value):
         return None
-    return -solved.value if key == "shortest_arm" else solved.value
+    return -solved.value if key in ("shortest_arm", "drill_step") else solved.value
 
 
 def _least_of(limits: Limits, key: str) -> Rule:
     """The rule under which a tree's value is what it needs of one limit; infinite where it breaks another."""
 
     def link(load: Floats, r: Floats) -> Floats:
-        own = -r if key == "shortest_arm" else np.full(r.shape, NOTHING)
+        own = -r if key in ("shortest_arm", "drill_step") else np.full(r.shape, NOTHING)
         return np.where(r < limits.shortest, np.inf, own)
 
     def lever(ratio: Floats, length: Floats) -> Floats:

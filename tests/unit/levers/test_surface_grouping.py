@@ -234,6 +234,21 @@ def test_too_few_tiers_are_refused_at_once():
     assert answer.best == "4 tiers of levers hold 16 pads at most"
     assert "raise tiers to 5 or more" in answer.remedy
     assert isinstance(group_in_plan(scattered(9, 1, tiers=2, plates=False)), Refusal)
+    one = group_in_plan(scattered(3, 1, tiers=1, plates=False))
+    assert isinstance(one, Refusal)
+    assert one.best == "1 tier of levers holds 2 pads at most"
+
+
+def test_a_drill_step_longer_than_any_arm_is_named():
+    """No other limit helps, and the remedy does."""
+    x, y, force = [0.0, 0.4, 0.9, 1.3], [0.0, 0.3, -0.1, 0.2], [100.0, 150.0, 120.0, 90.0]
+    answer = group_in_plan(plan_of(x, y, force, drill_step=2.0))
+    assert isinstance(answer, Refusal)
+    assert answer.limit == "drill_step 2000 mm"
+    assert answer.best.startswith("with the other limits kept, drill_step would have to be ")
+    step = float(answer.remedy.removeprefix("lower drill_step to ").split(" mm")[0]) / 1000.0
+    assert 0.005 < step < 0.05
+    assert isinstance(group_in_plan(plan_of(x, y, force, drill_step=step)), Grouped)
 
 
 def test_points_in_one_line_make_no_plate():
