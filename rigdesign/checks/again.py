@@ -83,9 +83,14 @@ def _hole_remarks(rig: Rig, built: Rig, table: HolesTable) -> Iterator[Finding]:
             "statics",
             "note",
             f"{piece.name} hole {old.name}",
-            f"x_m or y_m of {sum(size > 0 for size in plan)} holes are not the rig's; statics takes u_m and v_m alone",
+            f"{_count(sum(size > 0 for size in plan))} in the table whose x_m or y_m is not the rig's; statics takes "
+            "u_m and v_m alone",
             show(max(plan), "length"),
         )
+
+
+def _count(holes: int) -> str:
+    return "1 hole" if holes == 1 else f"{holes} holes"
 
 
 def _pairs(rig: Rig, built: Rig) -> Iterator[tuple[Piece, Hole, Piece, Hole]]:

@@ -14,6 +14,7 @@ from pathlib import Path
 
 from rigdesign.errors import TableError
 from rigdesign.levers.model import Hole, Piece, Rig
+from rigdesign.words import LARGEST_NUMBER
 
 NEEDED = ("lever", "hole", "u_m", "v_m")
 OPTIONAL = ("joins", "x_m", "y_m")
@@ -144,6 +145,9 @@ def _number(text: str, where: str) -> float:
     if not math.isfinite(value):
         limit = "a number in m, with a full stop as decimal sign"
         raise TableError("a cell is not a number", where=where, value=text or "an empty cell", limit=limit)
+    if abs(value) > LARGEST_NUMBER:
+        limit = f"up to {LARGEST_NUMBER:g} m"
+        raise TableError("the number is too large", where=where, value=text, limit=limit)
     return value
 
 

@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 import json
-import sys
 from dataclasses import dataclass
 from typing import Any, NoReturn
 
 from rigdesign.errors import InputError
 
-LARGEST_FLOAT = sys.float_info.max
+LARGEST_FLOAT = 1e100
+"""No number of a rig is larger: the square of such a one is still a number."""
 
 
 @dataclass(frozen=True)
@@ -55,12 +55,12 @@ class Fields:
         return value if isinstance(value, int) and not isinstance(value, bool) else self._wrong(key, "a whole number")
 
     def number(self, key: str) -> float:
-        """A finite number."""
+        """A finite number, not beyond all reason."""
         value = self._get(key)
         is_number = isinstance(value, (int, float)) and not isinstance(value, bool)
         # compared, not converted: a whole number can be too large for a float
         if not is_number or not -LARGEST_FLOAT <= value <= LARGEST_FLOAT:
-            self._wrong(key, "a finite number")
+            self._wrong(key, f"a finite number up to {LARGEST_FLOAT:g}")
         return float(value)
 
     def numbers(self, *keys: str) -> list[float]:

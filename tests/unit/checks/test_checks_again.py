@@ -90,6 +90,7 @@ def test_places_in_plan_are_reported_and_do_not_count():
         ("lever,hole,u_m,v_m\n1,C,0.1,0\n", "the lever has no such hole: C .accepted: A, B, pivot."),
         ("lever,hole,u_m,v_m\n1,A,0.1\n", "line 2: a row has the wrong number of cells: 3 .accepted: 4"),
         ("lever,hole,u_m,v_m\n1,A,ten,0\n", "line 2, u_m: a cell is not a number: ten"),
+        ("lever,hole,u_m,v_m\n1,A,-0.3,1e300\n", "line 2, v_m: the number is too large: 1e300"),
         ("lever,hole,u_m,v_m\n1,A,nan,0\n", "not a number: nan"),
         ("lever,hole,u_m,v_m\n1,A,,0\n", "not a number: an empty cell"),
         ("lever,hole,u_m,v_m\nlever 1,A,0.1,0\n", "named by its number: lever 1"),

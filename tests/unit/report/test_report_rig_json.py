@@ -136,6 +136,7 @@ def edited(*keys: object, value: object = None, drop: bool = False) -> str:
         (edited("trees", 0, "force_N", value=float("nan")), "trees.0..force_N: .*NaN .accepted: a finite number"),
         (edited("pads", value=[]), "pads: the rig has no pads"),
         (edited("pads", 1, "pad", value=3), r"pads\[1\].pad: the pads are not in the order .*: pad 3 .accepted: pad 2"),
+        (edited("pads", 0, "y_m", value=1e300), r"pads\[0\].y_m: .*accepted: a finite number up to 1e\+100"),
         (edited("pads", 0, "x_m", value=10**400), r"pads\[0\].x_m: .*accepted: a finite number"),
         (TEXT.replace('"schema_number": 1', '"schema_number": ' + 5000 * "9"), "a whole number of thousands of digits"),
         (edited("pads", value=[3]), "pads: .*accepted: a list of objects"),
