@@ -23,7 +23,8 @@ from rigdesign.target.remarks import remarks
 from rigdesign.target.sums import NO_CURVE
 from rigdesign.words import LARGEST_NUMBER, SMALLEST_TOTAL
 
-# A sum below this part of the largest force beyond any station is the rounding of loads that cancel.
+# A sum below this part of the largest force beyond any station, or of the loads one by one, is the rounding of loads
+# that cancel.
 _CANCELLED = 1e-9
 # Stations over the loaded span at which that largest force is looked for, besides the breaks.
 _LOOKED_AT = 65
@@ -43,9 +44,10 @@ def build_target(brief: Brief) -> Target:
     pressures add up to, for pressures.  The peaks are found to rounding, about 1e-12 of their value.
     """
     specimen = brief.specimen
-    total_plan = PlanSum(tuple(plan_load(load, specimen) for load in brief.loads), (1.0,) * len(brief.loads))
+    plans = tuple(plan_load(load, specimen) for load in brief.loads)
+    total_plan = PlanSum(plans, (1.0,) * len(plans))
     total = total_plan.along(ALONG_X).force
-    _refuse_nothing(total)
+    _refuse_nothing(total, sum(abs(plan.along(ALONG_X).force.total) for plan in plans))
     gravity_plan = gravity_load(brief)
     gravity = gravity_plan.curve
     net_plan: PlanLoad = total_plan if gravity is NO_CURVE else PlanSum((total_plan, gravity_plan), (1.0, -1.0))
@@ -62,13 +64,16 @@ def build_target(brief: Brief) -> Target:
     return replace(target, findings=numbered(remarks(target)))
 
 
-def _refuse_nothing(total: Curve) -> None:
-    """Raise BriefError where the loads cancel, or come to a size beyond all reason: there is no place for a jack."""
+def _refuse_nothing(total: Curve, apart: float) -> None:
+    """Raise BriefError where the loads cancel, or come to a size beyond all reason: there is no place for a jack.
+
+    `apart` is what the loads come to one by one, signs left aside [N].
+    """
     # between the breaks as well: a load that changes sign in a stretch may cancel itself there
     breaks = total.breaks
     x = np.union1d(breaks, np.linspace(breaks[0], breaks[-1], _LOOKED_AT)) if breaks.size else breaks
     most = float(np.abs(total.force_beyond(x, "inboard")).max(initial=0.0))
-    if abs(total.total) <= _CANCELLED * most:
+    if abs(total.total) <= _CANCELLED * max(most, apart):
         raise BriefError(
             "the loads add up to nothing, so that no jack can bring them",
             where="[[load]]",

@@ -160,6 +160,18 @@ CASES = {
         {},
         ["[[load]] 1, line", "all along the load"],
     ),
+    "an outline more than a million times its size away": (
+        "",
+        "",
+        {"outline": HEAD + "0.1,9e6\n2.3,9e6\n2.3,9000001\n0.1,9000001\n"},
+        ["outline.csv, line ", "too far from x = 0, y = 0", "y = 9000001 m", "count x and y from a place near"],
+    ),
+    "loads that cancel each other": (
+        LOAD,
+        LOAD + '\n[[load]]\npressure = "pressure.csv"\ntimes = -0.999999999999',
+        {},
+        ["the loads add up to nothing"],
+    ),
     "plan keys without an outline": (
         'outline = "outline.csv"\n',
         "",
@@ -186,3 +198,15 @@ def test_a_surface_that_cannot_be_used(rigdesign, here, name, command):
     for word in words:
         assert word in ended.err
     assert files_under(here) == before
+
+
+@pytest.mark.parametrize("bands", ['across_under = "5 %"', 'torsion = "300 N*m"', 'shear_over = "40 %"'])
+def test_bands_of_one_kind_alone_end_in_a_rig(rigdesign, here, bands):
+    """Whatever is judged, and be it nothing along the span, pads are chosen from the hard points."""
+    (here / "fin.toml").write_text(f"{SURFACE}\n[levers]\nratio_limit = 20\n[acceptance]\n{bands}\n")
+    (here / "outline.csv").write_text(OUTLINE)
+    (here / "pressure.csv").write_text(PRESSURE)
+    ended = rigdesign("design", "fin.toml", "--no-figures")
+    assert ended.code in (0, 1)
+    assert ended.err == ""
+    assert "6 pads on 5 levers" in ended.out

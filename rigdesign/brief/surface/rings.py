@@ -10,6 +10,7 @@ from rigdesign.brief.context import frozen
 from rigdesign.brief.model import Floats, Outline
 from rigdesign.brief.surface.within import place
 from rigdesign.brief.tables import CsvTable
+from rigdesign.display import show
 from rigdesign.errors import TableError
 
 MOST_CORNERS = 1000
@@ -17,6 +18,9 @@ MOST_CORNERS = 1000
 
 CLOSE = 1e-9
 """Of the size of a ring: corners nearer to each other are one, and a ring narrower than this has no area."""
+
+FARTHEST = 1e6
+"""Of the size of a ring: farther from x = 0, y = 0 the digits of numbers no longer tell forces and moments apart."""
 
 _AT = re.compile(r"\[(\S+) (\S+)\]")
 
@@ -36,13 +40,15 @@ def ring(table: CsvTable, first: int, last: int, name: str) -> Outline:
     Raises
     ------
     TableError
-        If there are too few or too many corners, one is there twice, or the ring has no area or crosses itself.
+        If there are too few or too many corners, one is there twice, or the ring has no area, crosses itself or stands
+        too far from the origin.
     """
     x, y = table["x"][first:last], table["y"][first:last]
     if x.size > 1 and x[0] == x[-1] and y[0] == y[-1]:
         x, y = x[:-1], y[:-1]
     _check_count(table, first, x.size, name)
     size = float(np.hypot(np.ptp(x), np.ptp(y)))
+    _check_distance(table, first, x, y, size, name)
     _check_repeats(table, first, x, y, size, name)
     if _width(x, y) <= CLOSE * size:
         what = f"{name} has no area: all its corners lie on one line"
@@ -67,6 +73,21 @@ def _check_count(table: CsvTable, first: int, count: int, name: str) -> None:
         raise TableError(
             f"{name} has {count} corners", where=table.where(first), limit=f"up to {MOST_CORNERS}", remedy=remedy
         )
+
+
+def _check_distance(table: CsvTable, first: int, x: Floats, y: Floats, size: float, name: str) -> None:
+    """Raise TableError where the ring stands so far from the origin that moments about it would lose their digits."""
+    away = np.hypot(x, y)
+    row = int(np.argmax(away))
+    if size == 0.0 or away[row] <= FARTHEST * size:
+        return
+    raise TableError(
+        f"{name} stands too far from x = 0, y = 0 for its size",
+        where=table.where(first + row),
+        value=f"{table.cell('x', first + row)}, {table.cell('y', first + row)}",
+        limit=f"up to {show(FARTHEST * size, 'length', unit='m')}, a million times its size",
+        remedy="count x and y from a place near the specimen",
+    )
 
 
 def _check_repeats(table: CsvTable, first: int, x: Floats, y: Floats, size: float, name: str) -> None:
