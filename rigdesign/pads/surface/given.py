@@ -15,6 +15,7 @@ from rigdesign.pads.surface.choice import choose, fewest
 from rigdesign.pads.surface.choice_model import Choice, Indices, Truths
 from rigdesign.pads.surface.error_rows import ErrorRows, error_rows
 from rigdesign.pads.surface.evening import limits, more_even
+from rigdesign.pads.surface.keep_shares import SharesKept
 from rigdesign.pads.surface.line_bounds import line_bounds
 from rigdesign.pads.surface.lumps import Lumps, lumps
 from rigdesign.pads.surface.many import choose_of_many
@@ -33,6 +34,9 @@ FINE = 40
 WORST, NEAREST, EXCHANGES = 8, 4, 1600
 """Exchanges for even forces: of the pads that deviate most, with the nearest places each, so many over the number of
 pads in all (a programme over many pads takes its time)."""
+
+SHARE_KEPT = 0.95
+"""Pads judged against their shares are sought within this part of what is allowed, as the load is lumped there."""
 
 FIXED_METHOD = "linear programme over the forces at the fixed places"
 CHOICE_METHOD = "mixed-integer programme over places and forces, branch and bound"
@@ -153,7 +157,24 @@ def best_of_places(
     before = own.judged(best.force, first.share).evenness
     placed, sweeps = exchanged(choice, target, found.pads, first, limits(target.brief.pads, own, best))
     words += f"; {sweeps} sweeps of exchanges for even forces"
+    kept = _shares_kept(choice, target, found.pads, placed, best.use)
+    if kept is not None:
+        placed, words = kept, words + "; places spread out so that pads keep to their shares"
     return Outcome(placed.x, placed.forces.force, bound, best.use, moment_least, before, method, words, placed.y)
+
+
+def _shares_kept(choice: Choice, target: Target, pads: Indices, placed: Placed, use: float) -> Placed | None:
+    """Other places whose forces keep the pads' shares, where those are judged and broken; None if there are none."""
+    share_limit = target.brief.acceptance.share
+    if share_limit is None or placed.forces.evenness <= share_limit or use > 1:
+        return None
+    chosen = SharesKept(choice, lumps(target, sign_of(target)), SHARE_KEPT * share_limit).best(pads)
+    if chosen is None:
+        return None
+    own = programme(target, choice.balance, choice.x[chosen], choice.y[chosen])
+    forces = own.least_use(shares(target, own.x, own.y), share_limit)
+    # judged at more stations, and by the exact shares
+    return None if forces is None or forces.use > 1 else evened(target, own, forces)
 
 
 def exchanged(choice: Choice, target: Target, pads: Indices, first: Placed, limit: Floats) -> tuple[Placed, int]:

@@ -152,6 +152,20 @@ def test_pads_that_are_judged_against_their_shares_keep_them() -> None:
     assert np.abs(plan.force / own - 1).max() == pytest.approx(plan.proof.evenness, rel=1e-9)
 
 
+def test_hard_points_of_a_panel_are_chosen_so_that_pads_keep_to_their_shares() -> None:
+    held = {"support": "two supports", "supports": (0.2, 1.7)}
+    wide = {quantity: 2.5 * band for quantity, band in EVERYTHING.items()}
+    loose = pressed(TAPERED, -0.4, wide, share=10.0, pads={"count": 6}, specimen=held).brief
+    x, y = free_candidates(loose, 20)
+    loose = replace(loose, pads=replace(loose.pads, places="hard points", stations=x, y=y))
+    # what is best for the bands alone breaks a share of a tenth
+    assert planned(build_target(loose)).proof.evenness > 0.1
+    plan = planned(build_target(replace(loose, acceptance=replace(loose.acceptance, share=0.1))))
+    assert plan.proof.evenness <= 0.1
+    assert plan.proof.band_use <= 1.0
+    assert compatible(loose, plan.x, plan.y).all()
+
+
 def test_pads_on_both_sides_of_the_axis_do_not_share_a_station_to_hide_their_torsion() -> None:
     # without that rule the least band use of these pads puts two at one station
     target = pressed(PANEL, 0.0, EVERYTHING, pads={"count": 8}, levers=make_levers(drill_step=2e-3))
