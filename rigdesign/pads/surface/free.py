@@ -33,7 +33,8 @@ from rigdesign.pads.surface.many import choose_of_many
 from rigdesign.pads.surface.moving import Errors
 from rigdesign.pads.surface.places import free_candidates
 from rigdesign.pads.surface.program import Programme
-from rigdesign.pads.surface.refine import Search, Standing
+from rigdesign.pads.surface.refine import INSIDE, Search, Standing
+from rigdesign.pads.surface.row_changes import with_rows_changed
 from rigdesign.pads.surface.share_slopes import ShareSlopes
 from rigdesign.pads.surface.starts import Starts
 from rigdesign.target.curve import Floats
@@ -45,11 +46,11 @@ MOST = 240
 NODES = 1_000
 STATIONS = 16
 """Stations a pad at which errors are looked at while pads move."""
-HEATS = ((6, 8), (3, 12), (2, 40))
-HEATS_MANY = ((4, 6), (1, 40))
+HEATS = ((5, 8), (3, 10), (2, 40))
+HEATS_MANY = ((4, 8), (2, 40))
 """So many starts are refined by so many steps each, the best first; of more than `MANY` pads fewer."""
 MANY = 24
-EVEN_STEPS, EVEN_STEPS_MANY, EVEN_START = 15, 5, 8
+EVEN_STEPS, EVEN_STEPS_MANY, EVEN_START = 25, 25, 8
 """Steps towards even forces: at the end, of more than `MANY` pads, and of a start that strays from its shares."""
 EVEN_ENOUGH = 1e-3
 MOST_EVENED = 6
@@ -141,8 +142,7 @@ class FreeInPlan:
         least, largest = force_limits(self.target.brief)
 
         def refill(x: Floats, y: Floats) -> Floats | None:
-            near = None if share_limit is None else self._shares(x, y)
-            forces = self._programme(x, y, STATIONS // 2).least_use(near, share_limit or 0.0)
+            forces = self._best_forces(x, y, share_limit)
             return None if forces is None else forces.force
 
         search = Search(self._errors, ground, self._balance, least, largest, self._shares, refill=refill)
@@ -151,6 +151,11 @@ class FreeInPlan:
     def _programme(self, x: Floats, y: Floats, per_pad: int) -> Programme:
         rows = error_rows(self.target, x, y, max(100, per_pad * self.count))
         return programme(self.target, self._balance, x, y, rows)
+
+    def _best_forces(self, x: Floats, y: Floats, share_limit: float | None) -> Forces | None:
+        """Forces of least band use at places x, y (n,) [m], judged at few stations."""
+        near = None if share_limit is None else self._shares(x, y)
+        return self._programme(x, y, STATIONS // 2).least_use(near, share_limit or 0.0)
 
     def _starts(self, share_limit: float | None) -> list[_Start]:
         """Starts with forces of least band use, the best first; with less room where there are none with it."""
@@ -197,7 +202,22 @@ class FreeInPlan:
             field = sorted(field, key=lambda one: one[1].value)
             if field[0][1].value <= least * ENOUGH:
                 break
-        return [one for _, one in field]
+        found = [one for _, one in field]
+        if len(self.target.brief.pads.rows) > 1 and self.count <= MANY and found[0].value > least * ENOUGH:
+            found = [self._on_other_rows(field[0][0], found[0], share_limit, least), *found]
+        return found
+
+    def _on_other_rows(self, ground: Ground, best: Standing, share_limit: float | None, least: float) -> Standing:
+        """The best pads with rows changed, moved on from there."""
+        self._tell(0.7, "changing rows")
+        search = self._search(ground, share_limit)
+
+        def filled(x: Floats, y: Floats) -> Standing | None:
+            forces = self._best_forces(x, y, share_limit)
+            return None if forces is None else Standing(x, y, forces.force, forces.use)
+
+        changed = with_rows_changed(ground, best, filled, lambda one, steps: search.refined(one, steps, least * ENOUGH))
+        return search.refined(changed, HEATS[-1][1], least * ENOUGH) if changed is not best else best
 
     def _on_grid(self, least: float) -> _Start | None:
         """A start among the places of a grid."""
@@ -251,7 +271,12 @@ class FreeInPlan:
     def _moved_even(self, placed: Placed, limit: Floats) -> Placed:
         """Pads moved as long as forces become more even within the band uses `limit`."""
         ground = self._ground if self._ground.keeps(placed.x, placed.y) else Ground(self.target.brief, self.count)
-        search = replace(self._search(ground, None), limit=limit, slopes=self._slopes, refill=None)
+
+        def refill(x: Floats, y: Floats) -> Floats | None:
+            forces = self._programme(x, y, STATIONS // 2).most_even(limit * (1 - INSIDE), self._shares(x, y))
+            return None if forces is None else forces.force
+
+        search = replace(self._search(ground, None), limit=limit, slopes=self._slopes, refill=refill)
         start = Standing(placed.x, placed.y, placed.forces.force, placed.forces.evenness)
         found = search.refined(start, EVEN_STEPS if self.count <= MANY else EVEN_STEPS_MANY, EVEN_ENOUGH)
         if found is start:

@@ -19,7 +19,9 @@ from rigdesign.pads.surface.ground import Ground
 from rigdesign.pads.surface.line_bounds import LineBounds, line_bounds
 from rigdesign.pads.surface.moving import Errors
 from rigdesign.pads.surface.places import allowed, compatible, free_candidates
+from rigdesign.pads.surface.refine import Standing
 from rigdesign.pads.surface.refusals import jack_place_in_plan
+from rigdesign.pads.surface.row_changes import with_rows_changed
 from rigdesign.pads.surface.share_slopes import ShareSlopes
 from rigdesign.target import build_target
 from rigdesign.target.curve import Floats
@@ -171,6 +173,27 @@ def test_pads_on_both_sides_of_the_axis_do_not_share_a_station_to_hide_their_tor
     target = pressed(PANEL, 0.0, EVERYTHING, pads={"count": 8}, levers=make_levers(drill_step=2e-3))
     plan = planned(target)
     assert np.diff(np.sort(plan.x)).min() >= 4 * 2e-3 * 0.98
+
+
+def test_free_pads_move_towards_even_forces_within_the_ease() -> None:
+    bands = {**MOMENT_AND_TORSION, "shear": 0.15}
+    proof = planned(pressed(TAPERED, -0.5, bands, pads={"count": 7, "ease": 0.2, "least_force": 20.0})).proof
+    assert proof.evenness < 0.2 * proof.evenness_before
+    assert proof.band_use <= 1.2 * proof.band_use_found * (1 + 1e-6)
+
+
+def test_pads_change_to_the_rows_beside_their_own() -> None:
+    rows = tuple(line((0.0, y), (1.9, y)) for y in (-0.2, 0.1, -0.05))
+    target = pressed(TAPERED, 0.0, MOMENT_AND_TORSION, pads={"rows": rows})
+    x = np.array([0.3, 0.8, 1.3])
+
+    def valued(x: Floats, y: Floats) -> Standing:
+        # the least value has the pads on the highest, the lowest and the middle row
+        return Standing(x, y, np.ones(3), float(np.abs(y - [0.1, -0.2, -0.05]).sum()) + 1e-3)
+
+    start = valued(x, np.full(3, -0.2))
+    found = with_rows_changed(Ground(target.brief, 3), start, valued, lambda one, steps: one)
+    assert found.y == pytest.approx([0.1, -0.2, -0.05])
 
 
 def test_fewest_starts_from_what_is_proven() -> None:
