@@ -177,9 +177,10 @@ def test_pads_on_both_sides_of_the_axis_do_not_share_a_station_to_hide_their_tor
 
 def test_free_pads_move_towards_even_forces_within_the_ease() -> None:
     bands = {**MOMENT_AND_TORSION, "shear": 0.15}
-    proof = planned(pressed(TAPERED, -0.5, bands, pads={"count": 7, "ease": 0.2, "least_force": 20.0})).proof
-    assert proof.evenness < 0.2 * proof.evenness_before
-    assert proof.band_use <= 1.2 * proof.band_use_found * (1 + 1e-6)
+    proof = planned(pressed(TAPERED, -0.5, bands, pads={"count": 8, "ease": 0.1, "edge": 0.03})).proof
+    # forces alone, at the places of least band use, get to 0.46
+    assert proof.evenness < 0.3 < 0.5 < proof.evenness_before
+    assert proof.band_use <= 1.1 * proof.band_use_found * (1 + 1e-6)
 
 
 def test_pads_change_to_the_rows_beside_their_own() -> None:
@@ -191,7 +192,7 @@ def test_pads_change_to_the_rows_beside_their_own() -> None:
         # the least value has the pads on the highest, the lowest and the middle row
         return Standing(x, y, np.ones(3), float(np.abs(y - [0.1, -0.2, -0.05]).sum()) + 1e-3)
 
-    start = valued(x, np.full(3, -0.2))
+    start = valued(x, np.full(3, -0.05))
     found = with_rows_changed(Ground(target.brief, 3), start, valued, lambda one, steps: one)
     assert found.y == pytest.approx([0.1, -0.2, -0.05])
 
