@@ -11,7 +11,7 @@ from rigdesign.pads.limits import force_limits
 from rigdesign.pads.model import LEAST_SHARE
 from rigdesign.pads.outcome import Outcome, Progress
 from rigdesign.pads.surface.balance import Balance, balance
-from rigdesign.pads.surface.choice import choose, fewest
+from rigdesign.pads.surface.choice import choose
 from rigdesign.pads.surface.choice_model import Choice, Indices, Truths
 from rigdesign.pads.surface.error_rows import ErrorRows, error_rows
 from rigdesign.pads.surface.evening import limits, more_even
@@ -28,7 +28,6 @@ from rigdesign.target.model import Target
 PROVEN = 64
 """Up to so many places one mixed-integer programme finds the best choice and proves it; more are a search."""
 NODES = 8_000
-FEW_NODES = 2_000
 FINE = 40
 """Stations a pad at which forces are worked out and judged."""
 WORST, NEAREST, EXCHANGES = 8, 4, 1600
@@ -109,13 +108,6 @@ class HardPlaces:
         x, y = self._places()
         outcome = best_of_places(self.target, (self.jack_x, self.jack_y), x, y, self.count, self.progress)
         return outcome
-
-    def fewest_possible(self) -> int:
-        """Return a number of pads that no choice within the bands goes below."""
-        x, y = self._places()
-        if x.size > PROVEN:
-            return 1
-        return fewest(choice_of(self.target, (self.jack_x, self.jack_y), x, y, 1), 1.0, FEW_NODES)
 
     def _places(self) -> tuple[Floats, Floats]:
         pads, usable = self.target.brief.pads, usable_points(self.target.brief)
