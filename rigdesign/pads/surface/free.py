@@ -23,6 +23,7 @@ from rigdesign.pads.surface.given import (
     LINE_METHOD,
     PROVEN,
     Placed,
+    best_of_places,
     choice_of,
     programme,
     shares,
@@ -31,7 +32,7 @@ from rigdesign.pads.surface.ground import Ground, with_room
 from rigdesign.pads.surface.line_bounds import line_bounds
 from rigdesign.pads.surface.many import choose_of_many
 from rigdesign.pads.surface.moving import Errors
-from rigdesign.pads.surface.places import free_candidates
+from rigdesign.pads.surface.places import Room, free_candidates
 from rigdesign.pads.surface.program import Programme
 from rigdesign.pads.surface.refine import INSIDE, Search, Standing
 from rigdesign.pads.surface.row_changes import with_rows_changed
@@ -67,6 +68,9 @@ ENOUGH = 1.005
 
 _Start = tuple[Ground, Standing]
 
+IN_LINE = 61
+"""Places along the span that two pads are chosen from: few enough to be proven at once."""
+
 
 @dataclass(frozen=True)
 class FreeInPlan:
@@ -89,7 +93,21 @@ class FreeInPlan:
             free, free_words = self._found(None, line_use)
             if not field or (free and free[0].value <= 1):
                 field, words, limit = free, free_words, None
+        if not field and self.count == 2 and not self.target.brief.pads.rows:
+            return self._two_in_line(line_use)
         return self._evened(field, limit, line_use, moment_least, words) if field else None
+
+    def _two_in_line(self, least: float) -> Outcome | None:
+        """Two pads balance the target only in line with the jack: the best two along the span through it."""
+        x = np.linspace(self.target.brief.specimen.left, self.target.brief.specimen.right, IN_LINE)
+        y = np.full(x.size, self.jack_y)
+        allowed = Room(self.target.brief).allowed(x, y)
+        jack = self.jack_x, self.jack_y
+        found = best_of_places(self.target, jack, x[allowed], y[allowed], 2, self.progress)
+        if found is None:
+            return None
+        words = f"2 of {int(allowed.sum())} places in line along the span through the jack; no others were looked at"
+        return replace(found, use_least=least, method=LINE_METHOD, words=words)
 
     def _found(self, share_limit: float | None, least: float) -> tuple[list[Standing], str]:
         """The pads that were found, those of least band use first, and how."""

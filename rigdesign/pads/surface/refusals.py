@@ -213,9 +213,14 @@ def unbalanced(target: Target, jack_x: float, jack_y: float, count: int) -> Refu
         asked.append(f"least pad force {show(least * brief.peak, 'force')} at the peak of the test")
     if brief.pads.length + brief.pads.gap > 0:
         asked.append(f"{_footprint(brief)}, gap {show(brief.pads.gap, 'length')}")
+    pads = counted(count, "pad")
+    text = f"no forces of {pads} within the limits have the target's sum and centre"
+    if brief.pads.places == "free":
+        # a local search proves nothing of the kind
+        text = f"no places were found from which forces of {pads} within the limits have the target's sum and centre"
     return Refusal(
         "pads",
-        f"no forces of {counted(count, 'pad')} within the limits have the target's sum and centre",
+        text,
         limit=", ".join(asked) or "pads of one sign at these places",
         best=f"{show(total, 'force')} at {place_words(jack_x, jack_y)} from {counted(count, 'pad')} of one sign",
         remedy="widen the limits one at a time, change the number of pads, or move places towards the resultant",

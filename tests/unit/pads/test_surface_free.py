@@ -384,3 +384,18 @@ def test_forces_on_their_limits_stay_there_when_the_balance_is_hit() -> None:
     held = even.hit_within(x, y, np.minimum(force.force * 1.001, most * 0.999), 1.0, most * 0.999 * 1.05)
     assert even.left_over(x, y, held) < 1e-12
     assert held.max() <= most * 0.999 * 1.05
+
+
+def test_two_pads_stand_in_line_with_the_jack() -> None:
+    target = pressed(TAPERED, 0.5, {"moment": 0.6, "torsion": 0.6}, pads={"count": 2})
+    plan = planned(target)
+    assert plan.y == pytest.approx(np.full(2, plan.jack_y), abs=1e-12)
+    assert plan.x[0] < plan.jack_x < plan.x[1]
+    assert plan.force.sum() == pytest.approx(target.net_plan.sums.force, rel=1e-12)
+    assert (plan.force * plan.x).sum() == pytest.approx(target.net_plan.sums.first_x, rel=1e-9)
+    assert plan.proof.band_use_least <= plan.proof.band_use_found
+    # a pair that anyone would try first is no better
+    x, y = np.array([0.25, 0.75]) * 1.9, np.full(2, plan.jack_y)
+    forces = programme(target, balance(target, plan.jack_x, plan.jack_y), x, y).least_use()
+    assert forces is not None
+    assert plan.proof.band_use_found <= forces.use
