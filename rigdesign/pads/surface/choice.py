@@ -43,9 +43,9 @@ def choose(choice: Choice, nodes: int) -> Chosen:
     top = search.top if start is None else search.at(use * (1 + ROOM))
     found = search.sparse.solve(top, use=None, jumps=jumps, options=options)
     if found.status == INFEASIBLE:
-        return Chosen(start, np.inf if start is None else use, True)
+        # pads that were found cannot be impossible: then nothing is proven but the relaxation
+        return Chosen(None, np.inf, True) if start is None else Chosen(start, float(relaxed.fun), False)
     bound = 0.0 if found.mip_dual_bound is None else max(float(found.mip_dual_bound), 0.0)
-    bound = min(bound, use)
     if found.x is None or found.fun > use:
         return Chosen(start, bound, found.status == 0)
     return Chosen(np.flatnonzero(found.x[choice.x.size + 1 : 2 * choice.x.size + 1] > 0.5), bound, found.status == 0)

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from rigdesign.pads.surface.choice import fewest, largest
+from rigdesign.pads.surface.choice import INFEASIBLE, fewest, largest
 from rigdesign.pads.surface.given import PROVEN, choice_of
 from rigdesign.pads.surface.jumps import jump_limits
 from rigdesign.pads.surface.places import given_places, usable_points
@@ -30,5 +30,5 @@ def fewest_hard_points(target: Target, jack: tuple[float, float]) -> int:
     top = np.minimum(largest(choice), jumps.at(1.0))
     relaxed = SparseChoice(choice).solve(top, use=1.0, jumps=jumps, relaxed=True)
     if relaxed.x is None:
-        return x.size + 1 if relaxed.status == 2 else 1
+        return x.size + 1 if relaxed.status == INFEASIBLE else 1
     return max(1, int(np.ceil(relaxed.fun - 1e-6)), pads_needed(choice, 1.0, top))

@@ -39,7 +39,10 @@ SHARE_KEPT = 0.95
 
 FIXED_METHOD = "linear programme over the forces at the fixed places"
 CHOICE_METHOD = "mixed-integer programme over places and forces, branch and bound"
-STATES_METHOD = "shear and torsion of all that pads at these places could do, followed from tip to root"
+MANY_METHOD = (
+    "a relaxation in which parts of pads count and, where shear and torsion are judged at cuts square to x, "
+    "all that pads at these places could do to both, followed from tip to root"
+)
 LINE_METHOD = "free pads on a line, whose shear and moment no pads in plan can better"
 
 
@@ -105,14 +108,9 @@ class HardPlaces:
 
     def choose(self) -> Outcome | None:
         """Best pads with their proof; None where no choice balances the target within the limits."""
-        x, y = self._places()
-        outcome = best_of_places(self.target, (self.jack_x, self.jack_y), x, y, self.count, self.progress)
-        return outcome
-
-    def _places(self) -> tuple[Floats, Floats]:
-        pads, usable = self.target.brief.pads, usable_points(self.target.brief)
-        y = pads.y if pads.y.size else np.zeros(pads.stations.size)
-        return pads.stations[usable], y[usable]
+        usable = usable_points(self.target.brief)
+        x, y = (places[usable] for places in given_places(self.target.brief))
+        return best_of_places(self.target, (self.jack_x, self.jack_y), x, y, self.count, self.progress)
 
 
 def choice_of(target: Target, jack: tuple[float, float], x: Floats, y: Floats, count: int) -> Choice:
@@ -138,7 +136,7 @@ def best_of_places(
     if found.pads is None:
         return None
     bound = max(found.bound * (1 - 1e-6), line_use)
-    own_method = CHOICE_METHOD if x.size <= PROVEN else STATES_METHOD
+    own_method = CHOICE_METHOD if x.size <= PROVEN else MANY_METHOD
     method = own_method if found.bound * (1 - 1e-6) >= line_use else LINE_METHOD
     own = programme(target, choice.balance, x[found.pads], y[found.pads])
     best = own.least_use()

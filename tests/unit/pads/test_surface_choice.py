@@ -281,3 +281,18 @@ def test_even_forces_leave_a_little_of_the_bands_to_drilling() -> None:
     assert isinstance(plan, PadPlan)
     assert plan.proof.band_use_found < 0.9  # there was room to give up, and forces took it
     assert 0.98 < plan.proof.band_use < 0.992  # 0.99, judged at more stations
+
+
+def test_pads_that_were_found_are_never_proven_impossible(monkeypatch: pytest.MonkeyPatch) -> None:
+    # limits on single pads that are wrong leave nothing: then no more is proven than the relaxation says
+    choice = make_choice(5, 16, 2)
+    exact = choose(choice, 20_000)
+    assert exact.pads is not None
+    monkeypatch.setattr("rigdesign.pads.surface.many.Search.at", lambda search, use: np.full(16, 1e-3))
+    monkeypatch.setattr(
+        "rigdesign.pads.surface.many.Search.by_beam", lambda search, low: (exact.pads, least_use(choice, exact.pads))
+    )
+    found = choose(choice, 20_000)
+    assert not found.is_proven
+    assert np.array_equal(found.pads, exact.pads)
+    assert found.bound <= exact.bound
