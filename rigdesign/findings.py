@@ -11,7 +11,7 @@ from dataclasses import dataclass, replace
 from typing import Literal
 
 Severity = Literal["note", "warning", "failure"]
-Stage = Literal["target", "pads", "levers", "statics", "space", "practice"]
+Stage = Literal["target", "pads", "levers", "statics", "space", "strength", "behaviour", "practice"]
 
 
 @dataclass(frozen=True)

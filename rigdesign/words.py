@@ -36,6 +36,15 @@ set here."""
 DEFAULT_CLEARANCE = 0.03
 """Least clearance in plan between pieces of one tier where the brief does not say [m]; common practice."""
 
+GRADES = ("S235", "S275", "S355", "6082-T6")
+"""Grades of which levers, plates, straps and fittings can be made."""
+
+PIN_GRADES = ("S355", "C45", "42CrMo4")
+"""Grades of which pins can be made."""
+
+LOAD_STEPS = (0.2, 0.4, 0.6, 0.8, 1.0)
+"""Steps of the test, of the brief's load, to which its peak is added; common practice."""
+
 MOST_PADS = 1000
 """No rig and no study goes beyond this many pads; a search for more would take hours."""
 

@@ -15,6 +15,8 @@ from typing import TYPE_CHECKING, Literal
 import numpy as np
 from numpy.typing import NDArray
 
+from rigdesign.brief.model_hardware import HardwareRules, KeptRig
+
 if TYPE_CHECKING:
     from shapely import Polygon
 
@@ -361,3 +363,5 @@ class Brief:
     jack: JackRules
     acceptance: Acceptance
     source: Source
+    hardware: HardwareRules
+    keep: KeptRig | None = None
