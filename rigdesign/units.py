@@ -57,6 +57,7 @@ KINDS = {
         Kind("force", "N", "5.4 kN"),
         Kind("mass", "kg", "12 kg"),
         Kind("mass per length", "kg/m", "7.5 kg/m"),
+        Kind("density", "kg/m^3", "7850 kg/m^3"),
         Kind("running load", "N/m", "1.8 kN/m"),
         Kind("moment", "N*m", "50 N*m"),
         Kind("pressure", "Pa", "60 kPa"),

@@ -42,6 +42,18 @@ GRADES = ("S235", "S275", "S355", "6082-T6")
 PIN_GRADES = ("S355", "C45", "42CrMo4")
 """Grades of which pins can be made."""
 
+DEFAULT_DESIGN_FACTOR = 2.0
+"""Design factor of BTH-1 where the brief does not say: loads well known (category A)."""
+
+OVER_PEOPLE_DESIGN_FACTOR = 3.0
+"""The same over people (category B); it may not be less there."""
+
+DEFAULT_LOAD_FACTOR = 1.5
+"""Factor on loads of EN 1993 where the brief does not say; set here."""
+
+DEFAULT_MARK_TOLERANCE = 0.010
+"""By how much arms may be changed for fewer different parts where the brief does not say [m]; set here."""
+
 LOAD_STEPS = (0.2, 0.4, 0.6, 0.8, 1.0)
 """Steps of the test, of the brief's load, to which its peak is added; common practice."""
 

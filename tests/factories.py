@@ -29,8 +29,11 @@ from rigdesign.brief.model import (
     TableLoad,
     Weight,
 )
+from rigdesign.brief.model_hardware import HardwareRules
 
 LEFT, RIGHT = 0.2, 3.4
+CLEVIS_PINS = (5, 6, 8, 10, 12, 14, 16, 18, 20, 22, 24, 27, 30, 33, 36, 40, 45, 50, 55, 60, 70, 80, 90, 100)
+"""Diameters of ISO 2341 [mm]."""
 
 
 def array(values: ArrayLike) -> Floats:
@@ -52,6 +55,8 @@ def make_brief(**changes: Any) -> Brief:
         "jack": JackRules(at=None, step=None),
         "acceptance": make_acceptance(),
         "source": Source(brief_name="piece.toml", texts={"piece.toml": "title = 'Test piece'\n"}),
+        "hardware": make_hardware(),
+        "keep": None,
     }
     return Brief(**_changed(fields, changes))
 
@@ -168,6 +173,42 @@ def make_levers(**changes: Any) -> LeverRules:
         "grouping": None,
     }
     return LeverRules(**_changed(fields, changes))
+
+
+def make_hardware(**changes: Any) -> HardwareRules:
+    """What a brief without [hardware] asks for: the documented defaults."""
+    fields: dict[str, Any] = {
+        "headroom": float("inf"),
+        "clearance": 0.025,
+        "builds": ("twin flats",),
+        "grade": "S355",
+        "pin_grade": "42CrMo4",
+        "rules": "BTH-1",
+        "design_factor": 2.0,
+        "load_factor": 1.5,
+        "overshoot": 1.05,
+        "pins": tuple(diameter / 1000 for diameter in CLEVIS_PINS),
+        "play": 0.0005,
+        "links": "rod",
+        "link_length": 0.0,
+        "turn": float(np.deg2rad(5)),
+        "swing": float(np.deg2rad(10)),
+        "deflection": 0.005,
+        "density": None,
+        "pad_mass": 1.0,
+        "pad_height": 0.06,
+        "stock": (),
+        "jacks": (),
+        "cells": (),
+        "surface": None,
+        "marks": "as drilled",
+        "mark_tolerance": 0.01,
+        "balance": "as needed",
+        "bar": 6.0,
+        "kerf": 0.003,
+        "revision": "A",
+    }
+    return HardwareRules(**_changed(fields, changes))
 
 
 def band_rules(quantity: str, under: float, over: float, **changes: Any) -> tuple[BandRule, BandRule]:

@@ -7,6 +7,7 @@ from pathlib import PurePath
 from typing import Literal
 
 from rigdesign.brief.context import Context, between
+from rigdesign.brief.hardware import hardware
 from rigdesign.brief.layout import AcceptanceTable, Bands, BriefFile, JackTable, LeversTable
 from rigdesign.brief.loads import load, stretch
 from rigdesign.brief.messages import is_plan
@@ -49,6 +50,7 @@ def build(file: BriefFile, context: Context) -> Brief:
         jack=_jack(file.jack, piece, context),
         acceptance=_acceptance(file.acceptance, piece, context),
         source=Source(name, context.texts.used()),
+        hardware=hardware(file.hardware, context),
     )
 
 

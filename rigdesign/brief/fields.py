@@ -20,6 +20,7 @@ from rigdesign.words import LARGEST_NUMBER, MOST_PADS
 
 _NUMBER = r"[+-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?"
 _LENGTH, _FORCE, _TIMES = "(mm|cm|m|km|in|ft)", "(mN|N|kN|MN|kgf|lbf|kip)", "[*·. -]?"
+_MASS = "(kg|g|t|lb|slug)"
 LONGEST_TITLE = 200
 _UNITS = {
     "length": _LENGTH,
@@ -28,6 +29,8 @@ _UNITS = {
     "moment": f"({_FORCE}{_TIMES}{_LENGTH}|{_LENGTH}{_TIMES}{_FORCE})",
     "pressure": f"(Pa|kPa|MPa|GPa|bar|psi|ksi|psf|{_FORCE}/{_LENGTH}(\\^?2|²))",
     "angle": "(deg|rad)",
+    "mass": _MASS,
+    "density": f"{_MASS}/{_LENGTH}(\\^?3|³)",
     "fraction": "%",
 }
 
@@ -55,7 +58,7 @@ def one_quantity(kind: str, *, above: float | None = None, least: float | None =
     return PlainValidator(read), WithJsonSchema(pattern(kind))
 
 
-def _number(*, above: float | None = None, least: float | None = None, nonzero: bool = False) -> Any:
+def number(*, above: float | None = None, least: float | None = None, nonzero: bool = False) -> Any:
     """The pair of reader and schema for a plain number without unit."""
     limits = {"exclusiveMinimum": above} if above is not None else {"minimum": least} if least is not None else {}
 
@@ -237,9 +240,9 @@ RunningLoad = Annotated[float, *one_quantity("running load")]
 PositivePressure = Annotated[float, *one_quantity("pressure", above=0.0)]
 Percentage = Annotated[float, *one_quantity("fraction", above=0.0)]
 PercentageOrZero = Annotated[float, *one_quantity("fraction", least=0.0)]
-Factor = Annotated[float, *_number(nonzero=True)]
-PositiveNumber = Annotated[float, *_number(above=0.0)]
-Ratio = Annotated[float, *_number(least=1.0)]
+Factor = Annotated[float, *number(nonzero=True)]
+PositiveNumber = Annotated[float, *number(above=0.0)]
+Ratio = Annotated[float, *number(least=1.0)]
 Whole = Annotated[int, PlainValidator(_whole), WithJsonSchema({"type": "integer", "minimum": 1})]
 Count = Annotated[
     int | Literal["fewest"],

@@ -6,28 +6,16 @@ several keys at once, and the tables, is checked in `rigdesign.brief.build`.  Va
 
 from __future__ import annotations
 
-from typing import Annotated, Any
+from typing import Annotated
 
-from pydantic import BaseModel, ConfigDict, Discriminator, Field, Tag
+from pydantic import Discriminator, Tag
 
 from rigdesign.brief import fields as f
+from rigdesign.brief.keys import Table
+from rigdesign.brief.keys import key as _key
+from rigdesign.brief.keys import needed as _needed
+from rigdesign.brief.layout_hardware import HardwareTable, KeepTable
 from rigdesign.brief.surface import fields as plan
-
-
-def _key(description: str, default: Any = None, **more: Any) -> Any:
-    """A key that may be left out; a default is written as in a brief and read like any other value."""
-    return Field(default, description=description, validate_default=default is not None, **more)
-
-
-def _needed(description: str, **more: Any) -> Any:
-    """A key that must be there."""
-    return Field(description=description, **more)
-
-
-class Table(BaseModel):
-    """Base of every table: unknown keys are errors."""
-
-    model_config = ConfigDict(extra="forbid", frozen=True, arbitrary_types_allowed=True)
 
 
 class SpecimenTable(Table):
@@ -263,6 +251,8 @@ class BriefFile(Table):
     levers: LeversTable = _key("The levers.", {})
     jack: JackTable = _key("Where the jack can stand.", {})
     acceptance: AcceptanceTable | None = _key("Accepted errors.")
+    hardware: HardwareTable = _key("What the rig is made of.", {})
+    keep: KeepTable | None = _key("A rig whose steel is cut: its pads and levers stay.")
 
 
 TABLES: dict[str, type[Table]] = {
@@ -272,6 +262,8 @@ TABLES: dict[str, type[Table]] = {
     "levers": LeversTable,
     "jack": JackTable,
     "acceptance": AcceptanceTable,
+    "hardware": HardwareTable,
+    "keep": KeepTable,
 }
 """The single tables of a brief by name."""
 
@@ -284,8 +276,3 @@ PLAN_KEYS = {
     "acceptance": {f"{quantity}{side}" for quantity in ("torsion", "across") for side in _SIDED} | {"share"},
 }
 """Keys that only plan rigs have, by table; [specimen] outline makes one."""
-
-
-def keys_of(table: type[Table]) -> list[str]:
-    """Return the keys of a table as they are written in the file."""
-    return [info.alias or name for name, info in table.model_fields.items()]

@@ -11,6 +11,7 @@ from dataclasses import dataclass
 
 Path = tuple[str | int, ...]
 
+_TABLES = ("specimen", "load", "test", "pads", "levers", "jack", "acceptance", "hardware", "keep")
 _HEADER = re.compile(r"\s*(\[\[?)\s*([A-Za-z][A-Za-z0-9_.\- ]*?)\s*\]\]?\s*(?:#.*)?")
 _KEY = re.compile(r"""\s*["']?([A-Za-z0-9_.\-]+)["']?\s*=(.*)""")
 
@@ -63,7 +64,7 @@ def label(path: Path) -> str:
         table, rest = f"[[{path[0]}]] {path[1] + 1}", path[2:]
     elif len(path) > 2 and isinstance(path[2], int):
         table, rest = f"[[{path[0]}.{path[1]}]] {path[2] + 1}", path[3:]
-    elif len(path) > 1 or path[0] in ("specimen", "load", "test", "pads", "levers", "jack", "acceptance"):
+    elif len(path) > 1 or path[0] in _TABLES:
         return f"[{path[0]}]" + (f" {path[1]}" if len(path) > 1 else "")
     else:
         return str(path[0])

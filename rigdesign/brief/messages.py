@@ -12,7 +12,8 @@ from typing import Any
 
 from pydantic import ValidationError
 
-from rigdesign.brief.layout import LOAD_ENTRIES, PLAN_KEYS, TABLES, BriefFile, RegionTable, Table, keys_of, load_kind
+from rigdesign.brief.keys import Table, keys_of
+from rigdesign.brief.layout import LOAD_ENTRIES, PLAN_KEYS, TABLES, BriefFile, RegionTable, load_kind
 from rigdesign.brief.locate import Path, Places
 from rigdesign.errors import BriefError, InputError
 from rigdesign.units import in_words
