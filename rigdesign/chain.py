@@ -1,11 +1,13 @@
 """From a brief to a checked rig, in one call: the stages in their order, and what connects them.
 
-    design   brief  →  target  →  pads  →  levers  →  check
-    study    the same for several numbers of pads
+    arrange  brief  →  target  →  pads  →  levers  →  check
+    design   arrange  →  hardware  →  check of the hardware
+    study    arrange for several numbers of pads
     assess   a rig that exists, with other holes or against another target
 
-Depends on: brief, target, pads, levers, checks.  `rigdesign.report` and `rigdesign.command` depend on it.  Like the
-stages it knows no files, pictures or terminal; progress is told to a callback `progress(part, words)`, part in 0..1.
+Depends on: brief, target, pads, levers, hardware, checks, record.  `rigdesign.report` and `rigdesign.command` depend on
+it.  Like the stages it knows no files, pictures or terminal; progress is told to a callback `progress(part, words)`,
+part in 0..1.
 """
 
 from __future__ import annotations
@@ -21,8 +23,10 @@ if TYPE_CHECKING:
     from pathlib import Path
 
     from rigdesign.brief.model import Brief
+    from rigdesign.checks.hardware.model import HardwareCheck
     from rigdesign.checks.model import Check
     from rigdesign.levers.model import Rig
+    from rigdesign.levers.weighing import StockLine
     from rigdesign.target.model import Target
 
 Progress = Callable[[float, str], None]
@@ -33,6 +37,7 @@ MORE_PADS = 4
 FEWER_PADS = 40
 """With `count = "fewest"`, so many fewer pads are tried at most when levers cannot join those that bands ask for."""
 
+_RIG_PART = 0.8  # of a whole design, as progress shows it; hardware is the rest
 _PADS_PART = 0.6  # of the whole work, as progress shows it: choosing pads takes longer than levers and check
 
 
@@ -62,8 +67,55 @@ class Study:
         return min((row for row in self.rows if row.accepted), key=lambda row: row.pads, default=None)
 
 
-def design(brief: Brief, progress: Progress | None = None) -> Check | Refusal:
-    """Return the checked rig for a brief, or the refusal that says which limit leaves none.
+def design(brief: Brief, progress: Progress | None = None) -> HardwareCheck | Refusal:
+    """Return the whole rig for a brief, checked with its hardware, or the refusal that says which limit leaves none.
+
+    Raises
+    ------
+    InputError
+        Where the brief contradicts itself in a way that only its target or the rig that it keeps shows.
+    """
+    from rigdesign.target import build_target
+
+    return design_target(build_target(brief), progress)
+
+
+def design_target(target: Target, progress: Progress | None = None) -> HardwareCheck | Refusal:
+    """Like `design`, for a target that has been built already."""
+    from rigdesign.checks import check
+    from rigdesign.hardware import stock_line
+
+    rules = target.brief.hardware
+    if target.brief.keep is not None:
+        return _kept(target, progress)
+    arranged = arrange_target(target, _share(progress, 0.0, _RIG_PART), stock_line(target.brief))
+    if isinstance(arranged, Refusal):
+        return arranged
+    if rules.marks == "few":
+        from rigdesign.levers.marks import few_marks
+
+        few = few_marks(arranged.rig, rules.mark_tolerance)
+        arranged = check(few.rig)
+    return _equipped(arranged, _share(progress, _RIG_PART, 1.0))
+
+
+def _equipped(arranged: Check, progress: Progress | None) -> HardwareCheck:
+    """A checked rig with its hardware, checked."""
+    from rigdesign.checks.hardware import check_hardware
+    from rigdesign.hardware import build_hardware
+
+    return check_hardware(arranged, build_hardware(arranged.rig, progress))
+
+
+def _kept(target: Target, progress: Progress | None) -> HardwareCheck | Refusal:
+    """A rig whose steel is cut, with as few pivots drilled anew as the target asks for."""
+    raise NotImplementedError
+
+
+def arrange(brief: Brief, progress: Progress | None = None, stock: StockLine | None = None) -> Check | Refusal:
+    """Return pads and levers for a brief, checked, or the refusal that says which limit leaves none.
+
+    `stock` tells the grouping what levers weigh; without it the grouping is that of the least steel estimate.
 
     With `count = "fewest"` the pads stage says how many the bands need before drilling.  Where the drilled rig then
     breaks a band, up to `MORE_PADS` more pads are tried, and the best answer is returned.
@@ -75,19 +127,19 @@ def design(brief: Brief, progress: Progress | None = None) -> Check | Refusal:
     """
     from rigdesign.target import build_target
 
-    return design_target(build_target(brief), progress)
+    return arrange_target(build_target(brief), progress, stock)
 
 
-def design_target(target: Target, progress: Progress | None = None) -> Check | Refusal:
-    """Like `design`, for a target that has been built already."""
-    first = _design(target, None, progress)
+def arrange_target(target: Target, progress: Progress | None = None, stock: StockLine | None = None) -> Check | Refusal:
+    """Like `arrange`, for a target that has been built already."""
+    first = _arrange(target, None, progress, stock)
     if target.brief.pads.count == "fewest" and isinstance(first, Refusal) and first.stage == "levers":
-        return _most_that_levers_join(target, first, progress)
+        return _most_that_levers_join(target, first, progress, stock)
     if target.brief.pads.count != "fewest" or isinstance(first, Refusal) or first.accepted:
         return first
     best, planned = first, first.rig.plan.n_pads
     for count in range(planned + 1, planned + 1 + MORE_PADS):
-        answer = _design(target, count, progress, (_more_than_planned(planned, count),))
+        answer = _arrange(target, count, progress, stock, (_more_than_planned(planned, count),))
         if isinstance(answer, Refusal):
             break
         if answer.accepted:
@@ -97,7 +149,9 @@ def design_target(target: Target, progress: Progress | None = None) -> Check | R
     return best
 
 
-def _most_that_levers_join(target: Target, refusal: Refusal, progress: Progress | None) -> Check | Refusal:
+def _most_that_levers_join(
+    target: Target, refusal: Refusal, progress: Progress | None, stock: StockLine | None
+) -> Check | Refusal:
     """Return the rig with the most pads, below the number wanted, that levers can join; the refusal if none."""
     from rigdesign.pads import plan_pads
 
@@ -113,7 +167,7 @@ def _most_that_levers_join(target: Target, refusal: Refusal, progress: Progress 
             refusal.limit,
             refusal.remedy,
         )
-        answer = _design(target, count, progress, (remark,))
+        answer = _arrange(target, count, progress, stock, (remark,))
         if not isinstance(answer, Refusal):
             return answer
     return refusal
@@ -131,8 +185,12 @@ def _more_than_planned(planned: int, count: int) -> Finding:
     )
 
 
-def _design(
-    target: Target, count: int | None, progress: Progress | None, remarks: tuple[Finding, ...] = ()
+def _arrange(
+    target: Target,
+    count: int | None,
+    progress: Progress | None,
+    stock: StockLine | None = None,
+    remarks: tuple[Finding, ...] = (),
 ) -> Check | Refusal:
     """One rig for one number of pads, None for what the brief says; remarks join those of the plan."""
     from rigdesign.checks import check
@@ -143,7 +201,7 @@ def _design(
     if isinstance(plan, Refusal):
         return plan
     plan = replace(plan, findings=numbered((*plan.findings, *remarks)))
-    rig = build_rig(plan, _share(progress, _PADS_PART, 1.0))
+    rig = build_rig(plan, _share(progress, _PADS_PART, 1.0), stock)
     return rig if isinstance(rig, Refusal) else check(rig)
 
 
@@ -184,7 +242,7 @@ def study_target(target: Target, counts: Iterable[int], progress: Progress | Non
     for done, count in enumerate(wanted):
         part = _share(progress, done / len(wanted), (done + 1) / len(wanted))
         named = None if part is None else _named(part, f"{count} pads")
-        rows.append(StudyRow(count, _design(target, count, named)))
+        rows.append(StudyRow(count, _arrange(target, count, named)))
     return Study(target.brief, tuple(rows))
 
 

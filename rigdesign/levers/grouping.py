@@ -11,6 +11,7 @@ from rigdesign.brief.model import LeverRules
 from rigdesign.errors import BriefError
 from rigdesign.findings import Refusal
 from rigdesign.levers.neighbours import Best, Join, Stretches, added, best_tree, stacked, worst
+from rigdesign.levers.weighing import StockLine
 from rigdesign.levers.wiring import Levers, Wiring, from_grouping, ideal_levers, quotient
 from rigdesign.pads.model import PadPlan
 from rigdesign.target.curve import Floats
@@ -22,13 +23,13 @@ EMPTY_PAD = 1e-9
 """A pad with less than this fraction of the mean force carries nothing, and no lever can hold it."""
 
 
-def group_pads(plan: PadPlan) -> Wiring | Refusal:
+def group_pads(plan: PadPlan, stock: StockLine | None = None) -> Wiring | Refusal:
     """Join the pads of a plan by levers.
 
     Without a prescribed grouping, the neighbour grouping of least steel estimate
-    Σ (P·ab/(a+b))^(2/3)·(a+b) among all that keep ratio limit, shortest arm, longest lever and tiers; it is the
-    optimum, not a guess.  A prescribed one is obeyed and held to the same limits.  Raises BriefError where it names
-    the wrong pads.
+    Σ (P·ab/(a+b))^(2/3)·(a+b), or with a stock of least mass, among all that keep ratio limit, shortest arm, longest
+    lever and tiers; it is the optimum, not a guess.  A prescribed one is obeyed and held to the same limits.  Raises
+    BriefError where it names the wrong pads.
     """
     rules, x, force = plan.target.brief.levers, plan.x, np.abs(plan.force)
     empty = np.flatnonzero(force <= EMPTY_PAD * force.mean())
@@ -38,15 +39,16 @@ def group_pads(plan: PadPlan) -> Wiring | Refusal:
         return _prescribed(plan, rules)
     # shares rather than forces: twice the load must not decide a tie otherwise
     pads = Stretches(x, force / force.sum())
-    best = cheapest(pads, rules)
+    best = cheapest(pads, rules, None if stock is None else stock.scaled(float(force.sum()), 1.0))
     return best.wiring if best.wiring is not None else why_none(pads, rules)
 
 
-def cheapest(pads: Stretches, rules: LeverRules) -> Best:
-    """Neighbour grouping of least steel estimate within the limits."""
+def cheapest(pads: Stretches, rules: LeverRules, stock: StockLine | None = None) -> Best:
+    """Neighbour grouping of least steel estimate, or of least mass out of a stock, within the limits."""
 
     def own(length: int) -> Floats:
-        return np.where(allowed(*pads.arms(length), rules), pads.steel(length), np.inf)
+        value = pads.steel(length) if stock is None else pads.mass(length, stock)
+        return np.where(allowed(*pads.arms(length), rules), value, np.inf)
 
     best = best_tree(pads.x.size, own, added)
     if rules.tiers is None or (best.wiring is not None and best.wiring.depth <= rules.tiers):

@@ -14,6 +14,7 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
+from rigdesign.levers.weighing import StockLine
 from rigdesign.levers.wiring import Wiring, from_pairs
 from rigdesign.target.curve import Floats
 
@@ -104,10 +105,19 @@ class Stretches:
 
     def steel(self, length: int) -> Floats:
         """Steel estimate (P·ab/(a+b))^(2/3)·(a+b) of the same levers."""
+        span, bending = self._bending(length)
+        return np.cbrt(bending * bending) * span
+
+    def mass(self, length: int, stock: StockLine) -> Floats:
+        """Mass of the same levers out of a stock, whose moments are in units of this load times metres."""
+        span, bending = self._bending(length)
+        return np.asarray(stock.line_mass(bending) * (span + 2 * stock.overhang))
+
+    def _bending(self, length: int) -> tuple[Floats, Floats]:
+        """Distance between end holes and bending moment at the pivot P·ab/(a+b) of the same levers."""
         span = self.centroid.outboard(length) - self.centroid.inboard(length)
         inner, outer = self.load.inboard(length), self.load.outboard(length)
-        bending = span * inner * outer / (inner + outer)
-        return np.cbrt(bending * bending) * span
+        return span, span * inner * outer / (inner + outer)
 
 
 @dataclass(frozen=True)

@@ -14,7 +14,7 @@ import pytest
 from factories import make_acceptance, make_brief, make_levers, make_pads, shape_load
 from journey import ROOT
 
-from rigdesign.chain import design
+from rigdesign.chain import arrange
 from rigdesign.checks import check
 from rigdesign.findings import Refusal
 
@@ -60,7 +60,7 @@ def test_a_design_of_many_pads(n_pads):
     bands = make_acceptance(shear=None)
     brief = make_brief(pads=pads, levers=levers, acceptance=bands, loads=(shape_load("parabolic", 54_000.0),))
     start = time.perf_counter()
-    answer = design(brief)
+    answer = arrange(brief)
     seconds = time.perf_counter() - start
     words = answer.text if isinstance(answer, Refusal) else f"band use {answer.band_use:.4f}"
     print(f"\n{n_pads} pads designed and checked: {seconds:.2f} s ({words})")

@@ -15,11 +15,11 @@ from hypothesis import strategies as st
 
 from rigdesign.brief import brief_from_source
 from rigdesign.brief.model import Brief, Floats, Source
-from rigdesign.chain import design
+from rigdesign.chain import arrange
 from rigdesign.checks import check
 from rigdesign.checks.model import Check
 from rigdesign.findings import Refusal
-from rigdesign.report.rig_json import rig_from_json, rig_to_json
+from rigdesign.record.rig_json import rig_from_json, rig_to_json
 from rigdesign.report.tables import table_files
 
 few = settings(max_examples=4, deadline=None, suppress_health_check=list(HealthCheck), derandomize=True)
@@ -136,7 +136,7 @@ def draws(places: str | None = None, cut: str | None = None) -> st.SearchStrateg
 
 
 def designed(draw: Draw) -> Check:
-    answer = design(draw.brief())
+    answer = arrange(draw.brief())
     assume(not isinstance(answer, Refusal))
     assert isinstance(answer, Check)
     return answer
@@ -254,7 +254,7 @@ def on_a_line(surface: bool, stations: list[float], group: object, load: str) ->
         '[acceptance]\nmoment = "3 %"\nshear = "15 %"\n'
     )
     texts = {"drawn.toml": text, "outline.csv": "x [m],y [m]\n0.2,-0.3\n3.4,-0.3\n3.4,0.3\n0.2,0.3\n"}
-    answer = design(brief_from_source(Source("drawn.toml", texts)))
+    answer = arrange(brief_from_source(Source("drawn.toml", texts)))
     assume(not isinstance(answer, Refusal))
     assert isinstance(answer, Check)
     return answer

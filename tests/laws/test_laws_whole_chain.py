@@ -14,12 +14,12 @@ from hypothesis import strategies as st
 
 from rigdesign.brief import brief_from_source
 from rigdesign.brief.model import Brief, Source
-from rigdesign.chain import design
+from rigdesign.chain import arrange
 from rigdesign.checks import check
 from rigdesign.checks.model import Check
 from rigdesign.findings import Refusal
 from rigdesign.pads import PadPlan, plan_pads
-from rigdesign.report.rig_json import rig_from_json, rig_to_json
+from rigdesign.record.rig_json import rig_from_json, rig_to_json
 from rigdesign.report.tables import table_files
 from rigdesign.target import build_target
 
@@ -120,7 +120,7 @@ def draws(support: str | None = None, places: str | None = None, shear: bool | N
 
 
 def designed(draw: Draw) -> Check:
-    answer = design(draw.brief())
+    answer = arrange(draw.brief())
     assume(not isinstance(answer, Refusal))
     assert isinstance(answer, Check)
     return answer

@@ -15,7 +15,7 @@ from factories import array, band_rules, make_brief, make_levers, make_pads, mak
 from hand_plan_rigs import outline, pressure
 
 from rigdesign.brief.model import Acceptance, Brief
-from rigdesign.chain import design
+from rigdesign.chain import arrange
 from rigdesign.checks.model import Check
 
 LENGTH, WIDTH, PRESSURE = 2.4, 1.2, 1500.0  # m, m, Pa
@@ -40,7 +40,7 @@ def panel(side: int, plates: bool) -> Brief:
 
 @pytest.fixture(scope="module", params=[(2, False), (3, True), (3, False), (4, True)], ids=str)
 def found(request) -> Check:
-    answer = design(panel(*request.param))
+    answer = arrange(panel(*request.param))
     assert isinstance(answer, Check)
     return answer
 

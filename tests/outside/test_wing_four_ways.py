@@ -15,7 +15,7 @@ from factories import array, band_rules, make_levers
 from four_ways import AXES, SPAN, by_line, by_pressure, by_table, by_torque
 
 from rigdesign.brief.model import Acceptance
-from rigdesign.chain import design_target
+from rigdesign.chain import arrange_target
 from rigdesign.checks.model import Check
 from rigdesign.target import Target, build_target
 
@@ -48,7 +48,7 @@ def asked(described: Target) -> Target:
 
 @pytest.fixture(scope="module")
 def rigs() -> dict[str, Check]:
-    found = {name: design_target(asked(way(AXES["kinked"]))) for name, way in WAYS.items()}
+    found = {name: arrange_target(asked(way(AXES["kinked"]))) for name, way in WAYS.items()}
     assert all(isinstance(check, Check) for check in found.values())
     return found  # type: ignore[return-value]
 

@@ -13,7 +13,7 @@ from rigdesign.findings import Refusal
 
 
 def test_design_goes_from_brief_to_check():
-    answer = chain.design(make_brief())
+    answer = chain.arrange(make_brief())
     assert isinstance(answer, Check)
     assert answer.accepted
     assert answer.rig.plan.n_pads == 6
@@ -21,17 +21,17 @@ def test_design_goes_from_brief_to_check():
 
 
 def test_a_refusal_of_any_stage_comes_out_as_it_is():
-    weak = chain.design(make_brief(pads=make_pads(largest_force=500.0)))
+    weak = chain.arrange(make_brief(pads=make_pads(largest_force=500.0)))
     assert isinstance(weak, Refusal)
     assert weak.stage == "pads"
-    no_tree = chain.design(make_brief(levers=make_levers(longest=0.3)))
+    no_tree = chain.arrange(make_brief(levers=make_levers(longest=0.3)))
     assert isinstance(no_tree, Refusal)
     assert no_tree.stage == "levers"
 
 
 def test_fewest_is_the_first_count_whose_drilled_rig_is_accepted():
     brief = make_brief(pads=make_pads(count="fewest"))
-    answer = chain.design(brief)
+    answer = chain.arrange(brief)
     assert isinstance(answer, Check)
     rows = chain.study(brief, range(1, answer.rig.plan.n_pads + 1)).rows
     assert [row.accepted for row in rows] == [False] * (len(rows) - 1) + [True]
@@ -40,8 +40,8 @@ def test_fewest_is_the_first_count_whose_drilled_rig_is_accepted():
 def test_fewest_takes_one_pad_more_where_drilling_breaks_a_band():
     # holes on 100 mm cost more than the band leaves
     pads, narrow = make_pads(count="fewest", gap=0.0, length=0.02), make_acceptance(moment=0.005, shear=None)
-    fine = chain.design(make_brief(pads=pads, acceptance=narrow))
-    coarse = chain.design(make_brief(pads=pads, acceptance=narrow, levers=make_levers(drill_step=0.1)))
+    fine = chain.arrange(make_brief(pads=pads, acceptance=narrow))
+    coarse = chain.arrange(make_brief(pads=pads, acceptance=narrow, levers=make_levers(drill_step=0.1)))
     assert isinstance(fine, Check)
     assert isinstance(coarse, Check)
     assert coarse.accepted
@@ -57,7 +57,7 @@ def test_fewest_gives_the_best_where_more_pads_do_not_help_either(monkeypatch):
         return _Answer(4 if count is None else count)
 
     monkeypatch.setattr(chain, "_design", never_good)
-    answer = chain.design(make_brief(pads=make_pads(count="fewest")))
+    answer = chain.arrange(make_brief(pads=make_pads(count="fewest")))
     assert tried == [None, *range(5, 5 + chain.MORE_PADS)]
     assert answer.rig.plan.n_pads == 6
 
@@ -81,7 +81,7 @@ def test_study_keeps_the_order_and_says_the_fewest():
     assert study.fewest is not None
     assert study.fewest.pads == min(accepted)
     # a row is what a brief with that count gives
-    alone = chain.design(make_brief(pads=make_pads(count=5)))
+    alone = chain.arrange(make_brief(pads=make_pads(count=5)))
     assert isinstance(alone, Check)
     assert study.rows[1].answer.moment_error_peak == alone.moment_error_peak
 
@@ -115,7 +115,7 @@ def test_progress_goes_from_nothing_to_all_and_never_back():
 
 
 def test_assess_as_it_is_and_against_another_target():
-    answer = chain.design(make_brief())
+    answer = chain.arrange(make_brief())
     assert isinstance(answer, Check)
     again = chain.assess(answer.rig)
     np.testing.assert_array_equal(again.statics.pad_force, answer.statics.pad_force)
@@ -127,7 +127,7 @@ def test_assess_as_it_is_and_against_another_target():
 
 
 def test_assess_with_holes_and_another_target_at_once(tmp_path):
-    answer = chain.design(make_brief())
+    answer = chain.arrange(make_brief())
     assert isinstance(answer, Check)
     lever = answer.rig.trees[0].pieces[0]
     holes = tmp_path / "built.csv"
@@ -144,7 +144,7 @@ def test_fewest_that_levers_cannot_join_gives_the_most_that_they_can():
         levers=make_levers(shortest_arm=0.12),
         acceptance=make_acceptance(moment=0.0005, shear=None),
     )
-    answer = chain.design(brief)
+    answer = chain.arrange(brief)
     assert not isinstance(answer, Refusal)
     assert not answer.accepted
     finding = next(f for f in answer.findings if f.stage == "levers" and f.severity == "failure")

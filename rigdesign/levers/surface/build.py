@@ -6,7 +6,7 @@ from dataclasses import replace
 
 import numpy as np
 
-from rigdesign.display import counted, show_steel
+from rigdesign.display import counted, show, show_steel
 from rigdesign.findings import Finding, Refusal, numbered
 from rigdesign.levers.drilled import REACH
 from rigdesign.levers.grouping import millimetres
@@ -16,6 +16,7 @@ from rigdesign.levers.surface.drilling import DrilledInPlan, drill_in_plan
 from rigdesign.levers.surface.grouping import Grouped, group_in_plan
 from rigdesign.levers.surface.pieces import tree_in_plan
 from rigdesign.levers.surface.wiring import Branches, branches_of
+from rigdesign.levers.weighing import StockLine
 from rigdesign.pads.model import PadPlan
 from rigdesign.pads.outcome import Progress
 
@@ -26,7 +27,7 @@ RATIO_MARGIN = 0.02
 """Part of the ratio limit that goes with each of these steps."""
 
 
-def build_in_plan(plan: PadPlan, progress: Progress | None = None) -> Rig | Refusal:
+def build_in_plan(plan: PadPlan, progress: Progress | None = None, stock: StockLine | None = None) -> Rig | Refusal:
     """Join the pads of a plan in plan by levers and plates, and drill them; see `rigdesign.levers.build_rig`.
 
     Where drilling brings pieces of one tier closer than the clearance, a tree with more room between them is looked
@@ -38,24 +39,24 @@ def build_in_plan(plan: PadPlan, progress: Progress | None = None) -> Rig | Refu
             progress(0.6 * part, "grouping")
 
     grouping(0.0)
-    grouped = group_in_plan(plan, progress=grouping)
+    grouped = group_in_plan(plan, progress=grouping, stock=stock)
     if isinstance(grouped, Refusal):
         return grouped
-    rig = _drilled(plan, grouped)
+    rig = _drilled(plan, grouped, stock)
     for margin in MARGINS if plan.target.brief.levers.grouping is None else ():
         if not isinstance(rig, Refusal):
             break
         # the best tree stands so close to a limit that no holes on the drill step keep it: one with room is asked for
-        roomier = group_in_plan(_with_margin(plan, margin), progress=grouping)
+        roomier = group_in_plan(_with_margin(plan, margin), progress=grouping, stock=stock)
         if not isinstance(roomier, Refusal):
-            grouped, rig = roomier, _drilled(plan, roomier, margin)
+            grouped, rig = roomier, _drilled(plan, roomier, stock, margin)
     if isinstance(rig, Refusal):
         return rig
     rules = plan.target.brief.levers
     if not grouped.clashes and rig.findings and rules.grouping is None:
-        roomy = group_in_plan(plan, rules.clearance + 2 * REACH * rules.drill_step, grouping)
+        roomy = group_in_plan(plan, rules.clearance + 2 * REACH * rules.drill_step, grouping, stock)
         if not isinstance(roomy, Refusal) and not roomy.clashes:
-            again = _drilled(plan, roomy)
+            again = _drilled(plan, roomy, stock)
             if not isinstance(again, Refusal) and not again.findings:
                 rig = again
     if progress is not None:
@@ -76,7 +77,7 @@ def _with_margin(plan: PadPlan, steps: int) -> PadPlan:
     return replace(plan, target=replace(plan.target, brief=replace(brief, levers=closer)))
 
 
-def _drilled(plan: PadPlan, grouped: Grouped, margin: int = 0) -> Rig | Refusal:
+def _drilled(plan: PadPlan, grouped: Grouped, stock: StockLine | None, margin: int = 0) -> Rig | Refusal:
     """The rig of one grouping, which kept limits closer by so many drill steps than the brief's."""
     step = plan.target.brief.levers.drill_step / grouped.maker.field.extent
     branches = branches_of(grouped.root, plan.n_pads, step)
@@ -85,7 +86,7 @@ def _drilled(plan: PadPlan, grouped: Grouped, margin: int = 0) -> Rig | Refusal:
         return drilled
     tree = tree_in_plan(branches, drilled.hung, float(plan.force.sum()))
     findings = numbered(_findings(plan, grouped, tree))
-    words = _words(plan, grouped, branches, drilled)
+    words = _words(plan, grouped, branches, drilled, stock)
     if margin:
         closer = counted(margin, "drill step")
         words += f"; grouped with limits {closer} closer than the brief's, so that drilling keeps these"
@@ -135,15 +136,18 @@ def _findings(plan: PadPlan, grouped: Grouped, tree: Tree) -> list[Finding]:
     ]
 
 
-def _words(plan: PadPlan, grouped: Grouped, branches: Branches, drilled: DrilledInPlan) -> str:
-    return f"{_grouping_words(plan, grouped, branches)}; {drilled.words}"
+def _words(plan: PadPlan, grouped: Grouped, branches: Branches, drilled: DrilledInPlan, stock: StockLine | None) -> str:
+    return f"{_grouping_words(plan, grouped, branches, stock)}; {drilled.words}"
 
 
-def _grouping_words(plan: PadPlan, grouped: Grouped, branches: Branches) -> str:
+def _grouping_words(plan: PadPlan, grouped: Grouped, branches: Branches, stock: StockLine | None) -> str:
     """What the search for a grouping did, and what is proven of it."""
     if not branches.n_pieces:
         return grouped.words
-    steel = f"steel estimate {show_steel(grouped.steel)} before drilling"
+    if stock is None:
+        steel = f"steel estimate {show_steel(grouped.steel)} before drilling"
+    else:
+        steel = f"{show(grouped.mass(stock), 'mass')} of pieces from stock, each arm weighed as a lever's"
     head = f"{_counted(branches)} in {_tiers(branches.depth)}, {steel}"
     if plan.target.brief.levers.grouping is not None:
         return f"grouping: as prescribed, {head}"

@@ -17,6 +17,7 @@ from rigdesign.levers.surface.repair import CLASH, Repair
 from rigdesign.levers.surface.search import Search, clash_count, first_tree
 from rigdesign.levers.surface.subsets import BROKEN, Problem, partners, steel_rule
 from rigdesign.levers.surface.wiring import node_of_grouping
+from rigdesign.levers.weighing import StockLine
 from rigdesign.pads.model import PadPlan
 
 EXACT, EXACT_PLATES = 14, 13
@@ -49,6 +50,11 @@ class Grouped:
         """Steel estimate before drilling [N^(2/3)·m^(5/3)]."""
         return self.maker.steel(self.root) * self.maker.field.steel_unit
 
+    def mass(self, stock: StockLine) -> float:
+        """Mass of the pieces out of the stock that the grouping went by [kg]."""
+        field = self.maker.field
+        return self.maker.steel(self.root) * stock.mass_unit(field.total * field.extent, field.extent)
+
     @property
     def lonely(self) -> int:
         """How many pads hang without a partner."""
@@ -61,16 +67,22 @@ class Grouped:
 
 
 def group_in_plan(
-    plan: PadPlan, clearance: float | None = None, progress: Callable[[float], None] | None = None
+    plan: PadPlan,
+    clearance: float | None = None,
+    progress: Callable[[float], None] | None = None,
+    stock: StockLine | None = None,
 ) -> Grouped | Refusal:
     """Join the pads of a plan by levers and plates.
 
-    `clearance` [m] replaces the brief's.  Raises BriefError where a prescribed grouping names the wrong pads.
+    `clearance` [m] replaces the brief's; `stock` is what pieces weigh, without it the steel estimate counts.  Raises
+    BriefError where a prescribed grouping names the wrong pads.
     """
     field, rules = field_of(plan), plan.target.brief.levers
     limits = limits_of(rules, field.extent)
     if clearance is not None:
         limits = replace(limits, clearance=clearance / field.extent)
+    if stock is not None:
+        limits = replace(limits, stock=stock.scaled(field.total * field.extent, field.extent))
     empty = np.flatnonzero(field.share <= EMPTY_PAD / field.n_pads)
     if empty.size and plan.n_pads > 1:
         return empty_pad(int(empty[0]) + 1)

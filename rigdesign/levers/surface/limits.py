@@ -13,6 +13,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rigdesign.brief.model import LeverRules
+from rigdesign.levers.weighing import StockLine
 from rigdesign.pads.model import PadPlan
 from rigdesign.target.curve import Floats
 
@@ -65,7 +66,7 @@ class Limits:
 
     `least` is the length below which an arm is none: a drill step.  `ratio` is that of levers alone; `shortest` holds
     for arms of levers and for the distances of a plate's points from its pivot, `longest` for the largest distance
-    between two outer holes.
+    between two outer holes.  `stock` is what pieces weigh, scaled as they are; None: the steel estimate.
     """
 
     ratio: float
@@ -76,6 +77,13 @@ class Limits:
     plates: bool
     pair: str
     clearance: float
+    stock: StockLine | None = None
+
+    def steel(self, load: Floats, r: Floats) -> Floats:
+        """Steel of a piece from its pivot to an end at a distance r that bears `load`, any shape."""
+        if self.stock is not None:
+            return self.stock.side_mass(load * r, r)
+        return np.asarray(np.cbrt((load * r) ** 2) * r)
 
     def without(self, key: str) -> Limits:
         """The same with one limit lifted, by its key in the brief."""

@@ -85,11 +85,18 @@ class Maker:
     def own_value(self, kids: tuple[Node, ...], x: float, y: float) -> float:
         """Steel of one piece with its pivot at x, y, and what it adds for lonely pads and broken limits."""
         reach = _reach(kids, x, y)
-        return _steel(kids, reach) + BROKEN * self._broken(kids, reach) + LONELY * self._lonely(kids)
+        return self._steel(kids, reach) + BROKEN * self._broken(kids, reach) + LONELY * self._lonely(kids)
 
     def steel(self, root: Node) -> float:
         """Steel of a tree alone."""
-        return sum(_steel(node.kids, _reach(node.kids, node.x, node.y)) for node, _ in root.pieces())
+        return sum(self._steel(node.kids, _reach(node.kids, node.x, node.y)) for node, _ in root.pieces())
+
+    def _steel(self, kids: tuple[Node, ...], reach: list[float]) -> float:
+        """Steel of one piece."""
+        pairs = zip(kids, reach, strict=True)
+        if self.limits.stock is None:  # the same as `limits.steel`, without arrays: a search asks a million times
+            return sum(cbrt((kid.load * r) ** 2) * r for kid, r in pairs)
+        return sum(self.limits.stock.side_mass_of(kid.load * r, r) for kid, r in pairs)
 
     def lonely(self, root: Node) -> int:
         """How many pads of a tree hang without a partner."""
@@ -129,11 +136,6 @@ class Maker:
 def _reach(kids: tuple[Node, ...], x: float, y: float) -> list[float]:
     """Distances of a piece's ends from its pivot at x, y."""
     return [hypot(kid.x - x, kid.y - y) for kid in kids]
-
-
-def _steel(kids: tuple[Node, ...], reach: list[float]) -> float:
-    """Steel of one piece."""
-    return sum(cbrt((kid.load * r) ** 2) * r for kid, r in zip(kids, reach, strict=True))
 
 
 def items_of(nodes: list[Node]) -> Items:

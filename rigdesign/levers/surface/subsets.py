@@ -93,7 +93,7 @@ def steel_rule(limits: Limits) -> Rule:
     """Steel, and what broken limits add to it."""
 
     def link(load: Floats, r: Floats) -> Floats:
-        steel = np.cbrt((load * r) ** 2) * r
+        steel = limits.steel(load, r)
         return np.asarray(steel + BROKEN * (r < limits.shortest) if limits.shortest > 0 else steel)
 
     def lever(ratio: Floats, length: Floats) -> Floats:

@@ -10,7 +10,7 @@ from factories import make_brief, make_levers, make_pads
 from hand_rigs import make_rig, with_hole
 
 from rigdesign import checks
-from rigdesign.chain import design
+from rigdesign.chain import arrange
 from rigdesign.checks.model import Check
 from rigdesign.command import progress as bars
 from rigdesign.command.terminal import PLAIN_WIDTH, Terminal, wrapped
@@ -19,7 +19,7 @@ from rigdesign.command.terminal import PLAIN_WIDTH, Terminal, wrapped
 @pytest.fixture(scope="module")
 def check() -> Check:
     """A checked rig of five pads."""
-    answer = design(make_brief(pads=make_pads(count=5, width=0.2), levers=make_levers(drill_step=0.0005)))
+    answer = arrange(make_brief(pads=make_pads(count=5, width=0.2), levers=make_levers(drill_step=0.0005)))
     assert isinstance(answer, Check)
     return answer
 

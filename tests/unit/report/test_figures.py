@@ -12,7 +12,7 @@ from factories import make_brief, make_pads, make_specimen, make_weight, shape_l
 from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.text import Text
 
-from rigdesign.chain import Study, StudyRow, design
+from rigdesign.chain import Study, StudyRow, arrange
 from rigdesign.findings import Refusal
 from rigdesign.report import figures_sheet
 from rigdesign.report.figures_curves import shear_and_moment
@@ -27,7 +27,7 @@ LOADS = (shape_load("triangular", 5100.0), shape_load("sine", -900.0, start_x=1.
 
 def checked(n_pads: int, **changes):
     changes = {"specimen": make_specimen(weight=WEIGHT), "loads": LOADS, "peak": 1.5, **changes}
-    answer = design(make_brief(pads=make_pads(count=n_pads, length=0.03), **changes))
+    answer = arrange(make_brief(pads=make_pads(count=n_pads, length=0.03), **changes))
     assert not isinstance(answer, Refusal)
     return answer
 
@@ -145,7 +145,7 @@ def test_pad_forces_are_drawn_to_scale():
 
 def test_a_study_shows_rigs_and_refusals():
     brief = make_brief(pads=make_pads(count=3))
-    rows = [StudyRow(n, design(make_brief(pads=make_pads(count=n)))) for n in (1, 2, 3, 5, 8)]
+    rows = [StudyRow(n, arrange(make_brief(pads=make_pads(count=n)))) for n in (1, 2, 3, 5, 8)]
     none = Refusal("pads", "9 pads do not fit", "footprint 400 mm", "8 pads", "fewer")
     study = Study(brief, (*rows, StudyRow(9, none)))
     figure = study_sheet(study)

@@ -8,7 +8,7 @@ import numpy as np
 import pytest
 from factories import make_acceptance, make_brief, make_pads, make_specimen, make_weight, shape_load
 
-from rigdesign.chain import design
+from rigdesign.chain import arrange
 from rigdesign.checks.model import Check
 from rigdesign.checks.text import percent
 from rigdesign.display import show
@@ -18,7 +18,7 @@ from rigdesign.report.sentences import answer, counted, error_line, finding_line
 
 
 def checked(**changes) -> Check:
-    result = design(make_brief(**changes))
+    result = arrange(make_brief(**changes))
     assert isinstance(result, Check)
     return result
 

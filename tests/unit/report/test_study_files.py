@@ -7,7 +7,7 @@ import json
 
 from factories import make_brief, make_pads
 
-from rigdesign.chain import Study, StudyRow, design
+from rigdesign.chain import Study, StudyRow, arrange
 from rigdesign.checks.model import Check
 from rigdesign.findings import Refusal
 from rigdesign.report.study_files import COLUMNS, study_csv, study_files, study_object
@@ -16,7 +16,7 @@ REFUSAL = Refusal("pads", "=SUM of 9 pads, too many", 'a "footprint" of 400 mm',
 
 
 def a_study() -> Study:
-    rows = [StudyRow(count, design(make_brief(pads=make_pads(count=count)))) for count in (2, 4, 6)]
+    rows = [StudyRow(count, arrange(make_brief(pads=make_pads(count=count)))) for count in (2, 4, 6)]
     return Study(make_brief(), (*rows, StudyRow(9, REFUSAL)))
 
 

@@ -10,7 +10,7 @@ from hand_rigs import make_rig, with_hole
 from matplotlib.textpath import TextPath
 
 from rigdesign import checks
-from rigdesign.chain import design
+from rigdesign.chain import arrange
 from rigdesign.findings import Refusal
 from rigdesign.report.figures_parts import MARK
 from rigdesign.report.figures_sheet import MM_PER_POINT, SMALLEST_FONT, spread, text_width
@@ -22,7 +22,7 @@ CLEAR = 0.15
 
 
 def checked(n_pads: int, **changes):
-    answer = design(make_brief(pads=make_pads(count=n_pads, length=0.01, gap=0.005), **changes))
+    answer = arrange(make_brief(pads=make_pads(count=n_pads, length=0.01, gap=0.005), **changes))
     assert not isinstance(answer, Refusal)
     return answer
 
@@ -110,7 +110,7 @@ def test_levers_that_lie_over_one_another_get_lanes_of_their_own():
 @pytest.mark.parametrize("action", ["pull", "push"])
 @pytest.mark.parametrize("total", [5400.0, -5400.0])
 def test_the_tree_stands_on_the_side_that_the_pads_act_on(action, total):
-    answer = design(make_brief(pads=make_pads(count=3, action=action), loads=(shape_load("triangular", total),)))
+    answer = arrange(make_brief(pads=make_pads(count=3, action=action), loads=(shape_load("triangular", total),)))
     assert not isinstance(answer, Refusal)
     figure = elevation(answer)
     texts = {text.get_text(): text.get_position()[1] for text in figure.axes[0].texts}
@@ -143,7 +143,7 @@ def test_spread_moves_crowded_places_and_no_others():
 
 def test_a_specimen_far_from_the_origin_is_drawn_on_the_sheet():
     specimen = make_specimen(left=40.2, right=43.4)
-    answer = design(make_brief(specimen=specimen, loads=(shape_load(start_x=40.2, end_x=43.4),)))
+    answer = arrange(make_brief(specimen=specimen, loads=(shape_load(start_x=40.2, end_x=43.4),)))
     assert not isinstance(answer, Refusal)
     layout = plan_sheet(answer)
     assert 0 < min(layout.pad_x) < max(layout.pad_x) < layout.size[0]
