@@ -11,7 +11,6 @@ from __future__ import annotations
 
 import csv
 import io
-import json
 import math
 from collections.abc import Iterable, Sequence
 from typing import Any
@@ -22,8 +21,8 @@ from rigdesign.checks.measures import dot, length, ratio
 from rigdesign.checks.model import Check, Curves
 from rigdesign.checks.remarks_practice import pressures
 from rigdesign.checks.text import UNIT_KIND
-from rigdesign.findings import Finding
 from rigdesign.levers.model import Piece
+from rigdesign.record.objects import finding_object, json_bytes
 
 Cell = str | int | float | None
 FORMULA_STARTS = ("=", "+", "-", "−", "@", "\t", "\r", "\n")
@@ -72,11 +71,6 @@ def cell(value: Cell) -> str:
         return str(value)
     # + 0.0 turns a negative zero into zero
     return f"{float(value) + 0.0:.{DIGITS}g}" if math.isfinite(value) else ""
-
-
-def json_bytes(value: Any) -> bytes:
-    """Return JSON for people and programs: indented, keys in their own order, letters as they are."""
-    return (json.dumps(value, indent=2, ensure_ascii=False, allow_nan=False) + "\n").encode()
 
 
 def pads_csv(check: Check) -> bytes:
@@ -271,20 +265,6 @@ def _rig_part(check: Check) -> dict[str, Any]:
         "sum_residual": check.sum_residual,
         "moment_sum_residual": check.moment_sum_residual,
         "findings": [finding_object(finding) for finding in check.findings],
-    }
-
-
-def finding_object(finding: Finding) -> dict[str, Any]:
-    """Return a finding as an object for JSON."""
-    return {
-        "stage": finding.stage,
-        "number": finding.number,
-        "severity": finding.severity,
-        "object": finding.object,
-        "text": finding.text,
-        "value": finding.value,
-        "limit": finding.limit,
-        "remedy": finding.remedy,
     }
 
 

@@ -57,7 +57,7 @@ def write(
 
 def rig_files(check: Check, *, figures: bool = True, png: bool = False, system: System = "SI") -> dict[str, bytes]:
     """Return every file of the rig folder by name."""
-    from rigdesign.report.rig_json import rig_to_json
+    from rigdesign.record.rig_json import rig_to_json
     from rigdesign.report.tables import table_files
 
     files = {"rig.json": rig_to_json(check).encode(), **table_files(check)}
@@ -110,7 +110,7 @@ def read_rig(path: str | os.PathLike[str]) -> Rig:
     InputError
         If there is no rig at this path, or it cannot be read.
     """
-    from rigdesign.report.rig_json import rig_from_json
+    from rigdesign.record.rig_json import rig_from_json
 
     place = Path(path)
     file = place / "rig.json" if place.is_dir() else place

@@ -13,7 +13,7 @@ import rigdesign
 
 PACKAGE = Path(rigdesign.__file__).parent
 UNDER_ALL = {"units", "unit_factors", "display", "errors", "findings", "words"}
-STAGES = ["brief", "target", "pads", "levers", "checks", "chain", "report", "command"]
+STAGES = ["brief", "target", "pads", "levers", "hardware", "checks", "record", "chain", "report", "command"]
 SHOWN_ONLY = {"matplotlib", "rich", "click"}
 COUNTERS = {"Count", "Session"}
 """Dataclasses that one search or one run fills as it goes; they are never handed on."""
@@ -68,7 +68,7 @@ def test_every_dataclass_is_frozen(path):
         ("rigdesign.command.commands", {"numpy", "scipy", "matplotlib", "rich"}),
         ("rigdesign.checks", {"pydantic", "pint", *SHOWN_ONLY}),
         ("rigdesign.report.writing", {"numpy", "matplotlib"}),
-        ("rigdesign.report.rig_json", {"matplotlib", "rich", "click"}),
+        ("rigdesign.record.rig_json", {"matplotlib", "rich", "click"}),
     ],
 )
 def test_what_an_import_does_not_load(module, heavy):

@@ -20,7 +20,7 @@ from rigdesign.chain import Study, StudyRow
 from rigdesign.checks import check, check_with_holes
 from rigdesign.command.terminal import Terminal
 from rigdesign.errors import InputError
-from rigdesign.report.rig_json import rig_from_json, rig_to_json
+from rigdesign.record.rig_json import rig_from_json, rig_to_json
 from rigdesign.report.sentences import answer, verdict
 from rigdesign.report.study_files import study_csv, study_object
 from rigdesign.report.tables import holes_csv, summary, table_files

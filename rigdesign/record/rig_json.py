@@ -36,12 +36,11 @@ from rigdesign.errors import InputError
 from rigdesign.findings import Finding, Severity, Stage
 from rigdesign.levers.model import Hole, HoleName, Jack, Piece, Rig, Tree
 from rigdesign.pads.model import PadPlan, Proof
-from rigdesign.report.rig_fields import Fields, read_object
-from rigdesign.report.tables import finding_object, json_bytes
+from rigdesign.record.fields import Fields, read_object
+from rigdesign.record.objects import INFINITE, finding_object, json_bytes, number_object
 from rigdesign.target.model import Target
 from rigdesign.words import SCHEMA_NUMBER
 
-INFINITE = "infinite"
 _PROOF_NUMBERS = ("band_use", "band_use_least", "moment_error_least", "evenness", "evenness_before", "band_use_found")
 
 
@@ -69,7 +68,7 @@ def rig_to_json(check: Check) -> str:
                 "verdict": "accepted" if check.accepted else "not accepted",
                 "moment_error_peak": check.moment_error_peak,
                 "shear_error_peak": check.shear_error_peak,
-                "band_use": _number(check.band_use),
+                "band_use": number_object(check.band_use),
                 **({"torsion_error_peak": check.torsion_error_peak} if is_surface else {}),
             },
         }
@@ -87,12 +86,8 @@ def _pad_objects(check: Check) -> list[dict[str, Any]]:
 
 
 def _proof_object(proof: Proof) -> dict[str, Any]:
-    numbers = {name: _number(getattr(proof, name)) for name in _PROOF_NUMBERS}
+    numbers = {name: number_object(getattr(proof, name)) for name in _PROOF_NUMBERS}
     return {**numbers, "method": proof.method, "words": proof.words}
-
-
-def _number(value: float) -> float | str:
-    return INFINITE if value == math.inf else float(value)
 
 
 def _tree_object(tree: Tree, check: Check) -> dict[str, Any]:

@@ -17,7 +17,7 @@ from rigdesign.checks import check
 from rigdesign.checks.measures import hand_pads
 from rigdesign.errors import InputError
 from rigdesign.findings import Finding
-from rigdesign.report.rig_json import rig_from_json, rig_to_json
+from rigdesign.record.rig_json import rig_from_json, rig_to_json
 from rigdesign.target import build_target
 
 BRIEF = """\
