@@ -8,6 +8,7 @@ from typing import Literal
 
 from rigdesign.brief.context import Context, between
 from rigdesign.brief.hardware import hardware
+from rigdesign.brief.keep import kept
 from rigdesign.brief.layout import AcceptanceTable, Bands, BriefFile, JackTable, LeversTable
 from rigdesign.brief.loads import load, stretch
 from rigdesign.brief.messages import is_plan
@@ -39,6 +40,8 @@ def build(file: BriefFile, context: Context) -> Brief:
     piece = specimen(file.specimen, context)
     loads = tuple(load(entry, number, piece, context) for number, entry in enumerate(file.load))
     rules = pads(file.pads, piece, context)
+    steel = hardware(file.hardware, rules, piece, context)
+    keep = kept(file.keep, context)
     name = context.places.name
     return Brief(
         title=file.title or PurePath(name).stem,
@@ -49,8 +52,9 @@ def build(file: BriefFile, context: Context) -> Brief:
         levers=_levers(file.levers, rules, piece, context),
         jack=_jack(file.jack, piece, context),
         acceptance=_acceptance(file.acceptance, piece, context),
-        source=Source(name, context.texts.used()),
-        hardware=hardware(file.hardware, context),
+        source=Source(name, context.texts.used()),  # after all that reads tables
+        hardware=steel,
+        keep=keep,
     )
 
 

@@ -56,10 +56,12 @@ class Context:
         *,
         repeats: Repeats = "none",
         optional: dict[str, str] | None = None,
+        blank: frozenset[str] = frozenset(),
     ) -> CsvTable:
         """Read the table that the key at `path` names."""
         text = self.texts.table(name, self.places.where(*path))
-        return read_table(text, name, kinds, repeats=repeats, optional=optional, plan=is_plan(self.raw))
+        plan = is_plan(self.raw)
+        return read_table(text, name, kinds, repeats=repeats, optional=optional, plan=plan, blank=blank)
 
     def station(self, x: float, specimen: Specimen, *path: str | int, what: str = "the station") -> float:
         """Return a station that lies on the specimen, moved onto its end if only rounding parts them."""

@@ -27,11 +27,15 @@ NAME = "name"
 
 @dataclass(frozen=True)
 class Known:
-    """The columns that a table must and may have, with their kinds, and whether the brief is one of a plan rig."""
+    """The columns that a table must and may have, with their kinds, and whether the brief is one of a plan rig.
+
+    `blank` names those whose cells may be empty.
+    """
 
     kinds: dict[str, str]
     optional: dict[str, str]
     plan: bool
+    blank: frozenset[str] = frozenset()
 
     @property
     def every(self) -> dict[str, str]:

@@ -10,9 +10,6 @@ from rigdesign.brief.surface import fields as plan
 PIN_SERIES = "5, 6, 8, 10, 12, 14, 16, 18, 20, 22, 24, 27, 30, 33, 36, 40, 45, 50, 55, 60, 70, 80, 90, 100 mm"
 """Diameters of clevis pins of ISO 2341 from 5 mm on."""
 
-BTH_KEYS = ("design_factor", "over_people")
-"""Keys that only the rules BTH-1 have."""
-
 
 class HardwareTable(Table):
     """What the rig is made of; every key has a default."""

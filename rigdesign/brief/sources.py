@@ -19,6 +19,9 @@ class Texts(Protocol):
     def table(self, name: str, where: str) -> str:
         """Return the text of the table `name`, named by the brief at `where`."""
 
+    def rig(self, folder: str, name: str, where: str) -> str:
+        """Return the text `name` of a rig in `folder`, named by the brief at `where`."""
+
     def used(self) -> dict[str, str]:
         """Return the texts given so far by name, the brief's own among them."""
 
@@ -37,23 +40,34 @@ class FolderTexts:
     def table(self, name: str, where: str) -> str:
         """Return the text of a table; raise BriefError if it lies outside, TableError if it cannot be read."""
         if name not in self._texts:
-            self._texts[name] = _read(self._inside(name, where), name, TableError, where, what="the table")
+            path = self._inside(
+                name, where, "the table", "copy it beside the brief, so that the folder holds all of it"
+            )
+            self._texts[name] = _read(path, name, TableError, where, what="the table")
+        return self._texts[name]
+
+    def rig(self, folder: str, name: str, where: str) -> str:
+        """Return the text of a rig that lies in a folder; raise BriefError if there is none, or it lies outside."""
+        if name not in self._texts:
+            path = self._inside(folder, where, "the kept rig", "copy its folder beside the brief")
+            _check_rig(path, folder, Path(name).name, where)
+            self._texts[name] = _read(path / Path(name).name, name, BriefError, where, what="the kept rig")
         return self._texts[name]
 
     def used(self) -> dict[str, str]:
         """Return the texts read so far by name."""
         return dict(self._texts)
 
-    def _inside(self, name: str, where: str) -> Path:
-        """Return the path of a table, which must stay inside the brief's folder as it is written."""
+    def _inside(self, name: str, where: str, what: str, remedy: str) -> Path:
+        """Return the path of a table or folder, which must stay inside the brief's folder as it is written."""
         home = os.path.abspath(self.folder)
         path = os.path.normpath(os.path.join(home, name))
         if "\0" in name or os.path.commonpath([home, path]) != home:
             raise BriefError(
-                "the table lies outside the folder of the brief",
+                f"{what} lies outside the folder of the brief",
                 where=where,
                 value=f'"{name}"',
-                remedy="copy it beside the brief, so that the folder holds all of it",
+                remedy=remedy,
             )
         return Path(path)
 
@@ -73,9 +87,31 @@ class KeptTexts:
             raise TableError("the text of this table is not among those kept", where=where, value=f'"{name}"')
         return self._source.texts[name]
 
+    def rig(self, folder: str, name: str, where: str) -> str:
+        """Return the text of a rig; raise BriefError if it was not kept."""
+        if name not in self._source.texts:
+            raise BriefError("the text of this rig is not among those kept", where=where, value=f'"{name}"')
+        return self._source.texts[name]
+
     def used(self) -> dict[str, str]:
         """Return the texts kept."""
         return dict(self._source.texts)
+
+
+def _check_rig(path: Path, folder: str, file: str, where: str) -> None:
+    """Raise BriefError unless the path is a folder that holds a rig's file."""
+    # os.path answers "no" to names that no file can have, where a Path's own methods raise
+    if os.path.isfile(path):
+        home = os.path.dirname(folder) or "."
+        remedy = f'write rig = "{home}"' if path.name == file else ""
+        what = "a kept rig is named by its folder, and this is a file"
+        raise BriefError(what, where=where, value=f'"{folder}"', remedy=remedy)
+    if not os.path.isdir(path):
+        what = "the folder of the kept rig does not exist"
+        raise BriefError(what, where=where, value=f'"{folder}"', remedy=_near(path))
+    if not os.path.exists(path / file):
+        what, remedy = f"the folder holds no {file}, so it is no rig", 'name a folder that "rigdesign design" wrote'
+        raise BriefError(what, where=where, value=f'"{folder}"', remedy=remedy)
 
 
 def _read(path: Path, name: str, error: type[InputError], where: str, *, what: str) -> str:

@@ -50,7 +50,11 @@ class CsvTable:
 
     def where(self, row: int) -> str:
         """The place of a row for a message."""
-        return f"{self.name}, line {self._printed[1][row]}"
+        return f"{self.name}, line {self.line(row)}"
+
+    def line(self, row: int) -> int:
+        """The line of a row."""
+        return self._printed[1][row]
 
     def cell(self, column: str, row: int) -> str:
         """A cell for a message, "x = 12.5 in"."""
@@ -76,6 +80,7 @@ def read_table(
     repeats: Repeats,
     optional: dict[str, str] | None = None,
     plan: bool = False,
+    blank: frozenset[str] = frozenset(),
 ) -> CsvTable:
     """Read a table.
 
@@ -91,13 +96,15 @@ def read_table(
         Columns that may be there, with their kinds.
     plan
         Whether the brief is one of a plan rig; otherwise columns that only these have are answered as such.
+    blank
+        Columns whose cells may be empty, which reads as NaN.
 
     Raises
     ------
     TableError
         With the line, the column, the value and what to do.
     """
-    columns_known = Known(kinds, optional or {}, plan)
+    columns_known = Known(kinds, optional or {}, plan, blank)
     values, heading = _quickly(text, name, columns_known) or _row_by_row(text, name, columns_known)
     columns = {}
     for column, factor in heading.factors.items():
@@ -139,7 +146,8 @@ def _row_by_row(text: str, name: str, known: Known) -> tuple[Sequence[Floats], H
     columns = []
     for column, printed in zip(heading.names, zip(*body, strict=True), strict=True):
         is_text = column not in heading.factors
-        columns.append(np.zeros(len(body)) if is_text else _numbers(column, printed, name, lines))
+        may_be_empty = column in known.blank
+        columns.append(np.zeros(len(body)) if is_text else _numbers(column, printed, name, lines, may_be_empty))
     return columns, heading
 
 
@@ -161,9 +169,11 @@ def _rows(text: str, name: str) -> tuple[list[list[str]], list[int]]:
     return rows, lines
 
 
-def _numbers(column: str, cells: tuple[str, ...], name: str, lines: list[int]) -> Floats:
-    """Return the cells as floats (n,); raise TableError at the first that is not a finite number."""
+def _numbers(column: str, cells: tuple[str, ...], name: str, lines: list[int], may_be_empty: bool) -> Floats:
+    """Return the cells as floats (n,), NaN where empty; raise TableError at the first that is no finite number."""
     for cell, line in zip(cells, lines, strict=True):
+        if may_be_empty and not cell.strip():
+            continue
         if not PLAIN.fullmatch(cell) or not math.isfinite(float(cell.replace("−", "-"))):
             where = f"{name}, line {line}, column {column}"
             if not cell.strip():
@@ -174,7 +184,9 @@ def _numbers(column: str, cells: tuple[str, ...], name: str, lines: list[int]) -
                 value=f'"{shortened(cell.strip())}"',
                 limit="a finite number with a decimal point",
             )
-    return np.fromiter((float(cell.replace("−", "-")) for cell in cells), dtype=float, count=len(cells))
+    return np.fromiter(
+        (float(cell.strip().replace("−", "-") or "nan") for cell in cells), dtype=float, count=len(cells)
+    )
 
 
 def _check_size(table: CsvTable) -> None:

@@ -30,10 +30,10 @@ from rigdesign.display import show
 from rigdesign.errors import TableError
 
 MOST_POINTS = 200_000
-"""No pressure map has more points than this."""
+"""No pressure map, and no loaded surface, has more points than this."""
 
 FLAT = 1e-9
-"""Of their extent: pressure points that spread less to the sides of a line lie on it."""
+"""Of their extent: points that spread less to the sides of a line lie on it."""
 
 
 def pressure(entry: PressureEntry, number: int, context: Context) -> PressureLoad:
@@ -41,18 +41,23 @@ def pressure(entry: PressureEntry, number: int, context: Context) -> PressureLoa
     kinds = {"x": "length", "y": "length", "pressure": "pressure"}
     rows = context.table(entry.pressure, ("load", number, "pressure"), kinds, repeats="any")
     x, y = rows["x"], rows["y"]
-    if not 3 <= x.size <= MOST_POINTS:
-        what = f"the pressure map has {x.size} point{'' if x.size == 1 else 's'}"
-        raise TableError(what, where=rows.name, limit=f"3 to {MOST_POINTS}")
     check_once(rows, x, y)
-    centred = np.column_stack([x - x.mean(), y - y.mean()])
-    spread = np.linalg.svd(centred, compute_uv=False)
-    if spread[1] <= FLAT * spread[0]:
-        what = "all points of the pressure map lie on one line"
-        raise TableError(what, where=rows.name, remedy="add points beside it; a load along a line is a running load")
+    check_spread(rows, "the pressure map", "add points beside it; a load along a line is a running load")
     not_all_zero(rows, "pressure")
     where = f"{context.places.where('load', number)}, {entry.pressure}"
     return PressureLoad(x, y, rows["pressure"], entry.times, where)
+
+
+def check_spread(rows: CsvTable, what: str, remedy: str) -> None:
+    """Raise TableError where the points x, y of a table are too few, too many, or all in one line."""
+    x, y = rows["x"], rows["y"]
+    if not 3 <= x.size <= MOST_POINTS:
+        number = f"{what} has {x.size} point{'' if x.size == 1 else 's'}"
+        raise TableError(number, where=rows.name, limit=f"3 to {MOST_POINTS}")
+    centred = np.column_stack([x - x.mean(), y - y.mean()])
+    spread = np.linalg.svd(centred, compute_uv=False)
+    if spread[1] <= FLAT * spread[0]:
+        raise TableError(f"all points of {what} lie on one line", where=rows.name, remedy=remedy)
 
 
 def check_once(rows: CsvTable, x: Floats, y: Floats) -> None:
