@@ -141,7 +141,9 @@ class PlateBending:
 class RuleSet(Protocol):
     """The checks of one set of rules."""
 
-    name: Literal["BTH-1", "EN 1993", "AISC 360"]
+    @property
+    def name(self) -> Literal["BTH-1", "EN 1993", "AISC 360"]:
+        """As the brief calls them."""
 
     def lever(self, bar: Bar) -> tuple[Result, ...]:
         """Bending on the net section at the pivot, shear, lateral-torsional buckling, deflection."""
