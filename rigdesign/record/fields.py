@@ -3,10 +3,12 @@
 from __future__ import annotations
 
 import json
+import math
 from dataclasses import dataclass
 from typing import Any, NoReturn
 
 from rigdesign.errors import InputError
+from rigdesign.record.objects import INFINITE
 
 LARGEST_FLOAT = 1e100
 """No number of a rig is larger: the square of such a one is still a number."""
@@ -28,10 +30,11 @@ class Fields:
         return f"{self.path}.{key}" if self.path else key
 
     def _wrong(self, key: str, limit: str) -> NoReturn:
-        value = json.dumps(self.values[key], ensure_ascii=False)
-        shown = value if len(value) <= 60 else value[:57] + "…"
         raise InputError(
-            "this is not a rig: a value is of the wrong kind", where=self._at(key), value=shown, limit=limit
+            "this is not a rig: a value is of the wrong kind",
+            where=self._at(key),
+            value=_shown(self.values[key]),
+            limit=limit,
         )
 
     def text(self, key: str) -> str:
@@ -57,11 +60,39 @@ class Fields:
     def number(self, key: str) -> float:
         """A finite number, not beyond all reason."""
         value = self._get(key)
-        is_number = isinstance(value, (int, float)) and not isinstance(value, bool)
-        # compared, not converted: a whole number can be too large for a float
-        if not is_number or not -LARGEST_FLOAT <= value <= LARGEST_FLOAT:
-            self._wrong(key, f"a finite number up to {LARGEST_FLOAT:g}")
-        return float(value)
+        return float(value) if _is_finite(value) else self._wrong(key, f"a finite number up to {LARGEST_FLOAT:g}")
+
+    def size(self, key: str) -> float:
+        """A finite number, or infinite."""
+        return math.inf if self._get(key) == INFINITE else self.number(key)
+
+    def sizes(self, key: str) -> list[float]:
+        """A list of numbers, each finite or infinite."""
+        value = self._get(key)
+        if not isinstance(value, list) or not all(item == INFINITE or _is_finite(item) for item in value):
+            self._wrong(key, "a list of numbers")
+        return [math.inf if item == INFINITE else float(item) for item in value]
+
+    def pairs(self, key: str) -> list[list[float]]:
+        """A list of pairs of finite numbers."""
+        value = self._get(key)
+        if not isinstance(value, list) or not all(_is_pair(item) for item in value):
+            self._wrong(key, "a list of pairs of numbers")
+        return [[float(u), float(v)] for u, v in value]
+
+    def amounts(self, key: str) -> dict[str, float]:
+        """An object of finite numbers."""
+        inner = self.object(key)
+        return {name: inner.number(name) for name in inner.values}
+
+    def of_each(self, key: str) -> dict[str, Fields]:
+        """An object of objects, by name."""
+        inner = self.object(key)
+        return {name: inner.object(name) for name in inner.values}
+
+    def refuse(self, key: str, what: str, limit: str = "", remedy: str = "") -> NoReturn:
+        """Raise, because a value of the right kind cannot be meant."""
+        raise InputError(what, where=self._at(key), value=_shown(self.values.get(key)), limit=limit, remedy=remedy)
 
     def numbers(self, *keys: str) -> list[float]:
         """Finite numbers under several keys."""
@@ -83,6 +114,21 @@ class Fields:
         """An object of texts."""
         values = self.object(key).values
         return values if all(isinstance(item, str) for item in values.values()) else self._wrong(key, "texts by name")
+
+
+def _shown(value: Any) -> str:
+    text = json.dumps(value, ensure_ascii=False)
+    return text if len(text) <= 60 else text[:57] + "…"
+
+
+def _is_finite(value: object) -> bool:
+    # compared, not converted: a whole number can be too large for a float
+    is_number = isinstance(value, (int, float)) and not isinstance(value, bool)
+    return is_number and -LARGEST_FLOAT <= value <= LARGEST_FLOAT  # type: ignore[operator]
+
+
+def _is_pair(value: object) -> bool:
+    return isinstance(value, list) and len(value) == 2 and all(_is_finite(item) for item in value)
 
 
 def read_object(text: str) -> Fields:

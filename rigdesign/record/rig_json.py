@@ -13,13 +13,14 @@ Layout number 1.  Every number is written so that the same float is read again; 
                     parent, load_N as checked, and holes, a list: hole, joins, u_m, v_m, x_m, y_m
     words           what the search for grouping and holes did
     findings        of the levers stage
+    hardware        what it is made of, see `hardware_json`; not there in a rig that was only arranged
     check           verdict, moment_error_peak, shear_error_peak, band_use, on surfaces torsion_error_peak: for readers;
                     never read back
 
 A line rig without wanted_y_m and jack_y_m has them at 0; a surface's must be there.  force_N of a pad, load_N of a
 lever and `check` are results of the check.  Whoever reads a rig recomputes them.
 
-Depends on: brief, target, pads, levers, checks.
+Depends on: brief, target, pads, levers, hardware, checks.
 """
 
 from __future__ import annotations
@@ -31,12 +32,13 @@ from typing import Any, get_args
 import numpy as np
 
 from rigdesign.brief.model import Source
+from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.checks.model import Check
 from rigdesign.errors import InputError
-from rigdesign.findings import Finding, Severity, Stage
 from rigdesign.levers.model import Hole, HoleName, Jack, Piece, Rig, Tree
 from rigdesign.pads.model import PadPlan, Proof
 from rigdesign.record.fields import Fields, read_object
+from rigdesign.record.findings import read_findings
 from rigdesign.record.objects import INFINITE, finding_object, json_bytes, number_object
 from rigdesign.target.model import Target
 from rigdesign.words import SCHEMA_NUMBER
@@ -44,8 +46,12 @@ from rigdesign.words import SCHEMA_NUMBER
 _PROOF_NUMBERS = ("band_use", "band_use_least", "moment_error_least", "evenness", "evenness_before", "band_use_found")
 
 
-def rig_to_json(check: Check) -> str:
-    """Return the checked rig as the text of rig.json."""
+def rig_to_json(answer: Check | HardwareCheck) -> str:
+    """Return the checked rig as the text of rig.json, its hardware among it where there is any."""
+    from rigdesign.record.hardware_json import hardware_object
+
+    hardware = None if isinstance(answer, Check) else answer.hardware
+    check = answer if isinstance(answer, Check) else answer.check
     rig, plan = check.rig, check.rig.plan
     source, is_surface = plan.target.brief.source, plan.target.brief.specimen.is_surface
     return json_bytes(
@@ -64,8 +70,9 @@ def rig_to_json(check: Check) -> str:
             "trees": [_tree_object(tree, check) for tree in rig.trees],
             "words": rig.words,
             "findings": [finding_object(finding) for finding in rig.findings],
+            **({} if hardware is None else {"hardware": hardware_object(hardware)}),
             "check": {
-                "verdict": "accepted" if check.accepted else "not accepted",
+                "verdict": "accepted" if answer.accepted else "not accepted",
                 "moment_error_peak": check.moment_error_peak,
                 "shear_error_peak": check.shear_error_peak,
                 "band_use": number_object(check.band_use),
@@ -160,12 +167,12 @@ def rig_from_json(text: str) -> Rig:
         jack_y=_across(target, plan_fields, "jack_y_m"),
         may_move=plan_fields.flag("may_move"),
         proof=_proof(plan_fields.object("proof")),
-        findings=_findings(plan_fields),
+        findings=read_findings(plan_fields),
     )
     trees = tuple(_tree(tree) for tree in fields.objects("trees"))
     if not trees:
         raise InputError("the rig has no jack", where="trees")
-    return Rig(plan, x, y, trees, fields.text("words"), _findings(fields))
+    return Rig(plan, x, y, trees, fields.text("words"), read_findings(fields))
 
 
 def _across(target: Target, fields: Fields, key: str) -> float:
@@ -228,14 +235,3 @@ def _piece(fields: Fields) -> Piece:
 def _hole(fields: Fields) -> Hole:
     name: HoleName = fields.one_of("hole", get_args(HoleName))  # type: ignore[assignment]
     return Hole(name, fields.text("joins"), *fields.numbers("u_m", "v_m", "x_m", "y_m"))
-
-
-def _findings(fields: Fields) -> tuple[Finding, ...]:
-    return tuple(_finding(finding) for finding in fields.objects("findings"))
-
-
-def _finding(fields: Fields) -> Finding:
-    stage: Stage = fields.one_of("stage", get_args(Stage))  # type: ignore[assignment]
-    severity: Severity = fields.one_of("severity", get_args(Severity))  # type: ignore[assignment]
-    texts = {key: fields.text(key) for key in ("object", "text", "value", "limit", "remedy")}
-    return Finding(stage, severity, **texts, number=fields.whole("number"))
