@@ -75,19 +75,25 @@ def along_lever(tree: Layout) -> Floats:
     For plates it is the hole's place along their line from A to B; nothing but levers needs it.
     """
     piece = np.repeat(np.arange(len(tree.pieces)), np.diff(tree.first))
-    to_u, to_v = _direction(tree)
+    to_u, to_v = lever_directions(tree)
     return tree.u * to_u[piece] + tree.v * to_v[piece]
 
 
 def off_line(tree: Layout) -> Floats:
     """Return how far each piece's pivot lies off the line through its holes A and B [m], (n_pieces,), signed."""
-    to_u, to_v = _direction(tree)
+    to_u, to_v = lever_directions(tree)
     start = tree.first[:-1]
     return tree.u[start] * to_v - tree.v[start] * to_u
 
 
-def _direction(tree: Layout) -> tuple[Floats, Floats]:
-    """Unit vector from hole A to hole B of each piece: (n_pieces,) each."""
+def lever_directions(tree: Layout) -> tuple[Floats, Floats]:
+    """Return the unit vector from hole A to hole B of each piece, in its frame: (n_pieces,) each.
+
+    Raises
+    ------
+    InputError
+        Where they coincide.
+    """
     start = tree.first[:-1]
     du, dv = tree.u[start + 1] - tree.u[start], tree.v[start + 1] - tree.v[start]
     length = np.hypot(du, dv)
