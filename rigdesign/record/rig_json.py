@@ -27,12 +27,11 @@ from __future__ import annotations
 
 import json
 import math
-from typing import Any, get_args
+from typing import TYPE_CHECKING, Any, get_args
 
 import numpy as np
 
 from rigdesign.brief.model import Source
-from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.checks.model import Check
 from rigdesign.errors import InputError
 from rigdesign.levers.model import Hole, HoleName, Jack, Piece, Rig, Tree
@@ -42,6 +41,9 @@ from rigdesign.record.findings import read_findings
 from rigdesign.record.objects import INFINITE, finding_object, json_bytes, number_object
 from rigdesign.target.model import Target
 from rigdesign.words import SCHEMA_NUMBER
+
+if TYPE_CHECKING:
+    from rigdesign.checks.hardware.model import HardwareCheck
 
 _PROOF_NUMBERS = ("band_use", "band_use_least", "moment_error_least", "evenness", "evenness_before", "band_use_found")
 

@@ -2,10 +2,14 @@
 
 from __future__ import annotations
 
-from rigdesign.checks.hardware.model import HardwareCheck
+from typing import TYPE_CHECKING
+
 from rigdesign.hardware.model import Hardware
 from rigdesign.report.lists.members import by_mark, pieces_by_name, steel_length
 from rigdesign.report.lists.model import StockCut
+
+if TYPE_CHECKING:
+    from rigdesign.checks.hardware.model import HardwareCheck
 
 _Key = tuple[str, str, float]
 

@@ -2,11 +2,15 @@
 
 from __future__ import annotations
 
-from rigdesign.checks.hardware.model import HardwareCheck
+from typing import TYPE_CHECKING
+
 from rigdesign.hardware.model import Body, Hardware
 from rigdesign.levers.model import Hole, Piece
 from rigdesign.report.lists.members import by_mark, ends_by_place, pieces_by_name
 from rigdesign.report.lists.model import DrillRow
+
+if TYPE_CHECKING:
+    from rigdesign.checks.hardware.model import HardwareCheck
 
 _NOTES = {
     "twin flats": "through both flats together",

@@ -2,14 +2,18 @@
 
 from __future__ import annotations
 
+from typing import TYPE_CHECKING
+
 import numpy as np
 
-from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.hardware.model import End
 from rigdesign.report.lists.members import place
 from rigdesign.report.lists.model import LinkRow
 from rigdesign.report.lists.pins import pin_rows_of
 from rigdesign.target.curve import Floats
+
+if TYPE_CHECKING:
+    from rigdesign.checks.hardware.model import HardwareCheck
 
 
 def link_rows(result: HardwareCheck) -> tuple[LinkRow, ...]:

@@ -4,11 +4,14 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping, Sequence
+from typing import TYPE_CHECKING
 
-from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.hardware.model import Hardware, Mass
 from rigdesign.levers.model import Piece, Tree
 from rigdesign.report.lists.model import Centre
+
+if TYPE_CHECKING:
+    from rigdesign.checks.hardware.model import HardwareCheck
 
 
 def centres(result: HardwareCheck) -> tuple[Centre, ...]:

@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 from collections import Counter
+from typing import TYPE_CHECKING
 
-from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.hardware.model import Body, Hardware, Machine, PartKind
 from rigdesign.report.lists.members import by_mark, own_mass, pieces_by_name, steel_length
 from rigdesign.report.lists.model import PartRow
 from rigdesign.report.lists.pins import pin_mass, pin_rows_of
+
+if TYPE_CHECKING:
+    from rigdesign.checks.hardware.model import HardwareCheck
 
 _BUILDS = {"twin flats": "2 flats", "twin channels": "2 channels", "hollow section": "hollow section"}
 

@@ -3,11 +3,14 @@
 from __future__ import annotations
 
 import math
+from typing import TYPE_CHECKING
 
-from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.hardware.model import Hardware, Material
 from rigdesign.report.lists.members import place
 from rigdesign.report.lists.model import PinRow
+
+if TYPE_CHECKING:
+    from rigdesign.checks.hardware.model import HardwareCheck
 
 ROUND = 0.001
 """Pins are cut to whole steps of this length [m]."""
