@@ -3,9 +3,11 @@
 In goes a TOML file with the CSV tables that it names, or the texts of both as an earlier reading kept them.  Out comes
 a `Brief` (`rigdesign.brief.model`): validated, in SI units, frozen, tables read, every default filled in.
 
-    model      the frozen dataclasses that all later stages read
-    layout     the file as it is laid out: tables, keys, defaults, descriptions; the JSON Schema comes from here
-    fields     how one value is read
+    model      the frozen dataclasses that all later stages read; model_hardware holds those of hardware
+    keys       what every table of the file is made of
+    layout     the file as it is laid out: tables, keys, defaults, descriptions; the JSON Schema comes from here;
+               layout_hardware holds [hardware] and [keep]
+    fields     how one value is read; fields_hardware: those of [hardware] and [keep]
     locate     the line of each key
     messages   what pydantic finds, in one plain message
     sources    texts of brief and tables, from the folder or kept
@@ -15,6 +17,8 @@ a `Brief` (`rigdesign.brief.model`): validated, in SI units, frozen, tables read
     specimen   [specimen], with its weight
     loads      [[load]]
     pads       [pads]
+    hardware   [hardware]; hardware_tables: its stock, jacks, load cells and loaded surface
+    keep       [keep]
     surface    all that is said in plan: outline, axis, places, pressure maps
     build      everything else that concerns several keys at once
     read       all of it in order
@@ -38,7 +42,10 @@ What is decided here, where a file could be read in two ways:
   of the last printed digit in a table.  Without a y, what acts or stands there does so on the reference axis.
 - A spar runs outboard, a rib across; each crossing is a place, and each spar and rib has at least one.
 - A region's percentages are of what [acceptance] says unless it says otherwise itself.
-- Tables lie in the folder of the brief or below it.
+- Tables and kept rigs lie in the folder of the brief or below it.
+- A factor of [hardware] that belongs to other rules than those chosen is an error, as is a mark tolerance where no
+  marks are made alike.  What each kind of profile needs of a row is said in `hardware_tables`.
+- The text of a kept rig is taken along whole, under its folder's name; what it says is read where rigs are read.
 
 Bad input raises `BriefError` or `TableError`, one fault at a time, with file, line, key, value, limit and remedy.
 

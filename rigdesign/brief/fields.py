@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import difflib
 import math
+import re
 from collections.abc import Callable
 from typing import Annotated, Any, Literal, NamedTuple
 
@@ -19,6 +20,7 @@ from rigdesign.units import KINDS, in_words, quantities, quantity
 from rigdesign.words import LARGEST_NUMBER, MOST_PADS
 
 _NUMBER = r"[+-]?([0-9]+\.?[0-9]*|\.[0-9]+)([eE][+-]?[0-9]+)?"
+_PLAIN = re.compile(rf"\s*{_NUMBER}\s*")
 _LENGTH, _FORCE, _TIMES = "(mm|cm|m|km|in|ft)", "(mN|N|kN|MN|kgf|lbf|kip)", "[*·. -]?"
 _MASS = "(kg|g|t|lb|slug)"
 LONGEST_TITLE = 200
@@ -64,7 +66,7 @@ def number(*, above: float | None = None, least: float | None = None, nonzero: b
 
     def read(value: object) -> float:
         if isinstance(value, bool) or not isinstance(value, int | float):
-            remedy = "write it without quotes" if isinstance(value, str) else ""
+            remedy = "write it without quotes" if isinstance(value, str) and _PLAIN.fullmatch(value) else ""
             raise InputError("a plain number is due", value=in_words(value), limit="such as 1.5", remedy=remedy)
         if not math.isfinite(value):
             raise InputError("a finite number is due", value=in_words(value))

@@ -25,6 +25,9 @@ from rigdesign.errors import TableError
 Kind = Literal["flat", "channel", "hollow", "plate"]
 KINDS: tuple[Kind, ...] = get_args(Kind)
 
+CALLED: dict[Kind, str] = {"flat": "flat", "channel": "channel", "hollow": "hollow section", "plate": "plate"}
+"""What messages call each kind."""
+
 KIND_OF: dict[Build, Kind] = {"twin flats": "flat", "twin channels": "channel", "hollow section": "hollow"}
 """The kind of profile that each build needs."""
 
@@ -44,7 +47,7 @@ def stock(name: str, builds: tuple[Build, ...], kerf: float, context: Context) -
     """
     path = ("hardware", "stock")
     optional = {"web": "length", "flange": "length", "bar": "length"}
-    blank = frozenset({"width", "web", "flange", "bar"})
+    blank = frozenset({"depth", "width", *optional})
     rows = context.table(name, path, _STOCK, repeats="any", optional=optional, blank=blank)
     names, kinds = _names(rows, "section"), rows.names("kind")
     profiles = tuple(_profile(rows, row, names[row], _kind(rows, row, kinds[row])) for row in range(len(names)))
@@ -55,7 +58,7 @@ def stock(name: str, builds: tuple[Build, ...], kerf: float, context: Context) -
     held = {profile.kind for profile in profiles}
     for build in builds:
         if KIND_OF[build] not in held:
-            what = f'the stock holds no {KIND_OF[build]}, and the build is "{build}"'
+            what = f'the stock holds no {CALLED[KIND_OF[build]]}, and the build is "{build}"'
             other = [each for each in KIND_OF if KIND_OF[each] in held]
             remedy = "add one" + (f', or write build = "{other[0]}"' if other else "")
             raise context.error(what, *path, remedy=remedy)
@@ -86,7 +89,7 @@ def _profile(rows: CsvTable, row: int, name: str, kind: Kind) -> StockRow:
         _agree(rows, row, depth, "a plate has one thickness, its depth", width=width, web=web, flange=flange)
         return StockRow(name, kind, depth, depth, depth, depth, bar, rows.where(row))
     if width is None:
-        raise _empty(rows, row, "width", f"write the width of the {kind}")
+        raise _empty(rows, row, "width", f"write the width of the {CALLED[kind]}")
     if kind == "flat":
         if width > depth:
             what, limit = "a flat stands upright, and its width is its thickness", f"up to its depth, {_mm(depth)}"
@@ -94,7 +97,7 @@ def _profile(rows: CsvTable, row: int, name: str, kind: Kind) -> StockRow:
         _agree(rows, row, width, "a flat has one thickness, its width", web=web, flange=flange)
         return StockRow(name, kind, depth, width, width, width, bar, rows.where(row))
     if web is None:
-        raise _empty(rows, row, "web", f"write the thickness of the {kind}'s web")
+        raise _empty(rows, row, "web", f"write the thickness of the {CALLED[kind]}'s web")
     if kind == "hollow":
         _agree(rows, row, web, "a hollow section has one thickness, its web", flange=flange)
         flange = web
@@ -109,12 +112,12 @@ def _check_walls(rows: CsvTable, row: int, kind: Kind, depth: float, width: floa
     if not web < width / 2:
         limit = f"less than half its width, {_mm(width / 2)}"
         remedy = "check the columns and the unit in the heading"
-        raise _row_error(rows, row, "web", f"the web is too thick for the {kind}", limit=limit, remedy=remedy)
+        raise _row_error(rows, row, "web", f"the web is too thick for the {CALLED[kind]}", limit=limit, remedy=remedy)
     if not flange < depth / 2:
         limit = f"less than half its depth, {_mm(depth / 2)}"
         column = "flange" if kind == "channel" else "web"
         remedy = "check the columns and the unit in the heading"
-        what = f"the {column} is too thick for the {kind}"
+        what = f"the {column} is too thick for the {CALLED[kind]}"
         raise _row_error(rows, row, column, what, limit=limit, remedy=remedy)
 
 
@@ -133,7 +136,10 @@ def _size(rows: CsvTable, row: int, column: str) -> float | None:
 
 
 def _positive(rows: CsvTable, row: int, column: str) -> float:
+    """Return a size above zero."""
     value = float(rows[column][row])
+    if math.isnan(value):
+        raise _empty(rows, row, column, "write it in the unit of the heading")
     if not value > 0:
         raise _row_error(
             rows, row, column, f"the {column} is {'negative' if value < 0 else 'zero'}", limit="more than 0"
@@ -152,17 +158,16 @@ def cells(name: str, context: Context) -> tuple[MachineRow, ...]:
 
 
 def _machines(name: str, column: str, kinds: dict[str, str], context: Context) -> tuple[MachineRow, ...]:
+    """Return the rows of a table of jacks or load cells, whose names stand in `column`."""
     path = ("hardware", f"{column}s")
-    rows = context.table(name, path, {column: "name", **kinds}, repeats="any")
+    rows = context.table(name, path, {column: "name", **kinds}, repeats="any", blank=frozenset(kinds))
     names = _names(rows, column)
     machines = []
     for row, each in enumerate(names):
-        if rows["mass"][row] < 0:
-            raise _row_error(rows, row, "mass", "the mass is negative", limit="0 or more")
-        sizes = {key: _positive(rows, row, key) for key in kinds if key != "mass"}
-        stroke = sizes.get("stroke", 0.0)
-        mass = float(rows["mass"][row])
-        machines.append(MachineRow(each, sizes["force"], sizes["length"], stroke, mass, sizes["pin"]))
+        size = {key: _positive(rows, row, key) for key in kinds}
+        machines.append(
+            MachineRow(each, size["force"], size["length"], size.get("stroke", 0.0), size["mass"], size["pin"])
+        )
     return tuple(machines)
 
 
@@ -192,7 +197,10 @@ def _names(rows: CsvTable, column: str) -> list[str]:
     for row, name in enumerate(names):
         what, limit, remedy = _fault_of_name(name)
         if not what and name in seen:
-            what, remedy = f"the name stands twice, first in line {rows.line(seen[name])}", "give each row its own name"
+            what, remedy = (
+                f"two rows have one name, here and on line {rows.line(seen[name])}",
+                "give each row its own name",
+            )
         if what:
             where = f"{rows.where(row)}, column {column}"
             raise TableError(what, where=where, value=f'"{name}"' if name else "", limit=limit, remedy=remedy)

@@ -27,7 +27,7 @@ def kept(table: KeepTable | None, context: Context) -> KeptRig | None:
     content = _parsed(text, name)
     number = content.get("schema_number") if isinstance(content, dict) else None
     if isinstance(number, bool) or not isinstance(number, int):
-        what = "this is no rig: it holds no schema_number"
+        what = "this is no rig: it holds no whole number as schema_number"
         raise BriefError(what, where=where, value=f'"{name}"', remedy=_REMEDY)
     return KeptRig(folder, text, where, table.hole_distance)
 

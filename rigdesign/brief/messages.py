@@ -120,14 +120,14 @@ def _unknown_key(path: Path, raw: dict[str, Any], places: Places) -> BriefError:
     known = keys_of(_table_at(path, raw))
     table = "a brief" if len(path) == 1 else _called(path, raw)
     what = f'"{key}" is no key of {table}'
-    near = difflib.get_close_matches(key.lower(), known, n=1, cutoff=0.6)
-    if near:
-        return BriefError(what, where=where, remedy=f'did you mean "{near[0]}"?')
     others = [f'[[load]] with "{kind}"' for kind, model in LOAD_ENTRIES.items() if key in keys_of(model)]
     if not (others and home == "load"):
         others = [f"[{name}]" for name, model in TABLES.items() if key in keys_of(model)] + others
     if others:
         return BriefError(what, where=where, remedy=f"it belongs to {' or '.join(others)}")
+    near = difflib.get_close_matches(key.lower(), known, n=1, cutoff=0.6)
+    if near:
+        return BriefError(what, where=where, remedy=f'did you mean "{near[0]}"?')
     return BriefError(what, where=where, limit=", ".join(known))
 
 
