@@ -8,6 +8,7 @@ sheets draw them, the DXF files are named by their marks.
     pin_rows       a row a pin mark
     drill_rows     a row a hole of each lever's and plate's mark
     cut_plans      a plan for each section that is cut from bars
+    flat_shapes    outline and holes of each flat and plate
     centres        mass and centre of each member, of each tree, and of all
 
 Depends on: hardware, checks.
@@ -15,6 +16,8 @@ Depends on: hardware, checks.
 
 from rigdesign.report.lists.cuts import cut_plans as cut_plans
 from rigdesign.report.lists.drilling import drill_rows as drill_rows
+from rigdesign.report.lists.flats import Flat as Flat
+from rigdesign.report.lists.flats import flat_shapes as flat_shapes
 from rigdesign.report.lists.links import link_rows as link_rows
 from rigdesign.report.lists.masses import centres as centres
 from rigdesign.report.lists.model import Centre as Centre

@@ -13,6 +13,9 @@ from rigdesign.hardware.model import LinkKind, PartKind
 if TYPE_CHECKING:
     from rigdesign.hardware.cutting import CutPlan
 
+PER_METRE = 1000.0
+"""Millimetres in a metre: what tables and cutting files are written in."""
+
 
 @dataclass(frozen=True)
 class PartRow:
