@@ -86,8 +86,9 @@ def choice(*words: str) -> Any:
     def read(value: object) -> str:
         if value in words:
             return str(value)
-        near = difflib.get_close_matches(value.lower(), words, n=1) if isinstance(value, str) else []
-        remedy = f'did you mean "{near[0]}"?' if near else ""
+        lowered = {word.lower(): word for word in words}
+        near = difflib.get_close_matches(value.lower(), lowered, n=1) if isinstance(value, str) else []
+        remedy = f'did you mean "{lowered[near[0]]}"?' if near else ""
         raise InputError("this is none of the words due", value=in_words(value), limit=_either(words), remedy=remedy)
 
     return PlainValidator(read), WithJsonSchema({"type": "string", "enum": list(words)})
