@@ -31,4 +31,12 @@ def rule_set(hardware: HardwareRules) -> RuleSet:
         from rigdesign.hardware.rules.bth import Bth
 
         return Bth(hardware.design_factor)
+    if hardware.rules == "EN 1993":
+        from rigdesign.hardware.rules.en import En
+
+        return En(hardware.load_factor)
+    if hardware.rules == "AISC 360":
+        from rigdesign.hardware.rules.aisc import Aisc
+
+        return Aisc()
     raise ValueError(f"no rules called {hardware.rules!r}")

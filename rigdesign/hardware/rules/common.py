@@ -143,6 +143,22 @@ def wall(section: Section) -> float:
     return max(section.web, section.flange)
 
 
+def channel_warping(section: Section) -> float:
+    """Warping constant [m⁶] of a channel with flanges of even thickness.
+
+    C_w = t_f b³ h²/12 · (3 b t_f + 2 h t_w)/(6 b t_f + h t_w), b and h between the middle lines of web and flanges.
+    Source: Galambos & Surovek, Structural Stability of Steel (from memory).
+
+    Raises
+    ------
+    ZeroDivisionError
+        Where the channel has neither flanges nor web.
+    """
+    flange, web = section.flange, section.web
+    b, h = section.width - web / 2, section.depth - flange
+    return flange * b**3 * h**2 / 12 * (3 * b * flange + 2 * h * web) / (6 * b * flange + h * web)
+
+
 def deflection(bar: Bar) -> Result:
     """Deflection of a lever's ends against the pivot, over their arms; the larger of both.
 
