@@ -285,8 +285,8 @@ def _link(number: int, kind: str, pull: float, ends: tuple[End, End], length: fl
         area = width * thickness
         name, mass = f"{1e3 * width:.0f}×{1e3 * thickness:.0f}", area * length * 7850
     else:
-        width, thickness = 0.05, 0.006
-        area, name, mass = width * thickness, "50 mm webbing", 0.4 * length + 0.2
+        width, thickness = 0.06, 0.006
+        area, name, mass = width * thickness, "60 mm webbing", 0.4 * length + 0.2
     material = ROD_STEEL if kind == "rod" else STEEL
     return Link(
         number,

@@ -42,7 +42,7 @@ def statics_remarks(check: Check) -> Iterator[Finding]:
     yield from jack_offset_in_plan(check) if _is_surface(check) else _jack_offset(check)
     yield from _band_floor(check)
     yield from _below_cell(check)
-    yield from _left_out(check)
+    yield left_out(check)
 
 
 def _is_surface(check: Check) -> bool:
@@ -229,12 +229,18 @@ def _below_cell(check: Check) -> Iterator[Finding]:
         )
 
 
-def _left_out(check: Check) -> Iterator[Finding]:
-    plan = "links that pass pieces of other tiers, " if _is_surface(check) else ""
-    yield _remark(
+def left_out(check: Check, *, with_hardware: bool = False) -> Finding:
+    """Return what no check looks at, of a rig as lines and holes, or with its hardware checked too."""
+    if with_hardware:
+        parts = "friction in the pins, the specimen's deflection and the swing of links that comes with it, and the "
+        parts += "strength of the specimen, of what bears the jacks, and of what joins pads to the specimen"
+    else:
+        parts = "links that pass pieces of other tiers, " if _is_surface(check) else ""
+        parts += "the rig's own weight at the pads, friction in the pins, the specimen's deflection and the swing of "
+        parts += "links that comes with it, and the strength of levers, pins, links, pads and specimen"
+    return _remark(
         "note",
         "rig",
-        f"not checked: {plan}the rig's own weight at the pads, friction in the pins, the specimen's deflection and the "
-        "swing of links that comes with it, and the strength of levers, pins, links, pads and specimen",
+        f"not checked: {parts}",
         remedy="have them checked by a licensed engineer, by the codes that hold locally, before it is built or loaded",
     )

@@ -1,0 +1,161 @@
+"""Remarks of the stage "strength": what fails and what would do, what is used most, what is not looked at."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterable, Iterator
+
+from rigdesign.checks.hardware.model import StrengthRow
+from rigdesign.checks.text import also, percent
+from rigdesign.display import show
+from rigdesign.findings import Finding, Severity
+from rigdesign.hardware.model import Hardware, Shortfall
+
+USE_SLACK = 1e-9  # members are built right at their limits, and must not fail by rounding
+
+
+def strength_remarks(hardware: Hardware, rows: tuple[StrengthRow, ...]) -> Iterator[Finding]:
+    """Yield the remarks of this stage, not numbered yet, in a fixed order."""
+    worst = _worst_of_each(rows)
+    yield from _failures(hardware, worst)
+    yield from _other_shortfalls(hardware, worst)
+    yield from _most_used(hardware, worst)
+    yield from _density(hardware)
+    yield _remark(
+        "note",
+        "rig",
+        "strength is not looked at for welds, fatigue, impact (a pad that lets go), load from the side, heads of "
+        "pins, split pins, spacers, nuts, turnbuckles and whatever makers of jacks, cells and bearings rate themselves",
+        remedy="have a licensed engineer look at them, by the codes that hold locally; inspect welds before every test",
+    )
+
+
+def is_over(use: float) -> bool:
+    """Whether a utilisation fails."""
+    return use > 1 + USE_SLACK
+
+
+def _remark(severity: Severity, where: str, text: str, value: str = "", limit: str = "", remedy: str = "") -> Finding:
+    return Finding("strength", severity, where, text, value, limit, remedy)
+
+
+def _worst_of_each(rows: Iterable[StrengthRow]) -> dict[str, StrengthRow]:
+    """The most used check of each member, of equal ones the first."""
+    worst: dict[str, StrengthRow] = {}
+    for row in rows:
+        if row.piece not in worst or row.utilisation > worst[row.piece].utilisation:
+            worst[row.piece] = row
+    return worst
+
+
+def _failures(hardware: Hardware, worst: dict[str, StrengthRow]) -> Iterator[Finding]:
+    """One for each member that fails; identical members that fail by the same check share one."""
+    groups: dict[tuple[str, str], list[StrengthRow]] = {}
+    for name, row in worst.items():
+        if is_over(row.utilisation):
+            groups.setdefault((hardware.marks.get(name, name), _kind(row.check)), []).append(row)
+    for rows in groups.values():
+        row = max(rows, key=lambda row: row.utilisation)
+        yield _remark(
+            "failure",
+            row.piece,
+            f"{row.check}, with {show(row.load, 'force')} at the peak of the test and its overshoot: "
+            + _too_much(row)
+            + also(other.piece for other in rows if other is not row),
+            f"utilisation {used(row.utilisation)}",
+            "1",
+            _remedy(hardware, row),
+        )
+
+
+def _too_much(row: StrengthRow) -> str:
+    if row.check.startswith("deflection"):
+        return f"the deflection is more than the brief allows ({row.clause})"
+    return f"the load effect is more than {row.clause} leaves"
+
+
+def _kind(check: str) -> str:
+    """A check without the member at which it is made.
+
+    >>> _kind("bearing, eye at lever 12 hole A"), _kind("bearing, hole A")
+    ('bearing, eye at ', 'bearing, hole A')
+    """
+    return re.sub(r"(lever|pad|jack) \d+( hole \w+)?", "", check)
+
+
+def used(use: float) -> str:
+    """A utilisation in words.
+
+    >>> used(0.98765), used(float("inf"))
+    ('0.988', 'beyond all limits')
+    """
+    return f"{use:.3g}" if use < 1e6 else "beyond all limits"
+
+
+def _remedy(hardware: Hardware, row: StrengthRow) -> str:
+    """What the builder says would do, or what such a check wants as a rule."""
+    for shortfall in hardware.shortfalls:
+        if shortfall.piece == row.piece and shortfall.remedy:
+            return shortfall.remedy
+    kind = row.piece.split()[0]
+    if row.check.startswith("rated force"):
+        return "a larger jack and load cell: give them as jacks and cells in [hardware]"
+    if kind == "link":
+        return "a larger link or pin, thicker eyes, or more pads to share the load"
+    if kind == "pad":
+        return "thicker lugs or a larger pin at the pad"
+    return "a larger section or pin, a stronger grade, shorter arms, or more pads to share the load"
+
+
+def _other_shortfalls(hardware: Hardware, worst: dict[str, StrengthRow]) -> Iterator[Finding]:
+    """What the builder could not do, where no strength check of the same member says so already."""
+    failing = {name for name, row in worst.items() if is_over(row.utilisation)}
+    alike: dict[tuple[str, str], list[Shortfall]] = {}
+    for shortfall in hardware.shortfalls:
+        if shortfall.piece not in failing:
+            mark = hardware.marks.get(shortfall.piece, shortfall.piece)
+            alike.setdefault((mark, shortfall.check), []).append(shortfall)
+    for group in alike.values():
+        first = max(group, key=lambda one: one.utilisation)
+        yield _remark(
+            "failure",
+            first.piece,
+            f"no size to choose from does: {first.check}{also(one.piece for one in group if one is not first)}",
+            f"utilisation {used(first.utilisation)}",
+            "1",
+            first.remedy,
+        )
+
+
+def _most_used(hardware: Hardware, worst: dict[str, StrengthRow]) -> Iterator[Finding]:
+    """Which member is nearest to its limit, where all pass."""
+    if not worst or any(is_over(row.utilisation) for row in worst.values()):
+        return
+    rules = hardware.rig.plan.target.brief.hardware
+    row = max(worst.values(), key=lambda row: row.utilisation)
+    factor = {
+        "BTH-1": f" with a design factor of {rules.design_factor:g}",
+        "EN 1993": f" with a load factor of {rules.load_factor:g} and its partial factors",
+        "AISC 360": " with its safety factors",
+    }[rules.rules]
+    yield _remark(
+        "note",
+        row.piece,
+        f"of all members this one is used most: {row.check}, {show(row.load, 'force')} at the peak of the test times "
+        f"{rules.overshoot:g} for overshoot, by {rules.rules}{factor}",
+        f"{percent(row.utilisation)} of what the rules leave",
+        "100 %",
+    )
+
+
+def _density(hardware: Hardware) -> Iterator[Finding]:
+    """Say where the brief's density stands in place of the grade's."""
+    rules = hardware.rig.plan.target.brief.hardware
+    if rules.density is None:
+        return
+    yield _remark(
+        "note",
+        "rig",
+        f"weights are worked out with the brief's density in place of that of {rules.grade}",
+        f"{rules.density:.4g} kg/m³",
+    )
