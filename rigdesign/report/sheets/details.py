@@ -1,0 +1,88 @@
+"""Details: one a part mark of levers and plates, several on a sheet, each dimensioned from its datum."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from rigdesign.checks.hardware.model import HardwareCheck
+from rigdesign.display import counted
+from rigdesign.report.sheets.detail_levers import draw_lever
+from rigdesign.report.sheets.detail_plates import draw_plate
+from rigdesign.report.sheets.frame import FIELD
+from rigdesign.report.sheets.paper import BODY, MEDIUM, SMALL, TITLE, Box, Paper, shortened, text_width
+from rigdesign.report.sheets.part_facts import PartFacts, detailed_parts
+from rigdesign.report.sheets.sizes import Sizes
+
+COLUMNS = 2
+"""Details side by side on a sheet."""
+ROWS = {"lever": 3, "plate": 2}
+"""Details above one another."""
+
+
+def detail_sheets(result: HardwareCheck, sizes: Sizes) -> Iterator[tuple[Paper, str, str]]:
+    """Yield the sheets of details, each with its name and scale: levers, then plates."""
+    parts = detailed_parts(result)
+    for kind in ("lever", "plate"):
+        own = [part for part in parts if part.row.kind == kind]
+        number = COLUMNS * ROWS[kind]
+        for first in range(0, len(own), number):
+            page = own[first : first + number]
+            marks = page[0].row.mark if len(page) == 1 else f"{page[0].row.mark} to {page[-1].row.mark}"
+            yield _sheet(page, ROWS[kind], sizes), f"Details of {kind}s {marks}", "as shown"
+
+
+def _sheet(parts: list[PartFacts], rows: int, sizes: Sizes) -> Paper:
+    paper = Paper()
+    wide, high = FIELD.width / COLUMNS, FIELD.height / rows
+    for k, part in enumerate(parts):
+        row, column = divmod(k, COLUMNS)
+        box = Box(FIELD.left + column * wide, FIELD.high - (row + 1) * high, wide, high)
+        paper.box(box, MEDIUM)
+        used = _header(paper, box, part, sizes)
+        room = box.less(5.0, 3.0, 4.0, used)
+        (draw_lever if part.row.kind == "lever" else draw_plate)(paper, room, part, sizes)
+    return paper
+
+
+def _header(paper: Paper, box: Box, part: PartFacts, sizes: Sizes) -> float:
+    """Mark, number and steel of a detail in three lines; return their height [mm]."""
+    row, left, top = part.row, box.left + 4.0, box.high
+    paper.text(left, top - 5.0, row.mark, TITLE + 1, bold=True)
+    at = left + text_width(row.mark, TITLE + 1, True) + 4.0
+    words = f"{row.quantity} off: {part.members}"
+    paper.text(at, top - 5.0, shortened(words, box.right - at - 4.0, BODY + 1), BODY + 1)
+    mass = "" if row.mass is None else f"{sizes.mass(row.mass)} each"
+    if row.mass is not None and row.quantity > 1:
+        mass += f", {sizes.mass(row.quantity * row.mass)} in all"
+    steel = f"{row.section}, {row.material}, {_length(part, sizes)}; {mass}"
+    paper.text(left, top - 10.2, shortened(steel, box.width - 8.0, BODY), BODY)
+    notes = _notes(part, sizes)
+    paper.text(left, top - 14.2, shortened(notes, box.width - 8.0, SMALL), SMALL)
+    return 16.5
+
+
+def _length(part: PartFacts, sizes: Sizes) -> str:
+    assert part.row.length is not None
+    if part.row.kind == "plate":
+        across = part.body.outline[:, 1]
+        size = f"{sizes.length(part.row.length)} × {sizes.length(float(across.max() - across.min()))}"
+        return f"blank {size}, thickness {sizes.length(part.body.section.depth)}"
+    return f"length {sizes.length(part.row.length)}"
+
+
+def _notes(part: PartFacts, sizes: Sizes) -> str:
+    """Where the centre of mass is, spacers, counterweights, and the mirrored mark."""
+    holes = {hole.hole: hole for hole in part.holes}
+    along = holes["pivot"].along + part.mass.u
+    words = [f"centre of mass {sizes.length(along)} from the datum"]
+    if part.row.kind == "plate":
+        across = holes["pivot"].across + part.mass.v
+        words = [f"centre of mass at {sizes.length(along)}, {sizes.length(across)} from the datum"]
+    if part.body.spacers:
+        places = ", ".join(sizes.length(holes["pivot"].along + u) for u in part.body.spacers)
+        words.append(f"{counted(len(part.body.spacers), 'spacer')} {part.spacer} at {places}")
+    for hole, mass in part.body.counterweights.items():
+        words.append(f"counterweight {sizes.mass(mass)} at {hole}, in the centre of mass")
+    if part.mirror:
+        words.insert(0, f"MIRROR IMAGE of {part.mirror}: drill from the datum end")
+    return "; ".join(words)
