@@ -7,7 +7,7 @@ from typing import Any
 from rigdesign.chain import Study, StudyRow
 from rigdesign.findings import Refusal
 from rigdesign.record.objects import json_bytes
-from rigdesign.report.tables import Cell, csv_bytes
+from rigdesign.report.csv_cells import Cell, csv_bytes
 
 COLUMNS = (
     "pads", "verdict", "moment_error_peak", "moment_error_least", "shear_error_peak", "band_use", "band_use_least",

@@ -1,19 +1,15 @@
 """The tables of the rig folder and summary.json, as bytes.
 
-CSV is UTF-8 with commas, a full stop as decimal sign and one heading line.  Numbers have twelve significant digits:
-more than any instrument, and few enough that 0.1 + 0.2 reads 0.3.  What is not limited, not judged or not known is an
-empty cell.  No text cell can act as a formula in a spreadsheet.
+Tables of the rig are here, those of its hardware in `tables_hardware`, cells in `csv_cells`.
 
 Depends on: checks, and the models below it.
 """
 
 from __future__ import annotations
 
-import csv
-import io
 import math
-from collections.abc import Iterable, Sequence
-from typing import Any
+from collections.abc import Iterable, Mapping
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
@@ -23,54 +19,34 @@ from rigdesign.checks.remarks_practice import pressures
 from rigdesign.checks.text import UNIT_KIND
 from rigdesign.levers.model import Piece
 from rigdesign.record.objects import finding_object, json_bytes
+from rigdesign.report.csv_cells import csv_bytes
 
-Cell = str | int | float | None
-FORMULA_STARTS = ("=", "+", "-", "−", "@", "\t", "\r", "\n")
-DIGITS = 12
+if TYPE_CHECKING:
+    from rigdesign.checks.hardware.model import HardwareCheck
+
 COLUMN_UNIT = {"force": "N", "moment": "Nm"}
 
 
-def table_files(check: Check) -> dict[str, bytes]:
-    """Return summary.json and every CSV of a checked rig by file name."""
+def table_files(answer: Check | HardwareCheck) -> dict[str, bytes]:
+    """Return summary.json and every CSV of a checked rig by file name, those of its hardware where there is any."""
+    if isinstance(answer, Check):
+        return {"summary.json": json_bytes(summary(answer)), **_rig_tables(answer, None)}
+    from rigdesign.report.tables_hardware import hardware_tables
+
+    rig_tables = _rig_tables(answer.check, answer.hardware.marks)
+    return {"summary.json": json_bytes(summary(answer)), **rig_tables, **hardware_tables(answer)}
+
+
+def _rig_tables(check: Check, marks: Mapping[str, str] | None) -> dict[str, bytes]:
     return {
-        "summary.json": json_bytes(summary(check)),
         "pads.csv": pads_csv(check),
-        "levers.csv": levers_csv(check),
+        "levers.csv": levers_csv(check, marks),
         "holes.csv": holes_csv(check),
         "jacks.csv": jacks_csv(check),
         "stations.csv": stations_csv(check),
         "regions.csv": regions_csv(check),
         **({} if check.across is None else {"across.csv": across_csv(check)}),
     }
-
-
-def csv_bytes(head: Sequence[str], rows: Iterable[Sequence[Cell]]) -> bytes:
-    r"""Return a table as CSV.
-
-    >>> csv_bytes(["pad", "x_m", "note"], [[1, 0.1 + 0.2, "=1+1"], [2, -0.0, None]])
-    b"pad,x_m,note\n1,0.3,'=1+1\n2,0,\n"
-    """
-    out = io.StringIO(newline="")
-    writer = csv.writer(out, lineterminator="\n")
-    writer.writerow(head)
-    writer.writerows([cell(value) for value in row] for row in rows)
-    return out.getvalue().encode()
-
-
-def cell(value: Cell) -> str:
-    """Return a cell as text: a number with its digits, a text that no spreadsheet takes for a formula.
-
-    >>> cell(1e-20), cell(float("inf")), cell("@pad"), cell(12), cell(-2.5)
-    ('1e-20', '', "'@pad", '12', '-2.5')
-    """
-    if value is None:
-        return ""
-    if isinstance(value, str):
-        return f"'{value}" if value.startswith(FORMULA_STARTS) else value
-    if isinstance(value, int):
-        return str(value)
-    # + 0.0 turns a negative zero into zero
-    return f"{float(value) + 0.0:.{DIGITS}g}" if math.isfinite(value) else ""
 
 
 def pads_csv(check: Check) -> bytes:
@@ -104,8 +80,8 @@ def pads_csv(check: Check) -> bytes:
     return csv_bytes(head, rows)
 
 
-def levers_csv(check: Check) -> bytes:
-    """A row a lever or plate: where it hangs, its pivot, its load and its size."""
+def levers_csv(check: Check, marks: Mapping[str, str] | None = None) -> bytes:
+    """A row a lever or plate: where it hangs, its pivot, its load and its size; its mark where there are any."""
     rows = [
         [
             piece.number,
@@ -117,11 +93,12 @@ def levers_csv(check: Check) -> bytes:
             check.statics.piece_load[piece.name],
             length(piece),
             ratio(piece) if piece.kind == "lever" else None,
+            *([] if marks is None else [marks[piece.name]]),
         ]
         for piece in _pieces(check)
     ]
     head = ["lever", "tier", "parent", "kind", "x_m", "y_m", "load_N", "length_m", "ratio"]
-    return csv_bytes(head, rows)
+    return csv_bytes(head if marks is None else [*head, "mark"], rows)
 
 
 def holes_csv(check: Check) -> bytes:
@@ -195,16 +172,22 @@ def regions_csv(check: Check) -> bytes:
     return csv_bytes([*head, "under_at_m", "over_at_m", "use", "verdict"], rows)
 
 
-def summary(check: Check) -> dict[str, Any]:
-    """Return the answer at one glance: what summary.json holds.
+def summary(answer: Check | HardwareCheck) -> dict[str, Any]:
+    """Return the answer at one glance: what summary.json holds, of the hardware too where there is any.
 
     Errors, uses and shares are fractions, forces at the brief's load; null says "not limited" or "not known".
     """
+    check = answer if isinstance(answer, Check) else answer.check
     parts = _target_part(check) | _rig_part(check)
     if check.across is not None:
         from rigdesign.report.plan_summary import with_plan_part
 
         parts = with_plan_part(check, parts)
+    if not isinstance(answer, Check):
+        from rigdesign.report.summary_hardware import hardware_summary
+
+        del parts["findings"]  # those of the hardware are more, and stay last
+        parts |= hardware_summary(answer)
     return {key: _plain(value) for key, value in parts.items()}
 
 

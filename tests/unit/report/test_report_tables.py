@@ -15,7 +15,8 @@ from hand_rigs import lumped, make_rig
 from rigdesign.brief.model import Region
 from rigdesign.checks import check
 from rigdesign.checks.measures import length, ratio, steel_estimate
-from rigdesign.report.tables import cell, csv_bytes, summary, table_files
+from rigdesign.report.csv_cells import cell, csv_bytes
+from rigdesign.report.tables import summary, table_files
 
 X = np.array([0.5, 0.9, 1.6, 2.0, 2.9])
 FORCE = np.array([1300.0, 1100.0, 1700.0, 800.0, 500.0])
