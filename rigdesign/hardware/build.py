@@ -1,0 +1,242 @@
+"""From a drilled rig to its steel: sizes, heights and weights, round by round until nothing changes.
+
+Sizes depend on loads, loads on weights, weights on sizes; compressed rods on lengths, lengths on depths.  Each round
+sizes everything for the loads and lengths of the round before, and the search ends when a round changes nothing: then
+every member is the least for the very loads that it has.  Should sizes come round in a circle, the heaviest of the
+circle are kept, and it is said.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+import numpy as np
+
+from rigdesign.brief.model import Brief
+from rigdesign.display import counted, show
+from rigdesign.findings import Finding
+from rigdesign.hardware.balance import counterweights
+from rigdesign.hardware.catalogue import sections
+from rigdesign.hardware.levels import Levels, stand
+from rigdesign.hardware.levers import PROFILE, bending_capacity
+from rigdesign.hardware.marking import marks_of
+from rigdesign.hardware.members import (
+    Counterweights,
+    bodies_of,
+    fitting_need,
+    links_of,
+    masses_of,
+    pad_bodies,
+    shapes_of,
+)
+from rigdesign.hardware.model import Body, Hardware, Link, Mass, PadBody
+from rigdesign.hardware.owning import band_use
+from rigdesign.hardware.sizing import Bench, Sizes, make_bench, make_shop, size_all
+from rigdesign.hardware.wiring import design_loads, peak_jacks, wired
+from rigdesign.levers.marks import alike
+from rigdesign.levers.model import Rig
+from rigdesign.levers.weighing import StockLine
+from rigdesign.pads.outcome import Progress
+
+MOST_ROUNDS = 12
+"""Rounds of sizing at most."""
+
+TYPICAL_ARM = 0.3
+"""Arms of the levers for which the stock's bending moments are worked out for the grouping [m]."""
+
+TYPICAL_OVERHANG = 0.03
+"""Steel beyond an end hole, as the grouping weighs it [m]."""
+
+
+def stock_line(brief: Brief) -> StockLine:
+    """Return what levers of a brief's stock weigh for a bending moment at the brief's load, for the grouping.
+
+    They are of the build of the lowest tiers, with arms of `TYPICAL_ARM`; pins and deflection are not looked at.
+    """
+    rules = brief.hardware
+    shop = make_shop(rules)
+    build = rules.builds[-1]
+    moments, masses = [0.0], [0.0]
+    for section in sections(rules, PROFILE[build], shop.steel.density):
+        moment = bending_capacity(section, build, shop, TYPICAL_ARM) / (brief.peak * rules.overshoot)
+        if moment > moments[-1]:
+            moments.append(moment)
+            masses.append((1 if build == "hollow section" else 2) * section.mass)
+    return StockLine(np.array(moments[1:]), np.array(masses[1:]), TYPICAL_OVERHANG)
+
+
+@dataclass(frozen=True)
+class Round:
+    """What one round of sizing made."""
+
+    sizes: Sizes
+    levels: Levels
+    bodies: Mapping[str, Body]
+    links: tuple[Link, ...]
+    pads: tuple[PadBody, ...]
+    masses: Mapping[str, Mass]
+
+
+def build_hardware(rig: Rig, progress: Progress | None = None) -> Hardware:
+    """Choose sections, pins, links, jack and cell of a rig, and work out heights, weights and marks.
+
+    Parameters
+    ----------
+    rig
+        The rig as drilled, on whichever side of its specimen.
+    progress
+        Called now and then with the part done, 0 to 1, and a word for what is being done.
+
+    Returns
+    -------
+    Hardware
+        Where no stock can carry a member, what comes closest is drawn and `shortfalls` say so.
+    """
+    rules = rig.plan.target.brief.hardware
+    wiring = wired(rig)
+    groups = alike(rig) if rules.marks == "few" else tuple((name,) for name in wiring.pieces)
+    bench = make_bench(wiring, groups)
+    found, settled = _settle(bench, {}, progress)
+    findings = [] if settled else [_unsettled()]
+    hung: Counterweights = {}
+    without = with_weight = 0.0
+    if rules.balance == "as needed":
+        without, with_weight = band_use(wiring, {}), band_use(wiring, found.masses)
+    if rules.balance == "counterweights" or (with_weight > 1.0 >= without):
+        found, hung = _balanced(bench, found)
+        findings += _balance_words(hung, rules.balance == "as needed", with_weight)
+    if progress is not None:
+        progress(1.0, "hardware")
+    return _hardware(bench, found, tuple(findings))
+
+
+def _settle(bench: Bench, hung: Counterweights, progress: Progress | None) -> tuple[Round, bool]:
+    """Size until a round changes nothing; whether it ended so."""
+    masses: Mapping[str, Mass] = {}
+    before: Round | None = None
+    for number in range(MOST_ROUNDS):
+        if progress is not None:
+            progress(0.9 * number / MOST_ROUNDS, "sections and pins")
+        found = _one_round(bench, masses, before, hung)
+        if before is not None and found.sizes.key == before.sizes.key and found.levels == before.levels:
+            return found, True
+        masses, before = found.masses, found
+    assert before is not None
+    return before, False
+
+
+def _one_round(bench: Bench, masses: Mapping[str, Mass], before: Round | None, hung: Counterweights) -> Round:
+    rig = bench.wiring.rig
+    loads = design_loads(bench.wiring, masses)
+    lengths = {} if before is None else before.levels.lengths
+    sizes = size_all(bench, loads, peak_jacks(bench.wiring, masses), None if before is None else before.sizes, lengths)
+    bodies = bodies_of(bench, sizes, hung)
+    pads = pad_bodies(rig.plan.target.brief, side_of(rig), rig.pad_x, rig.pad_y)
+    pins = {f"pad {pad.pad}": pad.pin_height for pad in pads}
+    levels = stand(
+        bench.wiring,
+        shapes_of(bench, bodies),
+        pins,
+        lambda link: fitting_need(bench, sizes, link, loads[link.name]),
+    )
+    links = links_of(bench, sizes, levels.lengths, loads)
+    return Round(sizes, levels, bodies, links, pads, masses_of(bench, sizes, bodies, links, pads))
+
+
+def _balanced(bench: Bench, found: Round) -> tuple[Round, Counterweights]:
+    """Hang counterweights until sizes and weights agree: heavier levers need others."""
+    hung: Counterweights = {}
+    for _ in range(MOST_ROUNDS):
+        bare = masses_of(bench, found.sizes, bodies_of(bench, found.sizes, {}), found.links, found.pads)
+        wanted = counterweights(bench.wiring.rig, bare, found.links, whole=True)
+        key = found.sizes.key
+        hung = wanted
+        masses = masses_of(bench, found.sizes, bodies_of(bench, found.sizes, hung), found.links, found.pads)
+        found = _one_round(bench, masses, found, hung)
+        if found.sizes.key == key:
+            return found, hung
+    return found, hung
+
+
+def side_of(rig: Rig) -> int:
+    """Return the side of the specimen on which a rig stands: +1 that of +z, −1 that of −z."""
+    pull = 1 if rig.plan.target.brief.pads.action == "pull" else -1
+    return pull * (1 if float(rig.jack_forces.sum()) >= 0 else -1)
+
+
+def _hardware(bench: Bench, found: Round, findings: tuple[Finding, ...]) -> Hardware:
+    rig = bench.wiring.rig
+    stacks = tuple(found.sizes.stacks[tree.jack.name] for tree in rig.trees)
+    holes = {
+        name: {hole.name: found.sizes.joints[name, hole.name].hole for hole in piece.holes}
+        for name, piece in bench.wiring.pieces.items()
+    }
+    lugs = {link.lower.to: link.lower for link in found.links if link.lower.to.startswith("pad ")}
+    marks = marks_of(bench.wiring.pieces.values(), found.bodies, holes, found.links, found.pads, lugs, stacks)
+    return Hardware(
+        rig=rig,
+        side=side_of(rig),
+        bodies=found.bodies,
+        links=found.links,
+        pads=found.pads,
+        stacks=stacks,
+        heights=found.levels.heights,
+        marks=marks,
+        masses=found.masses,
+        shortfalls=found.sizes.shortfalls,
+        words=_words(bench),
+        findings=findings,
+    )
+
+
+def _words(bench: Bench) -> str:
+    rules = bench.rules
+    factor = {
+        "BTH-1": f"ASME BTH-1, design factor {rules.design_factor:g}",
+        "EN 1993": f"EN 1993, load factor {rules.load_factor:g}",
+        "AISC 360": "AISC 360, allowable strength",
+    }[rules.rules]
+    alike_words = ", pieces of one mark sized for the most loaded of them" if rules.marks == "few" else ""
+    return (
+        f"sections: the lightest of the stock, then the smallest pins, that pass under {factor}, at the test's peak "
+        f"times {rules.overshoot:g}{alike_words}"
+    )
+
+
+def _balance_words(hung: Counterweights, needed: bool, use: float) -> list[Finding]:
+    total = sum(mass for masses in hung.values() for mass in masses.values())
+    count = sum(len(masses) for masses in hung.values())
+    if not count:
+        return []
+    why = (
+        f"with the rig's own weight the band use would be {use:.3g} at the brief's load, so counterweights are put on"
+        if needed
+        else "counterweights are put on, as the brief asks"
+    )
+    named = ", ".join(
+        f"{show(mass, 'mass')} on {piece} hole {hole}"
+        for piece, masses in hung.items()
+        for hole, mass in masses.items()
+    )
+    return [
+        Finding(
+            "behaviour",
+            "note",
+            "counterweights",
+            f"{why}: {named}",
+            f"{show(total, 'mass')} in {counted(count, 'place')}",
+            "",
+            'balance = "none" leaves them off' if needed else "",
+        )
+    ]
+
+
+def _unsettled() -> Finding:
+    return Finding(
+        "strength",
+        "warning",
+        "rig",
+        f"sizes and weights did not settle in {MOST_ROUNDS} rounds; those of the last round are kept, and some may be "
+        "a size larger than needed",
+    )

@@ -1,0 +1,120 @@
+"""How high everything stands: tier by tier, from the pads to the jack.
+
+All pieces of one tier of a tree stand at one height.  A tier stands as low as its links allow: fittings need room, and
+levers that turn by their allowed angle must keep the clearance from what hangs below them.  What a link needs is the
+largest of
+
+    its fittings and adjuster;
+    half the depths of both pieces, the clearance, and what turning brings them nearer;
+    the length at which its swing stays in the brief's limit when its upper piece turns;
+    the brief's own least length.
+
+Turning: with the upper piece turned by φ and the lower one by −φ, a point of the lower one at a distance s from its
+pivot under the upper one comes nearer by s · tan 2φ.  Only where one lies over the other in plan does s count.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass
+from math import ceil, cos, hypot, sin, tan
+
+from rigdesign.brief.model_hardware import HardwareRules
+from rigdesign.hardware.wiring import LinkPlace, Wired
+from rigdesign.levers.model import Piece
+
+LEVEL_STEP = 0.005
+"""Links between tiers are multiples of this [m], so that a workshop cuts round lengths."""
+
+NO_TURN = 1e-9
+"""Directions closer to one line than this [rad] are parallel."""
+
+
+@dataclass(frozen=True)
+class Shape:
+    """What a piece needs in height: half its depth, half its width and its overhang [m]."""
+
+    half_depth: float
+    half_width: float
+    overhang: float
+
+
+@dataclass(frozen=True)
+class Levels:
+    """Heights [m] of pieces and jacks by name, and lengths of links [m] by name."""
+
+    heights: Mapping[str, float]
+    lengths: Mapping[str, float]
+
+
+def stand(
+    wiring: Wired,
+    shapes: Mapping[str, Shape],
+    pins: Mapping[str, float],
+    fittings: Callable[[LinkPlace], float],
+) -> Levels:
+    """Return how high every piece and jack stands.
+
+    Parameters
+    ----------
+    shapes
+        By name of the piece.
+    pins
+        Height of each pad's pin by name [m].
+    fittings
+        What a link's own parts need, pin to pin [m].
+    """
+    rules = wiring.rig.plan.target.brief.hardware
+    heights = dict(pins)
+    for index, tree in enumerate(wiring.rig.trees):
+        own = [link for link in wiring.links if link.tree == index]
+        tiers = max((piece.tier for piece in tree.pieces), default=0)
+        for tier in range(tiers, -1, -1):
+            names = {piece.name for piece in tree.pieces if piece.tier == tier} if tier else {tree.jack.name}
+            links = [link for link in own if link.upper[0] in names]
+            levels = [heights[link.lower[0]] + needed(wiring, link, shapes, fittings(link), rules) for link in links]
+            heights |= dict.fromkeys(sorted(names), max(levels))
+    lengths = {link.name: heights[link.upper[0]] - heights[link.lower[0]] for link in wiring.links}
+    return Levels({name: height for name, height in heights.items() if name not in pins}, lengths)
+
+
+def needed(wiring: Wired, link: LinkPlace, shapes: Mapping[str, Shape], fittings: float, rules: HardwareRules) -> float:
+    """Return the least length of a link [m], a multiple of `LEVEL_STEP`."""
+    upper, lower = wiring.pieces.get(link.upper[0]), wiring.pieces.get(link.lower[0])
+    above = shapes[upper.name].half_depth if upper is not None else 0.0
+    below = shapes[lower.name].half_depth if lower is not None else 0.0
+    wants = [fittings, rules.link_length, above + below + rules.clearance + _nearing(upper, lower, shapes, rules)]
+    if upper is not None:
+        hole = next(hole for hole in upper.ends if hole.name == link.upper[1])
+        arm = hypot(hole.u - upper.pivot.u, hole.v - upper.pivot.v)
+        wants.append(arm * (1.0 - cos(rules.turn)) / tan(rules.swing))
+    return ceil(round(max(wants) / LEVEL_STEP, 6)) * LEVEL_STEP
+
+
+def _nearing(upper: Piece | None, lower: Piece | None, shapes: Mapping[str, Shape], rules: HardwareRules) -> float:
+    """What turning brings two joined pieces nearer to each other [m]."""
+    if upper is None:
+        # under a jack that stands still: the piece's own ends rise, but beside the jack
+        return 0.0
+    if lower is None:
+        return shapes[upper.name].overhang * sin(rules.turn)
+    reach = max(_under(upper, lower, end.x - lower.pivot.x, end.y - lower.pivot.y, shapes) for end in lower.ends)
+    return reach * tan(2 * rules.turn)
+
+
+def _under(upper: Piece, lower: Piece, dx: float, dy: float, shapes: Mapping[str, Shape]) -> float:
+    """How far along the arm dx, dy [m] of the lower piece it lies under the upper one."""
+    arm = hypot(dx, dy) + shapes[lower.name].overhang
+    if upper.kind == "plate" or lower.kind == "plate":
+        return arm
+    first, last = upper.ends[0], upper.ends[-1]
+    along_x, along_y = last.x - first.x, last.y - first.y
+    inward_x, inward_y = upper.pivot.x - lower.pivot.x, upper.pivot.y - lower.pivot.y
+    length = hypot(along_x, along_y)
+    across = abs(along_x * dy - along_y * dx) / (length * max(hypot(dx, dy), NO_TURN))
+    band = shapes[upper.name].half_width + shapes[lower.name].half_width
+    crossed = arm if across < NO_TURN else min(arm, band / across)
+    if dx * inward_x + dy * inward_y > 0:
+        return crossed
+    # an arm that points away from the upper pivot lies under its overhang alone
+    return min(crossed, shapes[upper.name].overhang + band)

@@ -1,0 +1,162 @@
+"""From sizes to members: bodies, links with their ends, pads, masses, all with their places."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import replace
+
+import numpy as np
+
+from rigdesign.brief.model import Brief
+from rigdesign.brief.model_hardware import Surface
+from rigdesign.hardware import levers, weighing
+from rigdesign.hardware.catalogue import material, threads, webbings
+from rigdesign.hardware.joints import GRIP, Joint
+from rigdesign.hardware.levels import Shape
+from rigdesign.hardware.links import ADJUST, ROD_GRADE, SHANK, STUD, TURNBUCKLE, screw_for
+from rigdesign.hardware.model import Body, End, Fitting, Link, Mass, PadBody
+from rigdesign.hardware.sizing import Bench, Sizes
+from rigdesign.hardware.wiring import LinkPlace, Place
+from rigdesign.levers.model import HoleName
+from rigdesign.target.curve import Floats
+
+LEAST_ROD = 0.02
+"""Free rod between two fittings [m], for a spanner; common practice."""
+
+Counterweights = Mapping[str, Mapping[HoleName, float]]
+
+
+def surface_heights(surface: Surface | None, side: int, x: Floats, y: Floats) -> Floats:
+    """Return the heights [m] of the specimen's surface at x, y (n,) [m], towards the rig.
+
+    Linear between the points that the brief gives, beyond them the value of the nearest.
+    """
+    if surface is None:
+        return np.zeros(x.size)
+    if surface.y.size == 0:
+        return np.asarray(side * np.interp(x, surface.x, surface.z))
+    from scipy.interpolate import LinearNDInterpolator, NearestNDInterpolator
+
+    points = np.column_stack([surface.x, surface.y])
+    at = np.column_stack([x, y])
+    inside = LinearNDInterpolator(points, surface.z)(at)
+    return np.asarray(side * np.where(np.isnan(inside), NearestNDInterpolator(points, surface.z)(at), inside))
+
+
+def pad_bodies(brief: Brief, side: int, x: Floats, y: Floats) -> tuple[PadBody, ...]:
+    """Return the pads with the heights of surface and pin."""
+    rules = brief.hardware
+    heights = surface_heights(rules.surface, side, x, y)
+    return tuple(PadBody(i + 1, rules.pad_mass, rules.pad_height, float(h)) for i, h in enumerate(heights))
+
+
+def bodies_of(bench: Bench, sizes: Sizes, counterweights: Counterweights) -> dict[str, Body]:
+    """Return what each lever and plate is made of, in the rig's order."""
+    bodies = {}
+    for name, piece in bench.wiring.pieces.items():
+        hung = dict(counterweights.get(name, {}))
+        if name in sizes.plates:
+            plate = sizes.plates[name]
+            bodies[name] = Body(
+                name, "plate", plate.section, bench.shop.steel, 1, 0.0, plate.radius, 0.0, (), plate.outline, hung
+            )
+            continue
+        lever, build = sizes.levers[name], bench.build_of(piece)
+        twin = build != "hollow section"
+        arms = {hole.name: float(np.hypot(hole.u - piece.pivot.u, hole.v - piece.pivot.v)) for hole in piece.ends}
+        spacers = levers.spacer_places(arms["A"], arms["B"]) if twin else ()
+        bodies[name] = Body(
+            name, build, lever.section, bench.shop.steel, 2 if twin else 1, lever.gap, lever.overhang,
+            lever.side_plate, spacers, np.empty((0, 2)), hung,
+        )  # fmt: skip
+    return bodies
+
+
+def shapes_of(bench: Bench, bodies: Mapping[str, Body]) -> dict[str, Shape]:
+    """Return what each piece needs in height and in plan."""
+    return {
+        name: Shape(body.section.depth / 2, body.overhang if body.build == "plate" else body.across / 2, body.overhang)
+        for name, body in bodies.items()
+    }
+
+
+def fitting_need(bench: Bench, sizes: Sizes, link: LinkPlace, load: float) -> float:
+    """Return what a link's fittings and adjuster need between its pins [m]."""
+    size = sizes.links[link.name]
+    joints = [(place, sizes.joints[place]) for place in (link.upper, link.lower)]
+    if size.kind == "rod":
+        need = 2 * ADJUST * size.width + LEAST_ROD
+        for place, joint in joints:
+            if _fitting(bench, sizes, place) == "stud":
+                need += joint.inner / 2 + STUD * size.width
+            else:
+                reach = weighing.FORK_DEPTH if _fitting(bench, sizes, place) == "fork" else 1.0
+                need += reach * joint.radius + SHANK * size.width
+        return need
+    need = sum(joint.radius for _, joint in joints) + LEAST_ROD
+    return need + (TURNBUCKLE * _screw(bench, load) if has_turnbuckle(bench, link) else 0.0)
+
+
+def has_turnbuckle(bench: Bench, link: LinkPlace) -> bool:
+    """Whether a link has a turnbuckle: rods turn in their fittings, others have one where they carry a pad."""
+    return bench.rules.links != "rod" and link.lower[0].startswith("pad ")
+
+
+def _screw(bench: Bench, load: float) -> float:
+    return screw_for(load, threads(), material(ROD_GRADE), bench.shop.rules).nominal
+
+
+def _fitting(bench: Bench, sizes: Sizes, place: Place) -> Fitting:
+    """What a link ends in at a place."""
+    name = place[0]
+    if name in sizes.plates:
+        return "stud"
+    if bench.rules.links == "webbing":
+        return "loop"
+    if name in sizes.levers and bench.build_of(bench.wiring.pieces[name]) == "hollow section":
+        return "fork"
+    return "eye"
+
+
+def links_of(bench: Bench, sizes: Sizes, lengths: Mapping[str, float], loads: Mapping[str, float]) -> tuple[Link, ...]:
+    """Return the links with their ends, lengths and masses."""
+    made = []
+    for place in bench.wiring.links:
+        size = sizes.links[place.name]
+        upper, lower = (_end(bench, sizes, at) for at in (place.upper, place.lower))
+        turnbuckle = has_turnbuckle(bench, place)
+        screw = _screw(bench, loads[place.name]) if turnbuckle else 0.0
+        adjust = ADJUST * size.width if size.kind == "rod" else TURNBUCKLE / 4 * screw
+        link = Link(
+            place.number, size.kind, size.size, size.width, size.thickness, size.stress_area, size.material,
+            bench.shop.steel, bench.shop.pin_steel, upper, lower, lengths[place.name], adjust, 0.0,
+        )  # fmt: skip
+        line_mass = next((w.mass for w in webbings() if w.name == size.size), 0.0)
+        mass = weighing.link_mass(link, sizes.straps.get(place.name), line_mass, turnbuckle, screw)
+        made.append(replace(link, mass=mass))
+    return tuple(made)
+
+
+def _end(bench: Bench, sizes: Sizes, place: Place) -> End:
+    joint: Joint = sizes.joints[place]
+    name, hole = place
+    fitting = _fitting(bench, sizes, place)
+    grip = 0.0 if fitting == "stud" else joint.inner + 2 * (joint.gap + joint.outer)
+    length = 0.0 if fitting == "stud" else grip + GRIP
+    return End(fitting, name, hole, joint.pin, joint.hole, length, joint.inner, joint.outer, joint.gap, joint.radius)
+
+
+def masses_of(
+    bench: Bench, sizes: Sizes, bodies: Mapping[str, Body], links: tuple[Link, ...], pads: tuple[PadBody, ...]
+) -> dict[str, Mass]:
+    """Return mass and centre of every lever, plate, link and pad by name."""
+    masses = {}
+    for name, piece in bench.wiring.pieces.items():
+        holes: dict[HoleName, float] = {hole.name: sizes.joints[name, hole.name].hole for hole in piece.holes}
+        if bodies[name].build == "plate":
+            masses[name] = weighing.plate_mass(piece, bodies[name], holes)
+        else:
+            masses[name] = weighing.lever_mass(piece, bodies[name], holes)
+    masses |= {link.name: Mass(link.mass, 0.0, 0.0) for link in links}
+    masses |= {f"pad {pad.pad}": Mass(pad.mass, 0.0, 0.0) for pad in pads}
+    return masses
