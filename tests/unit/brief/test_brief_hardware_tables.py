@@ -194,7 +194,8 @@ def test_a_stock_without_the_profile_for_the_build(refusal, builds: str, rows: s
 def test_jacks_and_load_cells(read) -> None:
     hardware = read(
         ("", '[hardware]\njacks = "jacks.csv"\ncells = "cells.csv"'),
-        jacks="jack,force [kN],length [m],stroke [mm],mass [kg],pin [mm]\nJ 20,20,0.62,300,14,25\nJ 5,5,0.4,150,3.5,16\n",
+        jacks="jack,force [kN],length [m],stroke [mm],mass [kg],pin [mm]\n"
+        "J 20,20,0.62,300,14,25\nJ 5,5,0.4,150,3.5,16\n",
         cells="cell,pin [in],force [lbf],length [mm],mass [g]\nC 1,0.5,1000,90,850\n",
     ).hardware
     assert hardware.jacks == (
