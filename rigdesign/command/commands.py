@@ -14,8 +14,10 @@ from rigdesign.command import ACCEPTED, LIMITS
 from rigdesign.command.counts import read_counts
 from rigdesign.command.pipe import reader_may_leave
 from rigdesign.command.session import Session
+from rigdesign.display import counted
 
 if TYPE_CHECKING:
+    from rigdesign.checks.hardware.model import HardwareCheck
     from rigdesign.checks.model import Check
     from rigdesign.command.terminal import Terminal
     from rigdesign.display import System
@@ -29,7 +31,7 @@ _US = click.option(
 )
 _REPLACE = click.option("--replace", is_flag=True, help="Replace the folder or figure of an earlier run.")
 _PNG = click.option("--png", is_flag=True, help="Write the figures as PNG as well.")
-_NO_FIGURES = click.option("--no-figures", is_flag=True, help="Write no figures.")
+_NO_FIGURES = click.option("--no-figures", is_flag=True, help="Write no figures and no drawings.pdf.")
 _BRIEF = click.argument("brief", type=click.Path(path_type=Path), metavar="BRIEF")
 
 
@@ -89,7 +91,7 @@ class _Wanted:
     png: bool
     system: System
 
-    def write(self, check: Check) -> Path | None:
+    def write(self, answer: HardwareCheck | Check) -> Path | None:
         """Write the rig folder if one is wanted, and return where it is."""
         from rigdesign.report.folder import write_folder
         from rigdesign.report.writing import rig_files
@@ -97,12 +99,14 @@ class _Wanted:
         if self.folder is None:
             return None
         write_folder(
-            rig_files(check, figures=self.figures, png=self.png, system=self.system), self.folder, self.replace
+            rig_files(answer, figures=self.figures, png=self.png, system=self.system), self.folder, self.replace
         )
         return self.folder
 
 
-def _finish(session: Session, answer: Check | Refusal, terminal: Terminal | None, wanted: _Wanted) -> int:
+def _finish(
+    session: Session, answer: HardwareCheck | Check | Refusal, terminal: Terminal | None, wanted: _Wanted
+) -> int:
     """Write the folder, then say the answer, and return the exit code."""
     from rigdesign.findings import Refusal
     from rigdesign.report.tables import summary
@@ -120,8 +124,16 @@ def _finish(session: Session, answer: Check | Refusal, terminal: Terminal | None
     else:
         terminal.check(answer)
         if session.written is not None:
-            terminal.lines(["", f"Written to {session.written}"])
+            terminal.lines(["", _written_words(session.written)])
     return ACCEPTED if answer.accepted else LIMITS
+
+
+def _written_words(folder: Path) -> str:
+    """Where the rig was written, and what in it a workshop starts from."""
+    cutting = len(list(folder.glob("dxf/*.dxf")))
+    shop = ["drawings.pdf"] if (folder / "drawings.pdf").exists() else []
+    shop += [f"dxf/ with {counted(cutting, 'cutting file')}"] if cutting else []
+    return f"Written to {folder}" + (f"; for the workshop: {', '.join(shop)}" if shop else "")
 
 
 @rigdesign.command()
@@ -203,18 +215,20 @@ def assess(
     us: bool,
 ) -> int:
     """Check RIG (a rig folder or its rig.json) again: as it is, with other holes, or against another brief."""
-    from rigdesign import chain
     from rigdesign.brief import read_brief
+    from rigdesign.checks.model import Check
+    from rigdesign.command.assessing import assessed
     from rigdesign.report.folder import require_free
-    from rigdesign.report.writing import read_rig
+    from rigdesign.report.writing import read_rig_with_hardware
 
-    known = read_rig(rig)
+    known, hardware = read_rig_with_hardware(rig)
     other = read_brief(brief) if brief is not None else None
     if out is not None:
         require_free(out, replace)
-    check = chain.assess(known, holes, other)
+    answer = assessed(known, hardware, holes, other)
+    check = answer if isinstance(answer, Check) else answer.check
     terminal = None if as_json else _echoed(check.rig.plan.target, _system(us))
-    return _finish(session, check, terminal, _Wanted(out, replace, not no_figures, png, _system(us)))
+    return _finish(session, answer, terminal, _Wanted(out, replace, not no_figures, png, _system(us)))
 
 
 @rigdesign.command()

@@ -15,16 +15,19 @@ from rich.text import Text
 
 from rigdesign.chain import Study
 from rigdesign.checks.measures import ratio, reaches
+from rigdesign.checks.model import Check
 from rigdesign.checks.remarks_practice import pressures
 from rigdesign.checks.text import UNIT_KIND, percent
 from rigdesign.command.pipe import reader_may_leave
+from rigdesign.command.terminal_hardware import made_table
 from rigdesign.display import System, counted, show
 from rigdesign.findings import Finding, Refusal
 from rigdesign.report.scales import arm_scale, scale
 from rigdesign.report.sentences import CAUTION, answer, finding_lines, refusal_lines, verdict
+from rigdesign.report.sentences_hardware import CAUTION_HARDWARE, hardware_answer
 
 if TYPE_CHECKING:
-    from rigdesign.checks.model import Check
+    from rigdesign.checks.hardware.model import HardwareCheck
 
 PLAIN_WIDTH = 100
 """Columns where the output is a file or a pipe."""
@@ -85,23 +88,30 @@ class Terminal:
         with reader_may_leave():
             self._console.print(what, soft_wrap=isinstance(what, Text))
 
-    def check(self, check: Check) -> None:
+    def check(self, result: Check | HardwareCheck) -> None:
         """Print everything on a checked rig: sentences, pads, levers, regions, findings, caution."""
+        check = result if isinstance(result, Check) else result.check
         self.heading("Answer")
-        verdict, *others = answer(check, self.system)
-        self.lines([verdict], style="bold green" if check.accepted else "bold red")
+        verdict, *others = answer(result, self.system)
+        self.lines([verdict], style="bold green" if result.accepted else "bold red")
         self.lines(others)
+        if not isinstance(result, Check):
+            self.heading("Hardware")
+            self.lines(hardware_answer(result, self.system))
         self.heading("Pads")
         self.table(*_pad_table(check, self.system))
         if any(tree.pieces for tree in check.rig.trees):
             has_plates = any(piece.kind == "plate" for tree in check.rig.trees for piece in tree.pieces)
             self.heading("Levers and plates" if has_plates else "Levers")
             self.table(*_lever_table(check, self.system))
+        if not isinstance(result, Check):
+            self.heading("Parts to make")
+            self.table(*made_table(result, self.system))
         self.heading("Errors by stretch")
         self.table(*_region_table(check, self.system))
-        self.findings(check.findings)
+        self.findings(result.findings)
         self.heading("Caution")
-        self.lines([CAUTION])
+        self.lines([CAUTION if isinstance(result, Check) else CAUTION_HARDWARE])
 
     def findings(self, findings: tuple[Finding, ...]) -> None:
         """Print the findings, failures and warnings in colour."""

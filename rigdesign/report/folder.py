@@ -9,6 +9,7 @@ Depends on: errors.
 from __future__ import annotations
 
 import os
+import re
 import shutil
 import tempfile
 from collections.abc import Mapping
@@ -20,7 +21,13 @@ MARKS = (frozenset({"rig.json", "summary.json"}), frozenset({"study.csv", "study
 """Files that tell a folder written here from any other: all of one set are in it."""
 
 TABLES = frozenset({"rig.json", "summary.json", "pads.csv", "levers.csv", "holes.csv", "jacks.csv", "stations.csv",
-                    "regions.csv", "across.csv", "study.csv", "study.json"})  # fmt: skip
+                    "regions.csv", "across.csv", "study.csv", "study.json", "parts.csv", "strength.csv", "links.csv",
+                    "pins.csv", "tare.csv", "cut_list.csv", "drill_list.csv", "masses.csv", "drawings.pdf",
+                    })  # fmt: skip
+CUTTING_FILES = "dxf"
+"""The folder inside the rig folder for files that a machine cuts from, by their ending."""
+
+CUTTING_NAME = re.compile(r"[A-Z]\d+(_side)?\.dxf")
 FIGURES = frozenset({"target", "load_and_pads", "shear_and_moment", "tree", "plan", "across", "study"})
 FIGURE_ENDINGS = frozenset({".svg", ".png"})
 
@@ -72,6 +79,7 @@ def _require_ours(folder: Path) -> None:
     """Only a folder that was written here is replaced, and only if nothing else was put into it."""
     try:
         names = {path.name for path in folder.iterdir()}
+        inside = _names_in(folder / CUTTING_FILES)
     except OSError as error:
         raise OutputError(f"{folder}: this folder cannot be read: {error.strerror}") from error
     if not any(marks <= names for marks in MARKS):
@@ -79,6 +87,7 @@ def _require_ours(folder: Path) -> None:
             f"{folder}: this is not a folder that rigdesign wrote (it holds no rig.json with its summary.json), so it "
             "is not replaced; name another"
         )
+    names = names - {CUTTING_FILES} | inside if inside is not None else names
     strangers = sorted(name for name in names if not _is_ours(name))
     if strangers:
         more = f" and {len(strangers) - 1} more" if len(strangers) > 1 else ""
@@ -88,8 +97,17 @@ def _require_ours(folder: Path) -> None:
         )
 
 
+def _names_in(folder: Path) -> set[str] | None:
+    """Names of what is in a folder inside the rig folder, with its own before them; None where it is no folder."""
+    if folder.is_symlink() or not folder.is_dir():
+        return None
+    return {f"{folder.name}/{path.name}" for path in folder.iterdir()}
+
+
 def _is_ours(name: str) -> bool:
     path = PurePosixPath(name)
+    if path.parent.name == CUTTING_FILES:
+        return CUTTING_NAME.fullmatch(path.name) is not None
     return name in TABLES or (path.stem in FIGURES and path.suffix in FIGURE_ENDINGS)
 
 
@@ -99,7 +117,7 @@ def write_folder(files: Mapping[str, bytes], folder: Path, replace: bool = False
     Parameters
     ----------
     files
-        Contents by file name.
+        Contents by file name; a name may go into one folder inside, such as "dxf/L1.dxf".
     folder
         The folder to write; the one above it must exist.
     replace
@@ -134,6 +152,7 @@ def _beside(folder: Path) -> str:
 
 def _fill(fresh: Path, files: Mapping[str, bytes]) -> None:
     for name, content in files.items():
+        (fresh / name).parent.mkdir(exist_ok=True)
         with open(fresh / name, "xb") as file:
             file.write(content)
     # a temporary folder is closed to others; what stands in the end has the rights that any new folder gets

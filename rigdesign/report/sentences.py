@@ -5,6 +5,8 @@ Every number comes from the check or, where it is said to be proven, from the pa
 
 from __future__ import annotations
 
+from typing import TYPE_CHECKING
+
 from rigdesign.brief.model import Quantity
 from rigdesign.checks.model import Check, RegionVerdict
 from rigdesign.checks.regions import WHOLES
@@ -14,6 +16,9 @@ from rigdesign.display import System, counted, show
 from rigdesign.findings import Finding, Refusal
 from rigdesign.target.cuts import ACROSS
 from rigdesign.words import LOAD_CELL_FLOOR, ROUNDING
+
+if TYPE_CHECKING:
+    from rigdesign.checks.hardware.model import HardwareCheck
 
 CAUTION = (
     "The check takes levers and links as rigid, weightless and free of friction; strength, clearances and deflections "
@@ -27,9 +32,13 @@ MOST_REASONS = 3
 _AT_ONE_PLACE = 1e-6  # [m]: far below what a drawing or a survey can tell
 
 
-def answer(check: Check, system: System = "SI") -> list[str]:
-    """Return the sentences on a checked rig: verdict, errors, what is proven, jack, and what a load cell sees."""
-    lines = [verdict(check)]
+def answer(result: Check | HardwareCheck, system: System = "SI") -> list[str]:
+    """Return the sentences on a checked rig: verdict, errors, what is proven, jack, and what a load cell sees.
+
+    Those on its hardware are `sentences_hardware.hardware_answer`'s; the verdict is on both.
+    """
+    check = result if isinstance(result, Check) else result.check
+    lines = [verdict(result)]
     quantities = [row.quantity for row in check.regions if row.name in WHOLES and _is_told(row)]
     # the moment first: it is what a test is judged by
     quantities.sort(key=lambda quantity: quantity != "moment")
@@ -49,15 +58,19 @@ def _is_surface(check: Check) -> bool:
     return check.rig.plan.target.brief.specimen.is_surface
 
 
-def verdict(check: Check) -> str:
+def verdict(result: Check | HardwareCheck) -> str:
     """The verdict in one sentence, with what binds where a rig is not accepted."""
+    check = result if isinstance(result, Check) else result.check
     size = f"{counted(check.rig.plan.n_pads, 'pad')} on {pieces_words(check)}"
     use = f"the largest error takes {percent(check.band_use)} of its band"
-    if check.accepted:
+    if result.accepted:
         judged = use if any(region.use is not None for region in check.regions) else "no band was asked for"
-        return f"Accepted: {size}; {judged}."
+        steel = (
+            "" if isinstance(result, Check) else f", the most used member {percent(result.utilisation)} of its limit"
+        )
+        return f"Accepted: {size}; {judged}{steel}."
     broken = [region for region in check.regions if region.accepted is False]
-    failures = [finding for finding in check.findings if finding.severity == "failure"]
+    failures = [finding for finding in result.findings if finding.severity == "failure"]
     reasons = [
         f"{region.quantity} over {region.name} takes {_beyond(region.use or 0.0)} of its band" for region in broken
     ]

@@ -106,5 +106,5 @@ def _step(step: Step) -> dict[str, Any]:
 
 
 def tare_of_load(result: HardwareCheck) -> float:
-    """What the rig's own weight brings to the pads, over what they bring together at the brief's load."""
-    return abs(float(result.tare.pad_tare.sum())) / abs(float(result.check.statics.pad_force.sum()))
+    """The rig's own weight over what the pads bring together at the brief's load."""
+    return abs(float(result.tare.pad_tare.sum())) / abs(float(result.tare.step(1.0).pad_force.sum()))

@@ -15,13 +15,15 @@ from rigdesign.findings import Refusal
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
+    from rigdesign.checks.hardware.model import HardwareCheck
     from rigdesign.checks.model import Check
     from rigdesign.display import System
+    from rigdesign.hardware.model import Hardware
     from rigdesign.levers.model import Rig
 
 
 def write(
-    answer: Check | Refusal,
+    answer: HardwareCheck | Check | Refusal,
     folder: str | os.PathLike[str],
     *,
     replace: bool = False,
@@ -33,11 +35,11 @@ def write(
     Parameters
     ----------
     answer
-        What `design` or `assess` returned.
+        What `design`, `arrange` or `assess` returned.
     folder
         Where to write; left alone if it exists, unless `replace`.
     figures, png
-        Whether to draw the figures (SVG), and whether to add them as PNG.
+        Whether to draw the figures (SVG) and the sheets (drawings.pdf), and whether to add the figures as PNG.
 
     Raises
     ------
@@ -55,14 +57,32 @@ def write(
     return Path(folder)
 
 
-def rig_files(check: Check, *, figures: bool = True, png: bool = False, system: System = "SI") -> dict[str, bytes]:
-    """Return every file of the rig folder by name."""
+def rig_files(
+    answer: HardwareCheck | Check, *, figures: bool = True, png: bool = False, system: System = "SI"
+) -> dict[str, bytes]:
+    """Return every file of the rig folder by name; those of the hardware where the answer has any."""
+    from rigdesign.checks.model import Check
     from rigdesign.record.rig_json import rig_to_json
     from rigdesign.report.tables import table_files
 
-    files = {"rig.json": rig_to_json(check).encode(), **table_files(check)}
+    files = {"rig.json": rig_to_json(answer).encode(), **table_files(answer)}
+    check = answer if isinstance(answer, Check) else answer.check
     if figures or png:
         files |= figure_files(check, svg=figures, png=png, system=system)
+    if not isinstance(answer, Check):
+        files |= shop_files(answer, sheets=figures, system=system)
+    return files
+
+
+def shop_files(result: HardwareCheck, *, sheets: bool = True, system: System = "SI") -> dict[str, bytes]:
+    """Return what a workshop builds from: a DXF for each flat and plate, and the sheets as drawings.pdf."""
+    from rigdesign.report.dxf import dxf_files
+
+    files = dxf_files(result)
+    if sheets:
+        from rigdesign.report.sheets import drawings_pdf
+
+        files["drawings.pdf"] = drawings_pdf(result, system)
     return files
 
 
@@ -110,12 +130,34 @@ def read_rig(path: str | os.PathLike[str]) -> Rig:
     InputError
         If there is no rig at this path, or it cannot be read.
     """
+    return read_rig_with_hardware(path)[0]
+
+
+def read_rig_with_hardware(path: str | os.PathLike[str]) -> tuple[Rig, Hardware | None]:
+    """Return the rig of a rig folder, or of its rig.json, and its hardware; None for a rig that has none.
+
+    Raises
+    ------
+    InputError
+        If there is no rig at this path, or it cannot be read.
+    """
+    from rigdesign.record.hardware_json import hardware_from_json
     from rigdesign.record.rig_json import rig_from_json
 
+    file, text = _rig_text(path)
+    try:
+        rig = rig_from_json(text)
+        return rig, hardware_from_json(text, rig)
+    except InputError as error:
+        raise InputError(error.what, where=f"{file}, {error.where}" if error.where else str(file), value=error.value,
+                         limit=error.limit, remedy=error.remedy) from error  # fmt: skip
+
+
+def _rig_text(path: str | os.PathLike[str]) -> tuple[Path, str]:
     place = Path(path)
     file = place / "rig.json" if place.is_dir() else place
     try:
-        text = file.read_bytes().decode("utf-8")
+        return file, file.read_bytes().decode("utf-8")
     except FileNotFoundError as error:
         raise InputError(
             "there is no rig here", where=str(path), remedy="name a rig folder, or the rig.json in it"
@@ -124,8 +166,3 @@ def read_rig(path: str | os.PathLike[str]) -> Rig:
         raise InputError("this is not a rig: it is not text in UTF-8", where=str(file)) from error
     except OSError as error:
         raise InputError(f"the rig cannot be read: {error.strerror}", where=str(file)) from error
-    try:
-        return rig_from_json(text)
-    except InputError as error:
-        raise InputError(error.what, where=f"{file}, {error.where}" if error.where else str(file), value=error.value,
-                         limit=error.limit, remedy=error.remedy) from error  # fmt: skip

@@ -61,11 +61,7 @@ def _link_rows(hardware: Hardware) -> list[PartRow]:
     rows = []
     for mark, members in by_mark(hardware, links).items():
         link = links[members[0]]
-        pins = sum(
-            pin_mass(end.pin, end.pin_length, link.pin_material)
-            for end in (link.upper, link.lower)
-            if end.fitting != "stud"
-        )
+        pins = sum(pin_mass(end, link.pin_material) for end in (link.upper, link.lower))
         size = f"{link.kind} {link.size}" if link.kind != "webbing" else link.size
         rows.append(
             PartRow(mark, "link", len(members), size, link.material.name, link.length, link.mass - pins, members)
