@@ -81,7 +81,8 @@ def _values(check: Check, force: Floats) -> dict[Quantity, Floats]:
         loads, near = rig_loads(target, rig.pad_x, force), 0.0
     result: dict[Quantity, Floats] = {}
     for rows in _curves(check):
-        # in plan the two sides of a jump stand a little off it, as they did when the check sampled them
+        # in plan the two sides of a jump stand a little off it, as they did when the check sampled them; at other
+        # stations that little changes nothing that counts
         x = rows.x + np.where(rows.outboard, near, -near)
         for quantity in rows.target:
             result[quantity] = by_side(lambda at, side, q=quantity: loads.value(q, at, side), x, rows.outboard)  # type: ignore[misc]
