@@ -1,0 +1,1 @@
+"""A rig that is kept."""
