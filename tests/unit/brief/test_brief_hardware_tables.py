@@ -18,6 +18,7 @@ def test_each_kind_of_profile(read) -> None:
     rows = (
         FLAT
         + "FL 80x12,flat,80,12,12,12,3\n"
+        + "SQ 40,flat,40,40,,,\n"
         + "U 100,channel,100,50,6,8.5,12\n"
         + "Q 60x40x3,hollow,60,40,3,,\n"
         + "Q 50x3,hollow,50,50,3,3,6.1\n"
@@ -25,18 +26,19 @@ def test_each_kind_of_profile(read) -> None:
         + "PL 25,plate,25,25,,,2\n"
     )
     stock = read(("", STEEL), steel=HEADING + rows).hardware.stock
-    assert [type(row) for row in stock] == [StockRow] * 7
+    assert [type(row) for row in stock] == [StockRow] * 8
     found = [(row.name, row.kind, row.depth, row.width, row.web, row.flange, row.bar) for row in stock]
     assert found == [
         ("FL 60x8", "flat", 0.06, 0.008, 0.008, 0.008, None),
         ("FL 80x12", "flat", 0.08, 0.012, 0.012, 0.012, 3.0),
+        ("SQ 40", "flat", 0.04, 0.04, 0.04, 0.04, None),
         ("U 100", "channel", 0.1, 0.05, 0.006, 0.0085, 12.0),
         ("Q 60x40x3", "hollow", 0.06, 0.04, 0.003, 0.003, None),
         ("Q 50x3", "hollow", 0.05, 0.05, 0.003, 0.003, 6.1),
         ("PL 20", "plate", 0.02, 0.02, 0.02, 0.02, None),
         ("PL 25", "plate", 0.025, 0.025, 0.025, 0.025, 2.0),
     ]
-    assert stock[3].where == "steel.csv, line 5"
+    assert stock[4].where == "steel.csv, line 6"
 
 
 def test_columns_in_any_order_and_units_without_those_that_are_not_needed(read) -> None:
