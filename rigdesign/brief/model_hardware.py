@@ -21,7 +21,8 @@ Build = Literal["twin flats", "twin channels", "hollow section"]
 
 @dataclass(frozen=True)
 class StockRow:
-    """A profile of the brief's own stock: outer sizes and thicknesses [m], of a flat `flange` and `web` its thickness.
+    """A profile of the brief's own stock: outer sizes and thicknesses [m]; of a flat `width`, `web` and `flange` are its
+    thickness, of a plate `depth` too, and of a hollow section `web` and `flange` are its wall.
 
     `bar` is the length in which it is sold [m], None for that of the brief; `where` is its row for messages.
     """
@@ -62,8 +63,8 @@ class HardwareRules:
     """What [hardware] asks for.  Lengths and diameters [m], angles [rad], masses [kg]; every field has a default.
 
     `headroom` is infinite where not given.  `builds` holds a build for each tier from the jack, the last one holding
-    for all further tiers.  `safety` is the design factor of BTH-1 or AISC 360's place in it (`design_factor`), or the
-    factor on loads of EN 1993 (`load_factor`); only that of the chosen rules counts.  Strength is held at the test's
+    for all further tiers.  `design_factor` is that of BTH-1, `load_factor` the factor on loads of EN 1993; only that of
+    the chosen rules counts, and AISC 360 has neither.  Strength is held at the test's
     peak times `overshoot`.  `pins` are diameters in rising order.  `play` is how much a hole is larger than its pin.
     `turn` is the angle by which every lever may turn, `swing` the largest angle of a link.  `link_length` is the least
     length of links pin to pin, 0 for as short as fits.  `deflection` is the largest deflection of a lever's end over

@@ -82,7 +82,9 @@ def test_bad_briefs_do_not(rest: str) -> None:
     assert not verdict(BASE + rest)
 
 
-@pytest.mark.parametrize("kind", ["length", "force", "running load", "moment", "pressure", "angle", "fraction"])
+@pytest.mark.parametrize(
+    "kind", ["length", "force", "running load", "moment", "pressure", "angle", "fraction", "mass", "density"]
+)
 def test_patterns_and_reader_agree(kind: str) -> None:
     fits = jsonschema.Draft202012Validator(pattern(kind)).is_valid
     texts = {
@@ -93,6 +95,8 @@ def test_patterns_and_reader_agree(kind: str) -> None:
         "pressure": ["3 psi", "3 N/mm²", "3 kN/m^2"],
         "angle": ["-12 deg", "0.2 rad"],
         "fraction": ["2 %", "150%"],
+        "mass": ["2.5 lb", "900 g", "0 kg"],
+        "density": ["7.85 g/cm^3", "0.284 lb/in³", "7850 kg/m3"],
     }
     for text in [*texts[kind], KINDS[kind].example]:
         quantity(text, kind)
