@@ -4,9 +4,9 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from rigdesign.checks.text import listed
 from rigdesign.display import System, show
-from rigdesign.report.lists import part_rows
+from rigdesign.report.lists import PartRow, part_rows
+from rigdesign.report.lists.members import numbers
 
 if TYPE_CHECKING:
     from rigdesign.checks.hardware.model import HardwareCheck
@@ -28,7 +28,12 @@ def made_table(result: HardwareCheck, system: System) -> tuple[list[str], list[l
         use = max((most.get(member, 0.0) for member in part.members), default=0.0)
         length = "" if part.length is None else show(part.length, "length", system)
         mass = "" if part.mass is None else show(part.mass, "mass", system)
-        numbers = listed(member.split()[1] for member in part.members)
         rows.append([part.mark, str(part.quantity), part.section, part.material, length, mass, f"{100 * use:.0f} %",
-                     f"{part.kind} {numbers}"])  # fmt: skip
+                     _for(part)])  # fmt: skip
     return headings, rows
+
+
+def _for(part: PartRow) -> str:
+    """Which members a mark stands for; a three-point plate is counted among the levers."""
+    kind = part.members[0].split()[0]
+    return f"{kind} {numbers(part.members)}" if len(part.members) == 1 else f"{kind}s {numbers(part.members)}"

@@ -42,7 +42,8 @@ def lever_mass(piece: Piece, body: Body, holes: dict[HoleName, float]) -> Mass:
     if body.side_plate > 0:
         area = {name: side_width(diameter) * section.depth - round_area(diameter) for name, diameter in holes.items()}
         parts += [(2 * density * body.side_plate * area[name], u[name]) for name in holes]
-    parts += [(spacer_mass(body), place) for place in body.spacers]
+    bored = density * body.profiles * section.web * round_area(SPACER_BORE)
+    parts += [(spacer_mass(body) - bored, place) for place in body.spacers]
     return _summed(parts, [(mass, u[name]) for name, mass in body.counterweights.items()])
 
 

@@ -1,7 +1,8 @@
 """DXF files for cutting and drilling: one for each distinct flat or plate, in millimetres, 1:1, named by its mark.
 
-Layers: OUTLINE has the closed outline, HOLES true circles of the holes' diameter, MARK the words beside it: mark,
-material, thickness, quantity, and where the datum is.  The datum is the drawing's origin.
+Layers: OUTLINE has the closed outline, HOLES true circles of the holes for pins, SPACERS those for the bolts of
+spacers, MARK the words beside it: mark, material, thickness, quantity, and where the datum is.  The datum is the
+drawing's origin.
 
 Version R2010, units millimetres.  The files hold neither date nor chance: the same rig gives the same bytes.
 
@@ -15,6 +16,7 @@ from collections.abc import Iterator
 from contextlib import contextmanager
 from typing import TYPE_CHECKING
 
+from rigdesign.report.lists.drilling import SPACER
 from rigdesign.report.lists.flats import Flat, flat_shapes
 from rigdesign.report.lists.model import PER_METRE
 
@@ -24,7 +26,7 @@ if TYPE_CHECKING:
     from rigdesign.checks.hardware.model import HardwareCheck
 
 VERSION = "R2010"
-LAYERS = {"OUTLINE": 7, "HOLES": 1, "MARK": 3}
+LAYERS = {"OUTLINE": 7, "HOLES": 1, "SPACERS": 5, "MARK": 3}
 """Layers and the numbers of their colours."""
 
 LETTERS = 0.06
@@ -74,7 +76,8 @@ def _draw(drawing: Drawing, flat: Flat) -> None:
     space.add_lwpolyline([(float(x), float(y)) for x, y in corners], close=True, dxfattribs={"layer": "OUTLINE"})
     for hole in flat.holes:
         centre = (PER_METRE * hole.x, PER_METRE * hole.y)
-        space.add_circle(centre, PER_METRE * hole.diameter / 2, dxfattribs={"layer": "HOLES"})
+        layer = "SPACERS" if hole.name == SPACER else "HOLES"
+        space.add_circle(centre, PER_METRE * hole.diameter / 2, dxfattribs={"layer": layer})
     low, high = corners.min(axis=0), corners.max(axis=0)
     size = min(max(LETTERS * float(max(high - low)), LEAST_LETTERS), LARGEST_LETTERS)
     # words stand beneath the outline, so that nothing of them is in the way of a cutter

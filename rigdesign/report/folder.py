@@ -27,7 +27,7 @@ TABLES = frozenset({"rig.json", "summary.json", "pads.csv", "levers.csv", "holes
 CUTTING_FILES = "dxf"
 """The folder inside the rig folder for files that a machine cuts from, by their ending."""
 
-CUTTING_NAME = re.compile(r"[A-Z]\d+(_side)?\.dxf")
+CUTTING_NAME = re.compile(r"[A-Z]\d+(_side(_pivot|_[ABC])?)?\.dxf")
 FIGURES = frozenset({"target", "load_and_pads", "shear_and_moment", "tree", "plan", "across", "study"})
 FIGURE_ENDINGS = frozenset({".svg", ".png"})
 

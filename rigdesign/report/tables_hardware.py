@@ -36,7 +36,7 @@ def hardware_tables(result: HardwareCheck) -> dict[str, bytes]:
 
 
 def parts_csv(result: HardwareCheck) -> bytes:
-    """A row a part mark; masses are of one, totals of all; a spacer's mass is in that of its lever."""
+    """A row a part mark; masses are of one, totals of all."""
     rows: list[list[Cell]] = [
         [row.mark, row.kind, row.quantity, row.section, row.material, row.length, row.mass, row.total,
          "; ".join(row.members)]

@@ -5,12 +5,16 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from rigdesign.hardware.model import Body, Hardware
-from rigdesign.levers.model import Hole, Piece
-from rigdesign.report.lists.members import by_mark, ends_by_place, pieces_by_name
+from rigdesign.hardware.weighing import SPACER_BOLT, SPACER_BORE
+from rigdesign.levers.model import Piece
+from rigdesign.report.lists.members import by_mark, pieces_by_name
 from rigdesign.report.lists.model import DrillRow
 
 if TYPE_CHECKING:
     from rigdesign.checks.hardware.model import HardwareCheck
+
+SPACER = "spacer"
+"""What a hole for the bolt of a spacer is called."""
 
 _NOTES = {
     "twin flats": "through both flats together",
@@ -27,20 +31,30 @@ def drill_rows(result: HardwareCheck) -> tuple[DrillRow, ...]:
 
 def drill_rows_of(hardware: Hardware) -> tuple[DrillRow, ...]:
     """Like `drill_rows`, from the hardware alone."""
-    pieces, ends = pieces_by_name(hardware), ends_by_place(hardware.links)
-    rows = []
-    for mark, members in by_mark(hardware, pieces).items():
-        piece, body = pieces[members[0]], hardware.bodies[members[0]]
-        for hole in sorted(piece.holes, key=lambda hole: (hole.u, hole.v)):
-            end = ends[f"{piece.name} {hole.name}"]
-            along, across = from_datum(piece, body, hole)
-            rows.append(DrillRow(mark, hole.name, along, across, end.hole, end.pin, _NOTES[body.build]))
+    pieces = pieces_by_name(hardware)
+    rows: list[DrillRow] = []
+    for members in by_mark(hardware, pieces).values():
+        rows += piece_drill_rows(hardware, pieces[members[0]], hardware.bodies[members[0]])
     return tuple(rows)
 
 
-def from_datum(piece: Piece, body: Body, hole: Hole) -> tuple[float, float]:
-    """Return a hole's place from the datum [m]: along and across, as `DrillRow` says."""
+def piece_drill_rows(hardware: Hardware, piece: Piece, body: Body) -> list[DrillRow]:
+    """Return the holes of one piece: those of its pins, and those of its spacers' bolts."""
+    mark, note = hardware.marks[piece.name], _NOTES[body.build]
+    rows = []
+    for hole in piece.holes:
+        end = hardware.end_at(piece.name, hole.name)
+        along, across = from_datum(piece, body, hole.u, hole.v)
+        rows.append(DrillRow(mark, hole.name, along, across, end.hole, end.pin, note))
+    for u in body.spacers:
+        along, across = from_datum(piece, body, u, 0.0)
+        rows.append(DrillRow(mark, SPACER, along, across, SPACER_BORE, SPACER_BOLT, "for the bolt of a spacer"))
+    return sorted(rows, key=lambda row: (row.along, row.across))
+
+
+def from_datum(piece: Piece, body: Body, u: float, v: float) -> tuple[float, float]:
+    """Return a place of a piece's frame from the datum [m]: along and across, as `DrillRow` says."""
     if piece.kind == "plate":
-        u, v = body.outline.min(axis=0)
-        return hole.u - float(u), hole.v - float(v)
-    return hole.u - piece.ends[0].u + body.overhang, 0.0
+        least_u, least_v = body.outline.min(axis=0)
+        return u - float(least_u), v - float(least_v)
+    return u - piece.ends[0].u + body.overhang, 0.0

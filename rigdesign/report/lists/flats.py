@@ -8,9 +8,10 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from rigdesign.hardware.levers import side_width
 from rigdesign.hardware.model import Body, Hardware
 from rigdesign.levers.model import Piece
-from rigdesign.report.lists.drilling import from_datum
+from rigdesign.report.lists.drilling import piece_drill_rows
 from rigdesign.report.lists.members import by_mark, ends_by_place, pieces_by_name, steel_length
 from rigdesign.target.curve import Floats
 
@@ -18,9 +19,17 @@ if TYPE_CHECKING:
     from rigdesign.checks.hardware.model import HardwareCheck
 
 
+DATUM_LEVER = "datum: end beyond hole A, mid depth"
+DATUM_PLATE = "datum: left and lower edge, u to the right"
+DATUM_SIDE = "datum: left end, mid depth"
+
+
 @dataclass(frozen=True)
 class RoundHole:
-    """A hole of a flat: its name, place `x`, `y` from the datum and diameters of hole and pin [m]."""
+    """A hole of a flat: its name, place `x`, `y` from the datum, its diameter and that of its pin or bolt [m].
+
+    The name is that of the lever's hole, or "spacer" where the bolt of a spacer goes through.
+    """
 
     name: str
     x: float
@@ -33,9 +42,9 @@ class RoundHole:
 class Flat:
     """A flat or plate: its outline's corners (n, 2) [m], counter-clockwise, its holes, and what it is made from.
 
-    Of a lever's flat x runs along u from the datum end, the end beyond hole A, and y across from mid depth.  Of a
-    plate x runs along u from its least u, y along v from its least v.  `quantity` is how many the rig needs,
-    `thickness` [m], `density` [kg/m³].
+    Of a lever's flat x runs along u from the datum end, the end beyond hole A, and y across from mid depth; so too of
+    a side plate, from its own end.  Of a plate x runs along u from its least u, y along v from its least v.
+    `quantity` is how many the rig needs, `thickness` [m], `density` [kg/m³]; `datum` says in words where x and y start.
     """
 
     mark: str
@@ -74,31 +83,60 @@ def flat_shapes_of(hardware: Hardware) -> tuple[Flat, ...]:
     shapes = []
     for mark, members in by_mark(hardware, pieces).items():
         piece, body = pieces[members[0]], hardware.bodies[members[0]]
-        holes = _holes(hardware, piece, body)
         if body.build == "twin flats":
-            shapes.append(_lever_flat(mark, piece, body, holes, len(members)))
+            shapes.append(_lever_flat(hardware, mark, piece, len(members)))
         elif body.build == "plate":
-            shapes.append(_plate(mark, body, holes, len(members)))
+            shapes.append(_plate(hardware, mark, piece, len(members)))
+    return (*shapes, *side_plates_of(hardware))
+
+
+def side_plates_of(hardware: Hardware) -> tuple[Flat, ...]:
+    """Return the plates that are welded on the webs of hollow sections, two at each hole.
+
+    They are "L1_side" where all of a lever are alike, else "L1_side_pivot" and so on, by the first hole of a size.
+    """
+    pieces, ends = pieces_by_name(hardware), ends_by_place(hardware.links)
+    shapes = []
+    for mark, members in by_mark(hardware, pieces).items():
+        piece, body = pieces[members[0]], hardware.bodies[members[0]]
+        if body.side_plate <= 0:
+            continue
+        sizes: dict[float, list[str]] = {}
+        for hole in piece.holes:
+            sizes.setdefault(ends[f"{piece.name} {hole.name}"].hole, []).append(hole.name)
+        for diameter, names in sizes.items():
+            name = f"{mark}_side" if len(sizes) == 1 else f"{mark}_side_{names[0]}"
+            pin = ends[f"{piece.name} {names[0]}"].pin
+            shapes.append(_side_plate(name, body, diameter, pin, 2 * len(names) * len(members)))
     return tuple(shapes)
 
 
 def _holes(hardware: Hardware, piece: Piece, body: Body) -> tuple[RoundHole, ...]:
-    ends = ends_by_place(hardware.links)
-    rows = []
-    for hole in sorted(piece.holes, key=lambda hole: (hole.u, hole.v)):
-        end = ends[f"{piece.name} {hole.name}"]
-        rows.append(RoundHole(hole.name, *from_datum(piece, body, hole), end.hole, end.pin))
+    """Holes for pins and for the bolts of spacers, from the datum on."""
+    rows = [
+        RoundHole(row.hole, row.along, row.across, row.diameter, row.pin)
+        for row in piece_drill_rows(hardware, piece, body)
+    ]
     return tuple(rows)
 
 
-def _lever_flat(mark: str, piece: Piece, body: Body, holes: tuple[RoundHole, ...], count: int) -> Flat:
+def _lever_flat(hardware: Hardware, mark: str, piece: Piece, count: int) -> Flat:
+    body = hardware.bodies[piece.name]
     long, half = steel_length(piece, body), 0.5 * body.section.depth
     outline = np.array([[0.0, -half], [long, -half], [long, half], [0.0, half]])
-    return Flat(mark, outline, holes, body.section.width, body.material.name, body.material.density,
-                body.profiles * count, "datum: end beyond hole A, mid depth")  # fmt: skip
+    return Flat(mark, outline, _holes(hardware, piece, body), body.section.width, body.material.name,
+                body.material.density, body.profiles * count, DATUM_LEVER)  # fmt: skip
 
 
-def _plate(mark: str, body: Body, holes: tuple[RoundHole, ...], count: int) -> Flat:
+def _plate(hardware: Hardware, mark: str, piece: Piece, count: int) -> Flat:
+    body = hardware.bodies[piece.name]
     outline = body.outline - body.outline.min(axis=0)
-    return Flat(mark, outline, holes, body.section.depth, body.material.name, body.material.density, count,
-                "datum: left and lower edge, u to the right")  # fmt: skip
+    return Flat(mark, outline, _holes(hardware, piece, body), body.section.depth, body.material.name,
+                body.material.density, count, DATUM_PLATE)  # fmt: skip
+
+
+def _side_plate(mark: str, body: Body, diameter: float, pin: float, count: int) -> Flat:
+    long, half = side_width(diameter), 0.5 * body.section.depth
+    outline = np.array([[0.0, -half], [long, -half], [long, half], [0.0, half]])
+    hole = RoundHole("pin", 0.5 * long, 0.0, diameter, pin)
+    return Flat(mark, outline, (hole,), body.side_plate, body.material.name, body.material.density, count, DATUM_SIDE)

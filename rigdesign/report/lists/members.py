@@ -40,6 +40,18 @@ def steel_length(piece: Piece, body: Body) -> float:
     return last.u - first.u + 2 * body.overhang
 
 
-def own_mass(hardware: Hardware, name: str) -> float:
-    """Mass of a lever or plate without the counterweights that hang on it [kg]."""
-    return hardware.masses[name].mass - sum(hardware.bodies[name].counterweights.values())
+def numbers(members: Iterable[str]) -> str:
+    """Numbers of members of one kind, runs of three and more drawn together.
+
+    >>> numbers(["link 4", "link 5", "link 7", "link 8", "link 9"])
+    '4, 5, 7–9'
+    """
+    runs: list[list[int]] = []
+    for number in (int(member.split()[1]) for member in members):
+        if runs and number == runs[-1][-1] + 1:
+            runs[-1].append(number)
+        else:
+            runs.append([number])
+    return ", ".join(
+        f"{run[0]}–{run[-1]}" if len(run) > 2 else ", ".join(str(number) for number in run) for run in runs
+    )

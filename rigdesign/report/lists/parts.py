@@ -2,29 +2,32 @@
 
 from __future__ import annotations
 
+import math
 from collections import Counter
 from typing import TYPE_CHECKING
 
 from rigdesign.hardware.model import Body, Hardware, Machine, PartKind
-from rigdesign.report.lists.members import by_mark, own_mass, pieces_by_name, steel_length
+from rigdesign.hardware.weighing import SPACER_BOLT, SPACER_BORE, SPACER_TUBE, spacer_mass
+from rigdesign.report.lists.flats import side_plates_of
+from rigdesign.report.lists.members import by_mark, pieces_by_name, steel_length
 from rigdesign.report.lists.model import PartRow
 from rigdesign.report.lists.pins import pin_mass, pin_rows_of
 
 if TYPE_CHECKING:
     from rigdesign.checks.hardware.model import HardwareCheck
 
-_BUILDS = {"twin flats": "2 flats", "twin channels": "2 channels", "hollow section": "hollow section"}
-
 
 def part_rows(result: HardwareCheck) -> tuple[PartRow, ...]:
     """Return a row a part mark: levers, plates, links, pins, spacers, counterweights, pads, load cells, jacks.
 
-    The mass of a lever is without counterweights and with its spacers; that of a link without its pins, which have
-    rows of their own.  All totals, less cells and jacks, make the mass of the trees.
+    The mass of a lever is that of its profiles, net of holes; side plates, spacers and counterweights have rows of
+    their own, and so have the pins, which are not in the mass of a link.  All totals, less cells and jacks, make the
+    mass of the trees.
     """
     hardware = result.hardware
     return (
         *_piece_rows(hardware),
+        *_side_plate_rows(hardware),
         *_link_rows(hardware),
         *_pin_rows(hardware),
         *_spacer_rows(hardware),
@@ -36,8 +39,8 @@ def part_rows(result: HardwareCheck) -> tuple[PartRow, ...]:
 
 
 def profile_words(body: Body) -> str:
-    """What a lever or plate is made from: "2 flats 80×10", "hollow section 100×60×5", "plate 20"."""
-    return body.section.name if body.build == "plate" else f"{_BUILDS[body.build]} {body.section.name}"
+    """What a lever or plate is made from: "2 × flat 80×10", "RHS 100×60×5", "plate 20"."""
+    return body.section.name if body.profiles == 1 else f"{body.profiles} × {body.section.name}"
 
 
 def _piece_rows(hardware: Hardware) -> list[PartRow]:
@@ -50,10 +53,21 @@ def _piece_rows(hardware: Hardware) -> list[PartRow]:
         length = steel_length(pieces[first], body)
         rows.append(
             PartRow(mark, kind, len(members), profile_words(body), body.material.name, length,
-                    own_mass(hardware, first), members)
+                    profile_mass(hardware, first), members)
         )  # fmt: skip
     # levers before plates, each in the order of their marks
     return sorted(rows, key=lambda row: row.kind)
+
+
+def profile_mass(hardware: Hardware, name: str) -> float:
+    """Mass of the profiles of a lever, or of a plate, net of holes [kg]: without all that is put on it."""
+    body = hardware.bodies[name]
+    mass = hardware.masses[name].mass - math.fsum(body.counterweights.values())
+    mass -= len(body.spacers) * spacer_mass(body) if body.spacers else 0.0
+    own = hardware.marks[name]
+    members = by_mark(hardware, hardware.bodies)[own]
+    sides = [flat for flat in side_plates_of(hardware) if flat.mark.split("_")[0] == own]
+    return mass - math.fsum(flat.quantity // len(members) * flat.mass for flat in sides)
 
 
 def _link_rows(hardware: Hardware) -> list[PartRow]:
@@ -62,7 +76,7 @@ def _link_rows(hardware: Hardware) -> list[PartRow]:
     for mark, members in by_mark(hardware, links).items():
         link = links[members[0]]
         pins = sum(pin_mass(end, link.pin_material) for end in (link.upper, link.lower))
-        size = f"{link.kind} {link.size}" if link.kind != "webbing" else link.size
+        size = link.size if link.kind == "webbing" else f"{link.kind} {link.size}"
         rows.append(
             PartRow(mark, "link", len(members), size, link.material.name, link.length, link.mass - pins, members)
         )
@@ -77,17 +91,28 @@ def _pin_rows(hardware: Hardware) -> list[PartRow]:
     ]  # fmt: skip
 
 
+def _side_plate_rows(hardware: Hardware) -> list[PartRow]:
+    """Plates welded on the webs of hollow sections, by the mark of their lever."""
+    rows = []
+    for flat in side_plates_of(hardware):
+        long, deep = (1e3 * size for size in flat.outline.max(axis=0) - flat.outline.min(axis=0))
+        members = by_mark(hardware, hardware.bodies)[flat.mark.split("_")[0]]
+        section = f"side plate {long:.4g} × {deep:.4g} × {1e3 * flat.thickness:.4g}"
+        rows.append(PartRow(flat.mark, "plate", flat.quantity, section, flat.material, 1e-3 * long, flat.mass, members))
+    return rows
+
+
 def _spacer_rows(hardware: Hardware) -> list[PartRow]:
-    """Spacers by the gap that they fill; their mass is in that of their levers."""
-    owners: dict[tuple[float, str], list[str]] = {}
+    """Spacers with their bolts, by the gap that they fill and what the bolt goes through."""
+    owners: dict[tuple[float, float], list[str]] = {}
     for name, body in hardware.bodies.items():
         if body.spacers:
-            key = (round(body.gap, 9), body.material.name)
-            owners.setdefault(key, []).extend([name] * len(body.spacers))
+            owners.setdefault((round(body.gap, 9), round(body.across, 9)), []).extend([name] * len(body.spacers))
+    size = f"tube ⌀{1e3 * SPACER_TUBE:g}/{1e3 * SPACER_BORE:g} with bolt M{1e3 * SPACER_BOLT:g}"
     return [
-        PartRow(f"S{number}", "spacer", len(names), "between the profiles", material, gap, None,
+        PartRow(f"S{number}", "spacer", len(names), size, "steel", gap, spacer_mass(hardware.bodies[names[0]]),
                 tuple(dict.fromkeys(names)))
-        for number, ((gap, material), names) in enumerate(owners.items(), start=1)
+        for number, ((gap, _), names) in enumerate(owners.items(), start=1)
     ]  # fmt: skip
 
 
