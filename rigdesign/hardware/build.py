@@ -138,6 +138,7 @@ def _one_round(bench: Bench, masses: Mapping[str, Mass], before: Round | None, h
         bench.wiring,
         shapes_of(bench, bodies),
         pins,
+        {name: sizes.joints[name, ""].radius for name in pins},
         lambda link: fitting_need(bench, sizes, link, loads[link.name]),
     )
     links = links_of(bench, sizes, levels.lengths, loads)

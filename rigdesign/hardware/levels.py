@@ -51,6 +51,7 @@ def stand(
     wiring: Wired,
     shapes: Mapping[str, Shape],
     pins: Mapping[str, float],
+    lugs: Mapping[str, float],
     fittings: Callable[[LinkPlace], float],
 ) -> Levels:
     """Return how high every piece and jack stands.
@@ -61,6 +62,8 @@ def stand(
         By name of the piece.
     pins
         Height of each pad's pin by name [m].
+    lugs
+        How far each pad's lugs stand up over its pin, by name [m].
     fittings
         What a link's own parts need, pin to pin [m].
     """
@@ -72,17 +75,24 @@ def stand(
         for tier in range(tiers, -1, -1):
             names = {piece.name for piece in tree.pieces if piece.tier == tier} if tier else {tree.jack.name}
             links = [link for link in own if link.upper[0] in names]
-            levels = [heights[link.lower[0]] + needed(wiring, link, shapes, fittings(link), rules) for link in links]
+            levels = [heights[link.lower[0]] + needed(wiring, link, shapes, lugs, fittings(link), rules) for link in links]
             heights |= dict.fromkeys(sorted(names), max(levels))
     lengths = {link.name: heights[link.upper[0]] - heights[link.lower[0]] for link in wiring.links}
     return Levels({name: height for name, height in heights.items() if name not in pins}, lengths)
 
 
-def needed(wiring: Wired, link: LinkPlace, shapes: Mapping[str, Shape], fittings: float, rules: HardwareRules) -> float:
+def needed(
+    wiring: Wired,
+    link: LinkPlace,
+    shapes: Mapping[str, Shape],
+    lugs: Mapping[str, float],
+    fittings: float,
+    rules: HardwareRules,
+) -> float:
     """Return the least length of a link [m], a multiple of `LEVEL_STEP`."""
     upper, lower = wiring.pieces.get(link.upper[0]), wiring.pieces.get(link.lower[0])
     above = shapes[upper.name].half_depth if upper is not None else 0.0
-    below = shapes[lower.name].half_depth if lower is not None else 0.0
+    below = shapes[lower.name].half_depth if lower is not None else lugs[link.lower[0]]
     wants = [fittings, rules.link_length, above + below + rules.clearance + _nearing(upper, lower, shapes, rules)]
     if upper is not None:
         hole = next(hole for hole in upper.ends if hole.name == link.upper[1])

@@ -144,11 +144,12 @@ def bar_state(task: LeverTask, section: Section, holes: Mapping[HoleName, float]
 def hole_state(task: LeverTask, section: Section, hole: HoleName, joint: Joint, side: float, shop: Shop) -> PlateHole:
     """A pin through the two profiles, or through the two webs and side plates, of a lever.
 
-    The load acts across the lever.  The steel beyond is half the depth; that beside is the overhang at the ends, and at
-    the pivot, where the lever goes on both ways, as far as the nearer end hole would reach.
+    The load acts across the lever.  The steel beyond is half the depth; that beside goes to the lever's end, or as far as
+    a hole of this size in the nearest other place.
     """
     beyond = section.depth / 2
-    beside = overhang(section.depth) if hole != "pivot" else min(task.a, task.b)
+    near = (min(task.a, task.b) if hole == "pivot" else {"A": task.a, "B": task.b}[hole]) - joint.hole / 2
+    beside = near if hole == "pivot" else min(near, overhang(section.depth))
     thickness = section.web + side
     return PlateHole(
         load=task.loads[hole],

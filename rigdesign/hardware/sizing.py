@@ -204,6 +204,8 @@ def _lever_group(
     ends = {hole.name: hypot(hole.u - first.pivot.u, hole.v - first.pivot.v) for hole in first.ends}
     through = [_links_of(bench.wiring, piece) for piece in pieces]
     most: dict[HoleName, float] = {hole: max(loads[own[hole].name] for own in through) for hole in levers.HOLES}
+    # where the lever's own weight adds to what its ends carry, its pivot section bears that
+    most["pivot"] = max(most["pivot"], *(loads[own["A"].name] + loads[own["B"].name] for own in through))
     inner: dict[HoleName, float] = {}
     if bench.rules.links != "rod":
         inner = {hole: max(inner_of(sized[own[hole].name]) or 0.0 for own in through) for hole in levers.HOLES}
