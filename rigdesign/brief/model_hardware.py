@@ -21,9 +21,10 @@ Build = Literal["twin flats", "twin channels", "hollow section"]
 
 @dataclass(frozen=True)
 class StockRow:
-    """A profile of the brief's own stock: outer sizes and thicknesses [m]; of a flat `width`, `web` and `flange` are its
-    thickness, of a plate `depth` too, and of a hollow section `web` and `flange` are its wall.
+    """A profile of the brief's own stock: outer sizes and thicknesses [m].
 
+    Of a flat `width`, `web` and `flange` are its thickness, of a plate `depth` too; of a hollow section `web` and
+    `flange` are its wall.
     `bar` is the length in which it is sold [m], None for that of the brief; `where` is its row for messages.
     """
 
