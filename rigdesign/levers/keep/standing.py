@@ -11,6 +11,7 @@ import numpy as np
 
 from rigdesign.errors import InputError
 from rigdesign.levers.geometry import DUST
+from rigdesign.levers.marks.alike import outer_holes
 from rigdesign.levers.model import Hole, Piece, Rig, Tree
 from rigdesign.levers.surface.hanging import HungInPlan
 from rigdesign.levers.surface.wiring import Branches, Planned
@@ -47,11 +48,6 @@ def branches_of_rig(rig: Rig) -> Branches:
     row |= {f"pad {k + 1}": -1 - k for k in range(rig.pad_x.size)}
     ends = tuple(tuple(row[hole.joins] for hole in piece.ends) for piece in tree.pieces)
     return Branches(int(rig.pad_x.size), ends, tuple(piece.tier for piece in tree.pieces))
-
-
-def outer_holes(piece: Piece) -> Floats:
-    """Outer holes of a piece seen from its pivot, u and v [m]: (2, 2) of a lever, (3, 2) of a plate."""
-    return np.array([(hole.u - piece.pivot.u, hole.v - piece.pivot.v) for hole in piece.ends])
 
 
 def steps_of_rig(rig: Rig) -> Ints:

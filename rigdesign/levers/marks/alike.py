@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import numpy as np
 
-from rigdesign.levers.keep.standing import outer_holes
 from rigdesign.levers.model import Piece, Rig
 from rigdesign.target.curve import Floats
 
@@ -34,3 +33,8 @@ def alike_rows(pieces: list[Piece]) -> list[list[int]]:
         else:
             groups.append((holes, [k]))
     return [members for _, members in groups]
+
+
+def outer_holes(piece: Piece) -> Floats:
+    """Outer holes of a piece seen from its pivot, u and v [m]: (2, 2) of a lever, (3, 2) of a plate."""
+    return np.array([(hole.u - piece.pivot.u, hole.v - piece.pivot.v) for hole in piece.ends])

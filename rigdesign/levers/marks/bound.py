@@ -14,8 +14,8 @@ import networkx as nx
 import numpy as np
 from numpy.typing import NDArray
 
-from rigdesign.levers.keep.standing import only_tree, outer_holes
-from rigdesign.levers.marks.alike import SAME
+from rigdesign.levers.keep.standing import only_tree
+from rigdesign.levers.marks.alike import SAME, outer_holes
 from rigdesign.levers.marks.trials import Groups, Trials
 from rigdesign.pads.surface.quiet import quiet
 

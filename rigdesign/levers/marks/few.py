@@ -3,17 +3,15 @@
 from __future__ import annotations
 
 from dataclasses import replace
-
-import numpy as np
+from typing import TYPE_CHECKING
 
 from rigdesign.display import counted, show
-from rigdesign.levers.keep.standing import only_tree
 from rigdesign.levers.marks.alike import alike
-from rigdesign.levers.marks.bound import could_be_alike, fewest_groups
-from rigdesign.levers.marks.merging import search
 from rigdesign.levers.marks.model import FewMarks, Tally
-from rigdesign.levers.marks.trials import Trials
 from rigdesign.levers.model import Rig
+
+if TYPE_CHECKING:
+    from rigdesign.levers.marks.trials import Trials
 
 MARGIN = 1e-3
 """Part of the band that is kept free, so that the check, which looks between the stations too, agrees."""
@@ -42,9 +40,14 @@ def few_marks(rig: Rig, tolerance: float, limit: float = 1.0) -> FewMarks:
     InputError
         Where the rig has several jacks, or holes that are not on the drill step.
     """
+    # imported late: every rig is asked for pieces that are alike, few for more of them
+    from rigdesign.levers.marks.bound import could_be_alike, fewest_groups
+    from rigdesign.levers.marks.merging import search
+    from rigdesign.levers.marks.trials import Trials
+
     trials = Trials(rig, tolerance, limit * (1.0 - MARGIN))
     before = _tally(trials, rig)
-    if not only_tree(rig).pieces or trials.reach < 1:
+    if not trials.branches.n_pieces or trials.reach < 1:
         words = f"part marks: nothing to make alike within {show(tolerance, 'length', unit='mm')}"
         return FewMarks(rig, alike(rig), before, before, before.different, words)
     least, fewest = fewest_groups(could_be_alike(trials))
@@ -59,21 +62,17 @@ def few_marks(rig: Rig, tolerance: float, limit: float = 1.0) -> FewMarks:
 
 
 def _tally(trials: Trials, rig: Rig) -> Tally:
-    hung = _force_of(trials, rig)
-    errors = trials.exact.errors(*hung)
+    own = replace(trials, rig=rig)
+    hung = own.hang(own.drilled[None])
+    pads = hung.pad_x[0], hung.pad_y[0], hung.pad_force[0]
+    errors = trials.exact.errors(*pads)
     return Tally(
         different=len(alike(rig)),
-        band_use=trials.exact.use(*hung),
+        band_use=trials.exact.use(*pads),
         moment=errors["moment"],
         shear=errors["shear"],
         torsion=errors.get("torsion"),
     )
-
-
-def _force_of(trials: Trials, rig: Rig) -> tuple[np.ndarray, np.ndarray, np.ndarray]:
-    own = Trials(rig, trials.tolerance, trials.limit)
-    hung = own.hang(own.drilled[None])
-    return hung.pad_x[0], hung.pad_y[0], hung.pad_force[0]
 
 
 def _words(before: Tally, after: Tally, least: int, tolerance: float, judged: int) -> str:

@@ -15,8 +15,8 @@ from numpy.typing import NDArray
 
 from rigdesign.levers.drilled import BROKEN
 from rigdesign.levers.judging import build_judge
-from rigdesign.levers.keep.standing import branches_of_rig, directions, only_tree, outer_holes, rebuilt, steps_of_rig
-from rigdesign.levers.marks.alike import SAME
+from rigdesign.levers.keep.standing import branches_of_rig, directions, only_tree, rebuilt, steps_of_rig
+from rigdesign.levers.marks.alike import SAME, outer_holes
 from rigdesign.levers.marks.exact import Exact
 from rigdesign.levers.model import Rig
 from rigdesign.levers.surface.build import close_pieces
