@@ -19,7 +19,7 @@ from rigdesign.target.curve import Floats
 
 N_DIRECTIONS = 12
 """Level directions along which members are first held apart, 15° from one to the next."""
-FIRST_LOT, MOST_ROWS = 64, 40_000
+FIRST_LOT, MOST_ROWS = 24, 40_000
 """Pairs of members in the first lot, which doubles from lot to lot; most pairs of solids worked on at once."""
 
 DIGITS = 9
@@ -38,13 +38,16 @@ class Pair:
     distance: float
 
 
-def nearest(listed: tuple[Member, ...], turn: float, count: int) -> tuple[Pair, ...]:
+def nearest(listed: tuple[Member, ...], turn: float, count: int, *, beside: bool = False) -> tuple[Pair, ...]:
     """Return the `count` pairs of members that come closest with every lever turned by up to `turn` [rad].
 
     Nearest first, of equal ones those that are listed first; `turn` 0 is the rig at rest.  Distances are good to
     1e-9 m, and each that is listed has been worked out; all pairs left out are proven to be no nearer than the last.
+    With `beside`, of the links that sit side by side in one piece, else of all other members.
     """
-    return _Search(_Items(listed, turn), Moves(listed, turn), count).answer()
+    moves = Moves(listed, turn)
+    which = moves.beside if beside else moves.apart
+    return _Search(_Items(listed, turn), moves, count).answer(*np.nonzero(which))
 
 
 class _Items:
@@ -82,8 +85,7 @@ class _Search:
         """Distance that a pair must not exceed to be listed."""
         return self.found[self.count - 1][0] if len(self.found) >= self.count else math.inf
 
-    def answer(self) -> tuple[Pair, ...]:
-        first, second = np.nonzero(self.moves.apart)
+    def answer(self, first: Whole, second: Whole) -> tuple[Pair, ...]:
         bound = self._member_bounds(first, second)
         order = np.argsort(bound, kind="stable")
         done, size = 0, FIRST_LOT

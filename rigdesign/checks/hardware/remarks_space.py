@@ -9,7 +9,7 @@ from itertools import pairwise
 import numpy as np
 
 from rigdesign.checks.hardware.model import Clearance, Space
-from rigdesign.checks.hardware.space import N_CLOSEST
+from rigdesign.checks.hardware.space import N_CLOSEST, side_by_side
 from rigdesign.checks.text import also
 from rigdesign.display import show
 from rigdesign.findings import Finding
@@ -18,15 +18,17 @@ from rigdesign.hardware.model import Hardware
 SLACK = 1e-6
 """A height or distance [m] that misses its limit by less than a micrometre keeps it: builders stop right at limits."""
 ANGLE_SLACK = 1e-9  # rad
+ROOM = 0.002
+"""Fittings of links in one lever, which only turn on their pins, are at least so far apart [m]; set here."""
 NOT_LOOKED_AT = (
     "not looked at: the specimen's own body beyond its pads, the frame that holds the jacks, hoses, slings, heads of "
-    "pins, and travel of the jacks"
+    "pins, travel of the jacks; links in one lever, which keep the distance of their holes, need not keep the clearance"
 )
 
 
 def space_remarks(hardware: Hardware, space: Space) -> list[Finding]:
     """Return the remarks on heights, clearances and swings, not numbered yet, in a fixed order."""
-    return [*_headroom(hardware, space), *_clearance(space), *_swings(hardware, space)]
+    return [*_headroom(hardware, space), *_clearance(space), *_beside(hardware), *_swings(hardware, space)]
 
 
 def _headroom(hardware: Hardware, space: Space) -> Iterator[Finding]:
@@ -79,6 +81,21 @@ def _clearance(space: Space) -> Iterator[Finding]:
     )
 
 
+def _beside(hardware: Hardware) -> Iterator[Finding]:
+    """Links in one lever, whose distance is that of their holes: their fittings must not touch."""
+    near = [clearance for clearance in side_by_side(hardware) if clearance.distance < ROOM - SLACK]
+    if near:
+        yield Finding(
+            "space",
+            "failure",
+            _pair(near[0]),
+            f"the fittings of two links in one lever have no room beside each other{also(_pair(c) for c in near[1:])}",
+            show(near[0].distance, "length"),
+            f"{show(ROOM, 'length')}, set here",
+            "longer arms (shortest_arm), smaller pins, or other pads grouped",
+        )
+
+
 def _worst_of_each(near: list[Clearance]) -> list[Clearance]:
     """The nearest state of each pair, in order."""
     found: dict[tuple[str, str], Clearance] = {}
@@ -98,8 +115,6 @@ def _where(clearance: Clearance) -> str:
 def _remedy(clearance: Clearance) -> str:
     """What would part two members: arms part two links, heights part levers, places part pads."""
     kinds = {clearance.first.split()[0], clearance.second.split()[0]}
-    if kinds == {"link"}:
-        return "longer arms (shortest_arm), smaller pins, or other pads grouped"
     if "lever" in kinds:
         less = ", or less turning" if clearance.state == "turned" else ""
         return f"longer links (link_length), shallower or shorter levers{less}"

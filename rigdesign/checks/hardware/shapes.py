@@ -37,12 +37,13 @@ def cylinder(start: Floats, end: Floats, radius: float) -> Floats:
     >>> bool(np.hypot(bar[:, 0], bar[:, 1]).max() < 0.102)
     True
     """
-    along = (end - start) / np.linalg.norm(end - start)
-    # the axis that lies most across, so that the two cross-directions are well found
-    other = np.eye(3)[int(np.argmin(np.abs(along)))]
-    first = np.cross(along, other)
-    first = first / np.linalg.norm(first)
-    ring = radius * _RING @ np.array([first, np.cross(along, first)])
+    x, y, z = (float(part) for part in (end - start) / math.dist(start, end))
+    # square to the direction and to the axis that lies most across it, so that it is well found
+    least = min(abs(x), abs(y), abs(z))
+    a, b, c = (0.0, z, -y) if abs(x) == least else (-z, 0.0, x) if abs(y) == least else (y, -x, 0.0)
+    size = math.hypot(a, b, c)
+    a, b, c = a / size, b / size, c / size
+    ring = radius * _RING @ np.array([[a, b, c], [y * c - z * b, z * a - x * c, x * b - y * a]])
     return np.vstack([start + ring, end + ring])
 
 

@@ -3,13 +3,15 @@
 Places are x, y in plan and h towards the jack, z = side · h [m].  What is drawn of what:
 
 - a lever of twin flats: two boxes; of twin channels: web and flanges, a box each; of a hollow section: a box, and its
-  side plates, twice as long as the overhang and as deep as the section; its spacers, tubes of 0.4 times the depth;
+  side plates, as deep as the section; its spacers, cylinders of 25 mm that stand out 10 mm on either side for the heads
+  and washers of their bolts;
 - a plate: its outline, or the least convex one about it, through its thickness;
 - a counterweight: two halves about the link at its hole that make up a cylinder of steel, 1.2 times as wide as long,
   hung plumb below the steel that it hangs at, on the side that gravity pulls to;
-- a link: its rod as a cylinder, its strap or webbing as a box; eyes as discs, forks as two cheeks and the bridge that
-  joins them beyond the steel that they straddle, studs with washers (0.6 of the stud's diameter high on each face)
-  and nuts (0.8 of it high, 1.8 of it wide); pins as cylinders of their grip length, without heads;
+- a link: its rod as a cylinder, its strap or webbing as a box with a turnbuckle, where it has one, in the middle; eyes
+  as discs, forks as two cheeks and the bridge that joins them beyond the steel that they straddle, their sockets twice
+  as wide as the rod; studs with washers (0.7 of the stud's diameter high on each face) and what stands out beyond (1.3
+  of it high, 1.8 of it wide, as the nut is); pins as cylinders of their grip length, without heads;
 - a pad: its footprint (100 mm where the brief gives no length or width) from the surface to its pin, and its lugs;
 - a jack with its cell: two cylinders 2.5 times as wide as their pins, the jack at half its stroke.
 """
@@ -23,6 +25,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from rigdesign.checks.hardware.shapes import box, cylinder, prism
+from rigdesign.hardware.levers import side_width
 from rigdesign.hardware.model import Body, End, Hardware, JackStack, Link, PadBody
 from rigdesign.levers.model import HoleName, Piece, Tree
 from rigdesign.pads.surface.footprints import turns
@@ -31,10 +34,12 @@ from rigdesign.target.curve import Floats
 STEEL_DENSITY = 7850.0  # kg/m³, of counterweights
 WEIGHT_SHAPE = 1.2  # width of a counterweight over its length
 NO_FOOTPRINT = 0.1  # m, of a pad whose length or width the brief does not give
-SPACER = 0.4  # diameter of a spacer over the depth of its lever
-SIDE_PLATE = 2.0  # length of a side plate over the overhang
-WASHER, NUT_HEIGHT, NUT_WIDTH = 0.6, 0.8, 1.8  # of a stud's diameter
+SPACER, HEAD = 0.025, 0.010  # m, width of a spacer and of its bolt's washers, and how far the bolt's head stands out
+WASHER, STUD_END, NUT_WIDTH = 0.7, 1.3, 1.8  # of a stud's diameter
+CHEEK = 2.0  # length of a fork's cheeks over the radius of their round end, where the steel needs no longer ones
 BRIDGE_GAP = 0.005  # m, from the steel that a fork straddles to its bridge
+SOCKET_LENGTH, SOCKET_WIDTH = 2.5, 2.0  # of an eye or fork, over the rod's diameter
+TURNBUCKLE = 4.0  # length of a turnbuckle over what it adjusts either way, which is its width
 MACHINE_WIDTH = 2.5  # of jacks and cells, over their pin
 
 UP = np.array([0.0, 0.0, 1.0])
@@ -46,7 +51,8 @@ class Member:
 
     `above` is the lever or plate that it hangs by ("" on the jack's side), `end` the index of that piece's hole (A 0),
     `arm` (3,) [m] from that piece's pivot to the hole.  `axes` (n, 3) are the level unit vectors about which it turns:
-    one of a lever, three of a plate, none of all else.  `joined` are the names of those it is pinned to.
+    one of a lever, three of a plate, none of all else.  `joined` are the names of those it is pinned to, `beside`
+    those of links in other holes of the same pieces.
     """
 
     name: str
@@ -57,6 +63,7 @@ class Member:
     arm: Floats
     axes: Floats
     joined: frozenset[str]
+    beside: frozenset[str] = frozenset()
 
 
 _Spot = tuple[str, int, Floats]
@@ -76,6 +83,10 @@ class _Parts:
         self.frames = {piece.name: _frame(piece) for piece in tree.pieces}
         brief = hardware.rig.plan.target.brief
         self.turns = turns(brief, hardware.rig.pad_x, hardware.rig.pad_y)
+        self.links_of = {
+            name: [hardware.link_above[joined].name for joined in (name, *(hole.joins for hole in piece.ends))]
+            for name, piece in self.pieces.items()
+        }
         self.down = hardware.side * brief.specimen.gravity
 
     def __iter__(self) -> Iterator[Member]:
@@ -92,7 +103,8 @@ class _Parts:
         above, end, arm = spot
         still = np.empty((0, 3))
         joined = frozenset({link.upper.to, link.lower.to})
-        yield Member(link.name, hole, tuple(self._link(link)), above, end, arm, still, joined)
+        beside = frozenset(name for piece in joined for name in self.links_of.get(piece, ())) - {link.name}
+        yield Member(link.name, hole, tuple(self._link(link)), above, end, arm, still, joined, beside)
         if name in self.pieces:
             yield from self._piece(self.pieces[name], link, spot)
             return
@@ -104,8 +116,8 @@ class _Parts:
         axes, body = self.frames[piece.name], self.hardware.bodies[piece.name]
         place = np.array([piece.pivot.x, piece.pivot.y, self.hardware.heights[piece.name]])
         turning = _plate_axes(piece, axes) if piece.kind == "plate" else axes[1:2]
-        below = frozenset(self.hardware.link_above[hole.joins].name for hole in piece.ends) | {link.name}
-        yield Member(piece.name, place, tuple(_piece_solids(piece, body, axes)), *spot, turning, below)
+        solids = tuple(self._piece_solids(piece, body, axes))
+        yield Member(piece.name, place, solids, *spot, turning, frozenset(self.links_of[piece.name]))
         weights = dict(body.counterweights)
         if weights.get("pivot"):
             yield self._weight(piece, "pivot", weights["pivot"], link, place, spot)
@@ -116,6 +128,21 @@ class _Parts:
                 held = self.hardware.link_above[hole.joins]
                 at: _Spot = (piece.name, i, arm)
                 yield self._weight(piece, hole.name, weights[hole.name], held, place + arm, at)
+
+    def _piece_solids(self, piece: Piece, body: Body, axes: Floats) -> Iterator[Floats]:
+        """A lever's or plate's solids, seen from its pivot."""
+        half = 0.5 * body.section.depth
+        if piece.kind == "plate":
+            yield prism(body.outline, axes, -half, half)
+            return
+        u = [hole.u - piece.pivot.u for hole in piece.ends]
+        yield from _profile(body, axes, min(u) - body.overhang, max(u) + body.overhang)
+        yield from _spacers(body, axes)
+        inner = 0.5 * body.section.width
+        for hole in piece.holes if body.side_plate > 0 else ():
+            at, long = hole.u - piece.pivot.u, 0.5 * side_width(self.hardware.end_at(piece.name, hole.name).hole)
+            for sided in _both_sides(axes):
+                yield box(sided, (at - long, inner, -half), (at + long, inner + body.side_plate, half))
 
     def _weight(self, piece: Piece, hole: HoleName, mass: float, link: Link, place: Floats, spot: _Spot) -> Member:
         length = (mass / (STEEL_DENSITY * math.pi / 4 * WEIGHT_SHAPE**2)) ** (1 / 3)
@@ -134,32 +161,43 @@ class _Parts:
         """A link's solids, seen from its upper hole."""
         axes = self._across(link)
         lower = -link.length * UP
-        if link.kind == "rod":
-            yield from self._fitting(link.upper, axes[0], np.zeros(3), -1)
-            yield from self._fitting(link.lower, axes[1], lower, 1)
-            start, end = -self._rod_start(link.upper), self._rod_start(link.lower) - link.length
-            if start > end:
-                yield cylinder(start * UP, end * UP, 0.5 * link.width)
-        else:
+        if link.kind != "rod":
             yield _band(link, axes[0])
             yield _pin(link.upper, axes[0], np.zeros(3))
             yield _pin(link.lower, axes[1], lower)
+            if link.adjust > 0:
+                middle, half = 0.5 * lower, 0.5 * TURNBUCKLE * link.adjust * UP
+                yield cylinder(middle - half, middle + half, 0.5 * link.adjust)
+            return
+        yield from self._fitting(link.upper, axes[0], np.zeros(3), -1)
+        yield from self._fitting(link.lower, axes[1], lower, 1)
+        start, end = -self._rod_start(link.upper), self._rod_start(link.lower) - link.length
+        if start > end:
+            yield cylinder(start * UP, end * UP, 0.5 * link.width)
+            long = min(SOCKET_LENGTH * link.width, start - end)
+            if link.upper.fitting != "stud":
+                yield cylinder(start * UP, (start - long) * UP, 0.5 * SOCKET_WIDTH * link.width)
+            if link.lower.fitting != "stud":
+                yield cylinder(end * UP, (end + long) * UP, 0.5 * SOCKET_WIDTH * link.width)
 
     def _across(self, link: Link) -> tuple[Floats, Floats]:
         """Directions of the link's two pins, (3,) each: square to levers; where there is none, as at its other end."""
-        found = [
+        upper, lower = (
             self.frames[end.to][1] if end.to in self.frames and end.fitting != "stud" else None
             for end in (link.upper, link.lower)
-        ]
-        upper, lower = found
-        given = next((axis for axis in found if axis is not None), np.array([0.0, 1.0, 0.0]))
+        )
+        given = next((axis for axis in (upper, lower) if axis is not None), np.array([0.0, 1.0, 0.0]))
         return (given if upper is None else upper), (given if lower is None else lower)
 
     def _rod_start(self, end: End) -> float:
         """How far the rod begins from the hole [m]."""
         if end.fitting == "fork":
-            return self._half_depth(end.to) + BRIDGE_GAP + end.outer
+            return self._cheek(end) + end.outer
         return 0.0 if end.fitting == "stud" else 0.9 * end.radius
+
+    def _cheek(self, end: End) -> float:
+        """From a fork's hole to its bridge [m]."""
+        return max(self._half_depth(end.to) + BRIDGE_GAP, CHEEK * end.radius)
 
     def _fitting(self, end: End, across: Floats, at: Floats, towards: int) -> Iterator[Floats]:
         """One end of a rod at a hole (3,), the rod going up (+1) or down (−1) from there."""
@@ -173,7 +211,7 @@ class _Parts:
             yield cylinder(at - 0.5 * end.inner * across, at + 0.5 * end.inner * across, end.radius)
             return
         axes = np.array([np.cross(across, UP), across, towards * UP])
-        inside, reach = 0.5 * end.inner + end.gap, self._half_depth(end.to) + BRIDGE_GAP
+        inside, reach = 0.5 * end.inner + end.gap, self._cheek(end)
         outside = inside + end.outer
         for low, high in ((-outside, -inside), (inside, outside)):
             yield at + box(axes, (-end.radius, low, -end.radius), (end.radius, high, reach))
@@ -206,42 +244,31 @@ def _plate_axes(piece: Piece, axes: Floats) -> Floats:
     return np.asarray((edges / np.linalg.norm(edges, axis=1)[:, None]) @ axes[:2])
 
 
-def _piece_solids(piece: Piece, body: Body, axes: Floats) -> Iterator[Floats]:
-    """A lever's or plate's solids, seen from its pivot."""
-    if piece.kind == "plate":
-        half = 0.5 * body.section.depth
-        yield prism(body.outline, axes, -half, half)
-        return
-    u = [hole.u for hole in piece.ends]
-    low, high = min(u) - body.overhang, max(u) + body.overhang
+def _profile(body: Body, axes: Floats, low: float, high: float) -> Iterator[Floats]:
+    """A lever's one or two profiles, seen from its pivot, between two u [m]."""
     half, section = 0.5 * body.section.depth, body.section
     if body.profiles == 1:
         yield box(axes, (low, -0.5 * section.width, -half), (high, 0.5 * section.width, half))
-        yield from _side_plates(piece, body, axes)
         return
     inner = 0.5 * body.gap
-    for side in (-1.0, 1.0):
-        sided = axes * np.array([[1.0], [side], [1.0]])
+    for sided in _both_sides(axes):
         if section.kind != "channel":
             yield box(sided, (low, inner, -half), (high, inner + section.width, half))
             continue
         yield box(sided, (low, inner, -half), (high, inner + section.web, half))
         for bottom in (-half, half - section.flange):
             yield box(sided, (low, inner, bottom), (high, inner + section.width, bottom + section.flange))
+
+
+def _spacers(body: Body, axes: Floats) -> Iterator[Floats]:
+    """Spacers and their bolts, seen from the pivot."""
+    across = (0.5 * body.gap + body.section.web + HEAD) * axes[1]
     for at in body.spacers:
-        middle = at * axes[0]
-        yield cylinder(middle - inner * axes[1], middle + inner * axes[1], 0.5 * SPACER * section.depth)
+        yield cylinder(at * axes[0] - across, at * axes[0] + across, 0.5 * SPACER)
 
 
-def _side_plates(piece: Piece, body: Body, axes: Floats) -> Iterator[Floats]:
-    if body.side_plate <= 0:
-        return
-    inner, half = 0.5 * body.section.width, 0.5 * body.section.depth
-    long = 0.5 * SIDE_PLATE * body.overhang
-    for hole in piece.holes:
-        for side in (-1.0, 1.0):
-            sided = axes * np.array([[1.0], [side], [1.0]])
-            yield box(sided, (hole.u - long, inner, -half), (hole.u + long, inner + body.side_plate, half))
+def _both_sides(axes: Floats) -> tuple[Floats, Floats]:
+    return axes * np.array([[1.0], [-1.0], [1.0]]), axes
 
 
 def _band(link: Link, across: Floats) -> Floats:
@@ -263,7 +290,7 @@ def _pin(end: End, across: Floats, at: Floats) -> Floats:
 
 def _stud_reach(end: End) -> float:
     """How far a stud and its nut stand out from the middle of the plate [m]."""
-    return 0.5 * end.inner + (WASHER + NUT_HEIGHT) * end.pin
+    return 0.5 * end.inner + (WASHER + STUD_END) * end.pin
 
 
 def _machines(stack: JackStack) -> Iterator[Floats]:

@@ -37,6 +37,12 @@ def space(hardware: Hardware) -> Space:
     )
 
 
+def side_by_side(hardware: Hardware) -> tuple[Clearance, ...]:
+    """Return the links in two holes of one piece that come closest [m], nearest first, with the levers turned."""
+    listed, turn = members(hardware), hardware.rig.plan.target.brief.hardware.turn
+    return tuple(_clearances(listed, nearest(listed, turn, N_CLOSEST, beside=True), "turned"))
+
+
 def _clearances(
     listed: tuple[Member, ...], pairs: tuple[Pair, ...], state: Literal["at rest", "turned"]
 ) -> list[Clearance]:

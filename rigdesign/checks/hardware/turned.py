@@ -4,7 +4,8 @@ Model.  The tree hangs on its jack, which stands still.  Every lever turns about
 each for itself, φ being what the brief allows; plates tilt about each of their three edges.  Links stay plumb: what
 hangs at a hole moves with it, upwards, downwards and a little sideways, and does not turn with the lever.  So do pads:
 what a lever turns for is that the specimen bends, and its pads go with it.  Two pads are never set against each other
-here, nor what is pinned together.
+here, nor what is pinned together.  Links in two holes of one piece keep the distance of these holes however it turns:
+they are a class of their own.
 
 Of each pair the turns −φ, 0 and φ of the two members are taken as they are (plates: about each edge; all 49 of two
 plates), and so is the place of all that hangs below one on the other.  The levers that lie between the two, and the
@@ -25,6 +26,7 @@ from rigdesign.checks.hardware.solids import Member
 from rigdesign.target.curve import Floats
 
 Whole = NDArray[np.intp]
+Truths = NDArray[np.bool_]
 MOST_STATES = 7
 """At rest, and turned either way about three axes."""
 
@@ -83,7 +85,7 @@ class Moves:
         n = len(listed)
         self.index = {member.name: i for i, member in enumerate(listed)}
         self.place = np.array([member.place for member in listed])
-        self.apart = _apart(listed, self.index)
+        self.apart, self.beside = _apart(listed, self.index)
         self.via = np.full((n, n), -1, dtype=np.int8)
         self.hole_boxes, self.hole_shifts = self._holes()
         self.total = self._totals()
@@ -157,13 +159,15 @@ class Moves:
         return boxes, shifts
 
 
-def _apart(listed: tuple[Member, ...], index: dict[str, int]) -> NDArray[np.bool_]:
-    """Which pairs (n, n), first < second, are to keep apart: none that is pinned together, and no two pads."""
+def _apart(listed: tuple[Member, ...], index: dict[str, int]) -> tuple[Truths, Truths]:
+    """Which pairs (n, n), first < second, are to keep apart, and which sit side by side in one piece."""
     n = len(listed)
-    apart = np.triu(np.ones((n, n), dtype=bool), 1)
+    apart, beside = np.ones((n, n), dtype=bool), np.zeros((n, n), dtype=bool)
     for i, member in enumerate(listed):
         for name in member.joined:
             apart[i, index[name]] = apart[index[name], i] = False
+        for name in member.beside:
+            beside[i, index[name]] = beside[index[name], i] = True
     pads = np.flatnonzero([member.name.startswith("pad ") for member in listed])
     apart[np.ix_(pads, pads)] = False
-    return apart
+    return np.triu(apart & ~beside, 1), np.triu(beside, 1)
