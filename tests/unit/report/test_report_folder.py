@@ -173,3 +173,38 @@ def test_an_interruption_after_the_new_folder_stands_keeps_it(tmp_path, monkeypa
         write_folder(OTHER, tmp_path / "rig", replace=True)
     assert contents(tmp_path / "rig") == OTHER
     assert os.listdir(tmp_path) == ["rig"]
+
+
+SHOP = {**FILES, "drawings.pdf": b"%PDF", "dxf/L1.dxf": b"0", "dxf/P12.dxf": b"1", "dxf/L2_side_pivot.dxf": b"2"}
+
+
+def test_cutting_files_stand_in_a_folder_of_their_own(tmp_path):
+    write_folder(SHOP, tmp_path / "rig")
+    assert contents_names(tmp_path / "rig") == sorted([*FILES, "drawings.pdf", "dxf"])
+    assert contents(tmp_path / "rig" / "dxf") == {"L1.dxf": b"0", "P12.dxf": b"1", "L2_side_pivot.dxf": b"2"}
+    assert (tmp_path / "rig" / "dxf").stat().st_mode == (tmp_path / "rig").stat().st_mode
+
+
+def test_cutting_files_of_an_older_rig_go_with_it(tmp_path):
+    write_folder(SHOP, tmp_path / "rig")
+    write_folder({**OTHER, "dxf/L9.dxf": b"9"}, tmp_path / "rig", replace=True)
+    assert contents(tmp_path / "rig" / "dxf") == {"L9.dxf": b"9"}
+    write_folder(OTHER, tmp_path / "rig", replace=True)
+    assert contents(tmp_path / "rig") == OTHER
+
+
+@pytest.mark.parametrize("name", ["L1.dwg", "bracket.dxf", "L1_other.dxf", "old"])
+def test_what_others_put_among_the_cutting_files_is_not_lost(tmp_path, name):
+    write_folder(SHOP, tmp_path / "rig")
+    (tmp_path / "rig" / "dxf" / name).write_bytes(b"mine")
+    with pytest.raises(OutputError, match=f"did not write: dxf/{name}; replacing would lose it"):
+        write_folder(OTHER, tmp_path / "rig", replace=True)
+    assert (tmp_path / "rig" / "dxf" / name).read_bytes() == b"mine"
+
+
+def test_a_link_in_the_place_of_the_cutting_files_is_not_ours(tmp_path):
+    write_folder(FILES, tmp_path / "rig")
+    (tmp_path / "elsewhere").mkdir()
+    (tmp_path / "rig" / "dxf").symlink_to(tmp_path / "elsewhere")
+    with pytest.raises(OutputError, match="did not write: dxf; replacing would lose it"):
+        write_folder(OTHER, tmp_path / "rig", replace=True)
