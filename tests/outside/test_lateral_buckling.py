@@ -41,10 +41,10 @@ def test_critical_moment(section, length):
 
 
 def test_warping_of_a_channel():
-    """A thin-walled formula beside a mesh of the true section: 6 %."""
-    section = make_channel(depth=0.160, width=0.060, web=0.005, flange=0.006)
-    shape = channel_section(d=160, b=60, t_f=6, t_w=5, r=0, n_r=2)
-    mesh = MeshedSection(shape.create_mesh(mesh_sizes=[12]))
+    """The formula is of thin walls, the mesh of the true section, and the walls here are thin: 0.3 %."""
+    section = make_channel(depth=0.160, width=0.060, web=0.0015, flange=0.0025)
+    shape = channel_section(d=160, b=60, t_f=2.5, t_w=1.5, r=0, n_r=2)
+    mesh = MeshedSection(shape.create_mesh(mesh_sizes=[3]))
     mesh.calculate_geometric_properties()
     mesh.calculate_warping_properties()
-    assert channel_warping(section) == pytest.approx(mesh.get_gamma() * 1e-18, rel=0.06)
+    assert channel_warping(section) == pytest.approx(mesh.get_gamma() * 1e-18, rel=0.003)

@@ -155,6 +155,13 @@ def test_what_cannot_be_is_used_without_end(rules, kind, changes, failing):
 
 
 @EACH
+def test_a_hole_that_just_fits_leaves_something(rules):
+    """Between the flanges of the channel are 102 mm; arms may be short."""
+    for state in (make_bar(section=make_channel(), pivot_hole=0.1019), make_bar(a=0.010, b=0.013, load=1.0)):
+        assert all(isfinite(result.utilisation) for result in rules.lever(state))
+
+
+@EACH
 def test_walls_too_slender_for_the_rules_are_not_passed(rules):
     thin = make_hollow(0.200, 0.200, 0.002)
     assert rules.lever(make_bar(load=1.0, section=thin, count=1))[0].utilisation == inf
