@@ -14,9 +14,10 @@ from rigdesign.report.sheets.dimensions import height_column, running_row
 from rigdesign.report.sheets.frame import FIELD
 from rigdesign.report.sheets.labels import label_levers
 from rigdesign.report.sheets.marks import draw_mark
-from rigdesign.report.sheets.paper import BODY, HATCH, HEAD, THIN, Paper, text_width
+from rigdesign.report.sheets.paper import BODY, HATCH, HEAD, THIN, Paper
 from rigdesign.report.sheets.sizes import Sizes, scale_words
 from rigdesign.report.sheets.steel import place_of, reach_along_x, top_height
+from rigdesign.report.sheets.texts import text_width
 from rigdesign.report.sheets.views import View, fitted, is_up, rise_of, seen_words
 
 HEIGHTS_ROOM = 62.0
@@ -88,7 +89,7 @@ def _draw_rig(paper: Paper, view: View, result: HardwareCheck) -> None:
 def _stations(paper: Paper, view: View, result: HardwareCheck, sizes: Sizes, far: float) -> float:
     """Marks of the pads on the specimen's far side, and their x in running dimensions; return the lowest place."""
     rig, away = result.check.rig, -view.rise
-    places = [view.x(x) for x in rig.pad_x]
+    places = [view.x(float(x)) for x in rig.pad_x]
     order = sorted(range(len(places)), key=lambda k: (places[k], k))
     rows = max(1, int(np.ceil(len(places) * (MARK + 0.8) / (FIELD.width - HEIGHTS_ROOM))))
     base = far + away * 6.0
@@ -106,7 +107,8 @@ def _stations(paper: Paper, view: View, result: HardwareCheck, sizes: Sizes, far
         return line
     root = rig.plan.target.brief.specimen.left
     features = [(view.x(root), sizes.length(root), line)]
-    features += [(places[k], sizes.length(float(rig.pad_x[k])), line - away * 1.5) for k in order]
+    stations = {round(float(rig.pad_x[k]), 5): places[k] for k in order}
+    features += [(place, sizes.length(x), line - away * 1.5) for x, place in stations.items() if abs(x - root) > 1e-5]
     edges = FIELD.left + 14, FIELD.right - HEIGHTS_ROOM + 14
     used = running_row(paper, features, line, away, edges, datum=abs(root) < 1e-9)
     paper.text(max(FIELD.left + 2, view.x(root) - 14.0), line, f"x [{sizes.unit}]", BODY)
@@ -143,12 +145,12 @@ def levels(result: HardwareCheck) -> list[tuple[float, str, tuple[str, ...]]]:
     found: dict[tuple[float, str], list[str]] = {}
     for pad in hardware.pads:
         found.setdefault((round(pad.pin_height, 5), "pins of pads"), []).append(f"pad {pad.pad}")
-    pins = [key for key in found]
+    pins = list(found)
     if len(pins) > 2:  # on an uneven surface the lowest and the highest will do
         for key in sorted(pins)[1:-1]:
             del found[key]
     for piece in hardware.pieces:
-        words = f"levers, tier {piece.tier}"
+        words = f"tier {piece.tier}"
         found.setdefault((round(hardware.heights[piece.name], 5), words), []).append(piece.name)
     for stack in hardware.stacks:
         low = hardware.heights[stack.jack]

@@ -4,14 +4,17 @@ from __future__ import annotations
 
 import numpy as np
 
+from rigdesign.hardware.levers import side_width
 from rigdesign.hardware.model import Body
+from rigdesign.hardware.weighing import SPACER_TUBE
 from rigdesign.report.figures_sheet import spread
 from rigdesign.report.lists import DrillRow
 from rigdesign.report.sheets.dimensions import distance, running_row
-from rigdesign.report.sheets.paper import BODY, HATCH, MEDIUM, OUTLINE, SMALL, THIN, Box, Paper, text_width
+from rigdesign.report.sheets.paper import BODY, HATCH, MEDIUM, OUTLINE, SMALL, THIN, Box, Paper
 from rigdesign.report.sheets.part_facts import PartFacts
 from rigdesign.report.sheets.sections import draw_section
 from rigdesign.report.sheets.sizes import Sizes, round_scale, scale_words
+from rigdesign.report.sheets.texts import text_width
 from rigdesign.report.sheets.views import View
 
 SECTION_ROOM = 58.0
@@ -45,9 +48,9 @@ def _steel(paper: Paper, view: View, part: PartFacts, length: float) -> None:
     _edges(paper, view, body, length)
     for hole in part.holes:
         if body.side_plate:
-            reach = side_plate_half(body)
-            box = [(hole.along - reach, -reach), (hole.along + reach, -reach), (hole.along + reach, reach),
-                   (hole.along - reach, reach)]  # fmt: skip
+            reach = side_width(hole.diameter) / 2
+            box = [(hole.along - reach, -half), (hole.along + reach, -half), (hole.along + reach, half),
+                   (hole.along - reach, half)]  # fmt: skip
             paper.shape(view.points(box), THIN, order=3.2)
     paper.line(view.at(-0.0, 0.0), view.at(length, 0.0), weight=HATCH, dash="chain", order=4.0)
     paper.line((view.x(0) - 3, view.low), (view.x(length) + 3, view.low), weight=HATCH, dash="chain", order=4.0)
@@ -59,11 +62,6 @@ def _steel(paper: Paper, view: View, part: PartFacts, length: float) -> None:
                    order=4.6)  # fmt: skip
     _spacers(paper, view, part)
     _centre(paper, view, part)
-
-
-def side_plate_half(body: Body) -> float:
-    """Half the side of the square plates welded on a hollow section at its holes [m]."""
-    return 0.4 * body.section.depth
 
 
 def _edges(paper: Paper, view: View, body: Body, length: float) -> None:
@@ -79,7 +77,7 @@ def _edges(paper: Paper, view: View, body: Body, length: float) -> None:
 def _spacers(paper: Paper, view: View, part: PartFacts) -> None:
     """Spacers between the profiles, hidden behind the one that is seen."""
     pivot = next(hole for hole in part.holes if hole.hole == "pivot").along
-    size = min(0.015, 0.3 * part.body.section.depth)
+    size = min(SPACER_TUBE / 2, 0.45 * part.body.section.depth)
     for u in part.body.spacers:
         turn = np.linspace(0.0, 2 * np.pi, 25)
         ring = np.column_stack([pivot + u + size * np.cos(turn), size * np.sin(turn)])
@@ -110,6 +108,9 @@ def _dimensions(paper: Paper, view: View, side: Box, part: PartFacts, length: fl
     features = [(view.x(0.0), "0", top)]
     for hole in part.holes:
         features.append((view.x(hole.along), sizes.length(hole.along), view.low + hole.diameter / 2 * view.mm + 1.2))
+    pivot = next(hole for hole in part.holes if hole.hole == "pivot").along
+    for u in part.body.spacers:
+        features.append((view.x(pivot + u), sizes.length(pivot + u), view.low + 2.0))
     features.append((view.x(length), sizes.length(length), top))
     running_row(paper, features, top + 3.0, 1.0, (side.left - 3.0, side.right + 1.0))
     right = view.x(length)
@@ -120,7 +121,7 @@ def _dimensions(paper: Paper, view: View, side: Box, part: PartFacts, length: fl
 def _hole_labels(paper: Paper, view: View, side: Box, part: PartFacts, sizes: Sizes) -> None:
     """Name, diameter and pin of each hole below the steel, and the datum under its end."""
     bottom = view.y(-part.body.section.depth / 2)
-    upper = side.low + 7.6
+    upper = max(side.low + 7.6, bottom - 12.0)
     labels = [("datum", "", view.x(0.0), bottom)]
     for hole in part.holes:
         pin = part.pins.get(hole.hole, "")

@@ -6,9 +6,10 @@ import numpy as np
 
 from rigdesign.report.sheets.detail_levers import centre_symbol
 from rigdesign.report.sheets.dimensions import distance, running_row
-from rigdesign.report.sheets.paper import BODY, HATCH, MEDIUM, OUTLINE, SMALL, THIN, Box, Paper, text_width
+from rigdesign.report.sheets.paper import BODY, HATCH, MEDIUM, OUTLINE, SMALL, THIN, Box, Paper
 from rigdesign.report.sheets.part_facts import PartFacts
 from rigdesign.report.sheets.sizes import Sizes, round_scale, scale_words
+from rigdesign.report.sheets.texts import text_width
 from rigdesign.report.sheets.views import View
 
 EDGE_ROOM = 62.0

@@ -6,12 +6,14 @@ from collections.abc import Iterator
 
 from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.display import counted
+from rigdesign.hardware.weighing import SPACER_BOLT, SPACER_BORE
 from rigdesign.report.sheets.detail_levers import draw_lever
 from rigdesign.report.sheets.detail_plates import draw_plate
 from rigdesign.report.sheets.frame import FIELD
-from rigdesign.report.sheets.paper import BODY, MEDIUM, SMALL, TITLE, Box, Paper, shortened, text_width
+from rigdesign.report.sheets.paper import BODY, MEDIUM, SMALL, TITLE, Box, Paper
 from rigdesign.report.sheets.part_facts import PartFacts, detailed_parts
 from rigdesign.report.sheets.sizes import Sizes
+from rigdesign.report.sheets.texts import shortened, text_width
 
 COLUMNS = 2
 """Details side by side on a sheet."""
@@ -80,7 +82,8 @@ def _notes(part: PartFacts, sizes: Sizes) -> str:
         words = [f"centre of mass at {sizes.length(along)}, {sizes.length(across)} from the datum"]
     if part.body.spacers:
         places = ", ".join(sizes.length(holes["pivot"].along + u) for u in part.body.spacers)
-        words.append(f"{counted(len(part.body.spacers), 'spacer')} {part.spacer} at {places}")
+        bolt = f"bolt M{1e3 * SPACER_BOLT:.0f} through {sizes.plain_hole(SPACER_BORE)}"
+        words.append(f"{counted(len(part.body.spacers), 'spacer')} {part.spacer} at {places}, {bolt}")
     for hole, mass in part.body.counterweights.items():
         words.append(f"counterweight {sizes.mass(mass)} at {hole}, in the centre of mass")
     if part.mirror:

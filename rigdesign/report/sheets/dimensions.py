@@ -7,7 +7,8 @@ from collections.abc import Sequence
 import numpy as np
 
 from rigdesign.report.figures_sheet import spread
-from rigdesign.report.sheets.paper import BODY, HATCH, THIN, Paper, Point, text_height, text_width
+from rigdesign.report.sheets.paper import BODY, HATCH, THIN, Paper, Point
+from rigdesign.report.sheets.texts import text_height, text_width
 
 ELBOW = 2.6
 """Room in which a line goes aside to a text that had to move [mm]."""

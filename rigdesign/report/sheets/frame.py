@@ -10,21 +10,10 @@ from matplotlib.patches import PathPatch
 from matplotlib.textpath import TextPath
 from matplotlib.transforms import Affine2D
 
-from rigdesign.report.sheets.marks import draw_mark
-from rigdesign.report.sheets.paper import (
-    BODY,
-    HEAD,
-    MEDIUM,
-    OUTLINE,
-    SMALL,
-    THIN,
-    TITLE,
-    Box,
-    Paper,
-    shortened,
-    text_width,
-)
+from rigdesign.report.sheets.marks import MarkKind, draw_mark
+from rigdesign.report.sheets.paper import BODY, HEAD, MEDIUM, OUTLINE, SMALL, THIN, TITLE, Box, Paper
 from rigdesign.report.sheets.sizes import Sizes
+from rigdesign.report.sheets.texts import shortened, text_width
 
 FRAME = Box(20.0, 10.0, 390.0, 277.0)
 """The border of an A3 sheet [mm]: a margin to file it by on the left."""
@@ -202,7 +191,7 @@ def _tolerances(paper: Paper, box: Box, facts: Facts) -> None:
 def _key(paper: Paper, box: Box) -> None:
     paper.box(box, MEDIUM)
     paper.text(box.left + 2.0, box.high - 3.0, "key", BODY, bold=True)
-    rows = (
+    rows: tuple[tuple[MarkKind, str], ...] = (
         ("pad", "pad, by its number"),
         ("lever", "lever or plate, by its number"),
         ("link", "link, by its number"),

@@ -10,8 +10,9 @@ from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.hardware.model import Link
 from rigdesign.levers.model import Piece
 from rigdesign.report.sheets.marks import MarkKind, draw_mark, mark_size
-from rigdesign.report.sheets.paper import HATCH, SMALL, Paper, text_width
+from rigdesign.report.sheets.paper import HATCH, SMALL, Paper
 from rigdesign.report.sheets.steel import depth_of, height_of, place_of, reach_along_x
+from rigdesign.report.sheets.texts import text_width
 from rigdesign.report.sheets.views import View
 
 

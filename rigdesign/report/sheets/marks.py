@@ -10,7 +10,8 @@ from typing import Literal
 import numpy as np
 
 from rigdesign.report.figures_parts import MARK
-from rigdesign.report.sheets.paper import SMALL, THIN, Paper, text_width
+from rigdesign.report.sheets.paper import SMALL, THIN, Paper
+from rigdesign.report.sheets.texts import text_width
 
 MarkKind = Literal["pad", "lever", "link", "jack"]
 _CORNERS: dict[str, tuple[int, float, float]] = {

@@ -5,6 +5,7 @@ from __future__ import annotations
 import io
 import warnings
 from collections.abc import Iterator
+from dataclasses import replace
 from typing import Any
 
 from matplotlib import rc_context
@@ -14,10 +15,15 @@ from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.display import System
 from rigdesign.report.figures_sheet import styled
 from rigdesign.report.sheets.arrange_elevation import elevation_sheet
+from rigdesign.report.sheets.arrange_plan import plan_sheet
 from rigdesign.report.sheets.details import detail_sheets
 from rigdesign.report.sheets.frame import Facts, Sheet, draw_frame
 from rigdesign.report.sheets.paper import HATCH, Paper
+from rigdesign.report.sheets.rigging import rigging_sheets
+from rigdesign.report.sheets.schedules import pads_table, schedules, settings_table
 from rigdesign.report.sheets.sizes import Sizes
+from rigdesign.report.sheets.tables import table_sheets
+from rigdesign.report.sheets.tiers import places_table, tier_sheets
 
 Page = tuple[Paper, str, str]
 """A sheet before it is framed: what is drawn, its name and its scale."""
@@ -28,7 +34,17 @@ _WITH_KEY = ("General arrangement", "Tier")
 def sheets(result: HardwareCheck, sizes: Sizes) -> Iterator[Page]:
     """Yield all sheets, unframed, in their order."""
     yield elevation_sheet(result, sizes)
+    paper, name, scale, rest = plan_sheet(result, sizes)
+    yield paper, name, scale
+    yield from tier_sheets(result, sizes)
     yield from detail_sheets(result, sizes)
+    pads = pads_table(result, sizes)
+    tables = [pads] if rest == 0 else []
+    if 0 < rest < len(pads.rows):
+        tables = [replace(pads, title=f"{pads.title}, continued", rows=pads.rows[rest:])]
+    yield from table_sheets([*tables, places_table(result, sizes), *schedules(result, sizes)])
+    yield from rigging_sheets(result, sizes)
+    yield from table_sheets([settings_table(result, sizes)])
 
 
 @styled

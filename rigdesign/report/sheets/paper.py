@@ -1,26 +1,23 @@
 """One page of the drawings: lines, shapes and texts in millimetres of the paper, and what of it is taken.
 
-Lines are kept by weight until the page is saved: a page of a thousand lines is then a handful of objects.  Widths of
-texts are summed from the font's own advances, so that places are found before anything is rendered.
+Lines, shapes and texts are kept until the page is saved: a page of a thousand of them is then a handful of objects.
 """
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from dataclasses import dataclass
-from functools import lru_cache
 from typing import Any, Literal
 
 import numpy as np
 from matplotlib.axes import Axes
-from matplotlib.collections import LineCollection, PolyCollection
+from matplotlib.collections import LineCollection, PathCollection, PolyCollection
 from matplotlib.figure import Figure
-from matplotlib.font_manager import FontProperties, findfont
-from matplotlib.ft2font import FT2Font, LoadFlags
-from matplotlib.patches import Circle, Ellipse, Polygon
+from matplotlib.path import Path
+from matplotlib.transforms import Affine2D
 from numpy.typing import ArrayLike
 
 from rigdesign.report.figures_sheet import A3, MM_PER_POINT, paper
+from rigdesign.report.sheets.texts import Across, Texts, Up, Words, broken, placed
 from rigdesign.report.surface.labels import Board
 
 OUTLINE, MEDIUM, THIN, HATCH = 0.7, 0.5, 0.35, 0.18
@@ -31,17 +28,15 @@ LINE = 1.45
 """Distance of two lines of a paragraph over the size of their font."""
 
 Dash = Literal["solid", "dashed", "chain", "phantom"]
-_DASHES: dict[Dash, Any] = {
-    "solid": "solid",
-    "dashed": (0, (9.0, 4.5)),
-    "chain": (0, (26.0, 5.0, 3.0, 5.0)),
-    "phantom": (0, (26.0, 4.0, 3.0, 4.0, 3.0, 4.0)),
+_DASHES: dict[Dash, tuple[float, ...]] = {
+    "solid": (),
+    "dashed": (4.4, 2.2),
+    "chain": (13.0, 2.5, 1.5, 2.5),
+    "phantom": (13.0, 2.0, 1.5, 2.0, 1.5, 2.0),
 }
-"""Of lines; lengths in widths of a line of 0.18 mm: long enough to be told apart on the paper."""
-_DASH_WIDTH = 0.18
+"""Lengths of strokes and gaps on the paper [points]: the same for lines of all widths."""
+_CIRCLE = Path.unit_circle()
 
-Across = Literal["left", "center", "right"]
-Up = Literal["top", "center", "bottom", "baseline"]
 Point = tuple[float, float]
 
 
@@ -84,8 +79,11 @@ class Paper:
         self.figure = Figure(figsize=(width / 25.4, height / 25.4), facecolor="white")
         self.axes: Axes = paper(self.figure)
         self.board = Board(0.0, 0.0, width, height)
+        self._taken: list[tuple[float, float, float, float]] = []
         self._lines: dict[tuple[float, Dash, float], list[Any]] = {}
+        self._shapes: dict[tuple[float, float, str, str], list[Path]] = {}
         self._fills: list[Any] = []
+        self.texts: list[Words] = []
 
     def line(self, *points: Point, weight: float = THIN, dash: Dash = "solid", order: float = 2.0) -> None:
         """Draw a line through points; `order` says what lies over what, the greater on top."""
@@ -105,20 +103,17 @@ class Paper:
     ) -> None:
         """Draw a closed shape through points (n, 2), filled, and hatched where asked."""
         corners = np.asarray(points, dtype=float)
-        style: Any = {"facecolor": fill, "linewidth": weight / MM_PER_POINT, "zorder": order, "joinstyle": "miter"}
+        path = Path(np.concatenate([corners, corners[:1]]), closed=True)
         if hatch:
-            self.axes.add_patch(Polygon(corners, edgecolor="black", hatch=hatch, **{**style, "linewidth": 0.0}))
-            style["facecolor"] = "none"
-        self.axes.add_patch(Polygon(corners, edgecolor="black", **style))
+            self._shapes.setdefault((order, 0.0, fill, hatch), []).append(path)
+            order, fill = order + 1e-6, "none"
+        self._shapes.setdefault((order, weight, fill, ""), []).append(path)
 
     def circle(self, x: float, y: float, radius: float, weight: float = THIN, fill: str = "white",
                order: float = 4.0, squeeze: float = 1.0) -> None:  # fmt: skip
         """Draw a circle, or with `squeeze` below 1 one that is seen aslant: narrower along x."""
-        style: Any = {"facecolor": fill, "edgecolor": "black", "linewidth": weight / MM_PER_POINT, "zorder": order}
-        if squeeze < 1.0:
-            self.axes.add_patch(Ellipse((x, y), 2 * radius * squeeze, 2 * radius, **style))
-        else:
-            self.axes.add_patch(Circle((x, y), radius, **style))
+        place = Affine2D().scale(radius * squeeze, radius).translate(x, y)
+        self._shapes.setdefault((order, weight, fill, ""), []).append(_CIRCLE.transformed(place))
 
     def fill(self, *points: Point) -> None:
         """Draw a small black shape: an arrow's head."""
@@ -134,19 +129,26 @@ class Paper:
 
     def text(
         self, x: float, y: float, words: str, size: float = BODY, ha: Across = "left", va: Up = "center",
-        upright: bool = False, bold: bool = False, order: float = 7.0,
+        upright: bool = False, bold: bool = False,
     ) -> None:  # fmt: skip
         """Write a line of text whose edge or centre is at x, y [mm]; later labels keep off it."""
         if not words:
             return
-        style: Any = {"rotation": 90 if upright else 0, "zorder": order, "rotation_mode": "default"}
-        weight = "bold" if bold else "normal"
-        self.axes.text(x, y, plain(words), size=size, ha=ha, va=va, weight=weight, color="black", **style)
-        wide, high = text_width(words, size, bold), text_height(size)
-        across, up = (high, wide) if upright else (wide, high)
-        middle_x = x + {"left": across / 2, "center": 0.0, "right": -across / 2}[ha]
-        middle_y = y + {"bottom": up / 2, "center": 0.0, "top": -up / 2, "baseline": 0.3 * up}[va]
-        self.board.take(middle_x, middle_y, across, up)
+        text = placed(x, y, words, size, ha, va, upright, bold)
+        self.texts.append(text)
+        left, low, right, high = text.box
+        self.take((left + right) / 2, (low + high) / 2, right - left, high - low)
+
+    def take(self, x: float, y: float, width: float, height: float) -> None:
+        """No later label touches a box of this centre and size [mm]."""
+        self._taken.append((x, y, width, height))
+        self.board.take(x, y, width, height)
+
+    def confine(self, box: Box) -> None:
+        """Later labels are placed inside this part of the page, clear of what is written already."""
+        self.board = Board(box.left, box.low, box.right, box.high)
+        for taken in self._taken:
+            self.board.take(*taken)
 
     def paragraph(self, box: Box, words: str, size: float = SMALL, bold: bool = False) -> float:
         """Write words from the top of a box, broken to its width; return the height used [mm]."""
@@ -159,83 +161,20 @@ class Paper:
     def finished(self) -> Figure:
         """Return the page's figure with all that was drawn."""
         for (weight, dash, order), lines in self._lines.items():
-            width = weight / MM_PER_POINT
-            style: Any = _DASHES[dash]
-            if dash != "solid":
-                style = (0, tuple(part * _DASH_WIDTH / weight * 0.9 for part in style[1]))
-            end: Any = "butt" if dash != "solid" else "projecting"
-            self.axes.add_collection(
-                LineCollection(lines, colors="black", linewidths=width, linestyles=[style], zorder=order,
-                               capstyle=end, joinstyle="miter"),
-                autolim=False,
-            )  # fmt: skip
+            style: Any = "solid" if dash == "solid" else (0, tuple(p * MM_PER_POINT / weight for p in _DASHES[dash]))
+            ends: Any = {"capstyle": "projecting" if dash == "solid" else "butt", "joinstyle": "miter"}
+            self._add(LineCollection(lines, colors="black", linestyles=[style], **ends), order, weight)
+        for (order, weight, fill, hatch), paths in self._shapes.items():
+            style = {"facecolors": fill, "edgecolors": "black", "joinstyle": "miter", "hatch": hatch or None}
+            self._add(PathCollection(paths, **style), order, weight)
         if self._fills:
-            self.axes.add_collection(
-                PolyCollection(self._fills, facecolors="black", edgecolors="none", zorder=6.0), autolim=False
-            )
-        self._lines, self._fills = {}, []
+            self._add(PolyCollection(self._fills, facecolors="black", edgecolors="none"), 6.0, 0.0)
+        if self.texts:
+            self.axes.add_artist(Texts(self.texts))
+        self._lines, self._shapes, self._fills = {}, {}, []
         return self.figure
 
-
-@lru_cache(maxsize=2)
-def _font(bold: bool) -> FT2Font:
-    return FT2Font(findfont(FontProperties(family="DejaVu Sans", weight="bold" if bold else "normal")))
-
-
-@lru_cache(maxsize=4096)
-def _advance(sign: str, bold: bool) -> float:
-    """How far a sign goes along its line, over the size of the font."""
-    font = _font(bold)
-    font.set_size(100.0, 72.0)
-    return float(font.load_char(ord(sign), flags=LoadFlags.NO_HINTING).linearHoriAdvance) / 65536.0 / 100.0
-
-
-def text_width(words: str, size: float, bold: bool = False) -> float:
-    """Return the width of a line of text [mm] at a size [pt]."""
-    return sum(_advance(sign, bold) for sign in words) * size * MM_PER_POINT
-
-
-def text_height(size: float) -> float:
-    """Return the height that a line of text takes [mm] at a size [pt], with what goes below the line."""
-    return 1.02 * size * MM_PER_POINT
-
-
-def plain(words: str) -> str:
-    """Return the words such that no sign in them is taken for a formula."""
-    return words.replace("$", r"\$")
-
-
-def broken(words: str, width: float, size: float, bold: bool = False) -> list[str]:
-    """Break words into lines that are at most `width` [mm] wide; a longer single word is cut.
-
-    >>> broken("weigh every part before it is hung", 24.0, 7.0)
-    ['weigh every part', 'before it is hung']
-    """
-    lines: list[str] = []
-    line = ""
-    for word in words.split():
-        longer = f"{line} {word}" if line else word
-        if text_width(longer, size, bold) <= width:
-            line = longer
-            continue
-        if line:
-            lines.append(line)
-        line = shortened(word, width, size, bold)
-    return [*lines, line] if line else lines
-
-
-def shortened(words: str, width: float, size: float, bold: bool = False) -> str:
-    """Return the words, or as many of their signs as fit into `width` [mm] with three dots after them."""
-    if text_width(words, size, bold) <= width:
-        return words
-    kept = words
-    while kept and text_width(kept + "…", size, bold) > width:
-        kept = kept[:-1]
-    return kept.rstrip() + "…"
-
-
-def spans(points: Sequence[Point]) -> tuple[float, float, float, float]:
-    """Return the least x, least y, greatest x and greatest y of points."""
-    places = np.asarray(points, dtype=float)
-    low, high = places.min(axis=0), places.max(axis=0)
-    return float(low[0]), float(low[1]), float(high[0]), float(high[1])
+    def _add(self, collection: Any, order: float, weight: float) -> None:
+        collection.set_linewidth(weight / MM_PER_POINT)
+        collection.set_zorder(order)
+        self.axes.add_collection(collection, autolim=False)

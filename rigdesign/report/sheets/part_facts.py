@@ -1,10 +1,12 @@
-"""What a detail says of one part mark of levers or plates: its members, steel, holes, pins, mass, and its mirror image."""
+"""What a detail says of one part mark of levers or plates: members, steel, holes, pins, mass, and its mirror image."""
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.hardware.model import Body, End, Hardware, Mass
@@ -28,7 +30,7 @@ class PartFacts:
     body: Body
     mass: Mass
     holes: tuple[DrillRow, ...]
-    pins: dict[str, str]
+    pins: Mapping[str, str]
     mirror: str
     spacer: str
     pivot_end: End
@@ -51,15 +53,15 @@ def detailed_parts(result: HardwareCheck) -> tuple[PartFacts, ...]:
     pins = {where: row.mark for row in pin_rows(result) for where in row.places}
     spacers = {name: row.mark for row in rows if row.kind == "spacer" for name in row.members}
     holes: dict[str, list[DrillRow]] = {}
-    for row in drill_rows(result):
-        holes.setdefault(row.mark, []).append(row)
+    for hole in drill_rows(result):
+        holes.setdefault(hole.mark, []).append(hole)
     pieces = {piece.name: piece for piece in hardware.pieces}
     own = [row for row in rows if row.kind in ("lever", "plate")]
     shapes = {row.mark: _shape(hardware, pieces[row.members[0]]) for row in own}
     found = []
     for row in own:
         name = row.members[0]
-        at = {hole.name: pins.get(f"{name} {hole.name}", "") for hole in pieces[name].holes}
+        at = {str(hole.name): pins.get(f"{name} {hole.name}", "") for hole in pieces[name].holes}
         found.append(
             PartFacts(row, pieces[name], hardware.bodies[name], hardware.masses[name], tuple(holes[row.mark]), at,
                       _mirror(row.mark, shapes), spacers.get(name, ""), hardware.end_at(name, "pivot"))
@@ -92,7 +94,7 @@ def _mirror(mark: str, shapes: dict[str, tuple[str, tuple[float, ...]]]) -> str:
     return ""
 
 
-def _mirrored_triangle(own: np.ndarray, theirs: np.ndarray) -> bool:  # type: ignore[type-arg]
+def _mirrored_triangle(own: NDArray[np.float64], theirs: NDArray[np.float64]) -> bool:
     """Whether two triangles about their pivots are mirror images and not the same when turned."""
     sides, far = _sides(own), np.hypot(own[:, 0], own[:, 1])
     other_sides, other_far = _sides(theirs)[::-1], np.hypot(theirs[:, 0], theirs[:, 1])[[1, 0, 2]]
@@ -107,6 +109,6 @@ def _mirrored_triangle(own: np.ndarray, theirs: np.ndarray) -> bool:  # type: ig
     )
 
 
-def _sides(corners: np.ndarray) -> np.ndarray:  # type: ignore[type-arg]
+def _sides(corners: NDArray[np.float64]) -> NDArray[np.float64]:
     """Lengths of the sides AB, BC, CA."""
     return np.asarray(np.hypot(*(np.roll(corners, -1, axis=0) - corners).T))

@@ -55,7 +55,7 @@ def profile_outlines(body: Body) -> list[Floats]:
     walls = [_rectangle(-w, -w + t, -h, h), _rectangle(w - t, w, -h, h),
              _rectangle(-w + t, w - t, -h, -h + t), _rectangle(-w + t, w - t, h - t, h)]  # fmt: skip
     if body.side_plate:
-        side = _rectangle(w, w + body.side_plate, -0.8 * h, 0.8 * h)
+        side = _rectangle(w, w + body.side_plate, -h, h)
         walls += [side, side * [-1.0, 1.0]]
     return walls
 

@@ -35,7 +35,7 @@ def draw_pads(paper: Paper, view: View, result: HardwareCheck) -> None:
         end = hardware.link_above[f"pad {pad.pad}"].lower
         base = min(0.3 * pad.height, 0.025)
         radius = min(max(end.radius, 0.6 * end.pin), 0.45 * (high - low))
-        order = 3.0 + _near(result, y)
+        order = 3.0 + near(result, y)
         bottom, top = pad.surface, pad.surface + base
         _block(paper, view, (low, high), (bottom, top), order)
         foot = min(2.2 * radius, 0.48 * (high - low))
@@ -44,8 +44,8 @@ def draw_pads(paper: Paper, view: View, result: HardwareCheck) -> None:
         paper.circle(*view.at(x, pad.pin_height), end.pin / 2 * view.mm, THIN, order=order + 0.01)
 
 
-def _near(result: HardwareCheck, y: float) -> float:
-    """A part of an order of drawing: what is nearer to the reader lies over the rest."""
+def near(result: HardwareCheck, y: float) -> float:
+    """Return a part of an order of drawing for y [m]: what is nearer to the reader lies over the rest."""
     spread = float(np.ptp(result.check.rig.pad_y)) or 1.0
     middle = float(result.check.rig.pad_y.mean())
     towards = -1.0 if result.check.rig.plan.target.brief.specimen.gravity < 0 else 1.0
@@ -72,7 +72,31 @@ def draw_links(paper: Paper, view: View, result: HardwareCheck, links: tuple[Lin
         upper = place_of(result.hardware, link.upper.to, link.upper.at)
         lower = place_of(result.hardware, link.lower.to, link.lower.at)
         high, low = height_of(result.hardware, link.upper.to), height_of(result.hardware, link.lower.to)
-        draw_link(paper, view, link, (upper[0], high), (lower[0], low), 2.5 + _near(result, lower[1]))
+        draw_link(paper, view, link, (upper[0], high), (lower[0], low), 2.5 + near(result, lower[1]))
+
+
+def draw_stub(
+    paper: Paper,
+    view: View,
+    link: Link,
+    upper: tuple[float, float],
+    lower: tuple[float, float],
+    upwards: bool,
+    order: float,
+) -> None:
+    """Draw the part of a link next to a tier: its upper part where the link goes down, its lower where it goes up.
+
+    The far end is broken off.
+    """
+    half = max(link.width / 2, 0.35 / view.mm)
+    strip = [(upper[0] - half, upper[1]), (upper[0] + half, upper[1]), (lower[0] + half, lower[1]),
+             (lower[0] - half, lower[1])]  # fmt: skip
+    paper.shape(view.points(strip), THIN, order=2.5 + order)
+    _fitting(paper, view, link.lower if upwards else link.upper, lower if upwards else upper, 2.5 + order)
+    x, y = view.at(*(upper if upwards else lower))
+    wide = half * view.mm + 0.9
+    paper.path([(x - wide, y - 0.5), (x - 0.3 * wide, y + 0.3), (x + 0.3 * wide, y - 0.3), (x + wide, y + 0.5)],
+               weight=THIN, order=4.4)  # fmt: skip
 
 
 def draw_link(
@@ -124,7 +148,7 @@ def draw_pieces(paper: Paper, view: View, result: HardwareCheck, pieces: tuple[P
     for piece in pieces:
         hardware = result.hardware
         x, depth, height = reach_along_x(hardware, piece), depth_of(hardware, piece), hardware.heights[piece.name]
-        order = 3.0 + _near(result, min(hole.y for hole in piece.holes))
+        order = 3.0 + near(result, min(hole.y for hole in piece.holes))
         _block(paper, view, x, (height - depth / 2, height + depth / 2), order, MEDIUM)
         body = hardware.bodies[piece.name]
         if piece.kind == "plate":

@@ -38,10 +38,7 @@ class Sizes:
         >>> Sizes().length(0.3041), Sizes().length(-1.25), Sizes("us").length(0.3048)
         ('304.1', '−1250', '12.000')
         """
-        if self.system == "SI":
-            text = f"{1e3 * value:.1f}".removesuffix(".0")
-        else:
-            text = f"{value / INCH:.3f}"
+        text = f"{1e3 * value:.1f}".removesuffix(".0") if self.system == "SI" else f"{value / INCH:.3f}"
         return text.lstrip("-") if float(text) == 0.0 else text.replace("-", "−")
 
     def hole(self, diameter: float) -> str:
@@ -51,6 +48,10 @@ class Sizes:
         '⌀25.5 +0.2/0'
         """
         return f"⌀{self.length(diameter)} +{self.length(HOLE_TOLERANCE)}/0"
+
+    def plain_hole(self, diameter: float) -> str:
+        """A hole's diameter [m] alone."""
+        return f"⌀{self.length(diameter)}"
 
     def mass(self, value: float) -> str:
         """A mass [kg] with its unit."""

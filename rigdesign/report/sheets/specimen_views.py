@@ -60,7 +60,7 @@ def _support(paper: Paper, x: float, y: float, rise: float) -> None:
 
 
 def draw_plan(paper: Paper, view: View, brief: Brief) -> None:
-    """Draw the specimen in plan, in lines of things that stand beside: its outline or its ends, and its reference axis."""
+    """Draw the specimen in plan in phantom lines, its outline or its ends, and its reference axis."""
     specimen = brief.specimen
     if specimen.outline is not None:
         corners = np.column_stack([specimen.outline.x, specimen.outline.y])

@@ -25,7 +25,7 @@ def in_plan(piece: Piece, u: Floats, v: Floats) -> Floats:
 
 
 def bars(hardware: Hardware, piece: Piece) -> list[Floats]:
-    """Return the outlines (n, 2) [m] in plan of a piece's profiles: one, or two with their gap between; of a plate its own."""
+    """Return the outlines (n, 2) [m] in plan of a piece's profiles, one or two with a gap between, or of a plate."""
     body = hardware.bodies[piece.name]
     if piece.kind == "plate":
         return [in_plan(piece, body.outline[:, 0], body.outline[:, 1])]
@@ -84,7 +84,7 @@ def height_of(hardware: Hardware, name: str) -> float:
 
 
 def footprints(result: HardwareCheck) -> list[Floats]:
-    """Return the corners (4, 2) [m] in plan of every pad's footprint; a pad without a width is drawn as wide as half its length."""
+    """Return the corners (4, 2) [m] in plan of every pad's footprint; without a width it is half as wide as long."""
     brief, rig = result.check.rig.plan.target.brief, result.check.rig
     length = brief.pads.length or 0.02
     width = brief.pads.width or length / 2
