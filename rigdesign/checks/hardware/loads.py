@@ -147,12 +147,9 @@ def pad_forces(loads: Loads, hung: Hanging, jack: Floats) -> Floats:
     return loads.pad_rate * jack[hung.tree[hung.pad_link]] + loads.pad_fixed
 
 
-def link_forces(loads: Loads, jack: Floats, overshoot: float = 1.0) -> tuple[Floats, Floats]:
-    """Return the forces [N] at the upper and lower end of each link, (n_links,) each, under jack forces (n_trees,).
-
-    `overshoot` multiplies what comes from the jack alone.
-    """
-    pulled = overshoot * loads.link_rate * jack[np.array(loads.tree)]
+def link_forces(loads: Loads, jack: Floats) -> tuple[Floats, Floats]:
+    """Return the forces [N] at the upper and lower end of each link, (n_links,) each, under jack forces (n_trees,)."""
+    pulled = loads.link_rate * jack[np.array(loads.tree)]
     return pulled + loads.upper_fixed, pulled + loads.lower_fixed
 
 

@@ -58,10 +58,14 @@ def _jacks(check: Check, step: Step) -> str:
 def _errors(check: Check, step: Step) -> str:
     """Errors with own weight and without, as percentages of what each is a fraction of."""
     parts = [
-        f"{quantity} {percent(step.errors[quantity])} ({percent(error.peak)} without weight) of the {error.of}"
+        f"{quantity} {percent(step.errors[quantity])} ({percent(error.peak)} without weight) of {_the(error.of)}"
         for quantity, error in check.errors.items()
     ]
     return "; ".join(parts)
+
+
+def _the(words: str) -> str:
+    return words if words.startswith("the ") else f"the {words}"
 
 
 def _what_to_do(tare: Tare) -> str:

@@ -81,7 +81,7 @@ def pin(hardware: Hardware, link: Link, end: End, load: float) -> PinState:
     """The pin at one end of a link.  Through a hollow lever it bears on webs and side plates alone."""
     body = hardware.bodies.get(end.to)
     inner = end.inner
-    if end.fitting == "fork" and body is not None and body.build == "hollow section":
+    if body is not None and body.build == "hollow section":
         inner = 2 * (body.section.web + body.side_plate)
     return PinState(load, end.pin, link.pin_material, inner, end.outer, end.gap)
 

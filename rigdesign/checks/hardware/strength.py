@@ -1,6 +1,6 @@
 """Every strength check of every member, at the peak of the test.
 
-Loads are those of the jacks' forces at the peak times the overshoot, and of the rig's own weight as it is; a link takes
+Loads are those of the jacks' forces at the peak with the overshoot, and of the rig's own weight as it is; a link takes
 the larger of its two ends.  The rules, with their design factor, are those that the brief chooses.
 """
 
@@ -25,16 +25,15 @@ from rigdesign.target.curve import Floats
 
 
 def strength(hardware: Hardware, hung: Hanging, loads: Loads, jack: Floats) -> tuple[StrengthRow, ...]:
-    """Return all strength checks under jack forces (n_trees,) [N]: levers and plates, links, pads, jacks.
+    """Return all strength checks under jack forces (n_trees,) [N], overshoot included: pieces, links, pads, jacks.
 
     Raises
     ------
     ValueError
         Where the brief's rules are not known.
     """
-    rules = hardware.rig.plan.target.brief.hardware
-    upper, lower = link_forces(loads, jack, rules.overshoot)
-    members = _Members(hardware, hung, rule_set(rules), upper, lower)
+    upper, lower = link_forces(loads, jack)
+    members = _Members(hardware, hung, rule_set(hardware.rig.plan.target.brief.hardware), upper, lower)
     rows: list[StrengthRow] = []
     for piece in hardware.pieces:
         rows += members.plate_rows(piece) if piece.kind == "plate" else members.lever_rows(piece)
@@ -43,7 +42,7 @@ def strength(hardware: Hardware, hung: Hanging, loads: Loads, jack: Floats) -> t
     for link in hardware.links:
         rows += members.lug_rows(link)
     for stack, force in zip(hardware.stacks, jack, strict=True):
-        rows += _machine_rows(stack, rules.overshoot * abs(float(force)))
+        rows += _machine_rows(stack, abs(float(force)))
     return tuple(rows)
 
 

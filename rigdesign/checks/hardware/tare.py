@@ -127,6 +127,15 @@ class Weighed:
         wanted = level * target.total.total - target.gravity.total
         return (wanted - float(self.loads.pad_fixed.sum())) / float(self.pull.sum())
 
+    def held_at(self, level: float, overshoot: float) -> Floats:
+        """The jacks' forces that members must bear at a step, overshoot included [N], (n_trees,).
+
+        Those at which the pads together bring what the step asks of them, times the overshoot; or those of the step,
+        where least band use asks for more than that.
+        """
+        even, best = overshoot * self.even_factor(level), self.best_factor(level)
+        return (even if abs(even) >= abs(best) else best) * self.jack
+
     @property
     def pull(self) -> Floats:
         """Pad forces for each unit of the factor [N], (n_pads,)."""

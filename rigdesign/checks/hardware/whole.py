@@ -50,9 +50,9 @@ def check_hardware(check: Check, hardware: Hardware) -> HardwareCheck:
     _require_same(hardware, hung)
     loads = own_weight(rig, hardware.masses)
     with_weight = weighed(sampled(check), hung, loads)
-    peak = rig.plan.target.brief.peak
+    peak, overshoot = rig.plan.target.brief.peak, rig.plan.target.brief.hardware.overshoot
     tare = Tare(loads.pad_fixed, steps(with_weight, peak), zeros(with_weight), remedies(hardware, with_weight))
-    rows = strength(hardware, hung, loads, tare.step(peak).jack)
+    rows = strength(hardware, hung, loads, with_weight.held_at(peak, overshoot))
     room = space(hardware)
     own = [
         *hardware.findings,

@@ -119,14 +119,6 @@ def test_weight_is_kept_apart_by_trees():
     assert loads.weight.sum() == pytest.approx(-G * sum(mass.mass for mass in masses.values()))
 
 
-def test_overshoot_belongs_to_the_jack_alone():
-    rig = line_rig()
-    loads = own_weight(rig, uneven_masses(rig))
-    upper, lower = link_forces(loads, np.array([6000.0]), 1.07)
-    assert upper - loads.upper_fixed == pytest.approx(1.07 * 6000.0 * loads.link_rate)
-    assert lower - loads.lower_fixed == pytest.approx(1.07 * 6000.0 * loads.link_rate)
-
-
 def test_a_pad_on_the_jack_itself_has_but_its_link():
     rig = make_rig([1.4], [5400.0])
     loads = own_weight(rig, {"link 1": Mass(3.0, 0.0, 0.0), "pad 1": Mass(2.0, 0.0, 0.0)})

@@ -211,3 +211,15 @@ def test_counterweights_give_back_what_the_rig_does_without_weight(build):
     assert whole.total == pytest.approx(sum(mass for _, _, mass in whole.masses))
     assert levers.total > 0
     assert levers.band_use != pytest.approx(ready.step(1.0).band_use, rel=1e-3)
+
+
+def test_members_are_held_at_the_even_jack_force_or_at_the_steps_own():
+    rig = line_rig()
+    ready = of(rig)
+    target = rig.plan.target
+    even = 1.5 * target.total.total - target.gravity.total + hung_weight(make_hardware_for(rig))
+    assert ready.held_at(1.5, 1.05) == pytest.approx([1.05 * even])
+    best = float(ready.step(1.5).jack[0])
+    assert best != pytest.approx(even, rel=1e-5)
+    assert ready.held_at(1.5, 1.0) == pytest.approx([max(best, even)])
+    assert ready.held_at(1.5, 0.5) == pytest.approx([best])
