@@ -32,6 +32,7 @@ from rigdesign.hardware.members import (
 )
 from rigdesign.hardware.model import Body, Hardware, Link, Mass, PadBody
 from rigdesign.hardware.owning import band_use
+from rigdesign.hardware.rules.model import PlateBending
 from rigdesign.hardware.sizing import Bench, Sizes, make_bench, make_shop, size_all
 from rigdesign.hardware.wiring import design_loads, peak_jacks, wired
 from rigdesign.levers.marks import alike
@@ -63,7 +64,15 @@ def stock_line(brief: Brief) -> StockLine:
         if moment > moments[-1]:
             moments.append(moment)
             masses.append((1 if build == "hollow section" else 2) * section.mass)
-    return StockLine(np.array(moments[1:]), np.array(masses[1:]), TYPICAL_OVERHANG)
+    plates = sections(rules, "plate", shop.steel.density)
+    # a plate of thickness t and width w bears M = stress · w t²/6, with the stress that the rules leave a typical one
+    typical = plates[len(plates) // 2].depth
+    state = PlateBending(0.0, 1.0, 1.0, typical, 0.1, 0.01, shop.steel)
+    stress = 6 / typical**2 / shop.rules.plate(state)[0].utilisation / (brief.peak * rules.overshoot)
+    plate = shop.steel.density * float(np.sqrt(6 / stress))
+    return StockLine(
+        np.array(moments[1:]), np.array(masses[1:]), TYPICAL_OVERHANG, plate, shop.steel.density * plates[0].depth
+    )
 
 
 @dataclass(frozen=True)

@@ -75,7 +75,9 @@ def stand(
         for tier in range(tiers, -1, -1):
             names = {piece.name for piece in tree.pieces if piece.tier == tier} if tier else {tree.jack.name}
             links = [link for link in own if link.upper[0] in names]
-            levels = [heights[link.lower[0]] + needed(wiring, link, shapes, lugs, fittings(link), rules) for link in links]
+            levels = [
+                heights[link.lower[0]] + needed(wiring, link, shapes, lugs, fittings(link), rules) for link in links
+            ]
             heights |= dict.fromkeys(sorted(names), max(levels))
     lengths = {link.name: heights[link.upper[0]] - heights[link.lower[0]] for link in wiring.links}
     return Levels({name: height for name, height in heights.items() if name not in pins}, lengths)

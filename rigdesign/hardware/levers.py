@@ -144,8 +144,8 @@ def bar_state(task: LeverTask, section: Section, holes: Mapping[HoleName, float]
 def hole_state(task: LeverTask, section: Section, hole: HoleName, joint: Joint, side: float, shop: Shop) -> PlateHole:
     """A pin through the two profiles, or through the two webs and side plates, of a lever.
 
-    The load acts across the lever.  The steel beyond is half the depth; that beside goes to the lever's end, or as far as
-    a hole of this size in the nearest other place.
+    The load acts across the lever.  The steel beyond is half the depth; that beside goes to the lever's end, or as far
+    as a hole of this size in the nearest other place.
     """
     beyond = section.depth / 2
     near = (min(task.a, task.b) if hole == "pivot" else {"A": task.a, "B": task.b}[hole]) - joint.hole / 2

@@ -1,4 +1,7 @@
-"""What levers weigh, as the grouping asks: the mass per length that stock has for a bending moment.
+"""What levers and plates weigh, as the grouping asks: the mass per length that stock has for a bending moment.
+
+A plate of area A whose points bend it by the moments M_i = F_i r_i is about A/r_i wide across its arm i, so that its
+thickness goes with √(max(M_i r_i)/A), and its mass with √(A max(M_i r_i)).
 
 Without stock the grouping takes the steel estimate, in which a lever's mass per length goes with its bending moment to
 the power 2/3, as that of similar sections does.
@@ -22,17 +25,21 @@ class StockLine:
 
     `moments` (k,) [N·m], rising, are the bending moments at the pivot, at the brief's load, up to which a lever of
     `masses` (k,) [kg/m], rising, is enough.  Beyond the last, masses go on with the moment to the power 2/3.
-    `overhang` [m] is the steel beyond each end hole.
+    `overhang` [m] is the steel beyond each end hole.  A plate's mass is `plate` √(A max(M_i r_i)) [kg/(N^½ m²)], with A
+    and r_i to its edges, at least `thinnest` A [kg/m²].
     """
 
     moments: Floats
     masses: Floats
     overhang: float
+    plate: float
+    thinnest: float
 
     def line_mass(self, moment: Floats) -> Floats:
         """Return the mass per length [kg/m] of levers with the bending moment [N·m] at their pivot, any shape.
 
-        >>> StockLine(np.array([100.0, 300.0]), np.array([2.0, 5.0]), 0.03).line_mass(np.array([50.0, 100.0, 101.0]))
+        >>> stock = StockLine(np.array([100.0, 300.0]), np.array([2.0, 5.0]), 0.03, 1.0, 50.0)
+        >>> stock.line_mass(np.array([50.0, 100.0, 101.0]))
         array([2., 2., 5.])
         """
         row = np.searchsorted(self.moments, moment)
@@ -43,7 +50,13 @@ class StockLine:
     def scaled(self, moment: float, length: float) -> StockLine:
         """The same with moments in units of `moment` [N·m], lengths in `length` [m], masses in `mass_unit` of them."""
         unit = self.mass_unit(moment, length) / length
-        return StockLine(self.moments / moment, self.masses / unit, self.overhang / length)
+        return StockLine(
+            self.moments / moment,
+            self.masses / unit,
+            self.overhang / length,
+            self.plate * float(np.sqrt(moment * length)) / unit,
+            self.thinnest * length / unit,
+        )
 
     def mass_unit(self, moment: float, length: float) -> float:
         """What `length` [m] of the lever for a `moment` [N·m] weighs [kg]."""
@@ -63,6 +76,20 @@ class StockLine:
     @cached_property
     def _lists(self) -> tuple[list[float], list[float]]:
         return self.moments.tolist(), self.masses.tolist()
+
+    def plate_mass(self, moment: Floats, arm: Floats, area: Floats, around: Floats) -> Floats:
+        """Return the mass [kg] of three-point plates.
+
+        Parameters
+        ----------
+        moment, arm
+            Bending moment F r [N·m] and distance from the pivot r [m] of each point, (..., 3).
+        area, around
+            Area [m²] of the triangle of the points and the sum of its sides [m], (...).
+        """
+        steel = area + around * self.overhang + np.pi * self.overhang**2
+        worst = (moment * (arm + self.overhang)).max(axis=-1)
+        return np.asarray(np.maximum(self.plate * np.sqrt(steel * worst), self.thinnest * steel))
 
     def levers_mass(self, load: Floats, a: Floats, b: Floats) -> Floats:
         """Return the mass [kg] of levers with `load` [N] at the pivot and arms a, b [m], any shape."""

@@ -147,7 +147,7 @@ def _grouping_words(plan: PadPlan, grouped: Grouped, branches: Branches, stock: 
     if stock is None:
         steel = f"steel estimate {show_steel(grouped.steel)} before drilling"
     else:
-        steel = f"{show(grouped.mass(stock), 'mass')} of pieces from stock, each arm weighed as a lever's"
+        steel = f"{show(grouped.mass(stock), 'mass')} of pieces from stock"
     head = f"{_counted(branches)} in {_tiers(branches.depth)}, {steel}"
     if plan.target.brief.levers.grouping is not None:
         return f"grouping: as prescribed, {head}"

@@ -85,6 +85,14 @@ class Limits:
             return self.stock.side_mass(load * r, r)
         return np.asarray(np.cbrt((load * r) ** 2) * r)
 
+    def plate_steel(self, load: Floats, r: Floats, x: Floats, y: Floats) -> Floats:
+        """Steel of whole plates with `load` at points x, y, at distances r from the pivot, (..., 3) each; (...)."""
+        if self.stock is None:
+            return np.asarray(self.steel(load, r).sum(axis=-1))
+        to_x, to_y = np.roll(x, -1, axis=-1) - x, np.roll(y, -1, axis=-1) - y
+        area = np.abs(to_x[..., 0] * to_y[..., 1] - to_x[..., 1] * to_y[..., 0]) / 2
+        return self.stock.plate_mass(load * r, r, area, np.hypot(to_x, to_y).sum(axis=-1))
+
     def without(self, key: str) -> Limits:
         """The same with one limit lifted, by its key in the brief."""
         lifted = {

@@ -93,6 +93,10 @@ class Maker:
 
     def _steel(self, kids: tuple[Node, ...], reach: list[float]) -> float:
         """Steel of one piece."""
+        if self.limits.stock is not None and len(kids) == 3:
+            load, r = np.array([kid.load for kid in kids]), np.array(reach)
+            x, y = np.array([kid.x for kid in kids]), np.array([kid.y for kid in kids])
+            return float(self.limits.plate_steel(load, r, x, y))
         pairs = zip(kids, reach, strict=True)
         if self.limits.stock is None:  # the same as `limits.steel`, without arrays: a search asks a million times
             return sum(cbrt((kid.load * r) ** 2) * r for kid, r in pairs)

@@ -79,14 +79,16 @@ class Items:
 class Rule:
     """How a tree gets its value.
 
-    `link(load, r)` gives each link's part, any shape; `lever(ratio, length)` and `plate(length)` what a piece adds
-    by itself; `join` (np.add or np.maximum) makes one value of all.
+    `link(load, r)` gives each link's part, any shape; `lever(ratio, length)` and `plate(length)` what a piece adds by
+    itself; `whole_plate(load, r, x, y)` takes the place of a plate's links where it is no sum of parts; `join` (np.add
+    or np.maximum) makes one value of all.
     """
 
     link: Callable[[Floats, Floats], Floats]
     lever: Callable[[Floats, Floats], Floats] | None
     plate: Callable[[Floats], Floats] | None
     join: np.ufunc
+    whole_plate: Callable[[Floats, Floats, Floats, Floats], Floats] | None = None
 
 
 def steel_rule(limits: Limits) -> Rule:
@@ -102,7 +104,8 @@ def steel_rule(limits: Limits) -> Rule:
     def plate(length: Floats) -> Floats:
         return np.where(length > limits.longest, BROKEN, 0.0)
 
-    return Rule(link, lever, plate if np.isfinite(limits.longest) else None, np.add)
+    whole = limits.plate_steel if limits.stock is not None else None
+    return Rule(link, lever, plate if np.isfinite(limits.longest) else None, np.add, whole)
 
 
 @dataclass(frozen=True)
@@ -224,6 +227,11 @@ class Problem:
             plate = np.where(is_flat(x3, y3), np.inf, zero)
             if self.rule.plate is not None:
                 plate = self.rule.join(plate, self.rule.plate(_longest_side(x3, y3)))
+            if self.rule.whole_plate is not None:
+                load3, r3 = load[:, table.triples], r[:, table.triples]
+                # what the links of a lever would weigh is taken off again, and only that
+                parts = self.limits.steel(load3, r3).sum(axis=-1)
+                plate = plate + self.rule.whole_plate(load3, r3, x3, y3) - parts
             piece = np.concatenate([piece, plate], axis=1)
         if self.partner is not None:
             piece = piece + LONELY * self._lonely(subsets, rows)

@@ -96,7 +96,7 @@ class Looked:
     """A tree looked at by definition: steel, tiers, shapes by tier, and the limits that its pieces need."""
 
     def __init__(self, plan: PadPlan, nest: Nest) -> None:
-        self.plan = plan
+        self.plan, self.nest = plan, nest
         self.steel, self.depth, self.ratio, self.longest = 0.0, 0, 1.0, 0.0
         self.shortest, self.flattest = np.inf, np.inf
         self.lonely = 0
