@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -20,10 +21,7 @@ def link_rows(result: HardwareCheck) -> tuple[LinkRow, ...]:
     """Return a row a link, in the order of their numbers."""
     hardware = result.hardware
     pins = {where: row.mark for row in pin_rows_of(hardware) for where in row.places}
-    load, peak = (
-        link_loads(result, 1.0),
-        link_loads(result, top_level(result), hardware.rig.plan.target.brief.hardware.overshoot),
-    )
+    load, held = link_loads(result, 1.0), _held_loads(result)
     return tuple(
         LinkRow(
             number=link.number,
@@ -36,7 +34,7 @@ def link_rows(result: HardwareCheck) -> tuple[LinkRow, ...]:
             length=link.length,
             adjust=link.adjust,
             load=float(load[k]),
-            peak_load=float(peak[k]),
+            peak_load=math.copysign(held.get(link.name, abs(float(load[k]))), float(load[k])),
             swing=float(result.space.swings[k]),
             upper_end=fitting_words(link.upper),
             lower_end=fitting_words(link.lower),
@@ -48,21 +46,24 @@ def link_rows(result: HardwareCheck) -> tuple[LinkRow, ...]:
     )
 
 
-def top_level(result: HardwareCheck) -> float:
-    """The highest step of the test, of the brief's load."""
-    return max(step.level for step in result.tare.steps)
-
-
-def link_loads(result: HardwareCheck, level: float, overshoot: float = 1.0) -> Floats:
+def link_loads(result: HardwareCheck, level: float) -> Floats:
     """Return what each link carries at a step, own weight among it [N], (n_links,), tension positive.
 
-    Of its two ends the one with more counts.  `overshoot` raises the jack's part alone.
+    Of its two ends the one with more counts.
     """
     loads, side = result.loads, result.hardware.side
     jack = result.tare.step(level).jack[list(loads.tree)]
-    upper = side * (overshoot * loads.link_rate * jack + loads.upper_fixed)
-    lower = side * (overshoot * loads.link_rate * jack + loads.lower_fixed)
+    upper = side * (loads.link_rate * jack + loads.upper_fixed)
+    lower = side * (loads.link_rate * jack + loads.lower_fixed)
     return np.where(np.abs(upper) >= np.abs(lower), upper, lower)
+
+
+def _held_loads(result: HardwareCheck) -> dict[str, float]:
+    """What the strength of each link is held at, as the check has it [N], by the link's name."""
+    held: dict[str, float] = {}
+    for row in result.strength:
+        held[row.piece] = max(held.get(row.piece, 0.0), abs(row.load))
+    return held
 
 
 def fitting_words(end: End) -> str:
