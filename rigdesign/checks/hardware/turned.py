@@ -130,11 +130,10 @@ class Moves:
             self.via[i, start:stop] = end
             self.low[i, start:stop] = total[start:stop, 0] - total[i, 0]
             self.high[i, start:stop] = total[start:stop, 1] - total[i, 1]
-        for k, (_, start, stop) in enumerate(groups):
-            for m, (_, other, last) in enumerate(groups):
+        for _, start, stop in groups:
+            for _, other, last in groups:
+                # what hangs at one hole has no arm from the one to the other
                 box = play(self.listed[i], self.listed[other].arm - self.listed[start].arm, self.turn)
-                if k == m:
-                    box = np.zeros((2, 3))
                 own, others = total[start:stop] - total[start], total[other:last] - total[other]
                 self.low[start:stop, other:last] = others[None, :, 0] - own[:, None, 1] + box[0]
                 self.high[start:stop, other:last] = others[None, :, 1] - own[:, None, 0] + box[1]
