@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 
 import numpy as np
 
@@ -14,10 +14,9 @@ from rigdesign.report.sheets.frame import FIELD
 from rigdesign.report.sheets.labels import name_mark
 from rigdesign.report.sheets.paper import BODY, HEAD, THIN, Box, Paper
 from rigdesign.report.sheets.plan_views import draw_plan
-from rigdesign.report.sheets.schedules import pads_table
 from rigdesign.report.sheets.sizes import Sizes, scale_words
 from rigdesign.report.sheets.steel import bars, footprints
-from rigdesign.report.sheets.tables import Table, draw_table
+from rigdesign.report.sheets.tables import GAP, Table, draw_whole
 from rigdesign.report.sheets.views import View, fitted, seen_words
 
 STATIONS = 17.0
@@ -26,11 +25,10 @@ MARKS = 13.0
 """Room around the plan in which marks can stand [mm]."""
 
 
-def plan_sheet(result: HardwareCheck, sizes: Sizes) -> tuple[Paper, str, str, int]:
-    """Return the sheet, its name, its scale, and the first row of the schedule of pads that found no place on it."""
+def plan_sheet(result: HardwareCheck, sizes: Sizes, tables: Sequence[Table]) -> tuple[Paper, str, str, list[Table]]:
+    """Return the sheet, its name, its scale, and those of the tables that found no place beneath the plan."""
     paper = Paper()
     x, y = plan_bounds(result)
-    table = pads_table(result, sizes)
     room = FIELD.less(16.0, 6.0, 12.0, 16.0 + STATIONS)
     view = _view(room.less(0.0, MARKS, 0.0, MARKS), x, y)
     specimen_views.draw_plan(paper, view, result.check.rig.plan.target.brief)
@@ -44,7 +42,7 @@ def plan_sheet(result: HardwareCheck, sizes: Sizes) -> tuple[Paper, str, str, in
     words = "what lies beneath other steel is dashed; pads by their footprints; specimen in phantom lines"
     paper.text(FIELD.left + 5, FIELD.high - 11.5, words, BODY)
     directions(paper, FIELD.right - 22.0, FIELD.high - 20.0)
-    rest = _table(paper, table, low - 4.0)
+    rest = _tables(paper, tables, low - 4.0)
     return paper, "General arrangement, plan", scale_words(view.ratio), rest
 
 
@@ -84,13 +82,17 @@ def _marks(paper: Paper, view: View, result: HardwareCheck) -> None:
     """Numbers of pads beside them, then numbers and marks of levers and plates beside their pivots."""
     hardware, rig = result.hardware, result.check.rig
     keep_off_bars(paper, view, result, hardware.pieces)
+    for corners in footprints(result):
+        points = view.points(np.concatenate([corners, corners[:1]]))
+        paper.keep_off(points)
     for pad in hardware.pads:
         at = view.at(float(rig.pad_x[pad.pad - 1]), float(rig.pad_y[pad.pad - 1]))
-        name_mark(paper, "pad", pad.pad, "", at, 2.0)
+        name_mark(paper, "pad", pad.pad, "", at, 2.0, 3.0)
     for tree in rig.trees:
-        name_mark(paper, "jack", tree.jack.number, "", view.at(tree.jack.x, tree.jack.y), 3.0)
+        name_mark(paper, "jack", tree.jack.number, "", view.at(tree.jack.x, tree.jack.y), 3.0, 3.0)
     for piece in hardware.pieces:
-        name_mark(paper, "lever", piece.number, hardware.marks[piece.name], view.at(piece.pivot.x, piece.pivot.y), 2.5)
+        at = view.at(piece.pivot.x, piece.pivot.y)
+        name_mark(paper, "lever", piece.number, hardware.marks[piece.name], at, 2.5, 3.0)
 
 
 def keep_off_bars(paper: Paper, view: View, result: HardwareCheck, pieces: Iterable[Piece]) -> None:
@@ -98,7 +100,7 @@ def keep_off_bars(paper: Paper, view: View, result: HardwareCheck, pieces: Itera
     for piece in pieces:
         for bar in bars(result.hardware, piece):
             points = view.points(np.concatenate([bar, bar[:1]]))
-            paper.board.draw_line(points[:, 0], points[:, 1])
+            paper.keep_off(points)
 
 
 def directions(paper: Paper, x: float, y: float) -> None:
@@ -111,6 +113,14 @@ def directions(paper: Paper, x: float, y: float) -> None:
     paper.text(x + 1.5, y + 10.0, "y", BODY)
 
 
-def _table(paper: Paper, table: Table, top: float) -> int:
-    room = Box(FIELD.left + 6.0, FIELD.low + 4.0, FIELD.width - 12.0, top - FIELD.low - 4.0)
-    return draw_table(paper, room, table, 0)[0] if room.height > 30.0 else 0
+def _tables(paper: Paper, tables: Sequence[Table], top: float) -> list[Table]:
+    """Draw tables that fit beneath the plan whole; return the others."""
+    rest: list[Table] = []
+    for table in tables:
+        room = Box(FIELD.left + 6.0, FIELD.low + 4.0, FIELD.width - 12.0, top - FIELD.low - 4.0)
+        used = draw_whole(paper, room, table) if room.height > 15.0 and not rest else 0.0
+        if used:
+            top -= used + GAP
+        elif table.rows:
+            rest.append(table)
+    return rest

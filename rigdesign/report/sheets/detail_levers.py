@@ -108,9 +108,6 @@ def _dimensions(paper: Paper, view: View, side: Box, part: PartFacts, length: fl
     features = [(view.x(0.0), "0", top)]
     for hole in part.holes:
         features.append((view.x(hole.along), sizes.length(hole.along), view.low + hole.diameter / 2 * view.mm + 1.2))
-    pivot = next(hole for hole in part.holes if hole.hole == "pivot").along
-    for u in part.body.spacers:
-        features.append((view.x(pivot + u), sizes.length(pivot + u), view.low + 2.0))
     features.append((view.x(length), sizes.length(length), top))
     running_row(paper, features, top + 3.0, 1.0, (side.left - 3.0, side.right + 1.0))
     right = view.x(length)
@@ -126,8 +123,12 @@ def _hole_labels(paper: Paper, view: View, side: Box, part: PartFacts, sizes: Si
     for hole in part.holes:
         pin = part.pins.get(hole.hole, "")
         labels.append((_name(hole, pin), sizes.hole(hole.diameter), view.x(hole.along), view.low))
-    widths = [max(text_width(a, BODY), text_width(b, BODY)) + 2.0 for a, b, _, _ in labels]
-    middles = _row([x for _, _, x, _ in labels], widths, side.left - 3.0, side.right + 2.0)
+    room = side.left - 3.0, side.right + 2.0
+    widths = _label_widths(labels)
+    if sum(widths) > room[1] - room[0]:  # those of spacers are in the notes as well
+        labels = [label for label in labels if not label[0].startswith("spacer")]
+        widths = _label_widths(labels)
+    middles = _row([x for _, _, x, _ in labels], widths, *room)
     for (name, size, x, y), at in zip(labels, middles, strict=True):
         paper.text(at, upper, name, BODY, ha="center", bold=name == "datum")
         paper.text(at, upper - 3.4, size, BODY, ha="center")
@@ -137,6 +138,10 @@ def _hole_labels(paper: Paper, view: View, side: Box, part: PartFacts, sizes: Si
             paper.line((at, foot), (x, y - 2.2), weight=HATCH)
         else:
             paper.line((at, foot), (x, y), weight=HATCH, order=4.7)
+
+
+def _label_widths(labels: list[tuple[str, str, float, float]]) -> list[float]:
+    return [max(text_width(name, BODY), text_width(size, BODY)) + 2.0 for name, size, _, _ in labels]
 
 
 def _name(hole: DrillRow, pin: str) -> str:

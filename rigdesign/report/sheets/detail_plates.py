@@ -77,7 +77,7 @@ def _names(paper: Paper, view: View, part: PartFacts) -> None:
     """Names of the holes beside them, and the centre of mass."""
     corners = view.points(part.body.outline - part.body.outline.min(axis=0))
     closed = np.concatenate([corners, corners[:1]])
-    paper.board.draw_line(closed[:, 0], closed[:, 1])
+    paper.keep_off(closed)
     pivot = next(hole for hole in part.holes if hole.hole == "pivot")
     centre = view.at(pivot.along + part.mass.u, pivot.across + part.mass.v)
     for hole in part.holes:

@@ -30,7 +30,7 @@ def running_row(
     paper.line((order[0][0], line), (order[-1][0], line), weight=HATCH)
     for k, ((place, words, start), at) in enumerate(zip(order, apart, strict=True)):
         moved = abs(at - place) > 0.3
-        paper.line((place, start + way * GAP), (place, line + way * 0.8), weight=HATCH)
+        _extension(paper, (place, start + way * GAP), (place, line + way * 0.8))
         if moved:
             paper.line((place, line + way * 0.8), (at, line + way * (ELBOW - 0.4)), weight=HATCH)
         foot = line + way * (ELBOW if moved else 1.4)
@@ -52,7 +52,7 @@ def height_column(
     places = [place for place, _, _ in order]
     paper.line((line, min(places)), (line, max(places)), weight=HATCH)
     for (place, words, start), at in zip(order, apart, strict=True):
-        paper.line((start + GAP, place), (line + 0.8, place), weight=HATCH)
+        _extension(paper, (start + GAP, place), (line + 0.8, place))
         if abs(at - place) > 0.3:
             paper.line((line + 0.8, place), (line + ELBOW - 0.4, at), weight=HATCH)
         paper.text(line + ELBOW, at, words, BODY)
@@ -60,6 +60,12 @@ def height_column(
             paper.circle(line, place, 0.9, THIN)
         else:
             paper.arrow((line, place), np.pi / 2 if place > zero else -np.pi / 2, 1.8)
+
+
+def _extension(paper: Paper, start: Point, end: Point) -> None:
+    """A line from a feature to its dimension; later labels keep off it."""
+    paper.line(start, end, weight=HATCH)
+    paper.keep_off([start, end])
 
 
 def distance(paper: Paper, start: Point, end: Point, words: str, off: float, size: float = BODY) -> None:

@@ -13,7 +13,7 @@ from matplotlib.transforms import Affine2D
 from rigdesign.report.sheets.marks import MarkKind, draw_mark
 from rigdesign.report.sheets.paper import BODY, HEAD, MEDIUM, OUTLINE, SMALL, THIN, TITLE, Box, Paper
 from rigdesign.report.sheets.sizes import Sizes
-from rigdesign.report.sheets.texts import shortened, text_width
+from rigdesign.report.sheets.texts import broken, shortened, text_width
 
 FRAME = Box(20.0, 10.0, 390.0, 277.0)
 """The border of an A3 sheet [mm]: a margin to file it by on the left."""
@@ -123,8 +123,21 @@ def _block(paper: Paper, sheet: Sheet, facts: Facts) -> None:
 def _names(paper: Paper, box: Box, sheet: Sheet, facts: Facts) -> None:
     room = box.width - 4.0
     paper.text(box.left + 2, box.high - 2.6, "whiffletree for", SMALL)
-    paper.text(box.left + 2, box.high - 8.0, shortened(facts.title, room, TITLE, True), TITLE, bold=True)
-    paper.text(box.left + 2, box.high - 16.2, shortened(sheet.name, room, HEAD + 1, True), HEAD + 1, bold=True)
+    lines, size = _title_lines(facts.title, room)
+    for k, line in enumerate(lines):
+        paper.text(box.left + 2, box.high - 7.6 - 3.6 * (k - (len(lines) - 1) / 2), line, size, bold=True)
+    paper.text(box.left + 2, box.high - 17.0, shortened(sheet.name, room, HEAD + 1, True), HEAD + 1, bold=True)
+
+
+def _title_lines(title: str, room: float) -> tuple[list[str], float]:
+    """Return the title in the largest letters in which it fits on one line, or else on two."""
+    for size in (TITLE, TITLE - 1.5, HEAD):
+        if text_width(title, size, True) <= room:
+            return [title], size
+    lines = broken(title, room, HEAD, True)
+    if len(lines) > 2:
+        lines = [lines[0], shortened(" ".join(lines[1:]), room, HEAD, True)]
+    return lines, HEAD
 
 
 def _cells(paper: Paper, box: Box, sheet: Sheet, facts: Facts) -> None:
@@ -230,8 +243,3 @@ def _across(paper: Paper) -> None:
     )
     style: Any = {"facecolor": "none", "edgecolor": "black", "linewidth": 1.1, "zorder": 9.0}
     paper.axes.add_patch(PathPatch(place.transform_path(shape), **style))
-
-
-def fits(words: str, width: float, size: float) -> bool:
-    """Whether a line of text fits into a width [mm] at a size [pt]."""
-    return text_width(words, size) <= width

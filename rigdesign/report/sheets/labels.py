@@ -17,15 +17,22 @@ from rigdesign.report.sheets.views import View
 
 
 def name_mark(
-    paper: Paper, kind: MarkKind, number: int, part: str, target: tuple[float, float], start: float
+    paper: Paper,
+    kind: MarkKind,
+    number: int,
+    part: str,
+    target: tuple[float, float],
+    start: float,
+    covered: float = 1.5,
 ) -> tuple[float, float]:
     """Place a number in its mark with the part mark beside it, and a thin line to its target where it stands off.
 
-    `start` [mm] is how far from its target it begins.  Return the centre of it all.
+    `start` [mm] is how far from its target it begins, `covered` how much a covered line weighs against distance.
+    Return the centre of it all.
     """
     wide, high = mark_size(kind, number)
     words = text_width(part, SMALL) + 0.8 if part else 0.0
-    x, y = paper.board.place(*target, wide + words, high, start)
+    x, y = paper.board.place(*target, wide + words, high, start, covered)
     left = x - (wide + words) / 2
     middle = left + wide / 2
     away = np.hypot(middle - target[0], y - target[1])
@@ -58,9 +65,9 @@ def keep_off_steel(
     for piece in pieces:
         x, half = reach_along_x(hardware, piece), depth_of(hardware, piece) / 2
         height = hardware.heights[piece.name]
-        for edge in sorted({height - half, height, height + half}):
-            paper.board.draw_line(np.array([view.x(x[0]), view.x(x[1])]), np.array([view.y(edge), view.y(edge)]))
+        for edge in (height - half, height + half):
+            paper.keep_off([view.at(x[0], edge), view.at(x[1], edge)])
     for link in links:
         upper = view.at(place_of(hardware, link.upper.to, link.upper.at)[0], height_of(hardware, link.upper.to))
         lower = view.at(place_of(hardware, link.lower.to, link.lower.at)[0], height_of(hardware, link.lower.to))
-        paper.board.draw_line(np.array([upper[0], lower[0]]), np.array([upper[1], lower[1]]))
+        paper.keep_off([upper, lower])

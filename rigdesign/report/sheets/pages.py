@@ -5,7 +5,6 @@ from __future__ import annotations
 import io
 import warnings
 from collections.abc import Iterator
-from dataclasses import replace
 from typing import Any
 
 from matplotlib import rc_context
@@ -20,7 +19,7 @@ from rigdesign.report.sheets.details import detail_sheets
 from rigdesign.report.sheets.frame import Facts, Sheet, draw_frame
 from rigdesign.report.sheets.paper import HATCH, Paper
 from rigdesign.report.sheets.rigging import rigging_sheets
-from rigdesign.report.sheets.schedules import pads_table, schedules, settings_table
+from rigdesign.report.sheets.schedules import pads_table, schedules
 from rigdesign.report.sheets.sizes import Sizes
 from rigdesign.report.sheets.tables import table_sheets
 from rigdesign.report.sheets.tiers import places_table, tier_sheets
@@ -34,17 +33,13 @@ _WITH_KEY = ("General arrangement", "Tier")
 def sheets(result: HardwareCheck, sizes: Sizes) -> Iterator[Page]:
     """Yield all sheets, unframed, in their order."""
     yield elevation_sheet(result, sizes)
-    paper, name, scale, rest = plan_sheet(result, sizes)
+    places = [pads_table(result, sizes), places_table(result, sizes)]
+    paper, name, scale, rest = plan_sheet(result, sizes, places)
     yield paper, name, scale
     yield from tier_sheets(result, sizes)
     yield from detail_sheets(result, sizes)
-    pads = pads_table(result, sizes)
-    tables = [pads] if rest == 0 else []
-    if 0 < rest < len(pads.rows):
-        tables = [replace(pads, title=f"{pads.title}, continued", rows=pads.rows[rest:])]
-    yield from table_sheets([*tables, places_table(result, sizes), *schedules(result, sizes)])
+    yield from table_sheets([*rest, *schedules(result, sizes)])
     yield from rigging_sheets(result, sizes)
-    yield from table_sheets([settings_table(result, sizes)])
 
 
 @styled

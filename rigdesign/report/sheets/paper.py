@@ -19,6 +19,7 @@ from numpy.typing import ArrayLike
 from rigdesign.report.figures_sheet import A3, MM_PER_POINT, paper
 from rigdesign.report.sheets.texts import Across, Texts, Up, Words, broken, placed
 from rigdesign.report.surface.labels import Board
+from rigdesign.target.curve import Floats
 
 OUTLINE, MEDIUM, THIN, HATCH = 0.7, 0.5, 0.35, 0.18
 """Widths of lines [mm]: edges, edges of small things, dimensions and centre lines, hatches."""
@@ -80,6 +81,7 @@ class Paper:
         self.axes: Axes = paper(self.figure)
         self.board = Board(0.0, 0.0, width, height)
         self._taken: list[tuple[float, float, float, float]] = []
+        self._kept_off: list[Floats] = []
         self._lines: dict[tuple[float, Dash, float], list[Any]] = {}
         self._shapes: dict[tuple[float, float, str, str], list[Path]] = {}
         self._fills: list[Any] = []
@@ -144,11 +146,19 @@ class Paper:
         self._taken.append((x, y, width, height))
         self.board.take(x, y, width, height)
 
+    def keep_off(self, points: ArrayLike) -> None:
+        """Later labels keep off a line through these points (n, 2) [mm] where they can."""
+        line = np.asarray(points, dtype=float)
+        self._kept_off.append(line)
+        self.board.draw_line(line[:, 0], line[:, 1])
+
     def confine(self, box: Box) -> None:
         """Later labels are placed inside this part of the page, clear of what is written already."""
         self.board = Board(box.left, box.low, box.right, box.high)
         for taken in self._taken:
             self.board.take(*taken)
+        for points in self._kept_off:
+            self.board.draw_line(points[:, 0], points[:, 1])
 
     def paragraph(self, box: Box, words: str, size: float = SMALL, bold: bool = False) -> float:
         """Write words from the top of a box, broken to its width; return the height used [mm]."""

@@ -12,6 +12,7 @@ from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.hardware.model import Body, End, Hardware, Mass
 from rigdesign.levers.model import Piece
 from rigdesign.report.lists import DrillRow, PartRow, drill_rows, part_rows, pin_rows
+from rigdesign.report.sheets.schedules import numbers
 
 ALIKE = 0.5e-4
 """Arms that agree to this are those of one shape [m]: less than any hole's tolerance."""
@@ -41,9 +42,8 @@ class PartFacts:
 
         The numbers of plates are among those of levers.
         """
-        numbers = [name.split()[1] for name in self.row.members]
-        kind = self.row.kind
-        return f"{kind} {numbers[0]}" if len(numbers) == 1 else f"{kind}s {', '.join(numbers)}"
+        words = numbers(self.row.members)
+        return words if self.row.kind == "lever" else words.replace("lever", "plate")
 
 
 def detailed_parts(result: HardwareCheck) -> tuple[PartFacts, ...]:

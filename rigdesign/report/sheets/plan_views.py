@@ -34,7 +34,7 @@ def draw_plan(paper: Paper, view: View, result: HardwareCheck, pieces: Iterable[
     for group in levels:
         shapes = [Polygon(view.points(bar)) for piece in group for bar in bars(hardware, piece)]
         before = cover
-        cover = _outlines(paper, shapes, cover, MEDIUM)
+        cover = _outlines(paper, shapes, cover, _weight(view, hardware, group))
         for piece in group:
             _details(paper, view, hardware, piece, before)
     if hardware.side > 0:
@@ -47,6 +47,14 @@ def _levels(hardware: Hardware, pieces: Iterable[Piece]) -> list[list[Piece]]:
     for piece in pieces:
         groups.setdefault(round(hardware.heights[piece.name] * hardware.side, 6), []).append(piece)
     return [groups[z] for z in sorted(groups, reverse=True)]
+
+
+def _weight(view: View, hardware: Hardware, pieces: Sequence[Piece]) -> float:
+    """The width of outlines that leaves white between both edges of the thinnest steel [mm]."""
+    thin = min(
+        hardware.bodies[piece.name].section.width * view.mm if piece.kind == "lever" else 9.0 for piece in pieces
+    )
+    return next((weight for weight in (MEDIUM, THIN) if thin > 2.4 * weight), HATCH)
 
 
 def _outlines(paper: Paper, shapes: Sequence[Polygon], cover: BaseGeometry, weight: float) -> BaseGeometry:

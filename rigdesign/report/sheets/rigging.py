@@ -3,15 +3,17 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
+from dataclasses import dataclass, replace
 from math import ceil, isfinite
 
 from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.report.figures_sheet import MM_PER_POINT
 from rigdesign.report.lists import centres
 from rigdesign.report.sheets.frame import FIELD, NOT_ACCEPTED
-from rigdesign.report.sheets.paper import BODY, HEAD, Paper
-from rigdesign.report.sheets.schedules import numbers
+from rigdesign.report.sheets.paper import BODY, HEAD, Box, Paper
+from rigdesign.report.sheets.schedules import numbers, settings_table
 from rigdesign.report.sheets.sizes import Sizes
+from rigdesign.report.sheets.tables import Table, draw_whole, table_sheets
 from rigdesign.report.sheets.texts import broken
 from rigdesign.report.sheets.tiers import tiers_of
 from rigdesign.words import STANDARD_GRAVITY
@@ -24,37 +26,57 @@ cleared; common practice, from memory."""
 ROUND_UP = 0.5
 """The exclusion zone is rounded up to this [m]."""
 COLUMNS, GUTTER = 2, 10.0
+TOP, STEP = FIELD.high - 6.0, BODY * MM_PER_POINT * 1.45
 
 Section = tuple[str, tuple[str, ...]]
 
 
 def rigging_sheets(result: HardwareCheck, sizes: Sizes) -> Iterator[tuple[Paper, str, str]]:
-    """Yield the rigging sheet, and further ones where it does not fit on one."""
+    """Yield the rigging sheet, with the link settings where they fit, and further sheets where they do not."""
     wide = (FIELD.width - 14.0 - GUTTER * (COLUMNS - 1)) / COLUMNS
-    paper, column, y, drawn = Paper(), 0, FIELD.high - 6.0, False
-    step = BODY * MM_PER_POINT * 1.45
+    flow = _Flow(Paper(), 0, TOP)
     for heading, paragraphs in _sections(result, sizes):
         for k, words in enumerate(paragraphs):
             lines = broken(words, wide - 7.0, BODY)
-            need = len(lines) * step + 1.0 + (8.0 if k == 0 else 0.0)
-            if y - need < FIELD.low + 3.0:
-                column, y = column + 1, FIELD.high - 6.0
-                if column == COLUMNS:
-                    yield paper, "Rigging", "none"
-                    paper, column = Paper(), 0
-            left = FIELD.left + 7.0 + column * (wide + GUTTER)
-            if k == 0:
-                paper.text(left, y - 2.5, heading, HEAD, bold=True)
-                y -= 7.0
-            paper.text(left, y - step / 2, f"{k + 1}", BODY)
-            for line in lines:
-                paper.text(left + 6.0, y - step / 2, line, BODY)
-                y -= step
-            y -= 1.0
-            drawn = True
-        y -= 3.0
-    if drawn:
-        yield paper, "Rigging", "none"
+            need = len(lines) * STEP + 1.0 + (8.0 if k == 0 else 0.0)
+            if flow.y - need < FIELD.low + 3.0:
+                flow.column, flow.y = flow.column + 1, TOP
+            if flow.column == COLUMNS:
+                yield flow.paper, "Rigging", "none"
+                flow = _Flow(Paper(), 0, TOP)
+            _paragraph(flow, FIELD.left + 7.0 + flow.column * (wide + GUTTER), heading if k == 0 else "", k + 1, lines)
+        flow.y -= 3.0
+    settings = settings_table(result, sizes)
+    if flow.column + 1 < COLUMNS and settings_fit(flow.paper, settings, FIELD.left + 7.0 + wide + GUTTER, wide):
+        settings = replace(settings, rows=())
+    yield flow.paper, "Rigging", "none"
+    yield from table_sheets([settings])
+
+
+@dataclass
+class _Flow:
+    """How far the text has come: its page, column and height [mm]."""
+
+    paper: Paper
+    column: int
+    y: float
+
+
+def settings_fit(paper: Paper, table: Table, left: float, wide: float) -> bool:
+    """Draw the table of link settings into the last column if it fits whole; return whether it did."""
+    return draw_whole(paper, Box(left, FIELD.low + 3.0, wide, TOP - FIELD.low - 3.0), table) > 0.0
+
+
+def _paragraph(flow: _Flow, left: float, heading: str, number: int, lines: Sequence[str]) -> None:
+    """Write a numbered paragraph, beneath its section's heading where it is the first."""
+    if heading:
+        flow.paper.text(left, flow.y - 2.5, heading, HEAD, bold=True)
+        flow.y -= 7.0
+    flow.paper.text(left, flow.y - STEP / 2, f"{number}", BODY)
+    for line in lines:
+        flow.paper.text(left + 6.0, flow.y - STEP / 2, line, BODY)
+        flow.y -= STEP
+    flow.y -= 1.0
 
 
 def _sections(result: HardwareCheck, sizes: Sizes) -> Sequence[Section]:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from math import degrees
 
 from rigdesign.checks.hardware.model import HardwareCheck
@@ -9,8 +10,6 @@ from rigdesign.hardware.model import End, Link
 from rigdesign.report.lists import centres, cut_plans, drill_rows, link_rows, part_rows, pin_rows
 from rigdesign.report.sheets.sizes import Sizes
 from rigdesign.report.sheets.tables import Table
-
-_SHORT = {"lever": "levers", "link": "links", "pad": "pads", "jack": "jacks"}
 
 
 def schedules(result: HardwareCheck, sizes: Sizes) -> tuple[Table, ...]:
@@ -24,23 +23,41 @@ def schedules(result: HardwareCheck, sizes: Sizes) -> tuple[Table, ...]:
     )
 
 
-def numbers(names: tuple[str, ...]) -> str:
-    """Names of members in short: "levers 1, 3", "link 2"; names with a hole are grouped by their piece.
+def numbers(names: Sequence[str]) -> str:
+    """Names of members in short, in the order of their numbers; holes go with the pieces that have just these.
 
-    >>> numbers(("lever 1", "lever 3")), numbers(("link 2",)), numbers(("lever 1 A", "lever 1 B", "pad 2"))
-    ('levers 1, 3', 'link 2', 'lever 1: A, B; pad 2')
+    >>> numbers(("lever 4", "lever 1", "lever 2", "lever 3", "lever 7")), numbers(("link 2",))
+    ('levers 1–4, 7', 'link 2')
+    >>> numbers(("lever 1 A", "lever 1 B", "lever 2 A", "lever 2 B", "pad 2"))
+    ('levers 1, 2: A, B; pad 2')
     """
-    plain: dict[str, list[str]] = {}
-    holes: dict[str, list[str]] = {}
+    holes: dict[tuple[str, int], list[str]] = {}
     for name in names:
         kind, number, *hole = name.split()
-        if hole:
-            holes.setdefault(f"{kind} {number}", []).append(hole[0])
-        else:
-            plain.setdefault(kind, []).append(number)
-    parts = [f"{piece}: {', '.join(at)}" for piece, at in holes.items()]
-    parts += [f"{kind if len(own) == 1 else _SHORT.get(kind, kind)} {', '.join(own)}" for kind, own in plain.items()]
+        holes.setdefault((kind, int(number)), []).extend(hole)
+    alike: dict[tuple[str, tuple[str, ...]], list[int]] = {}
+    for (kind, value), at in sorted(holes.items()):
+        alike.setdefault((kind, tuple(at)), []).append(value)
+    parts = []
+    for (kind, where), own in alike.items():
+        words = f"{kind} {own[0]}" if len(own) == 1 else f"{kind}s {ranges(own)}"
+        parts.append(f"{words}: {', '.join(where)}" if where else words)
     return "; ".join(parts)
+
+
+def ranges(values: Sequence[int]) -> str:
+    """Rising numbers in short.
+
+    >>> ranges([1, 2, 3, 5, 6, 9])
+    '1–3, 5, 6, 9'
+    """
+    runs: list[list[int]] = []
+    for value in values:
+        if runs and value == runs[-1][-1] + 1:
+            runs[-1].append(value)
+        else:
+            runs.append([value])
+    return ", ".join(f"{run[0]}–{run[-1]}" if len(run) > 2 else ", ".join(map(str, run)) for run in runs)
 
 
 def parts_table(result: HardwareCheck, sizes: Sizes) -> Table:
@@ -50,7 +67,7 @@ def parts_table(result: HardwareCheck, sizes: Sizes) -> Table:
         length = "" if row.length is None else sizes.length(row.length)
         each = "" if row.mass is None else sizes.mass(row.mass)
         total = "" if row.total is None else sizes.mass(row.total)
-        where = numbers(row.members)
+        where = "see the schedule of pins" if row.kind == "pin" else numbers(row.members)
         rows.append((row.mark, row.kind, str(row.quantity), row.section, row.material, length, each, total, where))
     heads = ("mark", "part", "quantity", "section, size", "material", f"length\n[{sizes.unit}]", "mass\neach",
              "mass\nin all", "which")  # fmt: skip
@@ -80,7 +97,7 @@ def links_table(result: HardwareCheck, sizes: Sizes) -> Table:
         rows.append(
             (mark, str(len(names)), link_size(link), link.material.name, sizes.length(link.length),
              f"±{sizes.length(link.adjust)}", fitting(link.upper, sizes), upper or "stud", fitting(link.lower, sizes),
-             lower or "stud", sizes.mass(link.mass), numbers(tuple(names)))
+             lower or "stud", sizes.mass(link.mass), numbers(names))
         )  # fmt: skip
     heads = ("mark", "quantity", "size", "material", f"pin to pin\n[{sizes.unit}]", f"adjuster\n[{sizes.unit}]",
              "upper end", "upper\npin", "lower end", "lower\npin", "mass, pins\namong it", "which")  # fmt: skip

@@ -97,6 +97,18 @@ def draw_table(paper: Paper, room: Box, table: Table, start: int) -> tuple[int, 
     return start + row, used
 
 
+def draw_whole(paper: Paper, room: Box, table: Table) -> float:
+    """Draw a table if all of it fits into a room; return the height used [mm], 0 where it does not fit."""
+    if not table.rows:
+        return 0.0
+    trial = Paper(paper.size)
+    end, used = draw_table(trial, room, table, 0)
+    if end < len(table.rows):
+        return 0.0
+    draw_table(paper, room, table, 0)
+    return used
+
+
 def column_widths(table: Table, most: float) -> list[float]:
     """Return the widths of the columns [mm]; the column of long texts takes what is left, if it needs it."""
     widths = []
@@ -106,7 +118,7 @@ def column_widths(table: Table, most: float) -> list[float]:
         widths.append(wide + 2 * PAD)
     if table.long is not None:
         left = most - sum(width for k, width in enumerate(widths) if k != table.long)
-        need = max(text_width(row[table.long], BODY) for row in table.rows) + 2 * PAD
+        need = max(text_width(row[table.long], BODY) for row in table.rows) + 2 * PAD + 0.1
         widths[table.long] = max(widths[table.long], min(need, left))
     return widths
 

@@ -20,7 +20,7 @@ from rigdesign.report.sheets.steel import depth_of, height_of, place_of
 from rigdesign.report.sheets.tables import Table
 from rigdesign.report.sheets.views import View, rise_of, seen_words
 
-STATIONS, LABELS, AIR = 16.0, 12.0, 6.0
+STATIONS, LABELS, AIR = 20.0, 12.0, 6.0
 """Room for the row of pivots' stations, for marks around a view, and between views [mm]."""
 TITLE = 9.0
 STUB = 14.0
@@ -78,9 +78,19 @@ def tier_sheets(result: HardwareCheck, sizes: Sizes) -> Iterator[tuple[Paper, st
             if k > row:
                 paper.line((FIELD.left, top), (FIELD.right, top), weight=HATCH)
             top -= high
-        numbers = f"{tiers[row].number}" if last == row + 1 else f"{tiers[row].number} to {tiers[last - 1].number}"
-        yield paper, f"Tier{'' if last == row + 1 else 's'} {numbers}, levers and plates", scale_words(ratio)
+        yield paper, _sheet_name([tier.number for tier in tiers[row:last]]), scale_words(ratio)
         row = last
+
+
+def _sheet_name(tiers: list[int]) -> str:
+    """What a sheet of these tiers is called.
+
+    >>> _sheet_name([3]), _sheet_name([1, 2]), _sheet_name([1, 2, 3])
+    ('Tier 3', 'Tiers 1 and 2', 'Tiers 1 to 3')
+    """
+    if len(tiers) == 1:
+        return f"Tier {tiers[0]}"
+    return f"Tiers {tiers[0]} {'and' if len(tiers) == 2 else 'to'} {tiers[-1]}"
 
 
 def _ratio(result: HardwareCheck) -> float:
@@ -132,11 +142,12 @@ def _side(paper: Paper, view: View, result: HardwareCheck, tier: Tier, sizes: Si
         upper, lower = (far, (x, height)) if upwards else ((x, height), far)
         side_views.draw_stub(paper, view, link, upper, lower, upwards, side_views.near(result, y))
     side_views.draw_pieces(paper, view, result, tier.pieces)
-    features = [
-        (view.x(piece.pivot.x), sizes.length(piece.pivot.x), view.y(height) + depth * view.mm) for piece in tier.pieces
-    ]
+    is_surface = result.check.rig.plan.target.brief.specimen.is_surface
+    top = view.y(height) + depth * view.mm
+    features = [(view.x(piece.pivot.x), _pivot(piece, is_surface, sizes), top) for piece in tier.pieces]
+    what = f"x, y [{sizes.unit}]" if is_surface else f"x [{sizes.unit}]"
     running_row(paper, _once(features), line, 1.0, (box.left + 16, box.right - 4), datum=False)
-    paper.text(max(box.left + 2, min(place for place, _, _ in features) - 18.0), line, f"x [{sizes.unit}]", BODY)
+    paper.text(max(box.left + 2, min(place for place, _, _ in features) - 20.0), line, what, BODY)
     paper.confine(Box(box.left + 2.0, view.low - depth * view.mm - STUB - LABELS, box.width - 4.0,
                       line - 2.0 - (view.low - depth * view.mm - STUB - LABELS)))  # fmt: skip
     keep_off_steel(paper, view, result, tier.pieces, ())
@@ -151,6 +162,12 @@ def _side(paper: Paper, view: View, result: HardwareCheck, tier: Tier, sizes: Si
         way = view.rise * (1.0 if upwards else -1.0)
         at = view.x(x), view.y(height) + way * (depth * view.mm + STUB - 5.0)
         name_mark(paper, "link", link.number, hardware.marks[link.name], at, 1.2)
+
+
+def _pivot(piece: Piece, is_surface: bool, sizes: Sizes) -> str:
+    """Where a pivot is: x, and y as well on a surface."""
+    x, y = sizes.length(piece.pivot.x), sizes.length(piece.pivot.y)
+    return f"{x}, {y}" if is_surface else x
 
 
 def _once(features: list[tuple[float, str, float]]) -> list[tuple[float, str, float]]:
