@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections import Counter
 from functools import cache
 from itertools import pairwise
+from pathlib import Path
 
 import pulp
 import pytest
@@ -94,6 +95,13 @@ def test_a_rigs_levers():
     assert plan.offcut > 0.75 * (5 * BAR - total - kerfs)  # most of what is left is in one piece
 
 
+def test_the_example_of_the_page_holds():
+    page = (Path(__file__).parents[3] / "docs" / "catalogue.md").read_text(encoding="utf-8")
+    block = page.split("```python\n")[1].split("```")[0]
+    assert "assert (plan.n_bars, plan.least_bars" in block
+    exec(block, {})
+
+
 def test_the_kerf_is_not_taken_where_the_bar_ends():
     assert cut_list([("L1", 1.998, 3)], 6.0, 0.003).n_bars == 1  # two kerfs, then the end
     assert cut_list([("L1", 1.998, 3)], 6.0, 0.003).offcut == 0.0
@@ -106,9 +114,10 @@ def test_less_than_a_kerf_is_no_offcut():
     assert (plan.n_bars, plan.offcut) == (1, 0.0)
 
 
-def test_lengths_that_no_binary_number_holds_still_fit():
-    """20 × 0.3 m are 6 m, though the sum in floating point is not."""
-    assert cut_list([("L1", 0.3, 20)], 6.0, 0.0).n_bars == 1
+@pytest.mark.parametrize(("length", "count", "bar"), [(1.104, 5, 5.52), (1.1, 1, 1.2 - 0.1)])
+def test_lengths_that_no_binary_number_holds_still_fit(length, count, bar):
+    """1.104 m are 11040.000000000002 tenths of a millimetre, 1.2 m less 0.1 m are 10999.999999999998."""
+    assert cut_list([("L1", length, count)], bar, 0.0).n_bars == 1
 
 
 def test_what_no_bar_can_give_is_listed_apart():
