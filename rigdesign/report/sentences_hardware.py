@@ -12,6 +12,7 @@ from rigdesign.checks.text import listed, percent
 from rigdesign.display import System, counted, show
 from rigdesign.report.lists import cut_plans
 from rigdesign.report.lists.masses import tree_mass
+from rigdesign.report.sentences import pieces_words
 from rigdesign.report.summary_hardware import closest_pair, counterweights, part_marks, tare_of_load
 
 if TYPE_CHECKING:
@@ -86,12 +87,11 @@ def _mass_line(result: HardwareCheck, system: System) -> str:
     if heaviest is None:
         return f"{text}."
     mass = show(hardware.masses[heaviest.name].mass, "mass", system)
-    count = len(hardware.pieces)
-    marks = part_marks(result)
-    made = "all different" if marks == count > 1 else f"{counted(marks, 'part mark')} among them"
+    count, marks = len(hardware.pieces), part_marks(result)
+    made = "all different" if marks == count > 1 else f"{counted(marks, 'part mark')} in all"
     return (
         f"{text}; the heaviest piece to lift is {heaviest.name} ({hardware.marks[heaviest.name]}) with {mass}. "
-        f"{counted(count, 'lever or plate') if count == 1 else f'{count} levers and plates'} to make, {made}."
+        f"To make: {pieces_words(result.check)}, {made}."
     )
 
 

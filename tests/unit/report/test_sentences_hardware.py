@@ -59,8 +59,8 @@ def test_mass_and_marks():
     line = line_with(result, "Mass")
     assert show(steel_weight(result) / 9.80665, "mass") in line
     assert f"lever 1 (L1) with {show(result.hardware.masses['lever 1'].mass, 'mass')}" in line
-    assert line.endswith("4 levers and plates to make, all different.")
-    assert line_with(alike(result, "lever 3", "lever 4"), "Mass").endswith("3 part marks among them.")
+    assert line.endswith("To make: 4 levers, all different.")
+    assert line_with(alike(result, "lever 3", "lever 4"), "Mass").endswith("To make: 4 levers, 3 part marks in all.")
 
 
 def test_own_weight_says_of_what_and_what_it_costs():
