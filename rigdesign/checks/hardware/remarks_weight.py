@@ -7,7 +7,7 @@ from collections.abc import Iterator
 import numpy as np
 
 from rigdesign.checks.hardware.model import Remedy, Step, Tare
-from rigdesign.checks.hardware.tare import Weighed
+from rigdesign.checks.hardware.tare import BAND_SLACK, Weighed
 from rigdesign.checks.measures import unevenness
 from rigdesign.checks.model import Check
 from rigdesign.checks.text import also, percent
@@ -15,7 +15,6 @@ from rigdesign.display import show
 from rigdesign.findings import Finding, Severity
 from rigdesign.hardware.model import Hardware
 
-USE_SLACK = 1e-9  # what the search puts right on a band must not fail by rounding
 LEVEL_ROUNDS = 30  # halve the stretch between two steps: 1e-9 of the brief's load
 ALL_OF_IT = 1.0
 
@@ -44,7 +43,7 @@ def _bands(check: Check, weighed: Weighed, tare: Tare) -> Iterator[Finding]:
         f"the brief's load; with it and the best jack force, {_jacks(check, full)}, errors are " + _errors(check, full)
     )
     value = f"band use {full.band_use:.3g} with own weight, {check.band_use:.3g} without"
-    if full.band_use > 1 + USE_SLACK and check.band_use <= 1 + USE_SLACK:
+    if full.band_use > 1 + BAND_SLACK and check.band_use <= 1 + BAND_SLACK:
         yield _remark("failure", "rig", f"the rig's own weight breaks a band: {text}", value, "1", _what_to_do(tare))
     else:
         yield _remark("note", "rig", text, value, "1")
@@ -71,7 +70,7 @@ def _the(words: str) -> str:
 def _what_to_do(tare: Tare) -> str:
     """The remedies that bring the rig back into its bands with their masses, else how far each goes."""
     words = [_remedy_words(remedy) for remedy in tare.remedies]
-    doing = [text for remedy, text in zip(tare.remedies, words, strict=True) if remedy.band_use <= 1 + USE_SLACK]
+    doing = [text for remedy, text in zip(tare.remedies, words, strict=True) if remedy.band_use <= 1 + BAND_SLACK]
     if doing:
         return f"{' or '.join(doing)} (see tare.csv for the forces at each step)"
     return f"lighter levers, shorter ones or a wider band; alone, {' and '.join(words)}"
@@ -88,8 +87,8 @@ def _shares(check: Check, full: Step) -> Iterator[Finding]:
     if allowed is None:
         return
     off = unevenness(full.pad_force, check.share_of_curve)
-    over = np.flatnonzero(off > allowed + USE_SLACK)
-    if not over.size or check.evenness > allowed + USE_SLACK:
+    over = np.flatnonzero(off > allowed + BAND_SLACK)
+    if not over.size or check.evenness > allowed + BAND_SLACK:
         return
     worst = int(np.argmax(off))
     yield _remark(
@@ -105,9 +104,9 @@ def _shares(check: Check, full: Step) -> Iterator[Finding]:
 
 def _lower_steps(check: Check, tare: Tare) -> Iterator[Finding]:
     """Steps other than 100 % at which own weight breaks a band that the rig keeps without it."""
-    if check.band_use > 1 + USE_SLACK or tare.step(ALL_OF_IT).band_use > 1 + USE_SLACK:
+    if check.band_use > 1 + BAND_SLACK or tare.step(ALL_OF_IT).band_use > 1 + BAND_SLACK:
         return
-    over = [step for step in tare.steps if step.band_use > 1 + USE_SLACK]
+    over = [step for step in tare.steps if step.band_use > 1 + BAND_SLACK]
     if not over:
         return
     worst = max(over, key=lambda step: step.band_use)

@@ -28,6 +28,7 @@ from rigdesign.words import LOAD_STEPS
 
 MOST_ROUNDS = 1000  # each leaves out a line for good; no rig comes near
 SAME = 1e-12  # of a band: lines that meet closer than this meet
+BAND_SLACK = 1e-9  # of a band: what the search puts right on it must not fail by rounding
 NOTHING = 1e-9  # of the largest link force at the brief's load: a link that carries less carries nothing
 
 
@@ -117,8 +118,8 @@ class Weighed:
             start = self.errors(level, 0.0)[quantity]
             for width, sign in ((at.above[quantity], 1.0), (at.below[quantity], -1.0)):
                 judged = np.isfinite(width)
-                slopes.append(sign * rate[judged] / (level * width[judged]))
-                starts.append(sign * start[judged] / (level * width[judged]))
+                slopes.append(sign * rate[judged] / width[judged])
+                starts.append(sign * start[judged] / width[judged])
         return lowest(np.concatenate(slopes), np.concatenate(starts), self.even_factor(level))
 
     def even_factor(self, level: float) -> float:
@@ -131,10 +132,12 @@ class Weighed:
         """The jacks' forces that members must bear at a step, overshoot included [N], (n_trees,).
 
         Those at which the pads together bring what the step asks of them, times the overshoot; or those of the step,
-        where least band use asks for more than that.
+        where least band use asks for more than that.  Of a rig that is out of its bands without any weight, the jack
+        force of least band use says nothing of what it must bear.
         """
         even, best = overshoot * self.even_factor(level), self.best_factor(level)
-        return (even if abs(even) >= abs(best) else best) * self.jack
+        keeps_bands = self.sampled.check.band_use <= 1 + BAND_SLACK
+        return (best if keeps_bands and abs(best) > abs(even) else even) * self.jack
 
     @property
     def pull(self) -> Floats:

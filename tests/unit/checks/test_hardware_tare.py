@@ -215,11 +215,14 @@ def test_counterweights_give_back_what_the_rig_does_without_weight(build):
 
 def test_members_are_held_at_the_even_jack_force_or_at_the_steps_own():
     rig = line_rig()
-    ready = of(rig)
-    target = rig.plan.target
+    target, found = rig.plan.target, check(rig)
+    ready = of(rig, found=replace(found, band_use=0.9))
     even = 1.5 * target.total.total - target.gravity.total + hung_weight(make_hardware_for(rig))
     assert ready.held_at(1.5, 1.05) == pytest.approx([1.05 * even])
     best = float(ready.step(1.5).jack[0])
     assert best != pytest.approx(even, rel=1e-5)
     assert ready.held_at(1.5, 1.0) == pytest.approx([max(best, even)])
     assert ready.held_at(1.5, 0.5) == pytest.approx([best])
+    # out of its bands whatever the jack does, the rig is held at what its load asks for
+    out = of(rig, found=replace(found, band_use=1.1))
+    assert out.held_at(1.5, 0.5) == pytest.approx([0.5 * even])
