@@ -91,7 +91,7 @@ def _stations(paper: Paper, view: View, result: HardwareCheck, sizes: Sizes, far
     rig, away = result.check.rig, -view.rise
     places = [view.x(float(x)) for x in rig.pad_x]
     order = sorted(range(len(places)), key=lambda k: (places[k], k))
-    rows = max(1, int(np.ceil(len(places) * (MARK + 0.8) / (FIELD.width - HEIGHTS_ROOM))))
+    rows = max(1, int(np.ceil(len(places) * (MARK + 0.8) / max(max(places) - min(places), 60.0))))
     base = far + away * 6.0
     for row in range(rows):
         members = order[row::rows]

@@ -53,9 +53,10 @@ def _header(paper: Paper, box: Box, part: PartFacts, sizes: Sizes) -> float:
     at = left + text_width(row.mark, TITLE + 1, True) + 4.0
     words = f"{row.quantity} off: {part.members}"
     paper.text(at, top - 5.0, shortened(words, box.right - at - 4.0, BODY + 1), BODY + 1)
-    mass = "" if row.mass is None else f"{sizes.mass(row.mass)} each"
-    if row.mass is not None and row.quantity > 1:
-        mass += f", {sizes.mass(row.quantity * row.mass)} in all"
+    one = part.mass.mass - sum(part.body.counterweights.values())
+    mass = f"{sizes.mass(one)} each"
+    if row.quantity > 1:
+        mass += f", {sizes.mass(row.quantity * one)} in all"
     steel = f"{row.section}, {row.material}, {_length(part, sizes)}; {mass}"
     paper.text(left, top - 10.2, shortened(steel, box.width - 8.0, BODY), BODY)
     notes = _notes(part, sizes)
@@ -84,6 +85,10 @@ def _notes(part: PartFacts, sizes: Sizes) -> str:
         places = ", ".join(sizes.length(holes["pivot"].along + u) for u in part.body.spacers)
         bolt = f"bolt M{1e3 * SPACER_BOLT:.0f} through {sizes.plain_hole(SPACER_BORE)}"
         words.append(f"{counted(len(part.body.spacers), 'spacer')} {part.spacer} at {places}, {bolt}")
+    for side in part.sides:
+        words.append(
+            f"{side.mark}: {side.section}, {side.quantity} in all, welded on both webs all round, then drilled"
+        )
     for hole, mass in part.body.counterweights.items():
         words.append(f"counterweight {sizes.mass(mass)} at {hole}, in the centre of mass")
     if part.mirror:

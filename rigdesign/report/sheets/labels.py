@@ -40,6 +40,9 @@ def name_mark(
         paper.line(target, (middle, y), weight=HATCH, order=4.8)
     draw_mark(paper, kind, number, middle, y)
     if part:
+        low, high_edge, right = y - 1.15, y + 1.15, left + wide + words + 0.2
+        behind = ((left + wide, low), (right, low), (right, high_edge), (left + wide, high_edge))
+        paper.shape(behind, 0.0, order=4.9)
         paper.text(left + wide + 0.6, y - 0.05, part, SMALL)
     return x, y
 

@@ -23,7 +23,8 @@ class PartFacts:
     """A part mark: its row of the parts list, one of its pieces with body and mass, its holes, and more.
 
     `pins` gives the pin's mark by hole ("" at studs), `mirror` the mark that is its mirror image ("" for none), and
-    `spacer` the mark of its spacers ("" for none).  `pivot_end` is the link's end at the pivot.
+    `spacer` the mark of its spacers ("" for none).  `pivot_end` is the link's end at the
+    pivot, `sides` are the rows of its side plates.
     """
 
     row: PartRow
@@ -35,6 +36,7 @@ class PartFacts:
     mirror: str
     spacer: str
     pivot_end: End
+    sides: tuple[PartRow, ...]
 
     @property
     def members(self) -> str:
@@ -56,7 +58,8 @@ def detailed_parts(result: HardwareCheck) -> tuple[PartFacts, ...]:
     for hole in drill_rows(result):
         holes.setdefault(hole.mark, []).append(hole)
     pieces = {piece.name: piece for piece in hardware.pieces}
-    own = [row for row in rows if row.kind in ("lever", "plate")]
+    own = [row for row in rows if row.kind in ("lever", "plate") and row.mark == hardware.marks[row.members[0]]]
+    sides = {row.mark: row for row in rows if row.kind == "plate" and row not in own}
     shapes = {row.mark: _shape(hardware, pieces[row.members[0]]) for row in own}
     found = []
     for row in own:
@@ -64,7 +67,8 @@ def detailed_parts(result: HardwareCheck) -> tuple[PartFacts, ...]:
         at = {str(hole.name): pins.get(f"{name} {hole.name}", "") for hole in pieces[name].holes}
         found.append(
             PartFacts(row, pieces[name], hardware.bodies[name], hardware.masses[name], tuple(holes[row.mark]), at,
-                      _mirror(row.mark, shapes), spacers.get(name, ""), hardware.end_at(name, "pivot"))
+                      _mirror(row.mark, shapes), spacers.get(name, ""), hardware.end_at(name, "pivot"),
+                      tuple(side for mark, side in sides.items() if mark.startswith(f"{row.mark}_")))
         )  # fmt: skip
     return tuple(found)
 

@@ -78,7 +78,7 @@ def parts_table(result: HardwareCheck, sizes: Sizes) -> Table:
             notes.append(
                 f"{centre.name} without jack and load cell: {sizes.mass(centre.mass)}, centre of mass at {place}"
             )
-    notes.append("mass of levers without counterweights, spacers among it; of links without pins, which have own rows")
+    notes.append("mass of levers: their profiles; of links: without pins; side plates, spacers and pins have own rows")
     return Table("Parts list", heads, tuple(rows), "llrllrrrl", 8, tuple(notes))
 
 

@@ -98,7 +98,7 @@ def _phantom(paper: Paper, view: View, left: float, right: float, radius: float)
 
 
 def _pin(paper: Paper, view: View, end: End) -> None:
-    half, radius = end.pin_length / 2 + 0.5 * end.pin, end.pin / 2
+    half, radius = end.pin_length / 2, end.pin / 2
     paper.shape(view.points(_rectangle(-half, half, -radius, radius)), THIN, order=3.6)
     paper.line(view.at(-half - 2 / view.mm, 0.0), view.at(half + 2 / view.mm, 0.0), weight=HATCH, dash="chain",
                order=3.8)  # fmt: skip
