@@ -3,7 +3,7 @@
 Places are x, y in plan and h towards the jack, z = side · h [m].  What is drawn of what:
 
 - a lever of twin flats: two boxes; of twin channels: web and flanges, a box each; of a hollow section: a box, and its
-  side plates, as deep as the section; its spacers, cylinders of 25 mm that stand out 10 mm on either side for the heads
+  side plates, as deep as the section; its spacers, cylinders that stand out 10 mm on either side for the heads
   and washers of their bolts;
 - a plate: its outline, or the least convex one about it, through its thickness;
 - a counterweight: two halves about the link at its hole that make up a cylinder of steel, 1.2 times as wide as long,
@@ -34,7 +34,7 @@ from rigdesign.target.curve import Floats
 STEEL_DENSITY = 7850.0  # kg/m³, of counterweights
 WEIGHT_SHAPE = 1.2  # width of a counterweight over its length
 NO_FOOTPRINT = 0.1  # m, of a pad whose length or width the brief does not give
-SPACER, HEAD = 0.025, 0.010  # m, width of a spacer and of its bolt's washers, and how far the bolt's head stands out
+HEAD = 0.010  # m, how far the head of a bolt stands out
 WASHER, STUD_END, NUT_WIDTH = 0.7, 1.3, 1.8  # of a stud's diameter
 CHEEK = 2.0  # length of a fork's cheeks over the radius of their round end, where the steel needs no longer ones
 BRIDGE_GAP = 0.005  # m, from the steel that a fork straddles to its bridge
@@ -154,8 +154,7 @@ class _Parts:
 
     def _half_depth(self, name: str) -> float:
         """Half the height of a piece's steel [m]; of pads and jacks none counts."""
-        body = self.hardware.bodies.get(name)
-        return 0.0 if body is None else 0.5 * body.section.depth
+        return 0.5 * self.hardware.bodies[name].section.depth if name in self.hardware.bodies else 0.0
 
     def _link(self, link: Link) -> Iterator[Floats]:
         """A link's solids, seen from its upper hole."""
@@ -220,8 +219,8 @@ class _Parts:
     def _pad(self, pad: PadBody, end: End) -> Iterator[Floats]:
         """A pad seen from its pin."""
         rules = self.hardware.rig.plan.target.brief.pads
-        turn = float(self.turns[pad.pad - 1])
-        axes = np.array([[math.cos(turn), math.sin(turn), 0.0], [-math.sin(turn), math.cos(turn), 0.0], UP])
+        cos, sin = math.cos(self.turns[pad.pad - 1]), math.sin(self.turns[pad.pad - 1])
+        axes = np.array([[cos, sin, 0.0], [-sin, cos, 0.0], UP])
         long, wide = 0.5 * (rules.length or NO_FOOTPRINT), 0.5 * (rules.width or NO_FOOTPRINT)
         yield box(axes, (-long, -wide, -pad.height), (long, wide, 0.0))
         across = self._across(self.hardware.link_above[f"pad {pad.pad}"])[1]
@@ -234,7 +233,7 @@ def _frame(piece: Piece) -> Floats:
     a, b = piece.ends[:2]
     size = math.hypot(b.x - a.x, b.y - a.y)
     u, v = (b.x - a.x) / size, (b.y - a.y) / size
-    return np.array([[u, v, 0.0], [-v, u, 0.0], [0.0, 0.0, 1.0]])
+    return np.array([[u, v, 0.0], [-v, u, 0.0], UP])
 
 
 def _plate_axes(piece: Piece, axes: Floats) -> Floats:
@@ -264,7 +263,7 @@ def _spacers(body: Body, axes: Floats) -> Iterator[Floats]:
     """Spacers and their bolts, seen from the pivot."""
     across = (0.5 * body.gap + body.section.web + HEAD) * axes[1]
     for at in body.spacers:
-        yield cylinder(at * axes[0] - across, at * axes[0] + across, 0.5 * SPACER)
+        yield cylinder(at * axes[0] - across, at * axes[0] + across, 0.5 * body.spacer.tube)
 
 
 def _both_sides(axes: Floats) -> tuple[Floats, Floats]:
