@@ -10,6 +10,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Iterator, Mapping
 from dataclasses import dataclass, replace
+from itertools import pairwise
 from math import ceil, inf
 from typing import Literal
 
@@ -106,7 +107,7 @@ def side_width(hole: float) -> float:
 
 
 def spacer_places(a: float, b: float) -> tuple[float, ...]:
-    """Places u [m] of spacers between the holes of twin profiles, so that none is farther than `SPACER_PITCH`.
+    """Places u [m] of spacers between the holes of twin profiles, whole millimetres, `SPACER_PITCH` apart at most.
 
     >>> [round(u, 3) for u in spacer_places(0.2, 0.7)]
     [0.233, 0.467]
@@ -114,13 +115,14 @@ def spacer_places(a: float, b: float) -> tuple[float, ...]:
     places = []
     for start, end in ((-a, 0.0), (0.0, b)):
         parts = ceil(round((end - start) / SPACER_PITCH, 9))
-        places += [start + (end - start) * i / parts for i in range(1, parts)]
+        places += [round(start + (end - start) * i / parts, 3) for i in range(1, parts)]
     return tuple(places)
 
 
 def braced(a: float, b: float) -> float:
     """Largest distance between two places at which twin profiles are held together [m]."""
-    return max(arm / ceil(round(arm / SPACER_PITCH, 9)) for arm in (a, b))
+    held = sorted([-a, 0.0, b, *spacer_places(a, b)])
+    return max(right - left for left, right in pairwise(held))
 
 
 def bar_state(task: LeverTask, section: Section, holes: Mapping[HoleName, float], side: float, shop: Shop) -> Bar:

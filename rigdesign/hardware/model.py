@@ -15,6 +15,8 @@ from dataclasses import dataclass, field
 from functools import cached_property
 from typing import Literal
 
+import numpy as np
+
 from rigdesign.brief.model_hardware import Build
 from rigdesign.findings import Finding
 from rigdesign.levers.model import HoleName, Piece, Rig
@@ -23,6 +25,12 @@ from rigdesign.target.curve import Floats
 SectionKind = Literal["flat", "channel", "hollow", "round", "plate"]
 Fitting = Literal["eye", "fork", "stud", "loop"]
 LinkKind = Literal["rod", "strap", "webbing"]
+
+
+def _no_places() -> Floats:
+    return np.empty((0, 2))
+
+
 PartKind = Literal["lever", "plate", "link", "pin", "pad", "jack", "cell", "spacer", "counterweight"]
 
 
@@ -82,6 +90,24 @@ class Section:
 
 
 @dataclass(frozen=True)
+class Spacer:
+    """A tube across the gap of twin profiles with a bolt through it: diameters of tube, bore and bolt [m].
+
+    The bore is that of the holes in the profiles as well.
+    """
+
+    tube: float
+    bore: float
+    bolt: float
+
+
+_SPACERS = ((0.035, Spacer(0.012, 0.0066, 0.006)), (0.055, Spacer(0.016, 0.009, 0.008)))
+_LARGE_SPACER = Spacer(0.025, 0.0135, 0.012)
+# bores of ISO 273, medium (from memory); none takes more than a third of the depth, where a lever is bent less than at
+# its pivot
+
+
+@dataclass(frozen=True)
 class Body:
     """What a lever or plate is made of.
 
@@ -90,7 +116,8 @@ class Body:
     of thickness `side_plate` [m] welded outside on both webs of a hollow section at each hole (0 for none), and
     spacers at `spacers` [m], their u in the piece's frame.  A plate: `section` is the plate of its thickness (kind
     "plate", depth = thickness), `outline` its corners u, v [m] (n, 2) counter-clockwise, `overhang` the radius about
-    its holes.  `counterweights` are masses [kg] by the hole that they hang at.
+    its holes.  `counterweights` are masses [kg] by the hole that they hang at.  `old_pivots` (n, 2) [m] are u, v of
+    pivots of an earlier drilling, holes of the pivot's diameter that stay open.
     """
 
     piece: str
@@ -104,6 +131,12 @@ class Body:
     spacers: tuple[float, ...]
     outline: Floats
     counterweights: Mapping[HoleName, float] = field(default_factory=dict)
+    old_pivots: Floats = field(default_factory=_no_places)
+
+    @property
+    def spacer(self) -> Spacer:
+        """What holds its profiles apart, by their depth."""
+        return next((spacer for depth, spacer in _SPACERS if self.section.depth <= depth), _LARGE_SPACER)
 
     @property
     def across(self) -> float:

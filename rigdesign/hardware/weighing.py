@@ -18,8 +18,8 @@ from rigdesign.hardware.model import Body, End, Link, Mass, Section
 from rigdesign.levers.model import HoleName, Piece
 from rigdesign.target.curve import Floats
 
-SPACER_TUBE, SPACER_BORE, SPACER_BOLT, SPACER_HEAD = 0.025, 0.013, 0.012, 0.020
-"""A spacer: a tube's outer and inner diameter, the bolt in it, and the bolt's length beyond the profiles [m]."""
+BOLT_ENDS = 0.020
+"""The bolt of a spacer stands out of the profiles by so much in all [m], for head and nut."""
 
 STEEL_DENSITY = 7850.0
 """Density of spacers, bolts and turnbuckles [kg/m³]."""
@@ -39,20 +39,20 @@ def lever_mass(piece: Piece, body: Body, holes: dict[HoleName, float]) -> Mass:
     parts = [(body.profiles * section.mass * (last - first), (first + last) / 2)]
     webs = 2 * section.web if body.build == "hollow section" else body.profiles * section.web
     parts += [(-density * webs * round_area(diameter), u[name]) for name, diameter in holes.items()]
+    parts += [(-density * webs * round_area(holes["pivot"]), float(place)) for place, _ in body.old_pivots]
     if body.side_plate > 0:
         area = {name: side_width(diameter) * section.depth - round_area(diameter) for name, diameter in holes.items()}
         parts += [(2 * density * body.side_plate * area[name], u[name]) for name in holes]
-    bored = density * body.profiles * section.web * round_area(SPACER_BORE)
+    bored = density * body.profiles * section.web * round_area(body.spacer.bore)
     parts += [(spacer_mass(body) - bored, place) for place in body.spacers]
     return _summed(parts, [(mass, u[name]) for name, mass in body.counterweights.items()])
 
 
 def spacer_mass(body: Body) -> float:
     """Mass of one spacer of a lever [kg]: a tube across the gap and a bolt through it."""
-    bolt = body.across + SPACER_HEAD
-    return STEEL_DENSITY * (
-        body.gap * (round_area(SPACER_TUBE) - round_area(SPACER_BORE)) + bolt * round_area(SPACER_BOLT)
-    )
+    spacer = body.spacer
+    tube = round_area(spacer.tube) - round_area(spacer.bore)
+    return STEEL_DENSITY * (body.gap * tube + (body.across + BOLT_ENDS) * round_area(spacer.bolt))
 
 
 def plate_mass(piece: Piece, body: Body, holes: dict[HoleName, float]) -> Mass:
@@ -62,6 +62,7 @@ def plate_mass(piece: Piece, body: Body, holes: dict[HoleName, float]) -> Mass:
     places = {hole.name: np.array([hole.u - piece.pivot.u, hole.v - piece.pivot.v]) for hole in piece.holes}
     parts = [(density * thickness * area, centre)]
     parts += [(-density * thickness * round_area(diameter), places[name]) for name, diameter in holes.items()]
+    parts += [(-density * thickness * round_area(holes["pivot"]), place) for place in body.old_pivots]
     parts += [(mass, places[name]) for name, mass in body.counterweights.items()]
     weights, at = np.array([mass for mass, _ in parts]), np.array([place for _, place in parts])
     total = weights.sum()

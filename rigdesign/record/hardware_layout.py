@@ -52,6 +52,7 @@ BODY = Layout(
         ("side_plate_m", "side_plate", "number"),
         ("spacers_m", "spacers", "numbers"),
         ("outline_m", "outline", "corners"),
+        ("old_pivots_m", "old_pivots", "corners"),
         ("counterweights_kg", "counterweights", "amounts"),
     )
 )

@@ -217,7 +217,9 @@ def test_a_profile_and_its_side_plates_make_the_lever(folder):
         section = hardware["sections"][body["section"]]
         part = parts[hardware["marks"][body["piece"]]]
         holes = [(size + play) / 1000 for place, size in known.items() if place.startswith(f"{body['piece']} ")]
-        holes += [0.013] * len(body["spacers_m"])  # a bolt M12 in a hole of 13 mm
+        # bolts M6, M8 or M12 by the depth, in medium holes of ISO 273
+        bore = 0.0066 if section["depth_m"] <= 0.035 else 0.009 if section["depth_m"] <= 0.055 else 0.0135
+        holes += [bore] * len(body["spacers_m"])
         drilled = 2 * section["web_m"] * sum(math.pi / 4 * hole**2 for hole in holes)
         density = hardware["materials"][body["material"]]["density_kg_m3"]
         mass = body["profiles"] * section["mass_kg_m"] * float(part["length_m"]) - drilled * density

@@ -62,6 +62,9 @@ def lever_hole(hardware: Hardware, piece: Piece, hole: Hole, load: float) -> Pla
         for other in piece.holes
         if other is not hole
     ]
+    old = body.old_pivots + np.array([piece.pivot.u, piece.pivot.v])
+    pivot = hardware.end_at(piece.name, "pivot")
+    others += [float(np.hypot(hole.u - u, hole.v - v)) - pivot.hole / 2 for u, v in old]
     beside = float(min(others)) if hole.name == "pivot" else min(float(min(others)), body.overhang)
     return PlateHole(
         load=load,

@@ -5,13 +5,15 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from rigdesign.hardware.model import Body, Hardware
-from rigdesign.hardware.weighing import SPACER_BOLT, SPACER_BORE
 from rigdesign.levers.model import Piece
 from rigdesign.report.lists.members import by_mark, pieces_by_name
 from rigdesign.report.lists.model import DrillRow
 
 if TYPE_CHECKING:
     from rigdesign.checks.hardware.model import HardwareCheck
+
+OLD_PIVOT = "old pivot"
+"""What a pivot of an earlier drilling is called."""
 
 SPACER = "spacer"
 """What a hole for the bolt of a spacer is called."""
@@ -48,7 +50,12 @@ def piece_drill_rows(hardware: Hardware, piece: Piece, body: Body) -> list[Drill
         rows.append(DrillRow(mark, hole.name, along, across, end.hole, end.pin, note))
     for u in body.spacers:
         along, across = from_datum(piece, body, u, 0.0)
-        rows.append(DrillRow(mark, SPACER, along, across, SPACER_BORE, SPACER_BOLT, "for the bolt of a spacer"))
+        spacer = body.spacer
+        rows.append(DrillRow(mark, SPACER, along, across, spacer.bore, spacer.bolt, "for the bolt of a spacer"))
+    pivot = hardware.end_at(piece.name, "pivot")
+    for u, v in body.old_pivots:
+        along, across = from_datum(piece, body, float(u), float(v))
+        rows.append(DrillRow(mark, OLD_PIVOT, along, across, pivot.hole, pivot.pin, "drilled already; no pin here"))
     return sorted(rows, key=lambda row: (row.along, row.across))
 
 

@@ -6,8 +6,8 @@ import math
 from collections import Counter
 from typing import TYPE_CHECKING
 
-from rigdesign.hardware.model import Body, Hardware, Machine, PartKind
-from rigdesign.hardware.weighing import SPACER_BOLT, SPACER_BORE, SPACER_TUBE, spacer_mass
+from rigdesign.hardware.model import Body, Hardware, Machine, PartKind, Spacer
+from rigdesign.hardware.weighing import spacer_mass
 from rigdesign.report.lists.flats import side_plates_of
 from rigdesign.report.lists.members import by_mark, pieces_by_name, steel_length
 from rigdesign.report.lists.model import PartRow
@@ -104,16 +104,20 @@ def _side_plate_rows(hardware: Hardware) -> list[PartRow]:
 
 def _spacer_rows(hardware: Hardware) -> list[PartRow]:
     """Spacers with their bolts, by the gap that they fill and what the bolt goes through."""
-    owners: dict[tuple[float, float], list[str]] = {}
+    owners: dict[tuple[Spacer, float, float], list[str]] = {}
     for name, body in hardware.bodies.items():
         if body.spacers:
-            owners.setdefault((round(body.gap, 9), round(body.across, 9)), []).extend([name] * len(body.spacers))
-    size = f"tube ⌀{1e3 * SPACER_TUBE:g}/{1e3 * SPACER_BORE:g} with bolt M{1e3 * SPACER_BOLT:g}"
+            key = (body.spacer, round(body.gap, 9), round(body.across, 9))
+            owners.setdefault(key, []).extend([name] * len(body.spacers))
     return [
-        PartRow(f"S{number}", "spacer", len(names), size, "steel", gap, spacer_mass(hardware.bodies[names[0]]),
-                tuple(dict.fromkeys(names)))
-        for number, ((gap, _), names) in enumerate(owners.items(), start=1)
+        PartRow(f"S{number}", "spacer", len(names), _spacer_size(spacer), "steel", gap,
+                spacer_mass(hardware.bodies[names[0]]), tuple(dict.fromkeys(names)))
+        for number, ((spacer, gap, _), names) in enumerate(owners.items(), start=1)
     ]  # fmt: skip
+
+
+def _spacer_size(spacer: Spacer) -> str:
+    return f"tube ⌀{1e3 * spacer.tube:g}/{1e3 * spacer.bore:g} with bolt M{1e3 * spacer.bolt:g}"
 
 
 def _counterweight_rows(hardware: Hardware) -> list[PartRow]:

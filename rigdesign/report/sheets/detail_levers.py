@@ -6,7 +6,6 @@ import numpy as np
 
 from rigdesign.hardware.levers import side_width
 from rigdesign.hardware.model import Body
-from rigdesign.hardware.weighing import SPACER_TUBE
 from rigdesign.report.figures_sheet import spread
 from rigdesign.report.lists import DrillRow
 from rigdesign.report.sheets.dimensions import distance, running_row
@@ -77,7 +76,7 @@ def _edges(paper: Paper, view: View, body: Body, length: float) -> None:
 def _spacers(paper: Paper, view: View, part: PartFacts) -> None:
     """Spacers between the profiles, hidden behind the one that is seen."""
     pivot = next(hole for hole in part.holes if hole.hole == "pivot").along
-    size = min(SPACER_TUBE / 2, 0.45 * part.body.section.depth)
+    size = part.body.spacer.tube / 2
     for u in part.body.spacers:
         turn = np.linspace(0.0, 2 * np.pi, 25)
         ring = np.column_stack([pivot + u + size * np.cos(turn), size * np.sin(turn)])

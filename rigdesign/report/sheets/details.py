@@ -6,7 +6,6 @@ from collections.abc import Iterator
 
 from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.display import counted
-from rigdesign.hardware.weighing import SPACER_BOLT, SPACER_BORE
 from rigdesign.report.sheets.detail_levers import draw_lever
 from rigdesign.report.sheets.detail_plates import draw_plate
 from rigdesign.report.sheets.frame import FIELD
@@ -83,7 +82,7 @@ def _notes(part: PartFacts, sizes: Sizes) -> str:
         words = [f"centre of mass at {sizes.length(along)}, {sizes.length(across)} from the datum"]
     if part.body.spacers:
         places = ", ".join(sizes.length(holes["pivot"].along + u) for u in part.body.spacers)
-        bolt = f"bolt M{1e3 * SPACER_BOLT:.0f} through {sizes.plain_hole(SPACER_BORE)}"
+        bolt = f"bolt M{1e3 * part.body.spacer.bolt:.0f} through {sizes.plain_hole(part.body.spacer.bore)}"
         words.append(f"{counted(len(part.body.spacers), 'spacer')} {part.spacer} at {places}, {bolt}")
     for side in part.sides:
         words.append(

@@ -208,6 +208,32 @@ def test_hard_cases_are_closed(stock, counted_bars, bars):
     assert all(stock.filled(pattern) <= stock.capacity for pattern in packing)
 
 
+MANY = {
+    "the linear programme's bound": (
+        [202, 201, 199, 198, 197, 192, 188, 187, 179, 175, 174, 173, 172, 169, 168, 167, 163, 162, 157, 144, 143, 138]
+        + [136, 134, 133, 128, 126],
+        [2, 2, 2, 2, 2, 2, 2, 1, 1, 2, 1, 2, 2, 2, 1, 1, 1, 2, 1, 1, 1, 1, 1, 2, 1, 2, 2],
+        601,
+        (12, 13),
+    ),
+    "the integer programme's packing": (
+        [392, 388, 381, 374, 364, 353, 349, 341, 328, 327, 324, 319, 314, 298, 281, 278, 270, 269, 262, 253, 252, 250]
+        + [233, 227, 226, 224, 220, 217, 210],
+        [2, 1, 2, 1, 1, 1, 2, 2, 1, 1, 2, 2, 2, 2, 1, 1, 1, 1, 2, 1, 1, 1, 2, 1, 1, 1, 1, 1, 1],
+        997,
+        (12, 12),
+    ),
+}
+
+
+@pytest.mark.parametrize(("sizes", "demand", "capacity", "bars"), MANY.values(), ids=MANY.keys())
+def test_what_closes_cases_with_too_many_patterns_to_list(sizes, demand, capacity, bars):
+    """Counting gives the first number of bars; without what the case is named after, a gap would be left."""
+    stock = Stock(tuple(sizes), tuple(demand), capacity)
+    packing, least = fewest_bars(stock)
+    assert (counting_bound(stock), len(packing), least) == (*bars, bars[1])
+
+
 @pytest.mark.filterwarnings("ignore::DeprecationWarning:pulp")
 @pytest.mark.parametrize(
     ("stock", "bars"),

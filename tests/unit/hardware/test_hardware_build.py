@@ -48,9 +48,12 @@ def test_a_lever_weighs_its_steel_less_its_holes():
     made = build_hardware(rig())
     body, piece = made.bodies["lever 1"], made.pieces[0]
     length = abs(piece.ends[0].u) + abs(piece.ends[1].u) + 2 * body.overhang
+    spacer = body.spacer
+    assert (spacer.tube, spacer.bore, spacer.bolt) == (0.025, 0.0135, 0.012)
     holes = sum(np.pi / 4 * made.end_at("lever 1", hole.name).hole ** 2 for hole in piece.holes)
+    holes += len(body.spacers) * np.pi / 4 * spacer.bore**2
     flats = 2 * 7850.0 * (length * body.section.depth - holes) * body.section.width
-    tube = 7850.0 * np.pi / 4 * (0.025**2 - 0.013**2) * body.gap
+    tube = 7850.0 * np.pi / 4 * (0.025**2 - 0.0135**2) * body.gap
     bolt = 7850.0 * np.pi / 4 * 0.012**2 * (body.gap + 2 * body.section.width + 0.020)
     expected = flats + len(body.spacers) * (tube + bolt)
     assert made.masses["lever 1"].mass == pytest.approx(expected, rel=1e-9)

@@ -102,7 +102,7 @@ def test_published_keys():
     ]  # fmt: skip
     assert list(data["bodies"][0]) == [
         "piece", "build", "profiles", "gap_m", "overhang_m", "side_plate_m", "spacers_m", "outline_m",
-        "counterweights_kg", "section", "material",
+        "old_pivots_m", "counterweights_kg", "section", "material",
     ]  # fmt: skip
     assert list(data["links"][0]) == [
         "link", "kind", "size", "width_m", "thickness_m", "stress_area_m2", "length_m", "adjust_m", "mass_kg",
