@@ -53,7 +53,7 @@ def test_levers_have_the_volume_of_their_sections(build):
         steel = body.section.depth * (body.section.width * length + 2 * body.side_plate * plates)
     else:
         across = body.gap + 2 * (body.section.web + 0.01)
-        spacers = len(body.spacers) * PRISM * math.pi / 4 * 0.025**2 * across
+        spacers = len(body.spacers) * PRISM * math.pi / 4 * body.spacer.tube**2 * across
         # the web's box runs through the flanges of a channel
         doubled = 4 * body.section.web * body.section.flange if build == "twin channels" else 0.0
         steel = (2 * body.section.area + doubled) * length + spacers
