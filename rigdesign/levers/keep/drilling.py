@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 
 from rigdesign.brief.model import LeverRules
 from rigdesign.levers.descent import all_pairs, descend, descend_again, moves_of
-from rigdesign.levers.drilled import BROKEN
+from rigdesign.levers.drilled import BROKEN, REACH
 from rigdesign.levers.grouping import LIMIT_SLACK
 from rigdesign.levers.keep.pivots import Pivot, forces_of
 from rigdesign.levers.keep.programme import Choice
@@ -68,8 +68,8 @@ class Drill:
         numbers = _Numbers.of(self, choice)
         if not numbers.rows:
             return self.undrilled()
-        value = self._value(numbers)
         start = numbers.nearest(choice)
+        value = self._value(numbers, start)
         moves = moves_of(start.size, all_pairs(start.size) if start.size <= ALL_PAIRS else np.empty((0, 2), np.int64))
         n_pads = self.branches.n_pads
         best = descend(start, moves, value, max(len(moves), JUDGED // n_pads))
@@ -100,13 +100,14 @@ class Drill:
             kept &= (reach * (1.0 + LIMIT_SLACK) >= self.rules.shortest_arm) & (part > LEAST_PART).all(axis=1)
         return kept
 
-    def _value(self, numbers: _Numbers) -> Value:
-        """Band use of rows of numbers; far larger where pad limits are missed, infinite where a piece's limit is."""
+    def _value(self, numbers: _Numbers, start: Ints) -> Value:
+        """Band use of numbers near `start`; far larger where pad limits are missed, infinite where a piece's are."""
 
         def value(rows: Ints) -> Floats:
             result = np.full(len(rows), np.inf)
             shifts = numbers.shifts(rows)
             kept = self.keeps(shifts, numbers.rows) & numbers.keep_distance(shifts)
+            kept &= (np.abs(rows - start) <= REACH).all(axis=1)
             if kept.any():
                 force = self.forces(shifts[kept])
                 missed = self.missed(force)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -10,10 +10,11 @@ import numpy as np
 from rigdesign.display import show
 from rigdesign.errors import InputError
 from rigdesign.findings import Refusal, numbered
+from rigdesign.levers.drilled import BROKEN
 from rigdesign.levers.keep.drilling import Drill, Holes
 from rigdesign.levers.keep.model import Kept, MovedPivot
-from rigdesign.levers.keep.pivots import pivots_of
-from rigdesign.levers.keep.programme import Choice, Programme
+from rigdesign.levers.keep.pivots import misfit_rows, pivots_of
+from rigdesign.levers.keep.programme import Choice, Programme, Within
 from rigdesign.levers.keep.remarks import none_possible, remarks, words_of
 from rigdesign.levers.keep.settled import settled
 from rigdesign.levers.keep.sight import shares, sight_of
@@ -101,33 +102,44 @@ def keep_rig(
         choice = Choice(undrilled.force, before, (), (), 0.0, free.rows)
         return _kept(task, choice, undrilled, free, before, 0, hole_diameters)
     limit = max(1.0 - MARGIN, free.use * (1.0 + EASE))
-    fewest = task.programme.fewest(limit, free.rows)
-    if fewest is None:
-        return none_possible(task.programme)
+    within = Within(limit, reaches=task.programme.reaches(limit, free.rows))
+    fewest = task.programme.fewest(within, free.rows) or replace(free, bound=0.0)
     proven = int(np.ceil(fewest.bound - 1e-6))
-    choice, holes = _best(task, fewest, limit)
+    choice, holes = _best(task, fewest, within)
     return _kept(task, choice, holes, free, before, proven, hole_diameters)
 
 
-def _best(task: _Task, fewest: Choice, limit: float) -> tuple[Choice, Holes]:
+def _best(task: _Task, fewest: Choice, within: Within) -> tuple[Choice, Holes]:
     """Pivots as drilled: with the fewest moves that end within the bands, or else of least band use."""
-    programme = task.programme
-    start = programme.price * len(fewest.near) + len(fewest.moved)
+    start = task.programme.unknowns.price * len(fewest.near) + len(fewest.moved)
     found: list[tuple[float, int, Choice, Holes]] = []
     for cost in range(start, start + MORE + 1):
-        choice = programme.least_use_within(limit, cost, fewest.rows) or fewest
-        holes = task.drill.drilled(choice)
-        if holes is None:
-            continue
-        if task.is_accepted(holes):
-            return choice, holes
-        found.append((task.use(holes) + 1e6 * float(task.drill.missed(holes.force[None])[0]), cost, choice, holes))
-        if limit > 1.0:
+        for choice in _choices(task, fewest, replace(within, cost=cost)):
+            holes = task.drill.drilled(choice)
+            if holes is None:
+                continue
+            if task.is_accepted(holes):
+                return choice, holes
+            missed = float(task.drill.missed(holes.force[None])[0])
+            found.append((task.use(holes) + BROKEN * missed, cost, choice, holes))
+        if within.use > 1.0:
             break
     if not found:
-        return Choice(fewest.force, fewest.use, (), (), fewest.bound, fewest.rows), task.drill.undrilled()
+        return replace(fewest, moved=(), near=()), task.drill.undrilled()
     _, _, choice, holes = min(found, key=lambda item: item[:2])
     return choice, holes
+
+
+def _choices(task: _Task, fewest: Choice, within: Within) -> Iterator[Choice]:
+    """Choices of one cost: that whose links lean least, with half of the room inside the bands given up; least use."""
+    best = task.programme.least_use_within(within, fewest.rows) or fewest
+    if within.use <= 1.0:
+        rows = misfit_rows(task.old, task.drill.branches, task.drill.pivots, best.force)
+        half = max(best.use, 0.5 * (best.use + within.use))
+        plumb = task.programme.plumbest(replace(within, use=half, misfits=rows), best.rows) if len(rows) else None
+        if plumb is not None:
+            yield plumb
+    yield best
 
 
 def _task(old: Rig, target: Target, distances: dict[str, float]) -> _Task:
@@ -165,8 +177,8 @@ def _moved(task: _Task, holes: Holes) -> tuple[MovedPivot, ...]:
         if away > 0:
             old = -pivot.holes[0]
             new = old + shift
-            places = (*map(float, old), *map(float, new))
-            result.append(MovedPivot(pivot.name, "pivot", *places, away, pivot.distance))
+            old_u, old_v, new_u, new_v = (float(value) for value in (*old, *new))
+            result.append(MovedPivot(pivot.name, "pivot", old_u, old_v, new_u, new_v, away, pivot.distance))
     return tuple(result)
 
 

@@ -80,6 +80,24 @@ def _range(holes: Floats, rules: LeverRules) -> tuple[float, float]:
     return least - a, b - least
 
 
+def misfit_rows(rig: Rig, branches: Branches, pivots: tuple[Pivot, ...], force: Floats) -> Floats:
+    """Rows (k, n_pads) that give how much nearer or further apart in plan what hangs from a piece gets [m].
+
+    Linear for forces near `force` (n_pads,) [N]: what carries F moves its pivot to Σ F x / Σ F.  Forces count in means.
+    """
+    mean = float(force.mean())
+    places = np.column_stack([rig.pad_x, rig.pad_y])
+    moved = {}
+    for row, pivot in enumerate(pivots):
+        hole = only_tree(rig).pieces[row].pivot
+        moved[row] = (places - (hole.x, hole.y)).T * pivot.load * mean / (pivot.load * force).sum()
+    rows = []
+    for ends in branches.ends:
+        first, *others = (moved.get(end, np.zeros((2, branches.n_pads))) for end in ends)
+        rows += [row for other in others for row in other - first if np.any(row)]
+    return np.array(rows).reshape(-1, branches.n_pads)
+
+
 def forces_of(branches: Branches, pivots: tuple[Pivot, ...], shifts: Floats, total: float) -> Floats:
     """Pad forces (k, n_pads) [N] of rigs whose pivots are shifted by `shifts` (k, n_pieces, 2) [m]."""
     rows = len(shifts)

@@ -1,26 +1,22 @@
 """Which pivots to move: a mixed-integer programme over pad forces.
 
-Unknown are the forces over their mean, whether each pivot is moved and to which side, and the band use.  Moved pivots
-keep the distance from their old holes; a pivot may also be moved by less, in a piece that is made new, which counts as
-more than all that are moved.  Bands enter a few rows at a time, the worst first: a programme with fewer rows has more
-solutions, so that what it proves impossible is so.
+Moved pivots keep the distance from their old holes; a pivot may also be moved by less, in a piece that is made new,
+which costs more than all that are moved.  Bands enter a few rows at a time, the worst first: a programme with fewer
+rows has more solutions, so that what it proves impossible is so.
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
 
 from rigdesign.levers.keep.pivots import Pivot
 from rigdesign.levers.keep.sight import Sight
+from rigdesign.levers.keep.unknowns import Rows, Unknowns, own_rows, stacked
 from rigdesign.pads.surface.quiet import quiet
 from rigdesign.target.curve import Floats
-
-SIDES = 8
-"""Directions in which a plate's pivot may leave its old hole.  A distance is asked of one of them, less what the
-direction in between loses, so that nothing is excluded that keeps it."""
 
 NODES = 4_000
 """Nodes that one programme may search."""
@@ -31,8 +27,11 @@ SLACK = 1e-7
 ROUNDS, ADDED = 60, 24
 """Rounds of rows at most, and rows that one round adds."""
 
-INTEGER = 1e-5
-"""What the solver may be off a whole number."""
+OFF = 1e-6
+"""What a largest moment may be off by the solver's tolerance."""
+
+AT_HOME = 1e-9
+"""A pivot that forces ask to be nearer to its old hole than this [m] is not moved."""
 
 
 @dataclass(frozen=True)
@@ -50,10 +49,18 @@ class Choice:
     bound: float
     rows: frozenset[int]
 
-    @property
-    def cost(self) -> tuple[int, int]:
-        """Pieces to be made new, and pivots moved in old ones."""
-        return len(self.near), len(self.moved)
+
+@dataclass(frozen=True)
+class Within:
+    """What choices are sought among: largest band use and cost, and how far moments reach (see `Unknowns.balances`).
+
+    Without `reaches` every pivot moves freely.  `misfits` (k, n_pads) are rows whose sizes may enter the aim.
+    """
+
+    use: float = np.inf
+    cost: float = np.inf
+    reaches: Floats | None = None
+    misfits: Floats | None = None
 
 
 @dataclass(frozen=True)
@@ -69,219 +76,147 @@ class Programme:
     @property
     def n_pads(self) -> int:
         """Number of pads."""
-        return self.sight.matrix.shape[1]
+        return int(self.sight.matrix.shape[1])
 
     @property
     def mean(self) -> float:
         """Mean force [N]."""
         return self.total / self.n_pads
 
-    @property
-    def price(self) -> int:
-        """What a piece made new counts, in moved pivots."""
-        return len(self.pivots) + 1
+    @cached_property
+    def unknowns(self) -> Unknowns:
+        """The unknowns, without misfits."""
+        return Unknowns(self.pivots, self.n_pads, 0)
 
     @cached_property
     def edges(self) -> tuple[Floats, Floats]:
-        """Rows (m, n_pads) over forces in means, and constants (m,): within a band use where row · f ≤ use + constant."""
+        """Rows (m, n_pads) over forces in means, and constants (m,)."""
         return self.sight.matrix * self.mean, self.sight.constant
-
-    @cached_property
-    def _directions(self) -> tuple[Floats, ...]:
-        """Directions (k, 2) in which each pivot may move."""
-        turn = 2 * np.pi * np.arange(SIDES) / SIDES
-        plate = np.stack([np.cos(turn), np.sin(turn)], axis=1)
-        lever = np.array([[1.0, 0.0], [-1.0, 0.0]])
-        return tuple(lever if pivot.is_lever else plate for pivot in self.pivots)
-
-    @cached_property
-    def starts(self) -> list[int]:
-        """Column of each pivot's first side; after its sides stands the column of a piece made new."""
-        first, result = self.n_pads, []
-        for sides in self._directions:
-            result.append(first)
-            first += len(sides) + 1
-        return [*result, first]
-
-    @property
-    def n_columns(self) -> int:
-        """Number of unknowns: forces, sides and new pieces of each pivot, band use."""
-        return self.starts[-1] + 1
 
     def least_use(self) -> Choice | None:
         """Forces of least band use whatever pivots they ask for; None where the limits leave no forces."""
-        cost = np.zeros(self.n_columns)
-        cost[-1] = 1.0
-        return self._converged(cost, _Limits(np.inf, np.inf, None), frozenset(), relaxed=True)
+        free = self._converged(self._use_aim(), Within(), frozenset())
+        return None if free is None else self._with_pivots(free)
 
-    def fewest(self, limit: float, rows: frozenset[int]) -> Choice | None:
-        """The cheapest choice within a band use `limit`; None where the search found none."""
-        cost = np.zeros(self.n_columns)
-        for k, start in enumerate(self.starts[:-1]):
-            cost[start : self.starts[k + 1] - 1] = 1.0
-            cost[self.starts[k + 1] - 1] = self.price
-        return self._converged(cost, _Limits(limit, np.inf, self._reaches(limit, rows)), rows)
+    def fewest(self, within: Within, rows: frozenset[int]) -> Choice | None:
+        """The cheapest choice; None where the search found none."""
+        return self._converged(self.unknowns.cost, within, rows)
 
-    def least_use_within(self, limit: float, most: int, rows: frozenset[int]) -> Choice | None:
-        """The choice of least band use among those that cost at most `most`; None where the search found none."""
-        cost = np.zeros(self.n_columns)
-        cost[-1] = 1.0
-        return self._converged(cost, _Limits(limit, most, self._reaches(limit, rows)), rows)
+    def least_use_within(self, within: Within, rows: frozenset[int]) -> Choice | None:
+        """The choice of least band use; None where the search found none."""
+        return self._converged(self._use_aim(), within, rows)
 
-    def _reaches(self, limit: float, rows: frozenset[int]) -> Floats:
-        """Largest moment each way and load of each pivot, (n_pieces, 5), over forces within a band use.
+    def plumbest(self, within: Within, rows: frozenset[int]) -> Choice | None:
+        """The choice of least sum of misfits; None where the search found none."""
+        assert within.misfits is not None
+        unknowns = self._unknowns(within)
+        aim = np.zeros(unknowns.count)
+        aim[unknowns.use + 1 :] = 1.0
+        return self._converged(aim, within, rows)
 
-        In the pivot's own units: moments over its size and number of pads, loads over the number of pads.
-        """
+    def reaches(self, limit: float, rows: frozenset[int]) -> Floats:
+        """Largest moments each way and load of each pivot over all forces within a band use, (n_pieces, 5)."""
         result = np.zeros((len(self.pivots), 5))
+        within = Within(limit)
+        constraints = self._constraints(self.unknowns, within, rows)
         for k, pivot in enumerate(self.pivots):
-            moments, load = self._own(pivot)
-            wishes = [moments[0], -moments[0], moments[1], -moments[1], load]
-            for index, wish in enumerate(wishes):
-                if not np.any(wish):
-                    continue
-                cost = np.zeros(self.n_columns)
-                cost[: self.n_pads] = -wish
-                found = self._solve(cost, _Limits(limit, np.inf, None), rows, relaxed=True)
-                # beyond what the solver may be off
-                result[k, index] = np.abs(wish).sum() * self.n_pads if found is None else -found[1] + 1e-6
+            moments, load = own_rows(pivot)
+            for index, wish in enumerate((moments[0], -moments[0], moments[1], -moments[1], load)):
+                if np.any(wish):
+                    aim = np.zeros(self.unknowns.count)
+                    aim[: self.n_pads] = -wish
+                    found = self._optimum(aim, self.unknowns, within, constraints)
+                    result[k, index] = np.abs(wish).sum() * self.n_pads if found is None else OFF - found[1]
         return np.maximum(result, 0.0)
 
-    def _own(self, pivot: Pivot) -> tuple[Floats, Floats]:
-        """Rows of a pivot's moments (2, n_pads) and load (n_pads,) in its own units."""
-        count = float(pivot.load.sum())
-        return pivot.moments / (pivot.size * count), pivot.load / count
+    def _use_aim(self) -> Floats:
+        aim = np.zeros(self.unknowns.count)
+        aim[self.unknowns.use] = 1.0
+        return aim
 
-    def _converged(
-        self, cost: Floats, limits: _Limits, rows: frozenset[int], relaxed: bool = False
-    ) -> Choice | None:  # fmt: skip
+    def _unknowns(self, within: Within) -> Unknowns:
+        return self.unknowns if within.misfits is None else replace(self.unknowns, n_misfits=len(within.misfits))
+
+    def _with_pivots(self, choice: Choice) -> Choice:
+        """The choice with the pivots that its forces ask for."""
+        moved: list[int] = []
+        near: list[int] = []
+        for k, pivot in enumerate(self.pivots):
+            away = float(np.hypot(*(pivot.moments * choice.force).sum(axis=1)) / (pivot.load * choice.force).sum())
+            if away > AT_HOME:
+                (moved if away >= pivot.distance else near).append(k)
+        return replace(choice, moved=tuple(moved), near=tuple(near))
+
+    def _converged(self, aim: Floats, within: Within, rows: frozenset[int]) -> Choice | None:
         """Solve with more and more rows until the solution keeps all; None where there is none."""
         matrix, constant = self.edges
+        unknowns = self._unknowns(within)
         for _ in range(ROUNDS):
-            found = self._solve(cost, limits, rows, relaxed)
+            found = self._solve(aim, within, rows)
             if found is None:
                 return None
             x, bound = found
             force = x[: self.n_pads] * (self.n_pads / x[: self.n_pads].sum())
-            use = (matrix * force).sum(axis=1) - constant
-            worst = float(use.max(initial=0.0))
-            if worst <= x[-1] + SLACK:
+            excess = (matrix * force).sum(axis=1) - constant - x[unknowns.use]
+            more = rows | _worst_rows(excess)
+            # what the solver leaves of its own rows is its tolerance
+            if more == rows:
                 break
-            rows = rows | _worst_rows(use - x[-1])
-        moved, near = self._states(x)
-        return Choice(force * self.mean, worst, moved, near, bound, rows)
+            rows = more
+        use = float((excess + x[unknowns.use]).max(initial=0.0))
+        return Choice(force * self.mean, use, *unknowns.chosen(x), bound, rows)
 
-    def _states(self, x: Floats) -> tuple[tuple[int, ...], tuple[int, ...]]:
-        moved, near = [], []
-        for k, start in enumerate(self.starts[:-1]):
-            end = self.starts[k + 1] - 1
-            if x[start:end].sum() > 0.5:
-                moved.append(k)
-            elif x[end] > 0.5:
-                near.append(k)
-        return tuple(moved), tuple(near)
+    def _solve(self, aim: Floats, within: Within, rows: frozenset[int]) -> tuple[Floats, float] | None:
+        """Unknowns and a bound of the aim, with some band rows; None where there are none or none were found."""
+        unknowns = self._unknowns(within)
+        constraints = self._constraints(unknowns, within, rows)
+        return self._optimum(aim, unknowns, within, constraints)
 
-    def _solve(self, cost: Floats, limits: _Limits, rows: frozenset[int], relaxed: bool) -> tuple[Floats, float] | None:
-        """Unknowns and a bound of the cost, with some band rows; relaxed: every pivot moves freely."""
+    def _optimum(
+        self, aim: Floats, unknowns: Unknowns, within: Within, constraints: Rows
+    ) -> tuple[Floats, float] | None:  # fmt: skip
+        """Unknowns of least aim within constraints, and a bound of the aim."""
+        # imported late: only a kept rig needs it
         from scipy.optimize import Bounds, LinearConstraint, milp
 
-        a, low, high = self._constraints(limits, rows, relaxed)
-        least, most = self._bounds(limits, relaxed)
-        whole = np.zeros(self.n_columns)
-        if not relaxed:
-            whole[self.n_pads : -1] = 1.0
+        least, most = self._bounds(unknowns, within)
+        whole = np.zeros(unknowns.count)
+        whole[unknowns.states] = 1.0
+        # freely moving pivots have no whole numbers at all
+        used = np.flatnonzero(most > 0) if within.reaches is None else np.arange(unknowns.count)
         with quiet():
             found = milp(
-                cost,
-                integrality=whole,
-                bounds=Bounds(least, most),
-                constraints=LinearConstraint(a, low, high),
+                aim[used],
+                integrality=whole[used],
+                bounds=Bounds(least[used], most[used]),
+                constraints=LinearConstraint(constraints.a[:, used], constraints.low, constraints.high),
                 options={"node_limit": NODES, "mip_rel_gap": 1e-6},
             )
         if found.x is None:
             return None
-        bound = found.fun if found.mip_dual_bound is None else found.mip_dual_bound
-        return found.x, float(bound)
+        x = np.zeros(unknowns.count)
+        x[used] = found.x
+        return x, float(found.fun if found.mip_dual_bound is None else found.mip_dual_bound)
 
-    def _bounds(self, limits: _Limits, relaxed: bool) -> tuple[Floats, Floats]:
-        least, most = np.zeros(self.n_columns), np.ones(self.n_columns)
+    def _bounds(self, unknowns: Unknowns, within: Within) -> tuple[Floats, Floats]:
+        least, most = np.zeros(unknowns.count), np.full(unknowns.count, np.inf)
         least[: self.n_pads] = max(self.least, 0.0) / self.mean
-        most[: self.n_pads] = self.largest / self.mean if np.isfinite(self.largest) else np.inf
-        most[self.n_pads : -1] = 0.0 if relaxed else 1.0
-        most[-1] = limits.use
+        most[: self.n_pads] = self.largest / self.mean
+        most[unknowns.states] = 0.0 if within.reaches is None else 1.0
+        most[unknowns.use] = within.use
         return least, most
 
-    def _constraints(self, limits: _Limits, rows: frozenset[int], relaxed: bool) -> tuple[Floats, Floats, Floats]:
-        """Everything as low ≤ a · unknowns ≤ high."""
+    def _constraints(self, unknowns: Unknowns, within: Within, rows: frozenset[int]) -> Rows:
         matrix, constant = self.edges
         chosen = np.array(sorted(rows), dtype=np.int64)
-        bands = np.zeros((chosen.size, self.n_columns))
-        bands[:, : self.n_pads], bands[:, -1] = matrix[chosen], -1.0
-        whole = np.zeros((1, self.n_columns))
-        whole[0, : self.n_pads] = 1.0 / self.n_pads
-        parts = [(whole, np.ones(1), np.ones(1)), (bands, np.full(chosen.size, -np.inf), constant[chosen])]
-        for k, pivot in enumerate(self.pivots):
-            parts.append(self._range_rows(pivot))
-            if not relaxed:
-                parts.append(self._state_rows(k, pivot, limits))
-        if np.isfinite(limits.cost):
-            price = np.zeros((1, self.n_columns))
-            for k, start in enumerate(self.starts[:-1]):
-                price[0, start : self.starts[k + 1] - 1] = 1.0
-                price[0, self.starts[k + 1] - 1] = self.price
-            parts.append((price, np.full(1, -np.inf), np.full(1, limits.cost + 0.5)))
-        a, low, high = (np.concatenate([part[i] for part in parts]) for i in range(3))
-        return a, low, high
-
-    def _range_rows(self, pivot: Pivot) -> tuple[Floats, Floats, Floats]:
-        """A lever's pivot stays within what its limits leave."""
-        if not pivot.is_lever:
-            return np.empty((0, self.n_columns)), np.empty(0), np.empty(0)
-        moments, load = self._own(pivot)
-        a = np.zeros((2, self.n_columns))
-        a[0, : self.n_pads] = moments[0] - pivot.high / pivot.size * load
-        a[1, : self.n_pads] = -moments[0] + pivot.low / pivot.size * load
-        return a, np.full(2, -np.inf), np.zeros(2)
-
-    def _state_rows(self, k: int, pivot: Pivot, limits: _Limits) -> tuple[Floats, Floats, Floats]:
-        """An unmoved pivot is in balance; a moved one keeps the distance on the side that is chosen."""
-        assert limits.reaches is not None
-        moments, load = self._own(pivot)
-        reach, start, end = limits.reaches[k], self.starts[k], self.starts[k + 1] - 1
-        sides, n = self._directions[k], self.n_pads
-        rows, high = [], []
-        for axis in (0,) if pivot.is_lever else (0, 1):
-            for sign, most in ((1.0, reach[2 * axis]), (-1.0, reach[2 * axis + 1])):
-                row = np.zeros(self.n_columns)
-                row[:n] = sign * moments[axis]
-                # a side whose direction points the other way needs none of this
-                row[start:end] = -most if not pivot.is_lever else np.where(sign * sides[:, 0] > 0, -most, 0.0)
-                row[end] = -most
-                rows.append(row)
-                high.append(0.0)
-        distance = pivot.distance / pivot.size * (1.0 if pivot.is_lever else float(np.cos(np.pi / SIDES)))
-        for index, side in enumerate(sides):
-            against = np.maximum(-side, 0.0) @ reach[[0, 2]] + np.maximum(side, 0.0) @ reach[[1, 3]]
-            slack = distance * reach[4] + against
-            row = np.zeros(self.n_columns)
-            row[:n] = distance * load - side @ moments
-            row[start + index] = slack
-            rows.append(row)
-            high.append(slack)
-        one = np.zeros(self.n_columns)
-        one[start : end + 1] = 1.0
-        rows.append(one)
-        high.append(1.0)
-        return np.array(rows), np.full(len(rows), -np.inf), np.array(high)
-
-
-@dataclass(frozen=True)
-class _Limits:
-    """Largest band use and cost, and how far each pivot's moment can reach (see `Programme._reaches`)."""
-
-    use: float
-    cost: float
-    reaches: Floats | None
+        parts = [unknowns.total(), unknowns.bands(matrix[chosen], constant[chosen]), unknowns.ranges()]
+        if within.reaches is not None:
+            parts.append(unknowns.balances(within.reaches))
+        if np.isfinite(within.cost):
+            parts.append(unknowns.at_most(within.cost))
+        if within.misfits is not None:
+            parts.append(unknowns.misfits(within.misfits))
+        return stacked(parts)
 
 
 def _worst_rows(excess: Floats) -> frozenset[int]:

@@ -56,8 +56,8 @@ def _too_near_old(pivot: MovedPivot, piece: Piece) -> Finding:
         "levers",
         "warning",
         pivot.piece,
-        f"the new pivot is so near the old one that the holes would weaken each other: a new {piece.kind} with the same "
-        "outer holes is needed",
+        "the new pivot is so near the old one that the holes would weaken each other: a new "
+        f"{piece.kind} with the same outer holes is needed",
         show(pivot.distance, "length", unit="mm"),
         f"{show(pivot.required, 'length', unit='mm')} centre to centre",
         f"make a new {piece.kind}, or weld the old hole up and have it approved",
@@ -89,19 +89,26 @@ def words_of(
     """What keeping the rig did, and what is proven."""
     if not moved:
         return f"kept rig: no pivot drilled anew, band use {after:.3g}"
-    new = [pivot for pivot in moved if not pivot.keeps_distance]
-    head = f"kept rig: {counted(len(moved), 'pivot')} of {pieces} drilled anew, band use {before:.3g} before, {after:.3g} after"
+    head = f"kept rig: {counted(len(moved), 'pivot')} of {pieces} drilled anew"
+    head += f", band use {before:.3g} before and {after:.3g} after"
+    new = sum(not pivot.keeps_distance for pivot in moved)
     if new:
-        head += f"; {counted(len(new), 'piece')} to be made new, as old and new hole would be too close"
+        head += f"; {counted(new, 'piece')} to be made new, as old and new hole would be too close"
+    return f"{head}; {_proof(len(moved), new, free, proven, pieces)}"
+
+
+def _proof(moved: int, new: int, free: Choice, proven: int, pieces: int) -> str:
+    """What is proven, before drilling, of pivots moved and pieces made new."""
     if free.use > 1.0:
-        return f"{head}; proven: no pivots of these levers bring the band use below {free.bound:.3g}"
-    if proven > pieces:
-        count = proven // (pieces + 1)
-        return (
-            f"{head}; proven: with old and new holes apart, fewer than {counted(count, 'new piece')} cannot keep the bands"
-        )
-    best = "the fewest that keep the bands, proven" if proven >= len(moved) else f"proven: no fewer than {proven} keep them"
-    return f"{head}; {best}"
+        return f"proven: no pivots of these pieces bring the band use below {free.bound:.3g}"
+    # a new piece counts as more than all moved pivots
+    least_new = proven // (pieces + 1)
+    if least_new:
+        same = "so few" if least_new == new else counted(least_new, "new piece")
+        return f"proven: without {same} no pivots that keep their distance from the old ones keep the bands"
+    if proven >= moved:
+        return "the fewest that keep the bands, proven"
+    return f"proven: fewer than {counted(proven, 'new pivot')} do not keep the bands"
 
 
 def none_possible(programme: Programme) -> Refusal:
