@@ -269,6 +269,12 @@ def test_a_plate_s_worst_washer_and_line():
         for k in hardware.links
     ))  # fmt: skip
     assert states.plate(upper, piece, 4000.0, loads).load == 1300.0
+    # the frame's origin is of no account
+    holes = tuple(replace(hole, u=hole.u + 0.2, v=hole.v - 0.1) for hole in piece.holes)
+    body = replace(hardware.bodies[piece.name], outline=hardware.bodies[piece.name].outline + np.array([0.2, -0.1]))
+    moved = replace(hardware, bodies={**hardware.bodies, piece.name: body})
+    found = states.plate(moved, replace(piece, holes=holes), 4000.0, loads)
+    assert (found.moment, found.width) == (pytest.approx(state.moment), pytest.approx(state.width))
 
 
 def test_a_line_that_meets_no_steel_is_beyond_all_limits():

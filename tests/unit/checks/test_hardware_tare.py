@@ -18,6 +18,7 @@ from rigdesign.checks.hardware.remedies import remedies
 from rigdesign.checks.hardware.tare import lowest, sampled, steps, weighed
 from rigdesign.checks.hardware.zeros import zeros
 from rigdesign.checks.whole import band_use
+from rigdesign.hardware.balance import counterweights
 from rigdesign.hardware.model import Mass
 from rigdesign.target import build_target
 
@@ -210,6 +211,8 @@ def test_counterweights_give_back_what_the_rig_does_without_weight(build):
     assert whole.errors == {q: pytest.approx(error, rel=1e-9) for q, error in best.errors.items()}
     assert whole.total == pytest.approx(sum(mass for _, _, mass in whole.masses))
     assert levers.total > 0
+    alone = counterweights(rig, hardware.masses, hardware.links, whole=False)
+    assert levers.masses == tuple((name, hole, mass) for name, holes in alone.items() for hole, mass in holes.items())
     assert levers.band_use != pytest.approx(ready.step(1.0).band_use, rel=1e-3)
 
 

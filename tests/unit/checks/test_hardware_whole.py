@@ -201,7 +201,7 @@ def _ready(result):
 
 
 def test_links_that_are_slack_at_the_whole_load_are_a_failure():
-    hardware = make_hardware_for(light_rig(acceptance=Acceptance((), (), defaulted=False)))
+    hardware = make_hardware_for(light_rig(acceptance=Acceptance((), (), defaulted=False), peak=1.0))
     piece = next(p for p in hardware.rig.trees[0].pieces if p.ends[1].joins == "pad 8")
     result = found(hardware.rig, heavier(hardware, piece.name, 400.0, piece.ends[1].u))
     (failure,) = by_stage(result, "behaviour", "failure")

@@ -130,3 +130,17 @@ def test_pairs_of_holes_that_stand_in_line_with_the_pivot_do_not_count():
     found = counterweights(rig, masses, hardware.links, whole=False)["lever 1"]
     # across: 20 · 0.05 = 0.4 B;  along: 20 · 0.02 + 0.1 B = 0.3 A
     assert found == {"A": pytest.approx(0.65 / 0.3), "B": pytest.approx(2.5)}
+
+
+def test_of_several_ways_to_balance_the_least_mass_is_taken():
+    """The pivot outside the triangle: B and C would do, and so would A and C with other masses."""
+    rig = make_plan_rig(X[:3], Y[:3], FORCE[:3], group=(1, 2, 3))
+    hardware = make_hardware_for(rig)
+    places = {"A": (0.2, 0.3), "B": (0.5, 0.1), "C": (0.3, -0.5)}
+    for name, (u, v) in places.items():
+        rig = with_hole(rig, 1, name, u=u, v=v)
+    masses = {name: Mass(0.0, 0.0, 0.0) for name in hardware.masses} | {"lever 1": Mass(20.0, -0.1, 0.01)}
+    found = counterweights(rig, masses, hardware.links, whole=False)["lever 1"]
+    best = linprog(np.ones(3), A_eq=np.array(list(places.values())).T, b_eq=[2.0, -0.2])
+    assert sum(found.values()) == pytest.approx(best.fun, rel=1e-9)
+    assert set(found) == {"B", "C"}
