@@ -13,10 +13,12 @@ How:
   (stacks); in rounds with heights (levels) and weights (weighing) until nothing changes (build).
 - Own weight that breaks a band (owning) is balanced by counterweights (balance).
 - Part marks (marking); the cut list (cutting).
+- The hardware of a rig that is kept (keeping): its steel, with pivots drilled anew.
 
 Depends on: levers, pads, target, brief, findings, errors, display, words.
 """
 
 from rigdesign.hardware.build import build_hardware as build_hardware
 from rigdesign.hardware.build import stock_line as stock_line
+from rigdesign.hardware.keeping import keep_hardware as keep_hardware
 from rigdesign.hardware.model import Hardware as Hardware

@@ -57,7 +57,8 @@ def _piece_key(piece: Piece, body: Body, holes: Mapping[HoleName, float]) -> Has
     places = tuple((_length(hole.u - piece.pivot.u), _length(hole.v - piece.pivot.v)) for hole in piece.ends)
     diameters = tuple(_length(holes[hole.name]) for hole in piece.holes)
     sizes = (body.profiles, _length(body.gap), _length(body.overhang), _length(body.side_plate))
-    return (body.build, body.section.name, body.material.name, sizes, places, diameters)
+    open_holes = tuple((_length(float(u)), _length(float(v))) for u, v in body.old_pivots)
+    return (body.build, body.section.name, body.material.name, sizes, places, diameters, open_holes)
 
 
 def _link_key(link: Link) -> Hashable:

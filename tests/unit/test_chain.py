@@ -7,6 +7,7 @@ import pytest
 from factories import make_acceptance, make_brief, make_levers, make_pads, shape_load
 
 from rigdesign import chain
+from rigdesign.chain import arranging
 from rigdesign.checks.model import Check
 from rigdesign.errors import BriefError
 from rigdesign.findings import Refusal
@@ -52,13 +53,13 @@ def test_fewest_takes_one_pad_more_where_drilling_breaks_a_band():
 def test_fewest_gives_the_best_where_more_pads_do_not_help_either(monkeypatch):
     tried = []
 
-    def never_good(target, count, progress, remarks=()):
+    def never_good(target, count, progress, stock, remarks=()):
         tried.append(count)
         return _Answer(4 if count is None else count)
 
-    monkeypatch.setattr(chain, "_design", never_good)
+    monkeypatch.setattr(arranging, "arrange_count", never_good)
     answer = chain.arrange(make_brief(pads=make_pads(count="fewest")))
-    assert tried == [None, *range(5, 5 + chain.MORE_PADS)]
+    assert tried == [None, *range(5, 5 + arranging.MORE_PADS)]
     assert answer.rig.plan.n_pads == 6
 
 
