@@ -100,7 +100,8 @@ class Zeros:
     """Readings of one jack's load cell [N], positive where the tree is loaded as in the test, in three states.
 
     `apart`: cell disconnected.  `hung`: tree on the jack, pads slack, None where the tree cannot hang or stand on its
-    jack alone.  `supported`: the specimen's own weight just carried by the pads, None where the brief gives no weight.
+    jack alone.  `supported`: the specimen's own weight just carried by the pads, None where the brief gives no
+    weight or the pads act along gravity.
     """
 
     jack: str
