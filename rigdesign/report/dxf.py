@@ -1,8 +1,8 @@
 """DXF files for cutting and drilling: one for each distinct flat or plate, in millimetres, 1:1, named by its mark.
 
 Layers: OUTLINE has the closed outline, HOLES true circles of the holes for pins, SPACERS those for the bolts of
-spacers, MARK the words beside it: mark, material, thickness, quantity, and where the datum is.  The datum is the
-drawing's origin.
+spacers, OLD those of pivots of an earlier drilling, MARK the words beside it: mark, material, thickness, quantity, and
+where the datum is.  The datum is the drawing's origin.
 
 Version R2010, units millimetres.  The files hold neither date nor chance: the same rig gives the same bytes.
 
@@ -16,7 +16,7 @@ from collections.abc import Iterator
 from contextlib import contextmanager
 from typing import TYPE_CHECKING
 
-from rigdesign.report.lists.drilling import SPACER
+from rigdesign.report.lists.drilling import OLD_PIVOT, SPACER
 from rigdesign.report.lists.flats import Flat, flat_shapes
 from rigdesign.report.lists.model import PER_METRE
 
@@ -26,8 +26,11 @@ if TYPE_CHECKING:
     from rigdesign.checks.hardware.model import HardwareCheck
 
 VERSION = "R2010"
-LAYERS = {"OUTLINE": 7, "HOLES": 1, "SPACERS": 5, "MARK": 3}
+LAYERS = {"OUTLINE": 7, "HOLES": 1, "SPACERS": 5, "OLD": 8, "MARK": 3}
 """Layers and the numbers of their colours."""
+
+HOLE_LAYERS = {SPACER: "SPACERS", OLD_PIVOT: "OLD"}
+"""Layers of holes that are not for pins; a machine that drills pins' holes needs HOLES alone."""
 
 LETTERS = 0.06
 """Height of letters over the larger side of the outline, between the two limits."""
@@ -76,7 +79,7 @@ def _draw(drawing: Drawing, flat: Flat) -> None:
     space.add_lwpolyline([(float(x), float(y)) for x, y in corners], close=True, dxfattribs={"layer": "OUTLINE"})
     for hole in flat.holes:
         centre = (PER_METRE * hole.x, PER_METRE * hole.y)
-        layer = "SPACERS" if hole.name == SPACER else "HOLES"
+        layer = HOLE_LAYERS.get(hole.name, "HOLES")
         space.add_circle(centre, PER_METRE * hole.diameter / 2, dxfattribs={"layer": layer})
     low, high = corners.min(axis=0), corners.max(axis=0)
     size = min(max(LETTERS * float(max(high - low)), LEAST_LETTERS), LARGEST_LETTERS)

@@ -28,7 +28,7 @@ DATUM_SIDE = "datum: left end, mid depth"
 class RoundHole:
     """A hole of a flat: its name, place `x`, `y` from the datum, its diameter and that of its pin or bolt [m].
 
-    The name is that of the lever's hole, or "spacer" where the bolt of a spacer goes through.
+    The name is that of the lever's hole, "spacer" where the bolt of a spacer goes through, or "old pivot".
     """
 
     name: str

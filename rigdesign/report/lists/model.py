@@ -99,7 +99,9 @@ class PinRow:
 
 @dataclass(frozen=True)
 class DrillRow:
-    """A hole of a part mark: `along` [m] from the datum end, and `diameter`, `pin` [m]; "spacer" is for a bolt.
+    """A hole of a part mark: `along` [m] from the datum end, and `diameter`, `pin` [m].
+
+    `hole` is that of the piece, "spacer" for the bolt of one, or "old pivot" for one of an earlier drilling.
 
     Of a lever `along` runs from the end of the steel beyond hole A, and `across` [m] is from mid depth: 0.  Of a plate
     `along` runs from its least u, `across` from its least v, both edges of the plate's own frame.

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import io
 import time
+from dataclasses import replace
 
 import ezdxf
 import numpy as np
@@ -12,7 +13,7 @@ from ezdxf import options
 from hand_results import alike, line_result, plan_result
 
 from rigdesign.report.dxf import dxf_bytes, dxf_files
-from rigdesign.report.lists import flat_shapes
+from rigdesign.report.lists import drill_rows, flat_shapes
 
 
 def opened(content: bytes):
@@ -46,7 +47,7 @@ def test_outline_and_holes_as_the_flat_has_them(result):
             drawn = sorted((c.dxf.center.x, c.dxf.center.y, 2 * c.dxf.radius) for c in circles)
             wanted = sorted((1000 * hole.x, 1000 * hole.y, 1000 * hole.diameter) for hole in holes)
             assert np.allclose(np.array(drawn), np.array(wanted), rtol=0, atol=1e-9)
-        assert {entity.dxf.layer for entity in space} <= {"OUTLINE", "HOLES", "SPACERS", "MARK"}
+        assert {entity.dxf.layer for entity in space} <= {"OUTLINE", "HOLES", "SPACERS", "OLD", "MARK"}
 
 
 def test_words_stand_clear_of_the_outline_and_say_what_it_is():
@@ -71,3 +72,18 @@ def test_the_setting_that_leaves_dates_out_is_put_back():
     assert options.write_fixed_meta_data_for_testing is False
     dxf_files(line_result())
     assert options.write_fixed_meta_data_for_testing is False
+
+
+def test_pivots_of_an_earlier_drilling_are_apart_from_holes_for_pins():
+    result = line_result()
+    body = replace(result.hardware.bodies["lever 2"], old_pivots=np.array([[-0.031, 0.0]]))
+    bodies = {**result.hardware.bodies, "lever 2": body}
+    drilled = replace(result, hardware=replace(result.hardware, bodies=bodies))
+    (flat,) = [flat for flat in flat_shapes(drilled) if flat.mark == "L2"]
+    space = opened(dxf_bytes(flat)).modelspace()
+    (old,) = space.query('CIRCLE[layer=="OLD"]')
+    pins = sorted(circle.dxf.center.x for circle in space.query('CIRCLE[layer=="HOLES"]'))
+    assert len(pins) == 3
+    assert old.dxf.center.x == pytest.approx(pins[1] - 31)
+    (row,) = [row for row in drill_rows(drilled) if row.hole == "old pivot"]
+    assert row.along == pytest.approx(old.dxf.center.x / 1000)
