@@ -64,6 +64,8 @@ def profile_mass(hardware: Hardware, name: str) -> float:
     body = hardware.bodies[name]
     mass = hardware.masses[name].mass - math.fsum(body.counterweights.values())
     mass -= len(body.spacers) * spacer_mass(body) if body.spacers else 0.0
+    if body.side_plate <= 0:
+        return mass
     own = hardware.marks[name]
     members = by_mark(hardware, hardware.bodies)[own]
     sides = [flat for flat in side_plates_of(hardware) if flat.mark.split("_")[0] == own]

@@ -164,5 +164,5 @@ def test_every_number_may_be_asked_for_as_infinite_only_where_it_may_be():
     data = read_object('{"a": "infinite", "b": [1, "infinite"], "c": {"d": "infinite"}}')
     assert data.size("a") == math.inf
     assert data.sizes("b") == [1.0, math.inf]
-    with pytest.raises(InputError, match="c.d: .*accepted: a finite number"):
+    with pytest.raises(InputError, match=r"c\.d: .*accepted: a finite number"):
         data.amounts("c")
