@@ -9,7 +9,9 @@ import numpy as np
 from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.report.figures_parts import MARK
 from rigdesign.report.figures_sheet import spread
+from rigdesign.report.lists import centres
 from rigdesign.report.sheets import side_views, specimen_views
+from rigdesign.report.sheets.detail_levers import centre_symbol
 from rigdesign.report.sheets.dimensions import height_column, running_row
 from rigdesign.report.sheets.frame import FIELD
 from rigdesign.report.sheets.labels import label_levers
@@ -39,6 +41,7 @@ def elevation_sheet(result: HardwareCheck, sizes: Sizes) -> tuple[Paper, str, st
     heights_at = _heights(paper, view, result, sizes)
     _headroom(paper, view, result, sizes, heights_at)
     _jacks(paper, view, result, sizes)
+    _centres(paper, view, result, sizes)
     label_levers(paper, view, result, result.hardware.pieces)
     seen, _ = seen_words(result)
     paper.text(FIELD.left + 5, FIELD.high - 6, f"elevation, {seen}, {scale_words(view.ratio)}", HEAD, bold=True)
@@ -74,9 +77,9 @@ def _view(result: HardwareCheck) -> View:
     rise = rise_of(result)
     near, far = specimen_views.DEPTH + STATIONS_ROOM, 9.0
     below, above = (near, far) if rise > 0 else (far + 4.0, near + 8.0)
-    room = FIELD.less(12.0, below, HEIGHTS_ROOM, above + 13.0)
-    view = fitted(room, (low, high), (bottom, top), rise)
-    return view
+    rows = 13.0 + 4.2 * len(hardware.stacks)
+    room = FIELD.less(12.0, below, HEIGHTS_ROOM, above + rows)
+    return fitted(room, (low, high), (bottom, top), rise)
 
 
 def _draw_rig(paper: Paper, view: View, result: HardwareCheck) -> None:
@@ -155,9 +158,9 @@ def levels(result: HardwareCheck) -> list[tuple[float, str, tuple[str, ...]]]:
     for stack in hardware.stacks:
         low = hardware.heights[stack.jack]
         joint = low + stack.cell.length
-        found.setdefault((round(low, 5), "lower pin of the cell"), []).append(stack.jack)
+        found.setdefault((round(low, 5), "pin of the cell"), []).append(stack.jack)
         found.setdefault((round(joint, 5), "cell to jack"), []).append(stack.jack)
-        found.setdefault((round(joint + stack.machine.length, 5), "upper pin of the jack"), []).append(stack.jack)
+        found.setdefault((round(joint + stack.machine.length, 5), "far pin of the jack"), []).append(stack.jack)
     result_rows = [(height, words, tuple(names)) for (height, words), names in sorted(found.items())]
     return [(0.0, "z = 0", ()), *result_rows]
 
@@ -190,6 +193,20 @@ def _jacks(paper: Paper, view: View, result: HardwareCheck, sizes: Sizes) -> Non
         draw_mark(paper, "jack", tree.jack.number, x, y)
         for k, words in enumerate(lines):
             paper.text(x + 6.0, y - 3.2 * (k - (len(lines) - 1) / 2), words, BODY)
+
+
+def _centres(paper: Paper, view: View, result: HardwareCheck, sizes: Sizes) -> None:
+    """Mass and centre of mass of each tree: in words at the top, and by a quartered disc at its place."""
+    trees = [centre for centre in centres(result) if centre.name.startswith("tree")]
+    for k, centre in enumerate(trees):
+        at = view.at(centre.x, centre.height)
+        centre_symbol(paper, *at, 1.7)
+        paper.take(*at, 3.8, 3.8)
+        place = f"x = {sizes.length(centre.x)}, height {sizes.length(centre.height)}"
+        words = f"{centre.name}: {sizes.mass(centre.mass)} without jack and cell, its centre of mass at {place}"
+        row = FIELD.high - 16.6 - 4.2 * k
+        centre_symbol(paper, FIELD.left + 6.3, row, 1.3)
+        paper.text(FIELD.left + 9.5, row, words, BODY)
 
 
 def _directions(paper: Paper, result: HardwareCheck, x: float, y: float) -> None:

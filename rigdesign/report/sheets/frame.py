@@ -35,6 +35,15 @@ CAUTIONS = (
     "Nobody stands beneath or beside a loaded rig.",
 )
 
+DETAIL_NOTES = (
+    "Datum of a lever: the end of its steel beyond hole A, at the left. All its holes are at mid depth.",
+    "Drill twin profiles clamped together; stamp the mark at the datum end.",
+    "Phantom lines: fittings of links, which are not part of the detail.",
+    "Pins and spacers: see their schedules. Outlines of flats and plates at 1:1: the DXF file of the mark.",
+    "Quartered disc: centre of mass.",
+)
+_WITH_KEY = ("General arrangement", "Tier")
+
 
 @dataclass(frozen=True)
 class Sheet:
@@ -57,15 +66,18 @@ class Facts:
     sizes: Sizes
 
 
-def draw_frame(paper: Paper, sheet: Sheet, facts: Facts, key: bool) -> None:
-    """Draw all that is around a sheet's own drawing; `key` says whether the shapes of marks are explained."""
+def draw_frame(paper: Paper, sheet: Sheet, facts: Facts) -> None:
+    """Draw all that is around a sheet's own drawing: border, title block, key or notes, cautions."""
     _border(paper)
     _block(paper, sheet, facts)
     notes = Box(FRAME.left, FRAME.low, BLOCK.left - FRAME.left, BLOCK.height)
-    wide = 66.0 if key else 0.0
-    if key:
+    is_detail = sheet.name.startswith("Detail")
+    wide = 92.0 if is_detail else 66.0 if sheet.name.startswith(_WITH_KEY) else 0.0
+    if is_detail:
+        _numbered(paper, Box(notes.left, notes.low, wide, notes.height), "notes on details", DETAIL_NOTES)
+    elif wide:
         _key(paper, Box(notes.left, notes.low, wide, notes.height))
-    _cautions(paper, Box(notes.left + wide, notes.low, notes.width - wide, notes.height))
+    _numbered(paper, Box(notes.left + wide, notes.low, notes.width - wide, notes.height), "cautions", CAUTIONS)
     if not facts.accepted:
         _across(paper)
 
@@ -217,12 +229,13 @@ def _key(paper: Paper, box: Box) -> None:
     paper.text(box.left + 2.0, box.low + 4.4, "L3, P1, K2, …: part marks, see the parts list", SMALL)
 
 
-def _cautions(paper: Paper, box: Box) -> None:
+def _numbered(paper: Paper, box: Box, heading: str, paragraphs: tuple[str, ...]) -> None:
+    """A box of numbered paragraphs."""
     paper.box(box, MEDIUM)
-    paper.text(box.left + 2.0, box.high - 3.0, "cautions", BODY, bold=True)
+    paper.text(box.left + 2.0, box.high - 3.0, heading, BODY, bold=True)
     room = box.less(6.0, 0.0, 2.0, 6.0)
     used = 0.0
-    for k, words in enumerate(CAUTIONS):
+    for k, words in enumerate(paragraphs):
         paper.text(box.left + 2.0, room.high - used - 1.55, f"{k + 1}", SMALL)
         used += paper.paragraph(room.less(0, 0, 0, used), words) + 0.7
 

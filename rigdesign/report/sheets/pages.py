@@ -27,7 +27,6 @@ from rigdesign.report.sheets.tiers import places_table, tier_sheets
 Page = tuple[Paper, str, str]
 """A sheet before it is framed: what is drawn, its name and its scale."""
 _EMBEDDED: Any = {"pdf.fonttype": 42, "hatch.linewidth": HATCH / 25.4 * 72.0, "pdf.compression": 6}
-_WITH_KEY = ("General arrangement", "Tier")
 
 
 def sheets(result: HardwareCheck, sizes: Sizes) -> Iterator[Page]:
@@ -49,7 +48,7 @@ def framed(result: HardwareCheck, system: System = "SI") -> list[Paper]:
     pages = list(sheets(result, sizes))
     facts = facts_of(result, sizes)
     for k, (paper, name, scale) in enumerate(pages):
-        draw_frame(paper, Sheet(name, scale, k + 1, len(pages)), facts, name.startswith(_WITH_KEY))
+        draw_frame(paper, Sheet(name, scale, k + 1, len(pages)), facts)
     return [paper for paper, _, _ in pages]
 
 

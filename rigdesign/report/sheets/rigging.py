@@ -13,9 +13,9 @@ from rigdesign.report.sheets.frame import FIELD, NOT_ACCEPTED
 from rigdesign.report.sheets.paper import BODY, HEAD, Box, Paper
 from rigdesign.report.sheets.schedules import numbers, settings_table
 from rigdesign.report.sheets.sizes import Sizes
-from rigdesign.report.sheets.tables import Table, draw_whole, table_sheets
+from rigdesign.report.sheets.tables import draw_whole, table_sheets
 from rigdesign.report.sheets.texts import broken
-from rigdesign.report.sheets.tiers import tiers_of
+from rigdesign.report.sheets.tiers import Tier, tiers_of
 from rigdesign.words import STANDARD_GRAVITY
 
 PROOF = 1.1, 1.25
@@ -47,8 +47,11 @@ def rigging_sheets(result: HardwareCheck, sizes: Sizes) -> Iterator[tuple[Paper,
             _paragraph(flow, FIELD.left + 7.0 + flow.column * (wide + GUTTER), heading if k == 0 else "", k + 1, lines)
         flow.y -= 3.0
     settings = settings_table(result, sizes)
-    if flow.column + 1 < COLUMNS and settings_fit(flow.paper, settings, FIELD.left + 7.0 + wide + GUTTER, wide):
-        settings = replace(settings, rows=())
+    for column in range(flow.column, COLUMNS):
+        top = flow.y - 2.0 if column == flow.column else TOP
+        room = Box(FIELD.left + 7.0 + column * (wide + GUTTER), FIELD.low + 3.0, wide, top - FIELD.low - 3.0)
+        if settings.rows and draw_whole(flow.paper, room, settings):
+            settings = replace(settings, rows=())
     yield flow.paper, "Rigging", "none"
     yield from table_sheets([settings])
 
@@ -60,11 +63,6 @@ class _Flow:
     paper: Paper
     column: int
     y: float
-
-
-def settings_fit(paper: Paper, table: Table, left: float, wide: float) -> bool:
-    """Draw the table of link settings into the last column if it fits whole; return whether it did."""
-    return draw_whole(paper, Box(left, FIELD.low + 3.0, wide, TOP - FIELD.low - 3.0), table) > 0.0
 
 
 def _paragraph(flow: _Flow, left: float, heading: str, number: int, lines: Sequence[str]) -> None:
@@ -97,15 +95,19 @@ def _sections(result: HardwareCheck, sizes: Sizes) -> Sequence[Section]:
 
 def _assembly(result: HardwareCheck, sizes: Sizes) -> tuple[str, ...]:
     hardware = result.hardware
-    is_below = hardware.side * result.check.rig.plan.target.brief.specimen.gravity > 0
+    hold = "Prop" if hardware.side * result.check.rig.plan.target.brief.specimen.gravity > 0 else "Hold"
+
+    def at(tier: Tier) -> str:
+        return f" at {tier.jack}" if len(hardware.rig.trees) > 1 else ""
+
     steps = ["Lay out all parts by their marks against the parts list; weigh each, write its mass beside it."]
     steps.append("Fix the pads at their stations (schedule of pads), within 1 mm; check each footprint and its bond.")
-    for tier in reversed(tiers_of(result)):
+    for tier in sorted(tiers_of(result), key=lambda tier: -tier.number):
         levers = numbers(tuple(piece.name for piece in tier.pieces))
         below = numbers(tuple(link.name for link in tier.below))
         steps.append(
-            f"Tier {tier.number}: pin {below} below, set to length, then {levers}; hole A inboard, marks readable from "
-            f"one side; secure every pin with its split pin. {'Prop' if is_below else 'Hold'} each until it hangs."
+            f"Tier {tier.number}{at(tier)}: pin {below} below, set to length, then {levers}; hole A inboard, marks "
+            f"readable from one side; secure every pin with its split pin. {hold} each until it hangs."
         )
     for tree, stack in zip(hardware.rig.trees, hardware.stacks, strict=True):
         link = next(link for link in hardware.links if link.upper.to == stack.jack)

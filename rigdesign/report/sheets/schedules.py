@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from math import degrees
 
 from rigdesign.checks.hardware.model import HardwareCheck
+from rigdesign.display import counted
 from rigdesign.hardware.model import End, Link
 from rigdesign.report.lists import centres, cut_plans, drill_rows, link_rows, part_rows, pin_rows
 from rigdesign.report.sheets.sizes import Sizes
@@ -175,8 +176,13 @@ def cuts_table(result: HardwareCheck, sizes: Sizes) -> Table:
         for cut in stock.plan.too_long:
             words = f"{cut.count} × {sizes.length(cut.length)} ({cut.mark}): longer than the bar, order at length"
             rows.append((stock.section, stock.material, sizes.length(stock.bar), "–", words, "–"))
-        proven = "no fewer bars will do" if stock.plan.proven else f"at least {stock.plan.least_bars} are needed"
-        notes.append(f"{stock.section}: {stock.plan.n_bars} bars, {proven}; kerf {sizes.length(stock.kerf)}")
+        if not stock.plan.proven:
+            bars = counted(stock.plan.n_bars, "bar")
+            notes.append(f"{stock.section}: {bars} where at least {stock.plan.least_bars} are needed")
+    if rows:
+        kerf = sizes.length(result.check.rig.plan.target.brief.hardware.kerf)
+        rest = "of all other sections" if notes else "of any section"
+        notes.append(f"no fewer bars {rest} will do; the saw takes {kerf} a cut")
     unit = sizes.unit
     heads = ("section", "material", f"bar\n[{unit}]", "bars", "cuts from each bar", f"offcut\n[{unit}]")
     return Table("Cut list", heads, tuple(rows), "llrrlr", 4, tuple(notes))
@@ -188,12 +194,11 @@ def drill_table(result: HardwareCheck, sizes: Sizes) -> Table:
     rows = drill_rows(result)
     plates = any(row.across for row in rows)
     texts = []
-    for k, row in enumerate(rows):
-        first = k == 0 or rows[k - 1].mark != row.mark
+    for row in rows:
         across = (sizes.length(row.across) if row.across else "–",) if plates else ()
         texts.append(
-            (row.mark if first else "", row.hole, sizes.length(row.along), *across, sizes.hole(row.diameter),
-             sizes.length(row.pin), row.note if first else "")
+            (row.mark, row.hole, sizes.length(row.along), *across, sizes.hole(row.diameter),
+             sizes.length(row.pin), row.note)
         )  # fmt: skip
     heads = ("mark", "hole", f"from datum\n[{unit}]", *((f"across\n[{unit}]",) if plates else ()), f"⌀\n[{unit}]",
              f"pin ⌀\n[{unit}]", "note")  # fmt: skip

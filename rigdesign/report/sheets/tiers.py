@@ -18,7 +18,7 @@ from rigdesign.report.sheets.plan_views import draw_plan
 from rigdesign.report.sheets.sizes import Sizes, round_scale, scale_words
 from rigdesign.report.sheets.steel import depth_of, height_of, place_of
 from rigdesign.report.sheets.tables import Table
-from rigdesign.report.sheets.views import View, rise_of, seen_words
+from rigdesign.report.sheets.views import View, is_up, rise_of, seen_words
 
 STATIONS, LABELS, AIR = 20.0, 12.0, 6.0
 """Room for the row of pivots' stations, for marks around a view, and between views [mm]."""
@@ -29,8 +29,9 @@ STUB = 14.0
 
 @dataclass(frozen=True)
 class Tier:
-    """One tier: its number, its pieces, and the links that end at them."""
+    """One tier of a tree: the tree's jack, its number, its pieces, and the links that end at them."""
 
+    jack: str
     number: int
     pieces: tuple[Piece, ...]
     above: tuple[Link, ...]
@@ -43,16 +44,16 @@ class Tier:
 
 
 def tiers_of(result: HardwareCheck) -> list[Tier]:
-    """Return the tiers from the jack on."""
+    """Return the tiers of all trees, each from its jack on."""
     hardware = result.hardware
-    numbers = sorted({piece.tier for piece in hardware.pieces})
     found = []
-    for number in numbers:
-        pieces = tuple(piece for piece in hardware.pieces if piece.tier == number)
-        names = {piece.name for piece in pieces}
-        above = tuple(link for link in hardware.links if link.lower.to in names)
-        below = tuple(link for link in hardware.links if link.upper.to in names)
-        found.append(Tier(number, pieces, above, below))
+    for tree in hardware.rig.trees:
+        for number in sorted({piece.tier for piece in tree.pieces}):
+            pieces = tuple(piece for piece in tree.pieces if piece.tier == number)
+            names = {piece.name for piece in pieces}
+            above = tuple(link for link in hardware.links if link.lower.to in names)
+            below = tuple(link for link in hardware.links if link.upper.to in names)
+            found.append(Tier(tree.jack.name, number, pieces, above, below))
     return found
 
 
@@ -66,7 +67,11 @@ def tier_sheets(result: HardwareCheck, sizes: Sizes) -> Iterator[tuple[Paper, st
     row = 0
     while row < len(tiers):
         last = row + 1
-        while last < len(tiers) and sum(need[row : last + 1]) <= FIELD.height - 4.0:
+        while (
+            last < len(tiers)
+            and tiers[last].jack == tiers[row].jack
+            and sum(need[row : last + 1]) <= FIELD.height - 4.0
+        ):
             last += 1
         paper = Paper()
         spare = max(0.0, FIELD.height - 4.0 - sum(need[row:last])) / (last - row)
@@ -78,7 +83,10 @@ def tier_sheets(result: HardwareCheck, sizes: Sizes) -> Iterator[tuple[Paper, st
             if k > row:
                 paper.line((FIELD.left, top), (FIELD.right, top), weight=HATCH)
             top -= high
-        yield paper, _sheet_name([tier.number for tier in tiers[row:last]]), scale_words(ratio)
+        name = _sheet_name([tier.number for tier in tiers[row:last]])
+        if len(result.hardware.rig.trees) > 1:
+            name += f" at {tiers[row].jack}"
+        yield paper, name, scale_words(ratio)
         row = last
 
 
@@ -118,15 +126,22 @@ def _draw_tier(paper: Paper, box: Box, result: HardwareCheck, tier: Tier, ratio:
     depth = max(depth_of(result.hardware, piece) for piece in tier.pieces)
     wide = (y[1] - y[0]) * mm
     spare = max(0.0, box.height - _needed(result, tier, ratio)) / 3
-    middle = box.high - TITLE - STATIONS - STUB - LABELS / 2 - spare - depth / 2 * mm
-    low = middle - depth / 2 * mm - STUB - LABELS - AIR - spare - wide
+    upper = STATIONS + STUB + LABELS / 2 + depth / 2 * mm
+    if is_up(result):
+        middle = box.high - TITLE - spare - upper
+        low = middle - depth / 2 * mm - STUB - LABELS - AIR - spare - wide
+        room = Box(box.left, box.low, box.width, low + wide + LABELS - box.low)
+    else:  # first angle: what is seen from below stands above
+        low = box.high - TITLE - spare - LABELS - wide
+        middle = low - LABELS - AIR - spare - upper
+        room = Box(box.left, low - LABELS, box.width, wide + 2 * LABELS)
     side = View(ratio, left, middle, x[0], height, rise_of(result))
     plan = View(ratio, left, low, x[0], y[0])
     seen, above = seen_words(result)
     words = f"{tier.words}: elevation {seen}, plan {above}; pivots at height {sizes.length(height)}"
     paper.text(box.left + 5, box.high - 5, words, HEAD, bold=True)
     _side(paper, side, result, tier, sizes, box, middle + depth / 2 * mm + STUB + LABELS / 2)
-    _plan(paper, plan, result, tier, Box(box.left, box.low, box.width, low + wide + LABELS - box.low))
+    _plan(paper, plan, result, tier, room)
 
 
 def _side(paper: Paper, view: View, result: HardwareCheck, tier: Tier, sizes: Sizes, box: Box, line: float) -> None:
