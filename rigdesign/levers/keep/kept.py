@@ -4,9 +4,11 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, replace
+from typing import Literal
 
 import numpy as np
 
+from rigdesign.brief.model import Acceptance, BandRule
 from rigdesign.display import show
 from rigdesign.errors import InputError
 from rigdesign.findings import Refusal, numbered
@@ -15,7 +17,7 @@ from rigdesign.levers.keep.drilling import Drill, Holes
 from rigdesign.levers.keep.model import Kept, MovedPivot
 from rigdesign.levers.keep.pivots import misfit_rows, pivots_of
 from rigdesign.levers.keep.programme import Choice, Programme, Within
-from rigdesign.levers.keep.remarks import none_possible, remarks, words_of
+from rigdesign.levers.keep.remarks import APART, none_possible, remarks, words_of
 from rigdesign.levers.keep.settled import settled
 from rigdesign.levers.keep.sight import shares, sight_of
 from rigdesign.levers.keep.standing import branches_of_rig, only_tree
@@ -34,8 +36,10 @@ EASE = 0.01
 MORE = 3
 """So many more pivots are tried than are proven to be needed where the drill step leaves fewer outside the bands."""
 
-PLATE_DIAMETERS = 2.0
-"""Hole diameters, centre to centre, that a new hole keeps from an old one; common practice."""
+LEAST_PAD = 1e-3
+"""Every pad carries at least this part of the mean force: one that carries nothing is no pad."""
+
+SIDES: tuple[Literal["under", "over"], ...] = ("under", "over")
 
 METHOD = "linear programme over the forces of the pads where they are, whatever the pivots"
 
@@ -56,8 +60,9 @@ class _Task:
 
     def is_accepted(self, holes: Holes) -> bool:
         """Whether pads and pivots keep bands and limits."""
-        every = tuple(range(len(self.drill.pivots)))
-        if self.drill.missed(holes.force[None])[0] > 0 or not self.drill.keeps(holes.shifts[None], every)[0]:
+        # an unmoved plate that is too small for the new limits stays so whatever is drilled
+        rows = tuple(k for k, pivot in enumerate(self.drill.pivots) if pivot.is_lever or np.any(holes.shifts[k]))
+        if self.drill.missed(holes.force[None])[0] > 0 or not self.drill.keeps(holes.shifts[None], rows)[0]:
             return False
         missed = self.exact.shares_missed(self.old.pad_x, self.old.pad_y, holes.force)
         return self.use(holes) <= 1.0 and missed <= 1e-9
@@ -98,15 +103,22 @@ def keep_rig(
         return none_possible(task.programme)
     undrilled = task.drill.undrilled()
     before = task.use(undrilled)
-    if task.is_accepted(undrilled):
+    if task.is_accepted(undrilled) or not task.drill.pivots:
         choice = Choice(undrilled.force, before, (), (), 0.0, free.rows)
         return _kept(task, choice, undrilled, free, before, 0, hole_diameters)
-    limit = max(1.0 - MARGIN, free.use * (1.0 + EASE))
+    limit = _limit(free.use)
     within = Within(limit, reaches=task.programme.reaches(limit, free.rows))
     fewest = task.programme.fewest(within, free.rows) or replace(free, bound=0.0)
     proven = int(np.ceil(fewest.bound - 1e-6))
     choice, holes = _best(task, fewest, within)
     return _kept(task, choice, holes, free, before, proven, hole_diameters)
+
+
+def _limit(least: float) -> float:
+    """Band use that pivots may reach, where the least is as given."""
+    if least > 1.0:
+        return least * (1.0 + EASE)
+    return 1.0 - MARGIN if least <= 1.0 - 2 * MARGIN else 1.0
 
 
 def _best(task: _Task, fewest: Choice, within: Within) -> tuple[Choice, Holes]:
@@ -152,7 +164,7 @@ def _task(old: Rig, target: Target, distances: dict[str, float]) -> _Task:
         old,
         target,
         Drill(branches, pivots, sight, rules, total, least, largest),
-        Programme(sight, pivots, total, least, largest),
+        Programme(sight, pivots, total, max(least, LEAST_PAD * total / old.pad_x.size), largest),
         Exact(target),
     )
 
@@ -165,9 +177,10 @@ def _kept(
     plan = _plan(task, choice, free)
     drill = task.drill
     rig = settled(task.old, drill.branches, drill.pivots, holes.shifts, holes.force, plan)
-    words = words_of(moved, before, after, free, proven, len(drill.pivots))
-    rig = replace(rig, words=words, findings=numbered(remarks(rig, moved, diameters)))
-    return Kept(rig, moved, before, after, proven, words)
+    least = divmod(proven, task.programme.unknowns.price)
+    words = words_of(moved, (before, after), free, least, len(drill.pivots))
+    rig = replace(rig, words=words, findings=numbered(remarks(task.old, rig, moved, diameters)))
+    return Kept(rig, moved, before, after, *least, words)
 
 
 def _moved(task: _Task, holes: Holes) -> tuple[MovedPivot, ...]:
@@ -193,7 +206,7 @@ def _plan(task: _Task, choice: Choice, free: Choice) -> PadPlan:
     proof = Proof(
         band_use=use,
         band_use_least=float(min(free.bound, use)),
-        moment_error_least=0.0,
+        moment_error_least=_moment_least(task),
         method=METHOD,
         words="the pads are those of a rig that exists",
         evenness=uneven,
@@ -215,6 +228,15 @@ def _plan(task: _Task, choice: Choice, free: Choice) -> PadPlan:
     )
 
 
+def _moment_least(task: _Task) -> float:
+    """Moment error that no forces of these pads go below, as a fraction of the peak of the target's moment."""
+    rules = tuple(BandRule("moment", side, 1.0, False, "peak") for side in SIDES)
+    brief = replace(task.target.brief, acceptance=Acceptance(rules, (), defaulted=False))
+    sight = sight_of(replace(task.target, brief=brief), task.old.pad_x, task.old.pad_y)
+    least = replace(task.programme, sight=sight).least_use()
+    return 0.0 if least is None else max(least.bound, 0.0)
+
+
 def _distances(old: Rig, distance: float | None, diameters: Mapping[str, float]) -> dict[str, float]:
     """What a new pivot of each piece must keep from the old one [m]."""
     result = {}
@@ -225,7 +247,7 @@ def _distances(old: Rig, distance: float | None, diameters: Mapping[str, float])
                 where=f"kept rig, {piece.name}",
                 remedy='give "hole_distance" in [keep]',
             )
-        result[piece.name] = PLATE_DIAMETERS * diameters[piece.name] if distance is None else distance
+        result[piece.name] = APART * diameters[piece.name] if distance is None else distance
     return result
 
 

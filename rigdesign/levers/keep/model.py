@@ -36,16 +36,18 @@ class Kept:
     """A rig that exists under a new target: same pads, levers and lengths, and as few pivots drilled anew as found.
 
     `before` is the band use of the old pivots under the new target, `after` that of the rig as drilled anew, both as
-    this stage judges them; the check has the last word.  `fewest` is a number of pivots to drill anew below which the
-    bands cannot be kept, proven before drilling; where no pivots at all keep them it is what brings the rig close to
-    the least band use.  `words` says what was done and proven.
+    this stage judges them; the check has the last word.  Proven before drilling: the bands ask for at least
+    `fewest_new` pieces made new, and, with no more than these, for at least `fewest_moved` pivots drilled anew in old
+    steel; where no pivots at all keep the bands, that is what it takes to come close to the least band use.  `words`
+    says what was done and proven.
     """
 
     rig: Rig
     moved: tuple[MovedPivot, ...]
     before: float
     after: float
-    fewest: int
+    fewest_new: int
+    fewest_moved: int
     words: str
 
     @property

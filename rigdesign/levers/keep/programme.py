@@ -122,11 +122,14 @@ class Programme:
         for k, pivot in enumerate(self.pivots):
             moments, load = own_rows(pivot)
             for index, wish in enumerate((moments[0], -moments[0], moments[1], -moments[1], load)):
-                if np.any(wish):
+                if np.any(wish) and (index == 4 or not pivot.is_lever):
                     aim = np.zeros(self.unknowns.count)
                     aim[: self.n_pads] = -wish
                     found = self._optimum(aim, self.unknowns, within, constraints)
                     result[k, index] = np.abs(wish).sum() * self.n_pads if found is None else OFF - found[1]
+            if pivot.is_lever:
+                # within its limits a lever's pivot reaches so far at its largest load
+                result[k, :2] = np.array([pivot.high, -pivot.low]) / pivot.size * result[k, 4]
         return np.maximum(result, 0.0)
 
     def _use_aim(self) -> Floats:

@@ -16,12 +16,18 @@ from rigdesign.levers.model import Piece, Rig
 APART = 2.0
 """Hole diameters, centre to centre, below which two holes of a piece are too close; common practice."""
 
+SAME_PLACE = 1e-6
+"""Places that agree to this [m] are one: no pad is set nearer than that."""
+
 MOST_NAMES = 8
 """So many pivots are named in one sentence."""
 
 
-def remarks(rig: Rig, moved: Sequence[MovedPivot], diameters: Mapping[str, float]) -> Iterator[Finding]:
-    """Yield what is to be said of a kept rig's pivots, not numbered yet."""
+def remarks(
+    old: Rig, rig: Rig, moved: Sequence[MovedPivot], diameters: Mapping[str, float]
+) -> Iterator[Finding]:  # fmt: skip
+    """Yield what is to be said of a rig that was kept, not numbered yet."""
+    yield from _other_brief(old, rig)
     pieces = {piece.name: piece for piece in only_tree(rig).pieces}
     if not moved:
         yield Finding("levers", "note", "rig", "the kept rig serves this target as it is: no pivot is drilled anew")
@@ -41,6 +47,42 @@ def remarks(rig: Rig, moved: Sequence[MovedPivot], diameters: Mapping[str, float
         if not pivot.keeps_distance:
             yield _too_near_old(pivot, pieces[pivot.piece])
         yield from _too_near_outer(pivot, pieces[pivot.piece], diameters)
+
+
+def _other_brief(old: Rig, rig: Rig) -> Iterator[Finding]:
+    """What the brief asks for and the kept rig has otherwise."""
+    was, now = only_tree(old).force, only_tree(rig).force
+    if was * now < 0:
+        yield Finding(
+            "levers",
+            "warning",
+            "jack 1",
+            "the target acts the other way than the one that the kept rig was built for",
+            show(now, "force"),
+            show(was, "force"),
+            "turn the rig round, or make sure that pads and links bear this way",
+        )
+    rules, has = rig.plan.target.brief.pads, rig.plan.n_pads
+    if rules.count not in ("fewest", has):
+        text = f"the brief asks for {rules.count} pads, and those of the kept rig stay"
+        yield Finding("levers", "note", "pads", text, counted(has, "pad"))
+    if rules.places == "fixed" and _elsewhere(rig):
+        yield Finding(
+            "levers",
+            "warning",
+            "pads",
+            "the brief's places of pads are not those of the kept rig, which stay",
+            remedy="give the kept rig's places in [pads], or design a new rig",
+        )
+
+
+def _elsewhere(rig: Rig) -> bool:
+    """Whether the brief's fixed places are not those of the pads."""
+    rules = rig.plan.target.brief.pads
+    y = rules.y if rules.y.size else np.zeros(rules.stations.size)
+    if rules.stations.size != rig.pad_x.size:
+        return True
+    return bool(max(np.abs(rules.stations - rig.pad_x).max(), np.abs(y - rig.pad_y).max()) > SAME_PLACE)
 
 
 def _move(pivot: MovedPivot, piece: Piece) -> str:
@@ -84,31 +126,34 @@ def _too_near_outer(pivot: MovedPivot, piece: Piece, diameters: Mapping[str, flo
 
 
 def words_of(
-    moved: Sequence[MovedPivot], before: float, after: float, free: Choice, proven: int, pieces: int
+    moved: Sequence[MovedPivot], use: tuple[float, float], free: Choice, least: tuple[int, int], pieces: int
 ) -> str:  # fmt: skip
-    """What keeping the rig did, and what is proven."""
+    """What keeping the rig did, and what is proven.
+
+    `use` is the band use before and after, `least` the fewest new pieces and, with these, the fewest pivots in old
+    steel, `free` the forces of least band use.
+    """
     if not moved:
-        return f"kept rig: no pivot drilled anew, band use {after:.3g}"
+        return f"kept rig: no pivot drilled anew, band use {use[1]:.3g}"
     head = f"kept rig: {counted(len(moved), 'pivot')} of {pieces} drilled anew"
-    head += f", band use {before:.3g} before and {after:.3g} after"
+    head += f", band use {use[0]:.3g} before and {use[1]:.3g} after"
     new = sum(not pivot.keeps_distance for pivot in moved)
     if new:
         head += f"; {counted(new, 'piece')} to be made new, as old and new hole would be too close"
-    return f"{head}; {_proof(len(moved), new, free, proven, pieces)}"
-
-
-def _proof(moved: int, new: int, free: Choice, proven: int, pieces: int) -> str:
-    """What is proven, before drilling, of pivots moved and pieces made new."""
     if free.use > 1.0:
-        return f"proven: no pivots of these pieces bring the band use below {free.bound:.3g}"
-    # a new piece counts as more than all moved pivots
-    least_new = proven // (pieces + 1)
+        return f"{head}; proven: no pivots of these pieces bring the band use below {free.bound:.3g}"
+    return f"{head}; {_proof(len(moved) - new, new, *least)}"
+
+
+def _proof(moved: int, new: int, least_new: int, least_moved: int) -> str:
+    """What is proven, before drilling, of pieces made new and pivots moved in old steel."""
+    if (new, moved) == (least_new, least_moved):
+        return "proven: no fewer keep the bands"
     if least_new:
-        same = "so few" if least_new == new else counted(least_new, "new piece")
-        return f"proven: without {same} no pivots that keep their distance from the old ones keep the bands"
-    if proven >= moved:
-        return "the fewest that keep the bands, proven"
-    return f"proven: fewer than {counted(proven, 'new pivot')} do not keep the bands"
+        return f"proven: fewer than {counted(least_new, 'new piece')} do not keep the bands"
+    if least_moved:
+        return f"proven: fewer than {counted(least_moved, 'new pivot')} do not keep the bands"
+    return "not proven to be the fewest"
 
 
 def none_possible(programme: Programme) -> Refusal:
