@@ -55,6 +55,9 @@ def dxf_bytes(flat: Flat) -> bytes:
         for name, colour in LAYERS.items():
             drawing.layers.add(name, color=colour)
         _draw(drawing, flat)
+        # left to itself the library adds these in the order of a set, which is another one in every process
+        for kind in sorted(drawing.entitydb.dxf_types_in_use()):
+            drawing.classes.add_class(kind)
         out = io.StringIO()
         drawing.write(out)
     return out.getvalue().encode("utf-8")
