@@ -32,7 +32,7 @@ from rigdesign.brief.model import (
 from rigdesign.brief.model_hardware import HardwareRules
 
 LEFT, RIGHT = 0.2, 3.4
-CLEVIS_PINS = (5, 6, 8, 10, 12, 14, 16, 18, 20, 22, 24, 27, 30, 33, 36, 40, 45, 50, 55, 60, 70, 80, 90, 100)
+CLEVIS_PINS = (8, 10, 12, 14, 16, 18, 20, 22, 24, 27, 30, 33, 36, 40, 45, 50, 55, 60, 70, 80, 90, 100)
 """Diameters of ISO 2341 [mm]."""
 
 

@@ -40,7 +40,7 @@ def build(file: BriefFile, context: Context) -> Brief:
     piece = specimen(file.specimen, context)
     loads = tuple(load(entry, number, piece, context) for number, entry in enumerate(file.load))
     rules = pads(file.pads, piece, context)
-    steel = hardware(file.hardware, rules, piece, context)
+    steel = hardware(file.hardware, rules, file.levers.plates is True, piece, context)
     keep = kept(file.keep, context)
     name = context.places.name
     return Brief(

@@ -18,10 +18,12 @@ from rigdesign.words import (
 )
 
 
-def hardware(table: HardwareTable, rules: PadRules, piece: Specimen, context: Context) -> HardwareRules:
-    """Return what [hardware] asks for; raise InputError where keys contradict each other or a table cannot be used."""
+def hardware(table: HardwareTable, rules: PadRules, plates: bool, piece: Specimen, context: Context) -> HardwareRules:
+    """Return what [hardware] asks for; `plates` tells whether there may be three-point plates.
+
+    Raise InputError where keys contradict each other or a table cannot be used."""
     _check_rules(table, context)
-    _check_links(table, rules, piece, context)
+    _check_links(table, rules, plates, piece, context)
     _check_sizes(table, context)
     return HardwareRules(
         headroom=math.inf if table.headroom is None else table.headroom,
@@ -74,7 +76,7 @@ def _check_rules(table: HardwareTable, context: Context) -> None:
         raise context.error("the design factor is too small", "hardware", "design_factor", limit=limit, remedy=remedy)
 
 
-def _check_links(table: HardwareTable, rules: PadRules, piece: Specimen, context: Context) -> None:
+def _check_links(table: HardwareTable, rules: PadRules, plates: bool, piece: Specimen, context: Context) -> None:
     """Raise BriefError where the links cannot do what the pads or a plan rig ask of them."""
     if table.links != "rod" and rules.action == "push":
         what = f'links of {table.links} cannot push, and [pads] action is "push"'
@@ -83,6 +85,13 @@ def _check_links(table: HardwareTable, rules: PadRules, piece: Specimen, context
     if table.links == "strap" and piece.is_surface:
         what = "a flat strap keeps the pins at its ends parallel, and levers of a plan rig run in any direction"
         raise context.error(what, "hardware", "links", remedy='write links = "rod" or "webbing"')
+    if table.links != "rod" and "hollow section" in table.build:
+        what = f"links of {table.links} lie between two profiles, and a hollow section has none"
+        remedy = 'write links = "rod", or build = "twin flats" or "twin channels"'
+        raise context.error(what, "hardware", "links", remedy=remedy)
+    if table.links == "webbing" and plates:
+        what = "three-point plates hang on threaded rods, and [levers] plates is true"
+        raise context.error(what, "hardware", "links", remedy='write links = "rod", or plates = false')
 
 
 def _check_sizes(table: HardwareTable, context: Context) -> None:

@@ -7,8 +7,8 @@ from rigdesign.brief import fields_hardware as h
 from rigdesign.brief.keys import Table, key, needed
 from rigdesign.brief.surface import fields as plan
 
-PIN_SERIES = "5, 6, 8, 10, 12, 14, 16, 18, 20, 22, 24, 27, 30, 33, 36, 40, 45, 50, 55, 60, 70, 80, 90, 100 mm"
-"""Diameters of clevis pins of ISO 2341 from 5 mm on."""
+PIN_SERIES = "8, 10, 12, 14, 16, 18, 20, 22, 24, 27, 30, 33, 36, 40, 45, 50, 55, 60, 70, 80, 90, 100 mm"
+"""Diameters of clevis pins of ISO 2341 from 8 mm on; smaller ones are too easily bent and lost."""
 
 
 class HardwareTable(Table):
@@ -24,7 +24,7 @@ class HardwareTable(Table):
     over_people: plan.Flag | None = key("BTH-1: whether people stand beneath under load; default: false.")
     load_factor: h.FactorOnStrength | None = key("EN 1993: factor on loads; default 1.5.")
     overshoot: h.FactorOnStrength = key("Strength is held at the peak of the test times this.", 1.05)
-    pins: h.Diameters = key("Diameters of pins to choose from, rising; default: ISO 2341, 5 to 100 mm.", PIN_SERIES)
+    pins: h.Diameters = key("Diameters of pins to choose from, rising; default: ISO 2341, 8 to 100 mm.", PIN_SERIES)
     play: f.LengthOrZero = key("By how much a hole is larger than its pin.", "0.5 mm")
     links: h.LinksWord = key("Kind of link: rods with clevises, flat straps, or webbing.", "rod")
     link_length: f.PositiveLength | None = key("Least length of links, pin to pin; default: as short as fits.")

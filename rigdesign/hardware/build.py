@@ -145,7 +145,7 @@ def _one_round(bench: Bench, masses: Mapping[str, Mass], before: Round | None, h
     pins = {f"pad {pad.pad}": pad.pin_height for pad in pads}
     levels = stand(
         bench.wiring,
-        shapes_of(bench, bodies),
+        shapes_of(sizes, bodies),
         pins,
         {name: sizes.joints[name, ""].radius for name in pins},
         lambda link: fitting_need(bench, sizes, link, loads[link.name]),

@@ -111,13 +111,18 @@ def eye_between(load: float, pin: float, outer: float, eye: float, shop: Shop) -
     return joint if passes(shop.rules.hole(eye_state(load, 1, eye, pin, hole, shop.steel))) else None
 
 
-def soft_between(load: float, pin: float, outer: float, inner: float, widest: float, shop: Shop) -> Joint | None:
+def soft_between(
+    load: float, pin: float, outer: float, inner: float, widest: float, shop: Shop, *, is_eye: bool
+) -> Joint | None:
     """Joint of a pin with a strap or webbing of thickness `inner` between two outer parts, None where the pin fails.
 
-    Where another pin of the lever carries a wider one, `widest`, washers keep this one in the middle.
+    Where another pin of the lever carries a wider one, `widest`, washers keep this one in the middle.  The eye of a rod
+    in such a lever must pass as well.
     """
     hole = pin + shop.play
     joint = Joint(pin, hole, inner, outer, SIDE_PLAY + (widest - inner) / 2, eye_radius(hole))
+    if is_eye and not passes(shop.rules.hole(eye_state(load, 1, inner, pin, hole, shop.steel))):
+        return None
     return joint if passes(shop.rules.pin(pin_state(load, joint, shop))) else None
 
 

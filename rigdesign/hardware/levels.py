@@ -10,7 +10,8 @@ largest of
     the brief's own least length.
 
 Turning: with the upper piece turned by φ and the lower one by −φ, a point of the lower one at a distance s from its
-pivot under the upper one comes nearer by s · tan 2φ.  Only where one lies over the other in plan does s count.
+pivot under the upper one comes nearer by s · tan 2φ.  Only where one lies over the other in plan, or nearer to it
+than the clearance, does s count.
 """
 
 from __future__ import annotations
@@ -25,6 +26,9 @@ from rigdesign.levers.model import Piece
 
 LEVEL_STEP = 0.005
 """Links between tiers are multiples of this [m], so that a workshop cuts round lengths."""
+
+DUST = 9
+"""Decimals to which heights are rounded [m], so that sums of round lengths are round."""
 
 NO_TURN = 1e-9
 """Directions closer to one line than this [rad] are parallel."""
@@ -79,7 +83,7 @@ def stand(
                 heights[link.lower[0]] + needed(wiring, link, shapes, lugs, fittings(link), rules) for link in links
             ]
             heights |= dict.fromkeys(sorted(names), max(levels))
-    lengths = {link.name: heights[link.upper[0]] - heights[link.lower[0]] for link in wiring.links}
+    lengths = {link.name: round(heights[link.upper[0]] - heights[link.lower[0]], DUST) for link in wiring.links}
     return Levels({name: height for name, height in heights.items() if name not in pins}, lengths)
 
 
@@ -110,12 +114,18 @@ def _nearing(upper: Piece | None, lower: Piece | None, shapes: Mapping[str, Shap
         return 0.0
     if lower is None:
         return shapes[upper.name].overhang * sin(rules.turn)
-    reach = max(_under(upper, lower, end.x - lower.pivot.x, end.y - lower.pivot.y, shapes) for end in lower.ends)
+    reach = max(
+        _under(upper, lower, (end.x - lower.pivot.x, end.y - lower.pivot.y), shapes, rules.clearance)
+        for end in lower.ends
+    )
     return reach * tan(2 * rules.turn)
 
 
-def _under(upper: Piece, lower: Piece, dx: float, dy: float, shapes: Mapping[str, Shape]) -> float:
-    """How far along the arm dx, dy [m] of the lower piece it lies under the upper one."""
+def _under(
+    upper: Piece, lower: Piece, end: tuple[float, float], shapes: Mapping[str, Shape], clearance: float
+) -> float:
+    """How far along its arm to `end` (from the pivot, [m]) the lower piece lies under the upper one or near it."""
+    dx, dy = end
     arm = hypot(dx, dy) + shapes[lower.name].overhang
     if upper.kind == "plate" or lower.kind == "plate":
         return arm
@@ -124,7 +134,7 @@ def _under(upper: Piece, lower: Piece, dx: float, dy: float, shapes: Mapping[str
     inward_x, inward_y = upper.pivot.x - lower.pivot.x, upper.pivot.y - lower.pivot.y
     length = hypot(along_x, along_y)
     across = abs(along_x * dy - along_y * dx) / (length * max(hypot(dx, dy), NO_TURN))
-    band = shapes[upper.name].half_width + shapes[lower.name].half_width
+    band = shapes[upper.name].half_width + shapes[lower.name].half_width + clearance
     crossed = arm if across < NO_TURN else min(arm, band / across)
     if dx * inward_x + dy * inward_y > 0:
         return crossed

@@ -63,7 +63,8 @@ SIDE_PLATE = 2.5
 class LeverTask:
     """What a lever must bear: arms [m] to A and B, loads [N] on its pins, how it is built, and what lies on its pins.
 
-    `inner` holds the thickness of straps or webbing on each pin where they are given, else it is empty.
+    `inner` holds the thickness of what lies on each pin where that is given, else it is empty: straps or webbing, and
+    at the holes of `eyes` the eye of a rod.
     """
 
     a: float
@@ -72,6 +73,7 @@ class LeverTask:
     build: Build
     inner: Mapping[HoleName, float]
     deflection: float
+    eyes: frozenset[HoleName] = frozenset()
 
 
 @dataclass(frozen=True)
@@ -243,7 +245,8 @@ def _joint(
     if task.build == "hollow section":
         return fork_outside(load, pin, section.width + 2 * side, 2 * (section.web + side), shop)
     if task.inner:
-        return soft_between(load, pin, section.web, task.inner[hole], max(task.inner.values()), shop)
+        widest = max(task.inner.values())
+        return soft_between(load, pin, section.web, task.inner[hole], widest, shop, is_eye=hole in task.eyes)
     return eye_between(load, pin, section.web, eye, shop)
 
 

@@ -14,7 +14,7 @@ from rigdesign.hardware.catalogue import material, threads, webbings
 from rigdesign.hardware.joints import GRIP, Joint
 from rigdesign.hardware.levels import Shape
 from rigdesign.hardware.links import ADJUST, ROD_GRADE, SHANK, STUD, TURNBUCKLE, screw_for
-from rigdesign.hardware.model import Body, End, Fitting, Link, Mass, PadBody
+from rigdesign.hardware.model import Body, End, Fitting, Link, LinkKind, Mass, PadBody
 from rigdesign.hardware.sizing import Bench, Sizes
 from rigdesign.hardware.wiring import LinkPlace, Place
 from rigdesign.levers.model import HoleName
@@ -72,12 +72,17 @@ def bodies_of(bench: Bench, sizes: Sizes, counterweights: Counterweights) -> dic
     return bodies
 
 
-def shapes_of(bench: Bench, bodies: Mapping[str, Body]) -> dict[str, Shape]:
+def shapes_of(sizes: Sizes, bodies: Mapping[str, Body]) -> dict[str, Shape]:
     """Return what each piece needs in height and in plan."""
-    return {
-        name: Shape(body.section.depth / 2, body.overhang if body.build == "plate" else body.across / 2, body.overhang)
-        for name, body in bodies.items()
-    }
+    return {name: _shape(body, sizes) for name, body in bodies.items()}
+
+
+def _shape(body: Body, sizes: Sizes) -> Shape:
+    if body.build != "plate":
+        return Shape(body.section.depth / 2, body.across / 2, body.overhang)
+    # nuts and washers stand on both sides of a plate
+    rod = max(joint.pin for (name, _), joint in sizes.joints.items() if name == body.piece)
+    return Shape(body.section.depth / 2 + STUD * rod, body.overhang, body.overhang)
 
 
 def fitting_need(bench: Bench, sizes: Sizes, link: LinkPlace, load: float) -> float:
@@ -87,10 +92,10 @@ def fitting_need(bench: Bench, sizes: Sizes, link: LinkPlace, load: float) -> fl
     if size.kind == "rod":
         need = 2 * ADJUST * size.width + LEAST_ROD
         for place, joint in joints:
-            if _fitting(bench, sizes, place) == "stud":
+            if _fitting(bench, sizes, place, size.kind) == "stud":
                 need += joint.inner / 2 + STUD * size.width
             else:
-                reach = weighing.FORK_DEPTH if _fitting(bench, sizes, place) == "fork" else 1.0
+                reach = weighing.FORK_DEPTH if _fitting(bench, sizes, place, size.kind) == "fork" else 1.0
                 need += reach * joint.radius + SHANK * size.width
         return need
     need = sum(joint.radius for _, joint in joints) + LEAST_ROD
@@ -99,19 +104,19 @@ def fitting_need(bench: Bench, sizes: Sizes, link: LinkPlace, load: float) -> fl
 
 def has_turnbuckle(bench: Bench, link: LinkPlace) -> bool:
     """Whether a link has a turnbuckle: rods turn in their fittings, others have one where they carry a pad."""
-    return bench.rules.links != "rod" and link.lower[0].startswith("pad ")
+    return bench.kind_of(link) != "rod" and link.lower[0].startswith("pad ")
 
 
 def _screw(bench: Bench, load: float) -> float:
     return screw_for(load, threads(), material(ROD_GRADE), bench.shop.rules).nominal
 
 
-def _fitting(bench: Bench, sizes: Sizes, place: Place) -> Fitting:
-    """What a link ends in at a place."""
+def _fitting(bench: Bench, sizes: Sizes, place: Place, kind: LinkKind) -> Fitting:
+    """What a link of a kind ends in at a place."""
     name = place[0]
     if name in sizes.plates:
         return "stud"
-    if bench.rules.links == "webbing":
+    if kind == "webbing":
         return "loop"
     if name in sizes.levers and bench.build_of(bench.wiring.pieces[name]) == "hollow section":
         return "fork"
@@ -123,7 +128,7 @@ def links_of(bench: Bench, sizes: Sizes, lengths: Mapping[str, float], loads: Ma
     made = []
     for place in bench.wiring.links:
         size = sizes.links[place.name]
-        upper, lower = (_end(bench, sizes, at) for at in (place.upper, place.lower))
+        upper, lower = (_end(bench, sizes, at, size.kind) for at in (place.upper, place.lower))
         turnbuckle = has_turnbuckle(bench, place)
         screw = _screw(bench, loads[place.name]) if turnbuckle else 0.0
         adjust = ADJUST * size.width if size.kind == "rod" else TURNBUCKLE / 4 * screw
@@ -137,10 +142,10 @@ def links_of(bench: Bench, sizes: Sizes, lengths: Mapping[str, float], loads: Ma
     return tuple(made)
 
 
-def _end(bench: Bench, sizes: Sizes, place: Place) -> End:
+def _end(bench: Bench, sizes: Sizes, place: Place, kind: LinkKind) -> End:
     joint: Joint = sizes.joints[place]
     name, hole = place
-    fitting = _fitting(bench, sizes, place)
+    fitting = _fitting(bench, sizes, place, kind)
     grip = 0.0 if fitting == "stud" else joint.inner + 2 * (joint.gap + joint.outer)
     length = 0.0 if fitting == "stud" else grip + GRIP
     return End(fitting, name, hole, joint.pin, joint.hole, length, joint.inner, joint.outer, joint.gap, joint.radius)

@@ -16,7 +16,7 @@ from rigdesign.brief.model_hardware import Build, HardwareRules
 from rigdesign.hardware import levers, links, plates
 from rigdesign.hardware.catalogue import material, sections, threads, webbings, with_density
 from rigdesign.hardware.joints import Joint, Shop, eye_in_lugs, eye_on
-from rigdesign.hardware.model import JackStack, Section, Shortfall
+from rigdesign.hardware.model import JackStack, LinkKind, Section, Shortfall
 from rigdesign.hardware.rules import rule_set
 from rigdesign.hardware.rules.model import PlateHole, StrapState
 from rigdesign.hardware.stacks import stack_for
@@ -43,6 +43,10 @@ class Bench:
     def compressed(self) -> bool:
         """Whether links are pushed."""
         return self.wiring.rig.plan.target.brief.pads.action == "push"
+
+    def kind_of(self, link: LinkPlace) -> LinkKind:
+        """What a link is: the one on a load cell's pin, too thin for anything wide, is always a rod."""
+        return "rod" if link.upper[0].startswith("jack ") else self.rules.links
 
     def build_of(self, piece: Piece) -> Build:
         """How a lever is built: by its tier, the last build holding for all further tiers."""
@@ -139,7 +143,7 @@ def _links(
     straps: dict[str, Section] = {}
     for link in bench.wiring.links:
         load = loads[link.name]
-        if bench.rules.links == "rod":
+        if bench.kind_of(link) == "rod":
             length = lengths.get(link.name, FIRST_LENGTH)
             sized[link.name] = links.rod(load, threads(), material(links.ROD_GRADE), rules, length, bench.compressed)
         elif bench.rules.links == "webbing":
@@ -207,10 +211,14 @@ def _lever_group(
     # where the lever's own weight adds to what its ends carry, its pivot section bears that
     most["pivot"] = max(most["pivot"], *(loads[own["A"].name] + loads[own["B"].name] for own in through))
     inner: dict[HoleName, float] = {}
+    eyes: frozenset[HoleName] = frozenset()
     if bench.rules.links != "rod":
-        inner = {hole: max(inner_of(sized[own[hole].name]) or 0.0 for own in through) for hole in levers.HOLES}
+        soft = [hole for hole in levers.HOLES if bench.kind_of(through[0][hole]) != "rod"]
+        inner = {hole: max(inner_of(sized[own[hole].name]) or 0.0 for own in through) for hole in soft}
+        eyes = frozenset(levers.HOLES) - frozenset(soft)
+        inner |= {hole: _eye_for(max(sized[own[hole].name].width for own in through), bench.shop) for hole in eyes}
     build = bench.build_of(first)
-    task = levers.LeverTask(ends["A"], ends["B"], most, build, inner, bench.rules.deflection)
+    task = levers.LeverTask(ends["A"], ends["B"], most, build, inner, bench.rules.deflection, eyes)
     kind = levers.PROFILE[build]
     result = levers.size_lever(task, sections(bench.rules, kind, bench.shop.steel.density), bench.shop)
     for piece in pieces:
@@ -220,6 +228,11 @@ def _lever_group(
             remedy = levers.remedy(result.failure, build)
             short.append(Shortfall(piece.name, result.failure.check, result.failure.utilisation, remedy))
     return {piece.name: result for piece in pieces}
+
+
+def _eye_for(rod: float, shop: Shop) -> float:
+    """Thickness of a rod's eye in a lever whose other pins carry straps or webbing: as thick as the rod [m]."""
+    return next((plate for plate in shop.plates if plate >= rod), shop.plates[-1])
 
 
 def _links_of(wiring: Wired, piece: Piece) -> dict[HoleName, LinkPlace]:

@@ -148,12 +148,15 @@ def tree_weight(tree: Tree, links: tuple[LinkPlace, ...], index: int, masses: Ma
 
 
 def peak_jacks(wiring: Wired, masses: Mapping[str, Mass]) -> list[float]:
-    """Return the jacks' forces at the peak of the test [N], which carry the tree as well: pads bring peak · target."""
-    brief = wiring.rig.plan.target.brief
-    return [
-        brief.peak * tree.force - brief.specimen.gravity * tree_weight(tree, wiring.links, index, masses)
-        for index, tree in enumerate(wiring.rig.trees)
-    ]
+    """Return the jacks' forces [N] at which the pads together bring what the peak of the test asks of them.
+
+    The jacks carry the trees as well, and keep the ratio that they have at the brief's load.
+    """
+    rig, target = wiring.rig, wiring.rig.plan.target
+    weight = sum(tree_weight(tree, wiring.links, index, masses) for index, tree in enumerate(rig.trees))
+    wanted = target.brief.peak * target.resultant - target.gravity.total
+    factor = (wanted - target.brief.specimen.gravity * weight) / float(rig.jack_forces.sum())
+    return [factor * tree.force for tree in rig.trees]
 
 
 def design_loads(wiring: Wired, masses: Mapping[str, Mass]) -> dict[str, float]:

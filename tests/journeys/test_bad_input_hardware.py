@@ -189,6 +189,26 @@ def test_links_that_cannot_push(rigdesign, here, links):
     )
 
 
+@pytest.mark.parametrize("links", ["strap", "webbing"])
+def test_links_between_profiles_in_hollow_sections(rigdesign, here, links):
+    (here / "fin.toml").write_text(SMALL + f'[hardware]\nlinks = "{links}"\nbuild = ["twin flats", "hollow section"]\n')
+    assert refused(rigdesign, here) == expected(
+        f"fin.toml, line {FIRST}, [hardware] links: links of {links} lie between two profiles, and a hollow section has "
+        f'none: "{links}"; write links = "rod", or build = "twin flats" or "twin channels"'
+    )
+
+
+def test_webbing_on_plates(rigdesign, here):
+    (here / "fin.toml").write_text(SURFACE + '[levers]\nplates = true\n[hardware]\nlinks = "webbing"\n')
+    (here / "outline.csv").write_text(OUTLINE)
+    (here / "pressure.csv").write_text(PRESSURE)
+    line = len(SURFACE.splitlines()) + 4
+    assert refused(rigdesign, here) == expected(
+        f"fin.toml, line {line}, [hardware] links: three-point plates hang on threaded rods, and [levers] plates is "
+        'true: "webbing"; write links = "rod", or plates = false'
+    )
+
+
 def test_straps_on_a_plan_rig(rigdesign, here):
     (here / "fin.toml").write_text(SURFACE + '[hardware]\nlinks = "strap"\n')
     (here / "outline.csv").write_text(OUTLINE)

@@ -91,8 +91,8 @@ def test_a_slip_of_the_unit(refusal, key: str) -> None:
         ),
         ('pins = "0, 10 mm"', 'pins: a pin has a diameter above zero: "0, 10 mm" (accepted: more than 0)'),
         (
-            'play = "5 mm"',
-            'play: the play is too large: "5 mm" (accepted: less than the smallest pin, 5.00 mm)',
+            'play = "9 mm"',
+            'play: the play is too large: "9 mm" (accepted: less than the smallest pin, 8.00 mm)',
         ),
         (
             'pins = "8, 10 mm"\nplay = "8 mm"',

@@ -80,7 +80,7 @@ def test_every_default_of_the_page_is_the_default(read) -> None:
     assert read(("", '[hardware]\nrules = "EN 1993"\nload_factor = 1.5')).hardware == make_hardware(rules="EN 1993")
     few = read(("", '[hardware]\npart_marks = "few"\nmark_tolerance = "10 mm"')).hardware
     assert few == make_hardware(marks="few")
-    pins = re.search(r"ISO 2341: ([0-9, ]+ mm)", HARDWARE)
+    pins = re.search(r"ISO 2341 from 8 mm on: ([0-9, ]+ mm)", HARDWARE)
     assert pins is not None
     assert read(("", f'[hardware]\npins = "{pins.group(1)}"')).hardware == make_hardware()
 

@@ -141,7 +141,7 @@ def test_a_density_of_ones_own_changes_nothing_else():
 def test_threads_and_webbings_rise():
     for sizes in ([t.nominal for t in threads()], [t.stress_area for t in threads()], [t.root for t in threads()]):
         assert sizes == sorted(sizes)
-    assert (threads()[0].name, threads()[-1].name) == ("M6", "M64")
+    assert (threads()[0].name, threads()[-1].name) == ("M8", "M64")
     assert [w.breaking for w in webbings()] == sorted(w.breaking for w in webbings())
     assert webbings()[1].name == "60 mm webbing"
     assert webbings()[1].breaking == pytest.approx(7 * 2000 * STANDARD_GRAVITY)

@@ -100,10 +100,10 @@ def test_spacers_leave_no_stretch_longer_than_their_pitch():
 
 def test_lugs_and_a_cells_pin():
     shop = make_shop(make_hardware())
-    joint, use = eye_in_lugs(4000.0, shop)
+    joint, use = eye_in_lugs(14000.0, shop)
     assert use <= 1.0
     below = [pin for pin in shop.pins if pin < joint.pin]
-    assert eye_in_lugs(4000.0, replace(shop, pins=(below[-1],)))[1] > 1.0
+    assert eye_in_lugs(14000.0, replace(shop, pins=(below[-1],)))[1] > 1.0
     on_cell, use = eye_on(4000.0, 0.016, shop)
     assert (on_cell.pin, use <= 1.0) == (0.016, True)
     assert eye_on(4e6, 0.016, shop)[1] > 1.0

@@ -2,9 +2,10 @@
 
 import numpy as np
 import pytest
-from factories import make_brief, make_hardware, make_pads
+from factories import array, make_brief, make_hardware, make_pads, make_specimen
 from hand_rigs import make_rig
 
+from rigdesign.brief.model import Weight
 from rigdesign.checks.statics import solve_statics
 from rigdesign.hardware.model import Mass
 from rigdesign.hardware.wiring import design_loads, link_forces, peak_jacks, tree_weight, wired
@@ -65,10 +66,12 @@ def test_all_weight_reaches_the_pads_or_the_jack():
 
 
 def test_at_the_peak_the_jack_carries_the_tree_as_well():
-    made = rig(peak=1.5)
+    # 5.4 kN asked for, with a specimen that weighs 8 kg/m over 3.2 m and pulls against the load
+    weight = Weight(array([0.2, 3.4]), array([8.0, 8.0]), array([]), array([]))
+    made = rig(peak=1.5, specimen=make_specimen(weight=weight))
     masses = {"lever 1": Mass(40.0, 0.0, 0.0)}
     (jack,) = peak_jacks(wired(made), masses)
-    assert jack == pytest.approx(1.5 * sum(FORCE) + 40.0 * STANDARD_GRAVITY, rel=1e-12)
+    assert jack == pytest.approx(1.5 * 5400.0 + (8.0 * 3.2 + 40.0) * STANDARD_GRAVITY, rel=1e-9)
 
 
 def test_design_loads_take_overshoot_on_the_jacks_part_alone():
