@@ -24,8 +24,10 @@ from rigdesign.report.sheets.views import View, fitted, is_up, rise_of, seen_wor
 
 HEIGHTS_ROOM = 62.0
 """Room for the column of heights at the right [mm]."""
-STATIONS_ROOM = 40.0
+STATIONS_ROOM = 42.0
 """Room for pads' marks and their stations beyond the specimen's far face [mm]."""
+MARK_ROOM = 9.5
+"""Room for a jack's mark before its text [mm]."""
 MOST_STATIONS = 110
 """Beyond so many pads their stations are only in the schedule of pads."""
 
@@ -36,6 +38,7 @@ def elevation_sheet(result: HardwareCheck, sizes: Sizes) -> tuple[Paper, str, st
     view = _view(result)
     brief = result.check.rig.plan.target.brief
     far = specimen_views.draw_side(paper, view, brief, result.hardware.side)
+    keep_off_specimen(paper, view, result)
     _draw_rig(paper, view, result)
     bottom = _stations(paper, view, result, sizes, far)
     heights_at = _heights(paper, view, result, sizes)
@@ -89,13 +92,20 @@ def _draw_rig(paper: Paper, view: View, result: HardwareCheck) -> None:
     side_views.draw_stacks(paper, view, result)
 
 
+def keep_off_specimen(paper: Paper, view: View, result: HardwareCheck) -> None:
+    """Later labels keep off the strip that stands for the specimen."""
+    line = view.points(specimen_views.surface_line(result.check.rig.plan.target.brief, result.hardware.side))
+    for part in (0.0, 0.5, 1.0):
+        paper.keep_off(line - np.array([0.0, part * view.rise * specimen_views.DEPTH]))
+
+
 def _stations(paper: Paper, view: View, result: HardwareCheck, sizes: Sizes, far: float) -> float:
     """Marks of the pads on the specimen's far side, and their x in running dimensions; return the lowest place."""
     rig, away = result.check.rig, -view.rise
     places = [view.x(float(x)) for x in rig.pad_x]
     order = sorted(range(len(places)), key=lambda k: (places[k], k))
     rows = max(1, int(np.ceil(len(places) * (MARK + 0.8) / max(max(places) - min(places), 60.0))))
-    base = far + away * 6.0
+    base = far + away * (10.0 if rig.plan.target.brief.specimen.supports else 6.0)
     for row in range(rows):
         members = order[row::rows]
         wanted = [places[k] for k in members]
@@ -162,6 +172,8 @@ def levels(result: HardwareCheck) -> list[tuple[float, str, tuple[str, ...]]]:
         found.setdefault((round(joint, 5), "cell to jack"), []).append(stack.jack)
         found.setdefault((round(joint + stack.machine.length, 5), "far pin of the jack"), []).append(stack.jack)
     result_rows = [(height, words, tuple(names)) for (height, words), names in sorted(found.items())]
+    if result.space.total > max(height for height, _, _ in result_rows) + 1e-3:
+        result_rows.append((result.space.total, "highest part of the rig", (hardware.stacks[0].jack,)))
     return [(0.0, "z = 0", ()), *result_rows]
 
 
@@ -180,19 +192,18 @@ def _jacks(paper: Paper, view: View, result: HardwareCheck, sizes: Sizes) -> Non
     hardware = result.hardware
     top = result.tare.steps[-1] if result.tare.steps else None
     for row, (tree, stack) in enumerate(zip(hardware.rig.trees, hardware.stacks, strict=True)):
-        low = hardware.heights[stack.jack]
-        x = view.x(tree.jack.x) + 0.13 * stack.machine.length * view.mm + 7.0
-        y = view.y(low + stack.cell.length + 0.6 * stack.machine.length)
         lines = [f"{stack.machine.name}, x = {sizes.length(tree.jack.x)}"]
         if top is not None:
             lines.append(f"{sizes.force(abs(float(top.jack[row])))} at {100 * top.level:.0f} % of the load")
         lines.append(f"load cell: {stack.cell.name}")
-        wide = max(text_width(words, BODY) for words in lines)
-        if x + 6 + wide > FIELD.right - HEIGHTS_ROOM:
-            x = view.x(tree.jack.x) - 0.13 * stack.machine.length * view.mm - 13.0 - wide
-        draw_mark(paper, "jack", tree.jack.number, x, y)
+        size = max(text_width(words, BODY) for words in lines) + MARK_ROOM, 3.2 * len(lines)
+        middle = hardware.heights[stack.jack] + stack.cell.length + 0.6 * stack.machine.length
+        start = 0.13 * stack.machine.length * view.mm + 3.0
+        x, y = paper.board.place(*view.at(tree.jack.x, middle), *size, start, 3.0)
+        left = x - size[0] / 2
+        draw_mark(paper, "jack", tree.jack.number, left + 4.0, y)
         for k, words in enumerate(lines):
-            paper.text(x + 6.0, y - 3.2 * (k - (len(lines) - 1) / 2), words, BODY)
+            paper.text(left + MARK_ROOM, y - 3.2 * (k - (len(lines) - 1) / 2), words, BODY)
 
 
 def _centres(paper: Paper, view: View, result: HardwareCheck, sizes: Sizes) -> None:

@@ -165,9 +165,10 @@ def _checks(result: HardwareCheck, sizes: Sizes) -> tuple[str, ...]:
     ]
     if clearance is not None and isfinite(clearance):
         near = min(result.space.closest, key=lambda found: found.distance)
+        state = "at rest" if near.state == "at rest" else "with levers turned"
         words.append(
-            f"Nearest members: {near.first} and {near.second}, {sizes.length(near.distance)} clear {near.state}; look "
-            "there first at every step."
+            f"Nearest members: {near.first} and {near.second}, {sizes.length(near.distance)} clear {state}; look there "
+            "first at every step."
         )
     return tuple(words)
 

@@ -30,7 +30,7 @@ def numbers(names: Sequence[str]) -> str:
     >>> numbers(("lever 4", "lever 1", "lever 2", "lever 3", "lever 7")), numbers(("link 2",))
     ('levers 1–4, 7', 'link 2')
     >>> numbers(("lever 1 A", "lever 1 B", "lever 2 A", "lever 2 B", "pad 2"))
-    ('levers 1, 2: A, B; pad 2')
+    'levers 1, 2: A, B; pad 2'
     """
     holes: dict[tuple[str, int], list[str]] = {}
     for name in names:
