@@ -81,7 +81,11 @@ def verdict(result: Check | HardwareCheck) -> str:
         for finding in failures
         if not (broken and finding.stage == "statics" and (said is None or finding.object in said))
     ]
-    reasons += [f"{finding.object}: {finding.text.rstrip('.')} ({finding.name})" for finding in others[:MOST_REASONS]]
+    # the first clause says what is wrong; the rest stands among the findings
+    reasons += [
+        f"{finding.object}: {finding.text.split(';')[0].rstrip('.')} ({finding.name})"
+        for finding in others[:MOST_REASONS]
+    ]
     if len(others) > MOST_REASONS:
         reasons.append(f"{len(others) - MOST_REASONS} more among the findings")
     return f"Not accepted: {size}; " + "; ".join(reasons) + "."

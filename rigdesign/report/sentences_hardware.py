@@ -73,10 +73,9 @@ def _clearance_line(result: HardwareCheck, system: System) -> str:
         return ""
     turn = show(result.hardware.rig.plan.target.brief.hardware.turn, "angle")
     state = "at rest" if closest.state == "at rest" else f"with levers turned by up to {turn}"
-    return (
-        f"Clearance: {closest.first} and {closest.second} come nearest, to {show(closest.distance, 'length', system)}, "
-        f"{state}; {show(result.space.required, 'length', system)} is asked for."
-    )
+    near = f"come nearest, to {show(closest.distance, 'length', system)}" if closest.distance > 0 else "meet"
+    required = show(result.space.required, "length", system)
+    return f"Clearance: {closest.first} and {closest.second} {near}, {state}; {required} is asked for."
 
 
 def _mass_line(result: HardwareCheck, system: System) -> str:

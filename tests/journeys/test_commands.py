@@ -13,6 +13,8 @@ from journey import SMALL, changed, files_under
 CONTRACT = {
     "rig.json", "summary.json", "pads.csv", "levers.csv", "holes.csv", "jacks.csv", "stations.csv", "regions.csv",
     "target.svg", "load_and_pads.svg", "shear_and_moment.svg", "tree.svg",
+    "parts.csv", "strength.csv", "links.csv", "pins.csv", "tare.csv", "cut_list.csv", "drill_list.csv", "masses.csv",
+    "drawings.pdf", "dxf/L1.dxf", "dxf/L2.dxf", "dxf/L3.dxf", "dxf/L4.dxf",
 }  # fmt: skip
 
 
@@ -28,7 +30,8 @@ def test_design_answers_in_sentences_and_writes_the_folder(rigdesign, brief, her
     ended = rigdesign("design", "fin.toml", "--png")
     assert (ended.code, ended.err) == (0, "")
     order = ["Small fin", "Answer", "Accepted: 5 pads on 4 levers", "of peak target moment", "Proven", "By hand",
-             "Jack 1 acts up (+z)", "Pads", "Levers", "Findings", "licensed engineer", "Written to"]  # fmt: skip
+             "Jack 1 acts up (+z)", "Hardware", "Strength, at", "Height:", "Clearance:", "Own weight:",
+             "hangs on", "ratio", "Parts to make", "Findings", "licensed engineer", "Written to"]  # fmt: skip
     text = " ".join(ended.out.split())
     places = [text.index(words) for words in order]
     assert places == sorted(places)
@@ -81,7 +84,12 @@ def test_us_customary_units_on_the_terminal(rigdesign, brief):
     text = rigdesign("design", "fin.toml", "--us").out
     assert "lbf" in text
     assert "in·lbf" in text
-    assert "kN" not in text
+    # a finding keeps its value as words: they are those of the rig folder
+    answer, _ = text.split("Findings, in SI units")
+    assert "kN" not in answer
+    parts = answer.split("\nParts to make\n")[1]
+    assert " lb " in parts
+    assert " kg" not in parts
 
 
 def test_assess_finds_what_design_found(rigdesign, brief, here):
@@ -115,11 +123,11 @@ def test_assess_with_holes_as_built(rigdesign, brief, here):
 
 def test_assess_against_another_brief(rigdesign, brief, here):
     rigdesign("design", "fin.toml")
-    (here / "more.toml").write_text(changed(SMALL, total='total = "2.5 kN"'))
+    (here / "more.toml").write_text(changed(SMALL, total='total = "2.1 kN"'))
     ended = rigdesign("assess", "fin_rig", "--brief", "more.toml", "--json")
     assert ended.code == 0
     answer = json.loads(ended.out)
-    assert answer["resultant_N"] == pytest.approx(2500.0)
+    assert answer["resultant_N"] == pytest.approx(2100.0)
     # the same levers split a larger force in the same way
     assert answer["moment_error_peak"] == pytest.approx(
         json.loads((here / "fin_rig" / "summary.json").read_text())["moment_error_peak"], rel=1e-6

@@ -45,6 +45,7 @@ TABLES = {
 CONTRACT = {
     "rig.json", "summary.json", "pads.csv", "levers.csv", "holes.csv", "jacks.csv", "stations.csv", "regions.csv",
     "across.csv",
+    "parts.csv", "strength.csv", "links.csv", "pins.csv", "tare.csv", "cut_list.csv", "drill_list.csv", "masses.csv",
 }  # fmt: skip
 
 

@@ -52,6 +52,9 @@ def test_the_nearest_pair_and_its_state():
     resting = replace(nearest, state="at rest", distance=0.001)
     line = line_with(replace(result, space=replace(result.space, closest=(nearest, resting))), "Clearance")
     assert "to 1.00 mm, at rest;" in line
+    touching = replace(nearest, distance=0.0)
+    line = line_with(replace(result, space=replace(result.space, closest=(touching,))), "Clearance")
+    assert f"{nearest.first} and {nearest.second} meet, with levers turned" in line
 
 
 def test_mass_and_marks():
@@ -101,7 +104,9 @@ def test_the_verdict_is_on_rig_and_hardware():
     failing = replace(good, findings=tuple(f for f in result.findings if f.stage == "strength"))
     first = next(f for f in failing.findings if f.severity == "failure")
     assert verdict(failing).startswith("Not accepted: 5 pads on 4 levers; ")
-    assert f"{first.object}: {first.text.rstrip('.')} ({first.name})" in verdict(failing)
+    assert f"{first.object}: {first.text.split(';')[0]} ({first.name})" in verdict(failing)
+    longer = replace(first, text="breaks; and much more is said of it")
+    assert f"{first.object}: breaks ({first.name})" in verdict(replace(good, findings=(longer,)))
     assert answer(failing)[0] == verdict(failing)
 
 
