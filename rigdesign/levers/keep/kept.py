@@ -100,7 +100,7 @@ def keep_rig(
     task = _task(old, target, _distances(old, hole_distance, hole_diameters))
     free = task.programme.least_use()
     if free is None:
-        return none_possible(task.programme)
+        return none_possible(task.drill)
     undrilled = task.drill.undrilled()
     before = task.use(undrilled)
     if task.is_accepted(undrilled) or not task.drill.pivots:

@@ -8,8 +8,9 @@ import numpy as np
 
 from rigdesign.display import counted, show
 from rigdesign.findings import Finding, Refusal
+from rigdesign.levers.keep.drilling import Drill
 from rigdesign.levers.keep.model import MovedPivot
-from rigdesign.levers.keep.programme import Choice, Programme
+from rigdesign.levers.keep.programme import Choice
 from rigdesign.levers.keep.standing import only_tree
 from rigdesign.levers.model import Piece, Rig
 
@@ -156,13 +157,12 @@ def _proof(moved: int, new: int, least_new: int, least_moved: int) -> str:
     return "not proven to be the fewest"
 
 
-def none_possible(programme: Programme) -> Refusal:
+def none_possible(drill: Drill) -> Refusal:
     """Why the pads of a kept rig cannot bring the target at all."""
-    largest = show(programme.largest, "force")
     return Refusal(
         "levers",
         "no pivots of the kept rig bring the target's sum within the limits of its pads and levers",
-        f"pads between {show(programme.least, 'force')} and {largest}, and the limits in [levers]",
-        f"{programme.n_pads} pads for {show(programme.total, 'force')}",
+        f"pads between {show(drill.least, 'force')} and {show(drill.largest, 'force')}, and the limits in [levers]",
+        f"{drill.branches.n_pads} pads for {show(drill.total, 'force')}",
         "ease the limits, or design a new rig",
     )
