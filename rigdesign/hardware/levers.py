@@ -52,7 +52,7 @@ BESIDE = 0.002
 END_STEP = 0.005
 """Overhangs are multiples of this [m]."""
 
-STRONGEST = 6
+STRONGEST = 3
 """Where nothing passes, so many of the strongest sections are looked at for what comes closest."""
 
 SIDE_PLATE = 2.5
@@ -316,7 +316,7 @@ def _rough_joints(
 ) -> Iterator[tuple[Joint, list[Result]]]:
     """Joints of one pin that may fail, with all their checks."""
     load, diameter = task.loads[hole], pin + shop.play
-    for plate in shop.plates if not task.inner else shop.plates[:1]:
+    for plate in shop.plates[::2] if not task.inner else shop.plates[:1]:
         hollow = task.build == "hollow section"
         inner = section.width + 2 * side if hollow else task.inner.get(hole, plate)
         joint = Joint(pin, diameter, inner, plate if hollow else section.web, SIDE_PLAY, eye_radius(diameter))
