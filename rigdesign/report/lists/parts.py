@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import math
-from collections import Counter
 from typing import TYPE_CHECKING
 
 from rigdesign.hardware.model import Body, Hardware, Machine, PartKind, Spacer
@@ -33,8 +32,8 @@ def part_rows(result: HardwareCheck) -> tuple[PartRow, ...]:
         *_spacer_rows(hardware),
         *_counterweight_rows(hardware),
         *_pad_rows(hardware),
-        *_machine_rows(hardware, "cell"),
-        *_machine_rows(hardware, "jack"),
+        *_cell_rows(hardware),
+        *_jack_rows(hardware),
     )
 
 
@@ -142,18 +141,23 @@ def _pad_rows(hardware: Hardware) -> list[PartRow]:
     ]  # fmt: skip
 
 
-def _machine_rows(hardware: Hardware, kind: PartKind) -> list[PartRow]:
-    """Jacks and load cells by what they are; a mark a kind of machine, in the order of the trees."""
-    machines: dict[str, Machine] = {}
-    counts: Counter[str] = Counter()
-    trees: dict[str, list[str]] = {}
-    for stack in hardware.stacks:
-        machine = stack.machine if kind == "jack" else stack.cell
-        machines[machine.name] = machine
-        counts[machine.name] += 1
-        trees.setdefault(machine.name, []).append(stack.jack)
-    letter = "J" if kind == "jack" else "C"
+def _jack_rows(hardware: Hardware) -> list[PartRow]:
+    jacks = {stack.jack: stack.machine for stack in hardware.stacks}
     return [
-        PartRow(f"{letter}{number}", kind, counts[name], name, "", machine.length, machine.mass, tuple(trees[name]))
-        for number, (name, machine) in enumerate(machines.items(), start=1)
+        _machine_row(mark, "jack", jacks[members[0]], members) for mark, members in by_mark(hardware, jacks).items()
     ]
+
+
+def _cell_rows(hardware: Hardware) -> list[PartRow]:
+    """Load cells by what they are; they belong to their jacks and have no names of their own."""
+    jacks: dict[Machine, list[str]] = {}
+    for stack in hardware.stacks:
+        jacks.setdefault(stack.cell, []).append(stack.jack)
+    return [
+        _machine_row(f"C{number}", "cell", cell, tuple(members))
+        for number, (cell, members) in enumerate(jacks.items(), start=1)
+    ]
+
+
+def _machine_row(mark: str, kind: PartKind, machine: Machine, members: tuple[str, ...]) -> PartRow:
+    return PartRow(mark, kind, len(members), machine.name, "", machine.length, machine.mass, members)

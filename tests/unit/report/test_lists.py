@@ -60,6 +60,14 @@ def test_every_member_has_one_part(result):
     assert len(marks) == len(set(marks))
 
 
+def test_jack_and_cell_are_bought_by_name():
+    result = line_result()
+    (stack,) = result.hardware.stacks
+    rows = {row.kind: row for row in part_rows(result)}
+    assert (rows["jack"].mark, rows["jack"].section, rows["jack"].members) == ("J1", stack.machine.name, ("jack 1",))
+    assert (rows["cell"].mark, rows["cell"].section, rows["cell"].mass) == ("C1", stack.cell.name, stack.cell.mass)
+
+
 def test_members_of_one_mark_are_one_row():
     result = alike(line_result(), "lever 3", "lever 4")
     (row,) = [row for row in part_rows(result) if row.mark == "L3"]
