@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
+from rigdesign.report.lists import DrillRow
 from rigdesign.report.sheets.detail_levers import centre_symbol
 from rigdesign.report.sheets.dimensions import distance, running_row
 from rigdesign.report.sheets.paper import BODY, HATCH, MEDIUM, OUTLINE, SMALL, THIN, Box, Paper
@@ -44,7 +45,11 @@ def _dimensions(paper: Paper, view: View, room: Box, part: PartFacts, size: tupl
     wide, high = size
     top = view.y(high)
     features = [(view.x(0.0), "0", top)]
-    features += [(view.x(hole.along), sizes.length(hole.along), view.y(hole.across) + 2.0) for hole in part.holes]
+    # holes above one another have one dimension, drawn from the lowest
+    lowest: dict[str, DrillRow] = {}
+    for hole in sorted(part.holes, key=lambda hole: -hole.across):
+        lowest[sizes.length(hole.along)] = hole
+    features += [(view.x(hole.along), words, view.y(hole.across) + 2.0) for words, hole in lowest.items()]
     features.append((view.x(wide), sizes.length(wide), top))
     running_row(paper, features, top + 4.0, 1.0, (room.left, room.right - EDGE_ROOM + 4))
     column = view.x(0.0) - 6.0
@@ -58,7 +63,10 @@ def _dimensions(paper: Paper, view: View, room: Box, part: PartFacts, size: tupl
 def _column(paper: Paper, view: View, line: float, room: Box, part: PartFacts, high: float, sizes: Sizes) -> None:
     from rigdesign.report.figures_sheet import spread
 
-    rows = sorted([(0.0, 0.0), (high, 0.0), *((hole.across, hole.along) for hole in part.holes)])
+    farthest: dict[str, DrillRow] = {}
+    for hole in sorted(part.holes, key=lambda hole: hole.along):
+        farthest[sizes.length(hole.across)] = hole
+    rows = sorted([(0.0, 0.0), (high, 0.0), *((hole.across, hole.along) for hole in farthest.values())])
     apart = spread([view.y(v) for v, _ in rows], 2.9, room.low + 2.0, room.high - 12.0)
     paper.line((line, view.y(0.0)), (line, view.y(high)), weight=HATCH)
     for k, ((v, u), at) in enumerate(zip(rows, apart, strict=True)):

@@ -14,10 +14,8 @@ from rigdesign.report.sheets.part_facts import PartFacts, detailed_parts
 from rigdesign.report.sheets.sizes import Sizes
 from rigdesign.report.sheets.texts import shortened, text_width
 
-COLUMNS = 2
-"""Details side by side on a sheet."""
-ROWS = {"lever": 3, "plate": 2}
-"""Details above one another."""
+MOST = {"lever": 6, "plate": 4}
+"""Details on one sheet."""
 
 
 def detail_sheets(result: HardwareCheck, sizes: Sizes) -> Iterator[tuple[Paper, str, str]]:
@@ -25,18 +23,26 @@ def detail_sheets(result: HardwareCheck, sizes: Sizes) -> Iterator[tuple[Paper, 
     parts = detailed_parts(result)
     for kind in ("lever", "plate"):
         own = [part for part in parts if part.row.kind == kind]
-        number = COLUMNS * ROWS[kind]
-        for first in range(0, len(own), number):
-            page = own[first : first + number]
+        for first in range(0, len(own), MOST[kind]):
+            page = own[first : first + MOST[kind]]
             marks = page[0].row.mark if len(page) == 1 else f"{page[0].row.mark} to {page[-1].row.mark}"
-            yield _sheet(page, ROWS[kind], sizes), f"Details of {kind}s {marks}", "as shown"
+            name = f"Detail of {kind} {marks}" if len(page) == 1 else f"Details of {kind}s {marks}"
+            yield _sheet(page, _grid(kind, len(page)), sizes), name, "as shown"
 
 
-def _sheet(parts: list[PartFacts], rows: int, sizes: Sizes) -> Paper:
+def _grid(kind: str, number: int) -> tuple[int, int]:
+    """Columns and rows of the cells for so many details: few plates are drawn larger."""
+    if kind == "lever":
+        return 2, 3
+    return (1, 1) if number == 1 else (2, 1) if number == 2 else (2, 2)
+
+
+def _sheet(parts: list[PartFacts], grid: tuple[int, int], sizes: Sizes) -> Paper:
     paper = Paper()
-    wide, high = FIELD.width / COLUMNS, FIELD.height / rows
+    columns, rows = grid
+    wide, high = FIELD.width / columns, FIELD.height / rows
     for k, part in enumerate(parts):
-        row, column = divmod(k, COLUMNS)
+        row, column = divmod(k, columns)
         box = Box(FIELD.left + column * wide, FIELD.high - (row + 1) * high, wide, high)
         paper.box(box, MEDIUM)
         used = _header(paper, box, part, sizes)

@@ -93,7 +93,7 @@ def _border(paper: Paper) -> None:
         edges[0], edges[-1] = first, last
         for k, name in enumerate(names):
             place = (edges[k] + edges[k + 1]) / 2
-            for near, far, sign in _sides(names is _COLUMNS):
+            for near, far in _sides(names is _COLUMNS):
                 at = (near + far) / 2
                 if names is _COLUMNS:
                     paper.text(place, at, name, BODY, ha="center")
@@ -104,13 +104,13 @@ def _border(paper: Paper) -> None:
                     if k:
                         paper.line((near, edges[k]), (far, edges[k]))
                 if k == len(names) // 2:
-                    _centring(paper, middle, near - sign * STRIP, far, names is _COLUMNS)
+                    _centring(paper, middle, near, far, names is _COLUMNS)
 
 
-def _sides(columns: bool) -> tuple[tuple[float, float, float], ...]:
-    """Inner and outer edge of the zones' strip on both sides, and which way is out."""
+def _sides(columns: bool) -> tuple[tuple[float, float], ...]:
+    """Inner and outer edge of the zones' strip on both sides."""
     low, high = (FRAME.low, FRAME.high) if columns else (FRAME.left, FRAME.right)
-    return (low, low - STRIP, -1.0), (high, high + STRIP, 1.0)
+    return (low, low - STRIP), (high, high + STRIP)
 
 
 def _centring(paper: Paper, middle: float, near: float, far: float, columns: bool) -> None:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from math import ceil, isfinite
 
 from rigdesign.checks.hardware.model import HardwareCheck
@@ -34,47 +34,40 @@ Section = tuple[str, tuple[str, ...]]
 def rigging_sheets(result: HardwareCheck, sizes: Sizes) -> Iterator[tuple[Paper, str, str]]:
     """Yield the rigging sheet, with the link settings where they fit, and further sheets where they do not."""
     wide = (FIELD.width - 14.0 - GUTTER * (COLUMNS - 1)) / COLUMNS
-    flow = _Flow(Paper(), 0, TOP)
+    paper, column, y = Paper(), 0, TOP
     for heading, paragraphs in _sections(result, sizes):
         for k, words in enumerate(paragraphs):
             lines = broken(words, wide - 7.0, BODY)
             need = len(lines) * STEP + 1.0 + (8.0 if k == 0 else 0.0)
-            if flow.y - need < FIELD.low + 3.0:
-                flow.column, flow.y = flow.column + 1, TOP
-            if flow.column == COLUMNS:
-                yield flow.paper, "Rigging", "none"
-                flow = _Flow(Paper(), 0, TOP)
-            _paragraph(flow, FIELD.left + 7.0 + flow.column * (wide + GUTTER), heading if k == 0 else "", k + 1, lines)
-        flow.y -= 3.0
+            if y - need < FIELD.low + 3.0:
+                column, y = column + 1, TOP
+            if column == COLUMNS:
+                yield paper, "Rigging", "none"
+                paper, column = Paper(), 0
+            at = FIELD.left + 7.0 + column * (wide + GUTTER), y
+            y = _paragraph(paper, at, heading if k == 0 else "", k + 1, lines)
+        y -= 3.0
     settings = settings_table(result, sizes)
-    for column in range(flow.column, COLUMNS):
-        top = flow.y - 2.0 if column == flow.column else TOP
-        room = Box(FIELD.left + 7.0 + column * (wide + GUTTER), FIELD.low + 3.0, wide, top - FIELD.low - 3.0)
-        if settings.rows and draw_whole(flow.paper, room, settings):
+    for place in range(column, COLUMNS):
+        top = y - 2.0 if place == column else TOP
+        room = Box(FIELD.left + 7.0 + place * (wide + GUTTER), FIELD.low + 3.0, wide, top - FIELD.low - 3.0)
+        if settings.rows and draw_whole(paper, room, settings):
             settings = replace(settings, rows=())
-    yield flow.paper, "Rigging", "none"
+    yield paper, "Rigging", "none"
     yield from table_sheets([settings])
 
 
-@dataclass
-class _Flow:
-    """How far the text has come: its page, column and height [mm]."""
-
-    paper: Paper
-    column: int
-    y: float
-
-
-def _paragraph(flow: _Flow, left: float, heading: str, number: int, lines: Sequence[str]) -> None:
-    """Write a numbered paragraph, beneath its section's heading where it is the first."""
+def _paragraph(paper: Paper, place: tuple[float, float], heading: str, number: int, lines: Sequence[str]) -> float:
+    """Write a numbered paragraph, beneath its section's heading where it is the first; return where it ends [mm]."""
+    left, y = place
     if heading:
-        flow.paper.text(left, flow.y - 2.5, heading, HEAD, bold=True)
-        flow.y -= 7.0
-    flow.paper.text(left, flow.y - STEP / 2, f"{number}", BODY)
+        paper.text(left, y - 2.5, heading, HEAD, bold=True)
+        y -= 7.0
+    paper.text(left, y - STEP / 2, f"{number}", BODY)
     for line in lines:
-        flow.paper.text(left + 6.0, flow.y - STEP / 2, line, BODY)
-        flow.y -= STEP
-    flow.y -= 1.0
+        paper.text(left + 6.0, y - STEP / 2, line, BODY)
+        y -= STEP
+    return y - 1.0
 
 
 def _sections(result: HardwareCheck, sizes: Sizes) -> Sequence[Section]:

@@ -21,14 +21,14 @@ def draw_section(paper: Paper, room: Box, part: PartFacts, sizes: Sizes) -> None
     half_depth = body.section.depth / 2
     wide = max(body.across, end.pin_length) * 1.12
     high = 2 * max(half_depth, end.radius)
-    below, above = 13.5, 6.0
+    below, above = 15.0, 6.0
     ratio = round_scale(1000.0 * max(wide / (room.width - 8.0), high / (room.height - below - above)))
     view = View(ratio, room.left + room.width / 2, room.low + below + (room.height - below - above) / 2, 0.0, 0.0)
     _fitting(paper, view, body, end)
     for profile in profile_outlines(body):
         _cut(paper, view, profile, end.hole / 2)
     _pin(paper, view, end)
-    paper.line(view.at(0.0, -half_depth - 4 / view.mm), view.at(0.0, half_depth + 4 / view.mm), weight=HATCH,
+    paper.line(view.at(0.0, -half_depth - 1.6 / view.mm), view.at(0.0, half_depth + 1.6 / view.mm), weight=HATCH,
                dash="chain", order=6.0)  # fmt: skip
     _dimensions(paper, view, body, sizes)
     paper.text(room.left + room.width / 2, room.high - 1.5, f"section at the pivot {scale_words(ratio)}", SMALL,
@@ -113,5 +113,5 @@ def _dimensions(paper: Paper, view: View, body: Body, sizes: Sizes) -> None:
     outer = body.gap / 2 + wall if body.profiles == 2 else body.section.width / 2
     distance(paper, (view.x(outer - wall), high), (view.x(outer), high), sizes.length(wall), 2.6)
     if body.profiles == 2:
-        distance(paper, (view.x(-body.gap / 2), low), (view.x(body.gap / 2), low), sizes.length(body.gap), -4.0)
-    distance(paper, (view.x(-across), low), (view.x(across), low), sizes.length(2 * across), -10.0)
+        distance(paper, (view.x(-body.gap / 2), low), (view.x(body.gap / 2), low), sizes.length(body.gap), -5.5)
+    distance(paper, (view.x(-across), low), (view.x(across), low), sizes.length(2 * across), -11.5)

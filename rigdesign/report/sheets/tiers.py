@@ -20,8 +20,8 @@ from rigdesign.report.sheets.steel import depth_of, height_of, place_of
 from rigdesign.report.sheets.tables import Table
 from rigdesign.report.sheets.views import View, is_up, rise_of, seen_words
 
-STATIONS, LABELS, AIR = 20.0, 12.0, 6.0
-"""Room for the row of pivots' stations, for marks around a view, and between views [mm]."""
+LABELS, AIR = 12.0, 6.0
+"""Room for marks around a view, and between views [mm]."""
 TITLE = 9.0
 STUB = 14.0
 """How much of the links above and below a tier is drawn [mm]."""
@@ -105,8 +105,13 @@ def _ratio(result: HardwareCheck) -> float:
     """One scale for all tiers: the plan fits the width, and a tier's two views fit a sheet."""
     x, y = plan_bounds(result)
     depth = max(depth_of(result.hardware, piece) for piece in result.hardware.pieces)
-    rest = FIELD.height - STATIONS - 4 * LABELS - 2 * STUB - AIR - TITLE - 10.0
+    rest = FIELD.height - _stations_room(result) - 4 * LABELS - 2 * STUB - AIR - TITLE - 10.0
     return round_scale(1000.0 * max((x[1] - x[0]) / (FIELD.width - 40.0), (y[1] - y[0] + depth) / rest))
+
+
+def _stations_room(result: HardwareCheck) -> float:
+    """Room for the row of the pivots' places [mm]: x, and on a surface y as well."""
+    return 20.0 if result.check.rig.plan.target.brief.specimen.is_surface else 14.0
 
 
 def _needed(result: HardwareCheck, tier: Tier, ratio: float) -> float:
@@ -114,7 +119,7 @@ def _needed(result: HardwareCheck, tier: Tier, ratio: float) -> float:
     _, y = plan_bounds(result)
     depth = max(depth_of(result.hardware, piece) for piece in tier.pieces)
     high = (depth + y[1] - y[0]) * 1000.0 / ratio
-    return TITLE + STATIONS + 2 * STUB + 3 * LABELS + AIR + high
+    return TITLE + _stations_room(result) + 2 * STUB + 3 * LABELS + AIR + high
 
 
 def _draw_tier(paper: Paper, box: Box, result: HardwareCheck, tier: Tier, ratio: float, sizes: Sizes) -> None:
@@ -126,7 +131,7 @@ def _draw_tier(paper: Paper, box: Box, result: HardwareCheck, tier: Tier, ratio:
     depth = max(depth_of(result.hardware, piece) for piece in tier.pieces)
     wide = (y[1] - y[0]) * mm
     spare = max(0.0, box.height - _needed(result, tier, ratio)) / 3
-    upper = STATIONS + STUB + LABELS / 2 + depth / 2 * mm
+    upper = _stations_room(result) + STUB + LABELS / 2 + depth / 2 * mm
     if is_up(result):
         middle = box.high - TITLE - spare - upper
         low = middle - depth / 2 * mm - STUB - LABELS - AIR - spare - wide

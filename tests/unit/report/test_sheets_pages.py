@@ -179,7 +179,7 @@ def test_every_part_and_hole_is_on_the_sheets(name: str) -> None:
     flat = [text for page in words for text in page]
     for row in part_rows(result):
         assert row.mark in flat
-    details = [page for page in words if any(text.startswith("Details of") for text in page)]
+    details = [page for page in words if any(text.startswith("Detail") for text in page)]
     for hole in drill_rows(result):
         if "_" in hole.mark:
             continue
