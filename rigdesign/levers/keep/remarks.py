@@ -31,7 +31,8 @@ def remarks(
     yield from _other_brief(old, rig)
     pieces = {piece.name: piece for piece in only_tree(rig).pieces}
     if not moved:
-        yield Finding("levers", "note", "rig", "the kept rig serves this target as it is: no pivot is drilled anew")
+        as_it_is = "the kept rig stays as it is: no pivot is drilled anew"
+        yield Finding("levers", "note", "rig", as_it_is, remedy="the verdict says whether it serves this target")
         return
     named = ", ".join(_move(pivot, pieces[pivot.piece]) for pivot in moved[:MOST_NAMES])
     more = f" and {len(moved) - MOST_NAMES} more" if len(moved) > MOST_NAMES else ""
@@ -134,16 +135,16 @@ def words_of(
     `use` is the band use before and after, `least` the fewest new pieces and, with these, the fewest pivots in old
     steel, `free` the forces of least band use.
     """
-    if not moved:
-        return f"kept rig: no pivot drilled anew, band use {use[1]:.3g}"
     head = f"kept rig: {counted(len(moved), 'pivot')} of {pieces} drilled anew"
     head += f", band use {use[0]:.3g} before and {use[1]:.3g} after"
+    if not moved:
+        head = f"kept rig: no pivot drilled anew, band use {use[1]:.3g}"
     new = sum(not pivot.keeps_distance for pivot in moved)
     if new:
         head += f"; {counted(new, 'piece')} to be made new, as old and new hole would be too close"
     if free.use > 1.0:
         return f"{head}; proven: no pivots of these pieces bring the band use below {free.bound:.3g}"
-    return f"{head}; {_proof(len(moved) - new, new, *least)}"
+    return f"{head}; {_proof(len(moved) - new, new, *least)}" if moved else head
 
 
 def _proof(moved: int, new: int, least_new: int, least_moved: int) -> str:
