@@ -26,8 +26,9 @@ EYE = 1.25
 SIDE_PLAY = 0.001
 """Clear distance on each side between what lies on one pin [m]; common practice."""
 
-GRIP = 0.012
-"""A pin is longer than its grip by so much, for washers and split pins [m]; common practice."""
+PIN_ENDS, PIN_ENDS_STEEPER = 0.008, 0.6
+"""A pin is longer than its grip by so much [m] and this part of its diameter, for head, washers and split pin; common
+practice."""
 
 THICKEST = 3.0
 """An eye is no thicker than so many pin diameters: a thicker one only bends the pin."""
@@ -62,6 +63,15 @@ def eye_radius(hole: float) -> float:
     0.016
     """
     return ceil(round(EYE * hole * 1000, 6)) / 1000
+
+
+def pin_length(pin: float, grip: float) -> float:
+    """Whole length of a pin [m] whose grip is `grip` [m].
+
+    >>> round(pin_length(0.020, 0.0305), 4)
+    0.051
+    """
+    return ceil(round((grip + PIN_ENDS + PIN_ENDS_STEEPER * pin) * 1000, 6)) / 1000
 
 
 def eye_state(load: float, count: int, thickness: float, pin: float, hole: float, steel: Material) -> PlateHole:

@@ -11,7 +11,7 @@ from rigdesign.brief.model import Brief
 from rigdesign.brief.model_hardware import Surface
 from rigdesign.hardware import levers, weighing
 from rigdesign.hardware.catalogue import material, threads, webbings
-from rigdesign.hardware.joints import GRIP, Joint
+from rigdesign.hardware.joints import Joint, pin_length
 from rigdesign.hardware.levels import Shape
 from rigdesign.hardware.links import ADJUST, ROD_GRADE, SHANK, STUD, TURNBUCKLE, screw_for
 from rigdesign.hardware.model import Body, End, Fitting, Link, LinkKind, Mass, PadBody
@@ -147,7 +147,7 @@ def _end(bench: Bench, sizes: Sizes, place: Place, kind: LinkKind) -> End:
     name, hole = place
     fitting = _fitting(bench, sizes, place, kind)
     grip = 0.0 if fitting == "stud" else joint.inner + 2 * (joint.gap + joint.outer)
-    length = 0.0 if fitting == "stud" else grip + GRIP
+    length = 0.0 if fitting == "stud" else pin_length(joint.pin, grip)
     return End(fitting, name, hole, joint.pin, joint.hole, length, joint.inner, joint.outer, joint.gap, joint.radius)
 
 

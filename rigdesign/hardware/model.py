@@ -149,7 +149,7 @@ class End:
     """One end of a link: what it is pinned to, by which pin, and what lies on that pin.
 
     `to` is "lever 5", "pad 3" or "jack 1", `at` the hole there ("" at pads and jacks).  `pin` is the pin's diameter,
-    `hole` that of the holes (pin plus play), `pin_length` the pin's grip length, `inner` the thickness of what lies in
+    `hole` that of the holes (pin plus play), `pin_length` the pin's whole length, `inner` the thickness of what lies in
     the middle of the pin, `outer` that of each of the two on its outsides, `gap` the clear distance between inner and
     outer on each side, `radius` from the hole's centre to the edge of the link's fitting; all [m].
 
@@ -212,6 +212,11 @@ class Machine:
     mass: float
     pin: float
     source: str
+
+    @property
+    def standing(self) -> float:
+        """Length pin to pin as the rig is set up [m]: of a jack with its rod half out."""
+        return self.length + 0.5 * self.stroke
 
 
 @dataclass(frozen=True)

@@ -5,11 +5,18 @@ from __future__ import annotations
 import re
 from collections.abc import Iterable, Iterator
 
+import numpy as np
+
 from rigdesign.checks.hardware.model import StrengthRow
 from rigdesign.checks.text import also, percent
 from rigdesign.display import show
 from rigdesign.findings import Finding, Severity
 from rigdesign.hardware.model import Hardware, Shortfall
+from rigdesign.levers.model import Piece
+from rigdesign.words import ROUNDING
+
+ALUMINIUM = ("6082-T6",)
+"""Grades to which rules for steel only apply in part."""
 
 USE_SLACK = 1e-9  # members are built right at their limits, and must not fail by rounding
 
@@ -21,6 +28,8 @@ def strength_remarks(hardware: Hardware, rows: tuple[StrengthRow, ...]) -> Itera
     yield from _other_shortfalls(hardware, worst)
     yield from _most_used(hardware, worst)
     yield from _density(hardware)
+    yield from _too_long(hardware)
+    yield from _not_steel(hardware)
     yield _remark(
         "note",
         "rig",
@@ -146,6 +155,42 @@ def _most_used(hardware: Hardware, worst: dict[str, StrengthRow]) -> Iterator[Fi
         f"{percent(row.utilisation)} of what the rules leave",
         "100 %",
     )
+
+
+def _too_long(hardware: Hardware) -> Iterator[Finding]:
+    """One remark for levers that no stock bar gives in one piece."""
+    lengths = {piece.name: _steel_length(hardware, piece) for piece in hardware.pieces if piece.kind == "lever"}
+    long = {name: length for name, length in lengths.items() if length > hardware.bodies[name].section.bar + ROUNDING}
+    if long:
+        name = max(long, key=lambda name: long[name])
+        bar = hardware.bodies[name].section.bar
+        yield _remark(
+            "failure",
+            name,
+            "the lever is longer than the bars that its section comes in"
+            + also(other for other in long if other != name),
+            show(long[name], "length", unit="m"),
+            f"bars of {show(bar, 'length', unit='m')}",
+            "longer bars ([hardware] bar), or shorter levers ([levers] longest)",
+        )
+
+
+def _steel_length(hardware: Hardware, piece: Piece) -> float:
+    first, last = piece.ends
+    return float(np.hypot(last.u - first.u, last.v - first.v)) + 2 * hardware.bodies[piece.name].overhang
+
+
+def _not_steel(hardware: Hardware) -> Iterator[Finding]:
+    grade = hardware.rig.plan.target.brief.hardware.grade
+    if any(body.material.name in ALUMINIUM for body in hardware.bodies.values()):
+        rules = hardware.rig.plan.target.brief.hardware.rules
+        yield _remark(
+            "warning",
+            "rig",
+            f"the rules {rules} are written for steel and are used here with the strengths of {grade}: heat of welding, "
+            "fatigue and bearing of aluminium are judged otherwise",
+            remedy="have strength checked by EN 1999 or the rules for aluminium that hold locally; weld nothing",
+        )
 
 
 def _density(hardware: Hardware) -> Iterator[Finding]:

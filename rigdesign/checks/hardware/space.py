@@ -60,7 +60,7 @@ def heights(hardware: Hardware) -> tuple[tuple[str, float], ...]:
         levels[name] = max(levels.get(name, height), height)
     lower = [hardware.heights[stack.jack] for stack in hardware.stacks]
     upper = [
-        height + stack.cell.length + stack.machine.length + 0.5 * stack.machine.stroke
+        height + stack.cell.length + stack.machine.standing
         for height, stack in zip(lower, hardware.stacks, strict=True)
     ]
     levels |= {"jack's lower pin": max(lower), "jack's upper pin": max(upper)}

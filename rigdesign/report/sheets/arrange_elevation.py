@@ -170,7 +170,7 @@ def levels(result: HardwareCheck) -> list[tuple[float, str, tuple[str, ...]]]:
         joint = low + stack.cell.length
         found.setdefault((round(low, 5), "pin of the cell"), []).append(stack.jack)
         found.setdefault((round(joint, 5), "cell to jack"), []).append(stack.jack)
-        found.setdefault((round(joint + stack.machine.length, 5), "far pin of the jack"), []).append(stack.jack)
+        found.setdefault((round(joint + stack.machine.standing, 5), "far pin of the jack"), []).append(stack.jack)
     result_rows = [(height, words, tuple(names)) for (height, words), names in sorted(found.items())]
     if result.space.total > max(height for height, _, _ in result_rows) + 1e-3:
         result_rows.append((result.space.total, "highest part of the rig", (hardware.stacks[0].jack,)))
@@ -197,8 +197,8 @@ def _jacks(paper: Paper, view: View, result: HardwareCheck, sizes: Sizes) -> Non
             lines.append(f"{sizes.force(abs(float(top.jack[row])))} at {100 * top.level:.0f} % of the load")
         lines.append(f"load cell: {stack.cell.name}")
         size = max(text_width(words, BODY) for words in lines) + MARK_ROOM, 3.2 * len(lines)
-        middle = hardware.heights[stack.jack] + stack.cell.length + 0.6 * stack.machine.length
-        start = 0.13 * stack.machine.length * view.mm + 3.0
+        middle = hardware.heights[stack.jack] + stack.cell.length + 0.6 * stack.machine.standing
+        start = 0.13 * stack.machine.standing * view.mm + 3.0
         x, y = paper.board.place(*view.at(tree.jack.x, middle), *size, start, 3.0)
         left = x - size[0] / 2
         draw_mark(paper, "jack", tree.jack.number, left + 4.0, y)

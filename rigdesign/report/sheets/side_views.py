@@ -172,11 +172,11 @@ def draw_stacks(paper: Paper, view: View, result: HardwareCheck) -> None:
         x, _ = place_of(result.hardware, stack.jack, "")
         low = result.hardware.heights[stack.jack]
         joint = low + stack.cell.length
-        top = joint + stack.machine.length
+        top = joint + stack.machine.standing
         half = 0.28 * stack.cell.length
         _block(paper, view, (x - half, x + half), (low + 0.2 * stack.cell.length, joint - 0.2 * stack.cell.length), 3.9)
-        wide, rod = 0.12 * stack.machine.length, 0.05 * stack.machine.length
-        split = joint + 0.25 * stack.machine.length
+        wide, rod = 0.12 * stack.machine.standing, 0.05 * stack.machine.standing
+        split = joint + 0.25 * stack.machine.standing
         _block(paper, view, (x - rod, x + rod), (joint, split), 3.8)
         _block(paper, view, (x - wide, x + wide), (split, top), 3.9, MEDIUM)
         for pin, height in ((stack.cell.pin, low), (stack.machine.pin, joint), (stack.machine.pin, top)):

@@ -105,5 +105,7 @@ def footprints(result: HardwareCheck) -> list[Floats]:
 def top_height(result: HardwareCheck) -> float:
     """Return the greatest height of the rig [m], jacks among it."""
     hardware = result.hardware
-    heights = [height_of(hardware, stack.jack) + stack.cell.length + stack.machine.length for stack in hardware.stacks]
+    heights = [
+        height_of(hardware, stack.jack) + stack.cell.length + stack.machine.standing for stack in hardware.stacks
+    ]
     return max([result.space.total, *heights])
