@@ -187,8 +187,8 @@ def _not_steel(hardware: Hardware) -> Iterator[Finding]:
         yield _remark(
             "warning",
             "rig",
-            f"the rules {rules} are written for steel and are used here with the strengths of {grade}: heat of welding, "
-            "fatigue and bearing of aluminium are judged otherwise",
+            f"the rules {rules} are written for steel and are used here with the strengths of {grade}: heat of "
+            "welding, fatigue and bearing of aluminium are judged otherwise",
             remedy="have strength checked by EN 1999 or the rules for aluminium that hold locally; weld nothing",
         )
 
