@@ -221,6 +221,8 @@ def test_without_any_pivots_that_keep_the_bands_the_least_use_is_proven():
     # the moment alone, over the narrow band, is no harder than moment and shear together
     assert 0.9 * proof.band_use_least < proof.moment_error_least / 0.0006 <= proof.band_use_least * (1 + 1e-9)
     assert not check(kept.rig).accepted
+    # 1 % may be given up for fewer pivots, and the drill step costs a little
+    assert check(kept.rig).band_use <= 1.05 * proof.band_use_least
     assert f"below {proof.band_use_least:.3g}" in kept.words
 
 
