@@ -19,7 +19,8 @@ from rigdesign.findings import Finding
 from rigdesign.hardware.balance import counterweights
 from rigdesign.hardware.catalogue import sections
 from rigdesign.hardware.levels import Levels, stand
-from rigdesign.hardware.levers import PROFILE, bending_capacity
+from rigdesign.hardware.joints import eye_radius
+from rigdesign.hardware.levers import BESIDE, PROFILE, bending_capacity
 from rigdesign.hardware.marking import marks_of
 from rigdesign.hardware.members import (
     Counterweights,
@@ -71,7 +72,12 @@ def stock_line(brief: Brief) -> StockLine:
     stress = 6 / typical**2 / shop.rules.plate(state)[0].utilisation / (brief.peak * rules.overshoot)
     plate = shop.steel.density * float(np.sqrt(6 / stress))
     return StockLine(
-        np.array(moments[1:]), np.array(masses[1:]), TYPICAL_OVERHANG, plate, shop.steel.density * plates[0].depth
+        np.array(moments[1:]),
+        np.array(masses[1:]),
+        TYPICAL_OVERHANG,
+        plate,
+        shop.steel.density * plates[0].depth,
+        2 * eye_radius(shop.pins[0] + shop.play) + BESIDE,
     )
 
 

@@ -39,7 +39,13 @@ def group_pads(plan: PadPlan, stock: StockLine | None = None) -> Wiring | Refusa
         return _prescribed(plan, rules)
     # shares rather than forces: twice the load must not decide a tie otherwise
     pads = Stretches(x, force / force.sum())
-    best = cheapest(pads, rules, None if stock is None else stock.scaled(float(force.sum()), 1.0))
+    best = Best(np.inf, None)
+    if stock is not None:
+        # arms with room for their eyes, if there can be any
+        roomy = replace(rules, shortest_arm=max(rules.shortest_arm, min(stock.least_arm, rules.longest / 2)))
+        best = cheapest(pads, roomy, stock.scaled(float(force.sum()), 1.0))
+    if best.wiring is None:
+        best = cheapest(pads, rules, None if stock is None else stock.scaled(float(force.sum()), 1.0))
     return best.wiring if best.wiring is not None else why_none(pads, rules)
 
 

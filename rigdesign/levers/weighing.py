@@ -25,8 +25,9 @@ class StockLine:
 
     `moments` (k,) [N·m], rising, are the bending moments at the pivot, at the brief's load, up to which a lever of
     `masses` (k,) [kg/m], rising, is enough.  Beyond the last, masses go on with the moment to the power 2/3.
-    `overhang` [m] is the steel beyond each end hole.  A plate's mass is `plate` √(A max(M_i r_i)) [kg/(N^½ m²)], with A
-    and r_i to its edges, at least `thinnest` A [kg/m²].
+    `overhang` [m] is the steel beyond each end hole, `least_arm` [m] the shortest arm with room for two eyes beside
+    each other.  A plate's mass is `plate` √(A max(M_i r_i)) [kg/(N^½ m²)], with A and r_i to its edges, at least
+    `thinnest` A [kg/m²].
     """
 
     moments: Floats
@@ -34,6 +35,7 @@ class StockLine:
     overhang: float
     plate: float
     thinnest: float
+    least_arm: float = 0.0
 
     def line_mass(self, moment: Floats) -> Floats:
         """Return the mass per length [kg/m] of levers with the bending moment [N·m] at their pivot, any shape.
@@ -56,6 +58,7 @@ class StockLine:
             self.overhang / length,
             self.plate * float(np.sqrt(moment * length)) / unit,
             self.thinnest * length / unit,
+            self.least_arm / length,
         )
 
     def mass_unit(self, moment: float, length: float) -> float:

@@ -1,5 +1,7 @@
-"""Which pieces of one tier cross or come too close in plan: levers as lines between their outer holes, plates as
-triangles.
+"""Which pieces cross or come too close in plan: levers as lines between their outer holes, plates as triangles.
+
+Pieces stand in one tier and meet those of the same tier.  Where links count as well, a pad that hangs in a tier above
+the lowest has a link that runs down through all tiers below: a point, which meets the pieces of every one of them.
 """
 
 from __future__ import annotations
@@ -9,6 +11,7 @@ from functools import lru_cache
 from math import hypot
 
 import numpy as np
+from numpy.typing import NDArray
 
 Point = tuple[float, float]
 Shape = tuple[Point, ...]
@@ -75,13 +78,36 @@ def _away(point: Point, start: Point, end: Point) -> float:
     return hypot(point[0] - start[0] - part * along[0], point[1] - start[1] - part * along[1])
 
 
+def meet(tier: int, shape: Shape, other_tier: int, other: Shape) -> bool:
+    """Whether two shapes stand in one tier; a point stands in its tier and in all below, and minds no other point.
+
+    >>> meet(2, ((0, 0),), 4, ((0, 0), (1, 0))), meet(2, ((0, 0), (1, 0)), 4, ((0, 0), (1, 0)))
+    (True, False)
+    """
+    if len(shape) == 1:
+        return len(other) > 1 and other_tier >= tier
+    return tier >= other_tier if len(other) == 1 else tier == other_tier
+
+
+def clashing_in_tiers(tiers: Sequence[int], shapes: Sequence[Shape], clearance: float) -> list[tuple[int, int]]:
+    """Pairs of shapes, each in its tier, that meet and clash, in order; see `meet`."""
+    tier, point = np.array(tiers), np.array([len(shape) == 1 for shape in shapes], dtype=bool)
+    through = point[:, None] & ~point & (tier >= tier[:, None])
+    same = ~point[:, None] & ~point & (tier == tier[:, None])
+    return _pairs(shapes, clearance, through | through.T | same)
+
+
 def clashing(shapes: Sequence[Shape], clearance: float) -> list[tuple[int, int]]:
     """Pairs of shapes of one tier that clash, in order."""
+    return _pairs(shapes, clearance, np.ones((len(shapes), len(shapes)), dtype=bool))
+
+
+def _pairs(shapes: Sequence[Shape], clearance: float, meeting: NDArray[np.bool_]) -> list[tuple[int, int]]:
     if len(shapes) < 2:
         return []
     low = np.array([(min(p[0] for p in shape), min(p[1] for p in shape)) for shape in shapes])
     high = np.array([(max(p[0] for p in shape), max(p[1] for p in shape)) for shape in shapes])
     reach = max(clearance, TOUCH)
     near = ((low[:, None] - high[None] <= reach).all(axis=2)) & ((low[None] - high[:, None] <= reach).all(axis=2))
-    pairs = np.argwhere(np.triu(near, 1)).tolist()
+    pairs = np.argwhere(np.triu(near & meeting, 1)).tolist()
     return [(i, j) for i, j in pairs if clash(shapes[i], shapes[j], clearance)]

@@ -10,7 +10,7 @@ import numpy as np
 from rigdesign.errors import BriefError
 from rigdesign.findings import Refusal
 from rigdesign.levers.grouping import EMPTY_PAD, empty_pad
-from rigdesign.levers.surface.limits import field_of, limits_of
+from rigdesign.levers.surface.limits import Field, Limits, field_of, limits_of
 from rigdesign.levers.surface.nodes import Maker, Node, items_of
 from rigdesign.levers.surface.refusals import broken_prescription, too_few_tiers, why_none
 from rigdesign.levers.surface.repair import CLASH, Repair
@@ -77,12 +77,25 @@ def group_in_plan(
     `clearance` [m] replaces the brief's; `stock` is what pieces weigh, without it the steel estimate counts.  Raises
     BriefError where a prescribed grouping names the wrong pads.
     """
-    field, rules = field_of(plan), plan.target.brief.levers
-    limits = limits_of(rules, field.extent)
+    field = field_of(plan)
+    limits = limits_of(plan.target.brief.levers, field.extent)
     if clearance is not None:
         limits = replace(limits, clearance=clearance / field.extent)
-    if stock is not None:
-        limits = replace(limits, stock=stock.scaled(field.total * field.extent, field.extent))
+    if stock is None:
+        return _grouped(plan, field, limits, progress)
+    scaled = stock.scaled(field.total * field.extent, field.extent)
+    limits = replace(limits, stock=scaled, links=True)
+    # arms with room for their eyes, if there can be any
+    roomy = replace(limits, shortest=max(limits.shortest, min(scaled.least_arm, limits.longest / 2)))
+    answer = _grouped(plan, field, roomy, progress)
+    return _grouped(plan, field, limits, progress) if isinstance(answer, Refusal) else answer
+
+
+def _grouped(
+    plan: PadPlan, field: Field, limits: Limits, progress: Callable[[float], None] | None
+) -> Grouped | Refusal:
+    """Join the pads of a plan within limits."""
+    rules = plan.target.brief.levers
     empty = np.flatnonzero(field.share <= EMPTY_PAD / field.n_pads)
     if empty.size and plan.n_pads > 1:
         return empty_pad(int(empty[0]) + 1)
@@ -108,12 +121,12 @@ def _exact(maker: Maker) -> Grouped | Refusal:
         best = maker.nested(solved.nest, pads) if np.isfinite(solved.value) else None
     if best is None or solved.value >= BROKEN:
         return why_none(maker, pads)
-    clashes, is_best, least = clash_count(best, limits.clearance), True, best
+    clashes, is_best, least = clash_count(best, limits), True, best
     if clashes:
         if limits.tiers is not None and len(solved.best) == 1:
             solved = solved.problem.solve(limits.tiers)
-        best, is_best = _kept_clear(maker, Repair(solved, pads, 1, {}, limits.clearance), best)
-        clashes = clash_count(best, limits.clearance)
+        best, is_best = _kept_clear(maker, Repair(solved, pads, 1, (), limits.clearance, limits.links), best)
+        clashes = clash_count(best, limits)
     return Grouped(maker, best, least, clashes, is_best, "")
 
 
@@ -130,8 +143,7 @@ def _searched(maker: Maker, progress: Callable[[float], None] | None) -> Grouped
     """A good tree of many pads."""
     work = WORK + WORK_PER_PAD * min(maker.field.n_pads, MOST_PADS_WORKED)
     found = Search(maker, first_tree(maker), work).run(progress)
-    clearance = maker.limits.clearance
-    clashes = clash_count(found.root, clearance)
+    clashes = clash_count(found.root, maker.limits)
     tiers = maker.limits.tiers
     if found.value - CLASH * clashes >= BROKEN or (tiers is not None and found.root.height > tiers):
         return why_none(maker, [maker.pad(index) for index in range(maker.field.n_pads)], found.root)
@@ -151,5 +163,5 @@ def _prescribed(plan: PadPlan, maker: Maker) -> Grouped | Refusal:
     broken = broken_prescription(maker, root)
     if broken is not None:
         return broken
-    clashes = clash_count(root, maker.limits.clearance)
+    clashes = clash_count(root, maker.limits)
     return Grouped(maker, root, None, clashes, False, "as prescribed")

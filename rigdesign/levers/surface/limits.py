@@ -67,6 +67,7 @@ class Limits:
     `least` is the length below which an arm is none: a drill step.  `ratio` is that of levers alone; `shortest` holds
     for arms of levers and for the distances of a plate's points from its pivot, `longest` for the largest distance
     between two outer holes.  `stock` is what pieces weigh, scaled as they are; None: the steel estimate.
+    With `links`, links of pads keep clear of the pieces in all tiers that they run through.
     """
 
     ratio: float
@@ -78,6 +79,7 @@ class Limits:
     pair: str
     clearance: float
     stock: StockLine | None = None
+    links: bool = False
 
     def steel(self, load: Floats, r: Floats) -> Floats:
         """Steel of a piece from its pivot to an end at a distance r that bears `load`, any shape."""

@@ -9,14 +9,14 @@ appear, and the first finished tree is the best of all.
 from __future__ import annotations
 
 import heapq
-from collections.abc import Mapping, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 from itertools import count
 
 import numpy as np
 from numpy.typing import NDArray
 
-from rigdesign.levers.surface.clashes import Shape, clash
+from rigdesign.levers.surface.clashes import Shape, clash, meet
 from rigdesign.levers.surface.nodes import Node
 from rigdesign.levers.surface.subsets import Solved
 from rigdesign.target.curve import Floats
@@ -55,19 +55,23 @@ class Repaired:
 
 
 class Repair:
-    """The search for one set of items in the top tier `tier`, beside `rest`, the shapes that stay by tier."""
+    """The search for one set of items in the top tier `tier`, beside `rest`, the shapes that stay and their tiers.
+
+    With `links`, the links of pads count as well.
+    """
 
     def __init__(
         self,
         solved: Solved,
         nodes: Sequence[Node],
         tier: int = 1,
-        rest: Mapping[int, Sequence[Shape]] | None = None,
+        rest: Sequence[tuple[int, Shape]] = (),
         clearance: float = 0.0,
+        links: bool = False,
     ) -> None:
         """Take the best trees of all sets of the items that `nodes` stand for."""
         self.solved, self.nodes, self.tier, self.clearance = solved, nodes, tier, clearance
-        self.rest = rest or {}
+        self.rest, self.links = tuple(rest), links
         self._choices: dict[tuple[int, int], tuple[Floats, NDArray[np.int64]]] = {}
         _, self._x, self._y = solved.problem.items.sums
 
@@ -115,15 +119,24 @@ class Repair:
                 waiting = (*waiting, _Open(mask, max(0, here.layer - 1), here.tier + 1))
             else:
                 node = self.nodes[mask.bit_length() - 1]
-                new += [(tier, piece.shape) for piece, tier in node.pieces(here.tier + 1)]
+                new += self._known_shapes(node, here.tier + 1)
         clashes = self._clashes(part.shapes, new)
         return _Part(bound + CLASH * clashes, waiting, (*part.shapes, *new), (*part.splits, (here.mask, parts)))
+
+    def _known_shapes(self, node: Node, tier: int) -> list[tuple[int, Shape]]:
+        """Pieces of an item that hangs in a tier, and links of its pads where they count."""
+        shapes = [(at, piece.shape) for piece, at in node.pieces(tier)]
+        if self.links:
+            pads = [(node, tier)] if not node.kids else []
+            pads += [(kid, at + 1) for piece, at in node.pieces(tier) for kid in piece.kids if not kid.kids]
+            shapes += [(at, ((pad.x, pad.y),)) for pad, at in pads]
+        return shapes
 
     def _clashes(self, shapes: Sequence[tuple[int, Shape]], new: Sequence[tuple[int, Shape]]) -> int:
         result = 0
         for index, (tier, shape) in enumerate(new):
-            beside = [other for at, other in (*shapes, *new[:index]) if at == tier]
-            result += sum(clash(shape, other, self.clearance) for other in (*beside, *self.rest.get(tier, ())))
+            beside = [other for at, other in (*shapes, *new[:index], *self.rest) if meet(tier, shape, at, other)]
+            result += sum(clash(shape, other, self.clearance) for other in beside)
         return result
 
     def _nest(self, part: _Part) -> object:

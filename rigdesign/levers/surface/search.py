@@ -16,8 +16,9 @@ from typing import NamedTuple
 import numpy as np
 
 from rigdesign.levers.descent import MODULUS, MULTIPLIER
-from rigdesign.levers.surface.clashes import Shape, clashing
+from rigdesign.levers.surface.clashes import Shape, clashing_in_tiers
 from rigdesign.levers.surface.lattice import splits_of
+from rigdesign.levers.surface.limits import Limits
 from rigdesign.levers.surface.nodes import Maker, Node, items_of, pads_of
 from rigdesign.levers.surface.repair import CLASH, Repair
 from rigdesign.levers.surface.subsets import BROKEN, Problem, Solved, steel_rule
@@ -83,20 +84,37 @@ class _Opened(NamedTuple):
     items: list[Node]
 
 
-def clash_count(root: Node, clearance: float) -> int:
-    """Number of pairs of pieces of one tier that clash."""
-    return sum(len(clashing(shapes, clearance)) for shapes in shapes_by_tier(root).values())
+class Placed(NamedTuple):
+    """A piece, or the link of a pad where links count: its tier, its shape, and the pads under it as a mask."""
+
+    tier: int
+    shape: Shape
+    mask: int
 
 
-def shapes_by_tier(root: Node, without: Node | None = None) -> dict[int, list[Shape]]:
-    """Shapes of all pieces by tier, those of one branch left out."""
-    result: dict[int, list[Shape]] = {}
-    waiting = [(root, 1)]
+def clash_count(root: Node, limits: Limits) -> int:
+    """Number of pairs of pieces of one tier, and of links and pieces where links count, that clash."""
+    return len(clashing_pairs(placed(root, limits.links), limits.clearance))
+
+
+def clashing_pairs(shapes: list[Placed], clearance: float) -> list[tuple[int, int]]:
+    """Pairs of placed shapes that clash, in order."""
+    return clashing_in_tiers([one.tier for one in shapes], [one.shape for one in shapes], clearance)
+
+
+def placed(root: Node, links: bool, without: Node | None = None, tier: int = 1) -> list[Placed]:
+    """All pieces of a tree whose top stands in `tier`, and links of pads where they count, one branch left out."""
+    result = []
+    waiting = [(root, tier)]
     while waiting:
-        node, tier = waiting.pop()
-        if node.kids and node is not without:
-            result.setdefault(tier, []).append(node.shape)
-            waiting += [(kid, tier + 1) for kid in node.kids]
+        node, at = waiting.pop()
+        if node is without:
+            continue
+        if node.kids:
+            result.append(Placed(at, node.shape, node.mask))
+            waiting += [(kid, at + 1) for kid in node.kids]
+        elif links:
+            result.append(Placed(at, ((node.x, node.y),), node.mask))
     return result
 
 
@@ -135,7 +153,7 @@ class Search:
     def _full_value(self, root: Node) -> float:
         tiers = self.maker.limits.tiers
         over = 0 if tiers is None else max(0, root.height - tiers)
-        return root.value + CLASH * clash_count(root, self.maker.limits.clearance) + BROKEN * over
+        return root.value + CLASH * clash_count(root, self.maker.limits) + BROKEN * over
 
     def _try(self) -> bool:
         """Join some items anew; whether the tree became better."""
@@ -173,20 +191,19 @@ class Search:
         self._clashing = []
         if self.value % BROKEN < CLASH:
             return
-        tiers: dict[int, list[Node]] = {}
-        for node, tier in self.root.pieces():
-            tiers.setdefault(tier, []).append(node)
-        for nodes in tiers.values():
-            for pair in clashing([node.shape for node in nodes], self.maker.limits.clearance):
-                self._clashing += [pad for k in pair for pad in pads_of(nodes[k].mask)]
+        shapes = placed(self.root, self.maker.limits.links)
+        for pair in clashing_pairs(shapes, self.maker.limits.clearance):
+            self._clashing += [pad for k in pair for pad in pads_of(shapes[k].mask)]
 
     def _repaired(self, opened: _Opened, solved: Solved, small: float) -> bool:
         """Take the best branch that keeps clear of the others, if there is one."""
-        clearance = self.maker.limits.clearance
-        rest = shapes_by_tier(self.root, opened.top)
-        others = sum(len(clashing(shapes, clearance)) for shapes in rest.values())
+        limits = self.maker.limits
+        rest = placed(self.root, limits.links, opened.top)
+        others = len(clashing_pairs(rest, limits.clearance))
         limit = self.value - CLASH * others - (self.root.value - opened.top.value) - small
-        found = Repair(solved, opened.items, opened.tier, rest, clearance).best(limit, REPAIRS)
+        beside = [(one.tier, one.shape) for one in rest]
+        repair = Repair(solved, opened.items, opened.tier, beside, limits.clearance, limits.links)
+        found = repair.best(limit, REPAIRS)
         self.work += found.looked_at * OVERHEAD // 8
         if found.nest is None:
             return False

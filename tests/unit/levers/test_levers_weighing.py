@@ -82,6 +82,47 @@ def test_in_plan_no_tree_is_lighter(count, plates):
         assert answer.maker.steel(answer.least) * unit == pytest.approx(least, rel=1e-9)
 
 
+def closest(nest, x, y, force):
+    """Least distance in plan of pieces of one tier, and of pads' links from the pieces in the tiers that they pass."""
+    pieces, links = [], []
+
+    def look(nest, tier):
+        if isinstance(nest, int):
+            links.append((tier, shapely.Point(x[nest], y[nest])))
+            return force[nest], np.array([x[nest], y[nest]])
+        ends = [look(part, tier + 1) for part in nest]
+        load, places = np.array([f for f, _ in ends]), np.array([place for _, place in ends])
+        shape = shapely.LineString(places) if len(nest) == 2 else shapely.Polygon(places)
+        pieces.append((tier, shape))
+        return load.sum(), load @ places / load.sum()
+
+    look(nest, 1)
+    apart = [a.distance(b) for i, (at, a) in enumerate(pieces) for tier, b in pieces[:i] if tier == at]
+    apart += [piece.distance(point) for tier, point in links for at, piece in pieces if at >= tier]
+    return min(apart, default=np.inf)
+
+
+@pytest.mark.parametrize(("count", "plates", "seeds"), [(5, True, (1, 4, 24)), (6, False, (3, 26, 35))])
+def test_links_of_pads_keep_clear_of_what_they_pass(count, plates, seeds):
+    cost = []
+    for seed in seeds:
+        plan = scattered(count, seed, plates=plates, clearance=0.2)
+        answer = group_in_plan(plan, stock=STOCK)
+        assert isinstance(answer, Grouped)
+        force = np.abs(plan.force)
+        nests = [tree.nest for tree in all_looked(plan)]
+        clear = [nest for nest in nests if closest(nest, plan.x, plan.y, force) >= 0.2]
+        masses = [weighed(nest, plan.x, plan.y, force)[0] for nest in nests]
+        if clear:
+            least = min(weighed(nest, plan.x, plan.y, force)[0] for nest in clear)
+            assert answer.clashes == 0
+            assert answer.mass(STOCK) == pytest.approx(least, rel=1e-9)
+            cost.append(least / min(masses))
+        else:
+            assert answer.clashes > 0
+    assert max(cost) > 1.0001
+
+
 def test_a_plate_is_weighed_as_a_plate():
     plan = plan_of([0.0, 1.0, 0.4], [0.0, 0.1, 0.8], [200.0, 300.0, 250.0], plates=True)
     answer = group_in_plan(plan, stock=STOCK)
