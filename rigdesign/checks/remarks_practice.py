@@ -242,7 +242,7 @@ def _drilling(check: Check) -> Iterator[Finding]:
 
 def _aim(check: Check) -> Iterator[Finding]:
     plan = check.rig.plan
-    if plan.proof.method == NOT_PROVEN:
+    if plan.proof.method == NOT_PROVEN or plan.target.brief.keep is not None:
         return  # these pads strove for another target
     rules, is_surface = plan.target.brief.pads, plan.target.brief.specimen.is_surface
     share = "tributary share" if is_surface else "share of the curve"

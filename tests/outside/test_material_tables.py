@@ -30,7 +30,7 @@ QUENCHED = [
     ("42CrMo4", 100, 650, 900),
     ("42CrMo4", 160, 550, 800),
 ]
-STRESS_AREAS = {6: 20.1, 8: 36.6, 10: 58.0, 12: 84.3, 16: 157, 20: 245, 24: 353, 30: 561, 36: 817}  # mm²
+STRESS_AREAS = {8: 36.6, 10: 58.0, 12: 84.3, 16: 157, 20: 245, 24: 353, 30: 561, 36: 817}  # mm²
 
 
 @pytest.mark.parametrize("grade", YIELD)
@@ -79,5 +79,5 @@ def test_stress_areas_of_coarse_threads():
 def test_pitches_of_coarse_threads():
     """ISO 261, first choice, coarse; M42 to M64 from memory."""
     found = {round(thread.nominal * 1e3): round(thread.pitch * 1e3, 3) for thread in threads()}
-    coarse = {6: 1, 8: 1.25, 10: 1.5, 12: 1.75, 16: 2, 20: 2.5, 24: 3, 30: 3.5, 36: 4, 42: 4.5, 48: 5, 56: 5.5, 64: 6}
+    coarse = {8: 1.25, 10: 1.5, 12: 1.75, 16: 2, 20: 2.5, 24: 3, 30: 3.5, 36: 4, 42: 4.5, 48: 5, 56: 5.5, 64: 6}
     assert found == coarse
