@@ -125,6 +125,8 @@ def _leaning_links(check: Check) -> Iterator[Finding]:
     specimen = check.rig.plan.target.brief.specimen
     force = float(np.abs(check.rig.jack_forces).sum())
     moment = check.moment_sum_residual * force * (specimen.right - specimen.left)
+    kept = check.rig.plan.target.brief.keep is not None
+    way = "make the links of the kept rig longer" if kept else "drill the holes as dimensioned"
     yield _remark(
         "warning" if worst.size > SERIOUS_LEAN else "note",
         f"{worst.upper} hole {worst.hole}" if worst.hole else worst.upper,
@@ -132,7 +134,7 @@ def _leaning_links(check: Check) -> Iterator[Finding]:
         f"resultant from the jacks' by {show(moment / force, 'length')}, a moment of {show(moment, 'moment')}",
         show(worst.size, "length"),
         "plumb",
-        "drill the holes as dimensioned, or allow for the spanwise force of leaning links",
+        f"{way}, or allow for the spanwise force of leaning links",
     )
 
 
