@@ -2,8 +2,8 @@
 
 Sizes depend on loads, loads on weights, weights on sizes; compressed rods on lengths, lengths on depths.  Each round
 sizes everything for the loads and lengths of the round before, and the search ends when a round changes nothing: then
-every member is the least for the very loads that it has.  Should sizes come round in a circle, the heaviest of the
-circle are kept, and it is said.
+every member is the least for the very loads that it has.  Should sizes come round in a circle, those of the last round
+are kept, and it is said.
 """
 
 from __future__ import annotations
@@ -18,8 +18,8 @@ from rigdesign.display import counted, show
 from rigdesign.findings import Finding
 from rigdesign.hardware.balance import counterweights
 from rigdesign.hardware.catalogue import sections
-from rigdesign.hardware.levels import Levels, stand
 from rigdesign.hardware.joints import eye_radius
+from rigdesign.hardware.levels import Levels, stand
 from rigdesign.hardware.levers import BESIDE, PROFILE, bending_capacity
 from rigdesign.hardware.marking import marks_of
 from rigdesign.hardware.members import (
@@ -35,7 +35,7 @@ from rigdesign.hardware.model import Body, Hardware, Link, Mass, PadBody
 from rigdesign.hardware.owning import band_use
 from rigdesign.hardware.rules.model import PlateBending
 from rigdesign.hardware.sizing import Bench, Sizes, make_bench, make_shop, size_all
-from rigdesign.hardware.wiring import design_loads, peak_jacks, wired
+from rigdesign.hardware.wiring import design_loads, peak_jacks, side_of, wired
 from rigdesign.levers.marks import alike
 from rigdesign.levers.model import Rig
 from rigdesign.levers.weighing import StockLine
@@ -112,29 +112,30 @@ def build_hardware(rig: Rig, progress: Progress | None = None) -> Hardware:
     wiring = wired(rig)
     groups = alike(rig) if rules.marks == "few" else tuple((name,) for name in wiring.pieces)
     bench = make_bench(wiring, groups)
-    found, settled = _settle(bench, {}, progress)
-    findings = [] if settled else [_unsettled()]
-    hung: Counterweights = {}
+    found, settled = _settle(bench, progress)
+    findings = []
     without = with_weight = 0.0
     if rules.balance == "as needed":
         without, with_weight = band_use(wiring, {}), band_use(wiring, found.masses)
     if rules.balance == "counterweights" or (with_weight > 1.0 >= without):
-        found, hung = _balanced(bench, found)
+        found, hung, settled = _balanced(bench, found)
         findings += _balance_words(hung, rules.balance == "as needed", with_weight)
+    if not settled:
+        findings.append(_unsettled())
     if progress is not None:
         progress(1.0, "hardware")
     return _hardware(bench, found, tuple(findings))
 
 
-def _settle(bench: Bench, hung: Counterweights, progress: Progress | None) -> tuple[Round, bool]:
+def _settle(bench: Bench, progress: Progress | None) -> tuple[Round, bool]:
     """Size until a round changes nothing; whether it ended so."""
     masses: Mapping[str, Mass] = {}
     before: Round | None = None
     for number in range(MOST_ROUNDS):
         if progress is not None:
             progress(0.9 * number / MOST_ROUNDS, "sections and pins")
-        found = _one_round(bench, masses, before, hung)
-        if before is not None and found.sizes.key == before.sizes.key and found.levels == before.levels:
+        found = _one_round(bench, masses, before, {})
+        if before is not None and _same(found, before, masses):
             return found, True
         masses, before = found.masses, found
     assert before is not None
@@ -160,25 +161,23 @@ def _one_round(bench: Bench, masses: Mapping[str, Mass], before: Round | None, h
     return Round(sizes, levels, bodies, links, pads, masses_of(bench, sizes, bodies, links, pads))
 
 
-def _balanced(bench: Bench, found: Round) -> tuple[Round, Counterweights]:
-    """Hang counterweights until sizes and weights agree: heavier levers need others."""
+def _same(found: Round, before: Round, masses: Mapping[str, Mass]) -> bool:
+    """Whether a round changed nothing, neither sizes nor heights nor the masses that its loads were worked out with."""
+    return found.sizes.key == before.sizes.key and found.levels == before.levels and found.masses == masses
+
+
+def _balanced(bench: Bench, found: Round) -> tuple[Round, Counterweights, bool]:
+    """Hang counterweights until sizes, heights and weights agree: heavier levers need others; whether they do."""
     hung: Counterweights = {}
     for _ in range(MOST_ROUNDS):
-        bare = masses_of(bench, found.sizes, bodies_of(bench, found.sizes, {}), found.links, found.pads)
-        wanted = counterweights(bench.wiring.rig, bare, found.links, whole=True)
-        key = found.sizes.key
-        hung = wanted
-        masses = masses_of(bench, found.sizes, bodies_of(bench, found.sizes, hung), found.links, found.pads)
-        found = _one_round(bench, masses, found, hung)
-        if found.sizes.key == key:
-            return found, hung
-    return found, hung
-
-
-def side_of(rig: Rig) -> int:
-    """Return the side of the specimen on which a rig stands: +1 that of +z, −1 that of −z."""
-    pull = 1 if rig.plan.target.brief.pads.action == "pull" else -1
-    return pull * (1 if float(rig.jack_forces.sum()) >= 0 else -1)
+        before = found
+        bare = masses_of(bench, before.sizes, bodies_of(bench, before.sizes, {}), before.links, before.pads)
+        hung = counterweights(bench.wiring.rig, bare, before.links, whole=True)
+        masses = masses_of(bench, before.sizes, bodies_of(bench, before.sizes, hung), before.links, before.pads)
+        found = _one_round(bench, masses, before, hung)
+        if _same(found, before, masses):
+            return found, hung, True
+    return found, hung, False
 
 
 def _hardware(bench: Bench, found: Round, findings: tuple[Finding, ...]) -> Hardware:
@@ -254,5 +253,5 @@ def _unsettled() -> Finding:
         "warning",
         "rig",
         f"sizes and weights did not settle in {MOST_ROUNDS} rounds; those of the last round are kept, and some may be "
-        "a size larger than needed",
+        "a size larger than needed, or a little too weak for the check",
     )

@@ -11,18 +11,21 @@ largest of
 
 Turning: with the upper piece turned by φ and the lower one by −φ, a point of the lower one at a distance s from its
 pivot under the upper one comes nearer by s · tan 2φ.  Only where one lies over the other in plan, or nearer to it
-than the clearance, does s count.
+than the clearance, does s count.  A jack stands still: the piece under it comes nearer by s · tan φ.
+
+Counterweights hang plumb at their holes, on the side that gravity pulls to.  Above the specimen that is over what the
+same hole carries; below it, towards the jack, under the piece that theirs hangs by.
 """
 
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from math import ceil, cos, hypot, sin, tan
 
 from rigdesign.brief.model_hardware import HardwareRules
-from rigdesign.hardware.wiring import LinkPlace, Wired
-from rigdesign.levers.model import Piece
+from rigdesign.hardware.wiring import LinkPlace, Wired, weights_rise
+from rigdesign.levers.model import Hole, HoleName, Piece
 
 LEVEL_STEP = 0.005
 """Links between tiers are multiples of this [m], so that a workshop cuts round lengths."""
@@ -35,12 +38,21 @@ NO_TURN = 1e-9
 
 
 @dataclass(frozen=True)
+class Block:
+    """A counterweight: how far it ends from its hole's height, and its radius [m]."""
+
+    reach: float
+    radius: float
+
+
+@dataclass(frozen=True)
 class Shape:
-    """What a piece needs in height: half its depth, half its width and its overhang [m]."""
+    """What a piece or jack needs in height: half its depth, half its width and its overhang [m], and counterweights."""
 
     half_depth: float
     half_width: float
     overhang: float
+    blocks: Mapping[HoleName, Block] = field(default_factory=dict)
 
 
 @dataclass(frozen=True)
@@ -63,7 +75,7 @@ def stand(
     Parameters
     ----------
     shapes
-        By name of the piece.
+        By name of the piece, and of the jack with its cell.
     pins
         Height of each pad's pin by name [m].
     lugs
@@ -97,23 +109,60 @@ def needed(
 ) -> float:
     """Return the least length of a link [m], a multiple of `LEVEL_STEP`."""
     upper, lower = wiring.pieces.get(link.upper[0]), wiring.pieces.get(link.lower[0])
-    above = shapes[upper.name].half_depth if upper is not None else 0.0
     below = shapes[lower.name].half_depth if lower is not None else lugs[link.lower[0]]
-    wants = [fittings, rules.link_length, above + below + rules.clearance + _nearing(upper, lower, shapes, rules)]
+    over = shapes[link.upper[0]]
+    nearing = _nearing(upper, lower, over, shapes, rules)
+    wants = [fittings, rules.link_length, over.half_depth + below + rules.clearance + nearing]
     if upper is not None:
         hole = next(hole for hole in upper.ends if hole.name == link.upper[1])
-        arm = hypot(hole.u - upper.pivot.u, hole.v - upper.pivot.v)
-        wants.append(arm * (1.0 - cos(rules.turn)) / tan(rules.swing))
+        wants.append(_arm(upper, hole) * (1.0 - cos(rules.turn)) / tan(rules.swing))
+        if lower is not None and weights_rise(wiring.rig):
+            wants += _under_upper(upper, lower, shapes, rules)
+        elif hole.name in over.blocks:
+            block, turn = over.blocks[hole.name], 0.0 if lower is None else rules.turn
+            wants.append(block.reach + below + rules.clearance + (block.radius + rules.clearance) * tan(turn))
     return ceil(round(max(wants) / LEVEL_STEP, 6)) * LEVEL_STEP
 
 
-def _nearing(upper: Piece | None, lower: Piece | None, shapes: Mapping[str, Shape], rules: HardwareRules) -> float:
-    """What turning brings two joined pieces nearer to each other [m]."""
-    if upper is None:
-        # under a jack that stands still: the piece's own ends rise, but beside the jack
+def _arm(piece: Piece, hole: Hole) -> float:
+    """From a piece's pivot to a hole [m]."""
+    return hypot(hole.u - piece.pivot.u, hole.v - piece.pivot.v)
+
+
+def _under_upper(upper: Piece, lower: Piece, shapes: Mapping[str, Shape], rules: HardwareRules) -> list[float]:
+    """Lengths [m] that keep counterweights, which stand up from the lower piece, clear of the upper one over them."""
+    wants = []
+    over = shapes[upper.name]
+    for hole in lower.ends:
+        block = shapes[lower.name].blocks.get(hole.name)
+        if block is None:
+            continue
+        near = block.radius + rules.clearance
+        if _beside(upper, (hole.x, hole.y)) <= max(over.half_width, over.overhang) + near:
+            nearing = _arm(lower, hole) * tan(2 * rules.turn) + near * tan(rules.turn)
+            wants.append(over.half_depth + block.reach + rules.clearance + nearing)
+    return wants
+
+
+def _beside(piece: Piece, place: tuple[float, float]) -> float:
+    """Distance in plan of a place from a lever's line between its end holes [m]; of a plate none."""
+    if piece.kind == "plate":
         return 0.0
+    first, last = piece.ends[0], piece.ends[-1]
+    dx, dy = last.x - first.x, last.y - first.y
+    part = ((place[0] - first.x) * dx + (place[1] - first.y) * dy) / (dx * dx + dy * dy)
+    part = min(1.0, max(0.0, part))
+    return hypot(place[0] - first.x - part * dx, place[1] - first.y - part * dy)
+
+
+def _nearing(
+    upper: Piece | None, lower: Piece | None, over: Shape, shapes: Mapping[str, Shape], rules: HardwareRules
+) -> float:
+    """What turning brings two joined members nearer to each other [m]."""
+    if upper is None:
+        return (over.half_width + rules.clearance) * tan(rules.turn) if lower is not None else 0.0
     if lower is None:
-        return shapes[upper.name].overhang * sin(rules.turn)
+        return over.overhang * sin(rules.turn)
     reach = max(
         _under(upper, lower, (end.x - lower.pivot.x, end.y - lower.pivot.y), shapes, rules.clearance)
         for end in lower.ends

@@ -12,7 +12,7 @@ from rigdesign.brief.model_hardware import Surface
 from rigdesign.hardware import levers, weighing
 from rigdesign.hardware.catalogue import material, threads, webbings
 from rigdesign.hardware.joints import Joint, pin_length
-from rigdesign.hardware.levels import Shape
+from rigdesign.hardware.levels import Block, Shape
 from rigdesign.hardware.links import ADJUST, ROD_GRADE, SHANK, STUD, TURNBUCKLE, screw_for
 from rigdesign.hardware.model import Body, End, Fitting, Link, LinkKind, Mass, PadBody
 from rigdesign.hardware.sizing import Bench, Sizes
@@ -22,6 +22,9 @@ from rigdesign.target.curve import Floats
 
 LEAST_ROD = 0.02
 """Free rod between two fittings [m], for a spanner; common practice."""
+
+MACHINE_WIDTH = 2.5
+"""Width of jacks and cells over their pin; common practice."""
 
 Counterweights = Mapping[str, Mapping[HoleName, float]]
 
@@ -73,16 +76,26 @@ def bodies_of(bench: Bench, sizes: Sizes, counterweights: Counterweights) -> dic
 
 
 def shapes_of(sizes: Sizes, bodies: Mapping[str, Body]) -> dict[str, Shape]:
-    """Return what each piece needs in height and in plan."""
-    return {name: _shape(body, sizes) for name, body in bodies.items()}
+    """Return what each piece, and each jack with its cell, needs in height and in plan."""
+    shapes = {name: _shape(body, sizes) for name, body in bodies.items()}
+    for name, stack in sizes.stacks.items():
+        lowest = stack.cell if stack.cell.length > 0 else stack.machine
+        shapes[name] = Shape(0.0, MACHINE_WIDTH / 2 * lowest.pin, 0.0)
+    return shapes
 
 
 def _shape(body: Body, sizes: Sizes) -> Shape:
+    half = body.section.depth / 2
+    pins = {hole: joint.pin for (name, hole), joint in sizes.joints.items() if name == body.piece}
+    stands = {hole: half + (STUD * pin if body.build == "plate" else 0.0) for hole, pin in pins.items()}
+    lengths = {hole: weighing.weight_length(mass) for hole, mass in body.counterweights.items()}
+    blocks = {
+        hole: Block(stands[hole] + length, weighing.WEIGHT_SHAPE / 2 * length) for hole, length in lengths.items()
+    }
     if body.build != "plate":
-        return Shape(body.section.depth / 2, body.across / 2, body.overhang)
+        return Shape(half, body.across / 2, body.overhang, blocks)
     # nuts and washers stand on both sides of a plate
-    rod = max(joint.pin for (name, _), joint in sizes.joints.items() if name == body.piece)
-    return Shape(body.section.depth / 2 + STUD * rod, body.overhang, body.overhang)
+    return Shape(half + STUD * max(pins.values()), body.overhang, body.overhang, blocks)
 
 
 def fitting_need(bench: Bench, sizes: Sizes, link: LinkPlace, load: float) -> float:

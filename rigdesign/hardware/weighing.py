@@ -27,6 +27,9 @@ STEEL_DENSITY = 7850.0
 FORK_DEPTH = 2.0
 """Length of a fork's cheeks over the radius of their round end; common practice."""
 
+WEIGHT_SHAPE = 1.2
+"""Width of a counterweight, a cylinder of steel, over its length; set here."""
+
 
 def lever_mass(piece: Piece, body: Body, holes: dict[HoleName, float]) -> Mass:
     """Return a lever's mass and centre in the piece's frame.
@@ -53,6 +56,15 @@ def spacer_mass(body: Body) -> float:
     spacer = body.spacer
     tube = round_area(spacer.tube) - round_area(spacer.bore)
     return STEEL_DENSITY * (body.gap * tube + (body.across + BOLT_ENDS) * round_area(spacer.bolt))
+
+
+def weight_length(mass: float) -> float:
+    """Length [m] of a counterweight of `mass` [kg], which is `WEIGHT_SHAPE` times as wide.
+
+    >>> round(weight_length(STEEL_DENSITY * pi / 4 * WEIGHT_SHAPE**2 * 0.1**3), 6)
+    0.1
+    """
+    return float((mass / (STEEL_DENSITY * round_area(WEIGHT_SHAPE))) ** (1 / 3))
 
 
 def plate_mass(piece: Piece, body: Body, holes: dict[HoleName, float]) -> Mass:

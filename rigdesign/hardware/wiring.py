@@ -88,6 +88,17 @@ def wired(rig: Rig) -> Wired:
     return Wired(rig, tuple(links))
 
 
+def side_of(rig: Rig) -> int:
+    """Return the side of the specimen on which a rig stands: +1 that of +z, −1 that of −z."""
+    pull = 1 if rig.plan.target.brief.pads.action == "pull" else -1
+    return pull * (1 if float(rig.jack_forces.sum()) >= 0 else -1)
+
+
+def weights_rise(rig: Rig) -> bool:
+    """Whether gravity pulls from the specimen towards the jack, as it does where the rig stands below."""
+    return side_of(rig) * rig.plan.target.brief.specimen.gravity > 0
+
+
 def _lower(name: str) -> Place:
     return (name, "" if name.startswith("pad ") else "pivot")
 

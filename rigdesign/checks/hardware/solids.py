@@ -27,12 +27,11 @@ import numpy as np
 from rigdesign.checks.hardware.shapes import box, cylinder, prism
 from rigdesign.hardware.levers import side_width
 from rigdesign.hardware.model import Body, End, Hardware, JackStack, Link, PadBody
+from rigdesign.hardware.weighing import WEIGHT_SHAPE, weight_length
 from rigdesign.levers.model import HoleName, Piece, Tree
 from rigdesign.pads.surface.footprints import turns
 from rigdesign.target.curve import Floats
 
-STEEL_DENSITY = 7850.0  # kg/m³, of counterweights
-WEIGHT_SHAPE = 1.2  # width of a counterweight over its length
 NO_FOOTPRINT = 0.1  # m, of a pad whose length or width the brief does not give
 HEAD = 0.010  # m, how far the head of a bolt stands out
 WASHER, STUD_END, NUT_WIDTH = 0.7, 1.3, 1.8  # of a stud's diameter
@@ -145,7 +144,7 @@ class _Parts:
                 yield box(sided, (at - long, inner, -half), (at + long, inner + body.side_plate, half))
 
     def _weight(self, piece: Piece, hole: HoleName, mass: float, link: Link, place: Floats, spot: _Spot) -> Member:
-        length = (mass / (STEEL_DENSITY * math.pi / 4 * WEIGHT_SHAPE**2)) ** (1 / 3)
+        length = weight_length(mass)
         end = self.hardware.end_at(piece.name, hole)
         start = self.down * (self._half_depth(piece.name) + (_stud_reach(end) if end.fitting == "stud" else 0.0))
         block = cylinder(start * UP, (start + self.down * length) * UP, 0.5 * WEIGHT_SHAPE * length)

@@ -9,11 +9,11 @@ from hand_plan_rigs import make_plan_rig
 from hand_rigs import make_rig
 
 from rigdesign.brief.model_hardware import Surface
+from rigdesign.checks.hardware.space import space
 from rigdesign.hardware import build_hardware, stock_line
-from rigdesign.hardware.build import side_of
 from rigdesign.hardware.members import surface_heights
 from rigdesign.hardware.sizing import make_shop
-from rigdesign.hardware.wiring import design_loads, wired
+from rigdesign.hardware.wiring import design_loads, side_of, wired
 from rigdesign.words import STANDARD_GRAVITY
 
 X, FORCE = [0.5, 1.1, 2.0, 2.6], [1300.0, 900.0, 700.0, 400.0]
@@ -108,6 +108,18 @@ def test_counterweights_balance_every_lever():
     assert fixed / fixed.sum() == pytest.approx(led / led.sum(), rel=1e-9)
     total = sum(mass.mass for mass in made.masses.values())
     assert fixed.sum() == pytest.approx(-total * STANDARD_GRAVITY, rel=1e-9)
+
+
+@pytest.mark.parametrize(("action", "total"), [("pull", 5.4e3), ("pull", -5.4e3), ("push", 5.4e3), ("push", -5.4e3)])
+def test_links_leave_room_for_counterweights_and_for_levers_that_turn_under_the_jack(action, total):
+    # pads of unequal force far apart need large counterweights; they hang down on either side of the specimen
+    force = [total * part for part in (0.5, 0.3, 0.15, 0.05)]
+    hardware = make_hardware(balance="counterweights", clearance=0.04, turn=0.2, pad_mass=8.0)
+    brief = make_brief(pads=make_pads(count=4, action=action), loads=(shape_load(total=total),), hardware=hardware)
+    made = build_hardware(make_rig(X, force, brief=brief))
+    assert any(body.counterweights for body in made.bodies.values())
+    near = min(space(made).closest, key=lambda pair: pair.distance)
+    assert near.distance >= 0.04 - 1e-9, near
 
 
 def test_own_weight_that_breaks_a_band_is_balanced_without_being_asked():
