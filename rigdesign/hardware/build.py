@@ -27,15 +27,15 @@ from rigdesign.hardware.members import (
     bodies_of,
     fitting_need,
     links_of,
+    lug_reach,
     masses_of,
     pad_bodies,
     shapes_of,
 )
 from rigdesign.hardware.model import Body, Hardware, Link, Mass, PadBody
-from rigdesign.hardware.owning import band_use
 from rigdesign.hardware.rules.model import PlateBending
 from rigdesign.hardware.sizing import Bench, Sizes, make_bench, make_shop, size_all
-from rigdesign.hardware.wiring import design_loads, peak_jacks, side_of, wired
+from rigdesign.hardware.wiring import design_loads, side_of, wired
 from rigdesign.levers.marks import alike
 from rigdesign.levers.model import Rig
 from rigdesign.levers.weighing import StockLine
@@ -116,7 +116,7 @@ def build_hardware(rig: Rig, progress: Progress | None = None) -> Hardware:
     findings = []
     without = with_weight = 0.0
     if rules.balance == "as needed":
-        without, with_weight = band_use(wiring, {}), band_use(wiring, found.masses)
+        without, with_weight = bench.bands.use({}), bench.bands.use(found.masses)
     if rules.balance == "counterweights" or (with_weight > 1.0 >= without):
         found, hung, settled = _balanced(bench, found)
         findings += _balance_words(hung, rules.balance == "as needed", with_weight)
@@ -144,9 +144,10 @@ def _settle(bench: Bench, progress: Progress | None) -> tuple[Round, bool]:
 
 def _one_round(bench: Bench, masses: Mapping[str, Mass], before: Round | None, hung: Counterweights) -> Round:
     rig = bench.wiring.rig
-    loads = design_loads(bench.wiring, masses)
+    jacks = bench.bands.held_jacks(masses)
+    loads = design_loads(bench.wiring, masses, jacks)
     lengths = {} if before is None else before.levels.lengths
-    sizes = size_all(bench, loads, peak_jacks(bench.wiring, masses), None if before is None else before.sizes, lengths)
+    sizes = size_all(bench, loads, jacks, None if before is None else before.sizes, lengths)
     bodies = bodies_of(bench, sizes, hung)
     pads = pad_bodies(rig.plan.target.brief, side_of(rig), rig.pad_x, rig.pad_y)
     pins = {f"pad {pad.pad}": pad.pin_height for pad in pads}
@@ -154,7 +155,7 @@ def _one_round(bench: Bench, masses: Mapping[str, Mass], before: Round | None, h
         bench.wiring,
         shapes_of(sizes, bodies),
         pins,
-        {name: sizes.joints[name, ""].radius for name in pins},
+        lug_reach(sizes, pads, bench.wiring),
         lambda link: fitting_need(bench, sizes, link, loads[link.name]),
     )
     links = links_of(bench, sizes, levels.lengths, loads)

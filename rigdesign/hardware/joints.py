@@ -81,6 +81,28 @@ def eye_state(load: float, count: int, thickness: float, pin: float, hole: float
     return PlateHole(load, count, thickness, steel, pin, hole, clear, clear, radius, True)
 
 
+@dataclass(frozen=True)
+class Strap:
+    """A strap on a pin: its load [N], width and thickness [m]."""
+
+    load: float
+    width: float
+    thickness: float
+
+
+def strap_hole(strap: Strap, pin: float, hole: float, shop: Shop) -> PlateHole:
+    """A pin through the end of a strap, which is cut square half its width beyond the hole."""
+    clear = strap.width / 2 - hole / 2
+    return PlateHole(
+        strap.load, 1, strap.thickness, shop.steel, pin, hole, clear, clear, strap.width / 2, round_edge=False
+    )
+
+
+def straps_pass(straps: Iterable[Strap], pin: float, hole: float, shop: Shop) -> bool:
+    """Whether all straps pass with a pin."""
+    return all(passes(shop.rules.hole(strap_hole(strap, pin, hole, shop))) for strap in straps)
+
+
 def thinnest(load: float, count: int, pin: float, hole: float, shop: Shop) -> float | None:
     """Thinnest plate of which `count` round eyes about a pin pass; None where no plate does."""
     for thickness in shop.plates:
@@ -122,14 +144,24 @@ def eye_between(load: float, pin: float, outer: float, eye: float, shop: Shop) -
 
 
 def soft_between(
-    load: float, pin: float, outer: float, inner: float, widest: float, shop: Shop, *, is_eye: bool
+    load: float,
+    pin: float,
+    outer: float,
+    inner: float,
+    widest: float,
+    shop: Shop,
+    *,
+    is_eye: bool,
+    straps: Iterable[Strap] = (),
 ) -> Joint | None:
     """Joint of a pin with a strap or webbing of thickness `inner` between two outer parts, None where the pin fails.
 
-    Where another pin of the lever carries a wider one, `widest`, washers keep this one in the middle.  The eye of a rod
-    in such a lever must pass as well.
+    Where another pin of the lever carries a wider one, `widest`, washers keep this one in the middle.  The `straps` on
+    the pin, or the eye of a rod in such a lever, must pass as well.
     """
     hole = pin + shop.play
+    if not straps_pass(straps, pin, hole, shop):
+        return None
     joint = Joint(pin, hole, inner, outer, SIDE_PLAY + (widest - inner) / 2, eye_radius(hole))
     if is_eye and not passes(shop.rules.hole(eye_state(load, 1, inner, pin, hole, shop.steel))):
         return None
@@ -146,11 +178,13 @@ def fork_outside(load: float, pin: float, inner: float, bearing: float, shop: Sh
     return joint if passes(shop.rules.pin(pin_state(load, joint, shop, bearing))) else None
 
 
-def eye_in_lugs(load: float, shop: Shop, inner: float | None = None) -> tuple[Joint, float]:
+def eye_in_lugs(
+    load: float, shop: Shop, inner: float | None = None, straps: tuple[Strap, ...] = ()
+) -> tuple[Joint, float]:
     """Smallest joint of an eye between two lugs, both sized, and its utilisation.
 
-    `inner` is the thickness of a strap or webbing in place of the eye.  Where no pin of the series does, the joint of
-    least utilisation.
+    `inner` is the thickness of a strap or webbing in place of the eye; the `straps` must pass as well.  Where no pin of
+    the series does, the joint of least utilisation.
     """
     best: tuple[Joint, float] | None = None
     for pin in shop.pins:
@@ -162,6 +196,8 @@ def eye_in_lugs(load: float, shop: Shop, inner: float | None = None) -> tuple[Jo
         results += shop.rules.hole(eye_state(load, 2, joint.outer, pin, hole, shop.steel))
         if inner is None:
             results += shop.rules.hole(eye_state(load, 1, joint.inner, pin, hole, shop.steel))
+        for strap in straps:
+            results += shop.rules.hole(strap_hole(strap, pin, hole, shop))
         use = worst(results).utilisation
         if sized and use <= 1.0:
             return joint, use

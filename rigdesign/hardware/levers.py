@@ -9,7 +9,7 @@ section, side plates, pins.
 from __future__ import annotations
 
 from collections.abc import Iterable, Iterator, Mapping
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from itertools import pairwise
 from math import ceil, inf
 from typing import Literal
@@ -21,6 +21,7 @@ from rigdesign.hardware.joints import (
     SIDE_PLAY,
     Joint,
     Shop,
+    Strap,
     eye_between,
     eye_radius,
     eye_state,
@@ -64,7 +65,8 @@ class LeverTask:
     """What a lever must bear: arms [m] to A and B, loads [N] on its pins, how it is built, and what lies on its pins.
 
     `inner` holds the thickness of what lies on each pin where that is given, else it is empty: straps or webbing, and
-    at the holes of `eyes` the eye of a rod.
+    at the holes of `eyes` the eye of a rod.  Of levers made alike it is the thinnest, and `widest` the widest on any
+    pin of theirs (0: that of `inner`).  `straps` are those on each pin.
     """
 
     a: float
@@ -74,6 +76,8 @@ class LeverTask:
     inner: Mapping[HoleName, float]
     deflection: float
     eyes: frozenset[HoleName] = frozenset()
+    widest: float = 0.0
+    straps: Mapping[HoleName, tuple[Strap, ...]] = field(default_factory=dict)
 
 
 @dataclass(frozen=True)
@@ -245,8 +249,9 @@ def _joint(
     if task.build == "hollow section":
         return fork_outside(load, pin, section.width + 2 * side, 2 * (section.web + side), shop)
     if task.inner:
-        widest = max(task.inner.values())
-        return soft_between(load, pin, section.web, task.inner[hole], widest, shop, is_eye=hole in task.eyes)
+        widest, straps = max(task.widest, *task.inner.values()), task.straps.get(hole, ())
+        inner, is_eye = task.inner[hole], hole in task.eyes
+        return soft_between(load, pin, section.web, inner, widest, shop, is_eye=is_eye, straps=straps)
     return eye_between(load, pin, section.web, eye, shop)
 
 

@@ -13,10 +13,10 @@ from rigdesign.hardware import levers, weighing
 from rigdesign.hardware.catalogue import material, threads, webbings
 from rigdesign.hardware.joints import Joint, pin_length
 from rigdesign.hardware.levels import Block, Shape
-from rigdesign.hardware.links import ADJUST, ROD_GRADE, SHANK, STUD, TURNBUCKLE, screw_for
+from rigdesign.hardware.links import ADJUST, ROD_GRADE, SHANK, STUD, TURNBUCKLE, LinkSize, screw_for
 from rigdesign.hardware.model import Body, End, Fitting, Link, LinkKind, Mass, PadBody
-from rigdesign.hardware.sizing import Bench, Sizes
-from rigdesign.hardware.wiring import LinkPlace, Place
+from rigdesign.hardware.sizing import Bench, Sizes, inner_of
+from rigdesign.hardware.wiring import LinkPlace, Place, Wired
 from rigdesign.levers.model import HoleName
 from rigdesign.target.curve import Floats
 
@@ -111,8 +111,19 @@ def fitting_need(bench: Bench, sizes: Sizes, link: LinkPlace, load: float) -> fl
                 reach = weighing.FORK_DEPTH if _fitting(bench, sizes, place, size.kind) == "fork" else 1.0
                 need += reach * joint.radius + SHANK * size.width
         return need
-    need = sum(joint.radius for _, joint in joints) + LEAST_ROD
+    need = sum(end_radius(size, joint) for _, joint in joints) + LEAST_ROD
     return need + (TURNBUCKLE * _screw(bench, load) if has_turnbuckle(bench, link) else 0.0)
+
+
+def end_radius(size: LinkSize, joint: Joint) -> float:
+    """From a hole's centre to the end of what a link has there [m]: a strap is cut half its width beyond."""
+    return size.width / 2 if size.kind == "strap" else joint.radius
+
+
+def lug_reach(sizes: Sizes, pads: tuple[PadBody, ...], wiring: Wired) -> dict[str, float]:
+    """Return how far each pad's lugs and the link's end between them stand up over its pin [m], by name."""
+    names = [f"pad {pad.pad}" for pad in pads]
+    return {name: end_radius(sizes.links[wiring.above[name].name], sizes.joints[name, ""]) for name in names}
 
 
 def has_turnbuckle(bench: Bench, link: LinkPlace) -> bool:
@@ -141,7 +152,7 @@ def links_of(bench: Bench, sizes: Sizes, lengths: Mapping[str, float], loads: Ma
     made = []
     for place in bench.wiring.links:
         size = sizes.links[place.name]
-        upper, lower = (_end(bench, sizes, at, size.kind) for at in (place.upper, place.lower))
+        upper, lower = (_end(bench, sizes, at, size) for at in (place.upper, place.lower))
         turnbuckle = has_turnbuckle(bench, place)
         screw = _screw(bench, loads[place.name]) if turnbuckle else 0.0
         adjust = ADJUST * size.width if size.kind == "rod" else TURNBUCKLE / 4 * screw
@@ -155,13 +166,16 @@ def links_of(bench: Bench, sizes: Sizes, lengths: Mapping[str, float], loads: Ma
     return tuple(made)
 
 
-def _end(bench: Bench, sizes: Sizes, place: Place, kind: LinkKind) -> End:
+def _end(bench: Bench, sizes: Sizes, place: Place, size: LinkSize) -> End:
     joint: Joint = sizes.joints[place]
     name, hole = place
-    fitting = _fitting(bench, sizes, place, kind)
+    fitting, radius = _fitting(bench, sizes, place, size.kind), end_radius(size, joint)
     grip = 0.0 if fitting == "stud" else joint.inner + 2 * (joint.gap + joint.outer)
     length = 0.0 if fitting == "stud" else pin_length(joint.pin, grip)
-    return End(fitting, name, hole, joint.pin, joint.hole, length, joint.inner, joint.outer, joint.gap, joint.radius)
+    # levers made alike may carry straps of unequal thickness: washers fill what is left
+    inner = inner_of(size) or joint.inner
+    gap = joint.gap + (joint.inner - inner) / 2
+    return End(fitting, name, hole, joint.pin, joint.hole, length, inner, joint.outer, gap, radius)
 
 
 def masses_of(

@@ -7,7 +7,7 @@ plates, then the joints at pads and jacks.  Lengths and hole sizes that a size d
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from math import hypot
 
 import numpy as np
@@ -15,10 +15,11 @@ import numpy as np
 from rigdesign.brief.model_hardware import Build, HardwareRules
 from rigdesign.hardware import levers, links, plates
 from rigdesign.hardware.catalogue import material, sections, threads, webbings, with_density
-from rigdesign.hardware.joints import Joint, Shop, eye_in_lugs, eye_on
+from rigdesign.hardware.joints import Joint, Shop, Strap, eye_in_lugs, eye_on, strap_hole
 from rigdesign.hardware.model import JackStack, LinkKind, Section, Shortfall
+from rigdesign.hardware.owning import Bands, bands_of
 from rigdesign.hardware.rules import rule_set
-from rigdesign.hardware.rules.model import PlateHole, StrapState
+from rigdesign.hardware.rules.model import StrapState
 from rigdesign.hardware.stacks import stack_for
 from rigdesign.hardware.wiring import LinkPlace, Place, Wired
 from rigdesign.levers.model import HoleName, Piece
@@ -29,12 +30,13 @@ FIRST_LENGTH = 0.3
 
 @dataclass(frozen=True)
 class Bench:
-    """What sizing works with: the rig's links, the brief's rules, materials and joints to choose from, and groups.
+    """What sizing works with: the rig's links and bands, the brief's rules, what joints are made from, and groups.
 
     `groups` are names of pieces that are made alike, every piece in one of them.
     """
 
     wiring: Wired
+    bands: Bands
     rules: HardwareRules
     shop: Shop
     groups: tuple[tuple[str, ...], ...]
@@ -81,7 +83,7 @@ class Sizes:
 def make_bench(wiring: Wired, groups: tuple[tuple[str, ...], ...]) -> Bench:
     """Return what sizing works with for a rig."""
     rules = wiring.rig.plan.target.brief.hardware
-    return Bench(wiring, rules, make_shop(rules), groups)
+    return Bench(wiring, bands_of(wiring), rules, make_shop(rules), groups)
 
 
 def make_shop(rules: HardwareRules) -> Shop:
@@ -99,7 +101,7 @@ def make_shop(rules: HardwareRules) -> Shop:
 def size_all(
     bench: Bench, loads: Mapping[str, float], jacks: Iterable[float], before: Sizes | None, lengths: Mapping[str, float]
 ) -> Sizes:
-    """Return the sizes for the loads of the links [N] by name and the jacks' forces at peak [N].
+    """Return the sizes for the loads of the links [N] by name and the jacks' forces [N], overshoot included.
 
     `before` and `lengths` [m] are those of the round before, None and empty in the first.
     """
@@ -120,7 +122,7 @@ def size_all(
             found |= _lever_group(bench, pieces, loads, sized, joints, short)
     stacks = {}
     for tree, force in zip(bench.wiring.rig.trees, jacks, strict=True):
-        stacks[tree.jack.name], lacking = stack_for(tree.jack.name, abs(force) * bench.rules.overshoot, bench.rules)
+        stacks[tree.jack.name], lacking = stack_for(tree.jack.name, abs(force), bench.rules)
         short += lacking
     for link in bench.wiring.links:
         _outer_joints(bench, link, loads[link.name], sized[link.name], stacks, joints, short)
@@ -168,7 +170,8 @@ def _strap(bench: Bench, load: float, joints: list[Joint]) -> tuple[links.LinkSi
         state = StrapState(load, section.depth, section.width, hole, bench.shop.steel)
         results = [*bench.shop.rules.strap(state)]
         for pin, diameter in pairs:
-            results += bench.shop.rules.hole(strap_hole(load, section, pin, diameter, bench.shop))
+            strap = Strap(load, section.depth, section.width)
+            results += bench.shop.rules.hole(strap_hole(strap, pin, diameter, bench.shop))
         use = max(result.utilisation for result in results)
         name = section.name.removeprefix("flat ")
         size = links.LinkSize(
@@ -182,17 +185,16 @@ def _strap(bench: Bench, load: float, joints: list[Joint]) -> tuple[links.LinkSi
     return best
 
 
-def strap_hole(load: float, section: Section, pin: float, hole: float, shop: Shop) -> PlateHole:
-    """A pin through the end of a strap, which is cut square half its width beyond the hole."""
-    clear = section.depth / 2 - hole / 2
-    return PlateHole(load, 1, section.width, shop.steel, pin, hole, clear, clear, section.depth / 2, False)
-
-
 def inner_of(size: links.LinkSize) -> float | None:
     """What a link that has no eyes of its own puts on a pin [m]; None for a rod, whose eyes are sized."""
     if size.kind == "rod":
         return None
     return size.thickness if size.kind == "strap" else size.width
+
+
+def straps_of(size: links.LinkSize, load: float) -> tuple[Strap, ...]:
+    """The strap that a link puts on its pins, none where it is a rod or webbing."""
+    return (Strap(load, size.width, size.thickness),) if size.kind == "strap" else ()
 
 
 def _lever_group(
@@ -210,15 +212,10 @@ def _lever_group(
     most: dict[HoleName, float] = {hole: max(loads[own[hole].name] for own in through) for hole in levers.HOLES}
     # where the lever's own weight adds to what its ends carry, its pivot section bears that
     most["pivot"] = max(most["pivot"], *(loads[own["A"].name] + loads[own["B"].name] for own in through))
-    inner: dict[HoleName, float] = {}
-    eyes: frozenset[HoleName] = frozenset()
-    if bench.rules.links != "rod":
-        soft = [hole for hole in levers.HOLES if bench.kind_of(through[0][hole]) != "rod"]
-        inner = {hole: max(inner_of(sized[own[hole].name]) or 0.0 for own in through) for hole in soft}
-        eyes = frozenset(levers.HOLES) - frozenset(soft)
-        inner |= {hole: _eye_for(max(sized[own[hole].name].width for own in through), bench.shop) for hole in eyes}
     build = bench.build_of(first)
-    task = levers.LeverTask(ends["A"], ends["B"], most, build, inner, bench.rules.deflection, eyes)
+    task = levers.LeverTask(ends["A"], ends["B"], most, build, {}, bench.rules.deflection)
+    if bench.rules.links != "rod":
+        task = _soft_task(bench, task, through, loads, sized)
     kind = levers.PROFILE[build]
     result = levers.size_lever(task, sections(bench.rules, kind, bench.shop.steel.density), bench.shop)
     for piece in pieces:
@@ -228,6 +225,26 @@ def _lever_group(
             remedy = levers.remedy(result.failure, build)
             short.append(Shortfall(piece.name, result.failure.check, result.failure.utilisation, remedy))
     return {piece.name: result for piece in pieces}
+
+
+def _soft_task(
+    bench: Bench,
+    task: levers.LeverTask,
+    through: list[dict[HoleName, LinkPlace]],
+    loads: Mapping[str, float],
+    sized: Mapping[str, links.LinkSize],
+) -> levers.LeverTask:
+    """The task of levers made alike with what lies on their pins: straps or webbing, and maybe the eye of a rod."""
+    soft = [hole for hole in levers.HOLES if bench.kind_of(through[0][hole]) != "rod"]
+    eyes = frozenset(levers.HOLES) - frozenset(soft)
+    lying = {hole: [inner_of(sized[own[hole].name]) or 0.0 for own in through] for hole in soft}
+    lying |= {hole: [_eye_for(max(sized[own[hole].name].width for own in through), bench.shop)] for hole in eyes}
+    straps = {
+        hole: tuple(strap for own in through for strap in straps_of(sized[own[hole].name], loads[own[hole].name]))
+        for hole in soft
+    }
+    inner = {hole: min(found) for hole, found in lying.items()}
+    return replace(task, inner=inner, eyes=eyes, widest=max(max(found) for found in lying.values()), straps=straps)
 
 
 def _eye_for(rod: float, shop: Shop) -> float:
@@ -289,7 +306,7 @@ def _outer_joints(
         if use > 1.0:
             short.append(Shortfall(link.name, "eye on the load cell's pin", use, "a load cell with a thicker pin"))
     if link.lower[0].startswith("pad "):
-        joint, use = eye_in_lugs(load, bench.shop, inner)
+        joint, use = eye_in_lugs(load, bench.shop, inner, straps_of(size, load))
         joints[link.lower] = joint
         if use > 1.0:
             short.append(Shortfall(link.name, f"pin at {link.lower[0]}", use, "larger pins in [hardware] pins"))

@@ -5,7 +5,7 @@ The builder's road from holes to forces: it walks down the tree piece by piece. 
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from functools import cached_property
 from typing import Literal
@@ -170,14 +170,12 @@ def peak_jacks(wiring: Wired, masses: Mapping[str, Mass]) -> list[float]:
     return [factor * tree.force for tree in rig.trees]
 
 
-def design_loads(wiring: Wired, masses: Mapping[str, Mass]) -> dict[str, float]:
-    """Return the load of every link [N] as a magnitude, at peak with overshoot, the larger of its two ends."""
-    overshoot = wiring.rig.plan.target.brief.hardware.overshoot
-    jacks = peak_jacks(wiring, masses)
+def design_loads(wiring: Wired, masses: Mapping[str, Mass], jacks: Sequence[float]) -> dict[str, float]:
+    """Return the load of every link [N] as a magnitude under the jacks' forces [N], the larger of its two ends."""
     forces = link_forces(wiring, masses)
     loads = {}
     for link in wiring.links:
         force = forces[link.name]
-        part = force.rate * jacks[link.tree] * overshoot
+        part = force.rate * jacks[link.tree]
         loads[link.name] = max(abs(part + force.upper), abs(part + force.lower))
     return loads

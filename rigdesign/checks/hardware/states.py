@@ -90,7 +90,7 @@ def pin(hardware: Hardware, link: Link, end: End, load: float) -> PinState:
 
 
 def fitting(link: Link, end: End, load: float) -> PlateHole:
-    """The eye or the two cheeks of a fork at one end of a link; a strap's eye is the strap itself."""
+    """The eye or the two cheeks of a fork at one end of a link; a strap's eye is the strap itself, cut square."""
     is_strap = link.kind == "strap" and end.fitting == "eye"
     clear = end.radius - end.hole / 2
     return PlateHole(
@@ -103,7 +103,7 @@ def fitting(link: Link, end: End, load: float) -> PlateHole:
         side=min(clear, (link.width - end.hole) / 2) if is_strap else clear,
         beyond=clear,
         radius=end.radius,
-        round_edge=True,
+        round_edge=not is_strap,
     )
 
 

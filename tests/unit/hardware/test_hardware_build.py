@@ -12,6 +12,7 @@ from rigdesign.brief.model_hardware import Surface
 from rigdesign.checks.hardware.space import space
 from rigdesign.hardware import build_hardware, stock_line
 from rigdesign.hardware.members import surface_heights
+from rigdesign.hardware.owning import bands_of, pad_forces
 from rigdesign.hardware.sizing import make_shop
 from rigdesign.hardware.wiring import design_loads, side_of, wired
 from rigdesign.words import STANDARD_GRAVITY
@@ -34,7 +35,7 @@ def test_heights_add_up_along_every_link():
 
 def test_what_was_sized_was_sized_for_the_loads_that_it_has():
     made = build_hardware(rig(peak=1.5))
-    loads = design_loads(wired(made.rig), made.masses)
+    loads = design_loads(wired(made.rig), made.masses, bands_of(wired(made.rig)).held_jacks(made.masses))
     shop = make_shop(made.rig.plan.target.brief.hardware)
     from rigdesign.hardware.catalogue import threads
     from rigdesign.hardware.links import rod_state
@@ -101,8 +102,6 @@ def test_counterweights_balance_every_lever():
     made = build_hardware(rig(hardware=make_hardware(balance="counterweights")))
     assert any(body.counterweights for body in made.bodies.values())
     assert any(finding.object == "counterweights" for finding in made.findings)
-    from rigdesign.hardware.owning import pad_forces
-
     led, fixed = pad_forces(wired(made.rig), made.masses)
     # forces from weight are in the ratio of those from the jack, to the rounding of a few sums
     assert fixed / fixed.sum() == pytest.approx(led / led.sum(), rel=1e-9)
@@ -127,9 +126,7 @@ def test_own_weight_that_breaks_a_band_is_balanced_without_being_asked():
     brief = make_brief(pads=make_pads(count=4), hardware=heavy)
     target_free = make_rig(X, FORCE, brief=brief)
     loose = build_hardware(target_free)
-    from rigdesign.hardware.owning import band_use
-
-    without = band_use(wired(loose.rig), {})
+    without = bands_of(wired(loose.rig)).use({})
     # four lumped pads miss the bands by themselves, so nothing is put on
     assert without > 1.0
     assert not any(body.counterweights for body in loose.bodies.values())

@@ -8,6 +8,7 @@ from hand_rigs import make_rig
 from rigdesign.brief.model import Weight
 from rigdesign.checks.statics import solve_statics
 from rigdesign.hardware.model import Mass
+from rigdesign.hardware.owning import bands_of
 from rigdesign.hardware.wiring import design_loads, link_forces, peak_jacks, tree_weight, wired
 from rigdesign.words import STANDARD_GRAVITY
 
@@ -77,9 +78,9 @@ def test_at_the_peak_the_jack_carries_the_tree_as_well():
 def test_design_loads_take_overshoot_on_the_jacks_part_alone():
     made = rig(peak=1.2, hardware=make_hardware(overshoot=1.1))
     masses = {"link 4": Mass(10.0, 0.0, 0.0)}
-    loads = design_loads(wired(made), masses)
-    forces = link_forces(wired(made), masses)
     (jack,) = peak_jacks(wired(made), masses)
+    loads = design_loads(wired(made), masses, bands_of(wired(made)).held_jacks(masses))
+    forces = link_forces(wired(made), masses)
     # its own weight hangs on its upper end alone
     assert loads["link 4"] == pytest.approx(forces["link 4"].rate * jack * 1.1, rel=1e-12)
     assert loads["link 4"] > 1.2 * FORCE[0]
