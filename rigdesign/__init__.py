@@ -1,13 +1,15 @@
-"""rigdesign: whiffletrees for structural tests, from one brief to a checked lever tree.
+"""rigdesign: whiffletrees for structural tests, from one brief to a checked lever tree and the steel it is made of.
 
     import rigdesign
 
     brief = rigdesign.read_brief("brief.toml")
-    answer = rigdesign.design(brief)                  # a Check, or a Refusal that says what leaves no rig
-    rigdesign.write(answer, "brief_rig")
+    answer = rigdesign.design(brief)                  # a HardwareCheck, or a Refusal that says what leaves no rig
+    if not isinstance(answer, rigdesign.Refusal):
+        rigdesign.write(answer, "brief_rig")
 
-The words are those of the command: `build_target`, `design`, `study`, `assess`, `write`, `read_rig`.  Importing this
-package loads nothing heavy; each name is fetched from its stage when it is first used.
+`arrange` stops at pads and levers, and its `Check` is the `check` of a `HardwareCheck`.  The other words are those of
+the command: `build_target`, `study`, `assess` (of pads and levers), `write`, `read_rig`.  Importing this package loads
+nothing heavy; each name is fetched from its stage when it is first used.
 """
 
 from __future__ import annotations
@@ -17,7 +19,8 @@ from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
     from rigdesign.brief import read_brief
-    from rigdesign.chain import Study, assess, design, study
+    from rigdesign.chain import Study, arrange, assess, design, study
+    from rigdesign.checks.hardware.model import HardwareCheck
     from rigdesign.checks.model import Check
     from rigdesign.errors import BriefError, InputError, OutputError, RigdesignError, TableError
     from rigdesign.findings import Finding, Refusal
@@ -30,6 +33,7 @@ __all__ = [
     "BriefError",
     "Check",
     "Finding",
+    "HardwareCheck",
     "InputError",
     "OutputError",
     "Refusal",
@@ -37,6 +41,7 @@ __all__ = [
     "Study",
     "TableError",
     "__version__",
+    "arrange",
     "assess",
     "build_target",
     "design",
@@ -49,6 +54,7 @@ __all__ = [
 _HOME = {
     "read_brief": "rigdesign.brief",
     "build_target": "rigdesign.target",
+    "arrange": "rigdesign.chain",
     "design": "rigdesign.chain",
     "study": "rigdesign.chain",
     "assess": "rigdesign.chain",
@@ -56,6 +62,7 @@ _HOME = {
     "write": "rigdesign.report.writing",
     "read_rig": "rigdesign.report.writing",
     "Check": "rigdesign.checks.model",
+    "HardwareCheck": "rigdesign.checks.hardware.model",
     "Finding": "rigdesign.findings",
     "Refusal": "rigdesign.findings",
     **dict.fromkeys(("BriefError", "InputError", "OutputError", "RigdesignError", "TableError"), "rigdesign.errors"),

@@ -9,6 +9,8 @@ import tomllib
 import pytest
 from journey import DEMOS, ROOT, files_under
 
+import rigdesign as rigdesign_package
+
 
 @pytest.mark.parametrize("brief", DEMOS, ids=[path.parent.name for path in DEMOS])
 def test_a_demo_ends_accepted_and_reads_back(rigdesign, here, brief):
@@ -23,9 +25,12 @@ def test_a_demo_ends_accepted_and_reads_back(rigdesign, here, brief):
     assert json.loads(rigdesign("assess", "demo_rig", "--json").out) == summary
     wanted = {"tree.svg", "load_and_pads.svg", "shear_and_moment.svg", "target.svg"}
     asked = tomllib.loads(brief.read_text())
+    wanted |= {"drawings.pdf", "strength.csv", "tare.csv", "parts.csv", "cut_list.csv", "drill_list.csv", "dxf"}
+    assert summary["utilisation_max"] <= 1
+    assert not summary["shortfalls"]
     wanted |= {"plan.svg", "across.csv"} if "outline" in asked["specimen"] else set()
     wanted |= {"across.svg"} if "across" in asked["acceptance"] else set()
-    assert wanted <= set(files_under(here / "demo_rig"))
+    assert wanted <= {name.split("/")[0] for name in files_under(here / "demo_rig")}
 
 
 def test_there_are_demos_of_different_kinds():
@@ -68,8 +73,21 @@ def test_the_python_of_the_readme_runs(here, capsys):
     assert block is not None
     code = "\n".join(line[4:] for line in block[1].splitlines())
     exec(code.replace("demo_rigs/", f"{ROOT}/demo_rigs/"), {})
-    assert "True" in capsys.readouterr().out
+    error, use, accepted = capsys.readouterr().out.split()
+    assert 0 < float(error) < 0.01
+    assert 0 < float(use) <= 1
+    assert accepted == "True"
     assert (here / "rudder_rig" / "tree.svg").is_file()
+    assert (here / "rudder_rig" / "drawings.pdf").is_file()
+
+
+def test_what_the_readme_says_of_python_is_so():
+    brief = rigdesign_package.read_brief(DEMOS[0])
+    arranged = rigdesign_package.arrange(brief)
+    assert type(arranged) is rigdesign_package.Check
+    whole = rigdesign_package.design(brief)
+    assert isinstance(whole, rigdesign_package.HardwareCheck)
+    assert type(whole.check) is rigdesign_package.Check
 
 
 def test_the_surface_of_the_readme_is_that_of_its_demo(rigdesign):
@@ -84,6 +102,29 @@ def test_the_surface_of_the_readme_is_that_of_its_demo(rigdesign):
     assert shown["load"][0] == demo["load"][0]
     ended = rigdesign("target", ROOT / "demo_rigs" / "lagoon_foil" / "brief.toml")
     assert ended.code == 0
+
+
+def test_the_hardware_of_the_readme_is_that_of_a_demo():
+    text = (ROOT / "README.md").read_text().split("## Hardware")[1]
+    block = re.search(r"\n\n((?:    .*\n|\n)+)", text)
+    assert block is not None
+    shown = tomllib.loads("\n".join(line[4:] for line in block[1].splitlines()))
+    demo = tomllib.loads((ROOT / "demo_rigs" / "tern_wing" / "brief.toml").read_text())
+    assert shown == {"hardware": demo["hardware"]}
+
+
+def test_the_files_that_the_readme_names_are_written(rigdesign, here):
+    text = (ROOT / "README.md").read_text().split("## Hardware")[1].split("**Few")[0]
+    rigdesign("design", DEMOS[0], "--out", "demo_rig")
+    named = set(re.findall(r"`(\w+\.(?:csv|pdf)|dxf/)`", text))
+    assert len(named) == 10
+    for name in named:
+        assert (here / "demo_rig" / name).exists(), name
+
+
+def test_every_demo_stands_in_the_readme_and_none_else():
+    named = re.findall(r"^\| `demo_rigs/(\w+)` \|", (ROOT / "README.md").read_text(), re.MULTILINE)
+    assert sorted(named) == [path.parent.name for path in DEMOS]
 
 
 def test_links_in_the_pages_lead_somewhere():
