@@ -2,8 +2,9 @@
 
 Sizes depend on loads, loads on weights, weights on sizes; compressed rods on lengths, lengths on depths.  Each round
 sizes everything for the loads and lengths of the round before, and the search ends when a round changes nothing: then
-every member is the least for the very loads that it has.  Should sizes come round in a circle, those of the last round
-are kept, and it is said.
+every member is the least for the very loads that it has.  A strap and its pins can chase each other in a circle, each
+the least for the other of the round before: after half of the rounds straps stay that pass.  Should sizes not settle
+even so, those of the last round are kept, and it is said.
 """
 
 from __future__ import annotations
@@ -43,6 +44,9 @@ from rigdesign.pads.outcome import Progress
 
 MOST_ROUNDS = 12
 """Rounds of sizing at most."""
+
+LATE = 6
+"""From this round on, counted from 0, straps that pass are not made lighter."""
 
 TYPICAL_ARM = 0.3
 """Arms of the levers for which the stock's bending moments are worked out for the grouping [m]."""
@@ -134,7 +138,7 @@ def _settle(bench: Bench, progress: Progress | None) -> tuple[Round, bool]:
     for number in range(MOST_ROUNDS):
         if progress is not None:
             progress(0.9 * number / MOST_ROUNDS, "sections and pins")
-        found = _one_round(bench, masses, before, {})
+        found = _one_round(bench, masses, before, {}, is_late=number >= LATE)
         if before is not None and _same(found, before, masses):
             return found, True
         masses, before = found.masses, found
@@ -142,12 +146,14 @@ def _settle(bench: Bench, progress: Progress | None) -> tuple[Round, bool]:
     return before, False
 
 
-def _one_round(bench: Bench, masses: Mapping[str, Mass], before: Round | None, hung: Counterweights) -> Round:
+def _one_round(
+    bench: Bench, masses: Mapping[str, Mass], before: Round | None, hung: Counterweights, *, is_late: bool
+) -> Round:
     rig = bench.wiring.rig
     jacks = bench.bands.held_jacks(masses)
     loads = design_loads(bench.wiring, masses, jacks)
     lengths = {} if before is None else before.levels.lengths
-    sizes = size_all(bench, loads, jacks, None if before is None else before.sizes, lengths)
+    sizes = size_all(bench, loads, jacks, None if before is None else before.sizes, lengths, keep_straps=is_late)
     bodies = bodies_of(bench, sizes, hung)
     pads = pad_bodies(rig.plan.target.brief, side_of(rig), rig.pad_x, rig.pad_y)
     pins = {f"pad {pad.pad}": pad.pin_height for pad in pads}
@@ -170,12 +176,12 @@ def _same(found: Round, before: Round, masses: Mapping[str, Mass]) -> bool:
 def _balanced(bench: Bench, found: Round) -> tuple[Round, Counterweights, bool]:
     """Hang counterweights until sizes, heights and weights agree: heavier levers need others; whether they do."""
     hung: Counterweights = {}
-    for _ in range(MOST_ROUNDS):
+    for number in range(MOST_ROUNDS):
         before = found
         bare = masses_of(bench, before.sizes, bodies_of(bench, before.sizes, {}), before.links, before.pads)
         hung = counterweights(bench.wiring.rig, bare, before.links, whole=True)
         masses = masses_of(bench, before.sizes, bodies_of(bench, before.sizes, hung), before.links, before.pads)
-        found = _one_round(bench, masses, before, hung)
+        found = _one_round(bench, masses, before, hung, is_late=number >= LATE)
         if _same(found, before, masses):
             return found, hung, True
     return found, hung, False

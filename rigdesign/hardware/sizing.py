@@ -99,13 +99,20 @@ def make_shop(rules: HardwareRules) -> Shop:
 
 
 def size_all(
-    bench: Bench, loads: Mapping[str, float], jacks: Iterable[float], before: Sizes | None, lengths: Mapping[str, float]
+    bench: Bench,
+    loads: Mapping[str, float],
+    jacks: Iterable[float],
+    before: Sizes | None,
+    lengths: Mapping[str, float],
+    *,
+    keep_straps: bool = False,
 ) -> Sizes:
     """Return the sizes for the loads of the links [N] by name and the jacks' forces [N], overshoot included.
 
-    `before` and `lengths` [m] are those of the round before, None and empty in the first.
+    `before` and `lengths` [m] are those of the round before, None and empty in the first.  With
+    `keep_straps` the straps of the round before stay where they pass, though with other pins a lighter one may do.
     """
-    sized, straps = _links(bench, loads, before, lengths)
+    sized, straps = _links(bench, loads, before, lengths, keep_straps)
     short = [
         Shortfall(name, "strength of the link", size.utilisation, _LINK_REMEDY[size.kind])
         for name, size in sized.items()
@@ -137,7 +144,7 @@ _LINK_REMEDY = {
 
 
 def _links(
-    bench: Bench, loads: Mapping[str, float], before: Sizes | None, lengths: Mapping[str, float]
+    bench: Bench, loads: Mapping[str, float], before: Sizes | None, lengths: Mapping[str, float], keep_straps: bool
 ) -> tuple[dict[str, links.LinkSize], dict[str, Section]]:
     """Sizes of all links, and the flats of straps."""
     rules, steel = bench.shop.rules, bench.shop.steel
@@ -152,7 +159,8 @@ def _links(
             sized[link.name] = links.webbing(load, webbings(), steel, rules)
         else:
             holes = _strap_holes(bench, link, before)
-            sized[link.name], straps[link.name] = _strap(bench, load, holes)
+            first = (before.straps[link.name],) if keep_straps and before is not None else ()
+            sized[link.name], straps[link.name] = _strap(bench, load, holes, first)
     return sized, straps
 
 
@@ -160,12 +168,14 @@ def _strap_holes(bench: Bench, link: LinkPlace, before: Sizes | None) -> list[Jo
     return [] if before is None else [before.joints[place] for place in (link.upper, link.lower)]
 
 
-def _strap(bench: Bench, load: float, joints: list[Joint]) -> tuple[links.LinkSize, Section]:
-    """The lightest flat that bears a load as a strap with the holes of the round before."""
+def _strap(
+    bench: Bench, load: float, joints: list[Joint], first: tuple[Section, ...]
+) -> tuple[links.LinkSize, Section]:
+    """The first of these, else the lightest flat, that bears a load as a strap with the holes of the round before."""
     least = bench.shop.pins[0] + bench.shop.play
     pairs = [(joint.pin, joint.hole) for joint in joints] or [(bench.shop.pins[0], least)]
     best: tuple[links.LinkSize, Section] | None = None
-    for section in sections(bench.rules, "flat", bench.shop.steel.density):
+    for section in (*first, *sections(bench.rules, "flat", bench.shop.steel.density)):
         hole = max(diameter for _, diameter in pairs)
         state = StrapState(load, section.depth, section.width, hole, bench.shop.steel)
         results = [*bench.shop.rules.strap(state)]

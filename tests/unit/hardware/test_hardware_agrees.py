@@ -41,6 +41,14 @@ def test_the_check_finds_no_member_weak_where_the_builder_finds_none(rules, link
     assert 0.5 < worst.utilisation <= 1.0 + 1e-9, worst
 
 
+@pytest.mark.parametrize(("rules", "factor"), [("AISC 360", 9.5), ("BTH-1", 4.0), ("BTH-1", 6.0), ("EN 1993", 12.0)])
+def test_straps_and_pins_do_not_chase_each_other(rules, factor):
+    # loads at which the lightest strap asks for another pin, and that pin for another strap
+    made = build_hardware(rig(factor, rules=rules, links="strap"))
+    assert not made.findings
+    assert max(row.utilisation for row in check_hardware(check(made.rig), made).strength) <= 1.0 + 1e-9
+
+
 @pytest.mark.parametrize("overshoot", [1.0, 1.05])
 def test_members_are_sized_for_the_jack_force_that_the_check_holds(overshoot):
     # heavy levers against wide bands: with weight the least band use needs more than the even jack force

@@ -48,7 +48,7 @@ def test_elevation_shows_every_pin_where_it_is(name: str, way: float) -> None:
     jack = hardware.rig.trees[0].jack
     pin = hardware.heights["jack 1"]
     pads = [(float(x), pad.pin_height) for x, pad in zip(result.check.rig.pad_x, hardware.pads, strict=True)]
-    top = pin + hardware.stacks[0].cell.length + hardware.stacks[0].machine.length
+    top = pin + hardware.stacks[0].cell.length + hardware.stacks[0].machine.standing
     expected = np.array([*pads, (jack.x, pin), (jack.x, top)])
     # where the first pad is on the paper is the sheet's own choice: any circle from which all others follow
     spots = mm * (expected - expected[0]) * np.array([1.0, way])
@@ -77,7 +77,7 @@ def test_heights_are_those_of_the_hardware() -> None:
     stack = result.hardware.stacks[0]
     low = result.hardware.heights["jack 1"]
     assert rows["pin of the cell"] == pytest.approx(low, abs=1e-5)
-    assert rows["far pin of the jack"] == pytest.approx(low + stack.cell.length + stack.machine.length, abs=1e-5)
+    assert rows["far pin of the jack"] == pytest.approx(low + stack.cell.length + stack.machine.standing, abs=1e-5)
 
 
 def test_headroom_is_drawn_where_the_brief_has_one() -> None:
