@@ -15,7 +15,8 @@ pad forces, from the supports' answer to them, and from gravity (`curves`).
 A surface is also cut the other way, square to y, its pads are held to their tributary shares where the brief asks for
 that, and what stands in whose way in plan is found by geometry (`surface`).
 
-Levers and links are rigid, without weight and without friction, and hang plumb.
+Levers and links are rigid, without weight and without friction, and hang plumb.  What the rig is made of is checked on
+top of this, its own weight among it (`hardware`).
 
 Depends on: brief, target, pads and levers (their models), display, findings, errors, words.
 """

@@ -1,8 +1,8 @@
 """Stage: command.  The `rigdesign` command: arguments in, files, words on the terminal and an exit code out.
 
-    design BRIEF    from a brief to a rig folder
-    study BRIEF     the same for several numbers of pads, as a table and a picture
-    assess RIG      a rig that exists, with other holes or against another brief
+    design BRIEF    from a brief to a rig folder, hardware and drawings in it
+    study BRIEF     pads and levers for several numbers of pads, as a table and a picture
+    assess RIG      a rig that exists, its hardware where it has any, with other holes or against another brief
     target BRIEF    what the brief asks for, in words and in a picture, before anything is designed
     schema          the JSON Schema of the brief
 

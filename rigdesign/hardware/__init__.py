@@ -11,7 +11,8 @@ How:
 - Strength rules (rules) and what there is to choose from (catalogue): pure functions and tables with sources.
 - Sizes (sizing): links (links), levers (levers), plates (plates), pins and what lies on them (joints), jacks and cells
   (stacks); in rounds with heights (levels) and weights (weighing) until nothing changes (build).
-- Own weight that breaks a band (owning) is balanced by counterweights (balance).
+- What own weight does to the bands, and the jack forces that members are sized for (owning); where it breaks a band,
+  counterweights (balance).
 - Part marks (marking); the cut list (cutting).
 - The hardware of a rig that is kept (keeping): its steel, with pivots drilled anew.
 
