@@ -63,7 +63,7 @@ def test_a_design_of_many_pads(n_pads):
     answer = arrange(brief)
     seconds = time.perf_counter() - start
     words = answer.text if isinstance(answer, Refusal) else f"band use {answer.band_use:.4f}"
-    print(f"\n{n_pads} pads designed and checked: {seconds:.2f} s ({words})")
+    print(f"\n{n_pads} pads arranged and checked: {seconds:.2f} s ({words})")
 
 
 @pytest.mark.parametrize(("n_points", "n_pads"), [(40, 12), (80, 24)])
