@@ -27,7 +27,7 @@ WORK = f"{PATHS}; from test_bench_hardware import measure; measure(int(sys.argv[
 
 
 def brief_of(count: int):
-    """A cantilever with a linear load and so many free pads."""
+    """A cantilever with an elliptical load and so many free pads."""
     span = SPACING * count
     return make_brief(
         specimen=make_specimen(left=0.0, right=span),

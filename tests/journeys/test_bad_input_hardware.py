@@ -193,8 +193,8 @@ def test_links_that_cannot_push(rigdesign, here, links):
 def test_links_between_profiles_in_hollow_sections(rigdesign, here, links):
     (here / "fin.toml").write_text(SMALL + f'[hardware]\nlinks = "{links}"\nbuild = ["twin flats", "hollow section"]\n')
     assert refused(rigdesign, here) == expected(
-        f"fin.toml, line {FIRST}, [hardware] links: links of {links} lie between two profiles, and a hollow section has "
-        f'none: "{links}"; write links = "rod", or build = "twin flats" or "twin channels"'
+        f"fin.toml, line {FIRST}, [hardware] links: links of {links} lie between two profiles, and a hollow section "
+        f'has none: "{links}"; write links = "rod", or build = "twin flats" or "twin channels"'
     )
 
 
