@@ -18,6 +18,7 @@ from dataclasses import dataclass
 from math import ceil
 
 from rigdesign.hardware.model import Material
+from rigdesign.hardware.rules.common import BEARING
 from rigdesign.hardware.rules.model import PinState, PlateHole, Result, RuleSet
 
 EYE = 1.25
@@ -90,17 +91,26 @@ class Strap:
     thickness: float
 
 
+def strap_end(width: float, hole: float) -> float:
+    """From a hole's centre to where a strap is cut square [m]: half its width, or as far as an eye would reach.
+
+    >>> strap_end(0.04, 0.0125), strap_end(0.03, 0.0145)
+    (0.02, 0.019)
+    """
+    return max(width / 2, eye_radius(hole))
+
+
 def strap_hole(strap: Strap, pin: float, hole: float, shop: Shop) -> PlateHole:
-    """A pin through the end of a strap, which is cut square half its width beyond the hole."""
-    clear = strap.width / 2 - hole / 2
-    return PlateHole(
-        strap.load, 1, strap.thickness, shop.steel, pin, hole, clear, clear, strap.width / 2, round_edge=False
-    )
+    """A pin through the end of a strap."""
+    radius = strap_end(strap.width, hole)
+    side, beyond = (strap.width - hole) / 2, radius - hole / 2
+    return PlateHole(strap.load, 1, strap.thickness, shop.steel, pin, hole, side, beyond, radius, round_edge=False)
 
 
-def straps_pass(straps: Iterable[Strap], pin: float, hole: float, shop: Shop) -> bool:
-    """Whether all straps pass with a pin."""
-    return all(passes(shop.rules.hole(strap_hole(strap, pin, hole, shop))) for strap in straps)
+def strap_bearing(straps: Iterable[Strap], pin: float, hole: float, shop: Shop) -> list[Result]:
+    """How a pin bears on straps, which asks for large pins; what asks for small ones is the strap's to choose by."""
+    results = [result for strap in straps for result in shop.rules.hole(strap_hole(strap, pin, hole, shop))]
+    return [result for result in results if result.check == BEARING]
 
 
 def thinnest(load: float, count: int, pin: float, hole: float, shop: Shop) -> float | None:
@@ -156,11 +166,13 @@ def soft_between(
 ) -> Joint | None:
     """Joint of a pin with a strap or webbing of thickness `inner` between two outer parts, None where the pin fails.
 
-    Where another pin of the lever carries a wider one, `widest`, washers keep this one in the middle.  The `straps` on
-    the pin, or the eye of a rod in such a lever, must pass as well.
+    Where another pin of the lever carries a wider one, `widest`, washers keep this one in the middle.  The pin must
+    bear on the `straps`, and the eye of a rod in such a lever must pass.
     """
     hole = pin + shop.play
-    if not straps_pass(straps, pin, hole, shop):
+    if is_eye and inner > THICKEST * pin:
+        return None
+    if not passes(strap_bearing(straps, pin, hole, shop)):
         return None
     joint = Joint(pin, hole, inner, outer, SIDE_PLAY + (widest - inner) / 2, eye_radius(hole))
     if is_eye and not passes(shop.rules.hole(eye_state(load, 1, inner, pin, hole, shop.steel))):
@@ -183,8 +195,8 @@ def eye_in_lugs(
 ) -> tuple[Joint, float]:
     """Smallest joint of an eye between two lugs, both sized, and its utilisation.
 
-    `inner` is the thickness of a strap or webbing in place of the eye; the `straps` must pass as well.  Where no pin of
-    the series does, the joint of least utilisation.
+    `inner` is the thickness of a strap or webbing in place of the eye; the pin must bear on the `straps` as well.
+    Where no pin of the series does, the joint of least utilisation.
     """
     best: tuple[Joint, float] | None = None
     for pin in shop.pins:
@@ -196,8 +208,7 @@ def eye_in_lugs(
         results += shop.rules.hole(eye_state(load, 2, joint.outer, pin, hole, shop.steel))
         if inner is None:
             results += shop.rules.hole(eye_state(load, 1, joint.inner, pin, hole, shop.steel))
-        for strap in straps:
-            results += shop.rules.hole(strap_hole(strap, pin, hole, shop))
+        results += strap_bearing(straps, pin, hole, shop)
         use = worst(results).utilisation
         if sized and use <= 1.0:
             return joint, use

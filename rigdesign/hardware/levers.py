@@ -64,9 +64,9 @@ SIDE_PLATE = 2.5
 class LeverTask:
     """What a lever must bear: arms [m] to A and B, loads [N] on its pins, how it is built, and what lies on its pins.
 
-    `inner` holds the thickness of what lies on each pin where that is given, else it is empty: straps or webbing, and
-    at the holes of `eyes` the eye of a rod.  Of levers made alike it is the thinnest, and `widest` the widest on any
-    pin of theirs (0: that of `inner`).  `straps` are those on each pin.
+    `inner` holds the thickness of what lies on each pin where that is given, straps or webbing, else it is empty; at
+    the holes of `eyes` there is the eye of a rod even so.  Of levers made alike it is the thinnest, and `widest` the
+    widest on any pin of theirs (0: that of `inner`).  `straps` are those on each pin.
     """
 
     a: float
@@ -78,6 +78,11 @@ class LeverTask:
     eyes: frozenset[HoleName] = frozenset()
     widest: float = 0.0
     straps: Mapping[HoleName, tuple[Strap, ...]] = field(default_factory=dict)
+
+    @property
+    def has_eyes(self) -> bool:
+        """Whether eyes whose thickness is chosen lie between its profiles."""
+        return self.build != "hollow section" and (not self.inner or bool(self.eyes))
 
 
 @dataclass(frozen=True)
@@ -175,12 +180,18 @@ def hole_state(task: LeverTask, section: Section, hole: HoleName, joint: Joint, 
 
 def size_lever(task: LeverTask, stock: tuple[Section, ...], shop: Shop) -> SizedLever:
     """Return the lightest lever that passes; where none does, the one that comes closest, with the check that fails."""
-    for section in promising(task, stock, shop):
+    for section in promising(task, stock, shop) if _may_have_room(task, shop) else ():
         for side in _side_plates(task, shop):
             sized = _sized(task, section, side, shop)
             if sized is not None:
                 return sized
     return _closest(task, stock, shop)
+
+
+def _may_have_room(task: LeverTask, shop: Shop) -> bool:
+    """Whether eyes on the smallest pins keep clear of each other: arms too short for them fail with any section."""
+    least = eye_radius(shop.pins[0] + shop.play)
+    return min(task.a, task.b) >= 2 * least + BESIDE
 
 
 def promising(task: LeverTask, stock: Iterable[Section], shop: Shop) -> Iterator[Section]:
@@ -204,7 +215,7 @@ def _sized(task: LeverTask, section: Section, side: float, shop: Shop) -> SizedL
     """
     best: SizedLever | None = None
     least = inf
-    for eye in (0.0,) if task.build == "hollow section" or task.inner else shop.plates:
+    for eye in shop.plates if task.has_eyes else (0.0,):
         joints = _smallest_joints(task, section, side, eye, shop)
         if joints is None:
             continue
@@ -249,8 +260,8 @@ def _joint(
     if task.build == "hollow section":
         return fork_outside(load, pin, section.width + 2 * side, 2 * (section.web + side), shop)
     if task.inner:
-        widest, straps = max(task.widest, *task.inner.values()), task.straps.get(hole, ())
-        inner, is_eye = task.inner[hole], hole in task.eyes
+        is_eye, straps = hole in task.eyes, task.straps.get(hole, ())
+        inner, widest = eye if is_eye else task.inner[hole], max(task.widest, eye, *task.inner.values())
         return soft_between(load, pin, section.web, inner, widest, shop, is_eye=is_eye, straps=straps)
     return eye_between(load, pin, section.web, eye, shop)
 
@@ -321,14 +332,15 @@ def _rough_joints(
 ) -> Iterator[tuple[Joint, list[Result]]]:
     """Joints of one pin that may fail, with all their checks."""
     load, diameter = task.loads[hole], pin + shop.play
-    for plate in shop.plates[::2] if not task.inner else shop.plates[:1]:
+    given = hole in task.inner
+    for plate in shop.plates[:1] if given else shop.plates[::2]:
         hollow = task.build == "hollow section"
         inner = section.width + 2 * side if hollow else task.inner.get(hole, plate)
         joint = Joint(pin, diameter, inner, plate if hollow else section.web, SIDE_PLAY, eye_radius(diameter))
         bearing = 2 * (section.web + side) if hollow else None
         results = [*shop.rules.pin(pin_state(load, joint, shop, bearing))]
         results += shop.rules.hole(hole_state(task, section, hole, joint, side, shop))
-        if not task.inner:
+        if not given:
             results += shop.rules.hole(eye_state(load, 2 if hollow else 1, plate, pin, diameter, shop.steel))
         yield joint, results
 

@@ -11,7 +11,7 @@ from rigdesign.brief.model import Brief
 from rigdesign.brief.model_hardware import Surface
 from rigdesign.hardware import levers, weighing
 from rigdesign.hardware.catalogue import material, threads, webbings
-from rigdesign.hardware.joints import Joint, pin_length
+from rigdesign.hardware.joints import Joint, pin_length, strap_end
 from rigdesign.hardware.levels import Block, Shape
 from rigdesign.hardware.links import ADJUST, ROD_GRADE, SHANK, STUD, TURNBUCKLE, LinkSize, screw_for
 from rigdesign.hardware.model import Body, End, Fitting, Link, LinkKind, Mass, PadBody
@@ -116,8 +116,8 @@ def fitting_need(bench: Bench, sizes: Sizes, link: LinkPlace, load: float) -> fl
 
 
 def end_radius(size: LinkSize, joint: Joint) -> float:
-    """From a hole's centre to the end of what a link has there [m]: a strap is cut half its width beyond."""
-    return size.width / 2 if size.kind == "strap" else joint.radius
+    """From a hole's centre to the end of what a link has there [m]: a strap may reach further than an eye."""
+    return strap_end(size.width, joint.hole) if size.kind == "strap" else joint.radius
 
 
 def lug_reach(sizes: Sizes, pads: tuple[PadBody, ...], wiring: Wired) -> dict[str, float]:

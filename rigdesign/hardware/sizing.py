@@ -244,22 +244,16 @@ def _soft_task(
     loads: Mapping[str, float],
     sized: Mapping[str, links.LinkSize],
 ) -> levers.LeverTask:
-    """The task of levers made alike with what lies on their pins: straps or webbing, and maybe the eye of a rod."""
+    """The task of levers made alike with straps or webbing on their pins, and maybe a rod on one."""
     soft = [hole for hole in levers.HOLES if bench.kind_of(through[0][hole]) != "rod"]
     eyes = frozenset(levers.HOLES) - frozenset(soft)
     lying = {hole: [inner_of(sized[own[hole].name]) or 0.0 for own in through] for hole in soft}
-    lying |= {hole: [_eye_for(max(sized[own[hole].name].width for own in through), bench.shop)] for hole in eyes}
     straps = {
         hole: tuple(strap for own in through for strap in straps_of(sized[own[hole].name], loads[own[hole].name]))
         for hole in soft
     }
     inner = {hole: min(found) for hole, found in lying.items()}
-    return replace(task, inner=inner, eyes=eyes, widest=max(max(found) for found in lying.values()), straps=straps)
-
-
-def _eye_for(rod: float, shop: Shop) -> float:
-    """Thickness of a rod's eye in a lever whose other pins carry straps or webbing: as thick as the rod [m]."""
-    return next((plate for plate in shop.plates if plate >= rod), shop.plates[-1])
+    return replace(task, inner=inner, eyes=eyes, widest=max(map(max, lying.values())), straps=straps)
 
 
 def _links_of(wiring: Wired, piece: Piece) -> dict[HoleName, LinkPlace]:
