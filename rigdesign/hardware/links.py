@@ -10,7 +10,7 @@ from dataclasses import dataclass
 from math import inf, pi
 
 from rigdesign.hardware.catalogue import Thread, Webbing
-from rigdesign.hardware.model import LinkKind, Material, Section
+from rigdesign.hardware.model import LinkKind, Material
 from rigdesign.hardware.rules.model import RodState, RuleSet, WebbingState
 
 ROD_GRADE = "8.8"
@@ -83,11 +83,6 @@ def screw_for(load: float, threads: tuple[Thread, ...], material: Material, rule
         if all(result.utilisation <= 1.0 for result in rules.rod(rod_state(load, thread, material, 0.0, False))):
             return thread
     return threads[-1]
-
-
-def strap_area(section: Section, hole: float) -> float:
-    """Net area of a strap beside a hole [m²]."""
-    return section.area - section.width * hole
 
 
 def round_area(diameter: float) -> float:

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, replace
+from functools import partial
 from math import hypot
 
 import numpy as np
@@ -16,7 +17,7 @@ from rigdesign.brief.model_hardware import Build, HardwareRules
 from rigdesign.hardware import levers, links, plates
 from rigdesign.hardware.catalogue import material, sections, threads, webbings, with_density
 from rigdesign.hardware.joints import Joint, Shop, Strap, eye_in_lugs, eye_on, strap_hole
-from rigdesign.hardware.model import JackStack, LinkKind, Section, Shortfall
+from rigdesign.hardware.model import JackStack, LinkKind, Machine, Section, Shortfall
 from rigdesign.hardware.owning import Bands, bands_of
 from rigdesign.hardware.rules import rule_set
 from rigdesign.hardware.rules.model import StrapState
@@ -129,11 +130,18 @@ def size_all(
             found |= _lever_group(bench, pieces, loads, sized, joints, short)
     stacks = {}
     for tree, force in zip(bench.wiring.rig.trees, jacks, strict=True):
-        stacks[tree.jack.name], lacking = stack_for(tree.jack.name, abs(force), bench.rules)
+        top = bench.wiring.above[tree.jack.carries]
+        holds = partial(_holds, bench, loads[top.name], inner_of(sized[top.name]))
+        stacks[tree.jack.name], lacking = stack_for(tree.jack.name, abs(force), bench.rules, holds)
         short += lacking
     for link in bench.wiring.links:
         _outer_joints(bench, link, loads[link.name], sized[link.name], stacks, joints, short)
     return Sizes(sized, straps, found, flat, joints, stacks, tuple(short))
+
+
+def _holds(bench: Bench, load: float, inner: float | None, cell: Machine) -> bool:
+    """Whether a link of this load [N] holds on a cell's pin."""
+    return eye_on(load, cell.pin, bench.shop, inner)[1] <= 1.0
 
 
 _LINK_REMEDY = {
