@@ -8,8 +8,8 @@
         rigdesign.write(answer, "brief_rig")
 
 `arrange` stops at pads and levers, and its `Check` is the `check` of a `HardwareCheck`.  The other words are those of
-the command: `build_target`, `study`, `assess` (of pads and levers), `write`, `read_rig`.  Importing this package loads
-nothing heavy; each name is fetched from its stage when it is first used.
+the command: `build_target`, `study`, `assess`, `write`, `read_rig`, `read_rig_with_hardware`.  Importing this package
+loads nothing heavy; each name is fetched from its stage when it is first used.
 """
 
 from __future__ import annotations
@@ -24,7 +24,7 @@ if TYPE_CHECKING:
     from rigdesign.checks.model import Check
     from rigdesign.errors import BriefError, InputError, OutputError, RigdesignError, TableError
     from rigdesign.findings import Finding, Refusal
-    from rigdesign.report.writing import read_rig, write
+    from rigdesign.report.writing import read_rig, read_rig_with_hardware, write
     from rigdesign.target import build_target
 
 __version__ = "0.1.0"
@@ -47,6 +47,7 @@ __all__ = [
     "design",
     "read_brief",
     "read_rig",
+    "read_rig_with_hardware",
     "study",
     "write",
 ]
@@ -61,6 +62,7 @@ _HOME = {
     "Study": "rigdesign.chain",
     "write": "rigdesign.report.writing",
     "read_rig": "rigdesign.report.writing",
+    "read_rig_with_hardware": "rigdesign.report.writing",
     "Check": "rigdesign.checks.model",
     "HardwareCheck": "rigdesign.checks.hardware.model",
     "Finding": "rigdesign.findings",

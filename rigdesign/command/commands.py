@@ -215,9 +215,9 @@ def assess(
     us: bool,
 ) -> int:
     """Check RIG (a rig folder or its rig.json) again: as it is, with other holes, or against another brief."""
+    from rigdesign import chain
     from rigdesign.brief import read_brief
     from rigdesign.checks.model import Check
-    from rigdesign.command.assessing import assessed
     from rigdesign.report.folder import require_free
     from rigdesign.report.writing import read_rig_with_hardware
 
@@ -225,7 +225,11 @@ def assess(
     other = read_brief(brief) if brief is not None else None
     if out is not None:
         require_free(out, replace)
-    answer = assessed(known, hardware, holes, other)
+    answer: HardwareCheck | Check
+    if hardware is None:
+        answer = chain.assess(known, holes, other)
+    else:
+        answer = chain.assess(known, holes, other, hardware=hardware)
     check = answer if isinstance(answer, Check) else answer.check
     terminal = None if as_json else _echoed(check.rig.plan.target, _system(us))
     return _finish(session, answer, terminal, _Wanted(out, replace, not no_figures, png, _system(us)))

@@ -8,6 +8,7 @@ from factories import make_acceptance, make_brief, make_levers, make_pads, shape
 
 from rigdesign import chain
 from rigdesign.chain import arranging
+from rigdesign.checks.hardware.model import HardwareCheck
 from rigdesign.checks.model import Check
 from rigdesign.errors import BriefError
 from rigdesign.findings import Refusal
@@ -152,3 +153,16 @@ def test_fewest_that_levers_cannot_join_gives_the_most_that_they_can():
     assert "the bands ask for" in finding.text
     assert "shortest_arm" in finding.limit
     assert finding.value == f"{answer.rig.plan.n_pads} pads"
+
+
+def test_a_rig_is_assessed_with_its_hardware():
+    answer = chain.design(make_brief(pads=make_pads(count=3)))
+    assert isinstance(answer, HardwareCheck)
+    again = chain.assess(answer.check.rig, hardware=answer.hardware)
+    assert again.strength == answer.strength
+    assert again.tare.pad_tare == pytest.approx(answer.tare.pad_tare)
+    heavier = chain.assess(
+        answer.check.rig, brief=make_brief(loads=(shape_load("elliptical", 8100.0),)), hardware=answer.hardware
+    )
+    assert heavier.utilisation > answer.utilisation
+    assert chain.assess(answer.check.rig).rig == answer.check.rig
