@@ -49,8 +49,3 @@ class Kept:
     fewest_new: int
     fewest_moved: int
     words: str
-
-    @property
-    def new_pieces(self) -> tuple[str, ...]:
-        """Pieces that have to be made new, because old and new pivot would come too near one another."""
-        return tuple(pivot.piece for pivot in self.moved if not pivot.keeps_distance)
