@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 
 from rigdesign.brief.context import Context
-from rigdesign.brief.hardware_tables import cells, jacks, loaded_surface, stock
+from rigdesign.brief.hardware_tables import LONGEST_BAR, cells, jacks, loaded_surface, stock
 from rigdesign.brief.layout_hardware import HardwareTable
 from rigdesign.brief.model import PadRules, Specimen
 from rigdesign.brief.model_hardware import HardwareRules
@@ -99,6 +99,8 @@ def _check_sizes(table: HardwareTable, context: Context) -> None:
     if not table.play < table.pins[0]:
         limit = f"less than the smallest pin, {show(table.pins[0], 'length')}"
         raise context.error("the play is too large", "hardware", "play", limit=limit)
+    if table.bar > LONGEST_BAR:
+        raise context.error("the bar is too long", "hardware", "bar", limit=f"up to {show(LONGEST_BAR, 'length')}")
     if not table.kerf < table.bar:
         limit = f"less than the bar, {show(table.bar, 'length')}"
         raise context.error("the kerf is too large", "hardware", "kerf", limit=limit)

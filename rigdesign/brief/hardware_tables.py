@@ -35,6 +35,10 @@ MOST_ROWS = 1000
 """No stock, and no list of jacks or load cells, is longer than this; every row is tried for every member."""
 
 LONGEST_NAME = 40
+
+LONGEST_BAR = 100.0
+"""No bar is longer [m]: longer ones are a slip of unit, and none can be carried."""
+
 _FORMULA_SIGNS = ("=", "+", "-", "−", "@")
 _STOCK = {"section": "name", "kind": "name", "depth": "length", "width": "length"}
 _MACHINE = {"force": "force", "length": "length", "mass": "mass", "pin": "length"}
@@ -55,6 +59,9 @@ def stock(name: str, builds: tuple[Build, ...], kerf: float, context: Context) -
         if profile.bar is not None and not kerf < profile.bar:
             limit = f"more than the kerf, {show(kerf, 'length')}"
             raise _row_error(rows, row, "bar", "the bar is too short", limit=limit)
+        if profile.bar is not None and profile.bar > LONGEST_BAR:
+            limit = f"up to {show(LONGEST_BAR, 'length')}"
+            raise _row_error(rows, row, "bar", "the bar is too long", limit=limit)
     held = {profile.kind for profile in profiles}
     for build in builds:
         if KIND_OF[build] not in held:
