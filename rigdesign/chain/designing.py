@@ -15,6 +15,7 @@ if TYPE_CHECKING:
     from rigdesign.brief.model import Brief
     from rigdesign.checks.hardware.model import HardwareCheck
     from rigdesign.checks.model import Check
+    from rigdesign.hardware.model import Hardware
     from rigdesign.target.model import Target
 
 RIG_PART = 0.8  # of a whole design, as progress shows it; hardware is the rest
@@ -48,12 +49,34 @@ def design_target(target: Target, progress: Progress | None = None) -> HardwareC
     return _equipped(arranged, share(progress, RIG_PART, 1.0))
 
 
-def _equipped(arranged: Check, progress: Progress | None) -> HardwareCheck:
-    """A checked rig with its hardware, checked."""
+def _equipped(arranged: Check, progress: Progress | None) -> HardwareCheck | Refusal:
+    """A checked rig with its hardware, checked; refused where holes leave nothing of a lever that could be drawn."""
     from rigdesign.checks.hardware import check_hardware
     from rigdesign.hardware import build_hardware
 
-    return check_hardware(arranged, build_hardware(arranged.rig, progress))
+    hardware = build_hardware(arranged.rig, progress)
+    return _without_steel(hardware) or check_hardware(arranged, hardware)
+
+
+def _without_steel(hardware: Hardware) -> Refusal | None:
+    """The refusal where a lever's holes are wider than it is deep, or weigh more than its steel."""
+    for piece in hardware.pieces:
+        section = hardware.bodies[piece.name].section
+        hole = max(hardware.end_at(piece.name, each.name).hole for each in piece.holes)
+        if hardware.masses[piece.name].mass > 0 and (piece.kind == "plate" or hole < section.depth):
+            continue
+        smallest, size, depth = (
+            show(length, "length", unit="mm")
+            for length in (hardware.rig.plan.target.brief.hardware.pins[0], hole, section.depth)
+        )
+        return Refusal(
+            "strength",
+            f"the holes leave no steel of {piece.name}",
+            f"smallest pin {smallest}",
+            f"a hole of {size} in {section.name}, {depth} deep",
+            "smaller [hardware] pins, deeper profiles in the stock, or longer arms ([levers] shortest_arm)",
+        )
+    return None
 
 
 def _with_few_marks(arranged: Check) -> Check:

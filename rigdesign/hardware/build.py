@@ -55,8 +55,10 @@ TYPICAL_OVERHANG = 0.03
 """Steel beyond an end hole, as the grouping weighs it [m]."""
 
 
-def stock_line(brief: Brief) -> StockLine:
+def stock_line(brief: Brief) -> StockLine | None:
     """Return what levers of a brief's stock weigh for a bending moment at the brief's load, for the grouping.
+
+    None where nothing in the stock bears any: then the grouping has only its own estimate.
 
     They are of the build of the lowest tiers, with arms of `TYPICAL_ARM`; pins and deflection are not looked at.
     """
@@ -69,6 +71,8 @@ def stock_line(brief: Brief) -> StockLine:
         if moment > moments[-1]:
             moments.append(moment)
             masses.append((1 if build == "hollow section" else 2) * section.mass)
+    if len(moments) == 1:
+        return None
     plates = sections(rules, "plate", shop.steel.density)
     # a plate of thickness t and width w bears M = stress · w t²/6, with the stress that the rules leave a typical one
     typical = plates[len(plates) // 2].depth

@@ -98,7 +98,9 @@ def _advance(sign: str, bold: bool) -> float:
     """How far a sign goes along its line, over the size of the font."""
     font = _font(bold)
     font.set_size(100.0, 72.0)
-    return float(font.load_char(ord(sign), flags=LoadFlags.NO_HINTING).linearHoriAdvance) / 65536.0 / 100.0
+    # a sign that the font lacks is drawn as its glyph 0, an empty box
+    glyph = font.load_glyph(font.get_char_index(ord(sign)), flags=LoadFlags.NO_HINTING)
+    return float(glyph.linearHoriAdvance) / 65536.0 / 100.0
 
 
 @lru_cache(maxsize=4096)
