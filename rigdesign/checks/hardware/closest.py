@@ -108,25 +108,29 @@ class _Search:
         """Find the distances of a lot of pairs of members, as far as they matter."""
         for pairs in self._in_lots(first, second):
             one, two = first[pairs], second[pairs]
-            pair, a, b = self._rows(one, two)
-            boxes, shifts = self._movement(one[pair], two[pair], a)
-            bound = _bounds(self.items.low[a], self.items.high[a], self.items.low[b], self.items.high[b], shifts, boxes)
             best = np.full(one.size, np.inf)
-            # the likeliest rows of each pair first: what they give spares most of the others
-            order = np.lexsort((bound, pair))
-            rank = np.arange(order.size) - np.searchsorted(pair[order], pair[order])
-            for start, stop in ((0, 1), (1, 8), (8, order.size)):
-                rows = order[(rank >= start) & (rank < stop)]
-                rows = rows[bound[rows] <= np.minimum(best[pair[rows]], self.worst)]
-                if rows.size:
-                    limit = np.minimum(best[pair[rows]], self.worst)
-                    corners = self.items.corners
-                    moved = boxes[rows] + shifts[rows, None, :]
-                    result = distances(corners[a[rows]], corners[b[rows]], moved, limit)
-                    np.minimum.at(best, pair[rows], np.where(result <= limit, result, np.inf))
+            for pair, a, b in self._rows(one, two):
+                self._improve(best, (one, two), pair, a, b)
             known = np.flatnonzero(np.isfinite(best))
             self.found += [(round(float(best[i]), DIGITS), int(one[i]), int(two[i])) for i in known]
             self.found = sorted(self.found)[: self.count]
+
+    def _improve(self, best: Floats, members: tuple[Whole, Whole], pair: Whole, a: Whole, b: Whole) -> None:
+        """Lower the distance `best` of each pair of members, in place, to those of its solids a and b."""
+        boxes, shifts = self._movement(members[0][pair], members[1][pair], a)
+        bound = _bounds(self.items.low[a], self.items.high[a], self.items.low[b], self.items.high[b], shifts, boxes)
+        # the likeliest rows of each pair first: what they give spares most of the others
+        order = np.lexsort((bound, pair))
+        rank = np.arange(order.size) - np.searchsorted(pair[order], pair[order])
+        for start, stop in ((0, 1), (1, 8), (8, order.size)):
+            rows = order[(rank >= start) & (rank < stop)]
+            rows = rows[bound[rows] <= np.minimum(best[pair[rows]], self.worst)]
+            if rows.size:
+                limit = np.minimum(best[pair[rows]], self.worst)
+                corners = self.items.corners
+                moved = boxes[rows] + shifts[rows, None, :]
+                result = distances(corners[a[rows]], corners[b[rows]], moved, limit)
+                np.minimum.at(best, pair[rows], np.where(result <= limit, result, np.inf))
 
     def _in_lots(self, first: Whole, second: Whole) -> Iterator[slice]:
         """Slices of the pairs, each of at most so many pairs of solids that it fits into memory."""
@@ -139,14 +143,19 @@ class _Search:
             yield slice(start, stop)
             start = stop
 
-    def _rows(self, first: Whole, second: Whole) -> tuple[Whole, Whole, Whole]:
-        """Every solid in every state of the one against every one of the other: which pair, and the two items."""
+    def _rows(self, first: Whole, second: Whole) -> Iterator[tuple[Whole, Whole, Whole]]:
+        """Every solid in every state of the one against every one of the other: which pair, and the two items.
+
+        In parts that fit into memory: long levers have thousands of solids.
+        """
         size = np.diff(self.items.start)
-        count = size[first] * size[second]
-        pair = np.repeat(np.arange(first.size), count)
-        inside = np.arange(pair.size) - np.repeat(np.cumsum(count) - count, count)
-        wide = size[second][pair]
-        return pair, self.items.start[first][pair] + inside // wide, self.items.start[second][pair] + inside % wide
+        ends = np.cumsum(size[first] * size[second])
+        for start in range(0, int(ends[-1]), MOST_ROWS):
+            row = np.arange(start, min(start + MOST_ROWS, int(ends[-1])))
+            pair = np.searchsorted(ends, row, side="right")
+            wide = size[second][pair]
+            inside = row - (ends[pair] - size[first][pair] * wide)
+            yield pair, self.items.start[first][pair] + inside // wide, self.items.start[second][pair] + inside % wide
 
     def _movement(self, first: Whole, second: Whole, item: Whole) -> tuple[Floats, Floats]:
         """Of each row the box (m, 2, 3) that stays open, and the shift (m, 3) from the one's place to the other's."""

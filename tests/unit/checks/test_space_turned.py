@@ -14,6 +14,7 @@ from hand_rigs import make_rig
 from scipy.optimize import nnls
 from scipy.spatial.transform import Rotation
 
+from rigdesign.checks.hardware import closest
 from rigdesign.checks.hardware.closest import nearest
 from rigdesign.checks.hardware.solids import members
 
@@ -211,3 +212,11 @@ def test_no_two_that_are_pinned_together_and_no_two_pads_are_listed():
         assert found[frozenset((weight, below))] == pytest.approx(
             found_by_program(hardware, 0.0)[frozenset((weight, below))]
         )
+
+
+def test_pairs_of_many_solids_are_worked_out_in_parts(monkeypatch):
+    rig = make_rig([0.3, 0.7, 1.0, 1.5, 1.9], [300, 500, 700, 400, 600], make_brief(), (1, ((2, 3), (4, 5))))
+    listed = members(make_hardware_for(rig))
+    whole = nearest(listed, math.radians(5.0), 6)
+    monkeypatch.setattr(closest, "MOST_ROWS", 7)
+    assert nearest(listed, math.radians(5.0), 6) == whole

@@ -107,3 +107,11 @@ def test_lugs_and_a_cells_pin():
     on_cell, use = eye_on(4000.0, 0.016, shop)
     assert (on_cell.pin, use <= 1.0) == (0.016, True)
     assert eye_on(4e6, 0.016, shop)[1] > 1.0
+
+
+def test_arms_too_short_for_two_eyes_are_not_looked_for_in_every_section(monkeypatch):
+    hardware = make_hardware()
+    tried = []
+    monkeypatch.setattr(levers, "_sized", lambda *arguments: tried.append(arguments))
+    found = size_lever(task(a=0.019, b=0.3), stock("twin flats", hardware), make_shop(hardware))
+    assert (found.failure.check, tried) == ("room between pins", [])
