@@ -78,7 +78,7 @@ def _parent(folder: Path) -> Path:
 def _require_ours(folder: Path) -> None:
     """Only a folder that was written here is replaced, and only if nothing else was put into it."""
     try:
-        names = {path.name for path in folder.iterdir()}
+        names = _named(folder)
         inside = _names_in(folder / CUTTING_FILES)
     except OSError as error:
         raise OutputError(f"{folder}: this folder cannot be read: {error.strerror}") from error
@@ -88,7 +88,7 @@ def _require_ours(folder: Path) -> None:
             "is not replaced; name another"
         )
     names = names - {CUTTING_FILES} | inside if inside is not None else names
-    strangers = sorted(name for name in names if not _is_ours(name))
+    strangers = sorted(name.rstrip("/") for name in names if not _is_ours(name))
     if strangers:
         more = f" and {len(strangers) - 1} more" if len(strangers) > 1 else ""
         raise OutputError(
@@ -97,14 +97,21 @@ def _require_ours(folder: Path) -> None:
         )
 
 
+def _named(folder: Path) -> set[str]:
+    """Names of what is in a folder; of a folder inside with a slash at its end, for no file written here is one."""
+    return {f"{path.name}/" if path.is_dir() and path.name != CUTTING_FILES else path.name for path in folder.iterdir()}
+
+
 def _names_in(folder: Path) -> set[str] | None:
     """Names of what is in a folder inside the rig folder, with its own before them; None where it is no folder."""
     if folder.is_symlink() or not folder.is_dir():
         return None
-    return {f"{folder.name}/{path.name}" for path in folder.iterdir()}
+    return {f"{folder.name}/{name}" for name in _named(folder)}
 
 
 def _is_ours(name: str) -> bool:
+    if name.endswith("/"):
+        return False
     path = PurePosixPath(name)
     if path.parent.name == CUTTING_FILES:
         return CUTTING_NAME.fullmatch(path.name) is not None

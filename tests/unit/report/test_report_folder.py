@@ -83,6 +83,16 @@ def test_a_rig_folder_with_something_of_the_users_is_not_replaced(tmp_path, name
     assert contents_names(tmp_path / "rig") == sorted([*FILES, name])
 
 
+@pytest.mark.parametrize("name", ["plan.svg", "dxf/L9.dxf"])
+def test_a_folder_of_the_users_is_not_taken_for_a_file_of_its_name(tmp_path, name):
+    write_folder(FILES, tmp_path / "rig")
+    (tmp_path / "rig" / name).mkdir(parents=True)
+    (tmp_path / "rig" / name / "mine.txt").write_text("mine")
+    with pytest.raises(OutputError, match=f"did not write: {name}; replacing would lose it"):
+        write_folder(OTHER, tmp_path / "rig", replace=True)
+    assert (tmp_path / "rig" / name / "mine.txt").read_text() == "mine"
+
+
 def contents_names(folder: Path) -> list[str]:
     return sorted(os.listdir(folder))
 
