@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from typing import TYPE_CHECKING
 
 from rigdesign.display import System, show
@@ -28,9 +29,14 @@ def made_table(result: HardwareCheck, system: System) -> tuple[list[str], list[l
         use = max((most.get(member, 0.0) for member in part.members), default=0.0)
         length = "" if part.length is None else show(part.length, "length", system)
         mass = "" if part.mass is None else show(part.mass, "mass", system)
-        rows.append([part.mark, str(part.quantity), part.section, part.material, length, mass, f"{100 * use:.0f} %",
+        rows.append([part.mark, str(part.quantity), part.section, part.material, length, mass, _percent(use),
                      _for(part)])  # fmt: skip
     return headings, rows
+
+
+def _percent(use: float) -> str:
+    """A utilisation as whole per cents; infinite where no size at all would do."""
+    return "infinite" if math.isinf(use) else f"{100 * use:.0f} %"
 
 
 def _for(part: PartRow) -> str:

@@ -100,3 +100,15 @@ def test_hardware_edited_by_hand_is_refused_by_what_is_wrong(design, rigdesign, 
     assert message in ended.err
     assert ended.err.count("\n") == 1
     assert files_under(tmp_path) == before
+
+
+def test_a_pivot_with_no_steel_beside_it_is_used_without_end(rigdesign, tmp_path, monkeypatch):
+    monkeypatch.chdir(tmp_path)
+    (tmp_path / "mite.toml").write_text(
+        '[specimen]\nsupport = "cantilever"\nroot = "0 m"\ntip = "20 mm"\n[[load]]\nshape = "elliptical"\n'
+        'total = "5.4 kN"\n[pads]\ncount = 2\nlength = "0.5 mm"\n[hardware]\npins = "12 mm"\n'
+    )
+    ended = rigdesign("design", "mite.toml", "--no-figures")
+    assert (ended.code, ended.err) == (1, "")
+    assert " infinite " in ended.out
+    assert "inf %" not in ended.out
