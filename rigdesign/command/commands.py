@@ -75,10 +75,20 @@ def design(
     folder = out if out is not None else Path(f"{brief.stem}_rig")
     target = build_target(read_brief(brief))
     require_free(folder, replace)
+    _require_not_kept(brief, folder, target)
     terminal = None if as_json else _echoed(target, system)
     with progress() as tell:
         answer = design_target(target, tell)
     return _finish(session, answer, terminal, _Wanted(folder, replace, not no_figures, png, system))
+
+
+def _require_not_kept(brief: Path, folder: Path, target: Target) -> None:
+    """The rig that is kept is not written over: its steel is cut."""
+    from rigdesign.errors import OutputError
+
+    keep = target.brief.keep
+    if keep is not None and (brief.parent / keep.folder).resolve() == folder.resolve():
+        raise OutputError(f"{folder}: this folder holds the rig that is kept; name another with --out")
 
 
 @dataclass(frozen=True)

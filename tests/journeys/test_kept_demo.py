@@ -5,11 +5,12 @@ from __future__ import annotations
 import csv
 import json
 import re
+import shutil
 import subprocess
 import sys
 
 import pytest
-from journey import ROOT
+from journey import ROOT, files_under
 
 from rigdesign.report.writing import read_rig
 
@@ -151,3 +152,15 @@ def test_the_drill_list_has_the_old_pivot_and_the_new_one(kept):
         lever = read_rig(folder).trees[0].pieces[0]
         from_a = lever.pivot.u - lever.ends[0].u
         assert float(row["from_datum_mm"]) / 1000 - datum == pytest.approx(from_a, abs=AS_WRITTEN)
+
+
+def test_the_kept_rig_is_not_written_over(rigdesign, here):
+    for path in SAIL.iterdir():
+        copy = here / path.name
+        shutil.copytree(path, copy) if path.is_dir() else shutil.copy(path, copy)
+    (here / "cut_rig" / "summary.json").write_text("{}")
+    before = files_under(here / "cut_rig")
+    ended = rigdesign("design", "new_gust.toml", "--out", "cut_rig", "--replace", "--no-figures")
+    assert (ended.code, ended.out) == (2, "")
+    assert "cut_rig: this folder holds the rig that is kept; name another with --out" in ended.err
+    assert files_under(here / "cut_rig") == before

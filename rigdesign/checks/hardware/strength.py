@@ -89,9 +89,11 @@ class _Members:
     def link_rows(self, link: Link) -> Iterator[StrengthRow]:
         """The link itself, and the pin and fitting at both ends."""
         load = float(self.load[link.number - 1])
+        pushed = self.hardware.side * float(self.lower[link.number - 1]) < 0
         if link.kind == "rod":
-            lower = float(self.lower[link.number - 1])
-            yield from _rows(link.name, load, self.rules.rod(states.rod(link, load, self.hardware.side * lower < 0)))
+            yield from _rows(link.name, load, self.rules.rod(states.rod(link, load, pushed)))
+        elif pushed:
+            yield _impossible(link.name, "compression", load, f"a link of {link.kind} cannot push")
         elif link.kind == "strap":
             yield from _rows(link.name, load, self.rules.strap(states.strap(link, load)))
         else:

@@ -43,11 +43,13 @@ def check_hardware(check: Check, hardware: Hardware) -> HardwareCheck:
     Raises
     ------
     InputError
-        Where the hardware is not that of the rig: members are missing, or links join what the rig does not join.
+        Where the hardware is not that of the rig: members are missing, links join what the rig does not join, or it
+        stands on the other side of the specimen.
     """
     rig = check.rig
     hung = hanging(rig)
     _require_same(hardware, hung)
+    _require_side(hardware)
     loads = own_weight(rig, hardware.masses)
     with_weight = weighed(sampled(check), hung, loads)
     peak, overshoot = rig.plan.target.brief.peak, rig.plan.target.brief.hardware.overshoot
@@ -69,6 +71,23 @@ def _earlier(check: Check) -> list[Finding]:
     """The check's findings; what is not checked is less now."""
     before, after = left_out(check), left_out(check, with_hardware=True)
     return [after if replace(finding, number=0) == before else finding for finding in check.findings]
+
+
+def _require_side(hardware: Hardware) -> None:
+    """The rig stands on the side of the specimen on which its brief wants it."""
+    rig = hardware.rig
+    action = rig.plan.target.brief.pads.action
+    wanted = (1 if action == "pull" else -1) * (1 if float(rig.jack_forces.sum()) >= 0 else -1)
+    if hardware.side != wanted:
+        sides = {1: "on the side of +z", -1: "on the side of −z"}
+        raise InputError(
+            "the hardware stands on the other side of the specimen than the brief asks for",
+            where="hardware",
+            value=sides[hardware.side],
+            limit=f"{sides[wanted]}, for a load along {'+z' if wanted * (1 if action == 'pull' else -1) > 0 else '−z'} "
+            f'with [pads] action = "{action}"',
+            remedy="give a brief with the action and the direction of load that the rig was made for",
+        )
 
 
 def _require_same(hardware: Hardware, hung: Hanging) -> None:

@@ -262,3 +262,19 @@ def test_hardware_of_another_rig_is_refused(change, words):
     hardware = make_hardware_for(rig)
     with pytest.raises(InputError, match=words):
         check_hardware(check(rig), replace(hardware, **change(hardware)))
+
+
+def test_hardware_on_the_other_side_of_the_specimen_is_refused():
+    rig = light_rig()
+    hardware = make_hardware_for(rig)
+    with pytest.raises(InputError, match="stands on the other side of the specimen"):
+        check_hardware(check(rig), replace(hardware, side=-hardware.side))
+
+
+@pytest.mark.parametrize("kind", ["strap", "webbing"])
+def test_what_cannot_push_fails_where_it_is_pushed(kind):
+    rig = make_rig([0.5, 1.1, 2.0], [1300.0, 900.0, 700.0], brief=make_brief(pads=make_pads(count=3, action="push")))
+    result = check_hardware(check(rig), make_hardware_for(rig, links=kind))
+    pushed = [row for row in result.strength if row.check == "compression"]
+    assert len(pushed) == 5
+    assert not result.accepted
