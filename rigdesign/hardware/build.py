@@ -30,6 +30,7 @@ from rigdesign.hardware.members import (
     links_of,
     lug_reach,
     masses_of,
+    off_surface,
     pad_bodies,
     shapes_of,
 )
@@ -121,7 +122,7 @@ def build_hardware(rig: Rig, progress: Progress | None = None) -> Hardware:
     groups = alike(rig) if rules.marks == "few" else tuple((name,) for name in wiring.pieces)
     bench = make_bench(wiring, groups)
     found, settled = _settle(bench, progress)
-    findings = []
+    findings = _beyond_surface(rig)
     without = with_weight = 0.0
     if rules.balance == "as needed":
         without, with_weight = bench.bands.use({}), bench.bands.use(found.masses)
@@ -266,3 +267,16 @@ def _unsettled() -> Finding:
         f"sizes and weights did not settle in {MOST_ROUNDS} rounds; those of the last round are kept, and some may be "
         "a size larger than needed, or a little too weak for the check",
     )
+
+
+def _beyond_surface(rig: Rig) -> list[Finding]:
+    off = off_surface(rig.plan.target.brief.hardware.surface, rig.pad_x, rig.pad_y)
+    if not off:
+        return []
+    text = "the table of the loaded surface does not reach so far; there the height of its nearest row is taken"
+    pads = ", ".join(str(pad) for pad in off[:6]) + (", …" if len(off) > 6 else "")
+    return [
+        Finding(
+            "space", "warning", f"pad {off[0]}", text, f"{counted(len(off), 'pad')}: {pads}", "", "rows for all pads"
+        )
+    ]

@@ -19,6 +19,7 @@ from rigdesign.hardware.sizing import Bench, Sizes, inner_of
 from rigdesign.hardware.wiring import LinkPlace, Place, Wired
 from rigdesign.levers.model import HoleName
 from rigdesign.target.curve import Floats
+from rigdesign.words import ROUNDING
 
 LEAST_ROD = 0.02
 """Free rod between two fittings [m], for a spanner; common practice."""
@@ -44,6 +45,19 @@ def surface_heights(surface: Surface | None, side: int, x: Floats, y: Floats) ->
     at = np.column_stack([x, y])
     inside = LinearNDInterpolator(points, surface.z)(at)
     return np.asarray(side * np.where(np.isnan(inside), NearestNDInterpolator(points, surface.z)(at), inside))
+
+
+def off_surface(surface: Surface | None, x: Floats, y: Floats) -> list[int]:
+    """Return the numbers of the places x, y (n,) [m], from 1, that lie beyond what the brief tells of the surface."""
+    if surface is None:
+        return []
+    if surface.y.size == 0:
+        beyond = (x < surface.x.min() - ROUNDING) | (x > surface.x.max() + ROUNDING)
+    else:
+        from shapely import MultiPoint, intersects_xy
+
+        beyond = ~intersects_xy(MultiPoint(np.column_stack([surface.x, surface.y])).convex_hull.buffer(ROUNDING), x, y)
+    return [int(pad) + 1 for pad in np.flatnonzero(beyond)]
 
 
 def pad_bodies(brief: Brief, side: int, x: Floats, y: Floats) -> tuple[PadBody, ...]:

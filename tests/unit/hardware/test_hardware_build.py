@@ -11,7 +11,7 @@ from hand_rigs import make_rig
 from rigdesign.brief.model_hardware import Surface
 from rigdesign.checks.hardware.space import space
 from rigdesign.hardware import build_hardware, stock_line
-from rigdesign.hardware.members import surface_heights
+from rigdesign.hardware.members import off_surface, surface_heights
 from rigdesign.hardware.owning import bands_of, pad_forces
 from rigdesign.hardware.sizing import make_shop
 from rigdesign.hardware.wiring import design_loads, side_of, wired
@@ -179,3 +179,12 @@ def test_same_rig_same_hardware():
     one, other = build_hardware(rig()), build_hardware(rig())
     assert [replace(link) for link in one.links] == list(other.links)
     assert dict(one.marks) == dict(other.marks)
+
+
+def test_pads_beyond_the_table_of_the_surface_are_named():
+    surface = Surface(array([0.4, 2.2]), array([0.0, 0.1]))
+    made = build_hardware(rig(hardware=make_hardware(surface=surface)))
+    told = [finding for finding in made.findings if "does not reach so far" in finding.text]
+    assert [(finding.object, finding.value) for finding in told] == [("pad 4", "1 pad: 4")]
+    in_plan = Surface(array([0, 1, 0, 1]), array([0, 1, 2, 3]), array([0, 0, 1, 1]))
+    assert off_surface(in_plan, array([0.5, 1.2, 1.0]), array([0.5, 0.5, 1.0])) == [2]
