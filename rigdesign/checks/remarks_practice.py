@@ -49,9 +49,9 @@ def pressures(check: Check) -> Floats | None:
 
 def _pad_forces(check: Check) -> Iterator[Finding]:
     brief = check.rig.plan.target.brief
-    rules = brief.pads
+    rules, top = brief.pads, check.rig.plan.target.pads_peak
     peak = f"at {percent(brief.peak)} of the brief's load, the peak of the test"
-    force = np.abs(check.statics.pad_force) * brief.peak
+    force = np.abs(check.statics.pad_force) * top
     if (force > rules.largest_force * (1 + FORCE_SLACK)).any():
         worst, others = worst_pad(force - rules.largest_force * (1 + FORCE_SLACK))
         yield failure(
@@ -71,12 +71,12 @@ def _pad_forces(check: Check) -> Iterator[Finding]:
             "fewer pads, or other places for them",
         )
     pressure = pressures(check)
-    if pressure is not None and (pressure * brief.peak > rules.largest_pressure * (1 + FORCE_SLACK)).any():
-        worst, others = worst_pad(pressure * brief.peak - rules.largest_pressure * (1 + FORCE_SLACK))
+    if pressure is not None and (pressure * top > rules.largest_pressure * (1 + FORCE_SLACK)).any():
+        worst, others = worst_pad(pressure * top - rules.largest_pressure * (1 + FORCE_SLACK))
         yield failure(
             f"pad {worst + 1}",
             f"the pressure under the pad is above largest_pressure, {peak}{others}",
-            show(float(pressure[worst] * brief.peak), "pressure"),
+            show(float(pressure[worst] * top), "pressure"),
             show(rules.largest_pressure, "pressure"),
             "larger or more pads",
         )

@@ -7,7 +7,7 @@ turnbuckle where they carry a pad, so that every branch has an adjuster.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from math import inf, pi
+from math import pi
 
 from rigdesign.hardware.catalogue import Thread, Webbing
 from rigdesign.hardware.model import LinkKind, Material
@@ -74,7 +74,7 @@ def webbing(load: float, sizes: tuple[Webbing, ...], material: Material, rules: 
         use = max(result.utilisation for result in rules.webbing(WebbingState(load, size.breaking)))
         if use <= 1.0:
             break
-    return LinkSize("webbing", size.name, size.width, size.thickness, inf, 0.0, material, use)
+    return LinkSize("webbing", size.name, size.width, size.thickness, size.width * size.thickness, 0.0, material, use)
 
 
 def screw_for(load: float, threads: tuple[Thread, ...], material: Material, rules: RuleSet) -> Thread:

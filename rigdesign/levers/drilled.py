@@ -6,7 +6,6 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from rigdesign.brief.model import Brief
 from rigdesign.findings import Refusal
 from rigdesign.levers.grouping import joined, millimetres
 from rigdesign.levers.hanging import Hung
@@ -15,6 +14,7 @@ from rigdesign.levers.wiring import Ints, Wiring
 from rigdesign.pads.limits import violations
 from rigdesign.pads.tube import Tube, Widths
 from rigdesign.target.curve import Floats
+from rigdesign.target.model import Target
 
 BROKEN = 1e6
 """Added to the band use of a rig that misses a pad limit: any rig that keeps them all is better."""
@@ -41,9 +41,9 @@ class Drilled:
     words: str
 
 
-def judged(brief: Brief, judge: Judge, pad_x: Floats, force: Floats) -> Floats:
+def judged(target: Target, judge: Judge, pad_x: Floats, force: Floats) -> Floats:
     """Band use of rigs with pads at `pad_x` (k, n_pads), far larger where pad limits are missed; (k,)."""
-    missed = violations(brief, pad_x, force)
+    missed = violations(target, pad_x, force)
     return judge.use(pad_x, force) + np.where(missed > 0, BROKEN * (1.0 + missed), 0.0)
 
 

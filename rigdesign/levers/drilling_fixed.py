@@ -126,7 +126,7 @@ def _value(plan: PadPlan, wiring: Wiring, tube: Tube, judge: Judge, start: Ints)
         kept = (rows > 0).all(axis=1) & (hung.b > 0).all(axis=1) & (np.abs(rows - start) <= REACH).all(axis=1)
         kept &= allowed(hung.a, hung.b, brief.levers).all(axis=1)
         if kept.any():
-            result[kept] = judged(brief, judge, hung.pad_x[kept], hung.pad_force[kept])
+            result[kept] = judged(plan.target, judge, hung.pad_x[kept], hung.pad_force[kept])
         return result
 
     return value

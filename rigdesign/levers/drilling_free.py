@@ -27,6 +27,7 @@ from rigdesign.pads.model import PadPlan
 from rigdesign.pads.outcome import Progress
 from rigdesign.pads.tube import Tube
 from rigdesign.target.curve import Floats
+from rigdesign.target.model import Target
 
 JUDGED = 8_000_000
 """Rigs times pads that a descent may judge."""
@@ -49,7 +50,7 @@ def drill_free(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | N
     start = found.steps.reshape(-1) if found is not None else _rounded(brief, levers.a, levers.b, step)
     if start is None:
         return _no_side(step)
-    value = _value(brief, wiring, tube, judge, start)
+    value = _value(plan.target, wiring, tube, judge, start)
     pairs = all_pairs(start.size) if start.size <= ALL_PAIRS else near_pairs(wiring, 2)
     moves = moves_of(start.size, pairs)
     most = max(1, JUDGED // (plan.n_pads * len(moves))) * len(moves)
@@ -62,9 +63,9 @@ def drill_free(plan: PadPlan, wiring: Wiring, tube: Tube, progress: Progress | N
     return Drilled(hung, descended.steps.reshape(-1, 2), use, _words(found, descended, aimed is tube))
 
 
-def _value(brief: Brief, wiring: Wiring, tube: Tube, judge: Judge, start: Ints) -> Callable[[Ints], Floats]:
+def _value(target: Target, wiring: Wiring, tube: Tube, judge: Judge, start: Ints) -> Callable[[Ints], Floats]:
     """Band use of rows of steps; far larger where pad limits are missed, infinite where a lever breaks a limit."""
-    step = brief.levers.drill_step
+    brief, step = target.brief, target.brief.levers.drill_step
 
     def value(rows: Ints) -> Floats:
         result = np.full(len(rows), np.inf)
@@ -73,7 +74,7 @@ def _value(brief: Brief, wiring: Wiring, tube: Tube, judge: Judge, start: Ints) 
         kept = np.flatnonzero(near & allowed(a, b, brief.levers).all(axis=1))
         if kept.size:
             hung = hang_free(wiring, rows[kept], step, tube.jack_x, tube.total)
-            result[kept] = judged(brief, judge, hung.pad_x, hung.pad_force)
+            result[kept] = judged(target, judge, hung.pad_x, hung.pad_force)
         return result
 
     return value
@@ -86,7 +87,7 @@ def _searched(plan: PadPlan, wiring: Wiring, tube: Tube, judge: Judge, progress:
     first = np.append(np.cumsum((force * plan.x)[::-1])[::-1], 0.0)
 
     def pads_kept(x: Floats, pull: Floats) -> NDArray[np.bool_]:
-        return np.asarray(violations(brief, x[:, None], pull[:, None]) == 0)
+        return np.asarray(violations(plan.target, x[:, None], pull[:, None]) == 0)
 
     def arms_kept(a: Floats, b: Floats) -> NDArray[np.bool_]:
         return allowed(a, b, brief.levers)

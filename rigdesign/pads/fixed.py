@@ -23,7 +23,7 @@ def choose_fixed(target: Target, jack_x: float) -> Outcome | None:
     if x.size > 1 and np.diff(x).min() < least_pitch(brief) * (1 - 1e-9):
         return None
     tube = build_tube(target, jack_x, x.size, STATIONS_A_PAD, extra=x)
-    least, largest = force_limits(brief)
+    least, largest = force_limits(target)
     programme = ForceProgramme(tube, x, least, largest, shares(tube, x))
     best = programme.least_use()
     if best is None:

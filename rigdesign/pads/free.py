@@ -41,7 +41,7 @@ class FreePlaces:
         brief = target.brief
         self.target, self.brief, self.count, self.progress = target, brief, count, progress
         self.fine = build_tube(target, jack_x, count, FINE if count <= MANY else COARSE)
-        least, largest = force_limits(brief)
+        least, largest = force_limits(target)
         apart = APART * (brief.specimen.right - brief.specimen.left) / count
         stretches, pitch = with_room(brief, count)
         self.limits = Limits(least, largest, max(pitch, apart), stretches)
@@ -66,7 +66,7 @@ class FreePlaces:
 
     def _path_is_best(self, path: Path, least: float) -> bool:
         """Whether the path keeps the limits, its forces can be joined by levers, and no band but the moment's binds."""
-        if self.brief.pads.aim != "closest" or violations(self.brief, path.x, path.force) > 0:
+        if self.brief.pads.aim != "closest" or violations(self.target, path.x, path.force) > 0:
             return False
         step = path.force[1:] / path.force[:-1]
         if np.any(np.maximum(step, 1 / step) > self.brief.levers.ratio_limit):

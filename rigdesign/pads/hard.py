@@ -67,7 +67,7 @@ class HardPoints:
     def __init__(self, target: Target, jack_x: float, x: Floats, count: int, progress: Progress | None) -> None:
         """Prepare the tube over the places."""
         self.target, self.brief, self.x, self.count, self.progress = target, target.brief, x, count, progress
-        self.least, self.largest = force_limits(target.brief)
+        self.least, self.largest = force_limits(target)
         self.pitch = least_pitch(target.brief)
         self.tube = build_tube(target, jack_x, x.size, STATIONS_A_GAP, extra=x)
 

@@ -1,7 +1,7 @@
 """Limits that a single pad or a pair of neighbours must keep.
 
 Forces here are multiplied by the sign of the target (positive) and are those at the brief's load; the limits of the
-brief hold at the peak of the test, so they are divided by it here.
+brief hold at the peak of the test, so they are divided by what that is to the pads (`Target.pads_peak`).
 """
 
 from __future__ import annotations
@@ -10,19 +10,20 @@ import numpy as np
 
 from rigdesign.brief.model import Brief
 from rigdesign.target.curve import Floats
+from rigdesign.target.model import Target
 
 # Lengths that agree to this part of the span count as equal, and forces to this part of their limit: a footprint may
 # touch its neighbour, and a pad that a programme puts exactly on its limit keeps it.
 TOUCH = 1e-9
 
 
-def force_limits(brief: Brief) -> tuple[float, float]:
+def force_limits(target: Target) -> tuple[float, float]:
     """Least and largest force of a pad [N] at the brief's load, the pressure limit included."""
-    pads = brief.pads
+    pads, peak = target.brief.pads, target.pads_peak
     largest = pads.largest_force
     if np.isfinite(pads.largest_pressure) and pads.width is not None:
         largest = min(largest, pads.largest_pressure * pads.length * pads.width)
-    return pads.least_force / brief.peak, largest / brief.peak
+    return pads.least_force / peak, largest / peak
 
 
 def least_pitch(brief: Brief) -> float:
@@ -52,13 +53,14 @@ def usable_points(brief: Brief) -> Floats:
     return x[inside.any(axis=1)]
 
 
-def violations(brief: Brief, pad_x: Floats, force: Floats) -> Floats:
+def violations(target: Target, pad_x: Floats, force: Floats) -> Floats:
     """How far rigs with pads `pad_x`, `force` (..., n), root to tip, miss the pad limits: (...), 0 where all hold.
 
     The sum of the relative excesses of forces, and of lengths over the span.
     """
+    brief = target.brief
     span = brief.specimen.right - brief.specimen.left
-    least, largest = force_limits(brief)
+    least, largest = force_limits(target)
     scale = np.abs(force).mean(axis=-1)
     missing = (np.maximum(least * (1 - TOUCH) - force, 0.0).sum(axis=-1)) / scale
     if np.isfinite(largest):

@@ -114,7 +114,7 @@ def _most_pads(target: Target) -> int:
     most = MOST_PADS if fit is None else min(fit, MOST_PADS)
     if target.brief.pads.places == "hard points":
         most = min(most, usable_points(target.brief).size)
-    least, _ = force_limits(target.brief)
+    least, _ = force_limits(target)
     return max(1, min(most, int(abs(target.net.total) / least * (1 + 1e-9)))) if least > 0 else most
 
 
@@ -128,7 +128,7 @@ def _fewest_possible(target: Target, jack_x: float, most: int) -> int:
         counts.append(fewest_pads(tube, float(stretches[0, 0]), float(stretches[-1, 1]), most) or most)
     if tube.is_judged[1]:
         counts.append(fewest_steps(tube, 1.0, stretches, most) or most)
-    _, largest = force_limits(brief)
+    _, largest = force_limits(target)
     if np.isfinite(largest):
         counts.append(int(np.ceil(abs(target.net.total) / largest * (1 - 1e-9))))
     if brief.pads.places == "hard points":

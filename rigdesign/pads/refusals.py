@@ -22,13 +22,22 @@ def whatever_the_count(target: Target, jack_x: float) -> Refusal | None:
 def for_the_count(target: Target, count: int) -> Refusal | None:
     """Refusal of this number of pads, if there is one."""
     brief, total = target.brief, abs(target.net.total)
-    return _too_few_places(brief, count) or _too_wide(brief, count) or too_weak(brief, total, count)
+    return _too_few_places(brief, count) or _too_wide(brief, count) or too_weak(target, total, count)
 
 
 def other_way(target: Target) -> Refusal | None:
     """Refusal where gravity brings more than the target asks for."""
-    if target.net.total * target.resultant > 0:
+    if target.net.total * target.resultant > 0 and target.pads_peak > 0:
         return None
+    if target.net.total * target.resultant > 0:
+        return Refusal(
+            "pads",
+            "at the peak of the test gravity brings more than the target asks for, so the pads would have to act the "
+            "other way",
+            limit=f"target at the peak {show(target.brief.peak * target.resultant, 'force')}",
+            best=f"gravity brings {show(target.gravity.total, 'force')}",
+            remedy="raise [test] peak, or turn the specimen over (gravity)",
+        )
     return Refusal(
         "pads",
         "gravity already brings more than the target asks for, so the pads would have to act the other way",
@@ -95,14 +104,14 @@ def _too_wide(brief: Brief, count: int) -> Refusal | None:
     )
 
 
-def too_weak(brief: Brief, total: float, count: int) -> Refusal | None:
+def too_weak(target: Target, total: float, count: int) -> Refusal | None:
     """Refusal where so many pads cannot carry `total` [N] between their least and largest forces."""
-    least, largest = force_limits(brief)
+    least, largest = force_limits(target)
     if count * largest < total * (1 - EVEN):
         return Refusal(
             "pads",
             f"{counted(count, 'pad')} are too weak for the total",
-            limit=f"largest pad force {show(largest * brief.peak, 'force')} at the peak of the test",
+            limit=f"largest pad force {show(largest * target.pads_peak, 'force')} at the peak of the test",
             best=f"{show(count * largest, 'force')} of {show(total, 'force')} at the brief's load",
             remedy=f"use at least {counted(int(np.ceil(total / largest * (1 - EVEN))), 'pad')}, or larger ones",
         )
@@ -111,7 +120,7 @@ def too_weak(brief: Brief, total: float, count: int) -> Refusal | None:
         return Refusal(
             "pads",
             f"{counted(count, 'pad')} cannot carry the least force each",
-            limit=f"least pad force {show(least * brief.peak, 'force')} at the peak of the test",
+            limit=f"least pad force {show(least * target.pads_peak, 'force')} at the peak of the test",
             best=f"{show(total, 'force')} to share among {counted(count, 'pad')}",
             remedy=f"use at most {counted(most, 'pad')}, or lower least_force" if most else "lower least_force",
         )
@@ -121,12 +130,12 @@ def too_weak(brief: Brief, total: float, count: int) -> Refusal | None:
 def unbalanced(target: Target, jack_x: float, count: int) -> Refusal:
     """No forces within the limits balance the target: name the pad limits that would have to give way."""
     brief = target.brief
-    least, largest = force_limits(brief)
+    least, largest = force_limits(target)
     asked = []
     if np.isfinite(largest):
-        asked.append(f"largest pad force {show(largest * brief.peak, 'force')}")
+        asked.append(f"largest pad force {show(largest * target.pads_peak, 'force')}")
     if least > 0:
-        asked.append(f"least pad force {show(least * brief.peak, 'force')}")
+        asked.append(f"least pad force {show(least * target.pads_peak, 'force')}")
     if least_pitch(brief) > 0:
         asked.append(f"footprint and gap {show(least_pitch(brief), 'length')}")
     if brief.pads.keep_out:

@@ -81,7 +81,7 @@ def _require_joined(fields: Fields, hardware: Hardware) -> None:
 LARGEST_SIZE = 1e15
 """No size, force or stress in SI units is larger, as in a brief."""
 
-_END = ("pin_m", "hole_m", "pin_length_m", "inner_m", "radius_m"), ("outer_m", "gap_m")
+_END = ("pin_m", "hole_m", "inner_m", "radius_m"), ("outer_m", "gap_m")
 _MACHINE = ("force_N", "length_m", "mass_kg", "pin_m"), ("stroke_m",)
 _SIZES = {
     "bodies": (("overhang_m",), ("gap_m", "side_plate_m")),
@@ -101,6 +101,10 @@ def _require_sizes(hardware: Hardware, fields: Fields) -> None:
     for item in fields.objects("links"):
         for end in ("upper", "lower"):
             _require_numbers(item.object(end), *_END)
+            # a stud is the rod itself, without a pin
+            length = ("pin_length_m",)
+            is_stud = item.object(end).text("fitting") == "stud"
+            _require_numbers(item.object(end), () if is_stud else length, length if is_stud else ())
     for item in fields.objects("stacks"):
         for machine in ("machine", "cell"):
             _require_numbers(item.object(machine), *_MACHINE)

@@ -235,7 +235,7 @@ def _jack_line(check: Check, system: System) -> str:
     tree = check.rig.trees[0]
     at = show(tree.jack.x, "length", system)
     force = show(abs(tree.force), "force", system)
-    peak = check.rig.plan.target.brief.peak
+    peak = check.rig.plan.target.pads_peak
     top = f", {show(abs(tree.force) * peak, 'force', system)} at the peak of the test" if peak != 1.0 else ""
     way = "up (+z)" if tree.force > 0 else "down (−z)"
     at = f"x = {at}, y = {show(tree.jack.y, 'length', system)}" if _is_surface(check) else f"x = {at}"

@@ -219,7 +219,7 @@ def _rig_part(check: Check) -> dict[str, Any]:
         "pads_centroid_x_m": dot(force, rig.pad_x) / float(force.sum()),
         "jack_x_m": [tree.jack.x for tree in rig.trees],
         "jack_force_N": [tree.force for tree in rig.trees],
-        "jack_force_at_test_peak_N": [tree.force * rig.plan.target.brief.peak for tree in rig.trees],
+        "jack_force_at_test_peak_N": [tree.force * rig.plan.target.pads_peak for tree in rig.trees],
         "jack_offset_m": check.jack_offset,
         "moment_error_peak": check.moment_error_peak,
         "moment_error_x_m": check.moment_error_x,

@@ -59,6 +59,15 @@ class Target:
         return self.net_plan.along(ALONG_X).force
 
     @property
+    def pads_peak(self) -> float:
+        """What the pads bring at the peak of the test, over what they bring at the brief's load.
+
+        The specimen must feel its target times the peak; what gravity brings of that does not grow with the load.
+        """
+        brought = self.resultant - self.gravity.total
+        return (self.brief.peak * self.resultant - self.gravity.total) / brought
+
+    @property
     def shear_peak(self) -> float:
         """Largest |V| anywhere on the span [N]."""
         return self.peaks["shear"].value

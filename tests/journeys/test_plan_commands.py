@@ -67,7 +67,9 @@ def test_design_answers_in_sentences_and_writes_the_folder(rigdesign, leaf, here
     text = " ".join(ended.out.split())
     places = [text.index(words) for words in order]
     assert places == sorted(places)
-    assert set(files_under(here / "leaf_rig")) == CONTRACT
+    files = set(files_under(here / "leaf_rig"))
+    assert {name for name in files if not name.startswith("dxf/")} == CONTRACT
+    assert "dxf/L1.dxf" in files
 
 
 def test_the_folder_is_replaced_and_reads_back_to_the_last_digit(rigdesign, leaf, here):
@@ -96,14 +98,15 @@ def test_pads_sum_to_the_target_in_plan(rigdesign, leaf, here):
 def test_holes_as_built_are_taken_in_both_directions(rigdesign, leaf, here):
     rigdesign("design", "leaf.toml", "--no-figures")
     rows = list(csv.DictReader((here / "leaf_rig" / "holes.csv").read_text().splitlines()))
-    plate = next(row for row in rows if row["hole"] == "C")
+    # across the lever's own line
+    moved = next(row for row in rows if row["hole"] == "B")
     (here / "built.csv").write_text(
-        f"lever,hole,u_m,v_m\n{plate['lever']},C,{plate['u_m']},{float(plate['v_m']) + 0.02}\n"
+        f"lever,hole,u_m,v_m\n{moved['lever']},B,{moved['u_m']},{float(moved['v_m']) + 0.02}\n"
     )
     ended = rigdesign("assess", "leaf_rig", "--holes", "built.csv")
     assert ended.code in (0, 1)
     text = " ".join(ended.out.split())
-    assert f"lever {plate['lever']} hole C" in text
+    assert f"lever {moved['lever']} hole B" in text
     assert "20.0 mm" in text
 
 

@@ -159,7 +159,7 @@ def _task(old: Rig, target: Target, distances: dict[str, float]) -> _Task:
     pivots = pivots_of(old, branches, rules, distances)
     sight = sight_of(target, old.pad_x, old.pad_y)
     total = abs(target.net_plan.sums.force)
-    least, largest = force_limits(target.brief)
+    least, largest = force_limits(target)
     return _Task(
         old,
         target,

@@ -169,7 +169,7 @@ class Trials:
         brief = self.rig.plan.target.brief
         if brief.specimen.is_surface:
             return PadLimits(self.rig.plan, self.branches).missed
-        return lambda x, y, force: violations(brief, np.sort(x, axis=1), force)
+        return lambda x, y, force: violations(self.rig.plan.target, np.sort(x, axis=1), force)
 
     @cached_property
     def _holes(self) -> list[Floats]:

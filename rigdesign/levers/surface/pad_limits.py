@@ -36,7 +36,7 @@ class PadLimits:
         Forces count in mean forces and lengths in lengths of the specimen.
         """
         brief = self.plan.target.brief
-        least, largest = force_limits(brief)
+        least, largest = force_limits(self.plan.target)
         result = np.maximum(least * (1 - TOUCH) - force, 0.0).sum(axis=1)
         if np.isfinite(largest):
             result = result + np.maximum(force - largest * (1 + TOUCH), 0.0).sum(axis=1)

@@ -157,7 +157,7 @@ class FreeInPlan:
         return {}
 
     def _search(self, ground: Ground, share_limit: float | None) -> Search:
-        least, largest = force_limits(self.target.brief)
+        least, largest = force_limits(self.target)
 
         def refill(x: Floats, y: Floats) -> Floats | None:
             forces = self._best_forces(x, y, share_limit)

@@ -68,7 +68,7 @@ def shares(target: Target, x: Floats, y: Floats) -> Floats:
 
 def programme(target: Target, even: Balance, x: Floats, y: Floats, rows: ErrorRows | None = None) -> Programme:
     """Return the programmes over pads at x, y (n,) [m], judged at rows of their own unless some are given."""
-    least, largest = force_limits(target.brief)
+    least, largest = force_limits(target)
     if rows is None:
         rows = error_rows(target, x, y, max(200, FINE * x.size))
     return Programme(rows, even, x, y, least, largest)
@@ -115,7 +115,7 @@ class HardPlaces:
 
 def choice_of(target: Target, jack: tuple[float, float], x: Floats, y: Floats, count: int) -> Choice:
     """Return the problem of choosing `count` of the places x, y (n,) [m]."""
-    least, largest = force_limits(target.brief)
+    least, largest = force_limits(target)
     rows, pads = error_rows(target, x, y), compatible(target.brief, x, y)
     return Choice(rows, balance(target, *jack), x, y, count, least, largest, pads)
 

@@ -63,7 +63,7 @@ def _fewest(target: Target, jack: tuple[float, float], progress: Progress | None
     first = 1
     if brief.pads.places == "hard points":
         first = min(fewest_hard_points(target, jack), most)
-    _, largest = force_limits(brief)
+    _, largest = force_limits(target)
     if np.isfinite(largest):
         first = max(first, int(np.ceil(abs(target.net_plan.sums.force) / largest * (1 - 1e-9))))
     if brief.pads.places == "free":
@@ -86,7 +86,7 @@ def _most_pads(target: Target) -> int:
     most = MOST_PADS if fit is None else min(fit, MOST_PADS)
     if brief.pads.places == "hard points":
         most = min(most, usable_points(brief).size)
-    least, _ = force_limits(brief)
+    least, _ = force_limits(target)
     total = abs(target.net_plan.sums.force)
     return max(1, min(most, int(total / least * (1 + 1e-9)))) if least > 0 else max(1, most)
 

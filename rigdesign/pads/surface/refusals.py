@@ -44,7 +44,7 @@ def for_the_count(target: Target, count: int) -> Refusal | None:
         room = _too_wide(brief, count)
     else:
         room = _fixed(brief, count) if places == "fixed" else _hard_points(brief, count)
-    return room or too_weak(brief, abs(target.net_plan.sums.force), count)
+    return room or too_weak(target, abs(target.net_plan.sums.force), count)
 
 
 def place_words(x: float, y: float) -> str:
@@ -205,12 +205,12 @@ def _too_few(count: int, places: int, kind: str, remedy: str) -> Refusal:
 def unbalanced(target: Target, jack_x: float, jack_y: float, count: int) -> Refusal:
     """No forces within the limits balance the target: name the pad limits that would have to give way."""
     brief, total = target.brief, target.net_plan.sums.force
-    least, largest = force_limits(brief)
+    least, largest = force_limits(target)
     asked = []
     if np.isfinite(largest):
-        asked.append(f"largest pad force {show(largest * brief.peak, 'force')} at the peak of the test")
+        asked.append(f"largest pad force {show(largest * target.pads_peak, 'force')} at the peak of the test")
     if least > 0:
-        asked.append(f"least pad force {show(least * brief.peak, 'force')} at the peak of the test")
+        asked.append(f"least pad force {show(least * target.pads_peak, 'force')} at the peak of the test")
     if brief.pads.length + brief.pads.gap > 0:
         asked.append(f"{_footprint(brief)}, gap {show(brief.pads.gap, 'length')}")
     pads = counted(count, "pad")

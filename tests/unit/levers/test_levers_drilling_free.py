@@ -84,7 +84,7 @@ def test_no_better_arms_by_brute_force(count, step, shear):
     hung = hang_free(wiring, rows, step, tube.jack_x, tube.total)
     use = build_judge(tube).use(hung.pad_x, hung.pad_force)
     ratio = np.maximum(hung.a, hung.b) / np.minimum(hung.a, hung.b)
-    kept = (ratio <= 5.0 * (1 + 1e-9)).all(axis=1) & (violations(plan.target.brief, hung.pad_x, hung.pad_force) == 0)
+    kept = (ratio <= 5.0 * (1 + 1e-9)).all(axis=1) & (violations(plan.target, hung.pad_x, hung.pad_force) == 0)
     # 0.1 %: the search judges stations between pads more sparsely than the brute force
     assert use[kept].min() >= drilled.use * (1 - 1e-3)
 
@@ -248,7 +248,7 @@ def test_pad_limits_hold_after_drilling():
     )
     rig = build_rig(plan_by_hand(brief, [0.3, 1.0, 1.3, 2.0], [1400.0, 1300.0, 1300.0, 1400.0]))
     assert isinstance(rig, Rig)
-    assert violations(brief, rig.pad_x, pad_forces(rig)) == 0
+    assert violations(rig.plan.target, rig.pad_x, pad_forces(rig)) == 0
 
 
 def test_a_coarse_step_is_refused():
@@ -281,7 +281,7 @@ def test_pads_that_are_no_neighbours_are_drilled():
     levers = ideal_levers(group_pads(plan), plan.x, plan.force)
     assert np.all(np.abs(np.concatenate([a - levers.a, b - levers.b])) <= (REACH + 1) * 0.02)
     force = pad_forces(rig)
-    assert violations(brief, rig.pad_x, force) == 0
+    assert violations(rig.plan.target, rig.pad_x, force) == 0
     tube, rounded = build_tube(plan.target, plan.jack_x, 4), rounded_arms(plan)
     hung = hang_free(group_pads(plan), rounded[None], 0.02, tube.jack_x, tube.total)
     assert tube.use(rig.pad_x, force) < tube.use(hung.pad_x, hung.pad_force)[0]
@@ -330,7 +330,7 @@ def test_pads_that_stand_close_are_drilled_apart():
     force = [588.3, 593.4, 587.1, 576.2, 562.1, 543.3, 514.4, 481.7, 446.4, 319.7, 147.0, 40.3]
     rig = build_rig(plan_by_hand(brief, x, force))
     assert isinstance(rig, Rig)
-    assert violations(brief, rig.pad_x, np.abs(pad_forces(rig))) == 0
+    assert violations(rig.plan.target, rig.pad_x, np.abs(pad_forces(rig))) == 0
 
 
 def test_a_shear_that_cannot_be_kept_is_no_leave_to_spoil_the_moment():

@@ -7,6 +7,8 @@ from dataclasses import replace
 import numpy as np
 import pytest
 from factories import (
+    LEFT,
+    RIGHT,
     inertia_load,
     make_acceptance,
     make_brief,
@@ -22,7 +24,7 @@ from factories import (
 from rigdesign.brief.model import Brief, JackRules, Region
 from rigdesign.findings import Refusal
 from rigdesign.pads import PadPlan, free, plan_pads
-from rigdesign.pads.limits import allowed_stretches, fitted, most_that_fit, packed, violations, with_room
+from rigdesign.pads.limits import allowed_stretches, fitted, force_limits, most_that_fit, packed, violations, with_room
 from rigdesign.pads.stair import fewest_steps
 from rigdesign.pads.tube import MOST_BREAKS, build_tube
 from rigdesign.target import build_target
@@ -35,7 +37,7 @@ def planned(brief: Brief) -> PadPlan:
     assert plan.force @ plan.x == pytest.approx(plan.target.net.total * plan.jack_x, rel=1e-11)
     assert (np.diff(plan.x) > 0).all()
     sign = np.sign(plan.target.resultant)
-    assert violations(brief, plan.x, sign * plan.force) == pytest.approx(0.0, abs=1e-6)
+    assert violations(plan.target, plan.x, sign * plan.force) == pytest.approx(0.0, abs=1e-6)
     assert plan.proof.band_use_least <= plan.proof.band_use_found <= plan.proof.band_use * (1 + 1e-12)
     return plan
 
@@ -210,10 +212,10 @@ def test_refuses_a_least_force_above_the_total_whatever_the_count() -> None:
 
 
 def test_a_pad_on_its_least_force_keeps_it_despite_rounding() -> None:
-    brief = make_brief(pads=make_pads(least_force=500.0, largest_force=900.0))
+    target = build_target(make_brief(pads=make_pads(least_force=500.0, largest_force=900.0)))
     x = np.array([0.6, 1.4])
-    assert violations(brief, x, np.array([500.0 * (1 - 1e-12), 900.0 * (1 + 1e-12)])) == 0.0
-    assert violations(brief, x, np.array([500.0 * (1 - 1e-6), 900.0])) > 0.0
+    assert violations(target, x, np.array([500.0 * (1 - 1e-12), 900.0 * (1 + 1e-12)])) == 0.0
+    assert violations(target, x, np.array([500.0 * (1 - 1e-6), 900.0])) > 0.0
 
 
 def test_refuses_when_gravity_brings_more_than_the_target() -> None:
@@ -279,9 +281,9 @@ def test_packed_places_stand_as_far_inboard_as_they_can() -> None:
 
 
 def test_violations_name_each_limit() -> None:
-    brief = make_brief(pads=make_pads(largest_force=1000.0, least_force=100.0, keep_out=((1.0, 1.2),)))
+    target = build_target(make_brief(pads=make_pads(largest_force=1000.0, least_force=100.0, keep_out=((1.0, 1.2),))))
     x, force = np.array([0.4, 0.8, 2.0]), np.array([500.0, 500.0, 500.0])
-    assert violations(brief, x, force) == 0
+    assert violations(target, x, force) == 0
     for bad_x, bad_force in (
         ([0.4, 0.55, 2.0], force),
         ([0.4, 1.1, 2.0], force),
@@ -289,7 +291,7 @@ def test_violations_name_each_limit() -> None:
         (x, [50.0, 500.0, 500.0]),
         (x, [500.0, 1100.0, 500.0]),
     ):
-        assert violations(brief, np.array(bad_x), np.array(bad_force)) > 1e-4
+        assert violations(target, np.array(bad_x), np.array(bad_force)) > 1e-4
 
 
 def test_stair_with_keep_outs_needs_more() -> None:
@@ -368,3 +370,16 @@ def test_a_bound_above_what_was_found_is_said_and_not_smoothed_over(monkeypatch:
     found = planned(brief).findings
     assert [finding.severity for finding in found] == ["warning"]
     assert "not to be trusted" in found[0].text
+
+
+@pytest.mark.parametrize(("gravity", "peak", "factor"), [(-1, 1.5, None), (1, 1.5, None), (1, 1.0, 1.0)])
+def test_limits_hold_for_what_pads_bring_at_the_peak(gravity: int, peak: float, factor: float | None) -> None:
+    """The specimen feels its target times the peak; what gravity brings of that does not grow with the load."""
+    specimen = make_specimen(weight=make_weight([LEFT, RIGHT], [40.0, 40.0]), gravity=gravity)
+    rules = make_pads(largest_force=1800.0, least_force=90.0)
+    target = build_target(make_brief(specimen=specimen, peak=peak, pads=rules))
+    brought = gravity * 40.0 * (RIGHT - LEFT) * 9.80665
+    by_hand = (peak * 5400.0 - brought) / (5400.0 - brought)
+    assert by_hand == pytest.approx(peak if factor is None else factor, rel=0.2)
+    assert target.pads_peak == pytest.approx(by_hand, rel=1e-9)
+    assert force_limits(target) == pytest.approx((90.0 / by_hand, 1800.0 / by_hand))

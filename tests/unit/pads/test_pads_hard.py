@@ -81,7 +81,7 @@ def test_least_band_use_equals_all_choices(seed: int, shear: float | None, limit
     plan = plan_pads(target)
     assert isinstance(plan, PadPlan)
     tube = build_tube(target, plan.jack_x, places.size, 20, extra=places)
-    least, largest = force_limits(target.brief)
+    least, largest = force_limits(target)
     pitch = limits.get("length", 0.0) + limits.get("gap", 0.0)
     half = limits.get("length", 0.0) / 2
     usable = places[(places >= 0.2 + half) & (places <= 3.4 - half)]

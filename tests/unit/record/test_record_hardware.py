@@ -8,7 +8,7 @@ from dataclasses import fields, is_dataclass, replace
 
 import numpy as np
 import pytest
-from factories import make_brief, make_pads
+from factories import make_brief, make_hardware, make_pads
 from hand_hardware import make_hardware_for
 from hand_plan_rigs import make_plan_rig
 from hand_rigs import make_rig
@@ -16,6 +16,7 @@ from hand_rigs import make_rig
 from rigdesign.checks import check
 from rigdesign.errors import InputError
 from rigdesign.findings import Finding
+from rigdesign.hardware import build_hardware
 from rigdesign.hardware.model import Hardware, Shortfall
 from rigdesign.record.fields import read_object
 from rigdesign.record.hardware_json import hardware_from_json, hardware_object
@@ -166,3 +167,16 @@ def test_every_number_may_be_asked_for_as_infinite_only_where_it_may_be():
     assert data.sizes("b") == [1.0, math.inf]
     with pytest.raises(InputError, match=r"c\.d: .*accepted: a finite number"):
         data.amounts("c")
+
+
+@pytest.mark.parametrize("links", ["rod", "strap", "webbing"])
+def test_what_the_builder_makes_is_read_back(links):
+    brief = make_brief(pads=make_pads(count=3), hardware=make_hardware(links=links, balance="counterweights"))
+    built = build_hardware(make_rig([0.5, 1.1, 2.0], [1300.0, 900.0, 700.0], brief=brief))
+    require_equal(built, hardware_from_json(as_text(built), built.rig), "hardware")
+
+
+def test_what_the_builder_makes_of_plates_is_read_back():
+    x, y, force = [0.3, 0.9, 0.5, 1.6], [0.1, -0.2, 0.3, 0.0], [300.0, 500.0, 400.0, 700.0]
+    built = build_hardware(make_plan_rig(x, y, force, group=((1, 2, 3), 4)))
+    require_equal(built, hardware_from_json(as_text(built), built.rig), "hardware")
