@@ -352,7 +352,9 @@ def remedy(failure: Result, build: Build) -> str:
     if "pin" in failure.check or "bearing" in failure.check:
         return f"larger pins in [hardware] pins, or thicker {PROFILE[build]}s in the stock"
     other = next(kind for kind in ("hollow section", "twin channels") if kind != build)
-    return f'deeper or thicker {PROFILE[build]}s in the stock, build = "{other}", a stronger grade, or shorter levers'
+    # a grade does nothing for stiffness
+    grade = "" if "deflection" in failure.check else " a stronger grade,"
+    return f'deeper or thicker {PROFILE[build]}s in the stock, build = "{other}",{grade} or shorter levers'
 
 
 def bending_capacity(section: Section, build: Build, shop: Shop, arm: float) -> float:

@@ -107,4 +107,4 @@ def _step(step: Step) -> dict[str, Any]:
 
 def tare_of_load(result: HardwareCheck) -> float:
     """The rig's own weight over what the pads bring together at the brief's load."""
-    return abs(float(result.tare.pad_tare.sum())) / abs(float(result.tare.step(1.0).pad_force.sum()))
+    return abs(float(result.tare.pad_tare.sum())) / abs(result.check.rig.plan.target.net.total)

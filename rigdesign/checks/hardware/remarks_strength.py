@@ -33,8 +33,10 @@ def strength_remarks(hardware: Hardware, rows: tuple[StrengthRow, ...]) -> Itera
     yield _remark(
         "note",
         "rig",
-        "strength is not looked at for welds, fatigue, impact (a pad that lets go), load from the side, heads of "
-        "pins, split pins, spacers, nuts, turnbuckles and whatever makers of jacks, cells and bearings rate themselves",
+        "twin profiles are taken as held sideways at their spacers, whose bolts must be tight, and not as buckling "
+        "together between their pins; strength is not looked at for welds, fatigue, impact (a pad that lets go), load "
+        "from the side, heads of pins, split pins, spacers, nuts, turnbuckles and whatever makers of jacks, cells and "
+        "bearings rate themselves",
         remedy="have a licensed engineer look at them, by the codes that hold locally; inspect welds before every test",
     )
 
@@ -113,7 +115,8 @@ def _remedy(hardware: Hardware, row: StrengthRow) -> str:
         return "a larger link or pin, thicker eyes, or more pads to share the load"
     if kind == "pad":
         return "thicker lugs or a larger pin at the pad"
-    return "a larger section or pin, a stronger grade, shorter arms, or more pads to share the load"
+    grade = "" if "deflection" in row.check else "a stronger grade, "
+    return f"a larger section or pin, {grade}shorter arms, or more pads to share the load"
 
 
 def _other_shortfalls(hardware: Hardware, worst: dict[str, StrengthRow]) -> Iterator[Finding]:

@@ -37,7 +37,7 @@ def _remark(severity: Severity, where: str, text: str, value: str = "", limit: s
 def _bands(check: Check, weighed: Weighed, tare: Tare) -> Iterator[Finding]:
     """What own weight is, and what it does at the whole of the brief's load; a failure where only it breaks a band."""
     full = tare.step(ALL_OF_IT)
-    weight, load = float(np.abs(weighed.loads.weight).sum()), abs(float(full.pad_force.sum()))
+    weight, load = float(np.abs(weighed.loads.weight).sum()), abs(check.rig.plan.target.net.total)
     text = (
         f"the rig's own weight is {show(weight, 'force')}, {percent(weight / load)} of what the pads bring at 100 % of "
         f"the brief's load; with it and the best jack force, {_jacks(check, full)}, errors are " + _errors(check, full)

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from rigdesign.hardware.model import End
-from rigdesign.report.lists.members import place
+from rigdesign.report.lists.members import material_of, place
 from rigdesign.report.lists.model import LinkRow
 from rigdesign.report.lists.pins import pin_rows_of
 from rigdesign.target.curve import Floats
@@ -28,7 +28,7 @@ def link_rows(result: HardwareCheck) -> tuple[LinkRow, ...]:
             mark=hardware.marks[link.name],
             kind=link.kind,
             size=link.size,
-            material=link.material.name,
+            material=material_of(link),
             upper=place(link.upper),
             lower=place(link.lower),
             length=link.length,

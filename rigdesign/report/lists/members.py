@@ -31,6 +31,11 @@ def place(end: End) -> str:
     return f"{end.to} {end.at}" if end.at else end.to
 
 
+def material_of(link: Link) -> str:
+    """What a link is made of, for lists; webbing is no steel, whatever its fittings are."""
+    return "polyester" if link.kind == "webbing" else link.material.name
+
+
 def steel_length(piece: Piece, body: Body) -> float:
     """Length of a lever's profiles over all, or of a plate along u [m]."""
     if piece.kind == "plate":

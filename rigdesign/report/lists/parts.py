@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 from rigdesign.hardware.model import Body, Hardware, Machine, PartKind, Spacer
 from rigdesign.hardware.weighing import spacer_mass
 from rigdesign.report.lists.flats import side_plates_of
-from rigdesign.report.lists.members import by_mark, pieces_by_name, steel_length
+from rigdesign.report.lists.members import by_mark, material_of, pieces_by_name, steel_length
 from rigdesign.report.lists.model import PartRow
 from rigdesign.report.lists.pins import pin_mass, pin_rows_of
 
@@ -79,7 +79,7 @@ def _link_rows(hardware: Hardware) -> list[PartRow]:
         pins = sum(pin_mass(end, link.pin_material) for end in (link.upper, link.lower))
         size = link.size if link.kind == "webbing" else f"{link.kind} {link.size}"
         rows.append(
-            PartRow(mark, "link", len(members), size, link.material.name, link.length, link.mass - pins, members)
+            PartRow(mark, "link", len(members), size, material_of(link), link.length, link.mass - pins, members)
         )
     return rows
 

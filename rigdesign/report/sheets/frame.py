@@ -37,7 +37,8 @@ CAUTIONS = (
 
 DETAIL_NOTES = (
     "Datum of a lever: the end of its steel beyond hole A, at the left. All its holes are at mid depth.",
-    "Drill twin profiles clamped together; stamp the mark at the datum end.",
+    "Drill twin profiles clamped together; stamp the mark at the datum end. Bolts of spacers tight: without them the "
+    "profiles buckle sideways.",
     "Phantom lines: fittings of links, which are not part of the detail.",
     "Pins and spacers: see their schedules. Outlines of flats and plates at 1:1: the DXF file of the mark.",
     "Quartered disc: centre of mass.",

@@ -210,7 +210,7 @@ def _safety(result: HardwareCheck, sizes: Sizes) -> tuple[str, ...]:
         f"lever for its own mass and that fall. Levers weigh up to {_heaviest(result, sizes)}, a tree {weights}.",
         f"Links may swing up to {_swing(brief.hardware.swing)}; stop where one touches anything.",
         "Relief valve and load limit set above the peak by no more than the overshoot of the strength check, "
-        f"{100 * (brief.hardware.overshoot - 1):.0f} %.",
+        f"{100 * (brief.hardware.overshoot - 1):.0f} %; higher for the proof load alone, and set back after it.",
     )
 
 

@@ -125,7 +125,7 @@ def pins_table(result: HardwareCheck, sizes: Sizes) -> Table:
     """The schedule of pins, a row a mark."""
     unit = sizes.unit
     rows = tuple(
-        (row.mark, sizes.length(row.diameter), sizes.length(row.length), sizes.length(row.grip), row.material,
+        (row.mark, sizes.pin(row.diameter), sizes.length(row.length), sizes.length(row.grip), row.material,
          str(row.quantity), sizes.mass(row.mass), numbers(row.places))
         for row in pin_rows(result)
     )  # fmt: skip
@@ -198,7 +198,7 @@ def drill_table(result: HardwareCheck, sizes: Sizes) -> Table:
         across = (sizes.length(row.across) if row.across else "–",) if plates else ()
         texts.append(
             (row.mark, row.hole, sizes.length(row.along), *across, sizes.hole(row.diameter),
-             sizes.length(row.pin), row.note)
+             sizes.pin(row.pin), row.note)
         )  # fmt: skip
     heads = ("mark", "hole", f"from datum\n[{unit}]", *((f"across\n[{unit}]",) if plates else ()), f"⌀\n[{unit}]",
              f"pin ⌀\n[{unit}]", "note")  # fmt: skip

@@ -49,6 +49,16 @@ class Sizes:
         """
         return f"⌀{self.length(diameter)} +{self.length(HOLE_TOLERANCE)}/0"
 
+    def pin(self, diameter: float) -> str:
+        """A pin's diameter [m], to a hundredth of a millimetre where it is no whole tenth.
+
+        >>> Sizes().pin(0.016), Sizes().pin(0.015875)
+        ('16', '15.88')
+        """
+        if self.system != "SI" or abs(1e4 * diameter - round(1e4 * diameter)) < 1e-6:
+            return self.length(diameter)
+        return f"{1e3 * diameter:.2f}"
+
     def plain_hole(self, diameter: float) -> str:
         """A hole's diameter [m] alone."""
         return f"⌀{self.length(diameter)}"
