@@ -21,11 +21,12 @@ from rigdesign.target.curve import Floats
 from rigdesign.target.plan_load import loads_at
 from rigdesign.words import STANDARD_GRAVITY
 
-FACTORS = (0.0, 3.0)
-"""The jack's force is looked for between these parts of what it would be at the step without weight."""
+FACTORS = 3.0
+"""The jack's force is looked for up to so many times what it would be without weight, and as far again as twice the
+weight of the rig takes it, either way."""
 
 KEPT = 1.0 + 1e-9
-"""A band use up to this keeps the bands."""
+"""Band use up to which a rig keeps its bands, rounding allowed for."""
 
 _STEPS = 90
 _GOLDEN = (5**0.5 - 1) / 2
@@ -89,7 +90,8 @@ class Bands:
             error = factor * from_jacks + from_weight
             return float(np.maximum(error / above, -error / below).max(initial=0.0))
 
-        low, high = (level * factor for factor in FACTORS)
+        weight = 2.0 * abs(float(fixed.sum() / led.sum()))
+        low, high = -weight, level * FACTORS + weight
         for _ in range(_STEPS):
             first, second = high - _GOLDEN * (high - low), low + _GOLDEN * (high - low)
             if use(first) <= use(second):

@@ -4,7 +4,7 @@ from dataclasses import replace
 
 import numpy as np
 import pytest
-from factories import array, make_brief, make_hardware, make_pads, shape_load
+from factories import array, make_acceptance, make_brief, make_hardware, make_pads, shape_load
 from hand_plan_rigs import make_plan_rig
 from hand_rigs import make_rig
 
@@ -12,6 +12,7 @@ from rigdesign.brief.model_hardware import Surface
 from rigdesign.checks.hardware.space import space
 from rigdesign.hardware import build_hardware, stock_line
 from rigdesign.hardware.members import off_surface, surface_heights
+from rigdesign.hardware.model import Mass
 from rigdesign.hardware.owning import bands_of, pad_forces
 from rigdesign.hardware.sizing import make_shop
 from rigdesign.hardware.wiring import design_loads, side_of, wired
@@ -188,3 +189,16 @@ def test_pads_beyond_the_table_of_the_surface_are_named():
     assert [(finding.object, finding.value) for finding in told] == [("pad 4", "1 pad: 4")]
     in_plan = Surface(array([0, 1, 0, 1]), array([0, 1, 2, 3]), array([0, 0, 1, 1]))
     assert off_surface(in_plan, array([0.5, 1.2, 1.0]), array([0.5, 0.5, 1.0])) == [2]
+
+
+def test_the_jack_of_a_rig_far_heavier_than_its_load_is_found():
+    """A rig of 10 kN under a load of 3.3 kN: the jack pulls four times what it would without weight."""
+    brief = make_brief(pads=make_pads(count=4), acceptance=make_acceptance(moment=None, shear=5.0))
+    heavy = make_rig(X, FORCE, brief=brief)
+    wiring = wired(heavy)
+    masses = {name: Mass(340.0, 0.0, 0.0) for name in wiring.pieces}
+    factor, use = bands_of(wiring)._least(masses, 1.0)
+    weight = 3 * 340.0 * STANDARD_GRAVITY
+    assert factor == pytest.approx((5400.0 + weight) / 3300.0, rel=0.1)
+    assert factor > 3.5
+    assert use < 1.0
