@@ -71,7 +71,9 @@ def test_own_weight_says_of_what_and_what_it_costs():
     full = result.tare.step(1.0)
     line = line_with(result, "Own weight")
     assert f"Own weight: {show(steel_weight(result), 'force')}, " in line
-    assert f"{percent(steel_weight(result) / abs(full.pad_force.sum()))} of what the pads bring" in line
+    assert (
+        f"{percent(steel_weight(result) / abs(result.check.rig.plan.target.net.total))} of what the pads bring" in line
+    )
     assert f"{show(full.jack[0], 'force')} on jack 1" in line
     without = result.check.errors["moment"].peak
     assert f"moment {percent(full.errors['moment'])} ({percent(without)} without)" in line
