@@ -15,7 +15,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from rigdesign.brief.model import Brief
-from rigdesign.display import counted, show
+from rigdesign.display import counted
 from rigdesign.findings import Finding
 from rigdesign.hardware.balance import counterweights
 from rigdesign.hardware.catalogue import sections
@@ -128,7 +128,7 @@ def build_hardware(rig: Rig, progress: Progress | None = None) -> Hardware:
         without, with_weight = bench.bands.use({}), bench.bands.use(found.masses)
     if rules.balance == "counterweights" or (with_weight > 1.0 >= without):
         found, hung, settled = _balanced(bench, found)
-        findings += _balance_words(hung, rules.balance == "as needed", with_weight)
+        findings += _balance_words(hung, rules.balance == "as needed")
     if not settled:
         findings.append(_unsettled())
     if progress is not None:
@@ -231,32 +231,17 @@ def _words(bench: Bench) -> str:
     )
 
 
-def _balance_words(hung: Counterweights, needed: bool, use: float) -> list[Finding]:
-    total = sum(mass for masses in hung.values() for mass in masses.values())
-    count = sum(len(masses) for masses in hung.values())
-    if not count:
+def _balance_words(hung: Counterweights, needed: bool) -> list[Finding]:
+    """Why counterweights are put on; their masses, and what they do, are told by the check."""
+    if not hung:
         return []
     why = (
-        f"with the rig's own weight the band use would be {use:.3g} at the brief's load, so counterweights are put on"
+        "own weight would break a band at the brief's load, whatever the jack's force, so counterweights are put on"
         if needed
         else "counterweights are put on, as the brief asks"
     )
-    named = ", ".join(
-        f"{show(mass, 'mass')} on {piece} hole {hole}"
-        for piece, masses in hung.items()
-        for hole, mass in masses.items()
-    )
-    return [
-        Finding(
-            "behaviour",
-            "note",
-            "counterweights",
-            f"{why}: {named}",
-            f"{show(total, 'mass')} in {counted(count, 'place')}",
-            "",
-            'balance = "none" leaves them off' if needed else "",
-        )
-    ]
+    remedy = 'balance = "none" leaves them off' if needed else ""
+    return [Finding("behaviour", "note", "counterweights", why, remedy=remedy)]
 
 
 def _unsettled() -> Finding:

@@ -133,7 +133,8 @@ def _other_shortfalls(hardware: Hardware, worst: dict[str, StrengthRow]) -> Iter
             "failure",
             first.piece,
             f"no size to choose from does: {first.check}{also(one.piece for one in group if one is not first)}",
-            f"utilisation {used(first.utilisation)}",
+            # the sizing's own number, where no check of this road has one
+            f"utilisation {used(first.utilisation)} as sized",
             "1",
             first.remedy,
         )

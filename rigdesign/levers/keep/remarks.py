@@ -136,9 +136,9 @@ def words_of(
     steel, `free` the forces of least band use.
     """
     head = f"kept rig: {counted(len(moved), 'pivot')} of {pieces} drilled anew"
-    head += f", band use {use[0]:.3g} before and {use[1]:.3g} after"
+    head += f", band use {use[0]:.3g} before and {use[1]:.3g} after as the search judges"
     if not moved:
-        head = f"kept rig: no pivot drilled anew, band use {use[1]:.3g}"
+        head = f"kept rig: no pivot drilled anew, band use {use[1]:.3g} as the search judges"
     new = sum(not pivot.keeps_distance for pivot in moved)
     if new:
         head += f"; {counted(new, 'piece')} to be made new, as old and new hole would be too close"

@@ -80,10 +80,10 @@ def _words(before: Tally, after: Tally, least: int, tolerance: float, judged: in
     within, what = show(tolerance, "length", unit="mm"), counted(before.different, "different piece")
     if after.different < before.different:
         head = f"part marks: {what} made {after.different}, holes moved by up to {within} as seen from the pivot"
-        cost = f"band use {before.band_use:.3g} before and {after.band_use:.3g} after"
+        cost = f"band use {before.band_use:.3g} before and {after.band_use:.3g} after as the search judges"
     else:
         head = f"part marks: {what}, and no way found to make more of them alike within {within}"
-        cost = f"band use {after.band_use:.3g}"
+        cost = f"band use {after.band_use:.3g} as the search judges"
     if after.different <= least:
         proof = "proven the fewest within the tolerance"
     else:

@@ -123,7 +123,7 @@ def test_identical_links_that_fail_alike_share_one_failure():
 def test_a_shortfall_that_no_check_sees_is_told():
     gap = Shortfall("jack 1", "rated force of every jack to choose from", 1.7, "a jack of 120 kN")
     (failure,) = by_stage(found(shortfalls=(gap,)), "strength", "failure")
-    assert (failure.object, failure.value, failure.remedy) == ("jack 1", "utilisation 1.7", "a jack of 120 kN")
+    assert (failure.object, failure.value, failure.remedy) == ("jack 1", "utilisation 1.7 as sized", "a jack of 120 kN")
     assert gap.check in failure.text
 
 

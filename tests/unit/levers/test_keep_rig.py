@@ -55,7 +55,7 @@ def test_an_unchanged_target_moves_nothing():
             np.testing.assert_allclose((other.u, other.v, other.x, other.y), (one.u, one.v, one.x, one.y), atol=1e-12)
     assert kept.rig.trees[0].force == pytest.approx(rig.trees[0].force, rel=1e-12)
     assert "no pivot is drilled anew" in kept.rig.findings[0].text
-    assert kept.words == f"kept rig: no pivot drilled anew, band use {kept.after:.3g}"
+    assert kept.words == f"kept rig: no pivot drilled anew, band use {kept.after:.3g} as the search judges"
 
 
 def test_more_of_the_same_load_moves_nothing_and_pulls_harder():
