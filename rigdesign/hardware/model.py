@@ -4,8 +4,8 @@ All in SI.  Heights are counted from the plane z = 0 of the specimen towards the
 `Hardware.side` is +1 where the rig stands on the side of +z, −1 where it stands on the side of −z.  A height h is at
 z = side · h.  The three holes of a piece lie at one height at rest, the height of the piece.
 
-Nothing here is checked by being here: the check reads sizes and places, and works out loads, strength, clearances and
-weights anew.
+Nothing here is checked by being here: the check reads sizes, places and masses, and works out forces, strength and
+clearances anew.  Masses it takes as they are.
 """
 
 from __future__ import annotations
